@@ -1,0 +1,18 @@
+/* How far an analysis can be trusted: iterative refinement with residuals summed bar by bar in long double. */
+#ifndef SCT_ANALYSIS_ACCURACY_H
+#define SCT_ANALYSIS_ACCURACY_H
+
+#include "analysis/solver.h"
+
+/* Relative errors above which a result is warned about and refused (evidence: measured on random models, DEVELOPERS.md). */
+static const double SCT_ERROR_WARN = 1e-6, SCT_ERROR_REFUSE = 1e-3;
+
+/**
+ * Refines the response in place (two steps) and tells how much it moved.
+ *
+ * SCT_OK: *accuracy is set; issues gain a warning above SCT_ERROR_WARN. SCT_NOT_ACCURATE: above SCT_ERROR_REFUSE, or the
+ * refinement does not contract, or an imbalance above 1e-9 remains: issues name the stiffest and the softest member; no
+ * number of the response may be shown. SCT_NO_MEMORY.
+ */
+sct_status sct_accuracy_refine(sct_solver *solver, sct_response *response, sct_accuracy *accuracy, sct_issues *issues);
+#endif

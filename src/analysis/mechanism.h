@@ -1,0 +1,17 @@
+/* Ways in which a structure can move without resistance, told as joints and directions. */
+#ifndef SCT_ANALYSIS_MECHANISM_H
+#define SCT_ANALYSIS_MECHANISM_H
+
+#include "analysis/solver.h"
+
+/**
+ * Looks for mechanisms before any number is shown: no support, too few or badly placed supports, parts without
+ * connection or support, joints that can move, also those that rounding hides (scaled smallest eigenvectors by block
+ * inverse iteration; the stretch of the bars tells a mechanism from mere softness).
+ *
+ * SCT_OK: stable. SCT_MECHANISM: issues gain one error per independent motion found (at most 6), in words such as
+ * "joint U3 can move in y". SCT_NOT_ACCURATE: too ill-conditioned to tell. SCT_NO_MEMORY.
+ * A: areas to judge with (n_groups).
+ */
+sct_status sct_mechanism_find(sct_solver *solver, const double A[], sct_issues *issues);
+#endif

@@ -1,0 +1,19 @@
+/* From the cases to what is reported: combinations, joint displacements, reactions. Sums only, never new solves. */
+#ifndef SCT_ANALYSIS_RECOVERY_H
+#define SCT_ANALYSIS_RECOVERY_H
+
+#include "analysis/solver.h"
+
+/** N (n_bars) of one combination = sum of factor * case. */
+void sct_combine_forces(const sct_structure *st, const sct_response *response, int combination, double *N);
+
+/** u (n_joints x 3) of one combination in the model's axes, settlements included. */
+void sct_combine_displacements(const sct_structure *st, const sct_response *response, int combination, double *u);
+
+/** load (n_joints x 3) of one combination: joint loads and self-weight with the areas A. */
+void sct_combine_loads(const sct_structure *st, const double A[], int combination, double *load);
+
+/** reaction (n_joints x 3) that the supports give: what balances bar forces and loads at each joint with a support;
+ * 0 elsewhere. */
+void sct_reactions(const sct_structure *st, const double N[], const double load[], double *reaction);
+#endif
