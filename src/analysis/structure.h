@@ -21,6 +21,8 @@ typedef struct sct_bar {
     /* elongation = sum_i b[i] u[dof[i]] + (prescribed part): unknowns of both joints, n_dof of them (0 to 6) */
     int n_dof, dof[6];
     double b[6];
+    double half_weight; /* [N/m2] weight per unit area that goes to each of its joints: density g L / 2 */
+    double w[6];        /* [N/m2] the same on its unknowns, downwards (unit factor) */
 } sct_bar;
 
 typedef struct sct_structure {
@@ -37,8 +39,6 @@ typedef struct sct_structure {
     double (*basis)[3][3];   /* n_joints: basis[j][i] is the direction of unknown first_dof[j] + i; orthonormal */
     /* loads, per case */
     double *f;               /* [N]  n_cases x n_dof: joint loads on the unknowns */
-    double *w;               /* [N/m2] n_groups x n_dof: weight on the unknowns per unit area of a group (unit factor) */
-    double *joint_weight;    /* [N/m2] n_groups x n_joints: the same, downward force at each joint */
     double *stretch;         /* [m]  n_cases x n_bars: prescribed part of the elongation (settlements) minus the free
                               * elongation (temperature, lack of fit): N = E A / L (b'u + stretch) */
     double *settled;         /* [m]  n_cases x n_joints x 3 prescribed displacement of held directions */
@@ -52,6 +52,10 @@ typedef struct sct_structure {
  */
 sct_status sct_structure_build(const sct_model *model, sct_structure **structure, sct_issues *issues);
 void sct_structure_free(sct_structure *structure);
+
+/** weight [N] (n_dof): own weight of all bars with the areas A (n_groups) on the unknowns, unit factor. The load of case
+ * k on the unknowns is f[k] + model->cases[k].self_weight * weight. */
+void sct_structure_weight(const sct_structure *st, const double A[], double weight[]);
 
 /** Displacement of a joint in the model's axes, from the unknowns of one case or combination plus its settlement
  * (settled: n_joints x 3 of the case, or NULL). */
