@@ -1,0 +1,218 @@
+/* What a structure must do, and one design judged against it. */
+#include "duty.h"
+
+#include <math.h>
+#include <stdlib.h>
+#include <string.h>
+
+#include "analysis/recovery.h"
+
+static const double NO_FORCE = 1e-9; /* of the largest force in the structure: rounding, not load */
+
+static sct_bar_rule rule_of(const sct_structure *st, int bar)
+{
+    const sct_model *model = st->model;
+    const sct_member *m = &model->members[bar];
+    const sct_group *g = &model->groups[m->group];
+    sct_bar_rule rule = {
+        .E = st->bars[bar].E,
+        .yield = model->materials[g->material].yield,
+        .f_t = g->allowable[0],
+        .f_c = g->allowable[1],
+        .buckling = g->buckling,
+        .safety = g->safety,
+        .slenderness_any = g->slenderness_any,
+        .slenderness_compression = g->slenderness_compression,
+    };
+    for (int axis = 0; axis < 2; axis++) {
+        const double L = st->bars[bar].L, given = m->length[axis];
+        rule.Lcr[axis] = m->source[axis] == SCT_LENGTH_SYSTEM ? L : m->source[axis] == SCT_LENGTH_FACTOR ? given * L : given;
+    }
+    return rule;
+}
+
+static void list_rows(const sct_model *model, sct_deflection_row *rows, int *n)
+{
+    *n = 0;
+    for (int limit = 0; limit < model->n_deflections; limit++) {
+        const sct_deflection_limit *d = &model->deflections[limit];
+        for (int c = 0; c < model->n_combinations; c++)
+            for (int k = 0; d->in[c] && k < d->n_joints; k++) {
+                if (rows != NULL) rows[*n] = (sct_deflection_row){limit, d->joints[k], c};
+                (*n)++;
+            }
+    }
+}
+
+static sct_status fill(sct_duty *duty, sct_engine engine)
+{
+    const sct_structure *st = duty->st;
+    const sct_model *model = st->model;
+    const size_t n_bars = (size_t)st->n_bars, n_groups = (size_t)st->n_groups, n_comb = (size_t)st->n_combinations;
+    sct_status status;
+    duty->solver = sct_solver_new(st, engine, &status);
+    if (duty->solver == NULL) return status;
+    status = sct_response_new(st, &duty->response);
+    if (status != SCT_OK) return status;
+    duty->arena = sct_arena_new();
+    if (duty->arena == NULL) return SCT_NO_MEMORY;
+    list_rows(model, NULL, &duty->n_rows);
+    duty->rules = sct_arena_array(duty->arena, n_bars, sizeof *duty->rules);
+    duty->length = sct_arena_array(duty->arena, n_groups, sizeof(double));
+    duty->unit_mass = sct_arena_array(duty->arena, n_groups, sizeof(double));
+    duty->allowable = sct_arena_array(duty->arena, n_comb, sizeof(int));
+    duty->rows = sct_arena_array(duty->arena, (size_t)duty->n_rows, sizeof *duty->rows);
+    duty->N = sct_arena_array(duty->arena, n_comb * n_bars, sizeof(double));
+    duty->u = sct_arena_array(duty->arena, (size_t)duty->n_rows, sizeof(double));
+    duty->worst_compression = sct_arena_array(duty->arena, n_bars, sizeof(double));
+    if (duty->rules == NULL || duty->length == NULL || duty->unit_mass == NULL || duty->allowable == NULL ||
+        duty->rows == NULL || duty->N == NULL || duty->u == NULL || duty->worst_compression == NULL)
+        return SCT_NO_MEMORY;
+    list_rows(model, duty->rows, &duty->n_rows);
+    for (int bar = 0; bar < st->n_bars; bar++) {
+        duty->rules[bar] = rule_of(st, bar);
+        duty->length[st->bars[bar].group] += st->bars[bar].L;
+        duty->unit_mass[st->bars[bar].group] += st->bars[bar].L * st->bars[bar].density;
+    }
+    for (int c = 0; c < st->n_combinations; c++)
+        if (model->combinations[c].basis == SCT_ALLOWABLE) duty->allowable[duty->n_allowable++] = c;
+    return SCT_OK;
+}
+
+sct_duty *sct_duty_new(const sct_structure *st, sct_engine engine, sct_status *status)
+{
+    sct_duty *duty = calloc(1, sizeof *duty);
+    *status = SCT_NO_MEMORY;
+    if (duty == NULL) return NULL;
+    duty->st = st;
+    *status = fill(duty, engine);
+    if (*status == SCT_OK) return duty;
+    sct_duty_free(duty);
+    return NULL;
+}
+
+void sct_duty_free(sct_duty *duty)
+{
+    if (duty == NULL) return;
+    sct_solver_free(duty->solver);
+    sct_response_free(&duty->response);
+    sct_arena_free(duty->arena);
+    free(duty);
+}
+
+sct_status sct_design_new(sct_arena *arena, int n_groups, sct_design *design)
+{
+    design->A = sct_arena_array(arena, (size_t)n_groups, sizeof *design->A);
+    design->i = sct_arena_array(arena, (size_t)n_groups, sizeof *design->i);
+    design->section = sct_arena_array(arena, (size_t)n_groups, sizeof *design->section);
+    return design->A == NULL || design->i == NULL || design->section == NULL ? SCT_NO_MEMORY : SCT_OK;
+}
+
+void sct_design_copy(int n_groups, const sct_design *from, sct_design *to)
+{
+    memcpy(to->A, from->A, (size_t)n_groups * sizeof *to->A);
+    memcpy(to->i, from->i, (size_t)n_groups * sizeof *to->i);
+    memcpy(to->section, from->section, (size_t)n_groups * sizeof *to->section);
+}
+
+void sct_design_section(const sct_model *model, int group, int section, sct_design *design)
+{
+    const sct_section *x = &model->families[model->groups[group].family].sections[section];
+    design->section[group] = section;
+    design->A[group] = x->A;
+    for (int axis = 0; axis < 2; axis++) design->i[group][axis] = sqrt(x->I[axis] / x->A);
+}
+
+void sct_design_area(const sct_model *model, int group, double A, sct_design *design)
+{
+    design->section[group] = -1;
+    design->A[group] = A;
+    for (int axis = 0; axis < 2; axis++) design->i[group][axis] = sqrt(model->groups[group].c[axis] * A);
+}
+
+double sct_duty_mass(const sct_duty *duty, const sct_design *design)
+{
+    double mass = 0.0;
+    for (int g = 0; g < duty->st->n_groups; g++) mass += duty->unit_mass[g] * design->A[g];
+    return mass;
+}
+
+static void gather_compression(sct_duty *duty)
+{
+    const sct_structure *st = duty->st;
+    for (int bar = 0; bar < st->n_bars; bar++) duty->worst_compression[bar] = 0.0;
+    for (int k = 0; k < duty->n_allowable; k++) {
+        const double *N = duty->N + (size_t)duty->allowable[k] * (size_t)st->n_bars;
+        double largest = 0.0;
+        for (int bar = 0; bar < st->n_bars; bar++) largest = fmax(largest, fabs(N[bar]));
+        for (int bar = 0; bar < st->n_bars; bar++)
+            if (N[bar] < -NO_FORCE * largest && N[bar] < duty->worst_compression[bar])
+                duty->worst_compression[bar] = N[bar];
+    }
+}
+
+static double row_displacement(const sct_duty *duty, const sct_deflection_row *row)
+{
+    const sct_structure *st = duty->st;
+    const sct_combination *c = &st->model->combinations[row->combination];
+    const double *dir = st->model->deflections[row->limit].direction;
+    double u = 0.0;
+    for (int k = 0; k < st->n_cases; k++) {
+        double d[3];
+        if (c->factor[k] == 0.0) continue;
+        sct_joint_displacement(st, duty->response.u + (size_t)k * (size_t)st->n_dof,
+                               st->settled + (size_t)k * (size_t)st->n_joints * 3, row->joint, d);
+        u += c->factor[k] * (d[0] * dir[0] + d[1] * dir[1] + d[2] * dir[2]);
+    }
+    return u;
+}
+
+void sct_duty_gather(sct_duty *duty)
+{
+    const sct_structure *st = duty->st;
+    for (int c = 0; c < st->n_combinations; c++)
+        sct_combine_forces(st, &duty->response, c, duty->N + (size_t)c * (size_t)st->n_bars);
+    for (int r = 0; r < duty->n_rows; r++) duty->u[r] = row_displacement(duty, &duty->rows[r]);
+    gather_compression(duty);
+}
+
+sct_status sct_duty_analyse(sct_duty *duty, const double A[])
+{
+    const sct_status status = sct_solver_analyse(duty->solver, A, &duty->response);
+    if (status == SCT_OK) sct_duty_gather(duty);
+    return status;
+}
+
+bool sct_duty_is_compressed(const sct_duty *duty, int bar)
+{
+    return duty->worst_compression[bar] < 0.0;
+}
+
+double sct_duty_bar_utilisation(const sct_duty *duty, int bar, double A, const double i[2])
+{
+    const sct_bar_rule *rule = &duty->rules[bar];
+    double most = sct_bar_slenderness(rule, i, sct_duty_is_compressed(duty, bar), NULL).utilisation;
+    for (int k = 0; k < duty->n_allowable; k++) {
+        const double N = duty->N[(size_t)duty->allowable[k] * (size_t)duty->st->n_bars + (size_t)bar];
+        sct_bar_check checks[SCT_MOST_BAR_CHECKS];
+        const int n = sct_bar_checks(rule, N, A, i, checks);
+        for (int j = 0; j < n; j++) most = fmax(most, checks[j].utilisation);
+    }
+    return most;
+}
+
+double sct_duty_row_utilisation(const sct_duty *duty, int row)
+{
+    return fabs(duty->u[row]) / duty->st->model->deflections[duty->rows[row].limit].at_most;
+}
+
+double sct_duty_utilisation(const sct_duty *duty, const sct_design *design)
+{
+    double most = 0.0;
+    for (int bar = 0; bar < duty->st->n_bars; bar++) {
+        const int g = duty->st->bars[bar].group;
+        most = fmax(most, sct_duty_bar_utilisation(duty, bar, design->A[g], design->i[g]));
+    }
+    for (int r = 0; r < duty->n_rows; r++) most = fmax(most, sct_duty_row_utilisation(duty, r));
+    return most;
+}

@@ -1,0 +1,68 @@
+/**
+ * What a structure must do: every limit of the model in the form in which designs are judged, and the analysis of one
+ * design against it. Used by checking, by the descent and by the choice of sections alike.
+ */
+#ifndef SCT_SIZING_DUTY_H
+#define SCT_SIZING_DUTY_H
+
+#include "analysis/solver.h"
+#include "rules/allowable.h"
+
+/* The sizes of all groups with their true properties. */
+typedef struct sct_design {
+    double *A;        /* [m2] n_groups */
+    double (*i)[2];   /* [m] radii of gyration; NAN: not stated */
+    int *section;     /* index in the group's family; -1: an area */
+} sct_design;
+
+/* One deflection limit at one joint in one combination. */
+typedef struct sct_deflection_row {
+    int limit, joint, combination;
+} sct_deflection_row;
+
+typedef struct sct_duty {
+    const sct_structure *st;   /* borrowed */
+    sct_solver *solver;
+    sct_arena *arena;
+    sct_bar_rule *rules;       /* n_bars */
+    double *length;            /* [m] n_groups: of all members */
+    double *unit_mass;         /* [kg/m2] n_groups: mass per unit area = density * length */
+    int n_allowable, *allowable; /* combinations in which strength is checked */
+    int n_rows;
+    sct_deflection_row *rows;
+    /* of the latest analysis */
+    sct_response response;
+    double *N;                 /* n_combinations x n_bars */
+    double *u;                 /* n_rows: displacement along the limit's direction */
+    double *worst_compression; /* n_bars: [N] most compressive force in the strength combinations, <= 0 */
+} sct_duty;
+
+/** Duty, solver and work arrays for a structure. *status: SCT_OK, SCT_NO_MEMORY, SCT_TOO_LARGE. */
+sct_duty *sct_duty_new(const sct_structure *st, sct_engine engine, sct_status *status);
+void sct_duty_free(sct_duty *duty);
+
+sct_status sct_design_new(sct_arena *arena, int n_groups, sct_design *design);
+void sct_design_copy(int n_groups, const sct_design *from, sct_design *to);
+/** Puts a section, or an area with the group's relation, into the design. */
+void sct_design_section(const sct_model *model, int group, int section, sct_design *design);
+void sct_design_area(const sct_model *model, int group, double A, sct_design *design);
+
+double sct_duty_mass(const sct_duty *duty, const sct_design *design);
+
+/** Analyses and fills N, u, worst_compression. Status of sct_solver_analyse. */
+sct_status sct_duty_analyse(sct_duty *duty, const double A[]);
+/** The same sums from duty->response as it stands (after refinement). */
+void sct_duty_gather(sct_duty *duty);
+
+/** Is a force too small to tell from none? Judged against the largest of its combination. */
+bool sct_duty_is_compressed(const sct_duty *duty, int bar);
+
+/** Largest utilisation of one bar at the forces of the latest analysis, with area A and radii i. */
+double sct_duty_bar_utilisation(const sct_duty *duty, int bar, double A, const double i[2]);
+
+/** Utilisation of one deflection row at the latest analysis. */
+double sct_duty_row_utilisation(const sct_duty *duty, int row);
+
+/** Largest utilisation of all bars and rows at the latest analysis. */
+double sct_duty_utilisation(const sct_duty *duty, const sct_design *design);
+#endif

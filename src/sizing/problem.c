@@ -1,0 +1,436 @@
+/* Sizing as a nonlinear program: values, gradients and curvature from one analysis. */
+#include "problem.h"
+
+#include <math.h>
+#include <stdlib.h>
+#include <string.h>
+
+#include "analysis/sensitivity.h"
+
+static const double INACTIVE = -9.0;      /* ln: a limit this far away is left alone, with zero gradient */
+static const double LEAST_RESIZE = -3.0;  /* ln 0.05 */
+
+struct sct_problem {
+    sct_duty *duty;
+    const sct_structure *st;
+    sct_arena *arena;
+    bool plain;
+    int n, n_bar_rows;            /* variables; constraints on bars come first */
+    bool *is_fixed;               /* n_groups: true properties below, no envelope */
+    sct_design fixed;
+    sct_envelope (*envelope)[2];  /* n_groups */
+    double *lower, *upper;        /* ln A */
+    sct_bound_source *source;
+    double *x_lower, *x_upper;    /* the same in the form of x */
+    int *cluster;
+    sct_nlp nlp;
+    /* at the latest value call */
+    double *A, *z;                /* n_groups, n */
+    sct_need *need;               /* n_bar_rows */
+    double *g;                    /* all constraints, log form */
+    bool have_du;
+    double *du, *dN, *row;        /* n_cases x n x n_dof; n_cases x n; n */
+    double *wN, *wu, *work;       /* weights for the curvature */
+};
+
+static int bar_of(const sct_problem *P, int j) { return j % P->st->n_bars; }
+static int combination_of(const sct_problem *P, int j)
+{
+    return j < P->n_bar_rows ? P->duty->allowable[j / P->st->n_bars] : P->duty->rows[j - P->n_bar_rows].combination;
+}
+
+static double force(const sct_problem *P, int j)
+{
+    return P->duty->N[(size_t)combination_of(P, j) * (size_t)P->st->n_bars + (size_t)bar_of(P, j)];
+}
+
+/* A group of given size: utilisation with true properties, in which the force enters as it is. */
+static sct_need fixed_need(const sct_problem *P, int bar, double N)
+{
+    const int g = P->st->bars[bar].group;
+    sct_bar_check checks[SCT_MOST_BAR_CHECKS];
+    const int n = sct_bar_checks(&P->duty->rules[bar], N, P->fixed.A[g], P->fixed.i[g], checks);
+    sct_need need = {.s = INACTIVE, .s1 = 1.0};
+    double most = 0.0;
+    for (int k = 0; k < n; k++)
+        if (checks[k].utilisation > most) {
+            most = checks[k].utilisation;
+            need.kind = checks[k].kind;
+        }
+    if (most > 0.0) need.s = log(most) + log(P->fixed.A[g]);
+    return need;
+}
+
+static double bar_constraint(sct_problem *P, int j)
+{
+    const int bar = bar_of(P, j), group = P->st->bars[bar].group;
+    const double N = force(P, j);
+    sct_need *need = &P->need[j];
+    if (!(fabs(N) > 0.0)) return INACTIVE;
+    if (P->is_fixed[group]) *need = fixed_need(P, bar, N);
+    else *need = sct_area_needed(&P->duty->rules[bar], P->envelope[group], N > 0.0, log(fabs(N)), log(P->A[group]));
+    return need->s - log(P->A[group]);
+}
+
+static sct_status value(void *user, const double x[], double *f, double g[])
+{
+    sct_problem *P = user;
+    const sct_structure *st = P->st;
+    P->have_du = false;
+    sct_problem_areas(P, x, P->A);
+    const sct_status status = sct_duty_analyse(P->duty, P->A);
+    if (status != SCT_OK) return status;
+    *f = 0.0;
+    for (int v = 0; v < P->n; v++) *f += P->duty->unit_mass[st->group_of_var[v]] * P->A[st->group_of_var[v]];
+    for (int j = 0; j < P->nlp.m; j++) {
+        const double log_g = j < P->n_bar_rows ? bar_constraint(P, j)
+                                               : log(sct_duty_row_utilisation(P->duty, j - P->n_bar_rows));
+        P->g[j] = fmax(log_g, INACTIVE);
+        g[j] = P->plain ? exp(P->g[j]) - 1.0 : P->g[j];
+    }
+    return SCT_OK;
+}
+
+/* row = sum over cases of factor * part, part n_cases x n. */
+static void combine(const sct_problem *P, int combination, const double part[], double row[])
+{
+    const double *factor = P->st->model->combinations[combination].factor;
+    for (int v = 0; v < P->n; v++) row[v] = 0.0;
+    for (int k = 0; k < P->st->n_cases; k++)
+        for (int v = 0; factor[k] != 0.0 && v < P->n; v++) row[v] += factor[k] * part[(size_t)k * (size_t)P->n + (size_t)v];
+}
+
+/* Derivative of the force or of the displacement behind constraint j with respect to z; returns the quantity itself. */
+static double quantity(sct_problem *P, int j, double row[])
+{
+    if (j < P->n_bar_rows) {
+        sct_sensitivity_force(P->duty->solver, &P->duty->response, P->du, bar_of(P, j), P->dN);
+        combine(P, combination_of(P, j), P->dN, row);
+        return force(P, j);
+    }
+    const sct_deflection_row *r = &P->duty->rows[j - P->n_bar_rows];
+    sct_sensitivity_displacement(P->duty->solver, P->du, r->joint, P->st->model->deflections[r->limit].direction, P->dN);
+    combine(P, r->combination, P->dN, row);
+    return P->duty->u[j - P->n_bar_rows];
+}
+
+static void need_du(sct_problem *P)
+{
+    if (!P->have_du) sct_sensitivity_direct(P->duty->solver, &P->duty->response, P->du);
+    P->have_du = true;
+}
+
+static sct_status gradient(void *user, const double x[], int n_rows, const int rows[], double df[], double *dg)
+{
+    sct_problem *P = user;
+    const sct_structure *st = P->st;
+    for (int v = 0; v < P->n; v++) {
+        const double w = P->duty->unit_mass[st->group_of_var[v]];
+        df[v] = P->plain ? w : w * P->A[st->group_of_var[v]];
+    }
+    if (n_rows > 0) need_du(P);
+    for (int r = 0; r < n_rows; r++) {
+        const int j = rows[r];
+        double *row = dg + (size_t)r * (size_t)P->n;
+        if (P->g[j] <= INACTIVE) {
+            memset(row, 0, (size_t)P->n * sizeof *row);
+            continue;
+        }
+        const double q = quantity(P, j, row), slope = (j < P->n_bar_rows ? P->need[j].s1 : 1.0) / q;
+        for (int v = 0; v < P->n; v++) row[v] *= slope;
+        if (j < P->n_bar_rows) {
+            const int own = st->var_of_group[st->bars[bar_of(P, j)].group];
+            if (own >= 0) row[own] -= 1.0;
+        }
+        for (int v = 0; P->plain && v < P->n; v++) row[v] *= exp(P->g[j]) / x[v];
+    }
+    return SCT_OK;
+}
+
+/* sum mu_j Hess g_j. With q the force or displacement: g = s(ln|q|), so
+ * Hess g = (s'' - s') dq dq'/q^2 + s'/q Hess q; the last part of all constraints together is one weighted sum. */
+static sct_status curvature(void *user, const double x[], int n_rows, const int rows[], const double mu[], double *H)
+{
+    (void)x;
+    sct_problem *P = user;
+    const sct_structure *st = P->st;
+    const size_t n = (size_t)P->n, n_bars = (size_t)st->n_bars, n_dof = (size_t)st->n_dof, n_cases = (size_t)st->n_cases;
+    memset(H, 0, n * n * sizeof *H);
+    memset(P->wN, 0, n_cases * n_bars * sizeof *P->wN);
+    memset(P->wu, 0, n_cases * n_dof * sizeof *P->wu);
+    need_du(P);
+    for (int r = 0; r < n_rows; r++) {
+        const int j = rows[r];
+        if (mu[r] == 0.0 || P->g[j] <= INACTIVE) continue;
+        const double q = quantity(P, j, P->row);
+        const bool is_bar = j < P->n_bar_rows;
+        const double s1 = is_bar ? P->need[j].s1 : 1.0, s2 = is_bar ? P->need[j].s2 : 0.0;
+        const double outer = mu[r] * (s2 - s1) / (q * q), inner = mu[r] * s1 / q;
+        for (size_t a = 0; a < n; a++)
+            for (size_t b = 0; b < n; b++) H[a * n + b] += outer * P->row[a] * P->row[b];
+        const double *factor = st->model->combinations[combination_of(P, j)].factor;
+        const double *dir = is_bar ? NULL : st->model->deflections[P->duty->rows[j - P->n_bar_rows].limit].direction;
+        for (size_t k = 0; k < n_cases; k++) {
+            if (is_bar) {
+                P->wN[k * n_bars + (size_t)bar_of(P, j)] += inner * factor[k];
+                continue;
+            }
+            const int joint = P->duty->rows[j - P->n_bar_rows].joint;
+            for (int d = 0; d < st->n_free[joint]; d++) {
+                const double *e = st->basis[joint][d];
+                P->wu[k * n_dof + (size_t)(st->first_dof[joint] + d)] +=
+                    inner * factor[k] * (e[0] * dir[0] + e[1] * dir[1] + e[2] * dir[2]);
+            }
+        }
+    }
+    sct_sensitivity_curvature(P->duty->solver, &P->duty->response, P->du, (sct_weights){P->wN, P->wu}, P->work, H);
+    return SCT_OK;
+}
+
+static void objective(void *user, const double x[], const double d[], double df[], double ddf[])
+{
+    const sct_problem *P = user;
+    for (int v = 0; v < P->n; v++) df[v] = ddf[v] = P->duty->unit_mass[P->st->group_of_var[v]] * exp(x[v] + d[v]);
+}
+
+/* ---- set-up --------------------------------------------------------------------------------------------------- */
+
+/* Radius of gyration that every member of a group needs about one axis; *bar is the member that asks for most. */
+static double radius_needed(const sct_problem *P, int group, int axis, const bool compressed[], int *bar)
+{
+    double most = 0.0;
+    for (int b = 0; b < P->st->n_bars; b++) {
+        const sct_bar_rule *rule = &P->duty->rules[b];
+        if (P->st->bars[b].group != group) continue;
+        const double limit =
+            compressed[b] ? fmin(rule->slenderness_any, rule->slenderness_compression) : rule->slenderness_any;
+        if (rule->Lcr[axis] / limit > most) {
+            most = rule->Lcr[axis] / limit;
+            *bar = b;
+        }
+    }
+    return most;
+}
+
+static sct_status refuse_slenderness(const sct_problem *P, int group, int bar, double best, sct_issues *issues)
+{
+    const sct_group *g = &P->st->model->groups[group];
+    const sct_bar_rule *rule = &P->duty->rules[bar];
+    sct_issue_add(issues, SCT_ERROR, g->where,
+                  "no size of group \"%s\" keeps the slenderness limit %.0f of member \"%s\": the best reaches %.1f; a "
+                  "stiffer section or a shorter effective length would help",
+                  g->name, fmin(rule->slenderness_any, rule->slenderness_compression),
+                  P->st->model->members[bar].name, best);
+    return SCT_INFEASIBLE;
+}
+
+static sct_status free_bounds(sct_problem *P, int v, const bool compressed[], sct_issues *issues)
+{
+    const int group = P->st->group_of_var[v];
+    const sct_group *g = &P->st->model->groups[group];
+    P->lower[v] = log(g->A_min);
+    P->upper[v] = log(g->A_max);
+    for (int axis = 0; axis < 2; axis++) {
+        int bar = -1;
+        const double i = radius_needed(P, group, axis, compressed, &bar);
+        if (!(i > 0.0)) continue;
+        const double s = log(i * i / g->c[axis]); /* i^2 = c A */
+        if (s > P->upper[v])
+            return refuse_slenderness(P, group, bar, P->duty->rules[bar].Lcr[axis] / sqrt(g->c[axis] * g->A_max), issues);
+        if (s <= P->lower[v]) continue;
+        P->lower[v] = s;
+        P->source[v] = (sct_bound_source){SCT_CHECK_SLENDERNESS, bar};
+    }
+    for (int axis = 0; axis < 2; axis++) {
+        const sct_status status = sct_envelope_relation(P->arena, g->c[axis], &P->envelope[group][axis]);
+        if (status != SCT_OK) return status;
+    }
+    return SCT_OK;
+}
+
+/* Sections that are too slender are dropped before the envelope is drawn: slenderness never becomes a constraint. */
+static sct_status ladder_bounds(sct_problem *P, int v, const bool compressed[], sct_issues *issues)
+{
+    const int group = P->st->group_of_var[v];
+    const sct_group *g = &P->st->model->groups[group];
+    const sct_family *family = &P->st->model->families[g->family];
+    int *kept = sct_arena_array(P->arena, (size_t)g->n_ladder, sizeof *kept), n = 0, bar[2] = {-1, -1}, worse = 0;
+    if (kept == NULL) return SCT_NO_MEMORY;
+    double need[2], best = INFINITY;
+    for (int axis = 0; axis < 2; axis++) need[axis] = radius_needed(P, group, axis, compressed, &bar[axis]);
+    for (int k = 0; k < g->n_ladder; k++) {
+        const sct_section *x = &family->sections[g->ladder[k]];
+        const double over[2] = {need[0] / sqrt(x->I[0] / x->A), need[1] / sqrt(x->I[1] / x->A)};
+        if (over[0] <= 1.0 && over[1] <= 1.0) kept[n++] = g->ladder[k];
+        const int axis = over[1] > over[0];
+        if (over[axis] < best) {
+            best = over[axis];
+            worse = axis;
+        }
+    }
+    if (n == 0) {
+        const sct_bar_rule *rule = &P->duty->rules[bar[worse]];
+        return refuse_slenderness(P, group, bar[worse],
+                                  best * fmin(rule->slenderness_any, rule->slenderness_compression), issues);
+    }
+    P->lower[v] = log(family->sections[kept[0]].A);
+    P->upper[v] = log(family->sections[kept[n - 1]].A);
+    if (kept[0] != g->ladder[0]) P->source[v] = (sct_bound_source){SCT_CHECK_SLENDERNESS, bar[0] >= 0 ? bar[0] : bar[1]};
+    for (int axis = 0; axis < 2; axis++) {
+        const sct_status status = sct_envelope_ladder(P->arena, family, n, kept, axis, &P->envelope[group][axis]);
+        if (status != SCT_OK) return status;
+    }
+    return SCT_OK;
+}
+
+static sct_status set_bounds(sct_problem *P, const bool compressed[], sct_issues *issues)
+{
+    for (int v = 0; v < P->n; v++) {
+        const int group = P->st->group_of_var[v];
+        P->source[v] = (sct_bound_source){SCT_CHECK_SMALLEST, -1};
+        sct_status status = SCT_OK;
+        if (P->is_fixed[group]) P->lower[v] = P->upper[v] = log(P->fixed.A[group]);
+        else if (P->st->model->groups[group].kind == SCT_LADDER) status = ladder_bounds(P, v, compressed, issues);
+        else status = free_bounds(P, v, compressed, issues);
+        if (status != SCT_OK) return status;
+        P->x_lower[v] = P->plain ? exp(P->lower[v]) : P->lower[v];
+        P->x_upper[v] = P->plain ? exp(P->upper[v]) : P->upper[v];
+    }
+    return SCT_OK;
+}
+
+static void set_fixed(sct_problem *P, const bool is_fixed[], const sct_design *fixed)
+{
+    const sct_model *model = P->st->model;
+    for (int g = 0; g < P->st->n_groups; g++) {
+        const sct_group *group = &model->groups[g];
+        if (group->kind == SCT_HELD_SECTION) sct_design_section(model, g, group->held, &P->fixed);
+        else if (group->kind == SCT_HELD_AREA) sct_design_area(model, g, group->A_held, &P->fixed);
+        else if (is_fixed != NULL && is_fixed[g]) {
+            P->fixed.A[g] = fixed->A[g];
+            memcpy(P->fixed.i[g], fixed->i[g], sizeof P->fixed.i[g]);
+        } else continue;
+        P->is_fixed[g] = true;
+        P->A[g] = P->fixed.A[g];
+    }
+}
+
+static sct_status allocate(sct_problem *P)
+{
+    const sct_structure *st = P->st;
+    const size_t n = (size_t)P->n, n_groups = (size_t)st->n_groups, n_cases = (size_t)st->n_cases;
+    const size_t n_dof = (size_t)st->n_dof, n_bars = (size_t)st->n_bars, m = (size_t)P->nlp.m;
+    sct_arena *a = P->arena;
+#define ARRAY(what, count) ((P->what = sct_arena_array(a, (count), sizeof *P->what)) != NULL)
+    const bool ok = ARRAY(is_fixed, n_groups) && ARRAY(envelope, n_groups) && ARRAY(lower, n) && ARRAY(upper, n) &&
+                    ARRAY(source, n) && ARRAY(x_lower, n) && ARRAY(x_upper, n) && ARRAY(cluster, m) &&
+                    ARRAY(A, n_groups) && ARRAY(z, n) && ARRAY(need, (size_t)P->n_bar_rows) && ARRAY(g, m) &&
+                    ARRAY(du, n_cases * n * n_dof) && ARRAY(dN, n_cases * n) && ARRAY(row, n) &&
+                    ARRAY(wN, n_cases * n_bars) && ARRAY(wu, n_cases * n_dof) && ARRAY(work, n_cases * n_dof);
+#undef ARRAY
+    if (!ok) return SCT_NO_MEMORY;
+    return sct_design_new(a, st->n_groups, &P->fixed);
+}
+
+static sct_status build(sct_problem *P, const bool compressed[], const bool is_fixed[], const sct_design *fixed,
+                        sct_issues *issues)
+{
+    const sct_structure *st = P->st;
+    P->arena = sct_arena_new();
+    if (P->arena == NULL) return SCT_NO_MEMORY;
+    P->n = st->n_vars;
+    P->n_bar_rows = P->duty->n_allowable * st->n_bars;
+    P->nlp = (sct_nlp){.n = P->n, .m = P->n_bar_rows + P->duty->n_rows, .user = P, .value = value, .gradient = gradient};
+    sct_status status = allocate(P);
+    if (status != SCT_OK) return status;
+    set_fixed(P, is_fixed, fixed);
+    status = set_bounds(P, compressed, issues);
+    if (status != SCT_OK) return status;
+    for (int j = 0; j < P->nlp.m; j++) P->cluster[j] = j < P->n_bar_rows ? st->bars[bar_of(P, j)].group : -1;
+    P->nlp.lower = P->x_lower;
+    P->nlp.upper = P->x_upper;
+    P->nlp.cluster = P->cluster;
+    P->nlp.n_clusters = st->n_groups;
+    if (!P->plain) {
+        P->nlp.curvature = curvature;
+        P->nlp.objective = objective;
+    }
+    return SCT_OK;
+}
+
+sct_status sct_problem_new(sct_duty *duty, const bool compressed[], const bool is_fixed[], const sct_design *fixed,
+                           bool plain, sct_problem **problem, sct_issues *issues)
+{
+    *problem = NULL;
+    sct_problem *P = calloc(1, sizeof *P);
+    if (P == NULL) return SCT_NO_MEMORY;
+    P->duty = duty;
+    P->st = duty->st;
+    P->plain = plain;
+    const sct_status status = build(P, compressed, is_fixed, fixed, issues);
+    if (status == SCT_OK) *problem = P;
+    else sct_problem_free(P);
+    return status;
+}
+
+void sct_problem_free(sct_problem *P)
+{
+    if (P == NULL) return;
+    sct_arena_free(P->arena);
+    free(P);
+}
+
+const sct_nlp *sct_problem_nlp(const sct_problem *P) { return &P->nlp; }
+
+void sct_problem_areas(const sct_problem *P, const double x[], double A[])
+{
+    for (int g = 0; g < P->st->n_groups; g++) {
+        const int v = P->st->var_of_group[g];
+        A[g] = P->is_fixed[g] ? P->fixed.A[g] : P->plain ? x[v] : exp(x[v]);
+    }
+}
+
+void sct_problem_point(const sct_problem *P, const double A[], double x[])
+{
+    for (int v = 0; v < P->n; v++) {
+        const double s = fmin(fmax(log(A[P->st->group_of_var[v]]), P->lower[v]), P->upper[v]);
+        x[v] = P->plain ? exp(s) : s;
+    }
+}
+
+void sct_problem_bounds(const sct_problem *P, double lower[], double upper[], sct_bound_source source[])
+{
+    memcpy(lower, P->lower, (size_t)P->n * sizeof *lower);
+    memcpy(upper, P->upper, (size_t)P->n * sizeof *upper);
+    memcpy(source, P->source, (size_t)P->n * sizeof *source);
+}
+
+int sct_problem_resize(sct_problem *P, double x[])
+{
+    enum { MOST = 2 };
+    int used = 0;
+    while (used < MOST) {
+        double f, bars = -INFINITY, joints = -INFINITY;
+        used++;
+        if (value(P, x, &f, P->g) != SCT_OK) break; /* log form: the plain form is not resized */
+        for (int v = 0; v < P->n; v++) P->z[v] = LEAST_RESIZE;
+        for (int j = 0; j < P->nlp.m; j++) {
+            if (j >= P->n_bar_rows) {
+                joints = fmax(joints, P->g[j]);
+                continue;
+            }
+            const int v = P->st->var_of_group[P->st->bars[bar_of(P, j)].group];
+            bars = fmax(bars, P->g[j]);
+            if (v >= 0) P->z[v] = fmax(P->z[v], P->g[j]);
+        }
+        if (bars <= joints) break;
+        for (int v = 0; v < P->n; v++) x[v] = fmin(fmax(x[v] + P->z[v], P->lower[v]), P->upper[v]);
+    }
+    return used;
+}
+
+sct_constraint sct_problem_constraint(const sct_problem *P, int j)
+{
+    if (j < P->n_bar_rows) return (sct_constraint){bar_of(P, j), -1, combination_of(P, j), P->need[j]};
+    return (sct_constraint){-1, j - P->n_bar_rows, combination_of(P, j), {.kind = SCT_CHECK_DEFLECTION}};
+}
