@@ -6,6 +6,7 @@
 #include <string.h>
 
 #include "analysis/sensitivity.h"
+#include "base/number.h"
 
 static const double INACTIVE = -9.0;      /* ln: a limit this far away is left alone, with zero gradient */
 static const double LEAST_RESIZE = -3.0;  /* ln 0.05 */
@@ -25,6 +26,8 @@ struct sct_problem {
     int *cluster;
     sct_nlp nlp;
     /* at the latest value call */
+    bool have_value;
+    double *x, f;
     double *A, *z;                /* n_groups, n */
     sct_need *need;               /* n_bar_rows */
     double *g;                    /* all constraints, log form */
@@ -72,22 +75,34 @@ static double bar_constraint(sct_problem *P, int j)
     return need->s - log(P->A[group]);
 }
 
-static sct_status value(void *user, const double x[], double *f, double g[])
+/* One analysis and all constraints in log form; a point judged twice in a row is analysed once. */
+static sct_status judge(sct_problem *P, const double x[])
 {
-    sct_problem *P = user;
     const sct_structure *st = P->st;
-    P->have_du = false;
+    P->have_value = P->have_du = false;
     sct_problem_areas(P, x, P->A);
     const sct_status status = sct_duty_analyse(P->duty, P->A);
     if (status != SCT_OK) return status;
-    *f = 0.0;
-    for (int v = 0; v < P->n; v++) *f += P->duty->unit_mass[st->group_of_var[v]] * P->A[st->group_of_var[v]];
+    P->f = 0.0;
+    for (int v = 0; v < P->n; v++) P->f += P->duty->unit_mass[st->group_of_var[v]] * P->A[st->group_of_var[v]];
     for (int j = 0; j < P->nlp.m; j++) {
-        const double log_g = j < P->n_bar_rows ? bar_constraint(P, j)
-                                               : log(sct_duty_row_utilisation(P->duty, j - P->n_bar_rows));
-        P->g[j] = fmax(log_g, INACTIVE);
-        g[j] = P->plain ? exp(P->g[j]) - 1.0 : P->g[j];
+        const double g = j < P->n_bar_rows ? bar_constraint(P, j)
+                                           : log(sct_duty_row_utilisation(P->duty, j - P->n_bar_rows));
+        P->g[j] = fmax(g, INACTIVE);
     }
+    memcpy(P->x, x, (size_t)P->n * sizeof *x);
+    P->have_value = true;
+    return SCT_OK;
+}
+
+static sct_status value(void *user, const double x[], double *f, double g[])
+{
+    sct_problem *P = user;
+    sct_status status = SCT_OK;
+    if (!P->have_value || memcmp(x, P->x, (size_t)P->n * sizeof *x) != 0) status = judge(P, x);
+    if (status != SCT_OK) return status;
+    *f = P->f;
+    for (int j = 0; j < P->nlp.m; j++) g[j] = P->plain ? exp(P->g[j]) - 1.0 : P->g[j];
     return SCT_OK;
 }
 
@@ -187,10 +202,12 @@ static sct_status curvature(void *user, const double x[], int n_rows, const int 
     return SCT_OK;
 }
 
-static void objective(void *user, const double x[], const double d[], double df[], double ddf[])
+static double objective(void *user, const double x[], const double d[], double df[], double ddf[])
 {
     const sct_problem *P = user;
-    for (int v = 0; v < P->n; v++) df[v] = ddf[v] = P->duty->unit_mass[P->st->group_of_var[v]] * exp(x[v] + d[v]);
+    double f = 0.0;
+    for (int v = 0; v < P->n; v++) f += df[v] = ddf[v] = P->duty->unit_mass[P->st->group_of_var[v]] * exp(x[v] + d[v]);
+    return f;
 }
 
 /* ---- set-up --------------------------------------------------------------------------------------------------- */
@@ -212,19 +229,18 @@ static double radius_needed(const sct_problem *P, int group, int axis, const boo
     return most;
 }
 
-static sct_status refuse_slenderness(const sct_problem *P, int group, int bar, double best, sct_issues *issues)
+static sct_status refuse_slenderness(const sct_problem *P, int group, int bar, double best, sct_fault why)
 {
-    const sct_group *g = &P->st->model->groups[group];
     const sct_bar_rule *rule = &P->duty->rules[bar];
-    sct_issue_add(issues, SCT_ERROR, g->where,
-                  "no size of group \"%s\" keeps the slenderness limit %.0f of member \"%s\": the best reaches %.1f; a "
-                  "stiffer section or a shorter effective length would help",
-                  g->name, fmin(rule->slenderness_any, rule->slenderness_compression),
-                  P->st->model->members[bar].name, best);
+    sct_number_format(why, SCT_FAULT_ROOM,
+                      "No size of group \"%.60s\" keeps the slenderness limit %.0f of member \"%.60s\": the best "
+                      "reaches %.1f; a stiffer section or a shorter effective length would help.",
+                      P->st->model->groups[group].name, fmin(rule->slenderness_any, rule->slenderness_compression),
+                      P->st->model->members[bar].name, best);
     return SCT_INFEASIBLE;
 }
 
-static sct_status free_bounds(sct_problem *P, int v, const bool compressed[], sct_issues *issues)
+static sct_status free_bounds(sct_problem *P, int v, const bool compressed[], sct_fault why)
 {
     const int group = P->st->group_of_var[v];
     const sct_group *g = &P->st->model->groups[group];
@@ -236,7 +252,7 @@ static sct_status free_bounds(sct_problem *P, int v, const bool compressed[], sc
         if (!(i > 0.0)) continue;
         const double s = log(i * i / g->c[axis]); /* i^2 = c A */
         if (s > P->upper[v])
-            return refuse_slenderness(P, group, bar, P->duty->rules[bar].Lcr[axis] / sqrt(g->c[axis] * g->A_max), issues);
+            return refuse_slenderness(P, group, bar, P->duty->rules[bar].Lcr[axis] / sqrt(g->c[axis] * g->A_max), why);
         if (s <= P->lower[v]) continue;
         P->lower[v] = s;
         P->source[v] = (sct_bound_source){SCT_CHECK_SLENDERNESS, bar};
@@ -249,7 +265,7 @@ static sct_status free_bounds(sct_problem *P, int v, const bool compressed[], sc
 }
 
 /* Sections that are too slender are dropped before the envelope is drawn: slenderness never becomes a constraint. */
-static sct_status ladder_bounds(sct_problem *P, int v, const bool compressed[], sct_issues *issues)
+static sct_status ladder_bounds(sct_problem *P, int v, const bool compressed[], sct_fault why)
 {
     const int group = P->st->group_of_var[v];
     const sct_group *g = &P->st->model->groups[group];
@@ -271,7 +287,7 @@ static sct_status ladder_bounds(sct_problem *P, int v, const bool compressed[], 
     if (n == 0) {
         const sct_bar_rule *rule = &P->duty->rules[bar[worse]];
         return refuse_slenderness(P, group, bar[worse],
-                                  best * fmin(rule->slenderness_any, rule->slenderness_compression), issues);
+                                  best * fmin(rule->slenderness_any, rule->slenderness_compression), why);
     }
     P->lower[v] = log(family->sections[kept[0]].A);
     P->upper[v] = log(family->sections[kept[n - 1]].A);
@@ -283,15 +299,15 @@ static sct_status ladder_bounds(sct_problem *P, int v, const bool compressed[], 
     return SCT_OK;
 }
 
-static sct_status set_bounds(sct_problem *P, const bool compressed[], sct_issues *issues)
+static sct_status set_bounds(sct_problem *P, const bool compressed[], sct_fault why)
 {
     for (int v = 0; v < P->n; v++) {
         const int group = P->st->group_of_var[v];
         P->source[v] = (sct_bound_source){SCT_CHECK_SMALLEST, -1};
         sct_status status = SCT_OK;
         if (P->is_fixed[group]) P->lower[v] = P->upper[v] = log(P->fixed.A[group]);
-        else if (P->st->model->groups[group].kind == SCT_LADDER) status = ladder_bounds(P, v, compressed, issues);
-        else status = free_bounds(P, v, compressed, issues);
+        else if (P->st->model->groups[group].kind == SCT_LADDER) status = ladder_bounds(P, v, compressed, why);
+        else status = free_bounds(P, v, compressed, why);
         if (status != SCT_OK) return status;
         P->x_lower[v] = P->plain ? exp(P->lower[v]) : P->lower[v];
         P->x_upper[v] = P->plain ? exp(P->upper[v]) : P->upper[v];
@@ -324,7 +340,7 @@ static sct_status allocate(sct_problem *P)
 #define ARRAY(what, count) ((P->what = sct_arena_array(a, (count), sizeof *P->what)) != NULL)
     const bool ok = ARRAY(is_fixed, n_groups) && ARRAY(envelope, n_groups) && ARRAY(lower, n) && ARRAY(upper, n) &&
                     ARRAY(source, n) && ARRAY(x_lower, n) && ARRAY(x_upper, n) && ARRAY(cluster, m) &&
-                    ARRAY(A, n_groups) && ARRAY(z, n) && ARRAY(need, (size_t)P->n_bar_rows) && ARRAY(g, m) &&
+                    ARRAY(x, n) && ARRAY(A, n_groups) && ARRAY(z, n) && ARRAY(need, (size_t)P->n_bar_rows) && ARRAY(g, m) &&
                     ARRAY(du, n_cases * n * n_dof) && ARRAY(dN, n_cases * n) && ARRAY(row, n) &&
                     ARRAY(wN, n_cases * n_bars) && ARRAY(wu, n_cases * n_dof) && ARRAY(work, n_cases * n_dof);
 #undef ARRAY
@@ -333,7 +349,7 @@ static sct_status allocate(sct_problem *P)
 }
 
 static sct_status build(sct_problem *P, const bool compressed[], const bool is_fixed[], const sct_design *fixed,
-                        sct_issues *issues)
+                        sct_fault why)
 {
     const sct_structure *st = P->st;
     P->arena = sct_arena_new();
@@ -344,7 +360,7 @@ static sct_status build(sct_problem *P, const bool compressed[], const bool is_f
     sct_status status = allocate(P);
     if (status != SCT_OK) return status;
     set_fixed(P, is_fixed, fixed);
-    status = set_bounds(P, compressed, issues);
+    status = set_bounds(P, compressed, why);
     if (status != SCT_OK) return status;
     for (int j = 0; j < P->nlp.m; j++) P->cluster[j] = j < P->n_bar_rows ? st->bars[bar_of(P, j)].group : -1;
     P->nlp.lower = P->x_lower;
@@ -359,7 +375,7 @@ static sct_status build(sct_problem *P, const bool compressed[], const bool is_f
 }
 
 sct_status sct_problem_new(sct_duty *duty, const bool compressed[], const bool is_fixed[], const sct_design *fixed,
-                           bool plain, sct_problem **problem, sct_issues *issues)
+                           bool plain, sct_problem **problem, sct_fault why)
 {
     *problem = NULL;
     sct_problem *P = calloc(1, sizeof *P);
@@ -367,7 +383,7 @@ sct_status sct_problem_new(sct_duty *duty, const bool compressed[], const bool i
     P->duty = duty;
     P->st = duty->st;
     P->plain = plain;
-    const sct_status status = build(P, compressed, is_fixed, fixed, issues);
+    const sct_status status = build(P, compressed, is_fixed, fixed, why);
     if (status == SCT_OK) *problem = P;
     else sct_problem_free(P);
     return status;
@@ -410,9 +426,9 @@ int sct_problem_resize(sct_problem *P, double x[])
     enum { MOST = 2 };
     int used = 0;
     while (used < MOST) {
-        double f, bars = -INFINITY, joints = -INFINITY;
+        double bars = -INFINITY, joints = -INFINITY;
         used++;
-        if (value(P, x, &f, P->g) != SCT_OK) break; /* log form: the plain form is not resized */
+        if (judge(P, x) != SCT_OK) break;
         for (int v = 0; v < P->n; v++) P->z[v] = LEAST_RESIZE;
         for (int j = 0; j < P->nlp.m; j++) {
             if (j >= P->n_bar_rows) {

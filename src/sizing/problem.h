@@ -17,6 +17,9 @@
 
 typedef struct sct_problem sct_problem;
 
+enum { SCT_FAULT_ROOM = 400 };
+typedef char sct_fault[SCT_FAULT_ROOM]; /* why no design can keep a limit, in one sentence */
+
 /* Which limit sets the lower end of a variable. */
 typedef struct sct_bound_source {
     sct_check_kind kind; /* SCT_CHECK_SMALLEST or SCT_CHECK_SLENDERNESS */
@@ -27,10 +30,10 @@ typedef struct sct_bound_source {
  * The problem of a duty (borrowed). compressed (n_bars): which members must keep the slenderness limit of members in
  * compression. fixed (design of n_groups, and one flag per group; NULL: none): groups whose size is given with true
  * properties although they could be sized. SCT_OK, SCT_NO_MEMORY; SCT_INFEASIBLE: no size of a group keeps its
- * slenderness limit, issues say which.
+ * slenderness limit, `why` says which.
  */
 sct_status sct_problem_new(sct_duty *duty, const bool compressed[], const bool is_fixed[], const sct_design *fixed,
-                           bool plain, sct_problem **problem, sct_issues *issues);
+                           bool plain, sct_problem **problem, sct_fault why);
 void sct_problem_free(sct_problem *problem);
 
 const sct_nlp *sct_problem_nlp(const sct_problem *problem);
@@ -43,7 +46,8 @@ void sct_problem_point(const sct_problem *problem, const double A[], double x[])
 void sct_problem_bounds(const sct_problem *problem, double lower[], double upper[], sct_bound_source source[]);
 
 /** At most two fully stressed resizings of a start, each one analysis, while members are worse than displacements
- * (evidence: 40 % fewer analyses where strength governs, nothing lost elsewhere). Returns the analyses used. */
+ * (measured: 40 % fewer analyses where strength governs, nothing lost elsewhere). Not for the plain form. Returns the
+ * analyses used. */
 int sct_problem_resize(sct_problem *problem, double x[]);
 
 /* What constraint j is about. */

@@ -1,0 +1,246 @@
+/* The finished result of one design. */
+#include "result.h"
+
+#include <math.h>
+#include <stdlib.h>
+#include <string.h>
+
+#include "analysis/recovery.h"
+#include "base/number.h"
+
+/* The public struct with the memory behind it. */
+typedef struct result_memory {
+    sct_result open;
+    sct_arena *arena;
+} result_memory;
+
+void *sct_result_array(sct_result *result, size_t n, size_t size)
+{
+    return sct_arena_array(((result_memory *)result)->arena, n, size);
+}
+
+void sct_result_free(sct_result *result)
+{
+    if (result == NULL) return;
+    sct_arena_free(((result_memory *)result)->arena);
+    free(result);
+}
+
+static sct_status allocate(sct_result *r, const sct_duty *duty)
+{
+    const sct_model *model = duty->st->model;
+    r->model = model;
+    r->us_customary = model->us_customary;
+    r->title = model->title;
+    r->dimensions = model->dimensions;
+    r->n_joints = model->n_joints;
+    r->n_members = model->n_members;
+    r->n_groups = model->n_groups;
+    r->n_combinations = model->n_combinations;
+    r->n_cases = model->n_cases;
+    for (int k = 0; k < model->n_deflections; k++) r->n_deflections += model->deflections[k].n_joints;
+    const size_t n_comb = (size_t)r->n_combinations, n_joints = (size_t)r->n_joints, n_members = (size_t)r->n_members;
+#define ARRAY(what, count) ((r->what = sct_result_array(r, (count), sizeof *r->what)) != NULL)
+    const bool ok = ARRAY(joints, n_joints) && ARRAY(members, n_members) && ARRAY(groups, (size_t)r->n_groups) &&
+                    ARRAY(combinations, n_comb) && ARRAY(u, n_comb * n_joints * 3) && ARRAY(N, n_comb * n_members) &&
+                    ARRAY(reaction, n_comb * n_joints * 3) && ARRAY(load, n_comb * n_joints * 3) &&
+                    ARRAY(deflections, (size_t)r->n_deflections);
+#undef ARRAY
+    return ok ? SCT_OK : SCT_NO_MEMORY;
+}
+
+static void fill_responses(sct_result *r, const sct_duty *duty, const sct_design *design)
+{
+    const size_t block = (size_t)r->n_joints * 3, n_members = (size_t)r->n_members;
+    memcpy(r->N, duty->N, (size_t)r->n_combinations * n_members * sizeof *r->N);
+    for (int c = 0; c < r->n_combinations; c++) {
+        const size_t k = (size_t)c;
+        r->combinations[c] = duty->st->model->combinations[c].name;
+        sct_combine_displacements(duty->st, &duty->response, c, r->u + k * block);
+        sct_combine_loads(duty->st, design->A, c, r->load + k * block);
+        sct_reactions(duty->st, r->N + k * n_members, r->load + k * block, r->reaction + k * block);
+    }
+}
+
+static void fill_joints(sct_result *r, const sct_model *model)
+{
+    for (int j = 0; j < r->n_joints; j++) {
+        const sct_joint *joint = &model->joints[j];
+        r->joints[j] = (sct_joint_result){.name = joint->name, .n_held = joint->n_held};
+        memcpy(r->joints[j].at, joint->at, sizeof joint->at);
+        memcpy(r->joints[j].held, joint->held, sizeof joint->held);
+    }
+}
+
+static void fill_groups(sct_result *r, const sct_duty *duty, const sct_design *design)
+{
+    static const double TUBE = 2.8284271247461903; /* sqrt 8: depth / radius of gyration of a thin round tube */
+    const sct_model *model = duty->st->model;
+    for (int g = 0; g < r->n_groups; g++) {
+        const sct_group *group = &model->groups[g];
+        const double A = design->A[g], *i = design->i[g], density = model->materials[group->material].density;
+        const sct_section *section =
+            design->section[g] >= 0 ? &model->families[group->family].sections[design->section[g]] : NULL;
+        sct_group_result *out = &r->groups[g];
+        *out = (sct_group_result){
+            .name = group->name,
+            .material = model->materials[group->material].name,
+            .section = section != NULL ? section->name : NULL,
+            .is_held = group->kind == SCT_HELD_AREA || group->kind == SCT_HELD_SECTION,
+            .A = A,
+            .I = {i[0] * i[0] * A, i[1] * i[1] * A},
+            .length = duty->length[g],
+            .unit_mass = density * A,
+            .mass = density * A * duty->length[g],
+            .A_continuous = NAN,
+            .worst_member = -1,
+        };
+        if (section != NULL) {
+            out->I[0] = section->I[0];
+            out->I[1] = section->I[1];
+        }
+        out->depth = section != NULL && section->depth > 0.0 ? section->depth : i[0] > 0.0 ? TUBE * i[0] : 0.0;
+    }
+}
+
+static void consider(sct_member_result *m, const sct_bar_check *check, int combination, double N)
+{
+    if (!(check->utilisation > m->utilisation)) return;
+    m->utilisation = check->utilisation;
+    m->check = check->kind;
+    m->combination = combination;
+    m->N = N;
+}
+
+static void fill_member(sct_result *r, const sct_duty *duty, const sct_design *design, int bar)
+{
+    const sct_bar *b = &duty->st->bars[bar];
+    const sct_bar_rule *rule = &duty->rules[bar];
+    const double *i = design->i[b->group];
+    sct_member_result *m = &r->members[bar];
+    *m = (sct_member_result){
+        .name = duty->st->model->members[bar].name,
+        .group = b->group, .from = b->from, .to = b->to, .L = b->L,
+        .Lcr = {rule->Lcr[0], rule->Lcr[1]},
+        .lambda = {rule->Lcr[0] / i[0], rule->Lcr[1] / i[1]},
+        .mass = b->density * design->A[b->group] * b->L,
+        .combination = -1,
+        .N_max = -INFINITY, .N_min = INFINITY,
+    };
+    for (int c = 0; c < r->n_combinations; c++) {
+        const double N = r->N[(size_t)c * (size_t)r->n_members + (size_t)bar];
+        if (N > m->N_max) { m->N_max = N; m->N_max_in = c; }
+        if (N < m->N_min) { m->N_min = N; m->N_min_in = c; }
+    }
+    for (int k = 0; k < duty->n_allowable; k++) {
+        const int c = duty->allowable[k];
+        const double N = r->N[(size_t)c * (size_t)r->n_members + (size_t)bar];
+        sct_bar_check checks[SCT_MOST_BAR_CHECKS];
+        const int n = sct_bar_checks(rule, N, design->A[b->group], i, checks);
+        for (int j = 0; j < n; j++) consider(m, &checks[j], c, N);
+    }
+    const sct_bar_check slender = sct_bar_slenderness(rule, i, sct_duty_is_compressed(duty, bar), NULL);
+    consider(m, &slender, -1, m->N);
+    sct_group_result *g = &r->groups[b->group];
+    g->n_members++;
+    if (g->worst_member < 0 || m->utilisation > r->members[g->worst_member].utilisation) g->worst_member = bar;
+    r->utilisation = fmax(r->utilisation, m->utilisation);
+}
+
+static void fill_deflections(sct_result *r, const sct_duty *duty)
+{
+    const sct_model *model = duty->st->model;
+    int n = 0;
+    for (int limit = 0; limit < model->n_deflections; limit++) {
+        const sct_deflection_limit *d = &model->deflections[limit];
+        for (int k = 0; k < d->n_joints; k++) {
+            sct_deflection_result *out = &r->deflections[n++];
+            *out = (sct_deflection_result){.limit = limit, .joint = d->joints[k], .combination = -1, .at_most = d->at_most,
+                                           .label = d->label};
+            memcpy(out->direction, d->direction, sizeof out->direction);
+        }
+    }
+    for (int row = 0; row < duty->n_rows; row++) {
+        const sct_deflection_row *at = &duty->rows[row];
+        const double utilisation = sct_duty_row_utilisation(duty, row);
+        int k = 0;
+        while (r->deflections[k].limit != at->limit || r->deflections[k].joint != at->joint) k++;
+        sct_deflection_result *out = &r->deflections[k];
+        if (out->combination >= 0 && !(utilisation > out->utilisation)) continue;
+        out->combination = at->combination;
+        out->u = duty->u[row];
+        out->utilisation = utilisation;
+        r->utilisation = fmax(r->utilisation, utilisation);
+    }
+}
+
+sct_status sct_result_new(const sct_duty *duty, const sct_design *design, sct_accuracy accuracy, sct_result **result)
+{
+    *result = NULL;
+    result_memory *memory = calloc(1, sizeof *memory);
+    if (memory == NULL) return SCT_NO_MEMORY;
+    sct_result *r = &memory->open;
+    memory->arena = sct_arena_new();
+    if (memory->arena == NULL || allocate(r, duty) != SCT_OK) {
+        sct_result_free(r);
+        return SCT_NO_MEMORY;
+    }
+    r->outcome = SCT_CHECKED;
+    r->accuracy = accuracy;
+    r->mass = sct_duty_mass(duty, design);
+    r->mass_continuous = r->kkt = r->violation = NAN;
+    r->best_start = -1;
+    r->analyses = sct_solver_analyses(duty->solver);
+    fill_responses(r, duty, design);
+    fill_joints(r, duty->st->model);
+    fill_groups(r, duty, design);
+    for (int bar = 0; bar < r->n_members; bar++) fill_member(r, duty, design, bar);
+    fill_deflections(r, duty);
+    r->kept = r->utilisation * (1.0 + accuracy.error) <= 1.0; /* kept only when the error does not matter */
+    sct_result_judge(r);
+    *result = r;
+    return SCT_OK;
+}
+
+/* Utilisation for a sentence: two decimals upwards, and never a pass when it is none. */
+static double shown(double utilisation)
+{
+    const double up = ceil(100.0 * utilisation * (1.0 - 1e-9)) / 100.0;
+    return utilisation > 1.0 && up < 1.01 ? 1.01 : up;
+}
+
+void sct_result_judge(sct_result *r)
+{
+    int bar = -1, row = -1;
+    double most = 0.0;
+    for (int k = 0; k < r->n_members; k++)
+        if (r->members[k].utilisation > most) {
+            most = r->members[k].utilisation;
+            bar = k;
+        }
+    for (int k = 0; k < r->n_deflections; k++)
+        if (r->deflections[k].utilisation > most) {
+            most = r->deflections[k].utilisation;
+            row = k;
+        }
+    char what[260] = "nothing is stressed";
+    if (row >= 0) {
+        const sct_deflection_result *d = &r->deflections[row];
+        sct_number_format(what, sizeof what, "deflection (%.40s) of joint %.60s in \"%.60s\"", d->label,
+                          r->joints[d->joint].name, r->combinations[d->combination]);
+    } else if (bar >= 0) {
+        const sct_member_result *m = &r->members[bar];
+        if (m->combination < 0)
+            sct_number_format(what, sizeof what, "%s of member %.60s", sct_check_text(m->check), m->name);
+        else
+            sct_number_format(what, sizeof what, "%s of member %.60s in \"%.60s\"", sct_check_text(m->check), m->name,
+                              r->combinations[m->combination]);
+    }
+    if (r->kept)
+        sct_number_format(r->verdict, sizeof r->verdict, "Every limit is kept; %s governs at %.2f.", what, shown(most));
+    else if (r->outcome == SCT_NO_FEASIBLE_DESIGN)
+        sct_number_format(r->verdict, sizeof r->verdict,
+                          "No design found that keeps every limit; the least violation found leaves %s at %.2f.", what,
+                          shown(most));
+    else sct_number_format(r->verdict, sizeof r->verdict, "Not every limit is kept: %s is at %.2f.", what, shown(most));
+}
