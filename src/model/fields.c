@@ -1,0 +1,401 @@
+/* The values of a model file, one kind each. Every message says what was found and what was expected. */
+#include "fields.h"
+
+#include <math.h>
+#include <stdarg.h>
+#include <stdio.h>
+#include <string.h>
+
+#include "base/number.h"
+
+enum { ENOUGH_ERRORS = 20, MOST_NAME_BYTES = 200 };
+
+static const char AXES[] = "xyz";
+
+/* ---- messages --------------------------------------------------------------------------------------------------- */
+
+sct_shown sct_show(const char *name)
+{
+    sct_shown shown = {""};
+    sct_text text = {0};
+    sct_text_plain(&text, name, 64);
+    if (text.data != NULL) snprintf(shown.text, sizeof shown.text, "%s", text.data);
+    sct_text_free(&text);
+    return shown;
+}
+
+bool sct_fields_enough(const sct_fields *f)
+{
+    return f->n_errors >= ENOUGH_ERRORS;
+}
+
+static void add_issue(sct_fields *f, sct_severity severity, const sct_node *node, sct_where where, const char *format,
+                      va_list args)
+{
+    char message[1024];
+    sct_text pointer = {0};
+    sct_number_vformat(message, sizeof message, format, args);
+    sct_node_pointer(node, &pointer);
+    if (pointer.failed) f->failure = SCT_NO_MEMORY;
+    where.pointer = pointer.data != NULL ? pointer.data : "";
+    sct_issue_add(f->issues, severity, where, "%s", message);
+    sct_text_free(&pointer);
+}
+
+/* Counts an error. True when it is still worth writing. */
+static bool count_error(sct_fields *f)
+{
+    if (!sct_fields_enough(f)) {
+        f->n_errors++;
+        return true;
+    }
+    f->n_errors++;
+    sct_issue_add(f->issues, SCT_ERROR, (sct_where){0}, "one of many"); /* only counted there */
+    return false;
+}
+
+void sct_fields_error(sct_fields *f, const sct_node *node, const char *format, ...)
+{
+    if (!count_error(f)) return;
+    va_list args;
+    va_start(args, format);
+    add_issue(f, SCT_ERROR, node, sct_node_where(f->document, node), format, args);
+    va_end(args);
+}
+
+void sct_fields_key_error(sct_fields *f, const sct_node *node, const char *format, ...)
+{
+    if (!count_error(f)) return;
+    va_list args;
+    va_start(args, format);
+    add_issue(f, SCT_ERROR, node, sct_node_key_where(f->document, node), format, args);
+    va_end(args);
+}
+
+void sct_fields_remark(sct_fields *f, sct_severity severity, const sct_node *node, const char *format, ...)
+{
+    va_list args;
+    va_start(args, format);
+    add_issue(f, severity, node, sct_node_where(f->document, node), format, args);
+    va_end(args);
+}
+
+/* ---- memory ------------------------------------------------------------------------------------------------------ */
+
+void *sct_fields_array(sct_fields *f, int n, size_t size)
+{
+    void *p = sct_arena_array(f->arena, (size_t)n, size);
+    if (p == NULL) f->failure = SCT_NO_MEMORY;
+    return p;
+}
+
+const char *sct_fields_copy(sct_fields *f, const char *text)
+{
+    const char *copy = sct_arena_string(f->arena, text, strlen(text));
+    if (copy == NULL) f->failure = SCT_NO_MEMORY;
+    return copy;
+}
+
+sct_where sct_fields_where(sct_fields *f, const sct_node *node)
+{
+    sct_where where = sct_node_where(f->document, node);
+    sct_text pointer = {0};
+    sct_node_pointer(node, &pointer);
+    if (pointer.failed) f->failure = SCT_NO_MEMORY;
+    where.pointer = sct_fields_copy(f, pointer.data != NULL ? pointer.data : "");
+    sct_text_free(&pointer);
+    return where;
+}
+
+/* ---- objects ----------------------------------------------------------------------------------------------------- */
+
+bool sct_fields_is(sct_fields *f, const sct_node *node, sct_node_kind kind, const char *expected)
+{
+    if (node == NULL) return false;
+    if (sct_node_kind_of(node) == kind) return true;
+    sct_fields_error(f, node, "found %s; expected %s", sct_node_kind_words(node), expected);
+    return false;
+}
+
+static void unknown_key(sct_fields *f, const sct_node *entry, const char *what, const sct_key keys[], int n)
+{
+    const char *list[32], *key = sct_node_key(entry);
+    if (sct_fields_enough(f)) { /* only counted */
+        sct_fields_key_error(f, entry, "unknown key");
+        return;
+    }
+    char known[512] = "";
+    size_t used = 0;
+    for (int i = 0; i < n && i < 32; i++) {
+        list[i] = keys[i].name;
+        const int more = snprintf(known + used, sizeof known - used, "%s\"%s\"", i == 0 ? "" : ", ", keys[i].name);
+        if (more > 0 && used + (size_t)more < sizeof known) used += (size_t)more;
+    }
+    const char *near = sct_nearest(list, n, key);
+    if (near != NULL)
+        sct_fields_key_error(f, entry, "unknown key \"%s\"; did you mean \"%s\"?", sct_show(key).text, near);
+    else
+        sct_fields_key_error(f, entry, "unknown key \"%s\"; %s has %s", sct_show(key).text, what, known);
+}
+
+bool sct_fields_keys(sct_fields *f, const sct_node *node, const char *what, const sct_key keys[], int n,
+                     const sct_node *found[])
+{
+    for (int i = 0; i < n; i++) found[i] = NULL;
+    if (node == NULL) return false;
+    if (sct_node_kind_of(node) != SCT_OBJECT) {
+        sct_fields_error(f, node, "found %s; expected an object: %s", sct_node_kind_words(node), what);
+        return false;
+    }
+    for (const sct_node *entry = sct_node_first(node); entry != NULL; entry = sct_node_next(entry)) {
+        const char *key = sct_node_key(entry), *text;
+        int i = 0;
+        while (i < n && strcmp(keys[i].name, key) != 0) i++;
+        if (i < n)
+            found[i] = entry;
+        else if (strcmp(key, "notes") == 0)
+            sct_fields_string(f, entry, "notes", &text);
+        else
+            unknown_key(f, entry, what, keys, n);
+    }
+    for (int i = 0; i < n; i++)
+        if (found[i] == NULL && keys[i].required != NULL)
+            sct_fields_error(f, node, "no \"%s\"; expected %s", keys[i].name, keys[i].required);
+    return true;
+}
+
+bool sct_fields_name(sct_fields *f, const sct_node *entry, const char **name)
+{
+    const char *key = sct_node_key(entry);
+    const size_t length = strlen(key);
+    *name = key;
+    if (length > MOST_NAME_BYTES) {
+        sct_fields_key_error(f, entry, "a name of %zu bytes; at most %d are allowed", length, MOST_NAME_BYTES);
+        return false;
+    }
+    if (strspn(key, " \t\r\n") == length) {
+        sct_fields_key_error(f, entry, "found a blank name; expected a name with at least one visible character");
+        return false;
+    }
+    *name = sct_fields_copy(f, key);
+    return *name != NULL;
+}
+
+/* ---- texts ------------------------------------------------------------------------------------------------------ */
+
+bool sct_fields_string(sct_fields *f, const sct_node *node, const char *what, const char **text)
+{
+    if (node == NULL) return false;
+    *text = sct_node_string(node);
+    if (*text != NULL) return true;
+    sct_fields_error(f, node, "found %s; expected a string: %s", sct_node_kind_words(node), what);
+    return false;
+}
+
+bool sct_fields_word(sct_fields *f, const sct_node *node, const char *what, const char *const words[], int n,
+                     int *index)
+{
+    const char *text;
+    if (!sct_fields_string(f, node, what, &text)) return false;
+    for (int i = 0; i < n; i++) {
+        if (strcmp(words[i], text) != 0) continue;
+        *index = i;
+        return true;
+    }
+    const char *near = sct_nearest(words, n, text);
+    if (near != NULL) {
+        sct_fields_error(f, node, "found \"%s\"; did you mean \"%s\"?", sct_show(text).text, near);
+        return false;
+    }
+    char list[256] = "";
+    size_t used = 0;
+    for (int i = 0; i < n; i++) {
+        const int more = snprintf(list + used, sizeof list - used, "%s\"%s\"", i == 0 ? "" : ", ", words[i]);
+        if (more > 0 && used + (size_t)more < sizeof list) used += (size_t)more;
+    }
+    sct_fields_error(f, node, "found \"%s\"; expected %s: one of %s", sct_show(text).text, what, list);
+    return false;
+}
+
+bool sct_fields_reference(sct_fields *f, const sct_node *node, const char *what, const sct_names *names, int *index)
+{
+    if (node == NULL) return false;
+    const char *name = sct_node_string(node);
+    if (name == NULL) {
+        sct_fields_error(f, node, "found %s; expected the name of a %s", sct_node_kind_words(node), what);
+        return false;
+    }
+    *index = sct_names_find(names, name);
+    if (*index >= 0) return true;
+    const char *near = sct_fields_enough(f) ? NULL : sct_names_nearest(names, name);
+    if (near != NULL)
+        sct_fields_error(f, node, "no %s \"%s\"; did you mean \"%s\"?", what, sct_show(name).text, sct_show(near).text);
+    else
+        sct_fields_error(f, node, "no %s \"%s\"; expected the name of a %s in this file", what, sct_show(name).text,
+                         what);
+    return false;
+}
+
+/* ---- numbers ---------------------------------------------------------------------------------------------------- */
+
+static sct_quantity quantity_of(int slot)
+{
+    return slot == SCT_DISPLACEMENT ? SCT_LENGTH : (sct_quantity)slot;
+}
+
+static const char *slot_key(int slot)
+{
+    static const char *const KEYS[SCT_UNIT_SLOTS] = {
+        "length", "force", "stress", "area", "second_moment", "density", "temperature", "expansion", "displacement"};
+    return KEYS[slot];
+}
+
+/* The number of a node and the unit that it is in. */
+static bool read_quantity(sct_fields *f, const sct_node *node, const sct_range *range, double *value,
+                          const sct_unit **unit)
+{
+    const sct_quantity quantity = quantity_of(range->slot);
+    if (sct_node_kind_of(node) == SCT_NUMBER) {
+        *value = sct_node_number(node);
+        *unit = f->unit[range->slot];
+        if (*unit == NULL && !f->unit_is_wrong[range->slot])
+            sct_fields_error(f, node,
+                             "found a number without a unit; expected %s such as \"%s\", or a unit in /units/%s",
+                             range->what, sct_quantity_example(quantity), slot_key(range->slot));
+        return *unit != NULL;
+    }
+    const char *text = sct_node_string(node);
+    char fault[SCT_UNIT_FAULT_ROOM];
+    if (text == NULL) {
+        const sct_unit *bare = f->unit[range->slot];
+        if (bare != NULL)
+            sct_fields_error(f, node, "found %s; expected %s: a number in %s or a string such as \"%s\"",
+                             sct_node_kind_words(node), range->what, bare->name, sct_quantity_example(quantity));
+        else
+            sct_fields_error(f, node, "found %s; expected %s: a string such as \"%s\"", sct_node_kind_words(node),
+                             range->what, sct_quantity_example(quantity));
+        return false;
+    }
+    if (sct_quantity_read(text, quantity, value, unit, fault)) return true;
+    sct_fields_error(f, node, "%s", fault);
+    return false;
+}
+
+/* The unit that makes a value usual, where the one it is in does not: the likely slip. */
+static const sct_unit *unit_meant(const sct_range *range, double value)
+{
+    const sct_unit *unit;
+    for (int i = 0; (unit = sct_unit_of(quantity_of(range->slot), i)) != NULL; i++) {
+        const double x = sct_unit_to_SI(unit, value);
+        if (x >= range->usual_least && x <= range->usual_most) return unit;
+    }
+    return NULL;
+}
+
+static bool out_of_range(sct_fields *f, const sct_node *node, const sct_range *range, double value,
+                         const sct_unit *unit)
+{
+    const char *name = unit == NULL ? "" : unit->name, *gap = unit == NULL ? "" : " ";
+    if (range->least > 0 && !(value > 0)) {
+        sct_fields_error(f, node, "found %g%s%s; expected %s above zero", value, gap, name, range->what);
+        return false;
+    }
+    const char *si = unit == NULL ? "" : sct_unit_of(unit->quantity, 0)->name;
+    const sct_unit *meant = unit == NULL ? NULL : unit_meant(range, value);
+    char hint[64] = "";
+    if (meant != NULL && meant != unit) snprintf(hint, sizeof hint, "; did you mean %s?", meant->name);
+    sct_fields_error(f, node, "found %g%s%s; expected %s from %g to %g%s%s%s", value, gap, name, range->what,
+                     range->least, range->most, gap, si, hint);
+    return false;
+}
+
+bool sct_fields_value(sct_fields *f, const sct_node *node, const sct_range *range, double *value)
+{
+    double x;
+    const sct_unit *unit = NULL;
+    if (node == NULL) return false;
+    if (range->slot >= 0) {
+        if (!read_quantity(f, node, range, &x, &unit)) return false;
+    } else if (sct_node_kind_of(node) == SCT_NUMBER) {
+        x = sct_node_number(node);
+    } else {
+        sct_fields_error(f, node, "found %s; expected a number: %s", sct_node_kind_words(node), range->what);
+        return false;
+    }
+    const double si = unit == NULL ? x : sct_unit_to_SI(unit, x);
+    if (!(si >= range->least && si <= range->most)) return out_of_range(f, node, range, x, unit);
+    *value = si;
+    return true;
+}
+
+/* ---- vectors ---------------------------------------------------------------------------------------------------- */
+
+static bool has_dimensions(sct_fields *f, const sct_node *node, const char *what)
+{
+    const int n = sct_node_count(node);
+    if (f->dimensions == 0 ? n == 2 || n == 3 : n == f->dimensions) return true;
+    const char *hint =
+        f->dimensions == 2 && n == 3 ? " (a joint of a plane truss has no third component and no moment)" : "";
+    sct_fields_error(f, node, "found %d entr%s; expected %d: %s along %s%s", n, n == 1 ? "y" : "ies",
+                     f->dimensions == 0 ? 2 : f->dimensions, what, f->dimensions == 3 ? "x, y and z" : "x and y", hint);
+    return false;
+}
+
+bool sct_fields_vector(sct_fields *f, const sct_node *node, const sct_range *range, double v[3])
+{
+    v[0] = v[1] = v[2] = 0.0;
+    if (node == NULL) return false;
+    if (sct_node_kind_of(node) != SCT_ARRAY) {
+        sct_fields_error(f, node, "found %s; expected an array of %s", sct_node_kind_words(node),
+                         f->dimensions == 3 ? "three components" : "two components");
+        return false;
+    }
+    if (!has_dimensions(f, node, range->what)) return false;
+    bool right = true;
+    int i = 0;
+    for (const sct_node *c = sct_node_first(node); c != NULL; c = sct_node_next(c))
+        right &= sct_fields_value(f, c, range, &v[i++]);
+    return right;
+}
+
+bool sct_fields_direction(sct_fields *f, const sct_node *node, double d[3], const char **label)
+{
+    static const sct_range COMPONENT = {"a component of a direction", -1, -1e100, 1e100, 0, 0};
+    d[0] = d[1] = d[2] = 0.0;
+    if (node == NULL) return false;
+    const char *text = sct_node_string(node);
+    if (text != NULL) {
+        const char *axis = text[0] != '\0' && text[1] == '\0' ? strchr(AXES, text[0]) : NULL;
+        if (axis == NULL || (f->dimensions == 2 && *axis == 'z')) {
+            sct_fields_error(f, node, "found \"%s\"; expected a direction: %s, or a vector such as %s",
+                             sct_show(text).text, f->dimensions == 2 ? "\"x\", \"y\"" : "\"x\", \"y\", \"z\"",
+                             f->dimensions == 2 ? "[0.6, 0.8]" : "[0.6, 0, 0.8]");
+            return false;
+        }
+        d[axis - AXES] = 1.0;
+        if (label != NULL) *label = sct_fields_copy(f, text);
+        return true;
+    }
+    if (sct_node_kind_of(node) != SCT_ARRAY) {
+        sct_fields_error(f, node, "found %s; expected a direction: \"x\", \"y\"%s or a vector",
+                         sct_node_kind_words(node), f->dimensions == 2 ? "" : ", \"z\"");
+        return false;
+    }
+    if (!sct_fields_vector(f, node, &COMPONENT, d)) return false;
+    const double scale = fmax(fabs(d[0]), fmax(fabs(d[1]), fabs(d[2])));
+    if (!(scale > 1e-100)) {
+        sct_fields_error(f, node, "found a direction of length zero; expected a vector that points somewhere");
+        return false;
+    }
+    for (int i = 0; i < 3; i++) d[i] /= scale;
+    const double length = sqrt(d[0] * d[0] + d[1] * d[1] + d[2] * d[2]);
+    for (int i = 0; i < 3; i++) d[i] /= length;
+    if (label == NULL) return true;
+    char words[96];
+    if (f->dimensions == 3)
+        sct_number_format(words, sizeof words, "along (%.3g, %.3g, %.3g)", d[0], d[1], d[2]);
+    else
+        sct_number_format(words, sizeof words, "along (%.3g, %.3g)", d[0], d[1]);
+    *label = sct_fields_copy(f, words);
+    return true;
+}
