@@ -18,8 +18,9 @@ void sct_sensitivity_force(const sct_solver *solver, const sct_response *respons
 void sct_sensitivity_displacement(const sct_solver *solver, const double *du, int joint, const double direction[3],
                                   double *d);
 
-/* A weighted sum of forces and displacements of all cases: q = sum_k ( sum_e N[k][e] wN[k][e] + sum_i u[k][i] wu[k][i] ).
- * wN n_cases x n_bars, wu n_cases x n_dof. A force in a combination is one bar with the combination's factors. */
+/* A weighted sum of forces and displacements of all cases: q = sum_k ( sum_e N[k][e] wN[k][e] + sum_i u[k][i] wu[k][i]
+ * ). wN n_cases x n_bars, wu n_cases x n_dof; NULL: all zero. A force in a combination is one bar with the
+ * combination's factors. */
 typedef struct sct_weights {
     const double *wN, *wu;
 } sct_weights;

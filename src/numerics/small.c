@@ -1,0 +1,456 @@
+/* LDL' of one small sparse pattern without allocation: right-looking, by panels of up to three equal columns. */
+#include "small.h"
+
+#include <float.h>
+#include <stdbool.h>
+#include <stdlib.h>
+#include <string.h>
+
+#include "numerics/order.h"
+
+#if defined(__GNUC__) && !defined(__clang__)
+#define UNROLL _Pragma("GCC unroll 4")
+#else
+#define UNROLL
+#endif
+#define INLINE static inline __attribute__((always_inline)) /* so that widths are constants inside */
+
+enum { WIDEST = 3, AT_ONCE = 4 }; /* columns of a panel: the unknowns of a joint; right-hand sides of one sweep */
+
+/* Neighbouring columns of L with the same rows below them. The w x w block on the diagonal is stored as a packed lower
+ * triangle, the rectangle below it row by row, so that one pass over the targets does the work of all w columns. */
+typedef struct panel {
+    int first, w, m;   /* first column, number of columns, number of rows below */
+    int diagonal;      /* where the triangle starts in x */
+    int rectangle;     /* where the rectangle starts in x */
+    const int *row;    /* m rows, ascending */
+    const int *target; /* m (m + 1) / 2 places in x: for each q, of (row[p], row[q]) for p = q .. m-1 */
+} panel;
+
+struct sct_small {
+    int n, n_panels, n_values;
+    panel *panels;
+    int *row, *target; /* behind the panels */
+    int *order;        /* order[k]: unknown of the pattern that stands k-th */
+    int *place;        /* value of the pattern -> place in x */
+    size_t size;       /* of x */
+    double *x;         /* triangles and rectangles of all panels */
+    double *inverse;   /* n: 1 / D */
+    double *t;         /* largest rectangle: L D of the panel at work */
+    double *b;         /* n x AT_ONCE right-hand sides, permuted and interleaved */
+};
+
+/* Rows of L by columns: entries below the diagonal of column j are row[start[j]] .. row[start[j + 1] - 1]. */
+typedef struct columns {
+    int *parent, *count, *mark;
+    int *upper_start, *upper; /* for each i: the j < i with A(i, j) != 0 in the permuted matrix */
+    size_t *start;
+    int *row;
+} columns;
+
+static void columns_free(columns *c)
+{
+    free(c->parent);
+    free(c->count);
+    free(c->mark);
+    free(c->upper_start);
+    free(c->upper);
+    free(c->start);
+    free(c->row);
+}
+
+static void *array(size_t n, size_t size)
+{
+    return calloc(n + 1, size); /* + 1: nothing is a pointer too */
+}
+
+/* The strictly upper triangle of the permuted matrix by columns. */
+static void permute_upper(const sct_pattern *a, const int inverse_order[], columns *c)
+{
+    for (int pass = 0; pass < 2; pass++) {
+        for (int j = 0; j < a->n; j++) {
+            for (int k = a->column[j]; k < a->column[j + 1]; k++) {
+                const int p = inverse_order[a->row[k]], q = inverse_order[j];
+                if (p == q) continue;
+                const int i = p > q ? p : q;
+                if (pass == 0)
+                    c->upper_start[i + 1]++;
+                else
+                    c->upper[c->upper_start[i] + c->mark[i]++] = p > q ? q : p;
+            }
+        }
+        for (int i = 0; pass == 0 && i < a->n; i++) c->upper_start[i + 1] += c->upper_start[i];
+    }
+}
+
+/* Elimination tree (Liu 1990) with path compression; mark serves as the ancestors. */
+static void find_parents(int n, columns *c)
+{
+    for (int i = 0; i < n; i++) {
+        c->parent[i] = c->mark[i] = -1;
+        for (int k = c->upper_start[i]; k < c->upper_start[i + 1]; k++) {
+            for (int j = c->upper[k], next; j != -1 && j < i; j = next) {
+                next = c->mark[j];
+                c->mark[j] = i;
+                if (next == -1) c->parent[j] = i;
+            }
+        }
+    }
+}
+
+/* Row i of L is the part of the elimination tree that is reached from the entries of A in row i. Visiting the rows in
+ * order makes each column ascending. First pass (row == NULL) counts, second writes. */
+static void walk_rows(int n, columns *c)
+{
+    for (int i = 0; i < n; i++) c->mark[i] = -1;
+    for (int i = 0; i < n; i++) {
+        c->mark[i] = i;
+        for (int k = c->upper_start[i]; k < c->upper_start[i + 1]; k++) {
+            for (int j = c->upper[k]; c->mark[j] != i; j = c->parent[j]) {
+                c->mark[j] = i;
+                if (c->row != NULL) c->row[c->start[j] + (size_t)c->count[j]] = i;
+                c->count[j]++;
+            }
+        }
+    }
+}
+
+/* SCT_OK, SCT_NO_MEMORY; SCT_TOO_LARGE when L has more entries than `most` (counted before they are stored). */
+static sct_status find_columns(const sct_pattern *a, const int inverse_order[], size_t most, columns *c)
+{
+    const size_t n = (size_t)a->n;
+    c->parent = array(n, sizeof *c->parent);
+    c->count = array(n, sizeof *c->count);
+    c->mark = array(n, sizeof *c->mark);
+    c->upper_start = array(n + 1, sizeof *c->upper_start);
+    c->upper = array((size_t)a->column[n], sizeof *c->upper);
+    c->start = array(n + 1, sizeof *c->start);
+    if (!c->parent || !c->count || !c->mark || !c->upper_start || !c->upper || !c->start) return SCT_NO_MEMORY;
+    permute_upper(a, inverse_order, c);
+    find_parents(a->n, c);
+    walk_rows(a->n, c);
+    for (size_t j = 0; j < n; j++) c->start[j + 1] = c->start[j] + (size_t)c->count[j];
+    if (c->start[n] > most) return SCT_TOO_LARGE;
+    c->row = array(c->start[n], sizeof *c->row);
+    if (c->row == NULL) return SCT_NO_MEMORY;
+    memset(c->count, 0, n * sizeof *c->count);
+    walk_rows(a->n, c);
+    return SCT_OK;
+}
+
+/* Does column j + 1 continue the panel that column j is in? */
+static bool continues(const columns *c, int j)
+{
+    return c->parent[j] == j + 1 && c->count[j] == c->count[j + 1] + 1;
+}
+
+/* Cuts the columns into panels and lays out x. Returns the number of updates. */
+static size_t lay_out(sct_small *s, const columns *c, int panel_of[])
+{
+    size_t updates = 0, widest = 0;
+    s->n_panels = 0;
+    s->size = 0;
+    for (int j = 0; j < s->n;) {
+        panel *p = &s->panels[s->n_panels];
+        *p = (panel){.first = j, .w = 1};
+        while (p->w < WIDEST && j + p->w < s->n && continues(c, j + p->w - 1)) p->w++;
+        const int last = j + p->w - 1;
+        p->m = c->count[last];
+        p->row = s->row + c->start[last];
+        p->diagonal = (int)s->size;
+        p->rectangle = (int)s->size + p->w * (p->w + 1) / 2;
+        s->size += (size_t)(p->w * (p->w + 1) / 2) + (size_t)p->m * (size_t)p->w;
+        updates += (size_t)p->m * ((size_t)p->m + 1) / 2;
+        if ((size_t)p->m * (size_t)p->w > widest) widest = (size_t)p->m * (size_t)p->w;
+        for (int k = 0; k < p->w; k++) panel_of[j + k] = s->n_panels;
+        j += p->w;
+        s->n_panels++;
+    }
+    s->t = array(widest, sizeof *s->t);
+    return updates;
+}
+
+/* Place in x of L(i, j), i >= j; *hint is where to start looking in the rows of j's panel, and moves on. */
+static int place_of(const panel *p, int i, int j, int *hint)
+{
+    const int c = j - p->first, r = i - p->first;
+    if (r < p->w) return p->diagonal + r * (r + 1) / 2 + c;
+    while (p->row[*hint] != i) ++*hint;
+    return p->rectangle + *hint * p->w + c;
+}
+
+static void find_targets(sct_small *s, const int panel_of[])
+{
+    int *next = s->target;
+    for (int k = 0; k < s->n_panels; k++) {
+        panel *p = &s->panels[k];
+        p->target = next;
+        for (int q = 0; q < p->m; q++) {
+            int hint = 0;
+            for (int r = q; r < p->m; r++) {
+                *next++ = place_of(&s->panels[panel_of[p->row[q]]], p->row[r], p->row[q], &hint);
+            }
+        }
+    }
+}
+
+static void find_places(sct_small *s, const sct_pattern *a, const int inverse_order[], const int panel_of[])
+{
+    for (int j = 0; j < a->n; j++) {
+        for (int k = a->column[j]; k < a->column[j + 1]; k++) {
+            const int p = inverse_order[a->row[k]], q = inverse_order[j];
+            const int low = p < q ? p : q, high = p < q ? q : p;
+            int hint = 0;
+            s->place[k] = place_of(&s->panels[panel_of[low]], high, low, &hint);
+        }
+    }
+}
+
+/* Everything that depends on the pattern only. */
+static sct_status set_up(sct_small *s, const sct_pattern *a, int most_updates, int inverse_order[], int panel_of[],
+                         columns *c)
+{
+    const sct_status ordered = sct_order_amd(a, s->order);
+    if (ordered != SCT_OK) return ordered;
+    for (int k = 0; k < a->n; k++) inverse_order[s->order[k]] = k;
+    /* A panel of w <= 3 columns and m rows has at most w m + 3 entries and at least m updates. */
+    const size_t most_entries = WIDEST * ((size_t)most_updates + (size_t)a->n);
+    const sct_status found = find_columns(a, inverse_order, most_entries, c);
+    if (found != SCT_OK) return found;
+    s->row = c->row; /* taken over; the panels point into it */
+    c->row = NULL;
+    const size_t updates = lay_out(s, c, panel_of);
+    if (updates > (size_t)most_updates) return SCT_TOO_LARGE;
+    s->target = array(updates, sizeof *s->target);
+    s->x = array(s->size, sizeof *s->x);
+    if (s->t == NULL || s->target == NULL || s->x == NULL) return SCT_NO_MEMORY;
+    find_targets(s, panel_of);
+    find_places(s, a, inverse_order, panel_of);
+    return SCT_OK;
+}
+
+sct_small *sct_small_new(const sct_pattern *pattern, int most_updates, sct_status *status)
+{
+    const size_t n = (size_t)pattern->n;
+    sct_small *s = calloc(1, sizeof *s);
+    int *inverse_order = array(n, sizeof *inverse_order), *panel_of = array(n, sizeof *panel_of);
+    columns c = {0};
+    *status = SCT_NO_MEMORY;
+    if (s != NULL) {
+        s->n = pattern->n;
+        s->n_values = pattern->column[n];
+        s->panels = array(n, sizeof *s->panels);
+        s->order = array(n, sizeof *s->order);
+        s->place = array((size_t)s->n_values, sizeof *s->place);
+        s->inverse = array(n, sizeof *s->inverse);
+        s->b = array(n * AT_ONCE, sizeof *s->b);
+        if (inverse_order && panel_of && s->panels && s->order && s->place && s->inverse && s->b) {
+            *status = set_up(s, pattern, most_updates, inverse_order, panel_of, &c);
+        }
+    }
+    columns_free(&c);
+    free(inverse_order);
+    free(panel_of);
+    if (*status == SCT_OK) return s;
+    sct_small_free(s);
+    return NULL;
+}
+
+void sct_small_free(sct_small *s)
+{
+    if (s == NULL) return;
+    free(s->panels);
+    free(s->row);
+    free(s->target);
+    free(s->order);
+    free(s->place);
+    free(s->x);
+    free(s->inverse);
+    free(s->t);
+    free(s->b);
+    free(s);
+}
+
+/* The triangle D = L d L' in place. Returns the column with a bad pivot, or -1. */
+INLINE int factor_triangle(const int w, double *restrict D, double *restrict inverse)
+{
+    UNROLL for (int c = 0; c < w; c++)
+    {
+        double *row = D + c * (c + 1) / 2, y[WIDEST];
+        double d = row[c];
+        UNROLL for (int e = 0; e < c; e++)
+        {
+            const double *l = D + e * (e + 1) / 2;
+            y[e] = row[e];
+            UNROLL for (int g = 0; g < e; g++) y[e] -= y[g] * l[g];
+        }
+        UNROLL for (int e = 0; e < c; e++)
+        {
+            row[e] = y[e] * inverse[e];
+            d -= y[e] * row[e];
+        }
+        if (!(d >= DBL_MIN && d <= DBL_MAX)) return c; /* also NaN; a subnormal pivot has no finite inverse */
+        inverse[c] = 1.0 / d;
+    }
+    return -1;
+}
+
+/* The rectangle: t = L d by substitution with the triangle, and L itself in place. */
+INLINE void factor_rectangle(const int w, int m, const double *restrict D, const double *restrict inverse,
+                             double *restrict l, double *restrict t)
+{
+    for (int p = 0; p < m; p++, l += w, t += w) {
+        UNROLL for (int c = 0; c < w; c++)
+        {
+            double y = l[c];
+            UNROLL for (int e = 0; e < c; e++) y -= t[e] * D[c * (c + 1) / 2 + e];
+            t[c] = y;
+        }
+        UNROLL for (int c = 0; c < w; c++) l[c] = t[c] * inverse[c];
+    }
+}
+
+/* A(row[p], row[q]) -= sum_c L d(q, c) L(p, c). The targets lie in later panels: never in l. */
+INLINE void update_targets(const int w, int m, const double *restrict l, const double *restrict t,
+                           const int *restrict target, double *restrict x)
+{
+    for (int q = 0; q < m; q++, t += w, l += w) {
+        for (int p = 0; p < m - q; p++) {
+            double sum = t[0] * l[p * w];
+            UNROLL for (int c = 1; c < w; c++) sum += t[c] * l[p * w + c];
+            x[target[p]] -= sum;
+        }
+        target += m - q;
+    }
+}
+
+INLINE int factor_panel(const int w, const panel *p, double *x, double *inverse, double *t)
+{
+    const int bad = factor_triangle(w, x + p->diagonal, inverse + p->first);
+    if (bad >= 0) return p->first + bad;
+    factor_rectangle(w, p->m, x + p->diagonal, inverse + p->first, x + p->rectangle, t);
+    update_targets(w, p->m, x + p->rectangle, t, p->target, x);
+    return -1;
+}
+
+sct_status sct_small_update(sct_small *s, const double values[], int *stopped_at)
+{
+    memset(s->x, 0, s->size * sizeof *s->x);
+    for (int k = 0; k < s->n_values; k++) s->x[s->place[k]] = values[k];
+    for (int k = 0; k < s->n_panels; k++) {
+        const panel *p = &s->panels[k];
+        int bad;
+        switch (p->w) {
+        case 1: bad = factor_panel(1, p, s->x, s->inverse, s->t); break;
+        case 2: bad = factor_panel(2, p, s->x, s->inverse, s->t); break;
+        default: bad = factor_panel(3, p, s->x, s->inverse, s->t); break;
+        }
+        if (bad >= 0) {
+            if (stopped_at != NULL) *stopped_at = s->order[bad];
+            return SCT_NOT_CONVEX;
+        }
+    }
+    return SCT_OK;
+}
+
+/* y = L^-1 b for the columns of a panel, for R interleaved right-hand sides. */
+INLINE void forward_panel(const int w, const int R, const panel *p, const double *restrict x, double *restrict b)
+{
+    const double *D = x + p->diagonal, *l = x + p->rectangle;
+    double *y = b + p->first * R;
+    UNROLL for (int c = 1; c < w; c++)
+    {
+        UNROLL for (int e = 0; e < c; e++)
+        {
+            UNROLL for (int r = 0; r < R; r++) y[c * R + r] -= D[c * (c + 1) / 2 + e] * y[e * R + r];
+        }
+    }
+    double v[WIDEST * AT_ONCE];
+    UNROLL for (int c = 0; c < w; c++)
+    {
+        UNROLL for (int r = 0; r < R; r++) v[c * R + r] = y[c * R + r];
+    }
+    for (int k = 0; k < p->m; k++, l += w) {
+        double *z = b + p->row[k] * R;
+        UNROLL for (int r = 0; r < R; r++)
+        {
+            double sum = l[0] * v[r];
+            UNROLL for (int c = 1; c < w; c++) sum += l[c] * v[c * R + r];
+            z[r] -= sum;
+        }
+    }
+}
+
+/* b = L'^-1 D^-1 y for the columns of a panel. */
+INLINE void backward_panel(const int w, const int R, const panel *p, const double *restrict x,
+                           const double *restrict inverse, double *restrict b)
+{
+    const double *D = x + p->diagonal, *l = x + p->rectangle;
+    double *y = b + p->first * R;
+    double v[WIDEST * AT_ONCE];
+    UNROLL for (int c = 0; c < w; c++)
+    {
+        UNROLL for (int r = 0; r < R; r++) v[c * R + r] = y[c * R + r] * inverse[p->first + c];
+    }
+    for (int k = 0; k < p->m; k++, l += w) {
+        const double *z = b + p->row[k] * R;
+        UNROLL for (int c = 0; c < w; c++)
+        {
+            UNROLL for (int r = 0; r < R; r++) v[c * R + r] -= l[c] * z[r];
+        }
+    }
+    UNROLL for (int c = w - 1; c >= 0; c--)
+    {
+        UNROLL for (int e = c + 1; e < w; e++)
+        {
+            UNROLL for (int r = 0; r < R; r++) v[c * R + r] -= D[e * (e + 1) / 2 + c] * v[e * R + r];
+        }
+        UNROLL for (int r = 0; r < R; r++) y[c * R + r] = v[c * R + r];
+    }
+}
+
+/* Both sweeps over R right-hand sides, of which `count` are real; the others are zero. */
+INLINE void solve_block(const int R, const sct_small *s, int count, double *restrict rhs)
+{
+    const size_t n = (size_t)s->n;
+    double *b = s->b;
+    for (size_t k = 0; k < n; k++) {
+        for (int r = 0; r < R; r++)
+            b[k * (size_t)R + (size_t)r] = r < count ? rhs[(size_t)r * n + (size_t)s->order[k]] : 0.0;
+    }
+    for (int k = 0; k < s->n_panels; k++) {
+        const panel *p = &s->panels[k];
+        switch (p->w) {
+        case 1: forward_panel(1, R, p, s->x, b); break;
+        case 2: forward_panel(2, R, p, s->x, b); break;
+        default: forward_panel(3, R, p, s->x, b); break;
+        }
+    }
+    for (int k = s->n_panels - 1; k >= 0; k--) {
+        const panel *p = &s->panels[k];
+        switch (p->w) {
+        case 1: backward_panel(1, R, p, s->x, s->inverse, b); break;
+        case 2: backward_panel(2, R, p, s->x, s->inverse, b); break;
+        default: backward_panel(3, R, p, s->x, s->inverse, b); break;
+        }
+    }
+    for (size_t k = 0; k < n; k++) {
+        for (int r = 0; r < count; r++) rhs[(size_t)r * n + (size_t)s->order[k]] = b[k * (size_t)R + (size_t)r];
+    }
+}
+
+void sct_small_solve(sct_small *s, int count, double b[])
+{
+    for (int done = 0; done < count;) {
+        const int left = count - done;
+        double *rhs = b + (size_t)done * (size_t)s->n;
+        if (left == 1) {
+            solve_block(1, s, 1, rhs);
+            done++;
+        } else {
+            const int now = left < AT_ONCE ? left : AT_ONCE;
+            solve_block(AT_ONCE, s, now, rhs);
+            done += now;
+        }
+    }
+}
