@@ -30,11 +30,13 @@ typedef struct sct_nlp {
     sct_status (*gradient)(void *user, const double x[], int n_rows, const int rows[], double df[], double *dg);
 
     /** Optional (NULL): H (n x n, full, overwritten) = sum_i mu[i] * Hessian of constraint rows[i], at the x of the
-     * latest gradient call. */
+     * latest gradient call (rows are among its rows). Without `objective` the Hessian of f is added to it: then it is
+     * the Hessian of the whole Lagrangian, and n_rows may be 0. */
     sct_status (*curvature)(void *user, const double x[], int n_rows, const int rows[], const double mu[], double *H);
 
-    /** Optional (NULL): for an objective that is cheap to evaluate: its gradient (n) and the diagonal of its Hessian
-     * (n; > 0) at x + d. It becomes the metric, and the QP is solved `passes` times with the objective renewed. */
+    /** Optional (NULL): for a separable objective that is cheap to evaluate: its gradient (n) and the diagonal of its
+     * Hessian (n; > 0) at x + d. It becomes the metric, and the QP is solved `passes` times with the objective
+     * renewed. */
     void (*objective)(void *user, const double x[], const double d[], double df[], double ddf[]);
 
     /** Optional (NULL): cluster[j] >= 0 puts inequality j into a cluster; of each cluster only the `per_cluster` most
@@ -50,6 +52,7 @@ typedef struct sct_descent_step {
     double f, violation, kkt, step;
 } sct_descent_step;
 
+#define SCT_DESCENT_MEMORY 32
 typedef struct sct_descent_settings {
     int    max_iterations;  /* default 100, >= 0; 0: x0 is only evaluated */
     double tol_kkt;         /* default 1e-6 */
@@ -57,7 +60,8 @@ typedef struct sct_descent_settings {
     double eps;             /* potential set g >= -eps; default 0.6 */
     double move;            /* largest step of each x_i; INFINITY (default): no limit. Shrinks and grows between steps */
     double gamma;           /* Armijo constant, default 0.01 */
-    int    memory;          /* Phi is compared with the worst of the last `memory` points; 1: monotone; default 5 */
+    int    memory;          /* Phi is compared with the worst of the last `memory` points; 1: monotone; default 5,
+                             * at most SCT_DESCENT_MEMORY */
     int    passes;          /* QPs per point when `objective` is given; default 2 */
     double floor;           /* smallest eigenvalue of the scaled Lagrangian Hessian, default 0.05 */
     int    per_cluster;     /* default 4 */
