@@ -5,6 +5,8 @@
 #include <stdlib.h>
 #include <string.h>
 
+#include "scantling.h"
+
 struct sct_names {
     int n, room;        /* names, and places for them */
     const char **name;  /* in the order they were put */

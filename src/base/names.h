@@ -13,9 +13,6 @@ void sct_names_free(sct_names *names);
 bool sct_names_put(sct_names *names, const char *name, int index);
 /** The index of a name, -1 when it is not known. */
 int sct_names_find(const sct_names *names, const char *name);
-/** The known name nearest to `name` by edits (insert, delete, replace, swap of neighbours), when it is near enough to
- * be a slip: at most 2 edits, at most a third of its length, at least 1; else NULL. Ties: the first put. */
+/** The known name nearest to `name`, as sct_nearest. */
 const char *sct_names_nearest(const sct_names *names, const char *name);
-/** The same over a plain list of n strings (NULL entries are passed over). */
-const char *sct_nearest(const char *const list[], int n, const char *name);
 #endif

@@ -202,12 +202,10 @@ static sct_status curvature(void *user, const double x[], int n_rows, const int 
     return SCT_OK;
 }
 
-static double objective(void *user, const double x[], const double d[], double df[], double ddf[])
+static void objective(void *user, const double x[], const double d[], double df[], double ddf[])
 {
     const sct_problem *P = user;
-    double f = 0.0;
-    for (int v = 0; v < P->n; v++) f += df[v] = ddf[v] = P->duty->unit_mass[P->st->group_of_var[v]] * exp(x[v] + d[v]);
-    return f;
+    for (int v = 0; v < P->n; v++) df[v] = ddf[v] = P->duty->unit_mass[P->st->group_of_var[v]] * exp(x[v] + d[v]);
 }
 
 /* ---- set-up --------------------------------------------------------------------------------------------------- */

@@ -1,0 +1,209 @@
+/* What the commands share. */
+#define _POSIX_C_SOURCE 200809L
+#include "cli/run.h"
+
+#include <errno.h>
+#include <math.h>
+#include <stdio.h>
+#include <stdlib.h>
+#include <string.h>
+#include <sys/stat.h>
+#include <unistd.h>
+
+#include "cli/exits.h"
+#include "cli/messages.h"
+
+/* The files of a folder of outputs, in the order in which they are written. */
+static const struct { const char *name; sct_format format; } OUTPUTS[] = {
+    {"result.json", SCT_RESULT_JSON},
+    {"schedule.csv", SCT_SCHEDULE_CSV},
+    {"drawing.svg", SCT_DRAWING_SVG},
+    {"model.json", SCT_MODEL_JSON},
+};
+enum { N_OUTPUTS = sizeof OUTPUTS / sizeof OUTPUTS[0] };
+
+int cli_exit_of_status(sct_status status)
+{
+    switch (status) {
+    case SCT_OK: return EXIT_KEPT;
+    case SCT_BAD_INPUT:
+    case SCT_CANNOT_READ: return EXIT_INPUT;
+    case SCT_MECHANISM:
+    case SCT_NOT_ACCURATE: return EXIT_NO_ANALYSIS;
+    case SCT_CANNOT_WRITE: return EXIT_OUTPUT;
+    case SCT_NO_MEMORY:
+    case SCT_TOO_LARGE: return EXIT_RESOURCES;
+    default: return EXIT_SELF_CHECK;
+    }
+}
+
+int cli_exit_of_result(const sct_result *result)
+{
+    if (result->outcome == SCT_STALLED && result->kept) return EXIT_NO_PROOF;
+    return result->kept ? EXIT_KEPT : EXIT_NOT_KEPT;
+}
+
+void cli_put(const char *text)
+{
+    fputs(text, stdout);
+}
+
+static char *path_in(const char *folder, const char *name)
+{
+    const size_t room = strlen(folder) + strlen(name) + 2;
+    char *path = malloc(room);
+    if (path != NULL) snprintf(path, room, "%s/%s", folder, name);
+    return path;
+}
+
+/* The folder is made, and what stands in the way is told, before the long work starts. */
+static int prepare_folder(const cli_run *run)
+{
+    struct stat about;
+    if (mkdir(run->folder, 0777) != 0 && errno != EEXIST) {
+        cli_say("error", "the folder %s cannot be made: %s", run->folder, strerror(errno));
+        return EXIT_OUTPUT;
+    }
+    if (stat(run->folder, &about) != 0 || !S_ISDIR(about.st_mode)) {
+        cli_say("error", "%s is not a folder; -o takes the folder of the outputs", run->folder);
+        return EXIT_OUTPUT;
+    }
+    if (access(run->folder, W_OK | X_OK) != 0) {
+        cli_say("error", "the folder %s cannot be written to: %s", run->folder, strerror(errno));
+        return EXIT_OUTPUT;
+    }
+    for (int k = 0; k < N_OUTPUTS && !run->force; k++) {
+        char *path = path_in(run->folder, OUTPUTS[k].name);
+        if (path == NULL) return EXIT_RESOURCES;
+        const bool exists = lstat(path, &about) == 0;
+        if (exists) cli_say("error", "%s exists already; --force replaces it", path);
+        free(path);
+        if (exists) return EXIT_OUTPUT;
+    }
+    return 0;
+}
+
+int cli_run_open(cli_run *run, const cli_command *command, const char *const given[], const char *path)
+{
+    static const char *const WHEN[] = {"auto", "always", "never", NULL};
+    *run = (cli_run){.command = command, .given = given, .write = sct_write_defaults()};
+    run->quiet = cli_given(command, given, "quiet") != NULL;
+    run->json = cli_given(command, given, "json") != NULL;
+    run->force = cli_given(command, given, "force") != NULL;
+    run->folder = cli_given(command, given, "output");
+    const char *loads = cli_given(command, given, "draw-loads"), *moved = cli_given(command, given, "draw-deflected");
+    if (!cli_word(command, given, "color", WHEN, &run->colour)) return EXIT_USAGE;
+    if (run->folder != NULL && run->folder[0] == '\0') {
+        cli_say("error", "-o needs the name of a folder");
+        return EXIT_USAGE;
+    }
+    if (loads != NULL && moved != NULL && strcmp(loads, moved) != 0) {
+        cli_say("error", "--draw-loads and --draw-deflected name different combinations; a drawing shows one");
+        return EXIT_USAGE;
+    }
+    if ((loads != NULL || moved != NULL) && run->folder == NULL) {
+        cli_say("error", "--draw-loads and --draw-deflected need -o: the drawing goes into that folder");
+        return EXIT_USAGE;
+    }
+    if (strcmp(path, "-") == 0 && isatty(STDIN_FILENO)) {
+        cli_say("error", "standard input is a terminal; pipe a model in, or name a file");
+        return EXIT_USAGE;
+    }
+    run->drawn = loads != NULL ? loads : moved;
+    run->write.draw_loads = loads != NULL;
+    run->write.draw_deflected = moved != NULL;
+    const int fault = run->folder != NULL ? prepare_folder(run) : 0;
+    if (fault != 0) return fault;
+    run->issues = sct_issues_new();
+    if (run->issues == NULL) return EXIT_RESOURCES;
+    return cli_exit_of_status(sct_model_read(path, &run->model, run->issues));
+}
+
+static int find_drawn(cli_run *run)
+{
+    const sct_result *r = run->result;
+    if (run->drawn == NULL) return 0;
+    for (int c = 0; c < r->n_combinations; c++)
+        if (strcmp(r->combinations[c], run->drawn) == 0) {
+            run->write.combination = c;
+            return 0;
+        }
+    const char *near = sct_nearest(r->combinations, r->n_combinations, run->drawn);
+    if (near != NULL) cli_say("error", "no combination \"%s\"; did you mean \"%s\"?", run->drawn, near);
+    else cli_say("error", "no combination \"%s\" in the model", run->drawn);
+    return EXIT_USAGE;
+}
+
+/* The written model is read back and checked: it must carry the design that the other files show. */
+static int self_check(cli_run *run, const char *path)
+{
+    sct_model *model = NULL;
+    sct_result *again = NULL;
+    sct_issues *issues = sct_issues_new();
+    if (issues == NULL) return EXIT_RESOURCES;
+    sct_status status = sct_model_read(path, &model, issues);
+    if (status == SCT_OK) status = sct_check(model, NULL, &again, issues);
+    int code = 0;
+    const sct_result *r = run->result;
+    if (status == SCT_NO_MEMORY) {
+        code = EXIT_RESOURCES;
+    } else if (status != SCT_OK) {
+        cli_say("error", "internal check failed: the written model cannot be checked: %s", sct_status_text(status));
+        cli_issues(issues, true);
+        code = EXIT_SELF_CHECK;
+    } else if (again->kept != r->kept || !(fabs(again->mass - r->mass) <= 1e-9 * r->mass) ||
+               !(fabs(again->utilisation - r->utilisation) <= 1e-9 + 1e-6 * r->utilisation)) {
+        cli_say("error", "internal check failed: the written model gives mass %.9g kg, utilisation %.9g; the result says %.9g kg, %.9g",
+                again->mass, again->utilisation, r->mass, r->utilisation);
+        code = EXIT_SELF_CHECK;
+    }
+    sct_result_free(again);
+    sct_model_free(model);
+    sct_issues_free(issues);
+    return code;
+}
+
+static int write_folder(cli_run *run, bool with_model)
+{
+    for (int k = 0; k < N_OUTPUTS; k++) {
+        if (OUTPUTS[k].format == SCT_MODEL_JSON && !with_model) continue;
+        char *text = NULL, *path = path_in(run->folder, OUTPUTS[k].name);
+        size_t size = 0;
+        sct_status status = path == NULL ? SCT_NO_MEMORY : sct_write(run->result, OUTPUTS[k].format, &run->write, &text, &size);
+        if (status == SCT_OK) status = sct_save(path, text, size, run->force, run->issues);
+        int code = cli_exit_of_status(status);
+        if (code == 0 && OUTPUTS[k].format == SCT_MODEL_JSON) code = self_check(run, path);
+        free(text);
+        free(path);
+        if (code != 0) return code;
+    }
+    return 0;
+}
+
+int cli_run_report(cli_run *run, bool with_model)
+{
+    int code = find_drawn(run);
+    if (code == 0 && run->folder != NULL) code = write_folder(run, with_model);
+    if (code != 0) return code;
+    if (!run->quiet || run->json) {
+        char *text = NULL;
+        sct_write_options options = run->write;
+        options.colour = cli_colours(STDOUT_FILENO, run->colour);
+        const sct_status status = sct_write(run->result, run->json ? SCT_RESULT_JSON : SCT_SUMMARY, &options, &text, NULL);
+        if (status == SCT_OK) cli_put(text);
+        free(text);
+        if (status != SCT_OK) return cli_exit_of_status(status);
+    }
+    return cli_exit_of_result(run->result);
+}
+
+int cli_run_close(cli_run *run, int code)
+{
+    if (run->issues != NULL) cli_issues(run->issues, run->quiet);
+    if (code == EXIT_RESOURCES && (run->issues == NULL || sct_issues_errors(run->issues) == 0))
+        cli_say("error", "%s", sct_status_text(SCT_NO_MEMORY));
+    sct_result_free(run->result);
+    sct_model_free(run->model);
+    sct_issues_free(run->issues);
+    return code;
+}

@@ -1,0 +1,129 @@
+/* scantling size: finds the lightest sizes. */
+#define _POSIX_C_SOURCE 200809L
+#include <math.h>
+#include <signal.h>
+#include <stdio.h>
+#include <time.h>
+#include <unistd.h>
+
+#include "cli/commands.h"
+#include "cli/exits.h"
+#include "cli/messages.h"
+#include "cli/run.h"
+
+/* The first interrupt asks the search to stop and is remembered; a second one ends the program at once. */
+static volatile sig_atomic_t stop_signal;
+
+static void on_signal(int signal_number)
+{
+    if (stop_signal != 0) _exit(128 + signal_number);
+    stop_signal = signal_number;
+}
+
+static void catch_signals(void)
+{
+    struct sigaction action = {.sa_handler = on_signal};
+    sigemptyset(&action.sa_mask);
+    sigaction(SIGINT, &action, NULL);
+    sigaction(SIGTERM, &action, NULL);
+}
+
+typedef enum progress_kind { PROGRESS_AUTO, PROGRESS_ALWAYS, PROGRESS_NEVER, PROGRESS_JSON } progress_kind;
+
+typedef struct teller {
+    progress_kind kind;
+    bool shown;
+    double started, last;
+} teller;
+
+static double now(void)
+{
+    struct timespec t;
+    clock_gettime(CLOCK_MONOTONIC, &t);
+    return (double)t.tv_sec + 1e-9 * (double)t.tv_nsec;
+}
+
+/* Progress on standard error: after half a second, at most five times a second, and not in the way of a pipe. */
+static bool observe(const sct_progress *p, void *user)
+{
+    static const double FIRST = 0.5, BETWEEN = 0.2; /* [s] */
+    teller *t = user;
+    const double time = now();
+    if (t->kind != PROGRESS_NEVER && time - t->started > FIRST && time - t->last > BETWEEN) {
+        t->last = time;
+        if (t->kind == PROGRESS_JSON) {
+            fprintf(stderr, "{\"stage\":\"%s\",\"start\":%d,\"starts\":%d,\"analyses\":%d,\"mass_kg\":%.6g", p->stage,
+                    p->start, p->n_starts, p->analyses, isfinite(p->mass) ? p->mass : 0.0);
+            if (isfinite(p->best)) fprintf(stderr, ",\"best_kg\":%.6g", p->best);
+            fprintf(stderr, "}\n");
+        } else {
+            t->shown = true;
+            fprintf(stderr, "\r%s, start %d of %d, %d analyses", p->stage, p->start, p->n_starts, p->analyses);
+            if (isfinite(p->best)) fprintf(stderr, ", best so far %.0f kg", p->best);
+            fprintf(stderr, "   ");
+        }
+    }
+    return stop_signal == 0;
+}
+
+static int read_settings(const cli_command *command, const char *const given[], sct_settings *settings, teller *t)
+{
+    static const char *const PROGRESS[] = {"auto", "always", "never", "json", NULL};
+    int kind = PROGRESS_AUTO, seed = (int)settings->seed;
+    if (!cli_whole(command, given, "starts", 1, 1000, &settings->starts) ||
+        !cli_whole(command, given, "seed", 0, 1000000000, &seed) ||
+        !cli_whole(command, given, "iterations", 0, 100000, &settings->iterations) ||
+        !cli_number(command, given, "tolerance", &settings->tolerance) ||
+        !cli_word(command, given, "progress", PROGRESS, &kind))
+        return EXIT_USAGE;
+    settings->seed = (unsigned)seed;
+    settings->plain = cli_given(command, given, "plain") != NULL;
+    t->kind = kind == PROGRESS_AUTO && !isatty(STDERR_FILENO) ? PROGRESS_NEVER : (progress_kind)kind;
+    const char *fault = sct_settings_fault(settings);
+    if (fault != NULL) cli_say("error", "%s", fault);
+    return fault != NULL ? EXIT_USAGE : 0;
+}
+
+static int run_size(const cli_command *command, const char *const given[], char *const operands[])
+{
+    sct_settings settings = sct_settings_defaults();
+    teller t = {.started = now()};
+    int code = read_settings(command, given, &settings, &t);
+    if (code != 0) return code;
+    catch_signals();
+    settings.observer = observe;
+    settings.user = &t;
+    cli_run run;
+    code = cli_run_open(&run, command, given, operands[0]);
+    if (code == 0) code = cli_exit_of_status(sct_size(run.model, &settings, &run.result, run.issues));
+    if (t.shown) fprintf(stderr, "\r%60s\r", "");
+    if (code == 0) code = cli_run_report(&run, true);
+    if (stop_signal != 0 && (code == EXIT_KEPT || code == EXIT_NOT_KEPT || code == EXIT_NO_PROOF)) {
+        cli_say("note", "interrupted: what is shown is the best found so far");
+        code = 128 + (int)stop_signal;
+    }
+    return cli_run_close(&run, code);
+}
+
+const cli_command CLI_SIZE = {
+    .name = "size",
+    .operands = "MODEL",
+    .n_operands = 1,
+    .purpose = "Finds the lightest sizes of all groups of MODEL that keep every limit in every combination.",
+    .examples = "  scantling size models/demo_roof.json -o build/demo\n"
+                "  scantling size --json models/benchmarks/truss_10bar_case1.json | jq .mass_kg",
+    .more = "MODEL is a model file, or - for standard input. With -o: result.json, schedule.csv, drawing.svg, and\n"
+            "model.json with the sizes put in, which is read back and checked before the run ends.\n"
+            "Exit code: 0 every limit kept, 1 no feasible design, 2 command line, 3 input, 4 cannot be analysed,\n"
+            "5 the search ended before it was done, 6 output, 7 out of memory or too large, 70 internal check,\n"
+            "130 interrupted (the best so far is written; a second interrupt writes nothing more).",
+    .n_options = CLI_N_OUTPUT_OPTIONS + 6,
+    .options = {CLI_OUTPUT_OPTIONS,
+                {0, "starts", "N", "starts of the search (default: 8, fewer for large models)"},
+                {0, "seed", "N", "of the random starts (default 1)"},
+                {0, "iterations", "N", "of each start at most (default 100; 0: check the start design)"},
+                {0, "tolerance", "T", "on optimality and limits (default 1e-6)"},
+                {0, "plain", NULL, "the published method in raw areas, for comparison"},
+                {0, "progress", "WHEN", "auto, always, never, or json: one object a line"}},
+    .run = run_size,
+};
