@@ -5,6 +5,33 @@
 
 static const double PI = 3.14159265358979323846;
 
+static double effective_length(const sct_member *m, int axis, double L)
+{
+    switch (m->source[axis]) {
+    case SCT_LENGTH_FACTOR: return m->length[axis] * L;
+    case SCT_LENGTH_RESTRAINT: return m->length[axis];
+    default: return L;
+    }
+}
+
+sct_bar_rule sct_bar_rule_of(const sct_model *model, int member, double L)
+{
+    const sct_member *m = &model->members[member];
+    const sct_group *g = &model->groups[m->group];
+    const sct_material *material = &model->materials[g->material];
+    return (sct_bar_rule){
+        .E = material->E,
+        .yield = material->yield,
+        .f_t = g->allowable[0],
+        .f_c = g->allowable[1],
+        .buckling = g->buckling,
+        .safety = g->safety,
+        .Lcr = {effective_length(m, SCT_IN_PLANE, L), effective_length(m, SCT_OUT_OF_PLANE, L)},
+        .slenderness_any = g->slenderness_any,
+        .slenderness_compression = g->slenderness_compression,
+    };
+}
+
 sct_column sct_column_strength(sct_buckling buckling, double E, double yield, double lambda)
 {
     if (buckling == SCT_BUCKLING_NONE) return (sct_column){.sigma = INFINITY};

@@ -28,6 +28,9 @@ typedef struct sct_bar_rule {
     double slenderness_any, slenderness_compression; /* INFINITY: no limit */
 } sct_bar_rule;
 
+/** The rule data of a member whose joints are L [m] apart: its group's and material's numbers, its effective lengths. */
+sct_bar_rule sct_bar_rule_of(const sct_model *model, int member, double L);
+
 /* The critical stress and its first and second derivative in logarithms: s = ln sigma_cr as a function of
  * l = ln lambda. */
 typedef struct sct_column {

@@ -9,28 +9,6 @@
 
 static const double NO_FORCE = 1e-9; /* of the largest force in the structure: rounding, not load */
 
-static sct_bar_rule rule_of(const sct_structure *st, int bar)
-{
-    const sct_model *model = st->model;
-    const sct_member *m = &model->members[bar];
-    const sct_group *g = &model->groups[m->group];
-    sct_bar_rule rule = {
-        .E = st->bars[bar].E,
-        .yield = model->materials[g->material].yield,
-        .f_t = g->allowable[0],
-        .f_c = g->allowable[1],
-        .buckling = g->buckling,
-        .safety = g->safety,
-        .slenderness_any = g->slenderness_any,
-        .slenderness_compression = g->slenderness_compression,
-    };
-    for (int axis = 0; axis < 2; axis++) {
-        const double L = st->bars[bar].L, given = m->length[axis];
-        rule.Lcr[axis] = m->source[axis] == SCT_LENGTH_SYSTEM ? L : m->source[axis] == SCT_LENGTH_FACTOR ? given * L : given;
-    }
-    return rule;
-}
-
 static void list_rows(const sct_model *model, sct_deflection_row *rows, int *n)
 {
     *n = 0;
@@ -70,7 +48,7 @@ static sct_status fill(sct_duty *duty, sct_engine engine)
         return SCT_NO_MEMORY;
     list_rows(model, duty->rows, &duty->n_rows);
     for (int bar = 0; bar < st->n_bars; bar++) {
-        duty->rules[bar] = rule_of(st, bar);
+        duty->rules[bar] = sct_bar_rule_of(model, bar, st->bars[bar].L);
         duty->length[st->bars[bar].group] += st->bars[bar].L;
         duty->unit_mass[st->bars[bar].group] += st->bars[bar].L * st->bars[bar].density;
     }
