@@ -3,16 +3,23 @@
 #define SCT_ANALYSIS_ACCURACY_H
 
 #include "analysis/solver.h"
+#include "base/text.h"
 
-/* Relative errors above which a result is warned about and refused (evidence: measured on random models, DEVELOPERS.md). */
+/* Relative errors above which a result is warned about and refused (evidence: measured on random models,
+ * DEVELOPERS.md). */
 static const double SCT_ERROR_WARN = 1e-6, SCT_ERROR_REFUSE = 1e-3;
 
 /**
- * Refines the response in place (two steps) and tells how much it moved.
+ * Refines the response in place (two steps, up to five where the model is badly scaled) and tells how much the last one
+ * moved it.
  *
- * SCT_OK: *accuracy is set; issues gain a warning above SCT_ERROR_WARN. SCT_NOT_ACCURATE: above SCT_ERROR_REFUSE, or the
- * refinement does not contract, or an imbalance above 1e-9 remains: issues name the stiffest and the softest member; no
- * number of the response may be shown. SCT_NO_MEMORY.
+ * SCT_OK: *accuracy is set; issues gain a warning above SCT_ERROR_WARN. SCT_NOT_ACCURATE: above SCT_ERROR_REFUSE, or
+ * the refinement does not contract, or an imbalance above 1e-9 remains: issues name the stiffest and the softest
+ * member; no number of the response may be shown. SCT_NO_MEMORY.
  */
 sct_status sct_accuracy_refine(sct_solver *solver, sct_response *response, sct_accuracy *accuracy, sct_issues *issues);
+
+/** Adds words on the stiffest and the softest member (E A / L), for messages about lost accuracy; returns the index of
+ * the stiffest. */
+int sct_stiffness_words(const sct_structure *st, const double A[], sct_text *text);
 #endif

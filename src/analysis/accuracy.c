@@ -1,0 +1,298 @@
+/* How far an analysis can be trusted: iterative refinement with residuals summed bar by bar in long double.
+ *
+ * The matrix never enters: a residual is load minus bar forces, and a bar force comes from the displacements of its
+ * ends. So rounding in the assembly is repaired as well, and where it cannot be, the steps do not shrink.
+ * Displacements are kept in long double while they are refined: then a healthy second step is at least a hundred times
+ * smaller than the first, however badly scaled the model is, and its size is an estimate of what is left that errs on
+ * the safe side. (Wilkinson; Higham, Accuracy and Stability of Numerical Algorithms, chapter 12.) */
+#include "analysis/accuracy.h"
+
+#include <float.h>
+#include <math.h>
+#include <stdlib.h>
+#include <string.h>
+
+#include "analysis/motion.h"
+
+_Static_assert(LDBL_MANT_DIG >= 64, "residuals need a long double that is wider than double");
+
+enum { MOST_STEPS = 5 }; /* two always; more while they win digits and two have left an error above ENOUGH */
+
+static const double BALANCE = 1e-9;      /* largest imbalance of a joint / largest force there; good solves: 1e-15 */
+static const double CONTRACTION = 0.5;   /* a step must be this much smaller than the one before ... */
+static const double AT_ROUNDING = 1e-13; /* ... unless it is below this already */
+static const double ENOUGH = 1e-10;      /* a step of this size is the last */
+/* Small displacements and forces are measured against this part of the largest of their case: what is zero by symmetry
+ * has no relative error. */
+static const double SMALL_PART = 1e-3;
+
+typedef struct refinement {
+    const sct_structure *st;
+    const double *A;
+    size_t n, n_bars, n_cases, n_joints;
+    double *weight; /* n: own weight, unit factor */
+    long double *u; /* n_cases x n */
+    long double *r; /* n: residual of one case */
+    double *d;      /* n_cases x n: one step */
+    double *N, *dN; /* n_bars: forces of one case, and what a step adds to them */
+    double *force;  /* n_joints: largest force at each joint */
+} refinement;
+
+static void refinement_free(refinement *w)
+{
+    free(w->weight);
+    free(w->u);
+    free(w->r);
+    free(w->d);
+    free(w->N);
+    free(w->dN);
+    free(w->force);
+}
+
+static bool refinement_allocate(refinement *w)
+{
+    w->weight = malloc((w->n + 1) * sizeof *w->weight);
+    w->u = malloc((w->n_cases * w->n + 1) * sizeof *w->u);
+    w->r = malloc((w->n + 1) * sizeof *w->r);
+    w->d = malloc((w->n_cases * w->n + 1) * sizeof *w->d);
+    w->N = malloc((w->n_bars + 1) * sizeof *w->N);
+    w->dN = malloc((w->n_bars + 1) * sizeof *w->dN);
+    w->force = malloc((w->n_joints + 1) * sizeof *w->force);
+    return w->weight != NULL && w->u != NULL && w->r != NULL && w->d != NULL && w->N != NULL && w->dN != NULL &&
+           w->force != NULL;
+}
+
+static long double axial_stiffness(const refinement *w, const sct_bar *bar)
+{
+    return (long double)bar->E * w->A[bar->group] / bar->L;
+}
+
+static double stretch(const refinement *w, size_t k, size_t e)
+{
+    return w->st->stretch[k * w->n_bars + e];
+}
+
+/* Force of bar e in case k for the displacements at hand. */
+static long double bar_force(const refinement *w, size_t k, size_t e)
+{
+    const sct_bar *bar = &w->st->bars[e];
+    long double elongation = stretch(w, k, e);
+    for (int i = 0; i < bar->n_dof; i++) elongation += w->u[k * w->n + (size_t)bar->dof[i]] * bar->b[i];
+    return axial_stiffness(w, bar) * elongation;
+}
+
+/* r = load of case k, to be reduced by bar forces. */
+static void start_with_load(refinement *w, size_t k)
+{
+    const long double factor = w->st->model->cases[k].self_weight;
+    for (size_t i = 0; i < w->n; i++) w->r[i] = w->st->f[k * w->n + i] + factor * w->weight[i];
+}
+
+static void subtract_force(refinement *w, const sct_bar *bar, long double N)
+{
+    for (int i = 0; i < bar->n_dof; i++) w->r[bar->dof[i]] -= N * bar->b[i];
+}
+
+static double largest(size_t n, const double a[])
+{
+    double most = 0.0;
+    for (size_t i = 0; i < n; i++) most = fmax(most, fabs(a[i]));
+    return most;
+}
+
+/* |change| relative to |value|, or to a part of the case's largest when the value is smaller; NAN stays NAN. */
+static double relative(double change, double value, double scale)
+{
+    const double of = fmax(fabs(value), SMALL_PART * scale);
+    return change == 0.0 ? 0.0 : fabs(change) / of;
+}
+
+/* fmax that keeps a NAN. */
+static double worse(double a, double b)
+{
+    return a > b || isnan(a) ? a : b;
+}
+
+static double joint_size(const sct_structure *st, size_t joint, const long double u[])
+{
+    long double sum = 0.0L;
+    for (int i = 0; i < st->n_free[joint]; i++) sum += u[st->first_dof[joint] + i] * u[st->first_dof[joint] + i];
+    return (double)sqrtl(sum);
+}
+
+static double joint_step(const sct_structure *st, size_t joint, const double d[])
+{
+    double sum = 0.0;
+    for (int i = 0; i < st->n_free[joint]; i++) sum = hypot(sum, d[st->first_dof[joint] + i]);
+    return sum;
+}
+
+/* Size of the latest step in case k, relative to displacements and forces. Prescribed elongations count as sizes too:
+ * heat may strain a truss that hardly moves, or move one without force. */
+static double step_size(refinement *w, size_t k)
+{
+    const double *d = w->d + k * w->n;
+    const long double *u = w->u + k * w->n;
+    double u_scale = 0.0, N_scale = 0.0, size = 0.0;
+    for (size_t e = 0; e < w->n_bars; e++) {
+        const sct_bar *bar = &w->st->bars[e];
+        const long double stiffness = axial_stiffness(w, bar);
+        long double added = 0.0L;
+        for (int i = 0; i < bar->n_dof; i++) added += (long double)d[bar->dof[i]] * bar->b[i];
+        w->dN[e] = (double)(stiffness * added);
+        w->N[e] = (double)bar_force(w, k, e);
+        u_scale = fmax(u_scale, fabs(stretch(w, k, e)));
+        N_scale = fmax(N_scale, fabs((double)stiffness * stretch(w, k, e)));
+    }
+    N_scale = fmax(N_scale, largest(w->n_bars, w->N));
+    for (size_t j = 0; j < w->n_joints; j++) u_scale = fmax(u_scale, joint_size(w->st, j, u));
+    for (size_t j = 0; j < w->n_joints; j++) {
+        size = worse(relative(joint_step(w->st, j, d), joint_size(w->st, j, u), u_scale), size);
+    }
+    for (size_t e = 0; e < w->n_bars; e++) size = worse(relative(w->dN[e], w->N[e], N_scale), size);
+    return size;
+}
+
+/* One step for all cases: u += K^-1 (load - bar forces). Returns its size. */
+static double refine(refinement *w, sct_solver *solver)
+{
+    for (size_t k = 0; k < w->n_cases; k++) {
+        start_with_load(w, k);
+        for (size_t e = 0; e < w->n_bars; e++) subtract_force(w, &w->st->bars[e], bar_force(w, k, e));
+        for (size_t i = 0; i < w->n; i++) w->d[k * w->n + i] = (double)w->r[i];
+    }
+    sct_solver_solve(solver, (int)w->n_cases, w->d);
+    double size = 0.0;
+    for (size_t k = 0; k < w->n_cases; k++) {
+        for (size_t i = 0; i < w->n; i++) w->u[k * w->n + i] += w->d[k * w->n + i];
+        size = worse(step_size(w, k), size);
+    }
+    return size;
+}
+
+/* Largest force that acts at each joint in case k: load, bar forces N, forces of prescribed elongations. */
+static void find_joint_forces(refinement *w, size_t k, const double N[])
+{
+    const sct_structure *st = w->st;
+    start_with_load(w, k);
+    for (size_t j = 0; j < w->n_joints; j++) w->force[j] = joint_size(st, j, w->r);
+    for (size_t e = 0; e < w->n_bars; e++) {
+        const sct_bar *bar = &st->bars[e];
+        const double held = fabs((double)axial_stiffness(w, bar) * stretch(w, k, e));
+        const double force = fmax(fabs(N[e]), held);
+        w->force[bar->from] = fmax(w->force[bar->from], force);
+        w->force[bar->to] = fmax(w->force[bar->to], force);
+    }
+}
+
+/* Largest imbalance of a joint / largest force there, from the forces that are reported. */
+static double imbalance(refinement *w, size_t k, const double N[])
+{
+    find_joint_forces(w, k, N);
+    const double scale = largest(w->n_joints, w->force);
+    double worst = 0.0;
+    start_with_load(w, k);
+    for (size_t e = 0; e < w->n_bars; e++) subtract_force(w, &w->st->bars[e], N[e]);
+    for (size_t j = 0; j < w->n_joints; j++) {
+        worst = worse(relative(joint_size(w->st, j, w->r), w->force[j], scale), worst);
+    }
+    return worst;
+}
+
+int sct_stiffness_words(const sct_structure *st, const double A[], sct_text *text)
+{
+    int stiffest = 0, softest = 0;
+    double most = -1.0, least = INFINITY;
+    for (int e = 0; e < st->n_bars; e++) {
+        const double k = st->bars[e].E * A[st->bars[e].group] / st->bars[e].L;
+        if (k > most) {
+            most = k;
+            stiffest = e;
+        }
+        if (k < least) {
+            least = k;
+            softest = e;
+        }
+    }
+    sct_text_add(text, "member ");
+    sct_motion_name(text, st->model->members[stiffest].name);
+    sct_text_format(text, " is %.1e times as stiff (E A / L) as member ", most / least);
+    sct_motion_name(text, st->model->members[softest].name);
+    const bool unlike = most / least > 1e4; /* below, members alone do not cost half of the digits */
+    sct_text_add(text, unlike ? "; make them more alike" : ", which is not much: the shape itself is almost movable");
+    return stiffest;
+}
+
+/* Says that the numbers are good to `error` only; SCT_NO_MEMORY or `status`. */
+static sct_status tell(const refinement *w, const char *what, double figure, sct_status status, sct_issues *issues)
+{
+    sct_text text = {0};
+    sct_text_format(&text, what, figure);
+    const int stiffest = sct_stiffness_words(w->st, w->A, &text);
+    const sct_severity severity = status == SCT_OK ? SCT_WARNING : SCT_ERROR;
+    return sct_motion_tell(&text, severity, w->st->model->members[stiffest].where, issues) ? status : SCT_NO_MEMORY;
+}
+
+/* Refines until the steps are small or stop shrinking: *contracts tells whether the second one was smaller enough than
+ * the first. Returns the size of the last. */
+static double refine_fully(refinement *w, sct_solver *solver, bool *contracts)
+{
+    double before = refine(w, solver), last = refine(w, solver);
+    *contracts = last <= CONTRACTION * before || last <= AT_ROUNDING;
+    for (int s = 2; s < MOST_STEPS && last > ENOUGH && last <= CONTRACTION * before; s++) {
+        before = last;
+        last = refine(w, solver);
+    }
+    return last;
+}
+
+static sct_status judge(const refinement *w, bool contracts, const sct_accuracy *accuracy, sct_issues *issues)
+{
+    if (!(accuracy->error <= SCT_ERROR_REFUSE)) {
+        return tell(w, "the answer cannot be trusted: its relative error is about %.0e; ", accuracy->error,
+                    SCT_NOT_ACCURATE, issues);
+    }
+    if (!contracts) {
+        return tell(w, "the answer cannot be trusted: its corrections do not shrink (the last is %.0e of it); ",
+                    accuracy->error, SCT_NOT_ACCURATE, issues);
+    }
+    if (!(accuracy->equilibrium <= BALANCE)) {
+        return tell(w, "the answer cannot be trusted: a joint is out of balance by %.0e of the forces there; ",
+                    accuracy->equilibrium, SCT_NOT_ACCURATE, issues);
+    }
+    if (accuracy->error > SCT_ERROR_WARN) {
+        return tell(w, "the relative error of displacements and forces may be as large as %.0e; ", accuracy->error,
+                    SCT_OK, issues);
+    }
+    return SCT_OK;
+}
+
+sct_status sct_accuracy_refine(sct_solver *solver, sct_response *response, sct_accuracy *accuracy, sct_issues *issues)
+{
+    const sct_structure *st = sct_solver_structure(solver);
+    refinement w = {
+        .st = st,
+        .A = sct_solver_areas(solver),
+        .n = (size_t)st->n_dof,
+        .n_bars = (size_t)st->n_bars,
+        .n_cases = (size_t)st->n_cases,
+        .n_joints = (size_t)st->n_joints,
+    };
+    if (!refinement_allocate(&w)) {
+        refinement_free(&w);
+        return SCT_NO_MEMORY;
+    }
+    sct_structure_weight(st, w.A, w.weight);
+    for (size_t i = 0; i < w.n_cases * w.n; i++) w.u[i] = response->u[i];
+    bool contracts;
+    *accuracy = (sct_accuracy){.error = refine_fully(&w, solver, &contracts)};
+    for (size_t i = 0; i < w.n_cases * w.n; i++) response->u[i] = (double)w.u[i];
+    for (size_t k = 0; k < w.n_cases; k++) {
+        double *N = response->N + k * w.n_bars;
+        for (size_t e = 0; e < w.n_bars; e++) N[e] = (double)bar_force(&w, k, e);
+        accuracy->equilibrium = worse(imbalance(&w, k, N), accuracy->equilibrium);
+    }
+    const sct_status status = judge(&w, contracts, accuracy, issues);
+    refinement_free(&w);
+    return status;
+}

@@ -1,0 +1,492 @@
+/* Ways in which a structure can move without resistance: what geometry shows, then what the stiffness hides.
+ *
+ * The stiffness is scaled to a unit diagonal by powers of two (exact), shifted a little so that a factor exists,
+ * and its smallest eigenvectors are found by block inverse iteration. How stiff a vector is, is measured on the bars
+ * themselves: the sum of (E A / L) (b'v)^2 has no cancellation, so a mechanism shows 1e-30 where the matrix shows
+ * rounding. The stretch of the bars tells a mechanism from a soft structure. */
+#include "analysis/mechanism.h"
+
+#include <float.h>
+#include <math.h>
+#include <stdlib.h>
+#include <string.h>
+
+#include "analysis/connectivity.h"
+#include "analysis/motion.h"
+#include "analysis/accuracy.h"
+#include "base/random.h"
+
+enum { BLOCK = 6, ITERATIONS = 6 };
+
+/* On the scaled matrix, the smallest first: with 1e-14 slender trusses keep their modes apart, with 1e-10 a factor
+ * always exists. */
+static const double SHIFTS[] = {1e-14, 1e-12, 1e-10};
+static const double NO_STRETCH = 1e-8; /* largest stretch of a bar / largest displacement: below, a mechanism */
+/* Scaled stiffness of a mode below which it is lost in the rounding of the matrix. Above, accuracy.c judges by results.
+ */
+static const double TOO_SOFT = DBL_EPSILON / 2.0;
+static const double SHOWN = 0.05; /* joints that move at least this part of the largest displacement are named */
+
+typedef struct search {
+    const sct_structure *st;
+    const double *A;
+    const sct_pattern *pattern;
+    sct_issues *issues;
+    int n, q;              /* unknowns, vectors */
+    bool *ground;          /* n: unknowns held because geometry has told their motion */
+    double held;           /* [N/m] stiffness that holds them */
+    double *values;        /* of the pattern */
+    double *s;             /* n: scale, powers of two */
+    double *X;             /* n x q, column-major: orthonormal, in scaled unknowns */
+    double *size;          /* n_joints: displacement of each joint in one motion */
+    struct moving *moving; /* n_joints: the joints of one motion, largest first */
+    int n_told;
+} search;
+
+typedef struct moving {
+    int joint;
+    long key; /* size in millionths of the largest: equal sizes stay equal, whatever the rounding */
+} moving;
+
+static void search_free(search *f)
+{
+    free(f->ground);
+    free(f->values);
+    free(f->s);
+    free(f->X);
+    free(f->size);
+    free(f->moving);
+}
+
+static bool search_allocate(search *f)
+{
+    const size_t n = (size_t)f->n, n_joints = (size_t)f->st->n_joints;
+    f->ground = calloc(n + 1, sizeof *f->ground);
+    f->values = calloc((size_t)f->pattern->column[f->n] + 1, sizeof *f->values);
+    f->s = malloc((n + 1) * sizeof *f->s);
+    f->X = malloc((n * BLOCK + 1) * sizeof *f->X);
+    f->size = malloc((n_joints + 1) * sizeof *f->size);
+    f->moving = malloc((n_joints + 1) * sizeof *f->moving);
+    return f->ground != NULL && f->values != NULL && f->s != NULL && f->X != NULL && f->size != NULL &&
+           f->moving != NULL;
+}
+
+static double bar_stiffness(const search *f, const sct_bar *bar)
+{
+    return bar->E * f->A[bar->group] / bar->L;
+}
+
+/* ---- the scaled matrix ------------------------------------------------------------------------------------------ */
+
+/* Place of entry (i, j) in the pattern. */
+static int entry(const sct_pattern *pattern, int i, int j)
+{
+    const int row = i < j ? i : j, column = i < j ? j : i;
+    int low = pattern->column[column], high = pattern->column[column + 1] - 1;
+    while (low < high) {
+        const int middle = low + (high - low) / 2;
+        if (pattern->row[middle] < row) {
+            low = middle + 1;
+        } else {
+            high = middle;
+        }
+    }
+    return low;
+}
+
+static int diagonal(const sct_pattern *pattern, int i)
+{
+    return pattern->column[i + 1] - 1; /* rows ascend and end at the diagonal */
+}
+
+static void assemble(search *f)
+{
+    for (int e = 0; e < f->st->n_bars; e++) {
+        const sct_bar *bar = &f->st->bars[e];
+        const double k = bar_stiffness(f, bar);
+        for (int a = 0; a < bar->n_dof; a++) {
+            for (int b = 0; b <= a; b++) {
+                const double product = k * bar->b[a] * bar->b[b];
+                if (product != 0.0) f->values[entry(f->pattern, bar->dof[a], bar->dof[b])] += product;
+            }
+        }
+    }
+    for (int i = 0; i < f->n; i++) f->held = fmax(f->held, f->values[diagonal(f->pattern, i)]);
+    if (!(f->held > 0.0)) f->held = 1.0;
+    for (int i = 0; i < f->n; i++) {
+        if (f->ground[i]) f->values[diagonal(f->pattern, i)] += f->held;
+    }
+}
+
+/* Scales to a diagonal within [0.5, 2]. Returns the first unknown without stiffness, -1: none. */
+static int scale(search *f)
+{
+    for (int i = 0; i < f->n; i++) {
+        const double K_ii = f->values[diagonal(f->pattern, i)];
+        if (!(K_ii > 0.0)) return i;
+        f->s[i] = ldexp(1.0, -(int)lround(0.5 * log2(K_ii)));
+    }
+    for (int j = 0; j < f->n; j++) {
+        for (int p = f->pattern->column[j]; p < f->pattern->column[j + 1]; p++) {
+            f->values[p] *= f->s[f->pattern->row[p]];
+            f->values[p] *= f->s[j];
+        }
+    }
+    return -1;
+}
+
+/* ---- the smallest eigenvectors ---------------------------------------------------------------------------------- */
+
+static double dot(int n, const double a[], const double b[])
+{
+    double sum = 0.0;
+    for (int i = 0; i < n; i++) sum += a[i] * b[i];
+    return sum;
+}
+
+/* Modified Gram-Schmidt, twice. */
+static void orthonormalise(int n, int q, double X[])
+{
+    for (int c = 0; c < q; c++) {
+        double *x = X + (size_t)c * (size_t)n;
+        for (int k = 0; k < 2 * c; k++) {
+            const double *other = X + (size_t)(k % c) * (size_t)n;
+            const double part = dot(n, other, x);
+            for (int i = 0; i < n; i++) x[i] -= part * other[i];
+        }
+        const double length = sqrt(dot(n, x, x));
+        for (int i = 0; i < n; i++) x[i] = length > 0.0 ? x[i] / length : 0.0;
+    }
+}
+
+static double stretch(const search *f, const sct_bar *bar, const double x[])
+{
+    double sum = 0.0;
+    for (int i = 0; i < bar->n_dof; i++) sum += bar->b[i] * f->s[bar->dof[i]] * x[bar->dof[i]];
+    return sum;
+}
+
+/* G (q x q) = X' S (K + held) S X, summed bar by bar. */
+static void energies(const search *f, const double X[], int q, double G[BLOCK][BLOCK])
+{
+    memset(G, 0, sizeof(double[BLOCK][BLOCK]));
+    for (int e = 0; e < f->st->n_bars; e++) {
+        const sct_bar *bar = &f->st->bars[e];
+        const double k = bar_stiffness(f, bar);
+        double elongation[BLOCK];
+        for (int a = 0; a < q; a++) elongation[a] = stretch(f, bar, X + (size_t)a * (size_t)f->n);
+        for (int a = 0; a < q; a++) {
+            for (int b = 0; b < q; b++) G[a][b] += k * elongation[a] * elongation[b];
+        }
+    }
+    for (int i = 0; i < f->n; i++) {
+        if (!f->ground[i]) continue;
+        for (int a = 0; a < q; a++) {
+            for (int b = 0; b < q; b++) {
+                G[a][b] += f->held * f->s[i] * f->s[i] * X[(size_t)a * (size_t)f->n + (size_t)i] *
+                           X[(size_t)b * (size_t)f->n + (size_t)i];
+            }
+        }
+    }
+}
+
+/* Cyclic Jacobi: makes G diagonal by rotations, which are applied to the columns of X as well. */
+static void rotate_to_ritz(int n, int q, double G[BLOCK][BLOCK], double X[])
+{
+    for (int sweep = 0; sweep < 12; sweep++) {
+        for (int a = 0; a < q; a++) {
+            for (int b = a + 1; b < q; b++) {
+                if (!(fabs(G[a][b]) > DBL_EPSILON * sqrt(fabs(G[a][a] * G[b][b])))) continue;
+                const double theta = (G[b][b] - G[a][a]) / (2.0 * G[a][b]);
+                const double t = (theta < 0.0 ? -1.0 : 1.0) / (fabs(theta) + hypot(1.0, theta));
+                const double c = 1.0 / hypot(1.0, t), s = c * t;
+                for (int i = 0; i < q; i++) {
+                    const double ia = G[i][a], ib = G[i][b];
+                    G[i][a] = c * ia - s * ib;
+                    G[i][b] = s * ia + c * ib;
+                }
+                for (int i = 0; i < q; i++) {
+                    const double ai = G[a][i], bi = G[b][i];
+                    G[a][i] = c * ai - s * bi;
+                    G[b][i] = s * ai + c * bi;
+                }
+                double *xa = X + (size_t)a * (size_t)n, *xb = X + (size_t)b * (size_t)n;
+                for (int i = 0; i < n; i++) {
+                    const double va = xa[i], vb = xb[i];
+                    xa[i] = c * va - s * vb;
+                    xb[i] = s * va + c * vb;
+                }
+            }
+        }
+    }
+}
+
+static void iterate(search *f, sct_factor *factor)
+{
+    sct_random random = {1};
+    for (int i = 0; i < f->n * f->q; i++) f->X[i] = sct_random_unit(&random) - 0.5;
+    for (int k = 0; k < ITERATIONS; k++) {
+        sct_factor_solve(factor, f->q, f->X);
+        orthonormalise(f->n, f->q, f->X);
+    }
+}
+
+/* The q smallest eigenvectors of the scaled matrix, into X. *definite: it has a factor without shift too.
+ * SCT_NOT_CONVEX: no factor even with the largest shift: a value is not finite. */
+static sct_status inverse_iteration(search *f, bool *definite)
+{
+    sct_status status;
+    sct_factor *factor = sct_factor_new(f->pattern, SCT_ENGINE_AUTO, &status);
+    if (factor == NULL) return status;
+    status = sct_factor_update(factor, f->values, NULL);
+    *definite = status == SCT_OK;
+    if (status == SCT_OK) status = SCT_NOT_CONVEX;
+    double before = 0.0;
+    for (size_t k = 0; k < sizeof SHIFTS / sizeof SHIFTS[0] && status == SCT_NOT_CONVEX; k++) {
+        for (int i = 0; i < f->n; i++) f->values[diagonal(f->pattern, i)] += SHIFTS[k] - before;
+        before = SHIFTS[k];
+        status = sct_factor_update(factor, f->values, NULL);
+    }
+    if (status == SCT_OK) iterate(f, factor);
+    sct_factor_free(factor);
+    return status;
+}
+
+/* ---- motions in words ------------------------------------------------------------------------------------------- */
+
+static void joint_motion(const search *f, const double v[], int joint, double d[3])
+{
+    sct_joint_displacement(f->st, v, NULL, joint, d);
+}
+
+static int larger_first(const void *left, const void *right)
+{
+    const moving *a = left, *b = right;
+    if (a->key != b->key) return a->key < b->key ? 1 : -1;
+    return (a->joint > b->joint) - (a->joint < b->joint);
+}
+
+/* Lists the joints that move in v, largest first; returns how many. */
+static int list_moving(search *f, const double v[])
+{
+    double largest = 0.0;
+    int n = 0;
+    for (int j = 0; j < f->st->n_joints; j++) {
+        double d[3];
+        joint_motion(f, v, j, d);
+        f->size[j] = sqrt(dot(3, d, d));
+        largest = fmax(largest, f->size[j]);
+    }
+    for (int j = 0; j < f->st->n_joints; j++) {
+        if (!(f->size[j] >= SHOWN * largest) || largest <= 0.0) continue;
+        f->moving[n++] = (moving){.joint = j, .key = lround(1e6 * f->size[j] / largest)};
+    }
+    qsort(f->moving, (size_t)n, sizeof *f->moving, larger_first);
+    return n;
+}
+
+/* Do all n listed joints move along one line? */
+static bool moves_in_one_direction(const search *f, const double v[], int n)
+{
+    double first[3];
+    joint_motion(f, v, f->moving[0].joint, first);
+    for (int i = 1; i < n; i++) {
+        const int j = f->moving[i].joint;
+        double d[3];
+        joint_motion(f, v, j, d);
+        const double along = fabs(dot(3, d, first)) / (f->size[j] * f->size[f->moving[0].joint]);
+        if (along < 1.0 - 1e-9) return false; /* cosine: an angle of 4e-5 */
+    }
+    return true;
+}
+
+/* +1 or -1: the sense in which the first joint listed moves along its first component. */
+static double sense(const search *f, const double v[])
+{
+    double d[3];
+    joint_motion(f, v, f->moving[0].joint, d);
+    for (int i = 0; i < 3; i++) {
+        if (fabs(d[i]) > 1e-6 * f->size[f->moving[0].joint]) return d[i] < 0.0 ? -1.0 : 1.0;
+    }
+    return 1.0;
+}
+
+/* `joints "A", "B" and 3 more can move together in y` for the motion v; returns the first joint named. */
+static int describe(search *f, const double v[], sct_text *text)
+{
+    const int n = list_moving(f, v), shown = n < 10 ? n : 10;
+    const bool one_direction = moves_in_one_direction(f, v, n);
+    const double sign = sense(f, v);
+    double d[3];
+    sct_text_add(text, n == 1 ? "joint " : "joints ");
+    for (int i = 0; i < shown; i++) {
+        if (i > 0) sct_text_add(text, i == n - 1 ? " and " : ", ");
+        sct_motion_name(text, f->st->model->joints[f->moving[i].joint].name);
+        if (one_direction) continue;
+        joint_motion(f, v, f->moving[i].joint, d);
+        for (int c = 0; c < 3; c++) d[c] *= sign;
+        sct_text_add(text, " in ");
+        sct_motion_direction(text, f->st->dim, d, true);
+    }
+    if (n > shown) sct_text_format(text, " and %d more", n - shown);
+    sct_text_add(text, n == 1 ? " can move" : " can move together");
+    if (one_direction) {
+        joint_motion(f, v, f->moving[0].joint, d);
+        sct_text_add(text, " in ");
+        sct_motion_direction(text, f->st->dim, d, false);
+    }
+    return f->moving[0].joint;
+}
+
+static sct_status tell_mechanism(search *f, const double v[])
+{
+    sct_text text = {0};
+    const int joint = describe(f, v, &text);
+    sct_text_add(&text, list_moving(f, v) == 1 ? ": nothing holds it there; add a member or a support"
+                                               : ": no member resists this; add a member (a diagonal) or a support");
+    f->n_told++;
+    return sct_motion_tell(&text, SCT_ERROR, f->st->model->joints[joint].where, f->issues) ? SCT_MECHANISM
+                                                                                           : SCT_NO_MEMORY;
+}
+
+/* An unknown that no bar gives any stiffness (a bar area so small that it vanishes, say). */
+static sct_status tell_no_stiffness(search *f, int dof)
+{
+    memset(f->X, 0, (size_t)f->n * sizeof *f->X);
+    f->X[dof] = 1.0;
+    return tell_mechanism(f, f->X);
+}
+
+static sct_status tell_too_soft(search *f, const double v[], double stiffness)
+{
+    sct_text text = {0};
+    const int joint = describe(f, v, &text);
+    sct_text_format(&text, " almost without resistance (%.1g of the stiffness of a joint): no answer can be trusted; ",
+                    stiffness);
+    sct_stiffness_words(f->st, f->A, &text);
+    return sct_motion_tell(&text, SCT_ERROR, f->st->model->joints[joint].where, f->issues) ? SCT_NOT_ACCURATE
+                                                                                           : SCT_NO_MEMORY;
+}
+
+/* ---- the verdict ------------------------------------------------------------------------------------------------- */
+
+/* Gauss-Jordan with full pivoting over m vectors of n entries: the same motions, each as local as it can be, so that
+ * independent mechanisms are told apart. */
+static void localise(int n, int m, double V[])
+{
+    for (int done = 0; done < m; done++) {
+        double best = 0.0;
+        int r = done, c = 0;
+        for (int k = done; k < m; k++) {
+            for (int i = 0; i < n; i++) {
+                const double value = fabs(V[(size_t)k * (size_t)n + (size_t)i]);
+                if (!(value > best * (1.0 + 1e-9))) continue; /* ties: the first unknown */
+                best = value;
+                r = k;
+                c = i;
+            }
+        }
+        if (!(best > 0.0)) return;
+        double *top = V + (size_t)done * (size_t)n, *pivot = V + (size_t)r * (size_t)n;
+        for (int i = 0; i < n; i++) {
+            const double swap = top[i];
+            top[i] = pivot[i];
+            pivot[i] = swap;
+        }
+        const double scale_by = 1.0 / top[c];
+        for (int i = 0; i < n; i++) top[i] *= scale_by;
+        for (int k = 0; k < m; k++) {
+            double *v = V + (size_t)k * (size_t)n;
+            const double factor = v[c];
+            if (k == done) continue;
+            for (int i = 0; i < n; i++) v[i] -= factor * top[i];
+        }
+    }
+}
+
+/* Largest stretch of a bar over largest displacement of a joint, of a vector in scaled unknowns. */
+static double relative_stretch(const search *f, const double x[], double v[])
+{
+    double most = 0.0, largest = 0.0;
+    for (int e = 0; e < f->st->n_bars; e++) most = fmax(most, fabs(stretch(f, &f->st->bars[e], x)));
+    for (int i = 0; i < f->n; i++) v[i] = f->s[i] * x[i];
+    for (int j = 0; j < f->st->n_joints; j++) {
+        double d[3];
+        joint_motion(f, v, j, d);
+        largest = fmax(largest, sqrt(dot(3, d, d)));
+    }
+    return largest > 0.0 ? most / largest : 1.0;
+}
+
+/* Judges the q vectors of X: moves the mechanisms to the front (in unknowns) and tells them; else the softest mode,
+ * when it is too soft or the matrix has no factor. */
+static sct_status judge(search *f, bool definite, double v[])
+{
+    double G[BLOCK][BLOCK];
+    energies(f, f->X, f->q, G);
+    rotate_to_ritz(f->n, f->q, G, f->X);
+    const double null_limit = fmax((double)f->n * DBL_EPSILON, TOO_SOFT);
+    double softest = definite ? TOO_SOFT : INFINITY;
+    int n_free = 0, soft = -1;
+    bool is_mechanism[BLOCK] = {false};
+    for (int k = 0; k < f->q; k++) {
+        double quotient[BLOCK][BLOCK];
+        const double *x = f->X + (size_t)k * (size_t)f->n;
+        energies(f, x, 1, quotient);
+        is_mechanism[k] = quotient[0][0] <= null_limit && relative_stretch(f, x, v) <= NO_STRETCH;
+        if (is_mechanism[k] || !(quotient[0][0] <= softest)) continue;
+        softest = quotient[0][0];
+        soft = k;
+    }
+    if (soft >= 0) relative_stretch(f, f->X + (size_t)soft * (size_t)f->n, v); /* kept in v: X is overwritten now */
+    for (int k = 0; k < f->q; k++) {
+        double *to = f->X + (size_t)n_free * (size_t)f->n;
+        if (!is_mechanism[k]) continue;
+        for (int i = 0; i < f->n; i++) to[i] = f->s[i] * f->X[(size_t)k * (size_t)f->n + (size_t)i];
+        n_free++;
+    }
+    localise(f->n, n_free, f->X);
+    sct_status status = SCT_OK;
+    for (int k = 0; k < n_free && f->n_told < SCT_MOTIONS_TOLD && status != SCT_NO_MEMORY; k++) {
+        status = tell_mechanism(f, f->X + (size_t)k * (size_t)f->n);
+    }
+    if (n_free == 0 && soft >= 0) return tell_too_soft(f, v, softest);
+    return n_free > 0 && status == SCT_OK ? SCT_MECHANISM : status;
+}
+
+static sct_status search_stiffness(search *f)
+{
+    assemble(f);
+    const int bare = scale(f);
+    if (bare >= 0) return tell_no_stiffness(f, bare);
+    bool definite = false;
+    const sct_status status = inverse_iteration(f, &definite);
+    if (status == SCT_NOT_CONVEX) {
+        sct_text text = {0};
+        sct_text_add(&text, "the stiffness of the structure cannot be formed in numbers; ");
+        sct_stiffness_words(f->st, f->A, &text);
+        return sct_motion_tell(&text, SCT_ERROR, (sct_where){.file = f->st->model->file}, f->issues) ? SCT_NOT_ACCURATE
+                                                                                                     : SCT_NO_MEMORY;
+    }
+    if (status != SCT_OK) return status;
+    double *v = malloc((size_t)f->n * sizeof *v);
+    if (v == NULL) return SCT_NO_MEMORY;
+    const sct_status verdict = judge(f, definite, v);
+    free(v);
+    return verdict;
+}
+
+sct_status sct_mechanism_find(sct_solver *solver, const double A[], sct_issues *issues)
+{
+    search f = {.st = sct_solver_structure(solver), .A = A, .issues = issues};
+    int n_found = 0;
+    f.n = f.st->n_dof;
+    f.q = f.n < BLOCK ? f.n : BLOCK;
+    sct_solver_stiffness(solver, &f.pattern);
+    sct_status status =
+        search_allocate(&f) ? sct_connectivity_check(f.st, f.ground, &n_found, &f.n_told, issues) : SCT_NO_MEMORY;
+    if (status == SCT_OK && f.n > 0) status = search_stiffness(&f);
+    search_free(&f);
+    if (n_found > 0 && (status == SCT_OK || status == SCT_NOT_ACCURATE)) return SCT_MECHANISM;
+    return status;
+}
