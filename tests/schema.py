@@ -118,6 +118,12 @@ def example_faults(node, path=""):
             yield from example_faults(inner, f"{path}/{key}")
 
 
+def shipped_families():
+    """The families that come with the program: the schema offers them as examples."""
+    first_lines = (path.read_text().splitlines()[0] for path in sorted((MODELS / "sections").glob("*.csv")))
+    return [line.removeprefix("# family:").strip() for line in first_lines]
+
+
 def reader_fault(program, model, pointer):
     run = subprocess.run([program, "check", "-"], input=json.dumps(model), capture_output=True, text=True, timeout=60)
     if run.returncode == 3 and f": error: {pointer}: " in run.stderr:
@@ -130,6 +136,8 @@ def main():
     Draft202012Validator.check_schema(SCHEMA)
     validator = Draft202012Validator(SCHEMA)
     faults = [*schema_faults(SCHEMA), *example_faults(SCHEMA)]
+    if SCHEMA["$defs"]["group"]["properties"]["family"]["examples"] != shipped_families():
+        faults.append(f"group/family: the examples are not the shipped families {shipped_families()}")
     models = sorted(path for path in MODELS.rglob("*.json") if path.name != "model.schema.json")
     for path in models:
         for pointer in sorted(pointers(validator, json.loads(path.read_text()))):
