@@ -230,6 +230,7 @@ typedef struct sct_member_result {
     double utilisation;      /* largest value/limit */
     double N_max, N_min;     /* [N] over all combinations */
     int N_max_in, N_min_in;  /* their combinations */
+    bool compressed;         /* in compression in some combination in which strength is checked */
 } sct_member_result;
 
 typedef struct sct_joint_result {

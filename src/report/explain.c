@@ -126,27 +126,14 @@ static void combination_block(sheet *s, int c, int index)
     if (n == 0) sct_text_add(s->out, "  nothing to check\n");
 }
 
-static bool is_compressed(const sheet *s, int index)
-{
-    static const double NO_FORCE = 1e-9;
-    for (int c = 0; c < s->r->n_combinations; c++) {
-        const double *N = s->r->N + (size_t)c * (size_t)s->r->n_members;
-        double largest = 0.0;
-        for (int k = 0; k < s->r->n_members; k++) largest = fmax(largest, fabs(N[k]));
-        if (s->model->combinations[c].basis == SCT_ALLOWABLE && N[index] < -NO_FORCE * largest) return true;
-    }
-    return false;
-}
-
-static void slenderness_block(sheet *s, int index)
+static void slenderness_block(sheet *s)
 {
     int axis;
-    const bool compressed = is_compressed(s, index);
-    const sct_bar_check c = sct_bar_slenderness(&s->rule, s->i, compressed, &axis);
+    const sct_bar_check c = sct_bar_slenderness(&s->rule, s->i, s->m->compressed, &axis);
     if (c.kind == SCT_CHECK_NONE) return;
     sct_text_format(s->out, "\nSlenderness, all combinations\n  Lcr/i %s = %.5g/%.5g = %.4g; at most %.5g (%s)", AXIS[axis],
                     s->m->Lcr[axis] / s->in.length, s->i[axis] / s->in.length, c.value, c.limit,
-                    compressed ? "in compression in some combination" : "never in compression");
+                    s->m->compressed ? "in compression in some combination" : "never in compression");
     verdict(s, c.utilisation);
 }
 
@@ -173,7 +160,7 @@ sct_status sct_explain(const sct_result *result, const char *member, char **text
                sct_bar_rule_of(result->model, index, m->L), {sqrt(g->I[0] / g->A), sqrt(g->I[1] / g->A)}};
     head(&s, index);
     for (int c = 0; c < result->n_combinations; c++) combination_block(&s, c, index);
-    slenderness_block(&s, index);
+    slenderness_block(&s);
     sct_text_format(&out, "\nGoverning: %s", sct_check_text(m->check));
     if (m->combination >= 0) {
         sct_text_add(&out, " in ");

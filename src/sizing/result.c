@@ -126,6 +126,7 @@ static void fill_member(sct_result *r, const sct_duty *duty, const sct_design *d
         .mass = b->density * design->A[b->group] * b->L,
         .combination = -1,
         .N_max = -INFINITY, .N_min = INFINITY,
+        .compressed = sct_duty_is_compressed(duty, bar),
     };
     for (int c = 0; c < r->n_combinations; c++) {
         const double N = r->N[(size_t)c * (size_t)r->n_members + (size_t)bar];
@@ -139,7 +140,7 @@ static void fill_member(sct_result *r, const sct_duty *duty, const sct_design *d
         const int n = sct_bar_checks(rule, N, design->A[b->group], i, checks);
         for (int j = 0; j < n; j++) consider(m, &checks[j], c, N);
     }
-    const sct_bar_check slender = sct_bar_slenderness(rule, i, sct_duty_is_compressed(duty, bar), NULL);
+    const sct_bar_check slender = sct_bar_slenderness(rule, i, m->compressed, NULL);
     consider(m, &slender, -1, m->N);
     sct_group_result *g = &r->groups[b->group];
     g->n_members++;
