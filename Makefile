@@ -20,7 +20,7 @@ LIB_OBJ  := $(LIB_SRC:%.c=$(BUILD)/%.o) $(BUILD)/families.o
 CLI_OBJ  := $(CLI_SRC:%.c=$(BUILD)/%.o)
 TESTS    := $(patsubst tests/%.c,$(BUILD)/tests/%,$(sort $(wildcard tests/test_*.c)))
 
-.PHONY: all demo test test-full sanitize format clean packages test-packages
+.PHONY: all demo test test-full sanitize sanitized format clean packages test-packages
 all: $(BUILD)/scantling $(BUILD)/libscantling.a $(BUILD)/libscantling.so
 
 $(BUILD)/scantling: $(CLI_OBJ) $(BUILD)/libscantling.a
@@ -43,6 +43,44 @@ $(BUILD)/families.o: $(GEN)
 $(BUILD)/tests/%: tests/%.c $(BUILD)/libscantling.a
 	@mkdir -p $(@D)
 	$(CC) $(CPPFLAGS) $(CFLAGS) -MMD -MP -Itests -o $@ $< $(BUILD)/libscantling.a $(LDFLAGS) -lcheck -lsubunit -lrt -lpthread -llapack -lblas $(LDLIBS)
+
+# ---- packages: what is missing is installed by demo and test, never by plain make -------------------------------------
+BUILD_PACKAGES = gcc libc6-dev libcjson-dev libsuitesparse-dev
+TEST_PACKAGES  = $(BUILD_PACKAGES) check liblapack-dev libblas-dev python3-jsonschema
+PROBE       = printf '\#include <cJSON.h>\n\#include <cholmod.h>\nint main(void){cholmod_common c;return cholmod_start(&c)+(cJSON_Version()==0);}\n' | $(CC) $(CPPFLAGS) -x c - -o /dev/null $(LDLIBS)
+TEST_PROBE  = printf '\#include <check.h>\nvoid dposv_(void);int main(void){dposv_();return check_minor_version;}\n' | $(CC) -x c - -o /dev/null -lcheck -lsubunit -lrt -lpthread -llapack -lblas -lm && python3 -c 'import jsonschema'
+
+packages:
+	@( $(PROBE) ) >/dev/null 2>&1 || sh .ci/packages $(BUILD_PACKAGES)
+test-packages:
+	@( $(PROBE) && $(TEST_PROBE) ) >/dev/null 2>&1 || sh .ci/packages $(TEST_PACKAGES)
+
+# ---- what people run ---------------------------------------------------------------------------------------------------
+demo: packages
+	@$(MAKE) --no-print-directory -s all
+	@$(BUILD)/scantling size models/demo_roof.json -o $(BUILD)/demo --force
+	@echo
+	@echo "Written into $(BUILD)/demo. Open drawing.svg in a browser, schedule.csv in a spreadsheet; result.json holds all"
+	@echo "numbers, model.json the sized model. One member worked out: $(BUILD)/scantling explain $(BUILD)/demo/model.json --member T4"
+
+test: test-packages
+	@$(MAKE) --no-print-directory -s all $(TESTS)
+	@BUILD=$(BUILD) sh tests/run.sh $(TESTS)
+
+# Slow and random tests as well.
+test-full: test-packages
+	@$(MAKE) --no-print-directory -s all $(TESTS)
+	@BUILD=$(BUILD) SCT_TEST_FULL=1 CK_DEFAULT_TIMEOUT=600 sh tests/run.sh $(TESTS)
+
+# The whole suite under address, undefined-behaviour and float checks; the first report ends a run.
+sanitize: test-packages
+	@$(MAKE) --no-print-directory -s BUILD=$(BUILD)/sanitize OPT="-O1 -g" \
+	  SAN="-fsanitize=address,undefined,float-cast-overflow,float-divide-by-zero -fno-sanitize-recover=all -fno-omit-frame-pointer" sanitized
+sanitized: all $(TESTS)
+	@BUILD=$(BUILD) CK_DEFAULT_TIMEOUT=120 sh tests/run.sh $(TESTS)
+
+format:
+	clang-format -i $(wildcard src/*/*.[ch] tests/*.[ch] examples/*.c include/*.h)
 
 clean:
 	rm -rf $(BUILD)
