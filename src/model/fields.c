@@ -217,6 +217,19 @@ bool sct_fields_word(sct_fields *f, const sct_node *node, const char *what, cons
     return false;
 }
 
+/* What to say of a name that is not known. The nearest known one is looked for only where it will be shown. */
+static const char *unknown_name(const sct_fields *f, const char *what, const sct_names *names, const char *name,
+                                char *message, size_t room)
+{
+    if (sct_fields_enough(f)) return "unknown name";
+    const char *near = sct_names_nearest(names, name);
+    if (near != NULL)
+        snprintf(message, room, "no %s \"%s\"; did you mean \"%s\"?", what, sct_show(name).text, sct_show(near).text);
+    else
+        snprintf(message, room, "no %s \"%s\"; expected the name of a %s in this file", what, sct_show(name).text, what);
+    return message;
+}
+
 bool sct_fields_reference(sct_fields *f, const sct_node *node, const char *what, const sct_names *names, int *index)
 {
     if (node == NULL) return false;
@@ -227,12 +240,18 @@ bool sct_fields_reference(sct_fields *f, const sct_node *node, const char *what,
     }
     *index = sct_names_find(names, name);
     if (*index >= 0) return true;
-    const char *near = sct_fields_enough(f) ? NULL : sct_names_nearest(names, name);
-    if (near != NULL)
-        sct_fields_error(f, node, "no %s \"%s\"; did you mean \"%s\"?", what, sct_show(name).text, sct_show(near).text);
-    else
-        sct_fields_error(f, node, "no %s \"%s\"; expected the name of a %s in this file", what, sct_show(name).text,
-                         what);
+    char message[640];
+    sct_fields_error(f, node, "%s", unknown_name(f, what, names, name, message, sizeof message));
+    return false;
+}
+
+bool sct_fields_key_reference(sct_fields *f, const sct_node *entry, const char *what, const sct_names *names, int *index)
+{
+    const char *name = sct_node_key(entry);
+    *index = sct_names_find(names, name);
+    if (*index >= 0) return true;
+    char message[640];
+    sct_fields_key_error(f, entry, "%s", unknown_name(f, what, names, name, message, sizeof message));
     return false;
 }
 
@@ -286,7 +305,7 @@ static const sct_unit *unit_meant(const sct_range *range, double value)
 {
     const sct_unit *unit;
     for (int i = 0; (unit = sct_unit_of(quantity_of(range->slot), i)) != NULL; i++) {
-        const double x = sct_unit_to_SI(unit, value);
+        const double x = sct_unit_to_SI(unit, range->least < 0 ? fabs(value) : value);
         if (x >= range->usual_least && x <= range->usual_most) return unit;
     }
     return NULL;

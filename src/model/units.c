@@ -5,7 +5,7 @@
 #include <stdio.h>
 #include <string.h>
 
-#include "base/names.h"
+#include "scantling.h"
 #include "base/number.h"
 #include "base/text.h"
 
