@@ -38,7 +38,7 @@ START_TEST(a_utilisation_is_rounded_up_and_never_to_a_pass)
 }
 END_TEST
 
-static const char *shown(double value, sct_shown quantity, bool us_customary)
+static const char *shown(double value, sct_display quantity, bool us_customary)
 {
     static sct_text text;
     sct_text_free(&text);

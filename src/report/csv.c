@@ -34,7 +34,7 @@ static void add_text(sct_text *out, const char *raw)
     if (is_quoted) sct_text_add(out, "\"");
 }
 
-static void add_shown(sct_text *out, const record *rec, double value, sct_shown quantity)
+static void add_shown(sct_text *out, const record *rec, double value, sct_display quantity)
 {
     sct_text_shown(out, value, quantity, rec->r->us_customary);
 }
@@ -149,7 +149,7 @@ static void field_utilisation(sct_text *out, const record *rec)
 
 static const struct {
     const char *head;
-    sct_shown unit;
+    sct_display unit;
     write_field *write;
 } COLUMNS[] = {
     {"record", SCT_SHOWN_COUNT, field_record},

@@ -23,12 +23,12 @@ static const struct {
 enum { MOST_DECIMALS = 12 };
 static const double ROUND_OFF = 1e-9; /* of a hundredth: 0.07 * 100 is 7.000000000000001 and still 0.07 */
 
-static unit_shown unit_of(sct_shown quantity, bool us_customary)
+static unit_shown unit_of(sct_display quantity, bool us_customary)
 {
     return us_customary ? SHOWN[quantity].us : SHOWN[quantity].metric;
 }
 
-const char *sct_shown_unit(sct_shown quantity, bool us_customary)
+const char *sct_shown_unit(sct_display quantity, bool us_customary)
 {
     return unit_of(quantity, us_customary).name;
 }
@@ -41,7 +41,7 @@ static bool add_special(sct_text *text, double value)
     return true;
 }
 
-void sct_text_shown(sct_text *text, double value, sct_shown quantity, bool us_customary)
+void sct_text_shown(sct_text *text, double value, sct_display quantity, bool us_customary)
 {
     if (add_special(text, value)) return;
     const unit_shown unit = unit_of(quantity, us_customary);

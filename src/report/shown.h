@@ -17,15 +17,15 @@
     X(SCT_SHOWN_UNIT_MASS, "kg/m", 1, 2, "lb/ft", 1.4881639435695538, 2, 3)
 
 #define SCT_SHOWN_NAME(name, ...) name,
-typedef enum sct_shown { SCT_SHOWN_LIST(SCT_SHOWN_NAME) SCT_SHOWN_COUNT } sct_shown;
+typedef enum sct_display { SCT_SHOWN_LIST(SCT_SHOWN_NAME) SCT_SHOWN_COUNT } sct_display;
 #undef SCT_SHOWN_NAME
 
 /** "kN" or "kip", ... */
-const char *sct_shown_unit(sct_shown quantity, bool us_customary);
+const char *sct_shown_unit(sct_display quantity, bool us_customary);
 
 /** A value in SI, in the unit shown, with its digits and without the unit. Nothing is written for NAN; infinities are
  * "inf". A rounded zero has no sign. */
-void sct_text_shown(sct_text *text, double value, sct_shown quantity, bool us_customary);
+void sct_text_shown(sct_text *text, double value, sct_display quantity, bool us_customary);
 
 /** A utilisation with 2 decimals, rounded up: above 1 by any amount it shows at least 1.01, so that no failure reads as
  * a pass. NAN as above. */

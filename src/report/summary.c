@@ -42,14 +42,14 @@ static void combination_cell(const page *p, sct_table *t, int combination)
     name_cell(t, combination >= 0 ? p->r->combinations[combination] : "");
 }
 
-static void shown_cell(const page *p, sct_table *t, double value, sct_shown quantity)
+static void shown_cell(const page *p, sct_table *t, double value, sct_display quantity)
 {
     sct_text_shown(&t->cells, value, quantity, p->us);
     sct_table_cell(t);
 }
 
 /* Forces carry their sign, + too; a rounded zero has none. */
-static void signed_cell(const page *p, sct_table *t, double value, sct_shown quantity)
+static void signed_cell(const page *p, sct_table *t, double value, sct_display quantity)
 {
     sct_text shown = {0};
     sct_text_shown(&shown, value, quantity, p->us);
@@ -68,7 +68,7 @@ static void utilisation_cell(sct_table *t, double utilisation)
     sct_table_cell(t);
 }
 
-static void unit_head(const page *p, sct_table *t, const char *words, sct_shown quantity)
+static void unit_head(const page *p, sct_table *t, const char *words, sct_display quantity)
 {
     sct_text_format(&t->cells, "%s%s%s", words, *words != '\0' ? " " : "", sct_shown_unit(quantity, p->us));
     sct_table_cell(t);
