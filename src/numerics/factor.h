@@ -1,7 +1,7 @@
 /**
  * Factorization of one symmetric positive definite sparse pattern with many values: symbolic work once, then
  * values -> factor -> solve without allocation. Two engines behind one interface, same answers:
- *   small   fixed-pattern LDL' of our own, up to about 250 unknowns
+ *   small   fixed-pattern LDL' of our own: plane trusses up to some thousand unknowns, space trusses up to some hundred
  *   sparse  SuiteSparse CHOLMOD (numerics/sparse.c is its door)
  */
 #ifndef SCT_NUMERICS_FACTOR_H
@@ -18,7 +18,8 @@ typedef struct sct_pattern {
 
 typedef struct sct_factor sct_factor;
 
-/** Ordering and symbolic factorization; everything later calls need. `engine` SCT_ENGINE_AUTO chooses by n.
+/** Ordering and symbolic factorization; everything later calls need. `engine` SCT_ENGINE_AUTO chooses by
+ * the work of one factorization.
  * *status: SCT_OK, SCT_NO_MEMORY or SCT_TOO_LARGE. */
 sct_factor *sct_factor_new(const sct_pattern *pattern, sct_engine engine, sct_status *status);
 void sct_factor_free(sct_factor *factor);

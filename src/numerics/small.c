@@ -8,11 +8,6 @@
 
 #include "numerics/order.h"
 
-#if defined(__GNUC__) && !defined(__clang__)
-#define UNROLL _Pragma("GCC unroll 4")
-#else
-#define UNROLL
-#endif
 #define INLINE static inline __attribute__((always_inline)) /* so that widths are constants inside */
 
 enum { WIDEST = 3, AT_ONCE = 4 }; /* columns of a panel: the unknowns of a joint; right-hand sides of one sweep */
@@ -274,18 +269,15 @@ void sct_small_free(sct_small *s)
 /* The triangle D = L d L' in place. Returns the column with a bad pivot, or -1. */
 INLINE int factor_triangle(const int w, double *restrict D, double *restrict inverse)
 {
-    UNROLL for (int c = 0; c < w; c++)
-    {
+    for (int c = 0; c < w; c++) {
         double *row = D + c * (c + 1) / 2, y[WIDEST];
         double d = row[c];
-        UNROLL for (int e = 0; e < c; e++)
-        {
+        for (int e = 0; e < c; e++) {
             const double *l = D + e * (e + 1) / 2;
             y[e] = row[e];
-            UNROLL for (int g = 0; g < e; g++) y[e] -= y[g] * l[g];
+            for (int g = 0; g < e; g++) y[e] -= y[g] * l[g];
         }
-        UNROLL for (int e = 0; e < c; e++)
-        {
+        for (int e = 0; e < c; e++) {
             row[e] = y[e] * inverse[e];
             d -= y[e] * row[e];
         }
@@ -300,13 +292,12 @@ INLINE void factor_rectangle(const int w, int m, const double *restrict D, const
                              double *restrict l, double *restrict t)
 {
     for (int p = 0; p < m; p++, l += w, t += w) {
-        UNROLL for (int c = 0; c < w; c++)
-        {
+        for (int c = 0; c < w; c++) {
             double y = l[c];
-            UNROLL for (int e = 0; e < c; e++) y -= t[e] * D[c * (c + 1) / 2 + e];
+            for (int e = 0; e < c; e++) y -= t[e] * D[c * (c + 1) / 2 + e];
             t[c] = y;
         }
-        UNROLL for (int c = 0; c < w; c++) l[c] = t[c] * inverse[c];
+        for (int c = 0; c < w; c++) l[c] = t[c] * inverse[c];
     }
 }
 
@@ -317,7 +308,7 @@ INLINE void update_targets(const int w, int m, const double *restrict l, const d
     for (int q = 0; q < m; q++, t += w, l += w) {
         for (int p = 0; p < m - q; p++) {
             double sum = t[0] * l[p * w];
-            UNROLL for (int c = 1; c < w; c++) sum += t[c] * l[p * w + c];
+            for (int c = 1; c < w; c++) sum += t[c] * l[p * w + c];
             x[target[p]] -= sum;
         }
         target += m - q;
@@ -358,24 +349,20 @@ INLINE void forward_panel(const int w, const int R, const panel *p, const double
 {
     const double *D = x + p->diagonal, *l = x + p->rectangle;
     double *y = b + p->first * R;
-    UNROLL for (int c = 1; c < w; c++)
-    {
-        UNROLL for (int e = 0; e < c; e++)
-        {
-            UNROLL for (int r = 0; r < R; r++) y[c * R + r] -= D[c * (c + 1) / 2 + e] * y[e * R + r];
+    for (int c = 1; c < w; c++) {
+        for (int e = 0; e < c; e++) {
+            for (int r = 0; r < R; r++) y[c * R + r] -= D[c * (c + 1) / 2 + e] * y[e * R + r];
         }
     }
     double v[WIDEST * AT_ONCE];
-    UNROLL for (int c = 0; c < w; c++)
-    {
-        UNROLL for (int r = 0; r < R; r++) v[c * R + r] = y[c * R + r];
+    for (int c = 0; c < w; c++) {
+        for (int r = 0; r < R; r++) v[c * R + r] = y[c * R + r];
     }
     for (int k = 0; k < p->m; k++, l += w) {
         double *z = b + p->row[k] * R;
-        UNROLL for (int r = 0; r < R; r++)
-        {
+        for (int r = 0; r < R; r++) {
             double sum = l[0] * v[r];
-            UNROLL for (int c = 1; c < w; c++) sum += l[c] * v[c * R + r];
+            for (int c = 1; c < w; c++) sum += l[c] * v[c * R + r];
             z[r] -= sum;
         }
     }
@@ -388,24 +375,20 @@ INLINE void backward_panel(const int w, const int R, const panel *p, const doubl
     const double *D = x + p->diagonal, *l = x + p->rectangle;
     double *y = b + p->first * R;
     double v[WIDEST * AT_ONCE];
-    UNROLL for (int c = 0; c < w; c++)
-    {
-        UNROLL for (int r = 0; r < R; r++) v[c * R + r] = y[c * R + r] * inverse[p->first + c];
+    for (int c = 0; c < w; c++) {
+        for (int r = 0; r < R; r++) v[c * R + r] = y[c * R + r] * inverse[p->first + c];
     }
     for (int k = 0; k < p->m; k++, l += w) {
         const double *z = b + p->row[k] * R;
-        UNROLL for (int c = 0; c < w; c++)
-        {
-            UNROLL for (int r = 0; r < R; r++) v[c * R + r] -= l[c] * z[r];
+        for (int c = 0; c < w; c++) {
+            for (int r = 0; r < R; r++) v[c * R + r] -= l[c] * z[r];
         }
     }
-    UNROLL for (int c = w - 1; c >= 0; c--)
-    {
-        UNROLL for (int e = c + 1; e < w; e++)
-        {
-            UNROLL for (int r = 0; r < R; r++) v[c * R + r] -= D[e * (e + 1) / 2 + c] * v[e * R + r];
+    for (int c = w - 1; c >= 0; c--) {
+        for (int e = c + 1; e < w; e++) {
+            for (int r = 0; r < R; r++) v[c * R + r] -= D[e * (e + 1) / 2 + c] * v[e * R + r];
         }
-        UNROLL for (int r = 0; r < R; r++) y[c * R + r] = v[c * R + r];
+        for (int r = 0; r < R; r++) y[c * R + r] = v[c * R + r];
     }
 }
 
