@@ -3,8 +3,9 @@
  * The matrix never enters: a residual is load minus bar forces, and a bar force comes from the displacements of its
  * ends. So rounding in the assembly is repaired as well, and where it cannot be, the steps do not shrink.
  * Displacements are kept in long double while they are refined: then a healthy second step is at least a hundred times
- * smaller than the first, however badly scaled the model is, and its size is an estimate of what is left that errs on
- * the safe side. (Wilkinson; Higham, Accuracy and Stability of Numerical Algorithms, chapter 12.) */
+ * smaller than the first, however badly scaled the model is, and its size is an estimate of what is left that
+ * errs on the safe side. (Wilkinson; Higham, Accuracy
+ * and Stability of Numerical Algorithms, chapter 12.) */
 #include "analysis/accuracy.h"
 
 #include <float.h>
@@ -44,7 +45,6 @@ static void refinement_free(refinement *w)
     free(w->u);
     free(w->r);
     free(w->d);
-    free(w->N);
     free(w->dN);
     free(w->force);
 }
@@ -55,11 +55,9 @@ static bool refinement_allocate(refinement *w)
     w->u = malloc((w->n_cases * w->n + 1) * sizeof *w->u);
     w->r = malloc((w->n + 1) * sizeof *w->r);
     w->d = malloc((w->n_cases * w->n + 1) * sizeof *w->d);
-    w->N = malloc((w->n_bars + 1) * sizeof *w->N);
     w->dN = malloc((w->n_bars + 1) * sizeof *w->dN);
     w->force = malloc((w->n_joints + 1) * sizeof *w->force);
-    return w->weight != NULL && w->u != NULL && w->r != NULL && w->d != NULL && w->N != NULL && w->dN != NULL &&
-           w->force != NULL;
+    return w->weight != NULL && w->u != NULL && w->r != NULL && w->d != NULL && w->dN != NULL && w->force != NULL;
 }
 
 static long double axial_stiffness(const refinement *w, const sct_bar *bar)
@@ -127,12 +125,14 @@ static double joint_step(const sct_structure *st, size_t joint, const double d[]
     return sum;
 }
 
-/* Size of the latest step in case k, relative to displacements and forces. Prescribed elongations count as sizes too:
- * heat may strain a truss that hardly moves, or move one without force. */
-static double step_size(refinement *w, size_t k)
+/* Adds the step at hand to the displacements and forces of case k and returns its size, relative to them. The step's
+ * forces are added to those before it: that keeps the balance of joints which forces from the new displacements lose,
+ * where a stiff member hardly stretches. Prescribed elongations count as sizes too: heat may strain a truss that hardly
+ * moves, or move one without force. */
+static double add_step(refinement *w, size_t k, double N[])
 {
     const double *d = w->d + k * w->n;
-    const long double *u = w->u + k * w->n;
+    long double *u = w->u + k * w->n;
     double u_scale = 0.0, N_scale = 0.0, size = 0.0;
     for (size_t e = 0; e < w->n_bars; e++) {
         const sct_bar *bar = &w->st->bars[e];
@@ -140,21 +140,22 @@ static double step_size(refinement *w, size_t k)
         long double added = 0.0L;
         for (int i = 0; i < bar->n_dof; i++) added += (long double)d[bar->dof[i]] * bar->b[i];
         w->dN[e] = (double)(stiffness * added);
-        w->N[e] = (double)bar_force(w, k, e);
+        N[e] = (double)(bar_force(w, k, e) + stiffness * added);
         u_scale = fmax(u_scale, fabs(stretch(w, k, e)));
         N_scale = fmax(N_scale, fabs((double)stiffness * stretch(w, k, e)));
     }
-    N_scale = fmax(N_scale, largest(w->n_bars, w->N));
+    for (size_t i = 0; i < w->n; i++) u[i] += d[i];
+    N_scale = fmax(N_scale, largest(w->n_bars, N));
     for (size_t j = 0; j < w->n_joints; j++) u_scale = fmax(u_scale, joint_size(w->st, j, u));
     for (size_t j = 0; j < w->n_joints; j++) {
         size = worse(relative(joint_step(w->st, j, d), joint_size(w->st, j, u), u_scale), size);
     }
-    for (size_t e = 0; e < w->n_bars; e++) size = worse(relative(w->dN[e], w->N[e], N_scale), size);
+    for (size_t e = 0; e < w->n_bars; e++) size = worse(relative(w->dN[e], N[e], N_scale), size);
     return size;
 }
 
-/* One step for all cases: u += K^-1 (load - bar forces). Returns its size. */
-static double refine(refinement *w, sct_solver *solver)
+/* One step for all cases: u += K^-1 (load - bar forces), and the forces N (n_cases x n_bars). Returns its size. */
+static double refine(refinement *w, sct_solver *solver, double N[])
 {
     for (size_t k = 0; k < w->n_cases; k++) {
         start_with_load(w, k);
@@ -163,10 +164,7 @@ static double refine(refinement *w, sct_solver *solver)
     }
     sct_solver_solve(solver, (int)w->n_cases, w->d);
     double size = 0.0;
-    for (size_t k = 0; k < w->n_cases; k++) {
-        for (size_t i = 0; i < w->n; i++) w->u[k * w->n + i] += w->d[k * w->n + i];
-        size = worse(step_size(w, k), size);
-    }
+    for (size_t k = 0; k < w->n_cases; k++) size = worse(add_step(w, k, N + k * w->n_bars), size);
     return size;
 }
 
@@ -235,13 +233,13 @@ static sct_status tell(const refinement *w, const char *what, double figure, sct
 
 /* Refines until the steps are small or stop shrinking: *contracts tells whether the second one was smaller enough than
  * the first. Returns the size of the last. */
-static double refine_fully(refinement *w, sct_solver *solver, bool *contracts)
+static double refine_fully(refinement *w, sct_solver *solver, double N[], bool *contracts)
 {
-    double before = refine(w, solver), last = refine(w, solver);
+    double before = refine(w, solver, N), last = refine(w, solver, N);
     *contracts = last <= CONTRACTION * before || last <= AT_ROUNDING;
     for (int s = 2; s < MOST_STEPS && last > ENOUGH && last <= CONTRACTION * before; s++) {
         before = last;
-        last = refine(w, solver);
+        last = refine(w, solver, N);
     }
     return last;
 }
@@ -285,12 +283,10 @@ sct_status sct_accuracy_refine(sct_solver *solver, sct_response *response, sct_a
     sct_structure_weight(st, w.A, w.weight);
     for (size_t i = 0; i < w.n_cases * w.n; i++) w.u[i] = response->u[i];
     bool contracts;
-    *accuracy = (sct_accuracy){.error = refine_fully(&w, solver, &contracts)};
+    *accuracy = (sct_accuracy){.error = refine_fully(&w, solver, response->N, &contracts)};
     for (size_t i = 0; i < w.n_cases * w.n; i++) response->u[i] = (double)w.u[i];
     for (size_t k = 0; k < w.n_cases; k++) {
-        double *N = response->N + k * w.n_bars;
-        for (size_t e = 0; e < w.n_bars; e++) N[e] = (double)bar_force(&w, k, e);
-        accuracy->equilibrium = worse(imbalance(&w, k, N), accuracy->equilibrium);
+        accuracy->equilibrium = worse(imbalance(&w, k, response->N + k * w.n_bars), accuracy->equilibrium);
     }
     const sct_status status = judge(&w, contracts, accuracy, issues);
     refinement_free(&w);
