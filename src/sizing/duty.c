@@ -83,7 +83,9 @@ sct_status sct_design_new(sct_arena *arena, int n_groups, sct_design *design)
     design->A = sct_arena_array(arena, (size_t)n_groups, sizeof *design->A);
     design->i = sct_arena_array(arena, (size_t)n_groups, sizeof *design->i);
     design->section = sct_arena_array(arena, (size_t)n_groups, sizeof *design->section);
-    return design->A == NULL || design->i == NULL || design->section == NULL ? SCT_NO_MEMORY : SCT_OK;
+    if (design->A == NULL || design->i == NULL || design->section == NULL) return SCT_NO_MEMORY;
+    for (int g = 0; g < n_groups; g++) design->section[g] = -1;
+    return SCT_OK;
 }
 
 void sct_design_copy(int n_groups, const sct_design *from, sct_design *to)

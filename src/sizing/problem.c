@@ -9,7 +9,6 @@
 #include "base/number.h"
 
 static const double INACTIVE = -9.0;      /* ln: a limit this far away is left alone, with zero gradient */
-static const double LEAST_RESIZE = -3.0;  /* ln 0.05 */
 
 struct sct_problem {
     sct_duty *duty;
@@ -419,28 +418,13 @@ void sct_problem_bounds(const sct_problem *P, double lower[], double upper[], sc
     memcpy(source, P->source, (size_t)P->n * sizeof *source);
 }
 
-int sct_problem_resize(sct_problem *P, double x[])
+int sct_problem_scale(sct_problem *P, double x[])
 {
-    enum { MOST = 2 };
-    int used = 0;
-    while (used < MOST) {
-        double bars = -INFINITY, joints = -INFINITY;
-        used++;
-        if (judge(P, x) != SCT_OK) break;
-        for (int v = 0; v < P->n; v++) P->z[v] = LEAST_RESIZE;
-        for (int j = 0; j < P->nlp.m; j++) {
-            if (j >= P->n_bar_rows) {
-                joints = fmax(joints, P->g[j]);
-                continue;
-            }
-            const int v = P->st->var_of_group[P->st->bars[bar_of(P, j)].group];
-            bars = fmax(bars, P->g[j]);
-            if (v >= 0) P->z[v] = fmax(P->z[v], P->g[j]);
-        }
-        if (bars <= joints) break;
-        for (int v = 0; v < P->n; v++) x[v] = fmin(fmax(x[v] + P->z[v], P->lower[v]), P->upper[v]);
-    }
-    return used;
+    if (judge(P, x) != SCT_OK) return 1;
+    double most = -INFINITY;
+    for (int j = 0; j < P->nlp.m; j++) most = fmax(most, P->g[j]);
+    for (int v = 0; v < P->n; v++) x[v] = fmin(fmax(x[v] + most, P->lower[v]), P->upper[v]);
+    return 1;
 }
 
 sct_constraint sct_problem_constraint(const sct_problem *P, int j)

@@ -45,10 +45,9 @@ void sct_problem_point(const sct_problem *problem, const double A[], double x[])
 /** ln A at the ends of each variable, whatever the form of x. */
 void sct_problem_bounds(const sct_problem *problem, double lower[], double upper[], sct_bound_source source[]);
 
-/** At most two fully stressed resizings of a start, each one analysis, while members are worse than displacements
- * (measured: 40 % fewer analyses where strength governs, nothing lost elsewhere). Not for the plain form. Returns the
- * analyses used. */
-int sct_problem_resize(sct_problem *problem, double x[]);
+/** Scales the sizes of a start together until the worst limit is just kept (exact but for self-weight and bounds): one
+ * analysis, returned. Not for the plain form. */
+int sct_problem_scale(sct_problem *problem, double x[]);
 
 /* What constraint j is about. */
 typedef struct sct_constraint {

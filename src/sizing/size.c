@@ -192,7 +192,7 @@ static sct_status run_start(job *J, int k, sct_random *random)
     settings.user = J;
     J->analyses_before = sct_solver_analyses(J->duty->solver);
     place_start(J, k, random, J->x);
-    if (!J->settings.plain && J->settings.iterations > 0) sct_problem_resize(J->problem, J->x);
+    if (!J->settings.plain && J->settings.iterations > 0) sct_problem_scale(J->problem, J->x);
     const sct_descent_info info = sct_descent_run(J->descent, nlp, &settings, J->x, J->mu, J->mu_bound);
     if (info.status != SCT_OK && info.status != SCT_INFEASIBLE && info.status != SCT_NOT_CONVERGED &&
         info.status != SCT_INTERRUPTED)
