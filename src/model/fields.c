@@ -226,7 +226,7 @@ static const char *unknown_name(const sct_fields *f, const char *what, const sct
     if (near != NULL)
         snprintf(message, room, "no %s \"%s\"; did you mean \"%s\"?", what, sct_show(name).text, sct_show(near).text);
     else
-        snprintf(message, room, "no %s \"%s\"; expected the name of a %s in this file", what, sct_show(name).text, what);
+        snprintf(message, room, "no %s \"%s\"; expected the name of a known %s", what, sct_show(name).text, what);
     return message;
 }
 
@@ -245,7 +245,8 @@ bool sct_fields_reference(sct_fields *f, const sct_node *node, const char *what,
     return false;
 }
 
-bool sct_fields_key_reference(sct_fields *f, const sct_node *entry, const char *what, const sct_names *names, int *index)
+bool sct_fields_key_reference(sct_fields *f, const sct_node *entry, const char *what, const sct_names *names,
+                              int *index)
 {
     const char *name = sct_node_key(entry);
     *index = sct_names_find(names, name);

@@ -85,5 +85,6 @@ bool sct_fields_word(sct_fields *f, const sct_node *node, const char *what, cons
 /** The name of a thing in a table: its index. what: "joint". */
 bool sct_fields_reference(sct_fields *f, const sct_node *node, const char *what, const sct_names *names, int *index);
 /** The same for the key of an entry. */
-bool sct_fields_key_reference(sct_fields *f, const sct_node *entry, const char *what, const sct_names *names, int *index);
+bool sct_fields_key_reference(sct_fields *f, const sct_node *entry, const char *what, const sct_names *names,
+                              int *index);
 #endif

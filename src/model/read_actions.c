@@ -83,7 +83,7 @@ static void read_settlements(sct_reader *r, const sct_node *node, sct_case *c)
         if (!sct_fields_vector(&r->f, entry, &SETTLEMENT, s->d) || !known) continue;
         double free, held;
         split_by_support(&r->model->joints[s->joint], s->d, &free, &held);
-        if (free > TOL_HELD)
+        if (free > TOL_HELD && !r->joint_is_wrong[s->joint])
             sct_fields_error(&r->f, entry,
                              "joint \"%s\" is not held in the direction of this settlement; expected one along "
                              "its supports",
@@ -273,8 +273,9 @@ static void read_limited_joints(sct_reader *r, const sct_node *node, sct_deflect
     const char *text = sct_node_string(node);
     const bool all = text != NULL && strcmp(text, "all") == 0;
     if (!all && sct_node_kind_of(node) != SCT_ARRAY) {
-        sct_fields_error(&r->f, node, "found %s; expected \"all\" or an array with the names of joints",
-                         text != NULL ? "another string" : sct_node_kind_words(node));
+        sct_fields_error(&r->f, node, "found %s%s%s; expected \"all\" or an array with the names of joints",
+                         text != NULL ? "\"" : "", text != NULL ? sct_show(text).text : sct_node_kind_words(node),
+                         text != NULL ? "\"" : "");
         return;
     }
     limit->joints = sct_fields_array(&r->f, all ? m->n_joints : sct_node_count(node), sizeof *limit->joints);
@@ -291,7 +292,7 @@ static void read_limited_joints(sct_reader *r, const sct_node *node, sct_deflect
             limit->joints[limit->n_joints++] = j;
         is_taken[j] = true;
     }
-    if (all ? limit->n_joints == 0 : sct_node_count(node) == 0)
+    if (all ? limit->n_joints == 0 && r->f.dimensions > 0 : sct_node_count(node) == 0)
         sct_fields_error(&r->f, node, "found no joint that can move; expected at least one");
 }
 
@@ -301,7 +302,7 @@ static bool read_span(sct_reader *r, const sct_node *node, double *span)
     static const sct_range SPAN = {"a span", SCT_LENGTH, 1e-6, 1e6, 0.1, 1e3};
     if (node == NULL || sct_node_kind_of(node) != SCT_ARRAY) return sct_fields_value(&r->f, node, &SPAN, span);
     if (sct_node_count(node) != 2) {
-        sct_fields_error(&r->f, node, "found %d entries; expected the names of two joints", sct_node_count(node));
+        sct_fields_error(&r->f, node, "expected the names of two joints; found %d", sct_node_count(node));
         return false;
     }
     const sct_node *first = sct_node_first(node);
@@ -311,6 +312,7 @@ static bool read_span(sct_reader *r, const sct_node *node, double *span)
     const double *p = r->model->joints[a].at, *q = r->model->joints[b].at;
     *span = hypot(hypot(p[0] - q[0], p[1] - q[1]), p[2] - q[2]);
     if (*span > 0) return true;
+    if (r->joint_is_wrong[a] || r->joint_is_wrong[b]) return false;
     sct_fields_error(&r->f, node, "the two joints stand at one place; expected the ends of a span");
     return false;
 }
@@ -340,8 +342,7 @@ static void read_span_fraction(sct_reader *r, const sct_node *node, const sct_no
 static void read_at_most(sct_reader *r, const sct_node *node, const sct_node *at_most, const sct_node *span,
                          sct_deflection_limit *limit)
 {
-    static const sct_range AT_MOST = {
-        "a displacement, or a fraction of the span such as \"L/300\"", SCT_DISPLACEMENT, 1e-9, 1e4, 1e-5, 1};
+    static const sct_range AT_MOST = {"a displacement", SCT_DISPLACEMENT, 1e-9, 1e4, 1e-5, 1};
     if (at_most == NULL) return;
     const char *text = sct_node_string(at_most);
     if (text != NULL && strncmp(text, "L/", 2) == 0) {

@@ -363,7 +363,7 @@ static void read_stability(sct_reader *r, const sct_node *node, const sct_node *
 static void check_stresses(sct_reader *r, const sct_node *node, sct_group *g)
 {
     static const char *const SENSE[] = {"tension", "compression"};
-    if (g->material < 0) return;
+    if (g->material < 0 || r->material_is_wrong[g->material]) return;
     const sct_material *m = &r->model->materials[g->material];
     for (int i = 0; i < 2; i++) {
         if (isnan(g->allowable[i])) g->allowable[i] = m->allowable[i];

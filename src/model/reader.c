@@ -163,10 +163,14 @@ static void read_materials(sct_reader *r, const sct_node *node)
     sct_model *m = r->model;
     const int n = sct_reader_count(r, node, "material", SCT_MOST_MEMBERS);
     m->materials = sct_fields_array(&r->f, n, sizeof *m->materials);
+    r->material_is_wrong = sct_fields_array(&r->f, n, sizeof *r->material_is_wrong);
     r->materials = sct_reader_names(r, node);
     if (failed(r) || n == 0) return;
-    for (const sct_node *c = sct_node_first(node); c != NULL; c = sct_node_next(c))
-        read_material(r, c, &m->materials[m->n_materials++]);
+    for (const sct_node *c = sct_node_first(node); c != NULL; c = sct_node_next(c)) {
+        const int errors_before = r->f.n_errors;
+        read_material(r, c, &m->materials[m->n_materials]);
+        r->material_is_wrong[m->n_materials++] = r->f.n_errors > errors_before || r->f.unit_is_wrong[SCT_STRESS];
+    }
 }
 
 /* ---- joints ---------------------------------------------------------------------------------------------------------
@@ -225,10 +229,14 @@ static void read_joints(sct_reader *r, const sct_node *node)
     sct_model *m = r->model;
     const int n = sct_reader_count(r, node, "joint", SCT_MOST_JOINTS);
     m->joints = sct_fields_array(&r->f, n, sizeof *m->joints);
+    r->joint_is_wrong = sct_fields_array(&r->f, n, sizeof *r->joint_is_wrong);
     r->joints = sct_reader_names(r, node);
     if (failed(r) || n == 0) return;
-    for (const sct_node *c = sct_node_first(node); c != NULL; c = sct_node_next(c))
-        read_joint(r, c, &m->joints[m->n_joints++]);
+    for (const sct_node *c = sct_node_first(node); c != NULL; c = sct_node_next(c)) {
+        const int errors_before = r->f.n_errors;
+        read_joint(r, c, &m->joints[m->n_joints]);
+        r->joint_is_wrong[m->n_joints++] = r->f.n_errors > errors_before || r->f.unit_is_wrong[SCT_LENGTH];
+    }
 }
 
 /* ---- members --------------------------------------------------------------------------------------------------------

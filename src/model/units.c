@@ -171,6 +171,8 @@ const sct_unit *sct_unit_read(const char *name, sct_quantity quantity, char faul
     } else if (quantity == SCT_DENSITY && (strcmp(name, "kN/m3") == 0 || strcmp(name, "N/m3") == 0)) {
         snprintf(fault, SCT_UNIT_FAULT_ROOM, "%s is a weight per volume, not a density; expected one of %s", name,
                  units);
+    } else if (quantity == SCT_FORCE && (strcmp(name, "kg") == 0 || strcmp(name, "t") == 0)) {
+        snprintf(fault, SCT_UNIT_FAULT_ROOM, "%s is a mass, not a force; expected one of %s", name, units);
     } else {
         const char *near = nearest_unit(name, quantity);
         if (near != NULL)
