@@ -1,0 +1,98 @@
+/* Quantities as they stand in a drawing. */
+#include "quantity.h"
+
+#include <math.h>
+#include <string.h>
+
+#include "base/number.h"
+#include "base/text.h"
+#include "shown.h"
+
+static const double FOOT = 0.3048, INCH = 0.0254, KIP = 4448.2216152605, POUND = 0.45359237; /* SI, exact but kip */
+static const char NARROW[] = "\xE2\x80\xAF", MINUS[] = "\xE2\x88\x92";
+
+void sct_quantity_number(sct_quantity out, double value, int digits)
+{
+    char plain[SCT_QUANTITY_ROOM];
+    if (!(fabs(value) < 1e15)) { /* nothing in a drawing is so large; "inf" and NAN end here too */
+        memcpy(out, "\xE2\x88\x9E", 4);
+        return;
+    }
+    sct_number_format(plain, sizeof plain, "%.*f", digits, fabs(value));
+    const bool is_zero = strspn(plain, "0.") == strlen(plain);
+    const size_t whole = strcspn(plain, ".");
+    size_t n = 0;
+    if (value < 0 && !is_zero) {
+        memcpy(out, MINUS, 3);
+        n = 3;
+    }
+    for (size_t i = 0; plain[i] != '\0'; i++) {
+        if (whole >= 5 && i > 0 && i < whole && (whole - i) % 3 == 0) {
+            memcpy(out + n, NARROW, 3);
+            n += 3;
+        }
+        out[n++] = plain[i];
+    }
+    out[n] = '\0';
+}
+
+static void with_unit(sct_quantity out, const char *unit)
+{
+    const size_t n = strlen(out);
+    sct_number_format(out + n, SCT_QUANTITY_ROOM - n, "%s%s", NARROW, unit);
+}
+
+double sct_length_unit(bool us_customary)
+{
+    return us_customary ? FOOT : 1;
+}
+
+const char *sct_length_unit_name(bool us_customary)
+{
+    return sct_shown_unit(SCT_SHOWN_LENGTH, us_customary);
+}
+
+void sct_quantity_length(sct_quantity out, double metres, int digits, bool us_customary)
+{
+    sct_quantity_number(out, metres / sct_length_unit(us_customary), digits);
+}
+
+void sct_quantity_force(sct_quantity out, double newtons, bool us_customary)
+{
+    const double size = fabs(newtons) / (us_customary ? KIP : 1e3);
+    sct_quantity_number(out, size, size < 99.95 ? 1 : 0);
+}
+
+void sct_quantity_movement(sct_quantity out, double metres, bool us_customary)
+{
+    sct_quantity_number(out, fabs(metres) / (us_customary ? INCH : 1e-3), us_customary ? 2 : 1);
+}
+
+void sct_quantity_mass(sct_quantity out, double kilograms, bool us_customary)
+{
+    sct_quantity_number(out, kilograms / (us_customary ? POUND : 1), 0);
+    with_unit(out, sct_shown_unit(SCT_SHOWN_MASS, us_customary));
+}
+
+void sct_quantity_area(sct_quantity out, double square_metres, bool us_customary)
+{
+    const double a = square_metres / (us_customary ? INCH * INCH : 1e-6);
+    sct_quantity_number(out, a, us_customary ? 2 : a < 100 ? 1 : 0);
+    with_unit(out, us_customary ? "in\xC2\xB2" : "mm\xC2\xB2");
+}
+
+void sct_quantity_utilisation(sct_quantity out, double utilisation)
+{
+    if (isinf(utilisation)) {
+        memcpy(out, "\xE2\x88\x9E", 4);
+        return;
+    }
+    if (utilisation > 999) {
+        memcpy(out, ">999", 5);
+        return;
+    }
+    sct_text text = {0};
+    sct_text_utilisation(&text, utilisation);
+    sct_number_format(out, SCT_QUANTITY_ROOM, "%s", text.failed || text.size == 0 ? "\xE2\x80\x93" : text.data);
+    sct_text_free(&text);
+}
