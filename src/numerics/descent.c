@@ -15,10 +15,12 @@ enum {
 static const double SMALL_STEP = 1e-10;  /* of max(1, |x_i|) */
 static const double SMALL_PASS = 1e-9;   /* the next pass would not change the direction */
 static const double AT_BOUND = 1e-10;    /* of max(1, |x_i|): rounding of x + d */
-static const double PHI_ROUNDING = 1e-9; /* of |f|: Phi need not fall by less than this */
-static const double MOVE_FACTOR = 4;     /* the move limit is move * ln(factor) / ln(MOVE_FACTOR) */
+static const double PHI_ROUNDING = 1e-9; /* of |f|: Phi need not fall by less than this; the published form asks more */
+static const double PHI_ROUNDING_PLAIN = 1e-14;
+static const double MOVE_FACTOR = 4;        /* the move limit is move * ln(factor) / ln(MOVE_FACTOR) */
+static const double TRUST_START = 1.0 / 64; /* of the step that failed: the limit where the caller sets none */
+static const double TRUST_GROWTH = 4;       /* of that limit, with every full step */
 static const double LEAST_FACTOR = 1.05;
-static const double NEAR = 1e-1; /* KKT residual from which on the metric is updated (no callback gives it) */
 
 struct sct_descent {
     int n, m, m_eq;
@@ -43,8 +45,8 @@ struct sct_descent {
         *work;          /* QP matrix, curvature beyond D, Lagrangian Hessian, scaled, its eigenvalues */
     double *B, *dL, *s; /* updated Hessian, gradient of the Lagrangian, last step */
 
-    double f, V, R, kkt, factor; /* at x; factor: of the move limit */
-    double f_model, V_model;     /* what the QP expects at x + d */
+    double f, V, R, kkt, factor, trust; /* at x; factor: of the move limit; trust: see may_retry */
+    double f_model, V_model;            /* what the QP expects at x + d */
     double f_y, V_y;
     int worst, worst_y, values, qp_iterations;
     bool has_mu, has_step, has_B, is_elastic; /* s is a step that led here; B is in use; the last QP was elastic */
@@ -306,7 +308,8 @@ static sct_status exact_curvature(sct_descent *w, const double x[])
     return SCT_OK;
 }
 
-/* Damped update (Powell 1978) of B, the Hessian of the Lagrangian, over the last step. y overwrites dL. */
+/* Damped update (Powell, in: Lecture Notes in Mathematics 630, 1978) of B, the Hessian of the Lagrangian, over the last
+ * step. y overwrites dL. */
 static void update(sct_descent *w)
 {
     const int n = w->n;
@@ -346,7 +349,7 @@ static sct_status take_metric(sct_descent *w, const double x[])
     memset(w->C, 0, N * N * sizeof *w->C);
     if (w->set->plain) return SCT_OK;
     if (w->nlp->curvature != NULL) return exact_curvature(w, x);
-    if (w->has_step && (w->has_B || w->kkt < NEAR)) update(w);
+    if (w->has_step) update(w);
     if (w->has_B) {
         memcpy(w->C, w->B, N * N * sizeof *w->C);
         for (size_t i = 0; i < N; ++i) w->C[i * N + i] -= w->D_0[i];
@@ -359,7 +362,7 @@ static sct_status take_metric(sct_descent *w, const double x[])
 /* The step box: bounds and move limit. */
 static void set_box(sct_descent *w, const double x[])
 {
-    const double limit = w->set->move * log(w->factor) / log(MOVE_FACTOR);
+    const double limit = fmin(w->set->move * log(w->factor) / log(MOVE_FACTOR), w->trust);
     for (int i = 0; i < w->n; ++i) {
         w->lo[i] = fmax(lower(w, i) - x[i], -limit);
         w->hi[i] = fmin(upper(w, i) - x[i], limit);
@@ -419,8 +422,8 @@ static sct_status solve_elastic(sct_descent *w)
     double F = 0;
     for (int i = 0; i < n; ++i) F += fabs(w->df[i]);
     F = fmax(F, scale(w));
-    const double R_e = fmax(2 * w->R, 10 * F);
-    w->R = fmax(w->R, fmin(R_e, 1e4 * F));
+    const double R_e = fmax(w->R, fmin(fmax(2 * w->R, 10 * F), 1e4 * F));
+    w->R = R_e;
 
     set_quadratic(w, size);
     for (size_t i = 0; i < N; ++i) w->G[i * size + N] = w->G[N * size + i] = 0;
@@ -559,13 +562,13 @@ static double reference(const sct_descent *w)
 static sct_status search(sct_descent *w, const double x[], double *t)
 {
     const double decrease = expected_decrease(w), Phi = reference(w);
+    const double rounding = (w->set->plain ? PHI_ROUNDING_PLAIN : PHI_ROUNDING) * fabs(w->f);
     *t = 1;
     for (int halvings = 0; halvings <= MOST_HALVINGS; ++halvings, *t /= 2) {
         for (int i = 0; i < w->n; ++i) w->y[i] = fmin(fmax(x[i] + *t * w->d[i], lower(w, i)), upper(w, i));
         const sct_status status = evaluate(w, w->y, w->g_y, &w->f_y, &w->V_y, &w->worst_y);
         if (status == SCT_NO_MEMORY || status == SCT_INTERRUPTED) return status;
-        if (status == SCT_OK &&
-            w->f_y + w->R * w->V_y <= Phi - w->set->gamma * *t * decrease + PHI_ROUNDING * fabs(w->f)) {
+        if (status == SCT_OK && w->f_y + w->R * w->V_y <= Phi - w->set->gamma * *t * decrease + rounding) {
             return SCT_OK;
         }
     }
@@ -592,6 +595,7 @@ static double accept(sct_descent *w, double x[], double t)
     w->V = w->V_y;
     w->worst = w->worst_y;
     w->has_step = largest > 0;
+    if (t >= 1) w->trust *= TRUST_GROWTH;
     w->factor = t < 1 ? fmax(LEAST_FACTOR, 1 + (w->factor - 1) / 2) : fmin(MOVE_FACTOR, 1 + 1.5 * (w->factor - 1));
     return largest;
 }
@@ -605,6 +609,7 @@ static sct_status begin(sct_descent *w, const sct_nlp *nlp, const sct_descent_se
     w->R = 0;
     w->kkt = NAN;
     w->factor = MOVE_FACTOR;
+    w->trust = INFINITY;
     w->values = w->qp_iterations = w->n_past = 0;
     w->has_mu = w->has_step = w->has_B = w->is_elastic = false;
     w->f = w->V = NAN;
@@ -624,6 +629,21 @@ static sct_status look_around(sct_descent *w, const double x[])
     if (status == SCT_OK) status = take_direction(w, x);
     if (status == SCT_OK) take_kkt(w, x);
     return status;
+}
+
+/* After a search that found no step: whether another one, without updates and with short steps only, may help. Far
+ * from feasibility the linear constraints may promise a feasible point far away where there is none; only short steps
+ * show that. */
+static bool may_retry(sct_descent *w)
+{
+    const bool has_limit = w->set->plain || isfinite(w->set->move) || isfinite(w->trust), had_B = w->has_B;
+    w->has_B = w->has_step = false;
+    if (!has_limit) {
+        double longest = 0;
+        for (int i = 0; i < w->n; ++i) longest = fmax(longest, fabs(w->d[i]));
+        w->trust = TRUST_START * longest;
+    }
+    return had_B || !has_limit;
 }
 
 /* One search from x to its end: SCT_OK only when converged. */
@@ -654,8 +674,7 @@ static sct_status iterate(sct_descent *w, double x[], int *iterations)
         }
         status = evaluate(w, x, w->g, &w->f, &w->V, &w->worst);
         if (status != SCT_OK) return status;
-        if (!w->has_B) break;
-        w->has_B = w->has_step = false; /* once more with the metric alone */
+        if (!may_retry(w)) break;
     }
     if (!w->is_elastic || !(w->V > set->tol_violation)) return SCT_NOT_CONVERGED;
     if (w->V > V_least) {
@@ -684,7 +703,7 @@ sct_descent_info sct_descent_run(sct_descent *descent, const sct_nlp *nlp, const
     info.worst = w->worst;
     if (mu != NULL) memcpy(mu, w->mu, (size_t)w->m * sizeof *mu);
     for (int i = 0; i < w->n && mu_bound != NULL; ++i) { /* the move limit is no bound of the problem */
-        const bool is_bound = w->mu_box[i] < 0 ? w->lo[i] >= lower(w, i) - x[i] : w->hi[i] <= upper(w, i) - x[i];
+        const bool is_bound = w->mu_box[i] < 0 ? w->lo[i] <= lower(w, i) - x[i] : w->hi[i] >= upper(w, i) - x[i];
         mu_bound[i] = w->mu_box[i] != 0 && is_bound ? w->mu_box[i] : 0;
     }
     return info;

@@ -31,7 +31,8 @@ typedef struct sct_nlp {
 
     /** Optional (NULL): H (n x n, full, overwritten) = sum_i mu[i] * Hessian of constraint rows[i], at the x of the
      * latest gradient call (rows are among its rows). Without `objective` the Hessian of f is added to it: then it is
-     * the Hessian of the whole Lagrangian, and n_rows may be 0. */
+     * the Hessian of the whole Lagrangian, and n_rows may be 0. Without this callback the identity (or the metric of
+     * `objective`, once near a solution) takes damped BFGS updates over the steps. */
     sct_status (*curvature)(void *user, const double x[], int n_rows, const int rows[], const double mu[], double *H);
 
     /** Optional (NULL): for a separable objective that is cheap to evaluate: its gradient (n) and the diagonal of its
@@ -63,7 +64,8 @@ typedef struct sct_descent_settings {
     int    memory;          /* Phi is compared with the worst of the last `memory` points; 1: monotone; default 5,
                              * at most SCT_DESCENT_MEMORY */
     int    passes;          /* QPs per point when `objective` is given; default 2 */
-    double floor;           /* smallest eigenvalue of the scaled Lagrangian Hessian, default 0.05 */
+    double floor;           /* smallest eigenvalue of the Lagrangian Hessian relative to the metric (absolute where there
+                             * is no `objective`: lower it for flat minima), default 0.05 */
     int    per_cluster;     /* default 4 */
     bool   plain;           /* identity metric only: no curvature, no objective model, no updates; default false */
     bool (*observer)(const sct_descent_step *step, void *user); /* false: stop */
