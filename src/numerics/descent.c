@@ -17,10 +17,10 @@ static const double SMALL_PASS = 1e-9;   /* the next pass would not change the d
 static const double AT_BOUND = 1e-10;    /* of max(1, |x_i|): rounding of x + d */
 static const double PHI_ROUNDING = 1e-9; /* of |f|: Phi need not fall by less than this; the published form asks more */
 static const double PHI_ROUNDING_PLAIN = 1e-14;
-static const double MOVE_FACTOR = 4;        /* the move limit is move * ln(factor) / ln(MOVE_FACTOR) */
-static const double TRUST_START = 1.0 / 64; /* of the step that failed: the limit where the caller sets none */
-static const double TRUST_GROWTH = 4;       /* of that limit, with every full step */
+static const double MOVE_FACTOR = 4; /* the move limit is move * ln(factor) / ln(MOVE_FACTOR) */
 static const double LEAST_FACTOR = 1.05;
+static const double FIRST_PENALTY = 10, MOST_PENALTY = 1e4; /* of the size of f: price of the elastic slack */
+static const double EXCESSIVE = 1e8;                        /* multipliers above this are cut off by the slack, too */
 
 struct sct_descent {
     int n, m, m_eq;
@@ -45,8 +45,8 @@ struct sct_descent {
         *work;          /* QP matrix, curvature beyond D, Lagrangian Hessian, scaled, its eigenvalues */
     double *B, *dL, *s; /* updated Hessian, gradient of the Lagrangian, last step */
 
-    double f, V, R, kkt, factor, trust; /* at x; factor: of the move limit; trust: see may_retry */
-    double f_model, V_model;            /* what the QP expects at x + d */
+    double f, V, R, kkt, factor; /* at x; factor: of the move limit */
+    double f_model, V_model;     /* what the QP expects at x + d */
     double f_y, V_y;
     int worst, worst_y, values, qp_iterations;
     bool has_mu, has_step, has_B, is_elastic; /* s is a step that led here; B is in use; the last QP was elastic */
@@ -362,7 +362,7 @@ static sct_status take_metric(sct_descent *w, const double x[])
 /* The step box: bounds and move limit. */
 static void set_box(sct_descent *w, const double x[])
 {
-    const double limit = fmin(w->set->move * log(w->factor) / log(MOVE_FACTOR), w->trust);
+    const double limit = w->set->move * log(w->factor) / log(MOVE_FACTOR);
     for (int i = 0; i < w->n; ++i) {
         w->lo[i] = fmax(lower(w, i) - x[i], -limit);
         w->hi[i] = fmin(upper(w, i) - x[i], limit);
@@ -399,6 +399,14 @@ static sct_status solve_qp(sct_descent *w)
     return status;
 }
 
+/* What multipliers are compared with: f, or how much f changes with x. */
+static double objective_size(const sct_descent *w)
+{
+    double F = 0;
+    for (int i = 0; i < w->n; ++i) F += fabs(w->df[i]);
+    return fmax(F, scale(w));
+}
+
 /* The QP with one slack s >= 0 in every row, at the price R_e s + 0.005 F s^2: always feasible. An equality becomes
  * two inequalities. The rows are spread in place to make room for the slack's column. */
 static sct_status solve_elastic(sct_descent *w)
@@ -419,10 +427,8 @@ static sct_status solve_elastic(sct_descent *w)
     w->stride = n + 1;
     w->is_elastic = true;
 
-    double F = 0;
-    for (int i = 0; i < n; ++i) F += fabs(w->df[i]);
-    F = fmax(F, scale(w));
-    const double R_e = fmax(w->R, fmin(fmax(2 * w->R, 10 * F), 1e4 * F));
+    const double F = objective_size(w);
+    const double R_e = fmax(w->R, fmin(fmax(2 * w->R, FIRST_PENALTY * F), MOST_PENALTY * F));
     w->R = R_e;
 
     set_quadratic(w, size);
@@ -495,6 +501,14 @@ static double model_value(sct_descent *w, const double x[])
     return f;
 }
 
+/* The linear constraints can be met, but at such a price that it can hardly be done in truth. */
+static bool is_excessive(const sct_descent *w)
+{
+    double sum = 0;
+    for (int k = 0; k < w->n_W; ++k) sum += fabs(w->mu_next[k]);
+    return sum > EXCESSIVE * objective_size(w);
+}
+
 /* d and its multipliers. A second pass, with the objective renewed at x + d, may find no convex QP: then the first
  * answer stays. */
 static sct_status take_direction(sct_descent *w, const double x[])
@@ -508,7 +522,8 @@ static sct_status take_direction(sct_descent *w, const double x[])
         if (pass > 0) model(w, x, w->d, w->h, w->D);
         sct_status status = solve_qp(w);
         if (status != SCT_OK && pass > 0) break;
-        if (status == SCT_INFEASIBLE || status == SCT_NOT_CONVERGED) status = solve_elastic(w);
+        const bool is_hopeless = status == SCT_OK ? is_excessive(w) : status != SCT_NOT_CONVEX;
+        if (is_hopeless && pass == 0) status = solve_elastic(w);
         if (status != SCT_OK) return status;
         if (keep_solution(w) < SMALL_PASS) break;
     }
@@ -595,7 +610,6 @@ static double accept(sct_descent *w, double x[], double t)
     w->V = w->V_y;
     w->worst = w->worst_y;
     w->has_step = largest > 0;
-    if (t >= 1) w->trust *= TRUST_GROWTH;
     w->factor = t < 1 ? fmax(LEAST_FACTOR, 1 + (w->factor - 1) / 2) : fmin(MOVE_FACTOR, 1 + 1.5 * (w->factor - 1));
     return largest;
 }
@@ -609,7 +623,6 @@ static sct_status begin(sct_descent *w, const sct_nlp *nlp, const sct_descent_se
     w->R = 0;
     w->kkt = NAN;
     w->factor = MOVE_FACTOR;
-    w->trust = INFINITY;
     w->values = w->qp_iterations = w->n_past = 0;
     w->has_mu = w->has_step = w->has_B = w->is_elastic = false;
     w->f = w->V = NAN;
@@ -629,21 +642,6 @@ static sct_status look_around(sct_descent *w, const double x[])
     if (status == SCT_OK) status = take_direction(w, x);
     if (status == SCT_OK) take_kkt(w, x);
     return status;
-}
-
-/* After a search that found no step: whether another one, without updates and with short steps only, may help. Far
- * from feasibility the linear constraints may promise a feasible point far away where there is none; only short steps
- * show that. */
-static bool may_retry(sct_descent *w)
-{
-    const bool has_limit = w->set->plain || isfinite(w->set->move) || isfinite(w->trust), had_B = w->has_B;
-    w->has_B = w->has_step = false;
-    if (!has_limit) {
-        double longest = 0;
-        for (int i = 0; i < w->n; ++i) longest = fmax(longest, fabs(w->d[i]));
-        w->trust = TRUST_START * longest;
-    }
-    return had_B || !has_limit;
 }
 
 /* One search from x to its end: SCT_OK only when converged. */
@@ -674,7 +672,8 @@ static sct_status iterate(sct_descent *w, double x[], int *iterations)
         }
         status = evaluate(w, x, w->g, &w->f, &w->V, &w->worst);
         if (status != SCT_OK) return status;
-        if (!may_retry(w)) break;
+        if (!w->has_B) break;
+        w->has_B = w->has_step = false; /* once more with the metric alone */
     }
     if (!w->is_elastic || !(w->V > set->tol_violation)) return SCT_NOT_CONVERGED;
     if (w->V > V_least) {
