@@ -113,8 +113,8 @@ static inline double spread(const sct_model *m, int j, const int others[3])
 
 /**
  * A stable truss: `dim` pinned joints, then joints tied to earlier ones by dim bars well apart in direction, then
- * `extra` redundant bars. Three to five groups, the last one held; three cases: loads with self-weight, loads alone, and
- * temperature, lack of fit and a settlement.
+ * `extra` redundant bars. Three to five groups, the last one held; three cases: loads with self-weight, loads alone,
+ * and temperature, lack of fit and a settlement.
  */
 static inline sct_model *random_truss(sct_random *r, int dim, int n_joints, int extra)
 {
@@ -126,7 +126,8 @@ static inline sct_model *random_truss(sct_random *r, int dim, int n_joints, int 
         const bool is_base = j < dim;
         mb_joint(m, between(r, 0, 10), between(r, 0, 10), dim == 3 ? between(r, 0, 10) : 0.0);
         if (is_base) {
-            memcpy(m->joints[j].at, (double[3]){dim == 3 ? 5 + 5 * cos(2.1 * j) : 10.0 * j, dim == 3 ? 5 + 5 * sin(2.1 * j) : 0.0, 0.0},
+            memcpy(m->joints[j].at,
+                   (double[3]){dim == 3 ? 5 + 5 * cos(2.1 * j) : 10.0 * j, dim == 3 ? 5 + 5 * sin(2.1 * j) : 0.0, 0.0},
                    sizeof m->joints[j].at);
             mb_pin(m, j);
             continue;
@@ -134,7 +135,8 @@ static inline sct_model *random_truss(sct_random *r, int dim, int n_joints, int 
         int others[3];
         for (int tries = 0;; tries++) {
             for (int i = 0; i < dim; i++) others[i] = below(r, j);
-            const bool differ = others[0] != others[1] && (dim == 2 || (others[0] != others[2] && others[1] != others[2]));
+            const bool differ =
+                others[0] != others[1] && (dim == 2 || (others[0] != others[2] && others[1] != others[2]));
             if (differ && spread(m, j, others) > 0.3) break;
             if (tries % 50 == 49) { /* a joint that nothing spans well: put it elsewhere */
                 memcpy(m->joints[j].at,

@@ -118,11 +118,11 @@ START_TEST(matrices_that_are_not_positive_definite_or_not_finite_are_refused_and
         double values[4];
         int stopped_at; /* -1: 0 or 1, whichever is eliminated last */
     } BAD[] = {
-        {{4, 1, 3, 0}, 2},          {{4, 1, 3, -1}, 2},       {{-4, 1, 3, 2}, -1},
-        {{0, 0, 3, 2}, 0},          {{1, 1, 1, 2}, -1},       {{1, 2, 1, 2}, -1},
-        {{NAN, 1, 3, 2}, -1},       {{4, NAN, 3, 2}, -1},     {{4, 1, 3, NAN}, 2},
-        {{INFINITY, 1, 3, 2}, -1},  {{4, INFINITY, 3, 2}, -1}, {{4, -INFINITY, 3, 2}, -1},
-        {{4, 1, 3, INFINITY}, 2},   {{4, 1, 3, -INFINITY}, 2}, {{1e300, 1e300, 1e-300, 2}, -1},
+        {{4, 1, 3, 0}, 2},         {{4, 1, 3, -1}, 2},        {{-4, 1, 3, 2}, -1},
+        {{0, 0, 3, 2}, 0},         {{1, 1, 1, 2}, -1},        {{1, 2, 1, 2}, -1},
+        {{NAN, 1, 3, 2}, -1},      {{4, NAN, 3, 2}, -1},      {{4, 1, 3, NAN}, 2},
+        {{INFINITY, 1, 3, 2}, -1}, {{4, INFINITY, 3, 2}, -1}, {{4, -INFINITY, 3, 2}, -1},
+        {{4, 1, 3, INFINITY}, 2},  {{4, 1, 3, -INFINITY}, 2}, {{1e300, 1e300, 1e-300, 2}, -1},
     };
     static const double GOOD[] = {4, 1, 3, 2};
     for (int e = 0; e < 2; e++) {
@@ -130,8 +130,10 @@ START_TEST(matrices_that_are_not_positive_definite_or_not_finite_are_refused_and
         for (size_t i = 0; i < sizeof BAD / sizeof *BAD; i++) {
             int stopped_at = -7;
             ck_assert_int_eq(sct_factor_update(f, BAD[i].values, &stopped_at), SCT_NOT_CONVEX);
-            if (BAD[i].stopped_at >= 0) ck_assert_int_eq(stopped_at, BAD[i].stopped_at);
-            else ck_assert(stopped_at == 0 || stopped_at == 1);
+            if (BAD[i].stopped_at >= 0)
+                ck_assert_int_eq(stopped_at, BAD[i].stopped_at);
+            else
+                ck_assert(stopped_at == 0 || stopped_at == 1);
             ck_assert_int_eq(sct_factor_update(f, BAD[i].values, NULL), SCT_NOT_CONVEX);
             double b[] = {11, 11, 4}; /* 4 x + y = 11, x + 3 y = 11: x = 2, y = 3 */
             ck_assert_int_eq(sct_factor_update(f, GOOD, NULL), SCT_OK);

@@ -424,16 +424,12 @@ INLINE void solve_block(const int R, const sct_small *s, int count, double *rest
 
 void sct_small_solve(sct_small *s, int count, double b[])
 {
-    for (int done = 0; done < count;) {
+    for (int done = 0; done < count; done += AT_ONCE) {
         const int left = count - done;
         double *rhs = b + (size_t)done * (size_t)s->n;
-        if (left == 1) {
+        if (left == 1)
             solve_block(1, s, 1, rhs);
-            done++;
-        } else {
-            const int now = left < AT_ONCE ? left : AT_ONCE;
-            solve_block(AT_ONCE, s, now, rhs);
-            done += now;
-        }
+        else
+            solve_block(AT_ONCE, s, left < AT_ONCE ? left : AT_ONCE, rhs);
     }
 }
