@@ -5,6 +5,7 @@
 #include <string.h>
 
 #include "base/names.h"
+#include "base/number.h"
 #include "model/document.h"
 #include "model/units.h"
 
@@ -56,17 +57,23 @@ static bool has_levels(const printer *p, const sct_node *node, int most)
     return true;
 }
 
-/* The area in a unit people use, such that it reads back as A or, where no decimal does, the next larger double: a
- * design that keeps its limits must not lose them by rounding. */
+/* The area in a unit people use: the shortest decimal that reads back as A or, where there is none, as the next larger
+ * double. A design that keeps its limits must not lose them by rounding. */
 static void add_area(sct_text *out, double A, bool us_customary)
 {
     const sct_unit *unit = sct_unit_find(us_customary ? "in2" : "mm2");
+    char shown[SCT_NUMBER_ROOM];
     double x = sct_unit_from_SI(unit, A);
     while (sct_unit_to_SI(unit, x) >= A) x = nextafter(x, 0);
     while (sct_unit_to_SI(unit, x) < A) x = nextafter(x, INFINITY);
-    sct_text_add(out, "\"");
-    sct_text_number(out, x);
-    sct_text_format(out, " %s\"", unit->name);
+    for (int digits = 4; digits <= 17; digits++) { /* 17 give x itself */
+        double read = NAN;
+        sct_number_format(shown, sizeof shown, "%.*g", digits, x);
+        if (!sct_number_read(shown, strlen(shown), &read)) continue;
+        const double A_read = sct_unit_to_SI(unit, read);
+        if (A_read >= A && A_read <= nextafter(A, INFINITY)) break;
+    }
+    sct_text_format(out, "\"%s %s\"", shown, unit->name);
 }
 
 static void new_line(printer *p, int indent)
