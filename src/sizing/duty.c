@@ -9,6 +9,15 @@
 
 static const double NO_FORCE = 1e-9; /* of the largest force in the structure: rounding, not load */
 
+/* The reader promises these; a NAN among them would make every check pass in silence. */
+static bool is_sound(const sct_bar_rule *r)
+{
+    return r->E > 0.0 && r->f_t > 0.0 && r->f_c > 0.0 && r->Lcr[0] > 0.0 && r->Lcr[1] > 0.0 &&
+           (r->buckling == SCT_BUCKLING_NONE || r->safety >= 1.0) &&
+           (r->buckling != SCT_BUCKLING_EULER_JOHNSON || r->yield > 0.0) && r->slenderness_any > 0.0 &&
+           r->slenderness_compression > 0.0;
+}
+
 static void list_rows(const sct_model *model, sct_deflection_row *rows, int *n)
 {
     *n = 0;
@@ -49,6 +58,7 @@ static sct_status fill(sct_duty *duty, sct_engine engine)
     list_rows(model, duty->rows, &duty->n_rows);
     for (int bar = 0; bar < st->n_bars; bar++) {
         duty->rules[bar] = sct_bar_rule_of(model, bar, st->bars[bar].L);
+        if (!is_sound(&duty->rules[bar])) return SCT_SELF_CHECK;
         duty->length[st->bars[bar].group] += st->bars[bar].L;
         duty->unit_mass[st->bars[bar].group] += st->bars[bar].L * st->bars[bar].density;
     }
@@ -176,7 +186,7 @@ double sct_duty_bar_utilisation(const sct_duty *duty, int bar, double A, const d
         const double N = duty->N[(size_t)duty->allowable[k] * (size_t)duty->st->n_bars + (size_t)bar];
         sct_bar_check checks[SCT_MOST_BAR_CHECKS];
         const int n = sct_bar_checks(rule, N, A, i, checks);
-        for (int j = 0; j < n; j++) most = fmax(most, checks[j].utilisation);
+        for (int j = 0; j < n; j++) most = sct_worse(most, checks[j].utilisation);
     }
     return most;
 }
@@ -191,8 +201,8 @@ double sct_duty_utilisation(const sct_duty *duty, const sct_design *design)
     double most = 0.0;
     for (int bar = 0; bar < duty->st->n_bars; bar++) {
         const int g = duty->st->bars[bar].group;
-        most = fmax(most, sct_duty_bar_utilisation(duty, bar, design->A[g], design->i[g]));
+        most = sct_worse(most, sct_duty_bar_utilisation(duty, bar, design->A[g], design->i[g]));
     }
-    for (int r = 0; r < duty->n_rows; r++) most = fmax(most, sct_duty_row_utilisation(duty, r));
+    for (int r = 0; r < duty->n_rows; r++) most = sct_worse(most, sct_duty_row_utilisation(duty, r));
     return most;
 }

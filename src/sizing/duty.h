@@ -37,7 +37,14 @@ typedef struct sct_duty {
     double *worst_compression; /* n_bars: [N] most compressive force in the strength combinations, <= 0 */
 } sct_duty;
 
-/** Duty, solver and work arrays for a structure. *status: SCT_OK, SCT_NO_MEMORY, SCT_TOO_LARGE. */
+/** The larger of two utilisations; NAN counts as the largest, so that a number that is none never reads as a pass. */
+static inline double sct_worse(double a, double b)
+{
+    return b <= a ? a : b;
+}
+
+/** Duty, solver and work arrays for a structure. *status: SCT_OK, SCT_NO_MEMORY, SCT_TOO_LARGE; SCT_SELF_CHECK: a rule
+ * without its numbers, which the reader should have refused. */
 sct_duty *sct_duty_new(const sct_structure *st, sct_engine engine, sct_status *status);
 void sct_duty_free(sct_duty *duty);
 

@@ -105,7 +105,7 @@ static void fill_groups(sct_result *r, const sct_duty *duty, const sct_design *d
 
 static void consider(sct_member_result *m, const sct_bar_check *check, int combination, double N)
 {
-    if (!(check->utilisation > m->utilisation)) return;
+    if (check->utilisation <= m->utilisation) return;
     m->utilisation = check->utilisation;
     m->check = check->kind;
     m->combination = combination;
@@ -145,7 +145,7 @@ static void fill_member(sct_result *r, const sct_duty *duty, const sct_design *d
     sct_group_result *g = &r->groups[b->group];
     g->n_members++;
     if (g->worst_member < 0 || m->utilisation > r->members[g->worst_member].utilisation) g->worst_member = bar;
-    r->utilisation = fmax(r->utilisation, m->utilisation);
+    r->utilisation = sct_worse(r->utilisation, m->utilisation);
 }
 
 static void fill_deflections(sct_result *r, const sct_duty *duty)
@@ -167,11 +167,11 @@ static void fill_deflections(sct_result *r, const sct_duty *duty)
         int k = 0;
         while (r->deflections[k].limit != at->limit || r->deflections[k].joint != at->joint) k++;
         sct_deflection_result *out = &r->deflections[k];
-        if (out->combination >= 0 && !(utilisation > out->utilisation)) continue;
+        if (out->combination >= 0 && utilisation <= out->utilisation) continue;
         out->combination = at->combination;
         out->u = duty->u[row];
         out->utilisation = utilisation;
-        r->utilisation = fmax(r->utilisation, utilisation);
+        r->utilisation = sct_worse(r->utilisation, utilisation);
     }
 }
 

@@ -50,7 +50,7 @@ static double group_utilisation(const search *S, int g, int k)
     const double i[2] = {sqrt(x->I[0] / x->A), sqrt(x->I[1] / x->A)};
     double most = 0.0;
     for (int bar = 0; bar < S->st->n_bars; bar++)
-        if (S->st->bars[bar].group == g) most = fmax(most, sct_duty_bar_utilisation(S->duty, bar, x->A, i));
+        if (S->st->bars[bar].group == g) most = sct_worse(most, sct_duty_bar_utilisation(S->duty, bar, x->A, i));
     return most;
 }
 
@@ -168,7 +168,7 @@ static double deflection_after(const search *S, const move *m)
             u += S->slope[(size_t)r * (size_t)S->st->n_groups + (size_t)g] *
                  (1.0 - S->trial.A[g] / section_at(S, g, m->section[k])->A);
         }
-        most = fmax(most, fabs(u) / S->model->deflections[S->duty->rows[r].limit].at_most);
+        most = sct_worse(most, fabs(u) / S->model->deflections[S->duty->rows[r].limit].at_most);
     }
     return most;
 }

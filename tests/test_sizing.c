@@ -1,0 +1,521 @@
+/* Sizing: derivatives of the problem, closed forms, outcomes, prices, sections. Models are invented. */
+#include "support.h"
+
+#include <string.h>
+
+#include "analysis/structure.h"
+#include "base/random.h"
+#include "base/text.h"
+#include "sizing/problem.h"
+
+static sct_model *parse(const char *text)
+{
+    sct_issues *issues = sct_issues_new();
+    sct_model *model = NULL;
+    const sct_status status = sct_model_parse("test.json", text, strlen(text), &model, issues);
+    for (int i = 0; i < sct_issues_count(issues); i++) {
+        if (sct_issues_get(issues, i)->severity != SCT_ERROR) continue;
+        char *line = sct_issue_line(sct_issues_get(issues, i));
+        printf("%s\n", line);
+        free(line);
+    }
+    ck_assert_int_eq(status, SCT_OK);
+    sct_issues_free(issues);
+    return model;
+}
+
+static sct_model *read_file(const char *path)
+{
+    sct_issues *issues = sct_issues_new();
+    sct_model *model = NULL;
+    ck_assert_int_eq(sct_model_read(path, &model, issues), SCT_OK);
+    sct_issues_free(issues);
+    return model;
+}
+
+static sct_result *size_with(const sct_model *model, const sct_settings *settings)
+{
+    sct_issues *issues = sct_issues_new();
+    sct_result *result = NULL;
+    const sct_status status = sct_size(model, settings, &result, issues);
+    for (int i = 0; status != SCT_OK && i < sct_issues_count(issues); i++) printf("%s\n", sct_issues_get(issues, i)->message);
+    ck_assert_int_eq(status, SCT_OK);
+    sct_issues_free(issues);
+    return result;
+}
+
+/* A triangle: tie between the supports, two rafters. Everything a test changes is a parameter. */
+static char *triangle(const char *tie, const char *rafters, const char *limits, const char *cases)
+{
+    sct_text t = {0};
+    sct_text_format(&t, "{ \"scantling\": 1, \"dimensions\": 2, \"units\": { \"length\": \"m\", \"force\": \"kN\","
+                        " \"stress\": \"MPa\", \"area\": \"mm2\", \"displacement\": \"mm\" },"
+                        "\"materials\": { \"S\": { \"E\": 210000, \"density\": \"7850 kg/m3\", \"yield\": 355,"
+                        " \"expansion\": \"12e-6 1/K\", \"allowable\": { \"tension\": 200, \"compression\": 160 } } },"
+                        "\"joints\": { \"A\": { \"at\": [0, 0], \"support\": [\"x\", \"y\"] },"
+                        " \"B\": { \"at\": [8, 0], \"support\": [\"y\"] }, \"C\": { \"at\": [4, 3] } },"
+                        "\"groups\": { \"tie\": { \"material\": \"S\", %s }, \"rafters\": { \"material\": \"S\", %s } },"
+                        "\"members\": { \"AB\": { \"from\": \"A\", \"to\": \"B\", \"group\": \"tie\" },"
+                        " \"AC\": { \"from\": \"A\", \"to\": \"C\", \"group\": \"rafters\" },"
+                        " \"CB\": { \"from\": \"C\", \"to\": \"B\", \"group\": \"rafters\" } },"
+                        "\"cases\": { %s },"
+                        "\"combinations\": { \"all\": { \"for\": \"allowable\", \"sum\": { \"Q\": 1 } } },"
+                        "\"limits\": { %s } }",
+                    tie, rafters, cases != NULL ? cases : "\"Q\": { \"joints\": { \"C\": [0, -60] } }", limits);
+    return sct_text_take(&t, NULL);
+}
+
+static const char AREA[] = "\"area\": { \"at_least\": 10, \"at_most\": 100000 }";
+static const char NO_BUCKLING[] = "\"buckling\": { \"by\": \"none\" }";
+
+/* ---- derivatives ------------------------------------------------------------------------------------------------ */
+
+typedef struct probe {
+    sct_structure *st;
+    sct_duty *duty;
+    sct_problem *problem;
+    const sct_nlp *nlp;
+} probe;
+
+static probe open_probe(const sct_model *model, bool plain)
+{
+    probe p = {0};
+    sct_status status;
+    sct_fault why;
+    sct_issues *issues = sct_issues_new();
+    ck_assert_int_eq(sct_structure_build(model, &p.st, issues), SCT_OK);
+    p.duty = sct_duty_new(p.st, SCT_ENGINE_AUTO, &status);
+    ck_assert_int_eq(status, SCT_OK);
+    bool *compressed = calloc((size_t)p.st->n_bars, sizeof *compressed);
+    ck_assert_int_eq(sct_problem_new(p.duty, compressed, NULL, NULL, plain, &p.problem, why), SCT_OK);
+    free(compressed);
+    sct_issues_free(issues);
+    p.nlp = sct_problem_nlp(p.problem);
+    return p;
+}
+
+static void close_probe(probe *p)
+{
+    sct_problem_free(p->problem);
+    sct_duty_free(p->duty);
+    sct_structure_free(p->st);
+}
+
+/* Gradients of f and of every active constraint against central differences, and the curvature of a random mixture
+ * against differences of gradients. */
+static void check_derivatives(const sct_model *model, bool plain, unsigned seed)
+{
+    probe p = open_probe(model, plain);
+    const int n = p.nlp->n, m = p.nlp->m;
+    const size_t un = (size_t)n, um = (size_t)m;
+    sct_random random = {seed};
+    double *x = calloc(un, sizeof *x), *y = calloc(un, sizeof *y), *df = calloc(un, sizeof *df);
+    double *g = calloc(um, sizeof *g), *up = calloc(um, sizeof *up), *down = calloc(um, sizeof *down);
+    double *dg = calloc(um * un, sizeof *dg), *dg_up = calloc(um * un, sizeof *dg_up), *dg_down = calloc(um * un, sizeof *dg_down);
+    double *H = calloc(un * un, sizeof *H), *mu = calloc(um, sizeof *mu);
+    int *rows = calloc(um, sizeof *rows);
+    double f, f_up, f_down;
+    for (int v = 0; v < n; v++) x[v] = p.nlp->lower[v] + (0.3 + 0.4 * sct_random_unit(&random)) * (p.nlp->upper[v] - p.nlp->lower[v]);
+    for (int j = 0; j < m; j++) {
+        rows[j] = j;
+        mu[j] = sct_random_unit(&random);
+    }
+    ck_assert_int_eq(p.nlp->value(p.nlp->user, x, &f, g), SCT_OK);
+    ck_assert_int_eq(p.nlp->gradient(p.nlp->user, x, m, rows, df, dg), SCT_OK);
+    for (int j = 0; j < m; j++)
+        if (g[j] < -6.0) mu[j] = 0.0; /* near the cut-off for constraints that are left alone */
+    if (!plain) ck_assert_int_eq(p.nlp->curvature(p.nlp->user, x, m, rows, mu, H), SCT_OK);
+    for (int v = 0; v < n; v++) {
+        const double h = 1e-5 * (plain ? x[v] : 1.0);
+        memcpy(y, x, un * sizeof *y);
+        y[v] = x[v] + h;
+        ck_assert_int_eq(p.nlp->value(p.nlp->user, y, &f_up, up), SCT_OK);
+        ck_assert_int_eq(p.nlp->gradient(p.nlp->user, y, m, rows, df, dg_up), SCT_OK);
+        y[v] = x[v] - h;
+        ck_assert_int_eq(p.nlp->value(p.nlp->user, y, &f_down, down), SCT_OK);
+        ck_assert_int_eq(p.nlp->gradient(p.nlp->user, y, m, rows, df, dg_down), SCT_OK);
+        for (int j = 0; j < m; j++) {
+            if (g[j] < -6.0) continue;
+            const double slope = (up[j] - down[j]) / (2 * h), scale = plain ? 1 / x[v] : 1.0;
+            ck_assert_double_eq_tol(dg[(size_t)j * un + (size_t)v], slope, 1e-7 * scale * (1 + fabs(g[j]) * 10));
+        }
+        for (int w = 0; !plain && w < n; w++) {
+            double change = 0.0;
+            for (int j = 0; j < m; j++)
+                change += mu[j] * (dg_up[(size_t)j * un + (size_t)w] - dg_down[(size_t)j * un + (size_t)w]) / (2 * h);
+            ck_assert_double_eq_tol(H[(size_t)v * un + (size_t)w], change, 1e-5 * (1 + fabs(change)));
+        }
+    }
+    free(x); free(y); free(df); free(g); free(up); free(down); free(dg); free(dg_up); free(dg_down); free(H); free(mu); free(rows);
+    close_probe(&p);
+}
+
+START_TEST(derivatives_agree_with_differences)
+{
+    static const char *const FILES[] = {"models/demo_roof.json", "models/benchmarks/10bar_case1.json",
+                                        "models/benchmarks/25bar.json", "models/benchmarks/18bar_euler.json"};
+    sct_model *model = read_file(FILES[_i]);
+    for (unsigned seed = 1; seed <= 3; seed++) {
+        check_derivatives(model, false, seed);
+        check_derivatives(model, true, seed);
+    }
+    sct_model_free(model);
+}
+END_TEST
+
+/* Two ties of different temperature beside a settling support make a redundant truss in which every term counts. */
+START_TEST(derivatives_agree_with_self_weight_temperature_and_settlement)
+{
+    sct_model *model = parse(
+        "{ \"scantling\": 1, \"dimensions\": 2, \"units\": { \"length\": \"m\", \"force\": \"kN\", \"stress\": \"MPa\" },"
+        "\"materials\": { \"S\": { \"E\": 210000, \"density\": \"7850 kg/m3\", \"expansion\": \"12e-6 1/K\","
+        " \"allowable\": { \"tension\": 200, \"compression\": 160 } } },"
+        "\"joints\": { \"A\": { \"at\": [0, 0], \"support\": [\"x\", \"y\"] }, \"B\": { \"at\": [4, 0] },"
+        " \"C\": { \"at\": [8, 0], \"support\": [[0.6, 0.8], \"x\"] }, \"D\": { \"at\": [4, 3] }, \"E\": { \"at\": [8, 3.5] } },"
+        "\"groups\": { \"a\": { \"material\": \"S\", \"area\": { \"at_least\": \"1 cm2\", \"at_most\": \"50 cm2\" } },"
+        " \"b\": { \"material\": \"S\", \"area\": { \"at_least\": \"1 cm2\", \"at_most\": \"50 cm2\" } },"
+        " \"c\": { \"material\": \"S\", \"area\": \"12 cm2\" },"
+        " \"d\": { \"material\": \"S\", \"area\": { \"at_least\": \"1 cm2\", \"at_most\": \"50 cm2\" } } },"
+        "\"members\": { \"1\": { \"from\": \"A\", \"to\": \"B\", \"group\": \"a\" }, \"2\": { \"from\": \"B\", \"to\": \"C\", \"group\": \"a\" },"
+        " \"3\": { \"from\": \"A\", \"to\": \"D\", \"group\": \"b\" }, \"4\": { \"from\": \"B\", \"to\": \"D\", \"group\": \"c\" },"
+        " \"5\": { \"from\": \"D\", \"to\": \"C\", \"group\": \"b\" }, \"6\": { \"from\": \"D\", \"to\": \"E\", \"group\": \"d\" },"
+        " \"7\": { \"from\": \"B\", \"to\": \"E\", \"group\": \"d\" }, \"8\": { \"from\": \"C\", \"to\": \"E\", \"group\": \"c\" } },"
+        "\"cases\": { \"G\": { \"self_weight\": 1.1, \"joints\": { \"D\": [0, -50] } }, \"T\": { \"members\": { \"1\": { \"temperature\": \"40 K\" },"
+        " \"6\": { \"lack_of_fit\": \"3 mm\" } } }, \"S\": { \"settlements\": { \"C\": [\"0 mm\", \"-12 mm\"] } } },"
+        "\"combinations\": { \"1\": { \"for\": \"allowable\", \"sum\": { \"G\": 1, \"T\": 1 } }, \"2\": { \"for\": \"allowable\", \"sum\": { \"G\": 0.9, \"T\": -0.5, \"S\": 1 } } },"
+        "\"limits\": { \"buckling\": { \"by\": \"none\" }, \"deflection\": [ { \"joints\": \"all\", \"direction\": \"y\", \"at_most\": \"10 mm\" } ] } }");
+    for (unsigned seed = 1; seed <= 5; seed++) check_derivatives(model, false, seed);
+    sct_model_free(model);
+}
+END_TEST
+
+/* ---- closed forms ------------------------------------------------------------------------------------------------ */
+
+/* By hand: 60 kN at C, rafters 5 m with slope 3/5: each -30/(3/5) = -50 kN, tie 40 kN. */
+START_TEST(a_determinate_truss_gets_force_over_allowable_stress)
+{
+    char *text = triangle(AREA, AREA, NO_BUCKLING, NULL);
+    sct_model *model = parse(text);
+    sct_result *r = size_with(model, NULL);
+    ck_assert_int_eq(r->outcome, SCT_OPTIMUM);
+    ck_assert(r->kept);
+    ck_close(r->groups[0].A, 40e3 / 200e6, 1e-8);
+    ck_close(r->groups[1].A, 50e3 / 160e6, 1e-8);
+    ck_close(r->mass, 7850 * (8 * 40e3 / 200e6 + 10 * 50e3 / 160e6), 1e-8);
+    ck_assert_double_le(r->utilisation, 1.0);
+    sct_result_free(r);
+    sct_model_free(model);
+    free(text);
+}
+END_TEST
+
+/* Euler with safety 2 on I = 0.5 A^2: A = sqrt(2 N L^2/(pi^2 E 0.5)). */
+START_TEST(a_strut_under_euler_has_its_closed_form)
+{
+    char *text = triangle(AREA, "\"area\": { \"at_least\": 10, \"at_most\": 100000 }, \"second_moment\": { \"c\": 0.5 },"
+                                "\"buckling\": { \"by\": \"Euler\", \"safety\": 2 }", NO_BUCKLING, NULL);
+    sct_model *model = parse(text);
+    sct_result *r = size_with(model, NULL);
+    const double PI = 3.14159265358979323846;
+    ck_close(r->groups[1].A, sqrt(2 * 50e3 * 25 / (PI * PI * 210e9 * 0.5)), 1e-8);
+    ck_assert_int_eq(r->members[1].check, SCT_CHECK_BUCKLING_IN);
+    sct_result_free(r);
+    sct_model_free(model);
+    free(text);
+}
+END_TEST
+
+/* One displacement limit, by Lagrange: u = sum N n L/(E A) <= U, mass = rho sum A L gives A_i = sqrt(N_i n_i) s with
+ * s = sum L sqrt(N n) / (E U), groups summed. */
+START_TEST(a_deflection_limit_alone_has_its_closed_form)
+{
+    char *text = triangle(AREA, AREA, "\"buckling\": { \"by\": \"none\" }, \"deflection\": [ { \"joints\": [\"C\"], \"direction\": \"y\", \"at_most\": 1 } ]", NULL);
+    sct_model *model = parse(text);
+    sct_result *r = size_with(model, NULL);
+    const double N[2] = {40e3, 50e3}, n[2] = {40.0 / 60, 50.0 / 60}, L[2] = {8, 10}, E = 210e9, U = 1e-3;
+    const double s = (L[0] * sqrt(N[0] * n[0]) + L[1] * sqrt(N[1] * n[1])) / (E * U);
+    for (int g = 0; g < 2; g++) ck_close(r->groups[g].A, sqrt(N[g] * n[g]) * s, 2e-6);
+    ck_close(r->mass, 7850 * (L[0] * sqrt(N[0] * n[0]) + L[1] * sqrt(N[1] * n[1])) * s, 1e-7);
+    ck_assert_int_eq(r->n_prices, 1);
+    /* mass ~ 1/U: dm/dU = -m/U, exactly the multiplier per metre */
+    ck_close(r->prices[0].per_unit, r->mass / U, 1e-5);
+    sct_result_free(r);
+    sct_model_free(model);
+    free(text);
+}
+END_TEST
+
+/* ---- outcomes ----------------------------------------------------------------------------------------------------- */
+
+START_TEST(slack_limits_leave_the_smallest_sizes)
+{
+    char *text = triangle("\"area\": { \"at_least\": 5000, \"at_most\": 100000 }", "\"area\": { \"at_least\": 6000, \"at_most\": 100000 }", NO_BUCKLING, NULL);
+    sct_model *model = parse(text);
+    sct_result *r = size_with(model, NULL);
+    ck_assert_int_eq(r->outcome, SCT_OPTIMUM);
+    ck_close(r->groups[0].A, 5000e-6, 1e-12);
+    ck_close(r->groups[1].A, 6000e-6, 1e-12);
+    ck_assert_int_eq(r->n_prices, 2);
+    ck_assert_int_eq(r->prices[0].kind, SCT_CHECK_SMALLEST);
+    sct_result_free(r);
+    sct_model_free(model);
+    free(text);
+}
+END_TEST
+
+START_TEST(an_infeasible_problem_is_told_with_its_limit)
+{
+    char *text = triangle("\"area\": { \"at_least\": 10, \"at_most\": 100 }", AREA, NO_BUCKLING, NULL);
+    sct_model *model = parse(text);
+    sct_result *r = size_with(model, NULL);
+    ck_assert_int_eq(r->outcome, SCT_NO_FEASIBLE_DESIGN);
+    ck_assert(!r->kept);
+    ck_close(r->utilisation, 2.0, 1e-6); /* needs 200 mm2, may have 100 */
+    ck_assert_ptr_nonnull(strstr(r->verdict, "tension of member AB"));
+    ck_assert_ptr_nonnull(strstr(r->verdict, "2.00"));
+    for (int k = 0; k < r->n_starts; k++) ck_assert_int_le(r->starts[k].analyses, 25);
+    sct_result_free(r);
+    sct_model_free(model);
+    free(text);
+}
+END_TEST
+
+START_TEST(an_impossible_slenderness_is_told_before_the_search)
+{
+    char *text = triangle(AREA, "\"area\": { \"at_least\": 10, \"at_most\": 1000 }, \"second_moment\": { \"c\": 0.5 }, \"slenderness\": { \"any\": 50 }", NO_BUCKLING, NULL);
+    sct_model *model = parse(text);
+    sct_result *r = size_with(model, NULL);
+    ck_assert_int_eq(r->outcome, SCT_NO_FEASIBLE_DESIGN);
+    ck_assert(!r->kept);
+    ck_assert_ptr_nonnull(strstr(r->verdict, "slenderness limit 50"));
+    sct_result_free(r);
+    sct_model_free(model);
+    free(text);
+}
+END_TEST
+
+/* i^2 = c A: lambda <= 200 asks A >= (5/200)^2/0.5; only the compressed rafters must keep it. */
+START_TEST(slenderness_of_compression_binds_compressed_members_only)
+{
+    const char *group = "\"area\": { \"at_least\": 10, \"at_most\": 100000 }, \"second_moment\": { \"c\": 0.5 }, \"slenderness\": { \"compression\": 200 }";
+    char *text = triangle(group, group, NO_BUCKLING, NULL);
+    sct_model *model = parse(text);
+    sct_result *r = size_with(model, NULL);
+    ck_close(r->groups[0].A, 40e3 / 200e6, 1e-8);
+    ck_close(r->groups[1].A, 25.0 / 40000 / 0.5, 1e-8);
+    ck_assert_int_eq(r->members[1].check, SCT_CHECK_SLENDERNESS);
+    sct_result_free(r);
+    sct_model_free(model);
+    free(text);
+}
+END_TEST
+
+START_TEST(without_iterations_the_start_is_checked_and_marked)
+{
+    char *text = triangle("\"area\": { \"at_least\": 10, \"at_most\": 100000, \"start\": 777 }", AREA, NO_BUCKLING, NULL);
+    sct_model *model = parse(text);
+    sct_settings settings = sct_settings_defaults();
+    settings.iterations = 0;
+    sct_result *r = size_with(model, &settings);
+    ck_assert_int_eq(r->outcome, SCT_NOT_OPTIMISED);
+    ck_close(r->groups[0].A, 777e-6, 1e-12);
+    sct_result_free(r);
+    sct_model_free(model);
+    free(text);
+}
+END_TEST
+
+static bool stop_at_once(const sct_progress *progress, void *user)
+{
+    (void)progress;
+    return ++*(int *)user < 3;
+}
+
+START_TEST(an_observer_can_stop_the_search_and_gets_the_best_so_far)
+{
+    sct_model *model = read_file("models/demo_roof.json");
+    int calls = 0;
+    sct_settings settings = sct_settings_defaults();
+    settings.observer = stop_at_once;
+    settings.user = &calls;
+    sct_result *r = size_with(model, &settings);
+    ck_assert_int_eq(r->outcome, SCT_STOPPED);
+    ck_assert_int_eq(calls, 3);
+    for (int g = 0; g < r->n_groups; g++) ck_assert_ptr_nonnull(r->groups[g].section);
+    sct_result_free(r);
+    sct_model_free(model);
+}
+END_TEST
+
+START_TEST(unsound_settings_are_refused)
+{
+    sct_model *model = read_file("models/demo_roof.json");
+    sct_issues *issues = sct_issues_new();
+    sct_result *r = NULL;
+    const double bad[] = {0.0, -1.0, NAN, 1.0};
+    for (int k = 0; k < 4; k++) {
+        sct_settings settings = sct_settings_defaults();
+        settings.tolerance = bad[k];
+        ck_assert_int_eq(sct_size(model, &settings, &r, issues), SCT_BAD_INPUT);
+        ck_assert_ptr_null(r);
+    }
+    sct_issues_free(issues);
+    sct_model_free(model);
+}
+END_TEST
+
+START_TEST(check_refuses_a_group_without_a_size)
+{
+    sct_model *model = read_file("models/demo_roof.json");
+    sct_issues *issues = sct_issues_new();
+    sct_result *r = NULL;
+    ck_assert_int_eq(sct_check(model, NULL, &r, issues), SCT_BAD_INPUT);
+    ck_assert_ptr_null(r);
+    ck_assert_int_eq(sct_issues_errors(issues), 7);
+    sct_issues_free(issues);
+    sct_model_free(model);
+}
+END_TEST
+
+/* ---- search ------------------------------------------------------------------------------------------------------- */
+
+START_TEST(the_same_run_gives_the_same_bits_with_either_engine_near)
+{
+    sct_model *model = read_file("models/benchmarks/72bar_case1.json");
+    sct_settings settings = sct_settings_defaults();
+    sct_result *a = size_with(model, &settings), *b = size_with(model, &settings);
+    ck_assert(memcmp(&a->mass, &b->mass, sizeof a->mass) == 0);
+    for (int g = 0; g < a->n_groups; g++) ck_assert(memcmp(&a->groups[g].A, &b->groups[g].A, sizeof(double)) == 0);
+    settings.engine = SCT_ENGINE_SPARSE;
+    sct_result *c = size_with(model, &settings);
+    ck_close(c->mass, a->mass, 1e-6);
+    sct_result_free(a);
+    sct_result_free(b);
+    sct_result_free(c);
+    sct_model_free(model);
+}
+END_TEST
+
+/* A price is what the limit costs: size again with a limit 0.1 % wider, compare the saving with the multiplier. */
+START_TEST(the_price_of_deflection_is_what_a_wider_limit_saves)
+{
+    const char *format = "\"buckling\": { \"by\": \"none\" }, \"deflection\": [ { \"joints\": [\"C\"], \"direction\": \"y\", \"at_most\": %.6f } ]";
+    char limits[2][200], *text[2];
+    sct_result *r[2];
+    sct_model *model[2];
+    for (int k = 0; k < 2; k++) {
+        snprintf(limits[k], sizeof limits[k], format, k == 0 ? 1.3 : 1.3013);
+        text[k] = triangle("\"area\": { \"at_least\": 200, \"at_most\": 900 }", AREA, limits[k], NULL);
+        model[k] = parse(text[k]);
+        r[k] = size_with(model[k], NULL);
+    }
+    ck_assert_int_ge(r[0]->n_prices, 1);
+    ck_assert_int_eq(r[0]->prices[0].kind, SCT_CHECK_DEFLECTION);
+    ck_assert_double_eq_tol(r[0]->prices[0].multiplier * 0.001, r[0]->mass - r[1]->mass, 2e-3 * (r[0]->mass - r[1]->mass));
+    for (int k = 0; k < 2; k++) {
+        sct_result_free(r[k]);
+        sct_model_free(model[k]);
+        free(text[k]);
+    }
+}
+END_TEST
+
+/* Ladder and free area in one truss. */
+START_TEST(ladders_and_free_areas_mix)
+{
+    char *text = triangle(AREA, "\"family\": \"CHS\", \"buckling\": { \"by\": \"Euler and Johnson\", \"safety\": 1.92 }, \"slenderness\": { \"compression\": 180 }",
+                          "\"buckling\": { \"by\": \"none\" }, \"deflection\": [ { \"joints\": [\"C\"], \"direction\": \"y\", \"at_most\": 4 } ]", NULL);
+    sct_model *model = parse(text);
+    sct_result *r = size_with(model, NULL);
+    ck_assert_int_eq(r->outcome, SCT_SECTIONS_FOUND);
+    ck_assert(r->kept);
+    ck_assert_ptr_null(r->groups[0].section);
+    ck_assert_ptr_nonnull(r->groups[1].section);
+    sct_result_free(r);
+    sct_model_free(model);
+    free(text);
+}
+END_TEST
+
+/* Every lighter pair of sections fails: checked one by one through sct_check on a model with the sections put in. */
+START_TEST(no_lighter_pair_of_sections_keeps_the_limits)
+{
+    static const char *const LIST[] = {"CHS 42.4x2.6", "CHS 48.3x2.6", "CHS 48.3x3.2", "CHS 60.3x2.6", "CHS 60.3x3.2", "CHS 60.3x4",
+                                       "CHS 76.1x2.6", "CHS 76.1x3.2", "CHS 76.1x4", "CHS 88.9x3.2", "CHS 88.9x4", "CHS 114.3x3.6"};
+    enum { N = sizeof LIST / sizeof LIST[0] };
+    char list[400] = "\"family\": \"CHS\", \"sections\": [";
+    for (int k = 0; k < N; k++) snprintf(list + strlen(list), sizeof list - strlen(list), "%s\"%s\"", k ? ", " : "", LIST[k]);
+    strcat(list, "]");
+    const char *limits = "\"buckling\": { \"by\": \"Euler and Johnson\", \"safety\": 1.92 }, \"slenderness\": { \"any\": 300, \"compression\": 180 },"
+                         "\"deflection\": [ { \"joints\": [\"C\"], \"direction\": \"y\", \"at_most\": 4.4 } ]";
+    char *text = triangle(list, list, limits, NULL);
+    sct_model *model = parse(text);
+    sct_result *r = size_with(model, NULL);
+    ck_assert(r->kept);
+    double best = INFINITY;
+    for (int a = 0; a < N; a++)
+        for (int b = 0; b < N; b++) {
+            char one[80], two[80];
+            snprintf(one, sizeof one, "\"family\": \"CHS\", \"section\": \"%s\"", LIST[a]);
+            snprintf(two, sizeof two, "\"family\": \"CHS\", \"section\": \"%s\"", LIST[b]);
+            char *held = triangle(one, two, limits, NULL);
+            sct_model *given = parse(held);
+            sct_issues *issues = sct_issues_new();
+            sct_result *checked = NULL;
+            ck_assert_int_eq(sct_check(given, NULL, &checked, issues), SCT_OK);
+            if (checked->kept) best = fmin(best, checked->mass);
+            sct_result_free(checked);
+            sct_issues_free(issues);
+            sct_model_free(given);
+            free(held);
+        }
+    ck_close(r->mass, best, 1e-12);
+    sct_result_free(r);
+    sct_model_free(model);
+    free(text);
+}
+END_TEST
+
+/* The published method in raw areas: slower, and to be told from the default only by its path. */
+START_TEST(the_plain_method_reaches_the_same_optimum_of_a_small_problem)
+{
+    sct_model *model = read_file("models/benchmarks/3bar_symmetric.json");
+    sct_settings settings = sct_settings_defaults();
+    sct_result *fine = size_with(model, &settings);
+    settings.plain = true;
+    settings.starts = 1;
+    settings.iterations = 2000;
+    sct_result *plain = size_with(model, &settings);
+    ck_assert_double_ge(plain->mass, fine->mass * (1 - 1e-6));
+    sct_result_free(fine);
+    sct_result_free(plain);
+    sct_model_free(model);
+}
+END_TEST
+
+int main(void)
+{
+    Suite *s = suite_create("sizing");
+    TCase *c = tcase_create("sizing");
+    tcase_set_timeout(c, 60);
+    tcase_add_loop_test(c, derivatives_agree_with_differences, 0, 4);
+    tcase_add_test(c, derivatives_agree_with_self_weight_temperature_and_settlement);
+    tcase_add_test(c, a_determinate_truss_gets_force_over_allowable_stress);
+    tcase_add_test(c, a_strut_under_euler_has_its_closed_form);
+    tcase_add_test(c, a_deflection_limit_alone_has_its_closed_form);
+    tcase_add_test(c, slack_limits_leave_the_smallest_sizes);
+    tcase_add_test(c, an_infeasible_problem_is_told_with_its_limit);
+    tcase_add_test(c, an_impossible_slenderness_is_told_before_the_search);
+    tcase_add_test(c, slenderness_of_compression_binds_compressed_members_only);
+    tcase_add_test(c, without_iterations_the_start_is_checked_and_marked);
+    tcase_add_test(c, an_observer_can_stop_the_search_and_gets_the_best_so_far);
+    tcase_add_test(c, unsound_settings_are_refused);
+    tcase_add_test(c, check_refuses_a_group_without_a_size);
+    tcase_add_test(c, the_same_run_gives_the_same_bits_with_either_engine_near);
+    tcase_add_test(c, the_price_of_deflection_is_what_a_wider_limit_saves);
+    tcase_add_test(c, ladders_and_free_areas_mix);
+    tcase_add_test(c, no_lighter_pair_of_sections_keeps_the_limits);
+    tcase_add_test(c, the_plain_method_reaches_the_same_optimum_of_a_small_problem);
+    suite_add_tcase(s, c);
+    return run_suite(s);
+}
