@@ -118,6 +118,7 @@ static void read_units(sct_reader *r, const sct_node *node)
         f->unit_is_wrong[SLOTS[i]] = found[i] != NULL || KEYS[i].required != NULL; /* unless it is found right */
         if (!sct_fields_string(f, found[i], "the name of a unit", &name)) continue;
         f->unit[SLOTS[i]] = sct_unit_read(name, quantity, fault);
+        f->unit_is_wrong[SLOTS[i]] = f->unit[SLOTS[i]] == NULL;
         if (f->unit[SLOTS[i]] == NULL) sct_fields_error(f, found[i], "%s", fault);
     }
     const sct_unit *length = f->unit[SCT_LENGTH];
