@@ -66,14 +66,16 @@ static void add_area(sct_text *out, double A, bool us_customary)
     double x = sct_unit_from_SI(unit, A);
     while (sct_unit_to_SI(unit, x) >= A) x = nextafter(x, 0);
     while (sct_unit_to_SI(unit, x) < A) x = nextafter(x, INFINITY);
-    for (int digits = 4; digits <= 17; digits++) { /* 17 give x itself */
-        double read = NAN;
+    double read = x;
+    for (int digits = 1; digits <= 17; digits++) { /* 17 give x itself */
         sct_number_format(shown, sizeof shown, "%.*g", digits, x);
         if (!sct_number_read(shown, strlen(shown), &read)) continue;
         const double A_read = sct_unit_to_SI(unit, read);
         if (A_read >= A && A_read <= nextafter(A, INFINITY)) break;
     }
-    sct_text_format(out, "\"%s %s\"", shown, unit->name);
+    sct_text_add(out, "\"");
+    sct_text_number(out, read);
+    sct_text_format(out, " %s\"", unit->name);
 }
 
 static void new_line(printer *p, int indent)
