@@ -30,9 +30,9 @@ static inline sct_result *synthetic_result(synthetic *s)
     s->groups[1] = (sct_group_result){"strut", "S355H", NULL, true, 1, 0.001, {NAN, NAN}, 0, 3.0, 7.85, 23.55, NAN, 1};
     s->members[0] = (sct_member_result){
         "R1",   0,       0,        2, 3.25, {3.25, 1.5}, {163.25, 75.1}, 18.05, SCT_CHECK_BUCKLING_IN, 1, -45.26e3,
-        0.9301, 12.04e3, -45.26e3, 0, 1};
+        0.9301, 12.04e3, -45.26e3, 0, 1,    true};
     s->members[1] = (sct_member_result){"R2", 1,   2,    1,   3.0, {3.0, 3.0}, {NAN, NAN}, 23.55, SCT_CHECK_TENSION,
-                                        0,    8e3, 0.25, 8e3, 1e3, 0,          1};
+                                        0,    8e3, 0.25, 8e3, 1e3, 0,          1,          false};
     s->combinations[0] = "S1";
     s->combinations[1] = "W";
     s->N[0] = 12.04e3, s->N[1] = 8e3, s->N[2] = -45.26e3, s->N[3] = 1e3;

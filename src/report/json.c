@@ -221,6 +221,7 @@ static void add_members(writer *w, const sct_result *r)
         string(w, "check", sct_check_text(member->check));
         string(w, "combination", combination_name(r, member->combination));
         number(w, "force_N", member->N);
+        boolean(w, "is_compressed", member->compressed);
         number(w, "largest_force_N", member->N_max);
         string(w, "largest_force_in", combination_name(r, member->N_max_in));
         number(w, "smallest_force_N", member->N_min);

@@ -313,18 +313,23 @@ static int next_end(const sct_result *r, double after, double *mass)
     return n;
 }
 
-/* "8 starts: 5 ended at the best, 2296 kg; 3 at 2303 kg; 1 without convergence" */
+/* "8 starts over continuous sizes: 5 ended at the best, 2296 kg; 2 at 2303 kg; 1 without convergence." */
 static void add_ends(const page *p, sct_text *line)
 {
     const sct_result *r = p->r;
     int told = 0, converged = 0, listed = 0;
     double mass = 0;
-    sct_text_format(line, "%d %s: ", r->n_starts, r->n_starts == 1 ? "start" : "starts");
+    sct_text_format(line, "%d %s over continuous sizes: ", r->n_starts, r->n_starts == 1 ? "start" : "starts");
     for (int i = 0; i < r->n_starts; i++) converged += r->starts[i].outcome == SCT_OPTIMUM;
     while (listed < MOST_ENDS) {
         const int n = next_end(r, mass, &mass);
         if (n == 0) break;
-        sct_text_format(line, listed == 0 ? "%d ended at the best, " : "; %d at ", n);
+        if (listed > 0)
+            sct_text_format(line, "; %d at ", n);
+        else if (n == r->n_starts)
+            sct_text_add(line, n == 1 ? "it ended at " : "all ended at ");
+        else
+            sct_text_format(line, "%d ended at the best, ", n);
         add_mass(p, line, mass);
         told += n;
         listed++;
@@ -333,7 +338,25 @@ static void add_ends(const page *p, sct_text *line)
     if (r->n_starts > converged) {
         sct_text_format(line, "%s%d ended without convergence", converged > 0 ? "; " : "", r->n_starts - converged);
     }
-    sct_text_add(line, ".");
+    sct_text_format(line, ". %d analyses in all.", r->analyses);
+}
+
+static void add_evidence(const page *p, sct_text *line)
+{
+    const sct_result *r = p->r;
+    if (isfinite(r->kkt)) {
+        sct_text_format(line, " Best: KKT residual %.1g, ", r->kkt);
+        if (r->violation > 0)
+            sct_text_format(line, "limits met to %.1g.", r->violation);
+        else
+            sct_text_add(line, "every limit met.");
+    }
+    if (!(fabs(r->mass - r->mass_continuous) > SAME_MASS * r->mass)) return; /* also where there is none: NAN */
+    sct_text_add(line, " The design shown weighs ");
+    add_mass(p, line, r->mass);
+    sct_text_add(line, "; ");
+    add_mass(p, line, r->mass_continuous);
+    sct_text_add(line, " is where the continuous search ended, not a bound.");
 }
 
 static void add_search(const page *p)
@@ -343,22 +366,10 @@ static void add_search(const page *p)
     heading(p, "How it was found");
     if (r->n_starts > 0) {
         add_ends(p, &line);
-        sct_text_format(&line, " %d %s in all.", r->analyses, r->analyses == 1 ? "analysis" : "analyses");
-        if (isfinite(r->kkt)) {
-            sct_text_format(&line, " Best: KKT residual %.1g, ", r->kkt);
-            if (r->violation > 0)
-                sct_text_format(&line, "limits met to %.1g.", r->violation);
-            else
-                sct_text_add(&line, "every limit met.");
-        }
-        if (isfinite(r->mass_continuous)) {
-            sct_text_add(&line, " The descent over continuous areas ended at ");
-            add_mass(p, &line, r->mass_continuous);
-            sct_text_add(&line, ": what the search found, not a bound.");
-        }
+        add_evidence(p, &line);
     } else {
-        sct_text_format(&line, "The sizes given were checked (%s); no search was made. %d %s.",
-                        sct_outcome_text(r->outcome), r->analyses, r->analyses == 1 ? "analysis" : "analyses");
+        sct_text_format(&line, "The sizes given were checked; no search was made. %d %s.", r->analyses,
+                        r->analyses == 1 ? "analysis" : "analyses");
     }
     if (line.failed)
         p->out->failed = true;
