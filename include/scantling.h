@@ -160,7 +160,7 @@ typedef struct sct_settings {
     unsigned seed;       /* of the random starts; default 1 */
     int iterations;      /* of each start, default 100; 0: the start design is checked and marked not optimised */
     double tolerance;    /* on the KKT residual and on ln(value/limit); default 1e-6; > 0 and <= 1e-2 */
-    bool plain;          /* the published constrained steepest descent in raw areas, for comparison; default false */
+    bool plain;          /* the published constrained steepest descent in areas, for comparison; default false */
     sct_engine engine;   /* default SCT_ENGINE_AUTO */
     sct_observer *observer; /* default NULL */
     void *user;

@@ -103,7 +103,7 @@ static void close_probe(probe *p)
 
 /* Gradients of f and of every active constraint against central differences, and the curvature of a random mixture
  * against differences of gradients. */
-static void check_derivatives(const sct_model *model, bool plain, unsigned seed)
+static void check_derivatives(const sct_model *model, bool plain, unsigned seed, double tol)
 {
     probe p = open_probe(model, plain);
     const int n = p.nlp->n, m = p.nlp->m;
@@ -143,7 +143,7 @@ static void check_derivatives(const sct_model *model, bool plain, unsigned seed)
             double change = 0.0;
             for (int j = 0; j < m; j++)
                 change += mu[j] * (dg_up[(size_t)j * un + (size_t)w] - dg_down[(size_t)j * un + (size_t)w]) / (2 * h);
-            ck_assert_double_eq_tol(H[(size_t)v * un + (size_t)w], change, 1e-5 * (1 + fabs(change)));
+            ck_assert_double_eq_tol(H[(size_t)v * un + (size_t)w], change, tol * (1 + fabs(change)));
         }
     }
     free(x); free(y); free(df); free(g); free(up); free(down); free(dg); free(dg_up); free(dg_down); free(H); free(mu); free(rows);
@@ -156,8 +156,9 @@ START_TEST(derivatives_agree_with_differences)
                                         "models/benchmarks/25bar.json", "models/benchmarks/18bar_euler.json"};
     sct_model *model = read_file(FILES[_i]);
     for (unsigned seed = 1; seed <= 3; seed++) {
-        check_derivatives(model, false, seed);
-        check_derivatives(model, true, seed);
+        /* the second derivative of a ladder's envelope jumps at its knots: a difference across one is off */
+        check_derivatives(model, false, seed, _i == 0 ? 1e-4 : 1e-5);
+        check_derivatives(model, true, seed, 1e-5);
     }
     sct_model_free(model);
 }
@@ -184,7 +185,7 @@ START_TEST(derivatives_agree_with_self_weight_temperature_and_settlement)
         " \"6\": { \"lack_of_fit\": \"3 mm\" } } }, \"S\": { \"settlements\": { \"C\": [\"0 mm\", \"-12 mm\"] } } },"
         "\"combinations\": { \"1\": { \"for\": \"allowable\", \"sum\": { \"G\": 1, \"T\": 1 } }, \"2\": { \"for\": \"allowable\", \"sum\": { \"G\": 0.9, \"T\": -0.5, \"S\": 1 } } },"
         "\"limits\": { \"buckling\": { \"by\": \"none\" }, \"deflection\": [ { \"joints\": \"all\", \"direction\": \"y\", \"at_most\": \"10 mm\" } ] } }");
-    for (unsigned seed = 1; seed <= 5; seed++) check_derivatives(model, false, seed);
+    for (unsigned seed = 1; seed <= 5; seed++) check_derivatives(model, false, seed, 1e-5);
     sct_model_free(model);
 }
 END_TEST
@@ -396,23 +397,26 @@ START_TEST(the_same_run_gives_the_same_bits_with_either_engine_near)
 }
 END_TEST
 
-/* A price is what the limit costs: size again with a limit 0.1 % wider, compare the saving with the multiplier. */
+/* A price is what the limit costs: size again with limits 0.05 % wider and narrower, compare with the multiplier. */
 START_TEST(the_price_of_deflection_is_what_a_wider_limit_saves)
 {
-    const char *format = "\"buckling\": { \"by\": \"none\" }, \"deflection\": [ { \"joints\": [\"C\"], \"direction\": \"y\", \"at_most\": %.6f } ]";
-    char limits[2][200], *text[2];
-    sct_result *r[2];
-    sct_model *model[2];
-    for (int k = 0; k < 2; k++) {
-        snprintf(limits[k], sizeof limits[k], format, k == 0 ? 1.3 : 1.3013);
-        text[k] = triangle("\"area\": { \"at_least\": 200, \"at_most\": 900 }", AREA, limits[k], NULL);
+    const double limit[3] = {1.3, 1.29935, 1.30065};
+    char words[200], *text[3];
+    sct_result *r[3];
+    sct_model *model[3];
+    for (int k = 0; k < 3; k++) {
+        snprintf(words, sizeof words,
+                 "\"buckling\": { \"by\": \"none\" }, \"deflection\": [ { \"joints\": [\"C\"], \"direction\": \"y\", \"at_most\": %.6f } ]", limit[k]);
+        text[k] = triangle("\"area\": { \"at_least\": 200, \"at_most\": 900 }", AREA, words, NULL);
         model[k] = parse(text[k]);
         r[k] = size_with(model[k], NULL);
     }
-    ck_assert_int_ge(r[0]->n_prices, 1);
+    ck_assert_int_ge(r[0]->n_prices, 2);
     ck_assert_int_eq(r[0]->prices[0].kind, SCT_CHECK_DEFLECTION);
-    ck_assert_double_eq_tol(r[0]->prices[0].multiplier * 0.001, r[0]->mass - r[1]->mass, 2e-3 * (r[0]->mass - r[1]->mass));
-    for (int k = 0; k < 2; k++) {
+    ck_assert_int_eq(r[0]->prices[1].kind, SCT_CHECK_LARGEST);
+    const double saved = r[1]->mass - r[2]->mass;
+    ck_assert_double_eq_tol(r[0]->prices[0].multiplier * 0.001, saved, 1e-4 * saved);
+    for (int k = 0; k < 3; k++) {
         sct_result_free(r[k]);
         sct_model_free(model[k]);
         free(text[k]);
@@ -441,7 +445,7 @@ END_TEST
 START_TEST(no_lighter_pair_of_sections_keeps_the_limits)
 {
     static const char *const LIST[] = {"CHS 42.4x2.6", "CHS 48.3x2.6", "CHS 48.3x3.2", "CHS 60.3x2.6", "CHS 60.3x3.2", "CHS 60.3x4",
-                                       "CHS 76.1x2.6", "CHS 76.1x3.2", "CHS 76.1x4", "CHS 88.9x3.2", "CHS 88.9x4", "CHS 114.3x3.6"};
+                                       "CHS 76.1x2.6", "CHS 76.1x3.2", "CHS 76.1x4", "CHS 88.9x3.2", "CHS 88.9x4", "CHS 114.3x3.2"};
     enum { N = sizeof LIST / sizeof LIST[0] };
     char list[400] = "\"family\": \"CHS\", \"sections\": [";
     for (int k = 0; k < N; k++) snprintf(list + strlen(list), sizeof list - strlen(list), "%s\"%s\"", k ? ", " : "", LIST[k]);
@@ -476,7 +480,7 @@ START_TEST(no_lighter_pair_of_sections_keeps_the_limits)
 }
 END_TEST
 
-/* The published method in raw areas: slower, and to be told from the default only by its path. */
+/* The published method in plain areas: slower, the same optimum where it arrives. */
 START_TEST(the_plain_method_reaches_the_same_optimum_of_a_small_problem)
 {
     sct_model *model = read_file("models/benchmarks/3bar_symmetric.json");
@@ -486,7 +490,9 @@ START_TEST(the_plain_method_reaches_the_same_optimum_of_a_small_problem)
     settings.starts = 1;
     settings.iterations = 2000;
     sct_result *plain = size_with(model, &settings);
-    ck_assert_double_ge(plain->mass, fine->mass * (1 - 1e-6));
+    ck_assert(plain->kept);
+    ck_close(plain->mass, fine->mass, 1e-4);
+    ck_assert_int_gt(plain->starts[0].analyses, fine->starts[0].analyses);
     sct_result_free(fine);
     sct_result_free(plain);
     sct_model_free(model);

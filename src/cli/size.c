@@ -123,7 +123,7 @@ const cli_command CLI_SIZE = {
                 {0, "seed", "N", "of the random starts (default 1)"},
                 {0, "iterations", "N", "of each start at most (default 100; 0: check the start design)"},
                 {0, "tolerance", "T", "on optimality and limits (default 1e-6)"},
-                {0, "plain", NULL, "the published method in raw areas, for comparison"},
+                {0, "plain", NULL, "the published method in plain areas, for comparison (slow)"},
                 {0, "progress", "WHEN", "auto, always, never, or json: one object a line"}},
     .run = run_size,
 };

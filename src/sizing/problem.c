@@ -22,6 +22,7 @@ struct sct_problem {
     double *lower, *upper;        /* ln A */
     sct_bound_source *source;
     double *x_lower, *x_upper;    /* the same in the form of x */
+    double *ref, mass_unit;       /* plain form: areas and mass are relative to the middle of the ranges; else 1 kg */
     int *cluster;
     sct_nlp nlp;
     /* at the latest value call */
@@ -100,7 +101,7 @@ static sct_status value(void *user, const double x[], double *f, double g[])
     sct_status status = SCT_OK;
     if (!P->have_value || memcmp(x, P->x, (size_t)P->n * sizeof *x) != 0) status = judge(P, x);
     if (status != SCT_OK) return status;
-    *f = P->f;
+    *f = P->f / P->mass_unit;
     for (int j = 0; j < P->nlp.m; j++) g[j] = P->plain ? exp(P->g[j]) - 1.0 : P->g[j];
     return SCT_OK;
 }
@@ -140,7 +141,7 @@ static sct_status gradient(void *user, const double x[], int n_rows, const int r
     const sct_structure *st = P->st;
     for (int v = 0; v < P->n; v++) {
         const double w = P->duty->unit_mass[st->group_of_var[v]];
-        df[v] = P->plain ? w : w * P->A[st->group_of_var[v]];
+        df[v] = P->plain ? w * P->ref[v] / P->mass_unit : w * P->A[st->group_of_var[v]];
     }
     if (n_rows > 0) need_du(P);
     for (int r = 0; r < n_rows; r++) {
@@ -306,9 +307,12 @@ static sct_status set_bounds(sct_problem *P, const bool compressed[], sct_fault 
         else if (P->st->model->groups[group].kind == SCT_LADDER) status = ladder_bounds(P, v, compressed, why);
         else status = free_bounds(P, v, compressed, why);
         if (status != SCT_OK) return status;
-        P->x_lower[v] = P->plain ? exp(P->lower[v]) : P->lower[v];
-        P->x_upper[v] = P->plain ? exp(P->upper[v]) : P->upper[v];
+        P->ref[v] = exp(0.5 * (P->lower[v] + P->upper[v]));
+        P->x_lower[v] = P->plain ? exp(P->lower[v]) / P->ref[v] : P->lower[v];
+        P->x_upper[v] = P->plain ? exp(P->upper[v]) / P->ref[v] : P->upper[v];
+        if (P->plain) P->mass_unit += P->duty->unit_mass[group] * P->ref[v];
     }
+    if (!P->plain) P->mass_unit = 1.0;
     return SCT_OK;
 }
 
@@ -336,7 +340,7 @@ static sct_status allocate(sct_problem *P)
     sct_arena *a = P->arena;
 #define ARRAY(what, count) ((P->what = sct_arena_array(a, (count), sizeof *P->what)) != NULL)
     const bool ok = ARRAY(is_fixed, n_groups) && ARRAY(envelope, n_groups) && ARRAY(lower, n) && ARRAY(upper, n) &&
-                    ARRAY(source, n) && ARRAY(x_lower, n) && ARRAY(x_upper, n) && ARRAY(cluster, m) &&
+                    ARRAY(source, n) && ARRAY(x_lower, n) && ARRAY(x_upper, n) && ARRAY(ref, n) && ARRAY(cluster, m) &&
                     ARRAY(x, n) && ARRAY(A, n_groups) && ARRAY(z, n) && ARRAY(need, (size_t)P->n_bar_rows) && ARRAY(g, m) &&
                     ARRAY(du, n_cases * n * n_dof) && ARRAY(dN, n_cases * n) && ARRAY(row, n) &&
                     ARRAY(wN, n_cases * n_bars) && ARRAY(wu, n_cases * n_dof) && ARRAY(work, n_cases * n_dof);
@@ -395,11 +399,13 @@ void sct_problem_free(sct_problem *P)
 
 const sct_nlp *sct_problem_nlp(const sct_problem *P) { return &P->nlp; }
 
+double sct_problem_mass_unit(const sct_problem *P) { return P->mass_unit; }
+
 void sct_problem_areas(const sct_problem *P, const double x[], double A[])
 {
     for (int g = 0; g < P->st->n_groups; g++) {
         const int v = P->st->var_of_group[g];
-        A[g] = P->is_fixed[g] ? P->fixed.A[g] : P->plain ? x[v] : exp(x[v]);
+        A[g] = P->is_fixed[g] ? P->fixed.A[g] : P->plain ? x[v] * P->ref[v] : exp(x[v]);
     }
 }
 
@@ -407,7 +413,7 @@ void sct_problem_point(const sct_problem *P, const double A[], double x[])
 {
     for (int v = 0; v < P->n; v++) {
         const double s = fmin(fmax(log(A[P->st->group_of_var[v]]), P->lower[v]), P->upper[v]);
-        x[v] = P->plain ? exp(s) : s;
+        x[v] = P->plain ? exp(s) / P->ref[v] : s;
     }
 }
 

@@ -6,7 +6,8 @@
  *     joint   g = ln(|u| / limit)
  *
  * In z = ln A mass has equal gradient and diagonal Hessian (w_g A_g), which is the metric; forces of a determinate truss
- * do not depend on z, so its constraints are nearly linear. Plain setting: raw areas and needed / present - 1.
+ * do not depend on z, so its constraints are nearly linear. Plain setting: areas and mass relative to the middle of their
+ * ranges, and needed / present - 1, for comparison.
  */
 #ifndef SCT_SIZING_PROBLEM_H
 #define SCT_SIZING_PROBLEM_H
@@ -37,6 +38,9 @@ sct_status sct_problem_new(sct_duty *duty, const bool compressed[], const bool i
 void sct_problem_free(sct_problem *problem);
 
 const sct_nlp *sct_problem_nlp(const sct_problem *problem);
+
+/** [kg] what the objective counts in. */
+double sct_problem_mass_unit(const sct_problem *problem);
 
 /** Areas of all groups (n_groups) at x, and back. */
 void sct_problem_areas(const sct_problem *problem, const double x[], double A[]);

@@ -132,7 +132,7 @@ static double best_kept_mass(const job *J)
 
 static bool tell(job *J, const char *stage, double mass, double violation, double best)
 {
-    if (J->settings.observer == NULL) return true;
+    if (J->settings.observer == NULL || J->interrupted) return !J->interrupted;
     const sct_progress progress = {stage, J->n_starts + (stage[0] == 'd'), J->settings.starts,
                                    sct_solver_analyses(J->duty->solver), mass, violation, best};
     if (!J->settings.observer(&progress, J->settings.user)) J->interrupted = true;
@@ -142,7 +142,7 @@ static bool tell(job *J, const char *stage, double mass, double violation, doubl
 static bool tell_descent(const sct_descent_step *step, void *user)
 {
     job *J = user;
-    return tell(J, "descent", step->f, step->violation, best_kept_mass(J));
+    return tell(J, "descent", step->f * sct_problem_mass_unit(J->problem), step->violation, best_kept_mass(J));
 }
 
 static bool tell_sections(double mass, void *user)
@@ -199,7 +199,7 @@ static sct_status run_start(job *J, int k, sct_random *random)
         return info.status;
     sct_start_result *start = &J->starts[J->n_starts];
     *start = (sct_start_result){
-        .mass = info.f, .violation = info.violation, .kkt = info.kkt, .iterations = info.iterations,
+        .mass = info.f * sct_problem_mass_unit(J->problem), .violation = info.violation, .kkt = info.kkt, .iterations = info.iterations,
         .analyses = sct_solver_analyses(J->duty->solver) - J->analyses_before,
         .outcome = info.status == SCT_OK            ? SCT_OPTIMUM
                    : info.status == SCT_INFEASIBLE  ? SCT_NO_FEASIBLE_DESIGN
