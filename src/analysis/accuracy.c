@@ -98,11 +98,12 @@ static double largest(size_t n, const double a[])
     return most;
 }
 
-/* |change| relative to |value|, or to a part of the case's largest when the value is smaller; NAN stays NAN. */
+/* |change| relative to |value|, or to a part of the case's largest when the value is smaller; NAN is never small. */
 static double relative(double change, double value, double scale)
 {
     const double of = fmax(fabs(value), SMALL_PART * scale);
-    return change == 0.0 ? 0.0 : fabs(change) / of;
+    if (change == 0.0) return 0.0;
+    return of > 0.0 ? fabs(change) / of : INFINITY;
 }
 
 /* fmax that keeps a NAN. */
@@ -212,11 +213,12 @@ int sct_stiffness_words(const sct_structure *st, const double A[], sct_text *tex
             softest = e;
         }
     }
+    const double ratio = least > 0.0 ? most / least : INFINITY;
     sct_text_add(text, "member ");
     sct_motion_name(text, st->model->members[stiffest].name);
-    sct_text_format(text, " is %.1e times as stiff (E A / L) as member ", most / least);
+    sct_text_format(text, " is %.1e times as stiff (E A / L) as member ", ratio);
     sct_motion_name(text, st->model->members[softest].name);
-    const bool unlike = most / least > 1e4; /* below, members alone do not cost half of the digits */
+    const bool unlike = ratio > 1e4; /* below, members alone do not cost half of the digits */
     sct_text_add(text, unlike ? "; make them more alike" : ", which is not much: the shape itself is almost movable");
     return stiffest;
 }

@@ -6,113 +6,11 @@
 #include <string.h>
 
 #include "analysis/motion.h"
+#include "numerics/span.h"
 
 /* Sine of the angle (or lever arm as a fraction of the part's size) below which a bar or a support is no hold: it would
  * give 1e-18 of a good one's stiffness, below the rounding of any coordinate that a person measures. */
 static const double NO_HOLD = 1e-9;
-
-/* ---- small linear algebra: rows of up to 6 numbers ------------------------------------------------------------ */
-
-enum { MOST = 6 };
-typedef double row[MOST];
-
-static double dot(int n, const double a[], const double b[])
-{
-    double sum = 0.0;
-    for (int i = 0; i < n; i++) sum += a[i] * b[i];
-    return sum;
-}
-
-static void cross(const double a[3], const double b[3], double c[3])
-{
-    c[0] = a[1] * b[2] - a[2] * b[1];
-    c[1] = a[2] * b[0] - a[0] * b[2];
-    c[2] = a[0] * b[1] - a[1] * b[0];
-}
-
-/* v -= its parts along the r orthonormal rows of E; twice, so that what is left is orthogonal to rounding. */
-static void remove_span(int n, int r, row E[], double v[])
-{
-    for (int i = 0; i < 2 * r; i++) {
-        const double c = dot(n, E[i % r], v);
-        for (int j = 0; j < n; j++) v[j] -= c * E[i % r][j];
-    }
-}
-
-static void normalise(int n, double v[])
-{
-    const double length = sqrt(dot(n, v, v));
-    for (int i = 0; i < n; i++) v[i] /= length;
-}
-
-/* Orthonormal null space of m rows of length n, in N; returns its dimension. The rows are overwritten.
- * Gram-Schmidt with the longest row next, then completion by unit vectors. Rows shorter than NO_HOLD count as zero. */
-static int null_space(int m, int n, row rows[], row N[])
-{
-    row E[MOST];
-    int rank = 0;
-    while (rank < n) {
-        int longest = -1;
-        double best = NO_HOLD * NO_HOLD;
-        for (int i = 0; i < m; i++) {
-            const double length2 = dot(n, rows[i], rows[i]);
-            if (length2 > best) {
-                best = length2;
-                longest = i;
-            }
-        }
-        if (longest < 0) break;
-        memcpy(E[rank], rows[longest], sizeof(row));
-        normalise(n, E[rank++]);
-        for (int i = 0; i < m; i++) remove_span(n, rank, E, rows[i]);
-    }
-    for (int k = rank; k < n; k++) {
-        double best = -1.0;
-        for (int axis = 0; axis < n; axis++) {
-            row unit = {0.0};
-            unit[axis] = 1.0;
-            remove_span(n, k, E, unit);
-            const double length2 = dot(n, unit, unit);
-            if (length2 <= best + 1e-12) continue; /* ties: the first axis */
-            best = length2;
-            memcpy(E[k], unit, sizeof(row));
-        }
-        normalise(n, E[k]);
-        memcpy(N[k - rank], E[k], sizeof(row));
-    }
-    return n - rank;
-}
-
-/* Gauss-Jordan on columns [from, to): brings rows first, first + 1, ... of V (k rows of length n) to a pivot 1 that no
- * other row has. Returns how many; pivot[] (room for them, or NULL) gets the columns. Full pivoting. */
-static int reduce(int k, int n, int first, int from, int to, row V[], int pivot[])
-{
-    int done = first;
-    for (; done < k; done++) {
-        int r = -1, c = -1;
-        double best = NO_HOLD;
-        for (int i = done; i < k; i++) {
-            for (int j = from; j < to; j++) {
-                if (!(fabs(V[i][j]) > best * (1.0 + 1e-9))) continue; /* ties: the first column */
-                best = fabs(V[i][j]);
-                r = i;
-                c = j;
-            }
-        }
-        if (r < 0) break;
-        row top;
-        memcpy(top, V[r], sizeof(row));
-        memcpy(V[r], V[done], sizeof(row));
-        for (int j = 0; j < n; j++) V[done][j] = top[j] / top[c];
-        for (int i = 0; i < k; i++) {
-            const double factor = V[i][c];
-            if (i == done) continue;
-            for (int j = 0; j < n; j++) V[i][j] -= factor * V[done][j];
-        }
-        if (pivot != NULL) pivot[done - first] = c;
-    }
-    return done - first;
-}
 
 /* ---- the graph -------------------------------------------------------------------------------------------------- */
 
@@ -137,8 +35,8 @@ typedef struct graph {
     int n_parts;
     part *parts;
     loose *loose;   /* n_joints */
-    row *rows;      /* scratch: most bars at a joint, or most held directions + 1 */
-    double *motion; /* scratch: MOST x n_dof */
+    sct_row *rows;  /* scratch: most bars at a joint, or most held directions + 1 */
+    double *motion; /* scratch: SCT_ROW x n_dof */
 } graph;
 
 static void graph_free(graph *g)
@@ -171,7 +69,7 @@ static bool graph_allocate(graph *g)
     g->parts = calloc(n + 1, sizeof *g->parts);
     g->loose = calloc(n + 1, sizeof *g->loose);
     g->rows = malloc((2 * m + held + 1) * sizeof *g->rows);
-    g->motion = malloc((MOST * n_dof + 1) * sizeof *g->motion);
+    g->motion = malloc((SCT_ROW * n_dof + 1) * sizeof *g->motion);
     return g->part_of != NULL && g->joints != NULL && g->at != NULL && g->bars != NULL && g->parts != NULL &&
            g->loose != NULL && g->rows != NULL && g->motion != NULL;
 }
@@ -247,30 +145,30 @@ static void find_loose(graph *g, int j)
     loose *l = &g->loose[j];
     for (int i = 0; i < m; i++) {
         const double *dir = st->bars[g->bars[g->at[j] + i]].dir;
-        for (int k = 0; k < n; k++) g->rows[i][k] = dot(3, st->basis[j][k], dir);
+        for (int k = 0; k < n; k++) g->rows[i][k] = sct_dot(3, st->basis[j][k], dir);
     }
-    row N[MOST];
-    l->n = null_space(m, n, g->rows, N);
-    reduce(l->n, n, 0, 0, n, N, l->pivot);
+    sct_row N[SCT_ROW];
+    l->n = sct_span_null(m, n, g->rows, NO_HOLD, N);
+    sct_span_reduce(l->n, n, 0, 0, n, N, NO_HOLD, l->pivot);
     for (int i = 0; i < l->n; i++) memcpy(l->h[i], N[i], (size_t)n * sizeof(double));
 }
 
 /* The directions of a loose joint in the model's axes, as simple as they come. */
-static void loose_directions(const graph *g, int j, row D[3])
+static void loose_directions(const graph *g, int j, sct_row D[3])
 {
     const loose *l = &g->loose[j];
-    memset(D, 0, 3 * sizeof(row));
+    memset(D, 0, 3 * sizeof(sct_row));
     for (int i = 0; i < l->n; i++) {
         for (int k = 0; k < g->st->n_free[j]; k++) {
             for (int axis = 0; axis < 3; axis++) D[i][axis] += l->h[i][k] * g->st->basis[j][k][axis];
         }
     }
-    reduce(l->n, 3, 0, 0, 3, D, NULL);
+    sct_span_reduce(l->n, 3, 0, 0, 3, D, NO_HOLD, NULL);
 }
 
 static void add_directions(const graph *g, int j, sct_text *text)
 {
-    row D[3];
+    sct_row D[3];
     loose_directions(g, j, D);
     for (int i = 0; i < g->loose[j].n; i++) {
         if (i > 0) sct_text_add(text, " and ");
@@ -370,7 +268,7 @@ static sct_status check_joints(graph *g, bool ground[], int *n_found, int *n_tol
 /* ---- rigid motions of a part --------------------------------------------------------------------------------- */
 
 /* A rigid motion is (t, w): a joint at q = (at - centre) / size moves by t + w x q. In the plane t = (tx, ty) and
- * w = wz only: `room` numbers of the row, 3 or 6. */
+ * w = wz only: `room` numbers of a row, 3 or 6. */
 static int room(const graph *g)
 {
     return g->st->dim == 2 ? 3 : 6;
@@ -394,7 +292,7 @@ static void place(const graph *g, const part *p, int joint, double q[3])
 
 static void displacement(const double t[3], const double w[3], const double q[3], double u[3])
 {
-    cross(w, q, u);
+    sct_cross(w, q, u);
     for (int k = 0; k < 3; k++) u[k] += t[k];
 }
 
@@ -406,7 +304,7 @@ static int directions_needed(const graph *g, const part *p, double axis[3])
     for (int i = 0; i < p->count; i++) {
         double q[3];
         place(g, p, g->joints[p->first + i], q);
-        const double length = sqrt(dot(3, q, q));
+        const double length = sqrt(sct_dot(3, q, q));
         if (length <= far) continue;
         far = length;
         for (int k = 0; k < 3; k++) axis[k] = q[k] / length;
@@ -414,14 +312,14 @@ static int directions_needed(const graph *g, const part *p, double axis[3])
     for (int i = 0; i < p->count; i++) {
         double q[3], off[3];
         place(g, p, g->joints[p->first + i], q);
-        cross(q, axis, off);
-        if (dot(3, off, off) > NO_HOLD * NO_HOLD) return 6;
+        sct_cross(q, axis, off);
+        if (sct_dot(3, off, off) > NO_HOLD * NO_HOLD) return 6;
     }
     return 5;
 }
 
 /* Rigid motions that the supports of a part leave free; returns their number, 0 to 6. */
-static int free_motions(graph *g, const part *p, int needed, const double axis[3], row R[MOST])
+static int free_motions(graph *g, const part *p, int needed, const double axis[3], sct_row R[SCT_ROW])
 {
     int m = 0;
     for (int i = 0; i < p->count; i++) {
@@ -431,7 +329,7 @@ static int free_motions(graph *g, const part *p, int needed, const double axis[3
         place(g, p, j, q);
         for (int k = 0; k < joint->n_held; k++, m++) {
             const double *h = joint->held[k];
-            cross(q, h, arm); /* h . (t + w x q) = h . t + w . (q x h) */
+            sct_cross(q, h, arm); /* h . (t + w x q) = h . t + w . (q x h) */
             double *r = g->rows[m];
             if (g->st->dim == 2) {
                 r[0] = h[0];
@@ -444,28 +342,28 @@ static int free_motions(graph *g, const part *p, int needed, const double axis[3
         }
     }
     if (needed == 5) { /* turning about its own line moves no joint: take it out */
-        memset(g->rows[m], 0, sizeof(row));
+        memset(g->rows[m], 0, sizeof(sct_row));
         memcpy(g->rows[m] + 3, axis, 3 * sizeof(double));
         m++;
     }
-    return null_space(m, room(g), g->rows, R);
+    return sct_span_null(m, room(g), g->rows, NO_HOLD, R);
 }
 
 /* Turns k free motions into ones that can be said: turns first (simple axes), then shifts; returns the number of turns.
  * A turn's axis goes through a held joint where the shifts that are free as well allow it. */
-static int simplify(const graph *g, const part *p, int k, row R[MOST])
+static int simplify(const graph *g, const part *p, int k, sct_row R[SCT_ROW])
 {
     const int n = room(g), n_t = g->st->dim;
-    const int n_turns = reduce(k, n, 0, n_t, n, R, NULL);
-    row T[3];
+    const int n_turns = sct_span_reduce(k, n, 0, n_t, n, R, NO_HOLD, NULL);
+    sct_row T[3];
     for (int i = n_turns; i < k; i++) {
         for (int c = n_t; c < n; c++) R[i][c] = 0.0;
     }
-    reduce(k, n, n_turns, 0, n_t, R, NULL);
+    sct_span_reduce(k, n, n_turns, 0, n_t, R, NO_HOLD, NULL);
     for (int i = n_turns; i < k; i++) {
-        memcpy(T[i - n_turns], R[i], sizeof(row));
-        remove_span(n_t, i - n_turns, T, T[i - n_turns]);
-        normalise(n_t, T[i - n_turns]);
+        memcpy(T[i - n_turns], R[i], (size_t)n_t * sizeof(double));
+        sct_span_remove(n_t, i - n_turns, T, T[i - n_turns]);
+        sct_span_normalise(n_t, T[i - n_turns]);
     }
     for (int i = 0; i < n_turns; i++) {
         double t[3], w[3];
@@ -474,17 +372,17 @@ static int simplify(const graph *g, const part *p, int k, row R[MOST])
         for (int s = 0; s < p->count && !through_support; s++) {
             const int j = g->joints[p->first + s];
             double q[3];
-            row u = {0.0};
+            sct_row u = {0.0};
             if (g->st->model->joints[j].n_held == 0) continue;
             place(g, p, j, q);
             displacement(t, w, q, u);
-            remove_span(n_t, k - n_turns, T, u);
-            through_support = dot(n_t, u, u) <= NO_HOLD * NO_HOLD * dot(3, w, w);
+            sct_span_remove(n_t, k - n_turns, T, u);
+            through_support = sct_dot(n_t, u, u) <= NO_HOLD * NO_HOLD * sct_dot(3, w, w);
             if (!through_support) continue;
-            cross(q, w, t);
+            sct_cross(q, w, t);
             memcpy(R[i], t, (size_t)n_t * sizeof(double));
         }
-        if (!through_support) remove_span(n_t, k - n_turns, T, R[i]);
+        if (!through_support) sct_span_remove(n_t, k - n_turns, T, R[i]);
     }
     return n_turns;
 }
@@ -505,7 +403,7 @@ static bool ground_motion(graph *g, const part *p, const double r[], int k, int 
         place(g, p, j, q);
         displacement(t, w, q, u);
         for (int c = 0; c < st->n_free[j]; c++) {
-            v[dof + c] = dot(3, st->basis[j][c], u);
+            v[dof + c] = sct_dot(3, st->basis[j][c], u);
             before = fmax(before, fabs(v[dof + c]));
         }
         for (int h = 0; h < l->n; h++) {
@@ -549,9 +447,9 @@ static bool ground_motion(graph *g, const part *p, const double r[], int k, int 
 
 static void add_turn(const graph *g, const part *p, const double t[3], const double w[3], sct_text *text)
 {
-    const double w2 = dot(3, w, w), pitch = dot(3, t, w) / w2;
+    const double w2 = sct_dot(3, w, w), pitch = sct_dot(3, t, w) / w2;
     double at[3];
-    cross(w, t, at); /* the point of the axis nearest to the centre */
+    sct_cross(w, t, at); /* the point of the axis nearest to the centre */
     for (int k = 0; k < 3; k++) at[k] = p->centre[k] + p->size * at[k] / w2;
     const int *joints = g->joints + p->first;
     for (int i = 0; i < p->count; i++) { /* better: a held joint on the axis */
@@ -632,12 +530,12 @@ static sct_status check_part(graph *g, part *p, bool ground[], int *n_found, int
                              sct_issues *issues)
 {
     double axis[3] = {0.0, 0.0, 0.0};
-    row R[MOST];
+    sct_row R[SCT_ROW];
     measure_part(g, p);
     const int needed = directions_needed(g, p, axis);
     const int k = free_motions(g, p, needed, axis, R);
     const int n_turns = simplify(g, p, k, R);
-    int pivots[MOST], n_new = 0;
+    int pivots[SCT_ROW], n_new = 0;
     bool enough = true;
     for (int i = 0; i < k && enough; i++) {
         const int s = (i + n_turns) % k; /* shifts first: they are easier to picture */

@@ -15,6 +15,7 @@
 #include "analysis/motion.h"
 #include "analysis/accuracy.h"
 #include "base/random.h"
+#include "numerics/span.h"
 
 enum { BLOCK = 6, ITERATIONS = 6 };
 
@@ -118,11 +119,14 @@ static void assemble(search *f)
     }
 }
 
-/* Scales to a diagonal within [0.5, 2]. Returns the first unknown without stiffness, -1: none. */
+enum { SCALED = -1, NOT_FINITE = -2 };
+
+/* Scales to a diagonal within [0.5, 2]: SCALED, NOT_FINITE, or the first unknown without stiffness. */
 static int scale(search *f)
 {
     for (int i = 0; i < f->n; i++) {
         const double K_ii = f->values[diagonal(f->pattern, i)];
+        if (!(K_ii <= DBL_MAX)) return NOT_FINITE;
         if (!(K_ii > 0.0)) return i;
         f->s[i] = ldexp(1.0, -(int)lround(0.5 * log2(K_ii)));
     }
@@ -132,17 +136,10 @@ static int scale(search *f)
             f->values[p] *= f->s[j];
         }
     }
-    return -1;
+    return SCALED;
 }
 
 /* ---- the smallest eigenvectors ---------------------------------------------------------------------------------- */
-
-static double dot(int n, const double a[], const double b[])
-{
-    double sum = 0.0;
-    for (int i = 0; i < n; i++) sum += a[i] * b[i];
-    return sum;
-}
 
 /* Modified Gram-Schmidt, twice. */
 static void orthonormalise(int n, int q, double X[])
@@ -151,10 +148,10 @@ static void orthonormalise(int n, int q, double X[])
         double *x = X + (size_t)c * (size_t)n;
         for (int k = 0; k < 2 * c; k++) {
             const double *other = X + (size_t)(k % c) * (size_t)n;
-            const double part = dot(n, other, x);
+            const double part = sct_dot(n, other, x);
             for (int i = 0; i < n; i++) x[i] -= part * other[i];
         }
-        const double length = sqrt(dot(n, x, x));
+        const double length = sqrt(sct_dot(n, x, x));
         for (int i = 0; i < n; i++) x[i] = length > 0.0 ? x[i] / length : 0.0;
     }
 }
@@ -254,9 +251,11 @@ static sct_status inverse_iteration(search *f, bool *definite)
 
 /* ---- motions in words ------------------------------------------------------------------------------------------- */
 
-static void joint_motion(const search *f, const double v[], int joint, double d[3])
+/* d: how a joint moves in v; returns its length. */
+static double joint_motion(const search *f, const double v[], int joint, double d[3])
 {
     sct_joint_displacement(f->st, v, NULL, joint, d);
+    return hypot(hypot(d[0], d[1]), d[2]);
 }
 
 static int larger_first(const void *left, const void *right)
@@ -273,8 +272,7 @@ static int list_moving(search *f, const double v[])
     int n = 0;
     for (int j = 0; j < f->st->n_joints; j++) {
         double d[3];
-        joint_motion(f, v, j, d);
-        f->size[j] = sqrt(dot(3, d, d));
+        f->size[j] = joint_motion(f, v, j, d);
         largest = fmax(largest, f->size[j]);
     }
     for (int j = 0; j < f->st->n_joints; j++) {
@@ -294,7 +292,7 @@ static bool moves_in_one_direction(const search *f, const double v[], int n)
         const int j = f->moving[i].joint;
         double d[3];
         joint_motion(f, v, j, d);
-        const double along = fabs(dot(3, d, first)) / (f->size[j] * f->size[f->moving[0].joint]);
+        const double along = fabs(sct_dot(3, d, first)) / (f->size[j] * f->size[f->moving[0].joint]);
         if (along < 1.0 - 1e-9) return false; /* cosine: an angle of 4e-5 */
     }
     return true;
@@ -315,6 +313,10 @@ static double sense(const search *f, const double v[])
 static int describe(search *f, const double v[], sct_text *text)
 {
     const int n = list_moving(f, v), shown = n < 10 ? n : 10;
+    if (n == 0) {
+        sct_text_add(text, "the structure can move");
+        return 0;
+    }
     const bool one_direction = moves_in_one_direction(f, v, n);
     const double sign = sense(f, v);
     double d[3];
@@ -412,8 +414,7 @@ static double relative_stretch(const search *f, const double x[], double v[])
     for (int i = 0; i < f->n; i++) v[i] = f->s[i] * x[i];
     for (int j = 0; j < f->st->n_joints; j++) {
         double d[3];
-        joint_motion(f, v, j, d);
-        largest = fmax(largest, sqrt(dot(3, d, d)));
+        largest = fmax(largest, joint_motion(f, v, j, d));
     }
     return largest > 0.0 ? most / largest : 1.0;
 }
@@ -451,29 +452,32 @@ static sct_status judge(search *f, bool definite, double v[])
         status = tell_mechanism(f, f->X + (size_t)k * (size_t)f->n);
     }
     if (n_free == 0 && soft >= 0) return tell_too_soft(f, v, softest);
+    if (n_free == 0 && !definite) return SCT_NOT_CONVEX;
     return n_free > 0 && status == SCT_OK ? SCT_MECHANISM : status;
+}
+
+static sct_status tell_no_numbers(const search *f)
+{
+    sct_text text = {0};
+    sct_text_add(&text, "the stiffness of the structure cannot be formed in numbers; ");
+    const int stiffest = sct_stiffness_words(f->st, f->A, &text);
+    const bool told = sct_motion_tell(&text, SCT_ERROR, f->st->model->members[stiffest].where, f->issues);
+    return told ? SCT_NOT_ACCURATE : SCT_NO_MEMORY;
 }
 
 static sct_status search_stiffness(search *f)
 {
     assemble(f);
-    const int bare = scale(f);
-    if (bare >= 0) return tell_no_stiffness(f, bare);
-    bool definite = false;
-    const sct_status status = inverse_iteration(f, &definite);
-    if (status == SCT_NOT_CONVEX) {
-        sct_text text = {0};
-        sct_text_add(&text, "the stiffness of the structure cannot be formed in numbers; ");
-        sct_stiffness_words(f->st, f->A, &text);
-        return sct_motion_tell(&text, SCT_ERROR, (sct_where){.file = f->st->model->file}, f->issues) ? SCT_NOT_ACCURATE
-                                                                                                     : SCT_NO_MEMORY;
-    }
-    if (status != SCT_OK) return status;
+    const int scaled = scale(f);
+    if (scaled == NOT_FINITE) return tell_no_numbers(f);
+    if (scaled != SCALED) return tell_no_stiffness(f, scaled);
     double *v = malloc((size_t)f->n * sizeof *v);
     if (v == NULL) return SCT_NO_MEMORY;
-    const sct_status verdict = judge(f, definite, v);
+    bool definite = false;
+    sct_status status = inverse_iteration(f, &definite);
+    if (status == SCT_OK) status = judge(f, definite, v);
     free(v);
-    return verdict;
+    return status == SCT_NOT_CONVEX ? tell_no_numbers(f) : status;
 }
 
 sct_status sct_mechanism_find(sct_solver *solver, const double A[], sct_issues *issues)
