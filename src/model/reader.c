@@ -115,11 +115,11 @@ static void read_units(sct_reader *r, const sct_node *node)
         const sct_quantity quantity = SLOTS[i] == SCT_DISPLACEMENT ? SCT_LENGTH : (sct_quantity)SLOTS[i];
         const char *name;
         char fault[SCT_UNIT_FAULT_ROOM];
-        f->unit_is_wrong[SLOTS[i]] = found[i] != NULL || KEYS[i].required != NULL; /* unless it is found right */
-        if (!sct_fields_string(f, found[i], "the name of a unit", &name)) continue;
-        f->unit[SLOTS[i]] = sct_unit_read(name, quantity, fault);
-        f->unit_is_wrong[SLOTS[i]] = f->unit[SLOTS[i]] == NULL;
-        if (f->unit[SLOTS[i]] == NULL) sct_fields_error(f, found[i], "%s", fault);
+        if (sct_fields_string(f, found[i], "the name of a unit", &name)) {
+            f->unit[SLOTS[i]] = sct_unit_read(name, quantity, fault);
+            if (f->unit[SLOTS[i]] == NULL) sct_fields_error(f, found[i], "%s", fault);
+        }
+        f->unit_is_wrong[SLOTS[i]] = f->unit[SLOTS[i]] == NULL && (found[i] != NULL || KEYS[i].required != NULL);
     }
     const sct_unit *length = f->unit[SCT_LENGTH];
     if (length == NULL) {
