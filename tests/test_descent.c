@@ -256,7 +256,7 @@ START_TEST(the_plain_setting_repeats_the_published_iteration)
             double f, g[NLP_M], c[NLP_N], a[NLP_M][NLP_N], d[NLP_N], z[NLP_N], ac = 0, aa = 0, dd = 0;
             p->functions(y, &f, g, c, a);
             for (int i = 0; i < n; ++i) ac += a[0][i] * c[i], aa += a[0][i] * a[0][i];
-            const double mu = fmax(0, (g[0] - ac) / aa);
+            const double mu = aa > 0 ? fmax(0, (g[0] - ac) / aa) : 0;
             for (int i = 0; i < n; ++i) d[i] = -(c[i] + mu * a[0][i]), dd += d[i] * d[i];
             R = fmax(R, mu);
             const double Phi = f + R * fmax(0, g[0]);

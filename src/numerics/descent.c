@@ -251,37 +251,40 @@ static void model(sct_descent *w, const double x[], const double d[], double h[]
     for (int i = 0; i < w->n; ++i) D[i] = 1;
 }
 
-/* C = S - diag(D_0), with the eigenvalues of D_0^-1/2 S D_0^-1/2 raised to the floor. */
+/* M = D_0^-1/2 S D_0^-1/2 - shift I */
+static void scale_hessian(sct_descent *w, double shift)
+{
+    const size_t N = (size_t)w->n;
+    for (size_t i = 0; i < N; ++i) w->work[i] = sqrt(w->D_0[i]);
+    for (size_t i = 0; i < N; ++i) {
+        for (size_t k = 0; k < N; ++k) w->M[i * N + k] = w->S[i * N + k] / (w->work[i] * w->work[k]);
+        w->M[i * N + i] -= shift;
+    }
+}
+
+/* C = S - diag(D_0), with the eigenvalues of D_0^-1/2 S D_0^-1/2 raised to the floor. A Cholesky factor tells cheaply
+ * when there is nothing to raise. */
 static void set_curvature(sct_descent *w)
 {
     const int n = w->n;
     const size_t N = (size_t)n;
-    double *M = w->M;
-    for (int i = 0; i < n; ++i) w->work[i] = sqrt(w->D_0[i]);
-    for (int i = 0; i < n; ++i) {
-        for (int k = 0; k < n; ++k)
-            M[(size_t)i * N + (size_t)k] = w->S[(size_t)i * N + (size_t)k] / (w->work[i] * w->work[k]);
-        M[(size_t)i * N + (size_t)i] -= w->set->floor;
-    }
     memcpy(w->C, w->S, N * N * sizeof *w->C);
-    if (!sct_cholesky(n, M)) { /* the cheap test failed: some eigenvalue is below the floor */
-        for (int i = 0; i < n; ++i) {
-            for (int k = 0; k < n; ++k) {
-                M[(size_t)i * N + (size_t)k] = w->S[(size_t)i * N + (size_t)k] / sqrt(w->D_0[i] * w->D_0[k]);
-            }
-        }
-        if (!sct_eigen(n, M, w->lambda, w->work)) {
+    scale_hessian(w, w->set->floor);
+    if (!sct_cholesky(n, w->M)) {
+        scale_hessian(w, 0);
+        if (!sct_eigen(n, w->M, w->lambda, w->work)) { /* not finite: do without */
             memset(w->C, 0, N * N * sizeof *w->C);
             return;
         }
         for (int k = 0; k < n; ++k) {
-            if (w->lambda[k] >= w->set->floor) continue;
-            double *q = M + (size_t)k * N;
+            const double rise = w->set->floor - w->lambda[k];
+            double *q = w->M + (size_t)k * N;
+            if (!(rise > 0)) continue;
             for (int i = 0; i < n; ++i) q[i] *= sqrt(w->D_0[i]);
-            for (int i = 0; i < n; ++i) sct_axpy(n, (w->set->floor - w->lambda[k]) * q[i], q, w->C + (size_t)i * N);
+            for (int i = 0; i < n; ++i) sct_axpy(n, rise * q[i], q, w->C + (size_t)i * N);
         }
     }
-    for (int i = 0; i < n; ++i) w->C[(size_t)i * N + (size_t)i] -= w->D_0[i];
+    for (size_t i = 0; i < N; ++i) w->C[i * N + i] -= w->D_0[i];
 }
 
 /* C from the curvature callback: the Hessian of the Lagrangian with the multipliers of the last point. */

@@ -31,8 +31,8 @@ typedef struct sct_nlp {
 
     /** Optional (NULL): H (n x n, full, overwritten) = sum_i mu[i] * Hessian of constraint rows[i], at the x of the
      * latest gradient call (rows are among its rows). Without `objective` the Hessian of f is added to it: then it is
-     * the Hessian of the whole Lagrangian, and n_rows may be 0. Without this callback the identity (or the metric of
-     * `objective`, once near a solution) takes damped BFGS updates over the steps. */
+     * the Hessian of the whole Lagrangian, and n_rows may be 0. Without this callback the metric takes damped BFGS
+     * updates over the steps. */
     sct_status (*curvature)(void *user, const double x[], int n_rows, const int rows[], const double mu[], double *H);
 
     /** Optional (NULL): for a separable objective that is cheap to evaluate: its gradient (n) and the diagonal of its
@@ -44,7 +44,7 @@ typedef struct sct_nlp {
      * violated constraints enter the QP (and all that ever had a positive multiplier). -1: always enters. */
     const int *cluster;
     int n_clusters;
-    double f_scale; /* KKT residuals are relative to this; 0: to |f| at each point */
+    double f_scale; /* KKT residuals are relative to this; 0: to |f| at each point (not for an f that may end at 0) */
 } sct_nlp;
 
 /* One accepted point, for an observer. */
@@ -54,6 +54,7 @@ typedef struct sct_descent_step {
 } sct_descent_step;
 
 #define SCT_DESCENT_MEMORY 32
+
 typedef struct sct_descent_settings {
     int    max_iterations;  /* default 100, >= 0; 0: x0 is only evaluated */
     double tol_kkt;         /* default 1e-6 */
@@ -67,7 +68,8 @@ typedef struct sct_descent_settings {
     double floor;           /* smallest eigenvalue of the Lagrangian Hessian relative to the metric (absolute where there
                              * is no `objective`: lower it for flat minima), default 0.05 */
     int    per_cluster;     /* default 4 */
-    bool   plain;           /* identity metric only: no curvature, no objective model, no updates; default false */
+    bool   plain;           /* the published form: identity metric (no curvature, no objective model, no updates), Phi
+                             * falls monotonically by gamma t |d|^2; default false */
     bool (*observer)(const sct_descent_step *step, void *user); /* false: stop */
     void  *user;
 } sct_descent_settings;
@@ -81,8 +83,10 @@ typedef struct sct_descent sct_descent; /* workspace */
 typedef struct sct_descent_info {
     sct_status status;  /* SCT_OK: converged. SCT_INFEASIBLE: no feasible point near, `violation` is the least found.
                          * SCT_NOT_CONVERGED: iteration limit or stalled. SCT_INTERRUPTED: the observer said stop.
-                         * Others: from `value` at x0, or SCT_NO_MEMORY. */
-    double f, violation, kkt; /* at the x returned */
+                         * Others: from `value` at x0 (SCT_BAD_INPUT where it is not finite), from `gradient` or
+                         * `curvature`; SCT_NO_MEMORY and SCT_INTERRUPTED from any `value`; SCT_NOT_CONVEX: the Hessian
+                         * of `objective` is not positive. */
+    double f, violation, kkt; /* at the x returned; kkt NAN where it was not computed */
     int iterations, values, qp_iterations;
     int worst;          /* the constraint of the largest violation, -1 when m = 0 */
 } sct_descent_info;
