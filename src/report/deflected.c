@@ -56,7 +56,7 @@ static void show_limit(sct_scene *scene, const sct_deflection_result *limit, dou
     sct_quantity_movement(most, limit->at_most, us);
     sct_number_format(words, sizeof words, "%s of %s\xE2\x80\xAF%s", is, most, us ? "in" : "mm");
     const bool is_over = fabs(along) > limit->at_most;
-    sct_marks_near(scene, tip, 4, &(sct_run){words, is_over ? ROLE_OVER : ROLE_INK, true}, 1);
+    sct_marks_near(scene, tip, 4, (sct_point){0, 0}, &(sct_run){words, is_over ? ROLE_OVER : ROLE_INK, true}, 1);
 }
 
 /* The limits with the largest utilisations in the order of the model, one per joint. */

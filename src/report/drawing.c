@@ -33,8 +33,8 @@ typedef struct words_of_sheet { /* everything written that is not in the figure 
     char loads[192], small_loads[SCT_QUANTITY_ROOM + 32], deflected[192], depths[96], lengths[128];
 } words_of_sheet;
 
-/* ---- layout
- * ------------------------------------------------------------------------------------------------------------------ */
+/* ---- layout --------------------------------------------------------------------------------------------------------
+ */
 
 static void measure(const sct_scene *scene, double *across, double *down)
 {
@@ -75,8 +75,7 @@ static layout choose_layout(const sct_scene *scene)
     return sct_scene_detail(scene, at_wide) < sct_scene_detail(scene, at_report) || across > 8 * down ? wide : report;
 }
 
-/* ---- figure
- * ----------------------------------------------------------------------------------------------------------------------
+/* ---- figure --------------------------------------------------------------------------------------------------------
  */
 
 static sct_status new_labels(sct_scene *scene, const layout *l)
@@ -143,13 +142,15 @@ static sct_status put_deflected(sct_scene *scene, const layout *l, sct_sheet *pa
     return sct_labels_failed(scene->labels) ? SCT_NO_MEMORY : SCT_OK;
 }
 
-/* ---- words
- * -----------------------------------------------------------------------------------------------------------------------
+/* ---- words ---------------------------------------------------------------------------------------------------------
  */
 
-static const char *chosen_combination(const sct_scene *scene)
+/* The name of the combination whose loads and shape are shown, cut to a line. */
+static void chosen_combination(const sct_scene *scene, char out[128])
 {
-    return scene->result->n_combinations > 0 ? scene->result->combinations[scene->options.combination] : "";
+    const sct_result *r = scene->result;
+    sct_words_fit(r->n_combinations > 0 ? r->combinations[scene->options.combination] : "", 300, LABEL, false, out,
+                  128);
 }
 
 static void write_notes(const sct_scene *scene, words_of_sheet *w)
@@ -168,48 +169,51 @@ static void write_notes(const sct_scene *scene, words_of_sheet *w)
         sct_space_size(r, w->lengths, sizeof w->lengths);
     else
         sct_number_format(w->lengths, sizeof w->lengths, "%s, lengths in %s", mass, sct_length_unit_name(us));
-    sct_marks_left(scene, &w->left);
-    if (scene->is_widened) sct_text_format(&w->left, "%sThin members widened", w->left.size > 0 ? ". " : "");
+    if (r->dimensions == 3)
+        sct_text_format(&w->left, "Seen from 16\xC2\xB0 above; z is drawn at %.2f of the scale. ", cos(scene->tilt));
+    if (scene->is_widened) sct_text_add(&w->left, "Thin members widened. ");
     if (scene->detail != DETAIL_FULL)
-        sct_text_format(&w->left, "%sLabelled: members above %s, the governing one of each group",
-                        w->left.size > 0 ? ". " : "", scene->detail == DETAIL_SELECTIVE ? "0.90" : "1 (20 worst)");
+        sct_text_format(&w->left, "Labelled: members above %s, the governing one of each group. ",
+                        scene->detail == DETAIL_SELECTIVE ? "0.90" : "1 (20 worst)");
+    sct_marks_left(scene, &w->left);
 }
 
 static void write_option_notes(const sct_scene *scene, double least, words_of_sheet *w)
 {
     const char *unit = scene->result->us_customary ? "kip" : "kN";
     sct_quantity words;
-    if (!isnan(least))
-        sct_number_format(w->loads, sizeof w->loads, "loads of %.60s, %s", chosen_combination(scene), unit);
+    char name[128];
+    chosen_combination(scene, name);
+    if (!isnan(least)) sct_number_format(w->loads, sizeof w->loads, "loads of %s, %s", name, unit);
     if (least > 0) {
         sct_quantity_force(words, least, scene->result->us_customary);
         sct_number_format(w->small_loads, sizeof w->small_loads, "below %s%s%s not drawn", words, "\xE2\x80\xAF", unit);
     }
     const double factor = scene->options.draw_deflected ? sct_deflected_factor(scene) : 0;
     if (factor > 0)
-        sct_number_format(w->deflected, sizeof w->deflected, "Deflected shape under %.60s, displacements \xC3\x97%.10g",
-                          chosen_combination(scene), factor);
+        sct_number_format(w->deflected, sizeof w->deflected, "Deflected shape under %s, displacements \xC3\x97%.10g",
+                          name, factor);
 }
 
-/* Lines of `size` high words, at most LINES_MOST; returns the baseline of the last. */
+/* Words in at most LINES_MOST lines, the last one cut if need be; returns the baseline of the last. */
 static double put_lines(sct_sheet *page, double y, double width, double size, const char *words)
 {
     for (int i = 0; i < LINES_MOST && *words != '\0'; i++) {
+        char line[512];
         const size_t n = sct_words_line(words, width, size);
-        char line[400];
-        sct_number_format(line, sizeof line, "%.*s", (int)(n < sizeof line ? n : sizeof line - 1),
-                          i == LINES_MOST - 1 ? words : words);
-        char cut[400];
-        sct_words_fit(line, width, size, false, cut, sizeof cut);
+        const bool is_whole = i < LINES_MOST - 1 && n < sizeof line;
+        if (is_whole)
+            sct_number_format(line, sizeof line, "%.*s", (int)n, words);
+        else
+            sct_words_fit(words, width, size, false, line, sizeof line);
         if (i > 0) y += size + 4;
-        sct_sheet_words(page, (sct_point){MARGIN, y}, size, ANCHOR_START, ROLE_SOFT, cut);
+        sct_sheet_words(page, (sct_point){MARGIN, y}, size, ANCHOR_START, ROLE_SOFT, line);
         words += n + (words[n] == ' ');
     }
     return y;
 }
 
-/* ---- sheet
- * -------------------------------------------------------------------------------------------------------------------------
+/* ---- sheet ---------------------------------------------------------------------------------------------------------
  */
 
 static void ramp_title(const sct_result *r, char *out, size_t room)
@@ -263,12 +267,6 @@ static double put_panel(const sct_scene *scene, const layout *l, sct_sheet *page
     sct_legend_ramp(page, (sct_point){x, y}, 41, title);
     sct_legend_senses(page, (sct_point){x, y += 58});
     y += put_load_key(page, (sct_point){x, y + 24}, PANEL, w);
-    if (r->dimensions == 3) {
-        sct_sheet_words(page, (sct_point){x, y += 28}, LABEL, ANCHOR_START, ROLE_SOFT,
-                        "Seen from 16\xC2\xB0 above: the scale holds for x, y and z");
-        sct_sheet_words(page, (sct_point){x, y += 15}, LABEL, ANCHOR_START, ROLE_SOFT,
-                        "only across the view; z is drawn 4 % shorter.");
-    }
     sct_scale_bar(page, (sct_point){x + 4, y + 30}, scene->scale, r->us_customary);
     return y + 40;
 }

@@ -18,8 +18,8 @@ void sct_plane_members(sct_scene *scene)
         }
 }
 
-/* ---- slope
- * -------------------------------------------------------------------------------------------------------------- */
+/* ---- slope ---------------------------------------------------------------------------------------------------------
+ */
 
 static bool is_pitched(const sct_stick *s)
 {
@@ -95,8 +95,8 @@ void sct_plane_slope(sct_scene *scene)
     draw_slope(scene, (sct_point){box->x - 15, box->y + half_height - 14}, height, rises_right[choice], rise, run);
 }
 
-/* ---- dimensions
- * ------------------------------------------------------------------------------------------------------------ */
+/* ---- dimensions ----------------------------------------------------------------------------------------------------
+ */
 
 static const double OFF_OBJECT = 24, NEXT_LINE = 22, PAST_LINE = 4, OFF_JOINT = 8, SAME = 5e-4; /* [u], last one [m] */
 enum { POINTS_MOST = 64, RUNS_MOST = 24 };
@@ -218,7 +218,7 @@ static void one_line(sct_scene *scene, const chain *c, const run runs[], int n, 
     sct_dimension(&scene->sheet, at, c->n, along);
     for (int i = 0; i < n; i++) {
         const sct_point p = at[runs[i].from], q = at[runs[i].to];
-        if (axis == 1 && sct_words_width(runs[i].words, TEXT, false) > p.y - q.y) { /* too short to write along */
+        if (axis == 1 && sct_words_width(runs[i].words, TEXT, false) + 8 > p.y - q.y) { /* too short to write along */
             sct_sheet_words(&scene->sheet, (sct_point){q.x, q.y - 8}, TEXT, ANCHOR_MIDDLE, ROLE_SOFT, runs[i].words);
             continue;
         }

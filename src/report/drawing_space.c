@@ -65,8 +65,8 @@ void sct_space_view(sct_scene *scene, double width, double height)
     sct_project(scene->result, scene->turn, scene->tilt, scene->at, scene->away);
 }
 
-/* ---- members
- * ------------------------------------------------------------------------------------------------------------- */
+/* ---- members -------------------------------------------------------------------------------------------------------
+ */
 
 typedef struct depth_order {
     double away;
@@ -91,8 +91,8 @@ sct_status sct_space_members(sct_scene *scene)
     return SCT_OK;
 }
 
-/* ---- axes, levels
- * ------------------------------------------------------------------------------------------------------------ */
+/* ---- axes, levels --------------------------------------------------------------------------------------------------
+ */
 
 void sct_space_axes(sct_scene *scene)
 {

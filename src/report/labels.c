@@ -44,7 +44,8 @@ struct sct_labels {
     bool failed;
 };
 
-/* ---- rectangles ---------------------------------------------------------------------------------------------- */
+/* ---- rectangles ----------------------------------------------------------------------------------------------------
+ */
 
 sct_box sct_box_level(sct_point middle, double a, double b)
 {
@@ -77,7 +78,8 @@ bool sct_boxes_meet(const sct_box *p, const sct_box *q, double clear)
     return !apart(p, q, clear) && !apart(q, p, clear);
 }
 
-/* ---- the grid -------------------------------------------------------------------------------------------------- */
+/* ---- the grid ------------------------------------------------------------------------------------------------------
+ */
 
 sct_labels *sct_labels_new(sct_point corner, sct_point opposite)
 {
@@ -209,7 +211,8 @@ int sct_labels_crossed(sct_labels *labels, const sct_box *box, int kinds, int ow
     return meets(labels, box, kinds, owner, 0, 1 << 20);
 }
 
-/* ---- wishes ------------------------------------------------------------------------------------------------------ */
+/* ---- wishes --------------------------------------------------------------------------------------------------------
+ */
 
 int sct_labels_ask(sct_labels *labels, const sct_choice choices[], int n)
 {
@@ -299,7 +302,7 @@ int sct_labels_choice(const sct_labels *labels, int label)
     return labels->candidates[labels->wishes[label].chosen].number;
 }
 
-/* ---- lines broken round labels ------------------------------------------------------------------------------------
+/* ---- lines broken round labels -------------------------------------------------------------------------------------
  */
 
 /* Clips the parameter range of p + t (q - p) to |coordinate| <= half along one axis of a box. */

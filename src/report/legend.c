@@ -8,7 +8,9 @@
 #include "base/number.h"
 #include "quantity.h"
 
-static const double MARGIN = 20, ROW = 19, STRIP_ROW = 22;
+static const double MARGIN = 20, ROW = 19, STRIP_ROW = 22, NOTES = 165, CAUTION_MOST = 424;
+/* Columns of the group table as fractions of its width: left edge of a text, right edge of numbers. */
+static const double SECTION_AT = 0.31, PIECES_AT = 0.73, WORST_AT = 0.87;
 enum { ROWS_MOST = 14, LINE_ROOM = 256 };
 
 static void note(sct_sheet *sheet, double x, double y, const char *words)
@@ -43,8 +45,8 @@ void sct_legend_senses(sct_sheet *sheet, sct_point at)
     }
 }
 
-/* ---- groups
- * ------------------------------------------------------------------------------------------------------------ */
+/* ---- groups --------------------------------------------------------------------------------------------------------
+ */
 
 static double worst_of(const sct_result *r, int g)
 {
@@ -93,14 +95,15 @@ static void group_row(sct_sheet *sheet, const sct_result *r, int g, double x, do
     const sct_group_result *group = &r->groups[g];
     const double u = worst_of(r, g);
     sct_quantity words;
-    cell(sheet, x, y, ANCHOR_START, 0.32 * width, ROLE_INK, false, group->name);
+    cell(sheet, x, y, ANCHOR_START, 0.3 * width, ROLE_INK, false, group->name);
     if (group->section == NULL) sct_quantity_area(words, group->A, r->us_customary);
-    cell(sheet, x + 0.335 * width, y, ANCHOR_START, 0.27 * width, ROLE_INK, false,
+    cell(sheet, x + SECTION_AT * width, y, ANCHOR_START, 0.305 * width, ROLE_INK, false,
          group->section != NULL ? group->section : words);
     sct_quantity_number(words, group->n_members, 0);
-    cell(sheet, x + 0.69 * width, y, ANCHOR_END, 60, ROLE_INK, false, words);
+    cell(sheet, x + PIECES_AT * width, y, ANCHOR_END, 60, ROLE_INK, false, words);
     if (group->n_members == 0) return;
-    cell(sheet, x + 0.86 * width, y, ANCHOR_END, 0.155 * width, ROLE_INK, false, r->members[group->worst_member].name);
+    cell(sheet, x + WORST_AT * width, y, ANCHOR_END, 0.12 * width, ROLE_INK, false,
+         r->members[group->worst_member].name);
     sct_quantity_utilisation(words, u);
     cell(sheet, x + width, y, ANCHOR_END, 60, u > 1 ? ROLE_OVER : ROLE_INK, true, words);
 }
@@ -113,9 +116,9 @@ double sct_group_table(sct_sheet *sheet, const sct_result *r, sct_point at, doub
     double y = at.y;
     sct_quantity words;
     cell(sheet, x, y, ANCHOR_START, 100, ROLE_SOFT, false, "group");
-    cell(sheet, x + 0.335 * width, y, ANCHOR_START, 100, ROLE_SOFT, false, "section");
-    cell(sheet, x + 0.69 * width, y, ANCHOR_END, 60, ROLE_SOFT, false, "pieces");
-    cell(sheet, x + 0.86 * width, y, ANCHOR_END, 60, ROLE_SOFT, false, "worst");
+    cell(sheet, x + SECTION_AT * width, y, ANCHOR_START, 100, ROLE_SOFT, false, "section");
+    cell(sheet, x + PIECES_AT * width, y, ANCHOR_END, 60, ROLE_SOFT, false, "pieces");
+    cell(sheet, x + WORST_AT * width, y, ANCHOR_END, 60, ROLE_SOFT, false, "worst");
     cell(sheet, x + width, y, ANCHOR_END, 60, ROLE_SOFT, false, "util.");
     rule(sheet, x, y + 6, width, ROLE_INK, THIN);
     y += 3;
@@ -131,9 +134,9 @@ double sct_group_table(sct_sheet *sheet, const sct_result *r, sct_point at, doub
     y += ROW + 2;
     cell(sheet, x, y, ANCHOR_START, 60, ROLE_INK, true, "all");
     sct_quantity_number(words, r->n_members, 0);
-    cell(sheet, x + 0.69 * width, y, ANCHOR_END, 60, ROLE_INK, true, words);
+    cell(sheet, x + PIECES_AT * width, y, ANCHOR_END, 60, ROLE_INK, true, words);
     sct_quantity_mass(words, r->mass, r->us_customary);
-    cell(sheet, x + width, y, ANCHOR_END, 90, ROLE_INK, true, words);
+    cell(sheet, x + width, y, ANCHOR_END, 0.265 * width, ROLE_INK, true, words);
     return y - at.y;
 }
 
@@ -179,8 +182,8 @@ double sct_group_strip(sct_sheet *sheet, const sct_result *r, sct_point at, doub
     if (most > 1) {
         sct_quantity words;
         sct_quantity_number(words, most, 1);
-        if (unit * (most - 1) > 24)
-            sct_sheet_words(sheet, (sct_point){x + unit * most, low + 12}, LABEL, ANCHOR_MIDDLE, ROLE_SOFT,
+        if (unit * (most - 1) > 30)
+            sct_sheet_words(sheet, (sct_point){x + unit * most + 4, low + 12}, LABEL, ANCHOR_END, ROLE_SOFT,
                             r->utilisation > 2 ? "2 and more" : words);
     }
     for (int i = 0; i < n; i++) {
@@ -191,8 +194,8 @@ double sct_group_strip(sct_sheet *sheet, const sct_result *r, sct_point at, doub
     return low + 12 - at.y;
 }
 
-/* ---- title block
- * ---------------------------------------------------------------------------------------------------------- */
+/* ---- title block ---------------------------------------------------------------------------------------------------
+ */
 
 /* One line of at most `width` from *rest, which moves on. */
 static void take_line(const char **rest, double width, char line[LINE_ROOM])
@@ -225,14 +228,23 @@ static void caution(sct_sheet *sheet, double x, double y, double width)
 void sct_title_block(sct_sheet *sheet, double y, double width, const char *title, const char *drawn,
                      const char *const notes[2])
 {
-    const double second = MARGIN + 0.24 * width, third = second + 145;
-    rule(sheet, MARGIN, y, width - 2 * MARGIN, ROLE_INK, THIN);
-    cell(sheet, MARGIN, y + 17, ANCHOR_START, second - MARGIN - 16, ROLE_INK, true, title);
-    cell(sheet, MARGIN, y + 32, ANCHOR_START, second - MARGIN - 16, ROLE_SOFT, false, drawn);
+    const double second = MARGIN + 0.24 * width, third = second + NOTES, first_width = second - MARGIN - 16;
     const double cells[2] = {second, third};
+    double below = y + 32;
+    rule(sheet, MARGIN, y, width - 2 * MARGIN, ROLE_INK, THIN);
+    if (sct_words_width(title, LABEL, true) <= first_width) {
+        cell(sheet, MARGIN, y + 17, ANCHOR_START, first_width, ROLE_INK, true, title);
+    } else { /* in two lines, the second one cut if need be */
+        char line[LINE_ROOM];
+        take_line(&title, first_width / 1.1, line);
+        cell(sheet, MARGIN, y + 17, ANCHOR_START, first_width, ROLE_INK, true, line);
+        cell(sheet, MARGIN, y + 32, ANCHOR_START, first_width, ROLE_INK, true, title);
+        below = y + 47;
+    }
+    cell(sheet, MARGIN, below, ANCHOR_START, first_width, ROLE_SOFT, false, drawn);
     for (int i = 0; i < 2; i++)
         sct_sheet_line(sheet, (sct_point){cells[i] - 10, y + 6}, (sct_point){cells[i] - 10, y + 46}, ROLE_FAINT, HAIR);
     for (int i = 0; i < 2; i++)
-        cell(sheet, second, y + 17 + 15 * i, ANCHOR_START, third - second - 16, ROLE_SOFT, false, notes[i]);
-    caution(sheet, third, y + 17, width - MARGIN - third);
+        cell(sheet, second, y + 17 + 15 * i, ANCHOR_START, NOTES - 16, ROLE_SOFT, false, notes[i]);
+    caution(sheet, third, y + 17, fmin(width - MARGIN - third, CAUTION_MOST));
 }

@@ -51,8 +51,9 @@ static void draw_load(sct_scene *scene, int joint, const double F[3], double len
     if (scene->detail == DETAIL_OVERVIEW) return;
     sct_quantity words;
     sct_quantity_force(words, size, scene->result->us_customary);
-    const bool is_below = far_end.y > p.y + 4;
-    sct_marks_near(scene, far_end, is_below ? 2 : 1.8, &(sct_run){words, ROLE_INK, false}, 1);
+    const double outwards = far_end.x == tip.x && far_end.y == tip.y ? 1 : -1;
+    sct_marks_near(scene, far_end, 2, (sct_point){outwards * d.x, outwards * d.y}, &(sct_run){words, ROLE_INK, false},
+                   1);
 }
 
 double sct_loads_draw(sct_scene *scene)

@@ -46,8 +46,8 @@ void sct_marks_block(sct_scene *scene)
                          -1);
 }
 
-/* ---- along members
- * ------------------------------------------------------------------------------------------------------ */
+/* ---- along members -------------------------------------------------------------------------------------------------
+ */
 
 /* The unit vector in which text along a member reads: to the right, upwards when upright. */
 static sct_point reading(const sct_stick *s)
@@ -141,31 +141,33 @@ void sct_marks_members(sct_scene *scene)
     }
 }
 
-/* ---- near points
- * ---------------------------------------------------------------------------------------------------------- */
+/* ---- near points ---------------------------------------------------------------------------------------------------
+ */
 
 /* Twelve directions from up, five distances. */
 enum { N_NEAR = WAYS * 5 };
 
-static int candidates_near(sct_point at, double distance, double half, sct_choice out[N_NEAR])
+static int candidates_near(sct_point at, double distance, sct_point towards, double half, sct_choice out[N_NEAR])
 {
+    const bool anywhere = towards.x == 0 && towards.y == 0;
     static const double COST[WAYS] = {0, 0.5, 1, 2, 1, 0.5, 0, 0.5, 1, 2, 1, 0.5};
     int k = 0;
     for (int ring = 0; ring < 5; ring++)
         for (int way = 0; way < WAYS; way++) {
             const double x = sin(TURN * way / WAYS), y = -cos(TURN * way / WAYS), off = distance + 3 * ring;
+            const double cost = anywhere ? COST[way] : 2 - 2 * (x * towards.x + y * towards.y);
             /* as far along the way as brings the box's nearest edge to `off` */
             const double reach = fmin(half / fmax(fabs(x), 1e-9), HALF_HEIGHT / fmax(fabs(y), 1e-9));
             const sct_point middle = {at.x + x * (off + reach), at.y + y * (off + reach)};
-            out[k++] = (sct_choice){sct_box_level(middle, half, HALF_HEIGHT), COST[way] + 0.6 * 3 * ring};
+            out[k++] = (sct_choice){sct_box_level(middle, half, HALF_HEIGHT), cost + 0.6 * 3 * ring};
         }
     return k;
 }
 
-bool sct_marks_near(sct_scene *scene, sct_point at, double distance, const sct_run runs[], int n)
+bool sct_marks_near(sct_scene *scene, sct_point at, double distance, sct_point way, const sct_run runs[], int n)
 {
     sct_choice choices[N_NEAR];
-    const int n_choices = candidates_near(at, distance, 0.5 * sct_runs_width(runs, n, LABEL), choices);
+    const int n_choices = candidates_near(at, distance, way, 0.5 * sct_runs_width(runs, n, LABEL), choices);
     const int label = sct_labels_ask(scene->labels, choices, n_choices);
     sct_labels_settle(scene->labels);
     const int choice = sct_labels_choice(scene->labels, label);
@@ -178,7 +180,8 @@ static void name_joint(sct_scene *scene, int joint)
 {
     char name[MARK_ROOM];
     sct_words_fit(scene->result->joints[joint].name, NAME_WIDTH, LABEL, false, name, sizeof name);
-    sct_marks_near(scene, scene->at[joint], scene->ring + 2.5, &(sct_run){name, ROLE_SOFT, false}, 1);
+    sct_marks_near(scene, scene->at[joint], scene->ring + 2.5, (sct_point){0, 0}, &(sct_run){name, ROLE_SOFT, false},
+                   1);
 }
 
 void sct_marks_joints(sct_scene *scene)
@@ -188,8 +191,8 @@ void sct_marks_joints(sct_scene *scene)
             if (scene->is_named[j] && (scene->result->joints[j].n_held > 0) == (held == 1)) name_joint(scene, j);
 }
 
-/* ---- leaders
- * ---------------------------------------------------------------------------------------------------------------- */
+/* ---- leaders -------------------------------------------------------------------------------------------------------
+ */
 
 typedef struct leader {
     sct_point from, to;
@@ -262,5 +265,5 @@ void sct_marks_left(const sct_scene *scene, sct_text *out)
         sct_text_format(out, "%s%s", n == 1 ? "Not labelled: " : ", ", name);
     }
     if (n > LEFT_NAMED) sct_text_format(out, " and %d more", n - LEFT_NAMED);
-    if (n > 0) sct_text_add(out, " (see schedule)");
+    if (n > 0) sct_text_add(out, " (see schedule).");
 }

@@ -13,10 +13,10 @@ void sct_marks_members(sct_scene *scene);
 void sct_marks_joints(sct_scene *scene);
 void sct_marks_leaders(sct_scene *scene);
 
-/** The labelled members that found no place: "Not labelled: V3, V5 (see schedule)"; nothing when there are none. */
+/** The labelled members that found no place: "Not labelled: V3, V5 (see schedule)."; nothing when there are none. */
 void sct_marks_left(const sct_scene *scene, sct_text *out);
 
-/** Places one upright line of words near a point: `ways` of trying around it, from `distance` off. Returns false when
- * there is no room; otherwise draws it. */
-bool sct_marks_near(sct_scene *scene, sct_point at, double distance, const sct_run runs[], int n);
+/** Places one upright line of words about a point, its edge from `distance` off, best towards `way` (a unit vector;
+ * {0, 0}: above or below). Returns false when there is no room; otherwise draws it. */
+bool sct_marks_near(sct_scene *scene, sct_point at, double distance, sct_point way, const sct_run runs[], int n);
 #endif

@@ -147,6 +147,35 @@ void sct_sheet_group_close(sct_sheet *sheet)
     sct_text_add(&sheet->body, "</g>\n");
 }
 
+/* The next character of UTF-8; bytes that are not well formed count as one character each. */
+static unsigned next_character(const char **p)
+{
+    const unsigned char *s = (const unsigned char *)*p;
+    const int more = s[0] >= 0xF0 ? 3 : s[0] >= 0xE0 ? 2 : s[0] >= 0xC0 ? 1 : 0;
+    unsigned c = more == 0 ? s[0] : s[0] & (0x3Fu >> more);
+    int i = 1;
+    for (; i <= more && (s[i] & 0xC0) == 0x80; i++) c = c << 6 | (s[i] & 0x3Fu);
+    *p += i;
+    return c;
+}
+
+/* Marks that turn the direction of writing. A name that holds one could make the number behind it read backwards. */
+static bool turns_writing(unsigned c)
+{
+    return (c >= 0x202A && c <= 0x202E) || (c >= 0x2066 && c <= 0x2069);
+}
+
+static void add_words(sct_text *out, const char *words)
+{
+    for (const char *p = words; *p != '\0';) {
+        char one[8] = {0};
+        const char *start = p;
+        if (turns_writing(next_character(&p))) continue;
+        memcpy(one, start, (size_t)(p - start));
+        sct_text_xml(out, one);
+    }
+}
+
 void sct_sheet_put(sct_sheet *sheet, const sct_sheet *part, sct_point by)
 {
     sct_text *out = &sheet->body;
@@ -181,7 +210,7 @@ void sct_sheet_runs(sct_sheet *sheet, sct_point at, double size, sct_anchor anch
         if (runs[i].bold) sct_text_add(out, " font-weight=\"600\"");
         if (i > 0) attribute(out, "dx", 0.33 * size);
         sct_text_add(out, ">");
-        sct_text_xml(out, runs[i].text);
+        add_words(out, runs[i].text);
         sct_text_add(out, "</tspan>");
     }
     sct_text_add(out, "</text>\n");
@@ -192,19 +221,8 @@ void sct_sheet_words(sct_sheet *sheet, sct_point at, double size, sct_anchor anc
     sct_sheet_runs(sheet, at, size, anchor, 0, &(sct_run){words, role, false}, 1);
 }
 
-/* ---- width of words ---------------------------------------------------------------------------------------- */
-
-/* The next character of UTF-8; bytes that are not well formed count as one character each. */
-static unsigned next_character(const char **p)
-{
-    const unsigned char *s = (const unsigned char *)*p;
-    const int more = s[0] >= 0xF0 ? 3 : s[0] >= 0xE0 ? 2 : s[0] >= 0xC0 ? 1 : 0;
-    unsigned c = more == 0 ? s[0] : s[0] & (0x3Fu >> more);
-    int i = 1;
-    for (; i <= more && (s[i] & 0xC0) == 0x80; i++) c = c << 6 | (s[i] & 0x3Fu);
-    *p += i;
-    return c;
-}
+/* ---- width of words ------------------------------------------------------------------------------------------------
+ */
 
 /* Upper bounds [em] over the common sans faces, regular weight. */
 static double character_width(unsigned c)
@@ -269,7 +287,8 @@ size_t sct_words_line(const char *words, double width, double size)
     return (size_t)(end - words);
 }
 
-/* ---- the file ------------------------------------------------------------------------------------------------ */
+/* ---- the file ------------------------------------------------------------------------------------------------------
+ */
 
 void sct_sheet_write(const sct_sheet *sheet, double width, double height, const char *id, const char *title,
                      const char *description, sct_text *out)

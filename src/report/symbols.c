@@ -65,7 +65,7 @@ static double badness(const sct_scene *scene, int joint, const double reaction[3
         worst = fmax(worst, dot(d, way) / sqrt(dot(d, d)));
     }
     const double push = -dot(reaction, way);
-    return (worst > COLLIDES ? 10 : 0) + 0.5 * fmax(worst, 0) + 1.5 * (1 - fabs(push)) + 0.5 * (1 - push);
+    return (worst > COLLIDES ? 10 : 0) + 1.2 * fmax(worst, 0) + 1.5 * (1 - fabs(push)) + 0.5 * (1 - push);
 }
 
 static void support_way(const sct_scene *scene, int joint, double way[3])
@@ -90,8 +90,8 @@ static void support_way(const sct_scene *scene, int joint, double way[3])
     }
 }
 
-/* ---- plane supports
- * --------------------------------------------------------------------------------------------------- */
+/* ---- plane supports ------------------------------------------------------------------------------------------------
+ */
 
 static sct_point plane_way(const sct_scene *scene, int joint)
 {
@@ -121,8 +121,8 @@ static void plane_support(sct_scene *scene, int joint)
     sct_sheet_path_close(sheet, ROLE_INK, HAIR);
 }
 
-/* ---- supports in space
- * --------------------------------------------------------------------------------------------------- */
+/* ---- supports in space ---------------------------------------------------------------------------------------------
+ */
 
 static void cross(const double a[3], const double b[3], double c[3])
 {
@@ -228,8 +228,8 @@ void sct_support_block(sct_scene *scene, int joint)
     sct_labels_block(scene->labels, sct_box_about(p, ahead(p, d, deep), 0.95 * SIZE), SCT_SOLID, -1);
 }
 
-/* ---- dimensions
- * ------------------------------------------------------------------------------------------------------------ */
+/* ---- dimensions ----------------------------------------------------------------------------------------------------
+ */
 
 /* To the left of the reading direction: y points down. */
 static sct_point left_of(sct_point along)
@@ -270,8 +270,8 @@ void sct_line_round_labels(sct_sheet *sheet, const sct_labels *labels, sct_point
     }
 }
 
-/* ---- scale bar
- * --------------------------------------------------------------------------------------------------------------- */
+/* ---- scale bar -----------------------------------------------------------------------------------------------------
+ */
 
 double sct_scale_bar(sct_sheet *sheet, sct_point at, double scale, bool us_customary)
 {
