@@ -289,7 +289,7 @@ typedef struct sct_result {
     const char **combinations; /* their names */
     double *u;        /* [m]  n_combinations x n_joints x 3 displacements */
     double *reaction; /* [N]  n_combinations x n_joints x 3; 0 where nothing is held */
-    double *N;        /* [N]  n_combinations x n_members */
+    double *N;        /* [N]  n_combinations x n_members; what is below 1e-9 of the largest force is given as 0 */
     double *load;     /* [N]  n_combinations x n_joints x 3, self-weight included */
 
     int n_deflections;

@@ -7,7 +7,7 @@
 
 #include "analysis/recovery.h"
 
-static const double NO_FORCE = 1e-9; /* of the largest force in the structure: rounding, not load */
+static const double NO_FORCE = 1e-9; /* of the largest force in its combination: rounding, not load */
 
 /* The reader promises these; a NAN among them would make every check pass in silence. */
 static bool is_sound(const sct_bar_rule *r)
@@ -127,17 +127,24 @@ double sct_duty_mass(const sct_duty *duty, const sct_design *design)
     return mass;
 }
 
+/* Forces of one combination, with what is only rounding taken for what it is: none. */
+static void gather_forces(sct_duty *duty, int c)
+{
+    double *N = duty->N + (size_t)c * (size_t)duty->st->n_bars, largest = 0.0;
+    sct_combine_forces(duty->st, &duty->response, c, N);
+    for (int bar = 0; bar < duty->st->n_bars; bar++) largest = fmax(largest, fabs(N[bar]));
+    for (int bar = 0; bar < duty->st->n_bars; bar++)
+        if (fabs(N[bar]) <= NO_FORCE * largest) N[bar] = 0.0;
+}
+
 static void gather_compression(sct_duty *duty)
 {
     const sct_structure *st = duty->st;
-    for (int bar = 0; bar < st->n_bars; bar++) duty->worst_compression[bar] = 0.0;
-    for (int k = 0; k < duty->n_allowable; k++) {
-        const double *N = duty->N + (size_t)duty->allowable[k] * (size_t)st->n_bars;
-        double largest = 0.0;
-        for (int bar = 0; bar < st->n_bars; bar++) largest = fmax(largest, fabs(N[bar]));
-        for (int bar = 0; bar < st->n_bars; bar++)
-            if (N[bar] < -NO_FORCE * largest && N[bar] < duty->worst_compression[bar])
-                duty->worst_compression[bar] = N[bar];
+    for (int bar = 0; bar < st->n_bars; bar++) {
+        double least = 0.0;
+        for (int k = 0; k < duty->n_allowable; k++)
+            least = fmin(least, duty->N[(size_t)duty->allowable[k] * (size_t)st->n_bars + (size_t)bar]);
+        duty->worst_compression[bar] = least;
     }
 }
 
@@ -160,8 +167,7 @@ static double row_displacement(const sct_duty *duty, const sct_deflection_row *r
 void sct_duty_gather(sct_duty *duty)
 {
     const sct_structure *st = duty->st;
-    for (int c = 0; c < st->n_combinations; c++)
-        sct_combine_forces(st, &duty->response, c, duty->N + (size_t)c * (size_t)st->n_bars);
+    for (int c = 0; c < st->n_combinations; c++) gather_forces(duty, c);
     for (int r = 0; r < duty->n_rows; r++) duty->u[r] = row_displacement(duty, &duty->rows[r]);
     gather_compression(duty);
 }

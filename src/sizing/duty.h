@@ -32,7 +32,7 @@ typedef struct sct_duty {
     sct_deflection_row *rows;
     /* of the latest analysis */
     sct_response response;
-    double *N;                 /* n_combinations x n_bars */
+    double *N;                 /* n_combinations x n_bars; forces below 1e-9 of the largest are given as 0 */
     double *u;                 /* n_rows: displacement along the limit's direction */
     double *worst_compression; /* n_bars: [N] most compressive force in the strength combinations, <= 0 */
 } sct_duty;
@@ -61,7 +61,7 @@ sct_status sct_duty_analyse(sct_duty *duty, const double A[]);
 /** The same sums from duty->response as it stands (after refinement). */
 void sct_duty_gather(sct_duty *duty);
 
-/** Is a force too small to tell from none? Judged against the largest of its combination. */
+/** Is the bar in compression in some strength combination of the latest analysis? */
 bool sct_duty_is_compressed(const sct_duty *duty, int bar);
 
 /** Largest utilisation of one bar at the forces of the latest analysis, with area A and radii i. */

@@ -29,7 +29,9 @@ static int by_multiplier(const void *a, const void *b)
 static const char *shown_mass(const sct_result *r, double kg, char out[32])
 {
     const double value = r->us_customary ? kg / POUND : kg;
-    sct_number_format(out, 32, "%.*f %s", fabs(value) < 10.0 ? 2 : 1, value, r->us_customary ? "lb" : "kg");
+    const char *unit = r->us_customary ? "lb" : "kg";
+    if (fabs(value) < 0.095) sct_number_format(out, 32, "%.2g %s", value, unit);
+    else sct_number_format(out, 32, "%.*f %s", fabs(value) < 10.0 ? 2 : 1, value, unit);
     return out;
 }
 

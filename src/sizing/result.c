@@ -141,7 +141,7 @@ static void fill_member(sct_result *r, const sct_duty *duty, const sct_design *d
         for (int j = 0; j < n; j++) consider(m, &checks[j], c, N);
     }
     const sct_bar_check slender = sct_bar_slenderness(rule, i, m->compressed, NULL);
-    consider(m, &slender, -1, m->N);
+    consider(m, &slender, -1, m->compressed ? m->N_min : m->N_max); /* the force that the limit is about */
     sct_group_result *g = &r->groups[b->group];
     g->n_members++;
     if (g->worst_member < 0 || m->utilisation > r->members[g->worst_member].utilisation) g->worst_member = bar;

@@ -176,7 +176,8 @@ static bool is_better(const job *J, const sct_start_result *a, const sct_start_r
 {
     const bool kept_a = a->violation <= J->settings.tolerance, kept_b = b->violation <= J->settings.tolerance;
     if (kept_a != kept_b) return kept_a;
-    return kept_a ? a->mass < b->mass : a->violation < b->violation;
+    /* of two within the tolerance the one that is lighter when made strictly feasible */
+    return kept_a ? a->mass * (1.0 + a->violation) < b->mass * (1.0 + b->violation) : a->violation < b->violation;
 }
 
 static sct_status run_start(job *J, int k, sct_random *random)
