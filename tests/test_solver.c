@@ -3,38 +3,63 @@
  * expression, and all bar forces of determinate trusses (from the equilibrium of the joints by LAPACK), to 1e-9. */
 #include "solved.h"
 
+#include "analysis/sensitivity.h"
+
 /* LAPACK: dense LU and Cholesky solvers; the independent paths. */
 void dgesv_(const int *n, const int *nrhs, double *a, const int *lda, int *pivots, double *b, const int *ldb,
             int *info);
 void dposv_(const char *uplo, const int *n, const int *nrhs, double *a, const int *lda, double *b, const int *ldb,
             int *info);
 
-/* ---- counting allocations (glibc; not under a sanitizer, which has its own malloc) ------------------------------- */
+/* ---- counting allocations and making them fail (glibc; a sanitizer has its own malloc) ------------------------------
+ */
+
+static long allocations, live, fail_at = -1; /* fail_at: number of the allocation that fails; -1: none */
+static bool fails_for_good;                  /* all later ones fail too */
 
 #if defined(__GLIBC__) && !defined(__SANITIZE_ADDRESS__)
 #define COUNTS_ALLOCATIONS 1
 void *__libc_malloc(size_t size);
 void *__libc_calloc(size_t n, size_t size);
 void *__libc_realloc(void *p, size_t size);
-static long allocations;
+void __libc_free(void *p);
+
+static bool fails(void)
+{
+    const long number = allocations++;
+    return fail_at >= 0 && (number == fail_at || (fails_for_good && number > fail_at));
+}
+
+static void *counted(void *p)
+{
+    live += p != NULL;
+    return p;
+}
+
 void *malloc(size_t size)
 {
-    allocations++;
-    return __libc_malloc(size);
+    return fails() ? NULL : counted(__libc_malloc(size));
 }
+
 void *calloc(size_t n, size_t size)
 {
-    allocations++;
-    return __libc_calloc(n, size);
+    return fails() ? NULL : counted(__libc_calloc(n, size));
 }
+
 void *realloc(void *p, size_t size)
 {
-    allocations++;
-    return __libc_realloc(p, size);
+    if (fails()) return NULL;
+    live -= p != NULL;
+    return counted(__libc_realloc(p, size));
+}
+
+void free(void *p)
+{
+    live -= p != NULL;
+    __libc_free(p);
 }
 #else
 #define COUNTS_ALLOCATIONS 0
-static long allocations;
 #endif
 
 /* ---- building plane and space trusses from tables --------------------------------------------------------------- */
@@ -1274,6 +1299,57 @@ START_TEST(an_analysis_allocates_nothing)
 }
 END_TEST
 
+/* Structure, solver, analysis and a gradient from beginning to end, once; everything freed again. No assertion inside:
+ * Check allocates. */
+static sct_status whole_job(const sct_model *m, sct_engine engine, const double A[], sct_issues *issues)
+{
+    sct_structure *st = NULL;
+    sct_solver *solver = NULL;
+    sct_response r = {0};
+    double dq[8] = {0};
+    const sct_weights none = {0};
+    sct_status status = sct_structure_build(m, &st, issues);
+    if (status == SCT_OK) solver = sct_solver_new(st, engine, &status);
+    if (status == SCT_OK) status = sct_response_new(st, &r);
+    if (status == SCT_OK) status = sct_solver_analyse(solver, A, &r);
+    if (status == SCT_OK) status = sct_sensitivity_adjoint(solver, &r, 1, &none, dq);
+    sct_response_free(&r);
+    sct_solver_free(solver);
+    sct_structure_free(st);
+    return status;
+}
+
+START_TEST(every_allocation_may_fail_once_or_for_good_without_a_leak)
+{
+    for (int mode = 0; COUNTS_ALLOCATIONS && mode < 4; mode++) {
+        const sct_engine engine = mode % 2 == 0 ? SCT_ENGINE_SMALL : SCT_ENGINE_SPARSE;
+        sct_random r = {.state = 78};
+        sct_model *m = random_truss(&r, 3, 12, 10);
+        sct_issues *issues = sct_issues_new();
+        double A[8];
+        for (int g = 0; g < m->n_groups; g++) A[g] = m->groups[g].A_held;
+        sct_status status = whole_job(m, engine, A, issues); /* the libraries' own lasting memory is there now */
+        const long first = allocations;
+        const sct_status again = whole_job(m, engine, A, issues);
+        const long points = allocations - first;
+        ck_assert(status == SCT_OK && again == SCT_OK && points > 25);
+        for (long point = 0; point < points; point++) {
+            const long live_before = live;
+            fail_at = allocations + point;
+            fails_for_good = mode >= 2;
+            status = whole_job(m, engine, A, issues);
+            fail_at = -1;
+            const long leaked = live - live_before;
+            ck_assert_int_eq(leaked, 0);
+            /* qsort and CHOLMOD can do without some of their memory, once */
+            ck_assert(status == SCT_NO_MEMORY || (status == SCT_OK && !fails_for_good));
+        }
+        sct_issues_free(issues);
+        mb_free(m);
+    }
+}
+END_TEST
+
 int main(void)
 {
     Suite *suite = suite_create("solver");
@@ -1321,6 +1397,7 @@ int main(void)
     tcase_add_test(facts, stiffness_times_c_divides_displacements_by_c_and_keeps_forces);
     tcase_add_test(facts, survey_coordinates_give_the_answer_of_the_shifted_model);
     tcase_add_test(facts, an_analysis_allocates_nothing);
+    tcase_add_test(facts, every_allocation_may_fail_once_or_for_good_without_a_leak);
     suite_add_tcase(suite, closed);
     suite_add_tcase(suite, facts);
     return run_suite(suite);

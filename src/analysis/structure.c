@@ -135,7 +135,7 @@ static void measure_bars(sct_structure *st, double size, sct_issues *issues)
                           "member %s has no length: joints %s and %s are at one place", member->name, from->name,
                           to->name);
         }
-        for (int i = 0; i < 3; i++) bar->dir[i] = d[i] / bar->L;
+        for (int i = 0; i < 3 && bar->L > 0.0; i++) bar->dir[i] = d[i] / bar->L;
     }
 }
 
