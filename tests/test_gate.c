@@ -62,7 +62,7 @@ static const gate_case CASES[] = {
     /* strings */
     CASE("[\"a\\u0000b\"]", "1:4: error: \\u0000 is not allowed in a string"),
     CASE("{\"a\\u0000b\":1}", "1:4: error: \\u0000 is not allowed in a string"),
-    CASE("[\"a\0b\"]", "1:4: error: a raw byte 0x00 in a string; write \\u0000"),
+    CASE("[\"a\0b\"]", "1:4: error: a zero byte in a string; no text holds one"),
     CASE("[\"a\tb\"]", "1:4: error: a raw byte 0x09 in a string; write \\u0009"),
     CASE("[\"a\001b\"]", "1:4: error: a raw byte 0x01 in a string; write \\u0001"),
     CASE("[\"a\nb\"]", "1:4: error: the line ends inside the string that begins at 1:2; close it with \", or write \\n "

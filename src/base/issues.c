@@ -2,6 +2,7 @@
 #include "issues.h"
 
 #include <stdarg.h>
+#include <stdbool.h>
 #include <stdlib.h>
 #include <string.h>
 
@@ -83,15 +84,29 @@ static const char *keep(sct_issues *issues, const char *text)
     return copy != NULL ? copy : "(out of memory)";
 }
 
+/* Is the same remark there already? One job may look at a structure more than once. */
+static bool is_told(const sct_issues *issues, sct_severity severity, sct_where where, const char *message)
+{
+    for (int i = 0; i < issues->n; i++) {
+        const sct_issue *other = &issues->list[i];
+        if (other->severity == severity && other->line == where.line && other->column == where.column &&
+            strcmp(other->message, message) == 0)
+            return true;
+    }
+    return false;
+}
+
 void sct_issue_add(sct_issues *issues, sct_severity severity, sct_where where, const char *format, ...)
 {
     if (issues == NULL) return;
-    if (severity == SCT_ERROR ? issues->errors++ >= MOST_ERRORS : issues->others++ >= MOST_OTHERS) return;
+    if (severity == SCT_ERROR ? issues->errors++ >= MOST_ERRORS : issues->others >= MOST_OTHERS) return;
     char message[MESSAGE_ROOM];
     va_list args;
     va_start(args, format);
     sct_number_vformat(message, sizeof message, format, args);
     va_end(args);
+    if (severity != SCT_ERROR && is_told(issues, severity, where, message)) return;
+    issues->others += severity != SCT_ERROR;
     issues->list[issues->n++] = (sct_issue){
         .severity = severity,
         .file = keep(issues, where.file),

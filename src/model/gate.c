@@ -244,6 +244,8 @@ static bool scan_string(scan *s)
                          "the line ends inside the string that begins at %d:%d; close it with \", or write "
                          "\\n for a line feed",
                          began.line, began.column);
+        } else if (c == 0) {
+            return fault(s, here(s), "a zero byte in a string; no text holds one");
         } else if (c < 0x20) {
             return fault(s, here(s), "a raw byte 0x%02X in a string; write \\u%04x", c, c);
         } else {

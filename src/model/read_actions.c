@@ -18,13 +18,12 @@ static bool open_object(sct_reader *r, const sct_node *node, const char *expecte
     return true;
 }
 
-/* The part of v that the supports of a joint do not hold, and the part that they do, relative to its length. */
-static void split_by_support(const sct_joint *joint, const double v[3], double *free, double *held)
+/* The part of v that the supports of a joint do not hold, relative to its length. */
+static double part_not_held(const sct_joint *joint, const double v[3])
 {
     double basis[3][3], rest[3] = {v[0], v[1], v[2]};
     const double length = hypot(hypot(v[0], v[1]), v[2]);
-    *free = *held = 0.0;
-    if (!(length > 0)) return;
+    if (!(length > 0)) return 0.0;
     int n = 0;
     for (int i = 0; i < joint->n_held; i++) { /* an orthonormal basis of the directions held: Gram and Schmidt */
         double d[3] = {joint->held[i][0], joint->held[i][1], joint->held[i][2]};
@@ -39,33 +38,23 @@ static void split_by_support(const sct_joint *joint, const double v[3], double *
     for (int k = 0; k < n; k++) {
         const double along = rest[0] * basis[k][0] + rest[1] * basis[k][1] + rest[2] * basis[k][2];
         for (int c = 0; c < 3; c++) rest[c] -= along * basis[k][c];
-        *held = hypot(*held, along);
     }
-    *free = hypot(hypot(rest[0], rest[1]), rest[2]) / length;
-    *held /= length;
+    return hypot(hypot(rest[0], rest[1]), rest[2]) / length;
 }
 
 static void read_loads(sct_reader *r, const sct_node *node, sct_case *c)
 {
     static const sct_range LOAD = {"a force", SCT_FORCE, -1e12, 1e12, 1, 1e8};
-    int n, n_into_supports = 0;
+    int n;
     if (!open_object(r, node, "an object of forces, keyed by joint", &n)) return;
     c->loads = sct_fields_array(&r->f, n, sizeof *c->loads);
     if (c->loads == NULL) return;
     for (const sct_node *entry = sct_node_first(node); entry != NULL; entry = sct_node_next(entry)) {
         sct_joint_load *load = &c->loads[c->n_loads++];
         load->where = sct_fields_where(&r->f, entry);
-        const bool known = sct_fields_key_reference(&r->f, entry, "joint", r->joints, &load->joint);
-        if (!sct_fields_vector(&r->f, entry, &LOAD, load->F) || !known) continue;
-        double free, held;
-        split_by_support(&r->model->joints[load->joint], load->F, &free, &held);
-        n_into_supports += held > 1e-9;
+        sct_fields_key_reference(&r->f, entry, "joint", r->joints, &load->joint);
+        sct_fields_vector(&r->f, entry, &LOAD, load->F);
     }
-    if (n_into_supports > 0)
-        sct_fields_remark(&r->f, SCT_NOTE, node,
-                          "%d of these loads act%s on held directions: that part goes straight into "
-                          "the reactions",
-                          n_into_supports, n_into_supports == 1 ? "s" : "");
 }
 
 static void read_settlements(sct_reader *r, const sct_node *node, sct_case *c)
@@ -81,8 +70,7 @@ static void read_settlements(sct_reader *r, const sct_node *node, sct_case *c)
         s->where = sct_fields_where(&r->f, entry);
         const bool known = sct_fields_key_reference(&r->f, entry, "joint", r->joints, &s->joint);
         if (!sct_fields_vector(&r->f, entry, &SETTLEMENT, s->d) || !known) continue;
-        double free, held;
-        split_by_support(&r->model->joints[s->joint], s->d, &free, &held);
+        const double free = part_not_held(&r->model->joints[s->joint], s->d);
         if (free > TOL_HELD && !r->joint_is_wrong[s->joint])
             sct_fields_error(&r->f, entry,
                              "joint \"%s\" is not held in the direction of this settlement; expected one along "
