@@ -39,7 +39,7 @@ calls=$(nm -A --undefined-only "$BUILD/libscantling.a" 2>/dev/null |
 none "the library does not print, exit, or set the locale" "$calls"
 none "kernels do no input or output" "$(grep -rn '#include <stdio.h>' src/numerics src/analysis src/rules)"
 none "cJSON's case-blind, index and number traps are not used" \
-    "$(grep -rnE 'cJSON_GetObjectItem\(|cJSON_GetArrayItem|valueint|cJSON_Print' src)"
+    "$(grep -rnE 'cJSON_GetObjectItem\(|cJSON_GetArrayItem|->valueint|cJSON_Print' src)"
 
 public=$(nm -D --defined-only "$BUILD/libscantling.so" | awk '$2 == "T" || $2 == "D" || $2 == "B" || $2 == "R" {print $3}' | grep -v '^sct_')
 case $BUILD in *sanitize*) public="" ;; esac
@@ -48,9 +48,10 @@ for name in $(grep -oE '^SCT_API.*' include/scantling.h | grep -oE 'sct_[a-z_]+\
     nm -D --defined-only "$BUILD/libscantling.so" | grep -qw "$name"
     ok "$name is exported"
 done
-none "data that changes is nowhere global in the library" \
-    "$(nm -A "$BUILD/libscantling.a" 2>/dev/null | awk '$2 ~ /^[bBdDC]$/ || $3 ~ /^[bBdDC]$/' | grep -vE 'asan|ubsan|\.LC|__|_ZZ' |
-        case $BUILD in *sanitize*) cat >/dev/null ;; *) cat ;; esac)"
+# Objects in .data or .bss change; tables of pointers in .data.rel.ro do not.
+changing=$(objdump -t "$BUILD/libscantling.a" 2>/dev/null | grep -wE 'O \.(data|bss)[^ ]*' | grep -vF .data.rel.ro)
+case $BUILD in *sanitize*) changing="" ;; esac
+none "the library has no global data that changes" "$changing"
 
 echo "$held held, $broken broken"
 [ "$broken" = 0 ]
