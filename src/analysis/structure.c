@@ -7,6 +7,8 @@
 #include <stdlib.h>
 #include <string.h>
 
+#include "base/text.h"
+
 static const double TOL_PLACE = 1e-9;     /* of the model's size: nearer joints are at one place */
 static const double TOL_DIRECTION = 1e-9; /* relative: part of a vector outside the directions it may have */
 
@@ -126,14 +128,15 @@ static void measure_bars(sct_structure *st, double size, sct_issues *issues)
         bar->expansion = material->expansion;
         bar->half_weight = bar->density * SCT_GRAVITY * bar->L / 2.0;
         if (!isfinite(size)) {
-            sct_issue_add(issues, SCT_ERROR, member->where, "member %s has no finite length", member->name);
+            sct_issue_add(issues, SCT_ERROR, member->where, "member \"%s\" has no finite length",
+                          sct_show(member->name).text);
         } else if (member->from == member->to) {
-            sct_issue_add(issues, SCT_ERROR, member->where, "member %s goes from joint %s to itself", member->name,
-                          from->name);
+            sct_issue_add(issues, SCT_ERROR, member->where, "member \"%s\" goes from joint \"%s\" to itself",
+                          sct_show(member->name).text, sct_show(from->name).text);
         } else if (!(bar->L > TOL_PLACE * size)) {
             sct_issue_add(issues, SCT_ERROR, member->where,
-                          "member %s has no length: joints %s and %s are at one place", member->name, from->name,
-                          to->name);
+                          "member \"%s\" has no length: joints \"%s\" and \"%s\" are at one place",
+                          sct_show(member->name).text, sct_show(from->name).text, sct_show(to->name).text);
         }
         for (int i = 0; i < 3 && bar->L > 0.0; i++) bar->dir[i] = d[i] / bar->L;
     }
@@ -167,11 +170,11 @@ static void find_coincident_joints(const sct_model *m, const keyed sorted[], dou
             const int a = sorted[i].index < sorted[k].index ? sorted[i].index : sorted[k].index;
             const int b = sorted[i].index + sorted[k].index - a;
             if (distance(&m->joints[a], &m->joints[b]) > tol) continue;
-            sct_issue_add(
-                issues, SCT_WARNING, m->joints[b].where,
-                "joints %s and %s are at the same place and not connected with each other; use one joint if they "
-                "are meant to be one",
-                m->joints[a].name, m->joints[b].name);
+            sct_issue_add(issues, SCT_WARNING, m->joints[b].where,
+                          "joints \"%s\" and \"%s\" are at the same place and not connected with each other; use one "
+                          "joint if they "
+                          "are meant to be one",
+                          sct_show(m->joints[a].name).text, sct_show(m->joints[b].name).text);
             break; /* one message per joint is enough, and many joints at one place stay cheap */
         }
     }
@@ -215,8 +218,8 @@ static void find_passing_bars(const sct_structure *st, const keyed sorted[], int
             if (++pairs > MOST_PAIRS) return;
             if (p == bar->from || p == bar->to || distance_from_bar(st, bar, p, tol) > tol) continue;
             sct_issue_add(issues, SCT_WARNING, m->members[e].where,
-                          "member %s passes through joint %s without being connected to it", m->members[e].name,
-                          m->joints[p].name);
+                          "member \"%s\" passes through joint \"%s\" without being connected to it",
+                          sct_show(m->members[e].name).text, sct_show(m->joints[p].name).text);
         }
     }
 }
@@ -262,7 +265,8 @@ static bool find_parallel_members(const sct_model *m, sct_issues *issues)
         if (list[k].low != list[k - 1].low || list[k].high != list[k - 1].high) continue;
         const sct_member *first = &m->members[list[k - 1].member], *second = &m->members[list[k].member];
         sct_issue_add(issues, SCT_WARNING, second->where,
-                      "members %s and %s join the same two joints; they act side by side", first->name, second->name);
+                      "members \"%s\" and \"%s\" join the same two joints; they act side by side",
+                      sct_show(first->name).text, sct_show(second->name).text);
     }
     free(list);
     return true;
@@ -379,8 +383,7 @@ static void find_empty_cases(const sct_model *m, sct_issues *issues)
     }
     for (int k = 0; k < m->n_cases; k++) {
         if (!case_is_empty(&m->cases[k])) continue;
-        sct_issue_add(issues, SCT_WARNING, m->cases[k].where, "case %s has no load; its results are zero",
-                      m->cases[k].name);
+        sct_issue_add(issues, SCT_WARNING, m->cases[k].where, "the case has no load; its results are zero");
     }
 }
 
@@ -391,7 +394,8 @@ static void add_joint_load(sct_structure *st, int k, const sct_joint_load *load,
     const sct_joint *joint = &st->model->joints[load->joint];
     if (is_zero(load->F)) return;
     if (!has_member[load->joint]) {
-        sct_issue_add(issues, SCT_ERROR, load->where, "joint %s carries a load but has no members", joint->name);
+        sct_issue_add(issues, SCT_ERROR, load->where, "joint \"%s\" carries a load but has no members",
+                      sct_show(joint->name).text);
         return;
     }
     double *f = st->f + (size_t)k * (size_t)st->n_dof;
@@ -403,7 +407,8 @@ static void add_joint_load(sct_structure *st, int k, const sct_joint_load *load,
     }
     if (largest > TOL_DIRECTION * length(load->F) || warned[load->joint]) return;
     warned[load->joint] = true;
-    sct_issue_add(issues, SCT_WARNING, load->where, "the load at joint %s goes straight to its support", joint->name);
+    sct_issue_add(issues, SCT_WARNING, load->where, "the load at joint \"%s\" goes straight to its support",
+                  sct_show(joint->name).text);
 }
 
 static void add_settlement(sct_structure *st, int k, const sct_settlement *settlement, sct_issues *issues)
@@ -415,8 +420,8 @@ static void add_settlement(sct_structure *st, int k, const sct_settlement *settl
     project_off(outside, (const double(*)[3])span, n);
     if (length(outside) > TOL_DIRECTION * length(settlement->d)) {
         sct_issue_add(issues, SCT_ERROR, settlement->where,
-                      "settlement of joint %s in a direction that is not held; only held directions can be moved",
-                      joint->name);
+                      "settlement of joint \"%s\" in a direction that is not held; only held directions can be moved",
+                      sct_show(joint->name).text);
         return;
     }
     double *settled = st->settled + ((size_t)k * (size_t)st->n_joints + (size_t)settlement->joint) * 3;
@@ -429,8 +434,10 @@ static void add_bar_action(sct_structure *st, int k, const sct_bar_action *actio
     double *stretch = st->stretch + (size_t)k * (size_t)st->n_bars + action->member;
     if (action->dT != 0.0 && isnan(bar->expansion)) {
         const sct_group *group = &st->model->groups[bar->group];
-        sct_issue_add(issues, SCT_ERROR, action->where, "member %s is warmed but its material %s has no \"expansion\"",
-                      st->model->members[action->member].name, st->model->materials[group->material].name);
+        sct_issue_add(issues, SCT_ERROR, action->where,
+                      "member \"%s\" is warmed but its material \"%s\" has no \"expansion\"",
+                      sct_show(st->model->members[action->member].name).text,
+                      sct_show(st->model->materials[group->material].name).text);
     } else if (action->dT != 0.0) {
         *stretch -= bar->expansion * action->dT * bar->L;
     }
@@ -474,8 +481,8 @@ static void find_lonely_joints(const sct_model *m, bool has_member[], sct_issues
     for (int e = 0; e < m->n_members; e++) has_member[m->members[e].from] = has_member[m->members[e].to] = true;
     for (int j = 0; j < m->n_joints; j++) {
         if (has_member[j]) continue;
-        sct_issue_add(issues, SCT_WARNING, m->joints[j].where, "joint %s has no members; it is left out",
-                      m->joints[j].name);
+        sct_issue_add(issues, SCT_WARNING, m->joints[j].where, "joint \"%s\" has no members; it is left out",
+                      sct_show(m->joints[j].name).text);
     }
 }
 

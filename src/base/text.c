@@ -136,6 +136,16 @@ void sct_text_plain(sct_text *text, const char *raw, int most)
     }
 }
 
+sct_shown sct_show(const char *name)
+{
+    sct_shown shown = {""};
+    sct_text text = {0};
+    sct_text_plain(&text, name, 64);
+    if (text.data != NULL) snprintf(shown.text, sizeof shown.text, "%s", text.data);
+    sct_text_free(&text);
+    return shown;
+}
+
 void sct_text_pad(sct_text *text, size_t start, int width, bool right)
 {
     if (text->failed) return;

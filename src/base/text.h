@@ -27,6 +27,11 @@ void sct_text_json(sct_text *text, const char *raw);
 void sct_text_xml(sct_text *text, const char *raw);
 /** Text for a terminal: control characters as \xNN, cut at `most` characters with "..." (0: not cut). */
 void sct_text_plain(sct_text *text, const char *raw, int most);
+/* A name cut at 64 characters and cleaned, for a message: sct_show(name).text. */
+typedef struct sct_shown {
+    char text[272];
+} sct_shown;
+sct_shown sct_show(const char *name);
 /** Pads with blanks to `width` columns what was added since `start` (a value of text->size), on the right, or on the
  * left when `right` is set. Characters count, not bytes. */
 void sct_text_pad(sct_text *text, size_t start, int width, bool right);

@@ -14,16 +14,6 @@ static const char AXES[] = "xyz";
 
 /* ---- messages --------------------------------------------------------------------------------------------------- */
 
-sct_shown sct_show(const char *name)
-{
-    sct_shown shown = {""};
-    sct_text text = {0};
-    sct_text_plain(&text, name, 64);
-    if (text.data != NULL) snprintf(shown.text, sizeof shown.text, "%s", text.data);
-    sct_text_free(&text);
-    return shown;
-}
-
 bool sct_fields_enough(const sct_fields *f)
 {
     return f->n_errors >= ENOUGH_ERRORS;

@@ -33,12 +33,6 @@ typedef struct sct_range {
     double least, most, usual_least, usual_most;
 } sct_range;
 
-/* A name cut and cleaned for a message: sct_show(name).text. */
-typedef struct sct_shown {
-    char text[272];
-} sct_shown;
-sct_shown sct_show(const char *name);
-
 /** Adds an error (warning, note) at a value, or at its key. */
 __attribute__((format(printf, 3, 4))) void sct_fields_error(sct_fields *f, const sct_node *node, const char *format,
                                                             ...);
