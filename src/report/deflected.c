@@ -25,9 +25,10 @@ double sct_deflected_factor(const sct_scene *scene)
         const double *u = displacement(scene, j);
         largest = fmax(largest, sqrt(u[0] * u[0] + u[1] * u[1] + u[2] * u[2]));
     }
+    if (!(largest > 0)) return 0;
     const double span = fmax(scene->high.x - scene->low.x, scene->high.y - scene->low.y) / scene->scale; /* [m] */
     const double most = LARGEST_OF_SPAN * span / largest;
-    if (!(largest > 0) || !(most > 0) || !isfinite(most)) return 0;
+    if (!(most > 0) || !isfinite(most)) return 0;
     const double power = pow(10, floor(log10(most))), times = most / power;
     return power * (times >= 5 ? 5 : times >= 2 ? 2 : 1);
 }
@@ -56,7 +57,10 @@ static void show_limit(sct_scene *scene, const sct_deflection_result *limit, dou
     sct_quantity_movement(most, limit->at_most, us);
     sct_number_format(words, sizeof words, "%s of %s\xE2\x80\xAF%s", is, most, us ? "in" : "mm");
     const bool is_over = fabs(along) > limit->at_most;
-    sct_marks_near(scene, tip, 4, (sct_point){0, 0}, &(sct_run){words, is_over ? ROLE_OVER : ROLE_INK, true}, 1);
+    const sct_run run = {words, is_over ? ROLE_OVER : ROLE_INK, true};
+    bool done = false;
+    for (double off = 4; off < 60 && !done; off += 15)
+        done = sct_marks_near(scene, tip, off, (sct_point){0, 0}, &run, 1);
 }
 
 /* The limits with the largest utilisations in the order of the model, one per joint. */

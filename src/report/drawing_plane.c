@@ -271,8 +271,9 @@ static void dimension_axis(sct_scene *scene, int axis, bool in_panels, double ac
         n = 1;
     }
     const double last = across + (n > 1 ? NEXT_LINE : 0);
-    for (int i = 0; i < c.n; i++)
-        if (i == 0 || i == c.n - 1 || n > 1) extension(scene, &c, i, axis, i == 0 || i == c.n - 1 ? last : across);
+    extension(scene, &c, 0, axis, last);
+    extension(scene, &c, c.n - 1, axis, last);
+    for (int i = 1; i < n; i++) extension(scene, &c, runs[i].from, axis, across);
     one_line(scene, &c, runs, n, axis, across);
     if (n == 1) return;
     write_run(r, &ends, &whole, true);

@@ -114,8 +114,9 @@ sct_status sct_scene_open(sct_scene *scene, const sct_result *result, const sct_
     scene->near_start = sct_arena_array(scene->arena, n_joints + 1, sizeof *scene->near_start);
     scene->near = sct_arena_array(scene->arena, 2 * n_members, sizeof *scene->near);
     scene->sticks = sct_arena_array(scene->arena, n_members, sizeof *scene->sticks);
-    if (scene->at == NULL || scene->away == NULL || scene->is_named == NULL || scene->near_start == NULL ||
-        scene->near == NULL || scene->sticks == NULL)
+    scene->lengths = sct_arena_array(scene->arena, n_members, sizeof *scene->lengths);
+    if (scene->lengths == NULL || scene->at == NULL || scene->away == NULL || scene->is_named == NULL ||
+        scene->near_start == NULL || scene->near == NULL || scene->sticks == NULL)
         return SCT_NO_MEMORY;
     if (scene->options.combination < 0 || scene->options.combination >= result->n_combinations)
         scene->options.combination = worst_for_deflection(result);
@@ -140,19 +141,18 @@ static int by_size(const void *left, const void *right)
     return p < q ? -1 : p > q;
 }
 
-/* The median drawn length for joints in scene->at [same unit]; 0 when out of memory or without members. */
+/* The median drawn length for joints in scene->at [same unit]; 0 without members. */
 static double median_length(const sct_scene *scene)
 {
     const sct_result *r = scene->result;
     const size_t n = (size_t)r->n_members;
-    double *lengths = sct_arena_array(scene->arena, n, sizeof *lengths);
-    if (lengths == NULL || n == 0) return 0;
+    if (n == 0) return 0;
     for (size_t m = 0; m < n; m++) {
         const sct_point p = scene->at[r->members[m].from], q = scene->at[r->members[m].to];
-        lengths[m] = hypot(q.x - p.x, q.y - p.y);
+        scene->lengths[m] = hypot(q.x - p.x, q.y - p.y);
     }
-    qsort(lengths, n, sizeof *lengths, by_size);
-    return lengths[n / 2];
+    qsort(scene->lengths, n, sizeof *scene->lengths, by_size);
+    return scene->lengths[n / 2];
 }
 
 /* A view in space shows members before members: fewer marks keep it readable, the table has the rest. */
@@ -199,21 +199,25 @@ static double free_side(const sct_scene *scene, int m)
     return left == right ? 0 : right ? -1 : 1;
 }
 
-/* The largest factor that keeps every band slim: at most 14 u and 0.22 of its length. */
+/* The largest factor that keeps every band slim: at most 14 u and 0.22 of its length. Where even true depths are much
+ * wider, as in a model of a few feet, a fraction. 0 when a depth is unknown. */
 static double choose_depth_factor(const sct_scene *scene)
 {
-    static const double FACTORS[] = {5, 4, 3, 2, 1.5, 1};
+    static const double FACTORS[] = {5, 4, 3, 2, 1.5, 1}, FRACTIONS[] = {0.5, 0.2, 0.1};
     const sct_result *r = scene->result;
-    double most = INFINITY;
+    double deepest = 0, slim = INFINITY;
     for (int m = 0; m < r->n_members; m++) {
         const double depth = r->groups[r->members[m].group].depth * scene->scale;
         if (!(depth > 0)) return 0;
-        most =
-            fmin(most, fmin(DEPTH_MOST, fmax(DEPTH_MOST_OF_LENGTH * scene->sticks[m].length, TENSION_LEAST)) / depth);
+        deepest = fmax(deepest, depth);
+        slim = fmin(slim, fmax(DEPTH_MOST_OF_LENGTH * scene->sticks[m].length, TENSION_LEAST) / depth);
     }
     for (size_t i = 0; i < sizeof FACTORS / sizeof *FACTORS; i++)
-        if (FACTORS[i] <= most) return FACTORS[i];
-    return 1;
+        if (FACTORS[i] <= fmin(slim, DEPTH_MOST / deepest)) return FACTORS[i];
+    if (deepest <= 1.5 * DEPTH_MOST) return 1;
+    for (size_t i = 0; i < sizeof FRACTIONS / sizeof *FRACTIONS; i++)
+        if (FRACTIONS[i] * deepest <= DEPTH_MOST) return FRACTIONS[i];
+    return 0;
 }
 
 static void set_depths(sct_scene *scene)
@@ -229,11 +233,6 @@ static void set_depths(sct_scene *scene)
         if (!(s->depth >= least)) {
             scene->is_widened |= s->sense != SENSE_NONE && scene->depth_factor > 0;
             s->depth = least;
-        }
-        /* To scale a stocky member of a small model may be wide; beyond this it would hide its neighbours. */
-        if (s->depth > 2 * DEPTH_MOST) {
-            s->depth = 2 * DEPTH_MOST;
-            scene->depth_factor = 0;
         }
     }
 }

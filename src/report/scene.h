@@ -32,6 +32,7 @@ typedef struct sct_scene {
     double *away;        /* [m] joints, distance from the viewer; 0 in a plane */
     sct_point low, high; /* bounds of the joints */
     sct_stick *sticks;
+    double *lengths;        /* scratch, one per member */
     int *near_start, *near; /* members at joint j: near[near_start[j]] to near[near_start[j + 1] - 1] */
     bool *is_named;         /* joints */
     sct_detail detail;

@@ -245,7 +245,7 @@ double sct_words_width(const char *words, double size, bool bold)
     return width * size * (bold ? 1.1 : 1.0);
 }
 
-double sct_runs_width(const sct_run runs[], int n, double size)
+double sct_runs_width(const sct_run *runs, int n, double size)
 {
     double width = n > 1 ? 0.33 * size * (n - 1) : 0;
     for (int i = 0; i < n; i++) width += sct_words_width(runs[i].text, size, runs[i].bold);

@@ -74,7 +74,7 @@ void sct_sheet_words(sct_sheet *sheet, sct_point at, double size, sct_anchor anc
 
 /** Upper bound of the width of one run, and of a line of runs, over the usual system faces. */
 double sct_words_width(const char *words, double size, bool bold);
-double sct_runs_width(const sct_run runs[], int n, double size);
+double sct_runs_width(const sct_run *runs, int n, double size);
 
 /** Copies `words` to out, cut with an ellipsis at a character boundary to be at most `width` wide and to fit. */
 void sct_words_fit(const char *words, double width, double size, bool bold, char *out, size_t room);
