@@ -17,7 +17,9 @@
 #include "base/random.h"
 #include "numerics/span.h"
 
-enum { BLOCK = 6, ITERATIONS = 6 };
+/* Twice as many vectors as motions are told: a model has no more mechanisms than that, as a rule, and only a whole null
+ * space can be told apart into local motions. */
+enum { BLOCK = 2 * SCT_MOTIONS_TOLD, ITERATIONS = 6 };
 
 /* On the scaled matrix, the smallest first: with 1e-14 slender trusses keep their modes apart, with 1e-10 a factor
  * always exists. */
@@ -406,6 +408,31 @@ static void localise(int n, int m, double V[])
     }
 }
 
+/* The first unknown that moves in v, where pivots are 1. */
+static int first_moving(int n, const double v[])
+{
+    int i = 0;
+    while (i < n - 1 && !(fabs(v[i]) >= SHOWN)) i++;
+    return i;
+}
+
+/* Brings m localised vectors into the order of their first unknowns: that of the joints in the file. */
+static void sort_motions(int n, int m, double V[])
+{
+    for (int done = 0; done < m; done++) {
+        int best = done;
+        for (int k = done + 1; k < m; k++) {
+            if (first_moving(n, V + (size_t)k * (size_t)n) < first_moving(n, V + (size_t)best * (size_t)n)) best = k;
+        }
+        double *a = V + (size_t)done * (size_t)n, *b = V + (size_t)best * (size_t)n;
+        for (int i = 0; i < n && best != done; i++) {
+            const double swap = a[i];
+            a[i] = b[i];
+            b[i] = swap;
+        }
+    }
+}
+
 /* Largest stretch of a bar over largest displacement of a joint, of a vector in scaled unknowns. */
 static double relative_stretch(const search *f, const double x[], double v[])
 {
@@ -447,6 +474,7 @@ static sct_status judge(search *f, bool definite, double v[])
         n_free++;
     }
     localise(f->n, n_free, f->X);
+    sort_motions(f->n, n_free, f->X);
     sct_status status = SCT_OK;
     for (int k = 0; k < n_free && f->n_told < SCT_MOTIONS_TOLD && status != SCT_NO_MEMORY; k++) {
         status = tell_mechanism(f, f->X + (size_t)k * (size_t)f->n);
