@@ -586,7 +586,7 @@ START_TEST(deflected_shape_tells_movement_limit_and_factor)
     truss *t = howe(0.94);
     sct_text svg = draw(t, true, true);
     /* 0.08 of 24 m over 31.2 mm is 61.5: the next lower of 1, 2, 5 is 50 */
-    ck_assert(holds(&svg, "Deflected shape under service, displacements \xC3\x97"
+    ck_assert(holds(&svg, "Deflected shape (service), displacements \xC3\x97"
                           "50"));
     ck_assert(holds(&svg, "31.2 of 80.0\xE2\x80\xAFmm"));
     ck_assert(holds(&svg, ">34.4<") && holds(&svg, ">17.2<"));
@@ -607,13 +607,24 @@ START_TEST(free_areas_and_unknown_depths_are_said)
 }
 END_TEST
 
+START_TEST(a_stocky_model_is_drawn_with_slimmer_members_and_says_so)
+{
+    truss *t = warren(2, 0.75, 0.6); /* chords 200 mm deep in panels of 750 mm */
+    sct_text svg = draw(t, false, false);
+    ck_assert(holds(&svg, "Depths drawn \xC3\x97"
+                          "0.2"));
+    sct_text_free(&svg);
+    truss_free(t);
+}
+END_TEST
+
 START_TEST(us_models_are_drawn_in_feet_and_kips)
 {
     truss *t = hostile_tower();
     sct_text svg = draw(t, true, false);
     ck_assert(holds(&svg, "lengths in ft"));
     ck_assert(holds(&svg, "8 \xC3\x97 6.562 = 52.49")); /* 8 x 2 m = 16 m = 52.49 ft; 8 x 6.56 would be 52.48 */
-    ck_assert(holds(&svg, ", kip") && !holds(&svg, "kN"));
+    ck_assert(holds(&svg, "), kip") && !holds(&svg, "kN"));
     sct_text_free(&svg);
     truss_free(t);
 }
@@ -747,6 +758,7 @@ int main(void)
     tcase_add_test(tests, roof_truss_shows_its_finding_dimensions_and_slope);
     tcase_add_test(tests, deflected_shape_tells_movement_limit_and_factor);
     tcase_add_test(tests, free_areas_and_unknown_depths_are_said);
+    tcase_add_test(tests, a_stocky_model_is_drawn_with_slimmer_members_and_says_so);
     tcase_add_test(tests, us_models_are_drawn_in_feet_and_kips);
     tcase_add_test(tests, names_cannot_become_markup_or_turn_the_numbers);
     tcase_add_test(tests, an_inclined_roller_lies_across_the_direction_held);

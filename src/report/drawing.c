@@ -68,7 +68,7 @@ static layout choose_layout(const sct_scene *scene)
     double across, down;
     measure(scene, &across, &down);
     const bool in_space = scene->result->dimensions == 3;
-    if (down > (in_space ? 0.75 : 1.2) * across) return layout_for(REPORT_WIDTH, true);
+    if (down > (in_space ? 1.05 : 1.2) * across) return layout_for(REPORT_WIDTH, true);
     const layout report = layout_for(REPORT_WIDTH, false), wide = layout_for(WIDE, false);
     const double at_report = fmin(report.figure_width / across, report.figure_height / down);
     const double at_wide = fmin(wide.figure_width / across, wide.figure_height / down);
@@ -184,15 +184,15 @@ static void write_option_notes(const sct_scene *scene, double least, words_of_sh
     sct_quantity words;
     char name[128];
     chosen_combination(scene, name);
-    if (!isnan(least)) sct_number_format(w->loads, sizeof w->loads, "loads of %s, %s", name, unit);
+    if (!isnan(least)) sct_number_format(w->loads, sizeof w->loads, "loads (%s), %s", name, unit);
     if (least > 0) {
         sct_quantity_force(words, least, scene->result->us_customary);
         sct_number_format(w->small_loads, sizeof w->small_loads, "below %s%s%s not drawn", words, "\xE2\x80\xAF", unit);
     }
     const double factor = scene->options.draw_deflected ? sct_deflected_factor(scene) : 0;
     if (factor > 0)
-        sct_number_format(w->deflected, sizeof w->deflected, "Deflected shape under %s, displacements \xC3\x97%.10g",
-                          name, factor);
+        sct_number_format(w->deflected, sizeof w->deflected, "Deflected shape (%s), displacements \xC3\x97%.10g", name,
+                          factor);
 }
 
 /* Words in at most LINES_MOST lines, the last one cut if need be; returns the baseline of the last. */

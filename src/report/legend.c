@@ -8,10 +8,10 @@
 #include "base/number.h"
 #include "quantity.h"
 
-static const double MARGIN = 20, ROW = 19, STRIP_ROW = 22, NOTES = 165, CAUTION_MOST = 424;
+static const double MARGIN = 20, ROW = 19, STRIP_ROW = 22, NOTES = 170, CAUTION_MOST = 424;
 /* Columns of the group table as fractions of its width: left edge of a text, right edge of numbers. */
 static const double SECTION_AT = 0.31, PIECES_AT = 0.73, WORST_AT = 0.87;
-enum { ROWS_MOST = 14, LINE_ROOM = 256 };
+enum { ROWS_MOST = 12, LINE_ROOM = 256 };
 
 static void note(sct_sheet *sheet, double x, double y, const char *words)
 {

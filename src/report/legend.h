@@ -9,7 +9,7 @@ void sct_legend_ramp(sct_sheet *sheet, sct_point at, double field, const char *t
 /** The three kinds of member in a row of about 235 u, on the baseline `at`. */
 void sct_legend_senses(sct_sheet *sheet, sct_point at);
 
-/** The table of groups, `width` wide, its head on the baseline `at`; returns its height. Above 14 groups the worst are
+/** The table of groups, `width` wide, its head on the baseline `at`; returns its height. Above 12 groups the worst are
  * shown and the others counted. */
 double sct_group_table(sct_sheet *sheet, const sct_result *result, sct_point at, double width);
 /** Every member as a tick on the utilisation scale, one row per group; likewise. */

@@ -52,8 +52,8 @@ static void main_reaction(const sct_result *r, int joint, double unit[3])
     for (int i = 0; i < 3; i++) unit[i] = most != NULL ? most[i] / size : i == r->dimensions - 1;
 }
 
-/* How badly a support at `way` from the joint sits: members in its way weigh most, then lying off the line of the main
- * reaction, then pulling instead of pushing. */
+/* How badly a support at `way` from the joint sits: members in its way weigh most. A plane support lies on the line of
+ * the main reaction, rather pushing than pulling; a pyramid in space stands below its joint. */
 static double badness(const sct_scene *scene, int joint, const double reaction[3], const double way[3])
 {
     const sct_result *r = scene->result;
@@ -64,8 +64,8 @@ static double badness(const sct_scene *scene, int joint, const double reaction[3
         const double d[3] = {q[0] - p[0], q[1] - p[1], q[2] - p[2]};
         worst = fmax(worst, dot(d, way) / sqrt(dot(d, d)));
     }
-    const double push = -dot(reaction, way);
-    return (worst > COLLIDES ? 10 : 0) + 1.2 * fmax(worst, 0) + 1.5 * (1 - fabs(push)) + 0.5 * (1 - push);
+    const double push = -dot(reaction, way), members = (worst > COLLIDES ? 10 : 0) + 1.2 * worst;
+    return members + (r->dimensions == 3 ? 1 + way[2] : 1.5 * (1 - fabs(push)) + 0.5 * (1 - push));
 }
 
 static void support_way(const sct_scene *scene, int joint, double way[3])
