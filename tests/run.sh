@@ -18,7 +18,7 @@ for program in "$@"; do
         failed=$((failed + 1))
         continue
     fi
-    bad=$((bad))
+    bad=$((${bad:-1}))
     passed=$((passed + checks - bad))
     failed=$((failed + bad))
     [ "$bad" = 0 ] && [ "$code" != 0 ] && failed=$((failed + 1))

@@ -36,7 +36,7 @@ START_TEST(no_section_is_above_the_envelope_which_is_smooth_and_never_falls)
         for (int k = 0; k < e.n; k++) { /* C1 at the knots */
             const sct_curve a = sct_envelope_at(&e, e.s[k] - 1e-13), b = sct_envelope_at(&e, e.s[k] + 1e-13);
             ck_assert_double_eq_tol(a.h, b.h, 1e-11);
-            ck_assert_double_eq_tol(a.h1, b.h1, 1e-9);
+            ck_assert_double_eq_tol(a.h1, b.h1, 1e-9 * (1 + fabs(a.h2) + fabs(b.h2)));
         }
         for (double s = e.s[0] - 1; s < e.s[e.n - 1] + 1; s += 0.01) {
             const sct_curve c = sct_envelope_at(&e, s);
