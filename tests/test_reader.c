@@ -348,9 +348,9 @@ static const mistake MISTAKES[] = {
      "order"},
     {"\"at_least\": \"100 mm2\",", "", "22:42: error: /groups/tie/area: no \"at_least\"; expected the smallest area"},
     {"\"at_most\": 0.01", "\"at_most\": \"100 mm2\"",
-     "22:97: error: /groups/tie/area/start: found 0.0005 m2; expected an area within the bounds, 0.0001 to 0.0001 m2"},
+     "22:97: error: /groups/tie/area/start: found 500 mm2; expected an area within the bounds, 100 mm2 to 100 mm2"},
     {"\"start\": \"500 mm2\"", "\"start\": 0.5",
-     "22:92: error: /groups/tie/area/start: found 0.5 m2; expected an area within the bounds, 0.0001 to 0.01 m2"},
+     "22:92: error: /groups/tie/area/start: found 0.5 m2; expected an area within the bounds, 100 mm2 to 0.01 m2"},
     {"\"second_moment\": {\"c\": 0.5}, ", "",
      "22:12: error: /groups/tie: no \"second_moment\"; the buckling rule needs it: expected {\"c\": ...} for I = c "
      "A^2"},

@@ -80,7 +80,7 @@ static int read_settings(const cli_command *command, const char *const given[], 
     settings->plain = cli_given(command, given, "plain") != NULL;
     t->kind = kind == PROGRESS_AUTO && !isatty(STDERR_FILENO) ? PROGRESS_NEVER : (progress_kind)kind;
     const char *fault = sct_settings_fault(settings);
-    if (fault != NULL) cli_say("error", "%s", fault);
+    if (fault != NULL) cli_say("error", "--%s", fault); /* settings are named as their options */
     return fault != NULL ? EXIT_USAGE : 0;
 }
 

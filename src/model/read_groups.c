@@ -4,6 +4,7 @@
 #include <stdlib.h>
 #include <string.h>
 
+#include "base/number.h"
 #include "families.h"
 #include "reader.h"
 
@@ -216,6 +217,16 @@ static const sct_key KEYS[N_KEYS] = {{"material", "the name of a material"},
                                      {"restraint", NULL},
                                      {"length_factor", NULL}};
 
+/* An area that was read, as the file says it. */
+static sct_shown said(const sct_reader *r, const sct_node *node)
+{
+    char number[SCT_NUMBER_ROOM], words[SCT_NUMBER_ROOM + 16];
+    if (sct_node_kind_of(node) == SCT_STRING) return sct_show(sct_node_string(node));
+    sct_number_write(sct_node_number(node), number);
+    snprintf(words, sizeof words, "%s %s", number, r->f.unit[SCT_AREA]->name);
+    return sct_show(words);
+}
+
 static void read_area_bounds(sct_reader *r, const sct_node *node, sct_group *g)
 {
     enum { K_LEAST, K_MOST, K_START, N };
@@ -230,15 +241,16 @@ static void read_area_bounds(sct_reader *r, const sct_node *node, sct_group *g)
     if (!has_least || !has_most) return;
     if (g->A_min > g->A_max) {
         const sct_where other = sct_node_where(r->f.document, found[K_MOST]);
-        sct_fields_error(&r->f, found[K_LEAST], "%g m2 is above \"at_most\", %g m2, at %d:%d; expected bounds in order",
-                         g->A_min, g->A_max, other.line, other.column);
+        sct_fields_error(&r->f, found[K_LEAST], "%s is above \"at_most\", %s, at %d:%d; expected bounds in order",
+                         said(r, found[K_LEAST]).text, said(r, found[K_MOST]).text, other.line, other.column);
         return;
     }
     if (has_start && (g->A_start < g->A_min || g->A_start > g->A_max))
-        sct_fields_error(&r->f, found[K_START], "found %g m2; expected an area within the bounds, %g to %g m2",
-                         g->A_start, g->A_min, g->A_max);
+        sct_fields_error(&r->f, found[K_START], "found %s; expected an area within the bounds, %s to %s",
+                         said(r, found[K_START]).text, said(r, found[K_LEAST]).text, said(r, found[K_MOST]).text);
     if (g->A_min < g->A_max) return;
-    sct_fields_remark(&r->f, SCT_NOTE, node, "both bounds are %g m2: the area is held there", g->A_min);
+    sct_fields_remark(&r->f, SCT_NOTE, node, "both bounds are %s: the area is held there",
+                      said(r, found[K_LEAST]).text);
     g->kind = SCT_HELD_AREA;
     g->A_held = g->A_min;
 }

@@ -7,6 +7,7 @@
 
 #include "analysis/recovery.h"
 #include "base/number.h"
+#include "base/text.h"
 
 /* The public struct with the memory behind it. */
 typedef struct result_memory {
@@ -198,7 +199,7 @@ sct_status sct_result_new(const sct_duty *duty, const sct_design *design, sct_ac
     for (int bar = 0; bar < r->n_members; bar++) fill_member(r, duty, design, bar);
     fill_deflections(r, duty);
     r->kept = r->utilisation * (1.0 + accuracy.error) <= 1.0; /* kept only when the error does not matter */
-    sct_result_judge(r);
+    sct_result_judge(r, false);
     *result = r;
     return SCT_OK;
 }
@@ -210,7 +211,24 @@ static double shown(double utilisation)
     return utilisation > 1.0 && up < 1.01 ? 1.01 : up;
 }
 
-void sct_result_judge(sct_result *r)
+/* A name for a sentence: cleaned, and cut between two characters of UTF-8. */
+typedef struct short_name {
+    char text[64];
+} short_name;
+
+static short_name shorten(const char *name)
+{
+    short_name cut;
+    const sct_shown whole = sct_show(name);
+    size_t n = strlen(whole.text);
+    if (n >= sizeof cut.text) n = sizeof cut.text - 1;
+    while (n > 0 && ((unsigned char)whole.text[n] & 0xC0) == 0x80) n--;
+    memcpy(cut.text, whole.text, n);
+    cut.text[n] = '\0';
+    return cut;
+}
+
+void sct_result_judge(sct_result *r, bool at_smallest)
 {
     int bar = -1, row = -1;
     double most = 0.0;
@@ -227,17 +245,23 @@ void sct_result_judge(sct_result *r)
     char what[260] = "nothing is stressed";
     if (row >= 0) {
         const sct_deflection_result *d = &r->deflections[row];
-        sct_number_format(what, sizeof what, "deflection (%.40s) of joint %.60s in \"%.60s\"", d->label,
-                          r->joints[d->joint].name, r->combinations[d->combination]);
+        sct_number_format(what, sizeof what, "deflection (%.40s) of joint \"%s\" in \"%s\"", d->label,
+                          shorten(r->joints[d->joint].name).text, shorten(r->combinations[d->combination]).text);
     } else if (bar >= 0) {
         const sct_member_result *m = &r->members[bar];
         if (m->combination < 0)
-            sct_number_format(what, sizeof what, "%s of member %.60s", sct_check_text(m->check), m->name);
+            sct_number_format(what, sizeof what, "%s of member \"%s\"", sct_check_text(m->check), shorten(m->name).text);
         else
-            sct_number_format(what, sizeof what, "%s of member %.60s in \"%.60s\"", sct_check_text(m->check), m->name,
-                              r->combinations[m->combination]);
+            sct_number_format(what, sizeof what, "%s of member \"%s\" in \"%s\"", sct_check_text(m->check),
+                              shorten(m->name).text, shorten(r->combinations[m->combination]).text);
     }
-    if (r->kept)
+    if (r->outcome == SCT_NOT_OPTIMISED)
+        sct_number_format(r->verdict, sizeof r->verdict, "Not optimised: the start design %s every limit; %s is at %.2f.",
+                          r->kept ? "keeps" : "does not keep", what, shown(most));
+    else if (r->kept && at_smallest && most < 0.995) /* shows as less than 1 */
+        sct_number_format(r->verdict, sizeof r->verdict,
+                          "Every limit is kept; the smallest sizes allowed govern: %s is at %.2f only.", what, shown(most));
+    else if (r->kept)
         sct_number_format(r->verdict, sizeof r->verdict, "Every limit is kept; %s governs at %.2f.", what, shown(most));
     else if (r->outcome == SCT_NO_FEASIBLE_DESIGN)
         sct_number_format(r->verdict, sizeof r->verdict,

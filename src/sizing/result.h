@@ -15,6 +15,7 @@ sct_status sct_result_new(const sct_duty *duty, const sct_design *design, sct_ac
 /** Zeroed memory that lives as long as the result. */
 void *sct_result_array(sct_result *result, size_t n, size_t size);
 
-/** Writes the finding into result->verdict from the checks of the design shown. */
-void sct_result_judge(sct_result *result);
+/** Writes the finding into result->verdict from the checks of the design shown. at_smallest: every size that was sought
+ * is the smallest allowed. */
+void sct_result_judge(sct_result *result, bool at_smallest);
 #endif

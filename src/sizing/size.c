@@ -390,6 +390,16 @@ static sct_outcome outcome_of(const job *J, const sct_result *result)
     return J->starts[J->best].outcome == SCT_OPTIMUM ? SCT_OPTIMUM : SCT_STALLED;
 }
 
+static bool has_smallest_sizes(const job *J)
+{
+    for (int g = 0; g < J->model->n_groups; g++) {
+        const sct_group *group = &J->model->groups[g];
+        if (group->kind == SCT_LADDER && J->design.section[g] != group->ladder[0]) return false;
+        if (group->kind == SCT_FREE_AREA && J->design.A[g] > group->A_min * (1.0 + 1e-9)) return false;
+    }
+    return true;
+}
+
 /* What the search adds to the result: how it went, and the prices at the continuous optimum. */
 static sct_status tell_search(job *J, const double A_continuous[], const sct_price *prices, int n_prices, sct_result *r)
 {
@@ -413,7 +423,7 @@ static sct_status tell_search(job *J, const double A_continuous[], const sct_pri
     r->violation = r->starts[J->best].violation;
     r->analyses = sct_solver_analyses(J->duty->solver);
     r->outcome = outcome_of(J, r);
-    sct_result_judge(r);
+    sct_result_judge(r, has_smallest_sizes(J));
     return SCT_OK;
 }
 
