@@ -8,7 +8,57 @@
 #include "report/labels.h"
 #include "report/quantity.h"
 #include "report/sheet.h"
+#include "report/shown.h"
 #include "scantling.h"
+
+/* ---- making allocations fail (glibc; a sanitizer has its own malloc) ---- */
+
+static long until_failure = -1, live; /* how many allocations still succeed; -1: all */
+
+#if defined(__GLIBC__) && !defined(__SANITIZE_ADDRESS__)
+#define FAILS_ALLOCATIONS 1
+void *__libc_malloc(size_t size);
+void *__libc_calloc(size_t n, size_t size);
+void *__libc_realloc(void *p, size_t size);
+void __libc_free(void *p);
+
+/* One fails, the next ones succeed again: what was lost must not go unnoticed. */
+static bool fails(void)
+{
+    return until_failure >= 0 && until_failure-- == 0;
+}
+
+static void *counted(void *p)
+{
+    live += p != NULL;
+    return p;
+}
+
+void *malloc(size_t size)
+{
+    return fails() ? NULL : counted(__libc_malloc(size));
+}
+
+void *calloc(size_t n, size_t size)
+{
+    return fails() ? NULL : counted(__libc_calloc(n, size));
+}
+
+void *realloc(void *p, size_t size)
+{
+    if (fails()) return NULL;
+    live -= p != NULL;
+    return counted(__libc_realloc(p, size));
+}
+
+void free(void *p)
+{
+    live -= p != NULL;
+    __libc_free(p);
+}
+#else
+#define FAILS_ALLOCATIONS 0
+#endif
 
 /* ---- hand-made results ------------------------------------------------------------------------------------------- */
 
@@ -676,6 +726,30 @@ START_TEST(space_towers_carry_levels_axes_and_tables)
 }
 END_TEST
 
+START_TEST(a_failed_allocation_is_told_or_changes_nothing)
+{
+    truss *(*const make[])(void) = {cantilever, mast, hostile_tower};
+    for (size_t i = 0; FAILS_ALLOCATIONS && i < sizeof make / sizeof *make; i++) {
+        truss *t = make[i]();
+        sct_text whole = draw(t, true, true);
+        const sct_write_options options = {.combination = -1, .draw_loads = true, .draw_deflected = true};
+        for (long n = 0, failed = 1; failed; n++) {
+            const long before = live;
+            sct_text out = {0};
+            until_failure = n;
+            const sct_status status = sct_drawing_svg(&t->r, &options, &out);
+            failed = until_failure < 0; /* the C library's sort may lose its scratch and sort without */
+            until_failure = -1;
+            must(status == SCT_NO_MEMORY || (out.size == whole.size && memcmp(out.data, whole.data, out.size) == 0));
+            sct_text_free(&out);
+            must(live == before);
+        }
+        sct_text_free(&whole);
+        truss_free(t);
+    }
+}
+END_TEST
+
 START_TEST(boxes_meet_by_their_true_shape)
 {
     const sct_box level = sct_box_level((sct_point){0, 0}, 10, 5);
@@ -734,6 +808,19 @@ START_TEST(numbers_are_grouped_and_signed_as_in_print)
 }
 END_TEST
 
+START_TEST(utilisations_read_as_in_the_tables)
+{
+    for (double u = 0; u < 2; u += 0.000437) {
+        sct_quantity drawn;
+        sct_text table = {0};
+        sct_quantity_utilisation(drawn, u);
+        sct_text_utilisation(&table, u);
+        must(strcmp(drawn, table.data) == 0);
+        sct_text_free(&table);
+    }
+}
+END_TEST
+
 START_TEST(words_are_cut_between_characters)
 {
     char out[64];
@@ -763,9 +850,11 @@ int main(void)
     tcase_add_test(tests, names_cannot_become_markup_or_turn_the_numbers);
     tcase_add_test(tests, an_inclined_roller_lies_across_the_direction_held);
     tcase_add_test(tests, space_towers_carry_levels_axes_and_tables);
+    tcase_add_test(tests, a_failed_allocation_is_told_or_changes_nothing);
     tcase_add_test(tests, boxes_meet_by_their_true_shape);
     tcase_add_test(tests, labels_take_the_cheapest_free_place_fewest_choices_first);
     tcase_add_test(tests, numbers_are_grouped_and_signed_as_in_print);
+    tcase_add_test(tests, utilisations_read_as_in_the_tables);
     tcase_add_test(tests, words_are_cut_between_characters);
     suite_add_tcase(suite, tests);
     return run_suite(suite);

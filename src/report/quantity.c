@@ -5,7 +5,6 @@
 #include <string.h>
 
 #include "base/number.h"
-#include "base/text.h"
 #include "shown.h"
 
 static const double FOOT = 0.3048, INCH = 0.0254, KIP = 4448.2216152605, POUND = 0.45359237; /* SI, exact but kip */
@@ -81,18 +80,15 @@ void sct_quantity_area(sct_quantity out, double square_metres, bool us_customary
     with_unit(out, us_customary ? "in\xC2\xB2" : "mm\xC2\xB2");
 }
 
+/* The rule of sct_text_utilisation, without memory: a drawing must not lose a number when there is none. */
 void sct_quantity_utilisation(sct_quantity out, double utilisation)
 {
-    if (isinf(utilisation)) {
-        memcpy(out, "\xE2\x88\x9E", 4);
-        return;
-    }
-    if (utilisation > 999) {
+    static const double ROUND_OFF = 1e-9; /* of a hundredth */
+    const double up = ceil(utilisation * 100 - ROUND_OFF) / 100;
+    if (utilisation > 999 && !isinf(utilisation))
         memcpy(out, ">999", 5);
-        return;
-    }
-    sct_text text = {0};
-    sct_text_utilisation(&text, utilisation);
-    sct_number_format(out, SCT_QUANTITY_ROOM, "%s", text.failed || text.size == 0 ? "\xE2\x80\x93" : text.data);
-    sct_text_free(&text);
+    else if (isnan(utilisation))
+        memcpy(out, "\xE2\x80\x93", 4);
+    else
+        sct_quantity_number(out, utilisation > 1 ? fmax(up, 1.01) : fmin(up, 1), 2);
 }
