@@ -50,6 +50,7 @@ extern "C" {
 #define SCT_VERSION "0.1.0"
 #define SCT_MODEL_FORMAT 1  /* the model files that this version reads and writes: "scantling": 1 */
 #define SCT_RESULT_FORMAT 1 /* result.json: "format": "scantling result", "version": 1 */
+#define SCT_EXPLANATION_FORMAT 1 /* sct_explain_json: "format": "scantling explanation", "version": 1 */
 
 /* The one caution text; it stands in every output. */
 #define SCT_CAUTION                                                                                                    \
@@ -359,6 +360,9 @@ SCT_API sct_status sct_write(const sct_result *result, sct_format format, const 
 /** One member's checks with the numbers put in, every combination; `member` is its name. SCT_BAD_INPUT: no such
  * member (issues name the nearest). */
 SCT_API sct_status sct_explain(const sct_result *result, const char *member, char **text, sct_issues *issues);
+
+/** The same as JSON, SI and full precision: "format": "scantling explanation". Within a version keys are only added. */
+SCT_API sct_status sct_explain_json(const sct_result *result, const char *member, char **text, sct_issues *issues);
 
 /** Saves text whole or not at all: written beside `path`, flushed, closed, renamed. `force`: replace what is there.
  * SCT_CANNOT_WRITE with the system's reason in issues. */

@@ -8,6 +8,33 @@
 #include <string.h>
 #include <unistd.h>
 
+static int colour_when; /* 0 auto, 1 always, 2 never */
+
+void cli_colour_messages(int when)
+{
+    colour_when = when;
+}
+
+/* One line on standard error. The word of the severity is the only part with colour, and says the same without. */
+static void put_issue(const sct_issue *issue)
+{
+    static const struct { const char *word, *escape; } LOOK[] = {
+        [SCT_NOTE] = {": note: ", "\033[1m"}, [SCT_WARNING] = {": warning: ", "\033[1;33m"}, [SCT_ERROR] = {": error: ", "\033[1;31m"}};
+    char *line = sct_issue_line(issue);
+    if (line == NULL) {
+        fprintf(stderr, "%s\n", issue->message);
+        return;
+    }
+    const char *word = LOOK[issue->severity].word, *at = strstr(line, word);
+    if (at != NULL && cli_colours(STDERR_FILENO, colour_when)) {
+        const int before = (int)(at - line) + 2, size = (int)strlen(word) - 3;
+        fprintf(stderr, "%.*s%s%.*s\033[0m%s\n", before, line, LOOK[issue->severity].escape, size, at + 2, at + 2 + size);
+    } else {
+        fprintf(stderr, "%s\n", line);
+    }
+    free(line);
+}
+
 void cli_say(const char *severity, const char *format, ...)
 {
     char message[1024];
@@ -17,9 +44,7 @@ void cli_say(const char *severity, const char *format, ...)
     va_end(args);
     const sct_issue issue = {.severity = severity[0] == 'e' ? SCT_ERROR : severity[0] == 'w' ? SCT_WARNING : SCT_NOTE,
                              .file = "scantling", .message = message};
-    char *line = sct_issue_line(&issue);
-    fprintf(stderr, "%s\n", line != NULL ? line : message);
-    free(line);
+    put_issue(&issue);
 }
 
 void cli_issues(const sct_issues *issues, bool quiet)
@@ -29,9 +54,7 @@ void cli_issues(const sct_issues *issues, bool quiet)
         const sct_issue *issue = sct_issues_get(issues, i);
         shown += issue->severity == SCT_ERROR;
         if (quiet && issue->severity != SCT_ERROR) continue;
-        char *line = sct_issue_line(issue);
-        fprintf(stderr, "%s\n", line != NULL ? line : issue->message);
-        free(line);
+        put_issue(issue);
     }
     const int more = sct_issues_errors(issues) - shown;
     if (more > 0) fprintf(stderr, "scantling: %d more error%s not shown\n", more, more == 1 ? "" : "s");

@@ -17,11 +17,26 @@ enum { FIRST_CODE = 256 };
 
 static int usage_fault(const cli_command *command)
 {
-    fprintf(stderr, "usage: scantling %s [OPTION...] %s\n       scantling %s --help tells more\n", command->name,
-            command->operands, command->name);
+    const bool may_lack = command->is_operand_optional;
+    fprintf(stderr, "usage: scantling %s [OPTION...] %s%s%s\n       scantling %s --help tells more\n", command->name,
+            may_lack ? "[" : "", command->operands, may_lack ? "]" : "", command->name);
     return EXIT_USAGE;
 }
 
+/* Names of the options that begin with `name`, of which there are several: "--draw-loads, --draw-deflected". */
+static int ambiguous_option(const cli_command *command, const char *name)
+{
+    char list[200] = "";
+    for (int i = 0; i < command->n_options; i++) {
+        if (strncmp(command->options[i].name, name, strlen(name)) != 0) continue;
+        const size_t used = strlen(list);
+        snprintf(list + used, sizeof list - used, "%s--%s", used > 0 ? ", " : "", command->options[i].name);
+    }
+    cli_say("error", "option --%s is short for several: %s", name, list);
+    return usage_fault(command);
+}
+
+/* An option that getopt_long refused: `word` as it was given. */
 static int unknown_option(const cli_command *command, const char *word)
 {
     const char *names[CLI_MOST_OPTIONS + 1];
@@ -29,6 +44,16 @@ static int unknown_option(const cli_command *command, const char *word)
     names[command->n_options] = "help";
     char name[64];
     snprintf(name, sizeof name, "%.*s", (int)strcspn(word + strspn(word, "-"), "="), word + strspn(word, "-"));
+    int n_alike = 0;
+    for (int i = 0; i <= command->n_options; i++) {
+        const bool is_begun = word[0] == '-' && word[1] == '-' && strncmp(names[i], name, strlen(name)) == 0;
+        if (is_begun && strchr(word, '=') != NULL && strcmp(names[i], name) == 0) {
+            cli_say("error", "option --%s takes no value; found \"%s\"", name, strchr(word, '=') + 1);
+            return usage_fault(command);
+        }
+        n_alike += is_begun;
+    }
+    if (n_alike > 1) return ambiguous_option(command, name);
     const char *near = sct_nearest(names, command->n_options + 1, name);
     if (near != NULL) cli_say("error", "no option %s; did you mean --%s?", word, near);
     else cli_say("error", "no option %s", word);
@@ -64,7 +89,7 @@ int cli_parse(const cli_command *command, int argc, char **argv, const char *giv
         }
         if (code == '?') {
             char letter[3] = {'-', (char)optopt, '\0'};
-            const bool is_letter = optopt > 0 && optopt < FIRST_CODE;
+            const bool is_letter = optopt > 0 && optopt < FIRST_CODE && strncmp(argv[optind - 1], "--", 2) != 0;
             return unknown_option(command, is_letter ? letter : argv[optind - 1]);
         }
         int i = code - FIRST_CODE;
@@ -75,8 +100,13 @@ int cli_parse(const cli_command *command, int argc, char **argv, const char *giv
             return usage_fault(command);
         }
         given[i] = optarg != NULL ? optarg : "";
+        if (strcmp(command->options[i].name, "color") == 0) { /* from here on also for what is said of the others */
+            int when;
+            if (!cli_word(command, given, "color", &when)) return usage_fault(command);
+            cli_colour_messages(when);
+        }
     }
-    if (argc - optind != command->n_operands) {
+    if (argc - optind != command->n_operands && !(argc == optind && command->is_operand_optional)) {
         if (argc - optind > command->n_operands)
             cli_say("error", "unexpected argument \"%s\"", argv[optind + command->n_operands]);
         else cli_say("error", "%s is missing", command->operands);
@@ -88,8 +118,9 @@ int cli_parse(const cli_command *command, int argc, char **argv, const char *giv
 
 void cli_help(const cli_command *command)
 {
-    printf("%s\n\nusage: scantling %s [OPTION...] %s\n\n%s\n", command->examples, command->name, command->operands,
-           command->purpose);
+    const bool may_lack = command->is_operand_optional;
+    printf("%s\n\nusage: scantling %s [OPTION...] %s%s%s\n\n%s\n", command->examples, command->name,
+           may_lack ? "[" : "", command->operands, may_lack ? "]" : "", command->purpose);
     printf("\noptions\n");
     for (int i = 0; i < command->n_options; i++) {
         const cli_option *o = &command->options[i];
@@ -97,7 +128,9 @@ void cli_help(const cli_command *command)
         const char letter[5] = {o->letter ? '-' : ' ', o->letter ? o->letter : ' ', o->letter ? ',' : ' ', ' ', '\0'};
         snprintf(left, sizeof left, "%s--%s%s%s", letter, o->name, o->value != NULL ? "=" : "",
                  o->value != NULL ? o->value : "");
-        printf("  %-27s %s\n", left, o->help);
+        printf("  %-27s %s", left, o->help);
+        for (int k = 0; o->words != NULL && o->words[k] != NULL; k++) printf("%s%s", k > 0 ? ", " : ": ", o->words[k]);
+        printf("\n");
     }
     printf("  -h, --help                  this text\n");
     if (command->more != NULL) printf("\n%s\n", command->more);
@@ -141,20 +174,25 @@ bool cli_whole(const cli_command *command, const char *const given[], const char
     return true;
 }
 
-bool cli_word(const cli_command *command, const char *const given[], const char *name, const char *const words[],
-              int *value)
+bool cli_word(const cli_command *command, const char *const given[], const char *name, int *value)
 {
     const char *text = cli_given(command, given, name);
     if (text == NULL) return true;
+    const char *const *words = NULL;
+    for (int i = 0; i < command->n_options; i++)
+        if (strcmp(command->options[i].name, name) == 0) words = command->options[i].words;
     char list[120] = "";
-    for (int i = 0; words[i] != NULL; i++) {
-        if (strcmp(text, words[i]) == 0) {
-            *value = i;
+    int n = 0;
+    for (; words[n] != NULL; n++) {
+        if (strcmp(text, words[n]) == 0) {
+            *value = n;
             return true;
         }
-        if (i > 0) strncat(list, ", ", sizeof list - strlen(list) - 1);
-        strncat(list, words[i], sizeof list - strlen(list) - 1);
+        if (n > 0) strncat(list, ", ", sizeof list - strlen(list) - 1);
+        strncat(list, words[n], sizeof list - strlen(list) - 1);
     }
-    cli_say("error", "--%s: found \"%s\"; expected one of %s", name, text, list);
+    const char *near = sct_nearest(words, n, text);
+    if (near != NULL) cli_say("error", "--%s: found \"%s\"; did you mean \"%s\"?", name, text, near);
+    else cli_say("error", "--%s: found \"%s\"; expected one of %s", name, text, list);
     return false;
 }

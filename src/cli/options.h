@@ -1,4 +1,4 @@
-/* Command line options: one table per command feeds the parser and the help. */
+/* Command line options: one table per command feeds the parser, the help and the completion. */
 #ifndef SCT_CLI_OPTIONS_H
 #define SCT_CLI_OPTIONS_H
 
@@ -10,6 +10,7 @@ typedef struct cli_option {
     const char *name;
     const char *value;
     const char *help;
+    const char *const *words; /* the values that it takes, NULL-terminated; NULL: any */
 } cli_option;
 
 enum { CLI_MOST_OPTIONS = 24 };
@@ -17,7 +18,8 @@ enum { CLI_MOST_OPTIONS = 24 };
 typedef struct cli_command {
     const char *name;
     const char *operands;      /* "MODEL" */
-    int n_operands;
+    int n_operands;            /* 1 */
+    bool is_operand_optional;  /* operands[0] is NULL where it was not given */
     const char *purpose;       /* one line */
     const char *examples;      /* lines that run as they stand, first in the help */
     const char *more;          /* further text at the end of the help, or NULL */
@@ -40,7 +42,6 @@ const char *cli_given(const cli_command *command, const char *const given[], con
 bool cli_whole(const cli_command *command, const char *const given[], const char *name, int least, int most, int *value);
 bool cli_number(const cli_command *command, const char *const given[], const char *name, double *value);
 
-/** One of a list of words (NULL-terminated); the index in *value. */
-bool cli_word(const cli_command *command, const char *const given[], const char *name, const char *const words[],
-              int *value);
+/** One of the words of an option; the index in *value. */
+bool cli_word(const cli_command *command, const char *const given[], const char *name, int *value);
 #endif

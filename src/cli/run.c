@@ -85,14 +85,13 @@ static int prepare_folder(const cli_run *run)
 
 int cli_run_open(cli_run *run, const cli_command *command, const char *const given[], const char *path)
 {
-    static const char *const WHEN[] = {"auto", "always", "never", NULL};
     *run = (cli_run){.command = command, .given = given, .write = sct_write_defaults()};
     run->quiet = cli_given(command, given, "quiet") != NULL;
     run->json = cli_given(command, given, "json") != NULL;
     run->force = cli_given(command, given, "force") != NULL;
     run->folder = cli_given(command, given, "output");
     const char *loads = cli_given(command, given, "draw-loads"), *moved = cli_given(command, given, "draw-deflected");
-    if (!cli_word(command, given, "color", WHEN, &run->colour)) return EXIT_USAGE;
+    if (!cli_word(command, given, "color", &run->colour)) return EXIT_USAGE;
     if (run->folder != NULL && run->folder[0] == '\0') {
         cli_say("error", "-o needs the name of a folder");
         return EXIT_USAGE;

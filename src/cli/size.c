@@ -3,6 +3,7 @@
 #include <math.h>
 #include <signal.h>
 #include <stdio.h>
+#include <string.h>
 #include <time.h>
 #include <unistd.h>
 
@@ -28,12 +29,13 @@ static void catch_signals(void)
     sigaction(SIGTERM, &action, NULL);
 }
 
+static const char *const PROGRESS[] = {"auto", "always", "never", "json", NULL};
 typedef enum progress_kind { PROGRESS_AUTO, PROGRESS_ALWAYS, PROGRESS_NEVER, PROGRESS_JSON } progress_kind;
 
 typedef struct teller {
     progress_kind kind;
     bool shown;
-    double started, last;
+    double started, next; /* [s] */
 } teller;
 
 static double now(void)
@@ -43,38 +45,61 @@ static double now(void)
     return (double)t.tv_sec + 1e-9 * (double)t.tv_nsec;
 }
 
-/* Progress on standard error: after half a second, at most five times a second, and not in the way of a pipe. */
+/* "descent, start 3 of 8, 412 analyses (105 a second), best so far 830 kg, about 4 s more". The end is guessed from
+ * the starts that are done. */
+static void tell_person(const sct_progress *p, double elapsed)
+{
+    fprintf(stderr, "\r%s, start %d of %d, %d analyses (%.0f a second)", p->stage, p->start, p->n_starts, p->analyses,
+            p->analyses / elapsed);
+    if (isfinite(p->best)) fprintf(stderr, ", best so far %.0f kg", p->best);
+    if (p->start > 1 && strcmp(p->stage, "descent") == 0)
+        fprintf(stderr, ", about %.0f s more", elapsed * (p->n_starts - p->start + 1) / (p->start - 1));
+    fprintf(stderr, "\033[K");
+}
+
+static void tell_number(const char *name, double value)
+{
+    if (isfinite(value)) fprintf(stderr, ",\"%s\":%.6g", name, value);
+    else fprintf(stderr, ",\"%s\":null", name);
+}
+
+/* One object a line. */
+static void tell_program(const sct_progress *p, double elapsed)
+{
+    fprintf(stderr, "{\"stage\":\"%s\",\"start\":%d,\"starts\":%d,\"analyses\":%d", p->stage, p->start, p->n_starts, p->analyses);
+    tell_number("mass_kg", p->mass);
+    tell_number("violation", p->violation);
+    tell_number("best_kg", p->best);
+    tell_number("elapsed_s", elapsed);
+    fprintf(stderr, "}\n");
+}
+
+/* Progress on standard error, at most five times a second: for a program from the start, for a person after half a
+ * second, so that short runs stay silent. */
 static bool observe(const sct_progress *p, void *user)
 {
     static const double FIRST = 0.5, BETWEEN = 0.2; /* [s] */
     teller *t = user;
-    const double time = now();
-    if (t->kind != PROGRESS_NEVER && time - t->started > FIRST && time - t->last > BETWEEN) {
-        t->last = time;
-        if (t->kind == PROGRESS_JSON) {
-            fprintf(stderr, "{\"stage\":\"%s\",\"start\":%d,\"starts\":%d,\"analyses\":%d,\"mass_kg\":%.6g", p->stage,
-                    p->start, p->n_starts, p->analyses, isfinite(p->mass) ? p->mass : 0.0);
-            if (isfinite(p->best)) fprintf(stderr, ",\"best_kg\":%.6g", p->best);
-            fprintf(stderr, "}\n");
-        } else {
-            t->shown = true;
-            fprintf(stderr, "\r%s, start %d of %d, %d analyses", p->stage, p->start, p->n_starts, p->analyses);
-            if (isfinite(p->best)) fprintf(stderr, ", best so far %.0f kg", p->best);
-            fprintf(stderr, "   ");
-        }
+    const double elapsed = now() - t->started, first = t->kind == PROGRESS_JSON ? 0.0 : FIRST;
+    if (t->kind == PROGRESS_NEVER || elapsed < first || elapsed < t->next) return stop_signal == 0;
+    t->next = elapsed + BETWEEN;
+    if (t->kind == PROGRESS_JSON) {
+        tell_program(p, elapsed);
+    } else {
+        t->shown = true;
+        tell_person(p, elapsed);
     }
     return stop_signal == 0;
 }
 
 static int read_settings(const cli_command *command, const char *const given[], sct_settings *settings, teller *t)
 {
-    static const char *const PROGRESS[] = {"auto", "always", "never", "json", NULL};
     int kind = PROGRESS_AUTO, seed = (int)settings->seed;
     if (!cli_whole(command, given, "starts", 1, 1000, &settings->starts) ||
         !cli_whole(command, given, "seed", 0, 1000000000, &seed) ||
         !cli_whole(command, given, "iterations", 0, 100000, &settings->iterations) ||
         !cli_number(command, given, "tolerance", &settings->tolerance) ||
-        !cli_word(command, given, "progress", PROGRESS, &kind))
+        !cli_word(command, given, "progress", &kind))
         return EXIT_USAGE;
     settings->seed = (unsigned)seed;
     settings->plain = cli_given(command, given, "plain") != NULL;
@@ -96,7 +121,7 @@ static int run_size(const cli_command *command, const char *const given[], char 
     cli_run run;
     code = cli_run_open(&run, command, given, operands[0]);
     if (code == 0) code = cli_exit_of_status(sct_size(run.model, &settings, &run.result, run.issues));
-    if (t.shown) fprintf(stderr, "\r%60s\r", "");
+    if (t.shown) fprintf(stderr, "\r\033[K");
     if (code == 0) code = cli_run_report(&run, true);
     if (stop_signal != 0 && (code == EXIT_KEPT || code == EXIT_NOT_KEPT || code == EXIT_NO_PROOF)) {
         cli_say("note", "interrupted: what is shown is the best found so far");
@@ -110,8 +135,8 @@ const cli_command CLI_SIZE = {
     .operands = "MODEL",
     .n_operands = 1,
     .purpose = "Finds the lightest sizes of all groups of MODEL that keep every limit in every combination.",
-    .examples = "  scantling size models/demo_roof.json -o build/demo\n"
-                "  scantling size --json models/benchmarks/truss_10bar_case1.json | jq .mass_kg",
+    .examples = "  scantling size models/demo_roof.json -o build/demo --force\n"
+                "  scantling size --json models/benchmarks/10bar_case1.json | jq .mass_kg",
     .more = "MODEL is a model file, or - for standard input. With -o: result.json, schedule.csv, drawing.svg, and\n"
             "model.json with the sizes put in, which is read back and checked before the run ends.\n"
             "Exit code: 0 every limit kept, 1 no feasible design, 2 command line, 3 input, 4 cannot be analysed,\n"
@@ -119,11 +144,11 @@ const cli_command CLI_SIZE = {
             "130 interrupted (the best so far is written; a second interrupt writes nothing more).",
     .n_options = CLI_N_OUTPUT_OPTIONS + 6,
     .options = {CLI_OUTPUT_OPTIONS,
-                {0, "starts", "N", "starts of the search (default: 8, fewer for large models)"},
-                {0, "seed", "N", "of the random starts (default 1)"},
-                {0, "iterations", "N", "of each start at most (default 100; 0: check the start design)"},
-                {0, "tolerance", "T", "on optimality and limits (default 1e-6)"},
-                {0, "plain", NULL, "the published method in plain areas, for comparison (slow)"},
-                {0, "progress", "WHEN", "auto, always, never, or json: one object a line"}},
+                {0, "starts", "N", "starts of the search (default: 8, fewer for large models)", NULL},
+                {0, "seed", "N", "of the random starts (default 1)", NULL},
+                {0, "iterations", "N", "of each start at most (default 100; 0: check the start design)", NULL},
+                {0, "tolerance", "T", "on optimality and limits (default 1e-6)", NULL},
+                {0, "plain", NULL, "the published method in plain areas, for comparison (slow)", NULL},
+                {0, "progress", "WHEN", "tell how far the search is", PROGRESS}},
     .run = run_size,
 };

@@ -3,10 +3,9 @@
 #include <math.h>
 #include <string.h>
 
-#include "base/issues.h"
-#include "base/names.h"
 #include "base/number.h"
 #include "base/text.h"
+#include "report/find_member.h"
 #include "report/shown.h"
 #include "rules/allowable.h"
 
@@ -187,19 +186,8 @@ static void slenderness(sheet *s)
 sct_status sct_explain(const sct_result *result, const char *member, char **text, sct_issues *issues)
 {
     *text = NULL;
-    int index = -1;
-    for (int k = 0; index < 0 && k < result->n_members; k++)
-        if (strcmp(result->members[k].name, member) == 0) index = k;
-    if (index < 0) {
-        sct_names *names = sct_names_new(result->n_members);
-        for (int k = 0; names != NULL && k < result->n_members; k++) sct_names_put(names, result->members[k].name, k);
-        const char *near = names != NULL ? sct_names_nearest(names, member) : NULL;
-        const sct_where where = {.file = result->model->file};
-        if (near != NULL) sct_issue_add(issues, SCT_ERROR, where, "no member \"%.64s\"; did you mean \"%s\"?", member, near);
-        else sct_issue_add(issues, SCT_ERROR, where, "no member \"%.64s\"", member);
-        sct_names_free(names);
-        return SCT_BAD_INPUT;
-    }
+    const int index = sct_find_member(result, member, issues);
+    if (index < 0) return SCT_BAD_INPUT;
     sct_text out = {0};
     const sct_member_result *m = &result->members[index];
     const sct_group_result *g = &result->groups[m->group];
