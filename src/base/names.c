@@ -91,6 +91,16 @@ int sct_names_find(const sct_names *t, const char *name)
     return at < 0 ? -1 : t->index[at];
 }
 
+int sct_names_count(const sct_names *t)
+{
+    return t->n;
+}
+
+const char *sct_names_at(const sct_names *t, int i)
+{
+    return t->name[i];
+}
+
 /* Edit distance with swaps of neighbours (optimal string alignment), or `most` + 1 when it is above `most`. */
 static int edits(const char *a, const char *b, int most)
 {
@@ -118,10 +128,11 @@ static int edits(const char *a, const char *b, int most)
 const char *sct_nearest(const char *const list[], int n, const char *name)
 {
     const int third = (int)(strlen(name) / 3);
+    const bool is_letter = strlen(name) == 1; /* one edit away from every other: only its other case is near */
     int most = third > 2 ? 2 : third < 1 ? 1 : third;
     const char *best = NULL;
     for (int i = 0; i < n && most >= 0; i++) {
-        if (list[i] == NULL) continue;
+        if (list[i] == NULL || (is_letter && (list[i][0] | 0x20) != (name[0] | 0x20))) continue;
         const int d = edits(name, list[i], most);
         if (d <= most) {
             best = list[i];

@@ -207,13 +207,30 @@ bool sct_fields_word(sct_fields *f, const sct_node *node, const char *what, cons
     return false;
 }
 
+/* `"G", "S", "W"`, where the names are few and short; else false. */
+static bool list_names(const sct_names *names, char *list, size_t room)
+{
+    enum { FEW = 8 };
+    size_t used = 0;
+    for (int i = 0; i < sct_names_count(names); i++) {
+        const int more =
+            snprintf(list + used, room - used, "%s\"%s\"", i == 0 ? "" : ", ", sct_show(sct_names_at(names, i)).text);
+        if (i >= FEW || more < 0 || (size_t)more >= room - used) return false;
+        used += (size_t)more;
+    }
+    return true;
+}
+
 /* What to say of a name that is not known. The nearest known one is looked for only where it will be shown. */
 static const char *unknown_name(const sct_fields *f, const char *what, const sct_names *names, const char *name,
                                 char *message, size_t room)
 {
     if (sct_fields_enough(f)) return "unknown name";
     const char *near = sct_names_nearest(names, name);
-    if (near != NULL)
+    char list[200];
+    if (near == NULL && list_names(names, list, sizeof list))
+        snprintf(message, room, "no %s \"%s\"; expected one of %s", what, sct_show(name).text, list);
+    else if (near != NULL)
         snprintf(message, room, "no %s \"%s\"; did you mean \"%s\"?", what, sct_show(name).text, sct_show(near).text);
     else
         snprintf(message, room, "no %s \"%s\"; expected the name of a known %s", what, sct_show(name).text, what);
@@ -230,6 +247,7 @@ bool sct_fields_reference(sct_fields *f, const sct_node *node, const char *what,
     }
     *index = sct_names_find(names, name);
     if (*index >= 0) return true;
+    if (sct_names_count(names) == 0) return false; /* that there are none was told where they should stand */
     char message[640];
     sct_fields_error(f, node, "%s", unknown_name(f, what, names, name, message, sizeof message));
     return false;
@@ -241,6 +259,7 @@ bool sct_fields_key_reference(sct_fields *f, const sct_node *entry, const char *
     const char *name = sct_node_key(entry);
     *index = sct_names_find(names, name);
     if (*index >= 0) return true;
+    if (sct_names_count(names) == 0) return false;
     char message[640];
     sct_fields_key_error(f, entry, "%s", unknown_name(f, what, names, name, message, sizeof message));
     return false;
@@ -265,13 +284,14 @@ static bool read_quantity(sct_fields *f, const sct_node *node, const sct_range *
                           const sct_unit **unit)
 {
     const sct_quantity quantity = quantity_of(range->slot);
+    const char *example = range->slot == SCT_DISPLACEMENT ? "20 mm" : sct_quantity_example(quantity);
     if (sct_node_kind_of(node) == SCT_NUMBER) {
         *value = sct_node_number(node);
         *unit = f->unit[range->slot];
         if (*unit == NULL && !f->unit_is_wrong[range->slot])
             sct_fields_error(f, node,
                              "found a number without a unit; expected %s such as \"%s\", or a unit in /units/%s",
-                             range->what, sct_quantity_example(quantity), slot_key(range->slot));
+                             range->what, example, slot_key(range->slot));
         return *unit != NULL;
     }
     const char *text = sct_node_string(node);
@@ -280,10 +300,10 @@ static bool read_quantity(sct_fields *f, const sct_node *node, const sct_range *
         const sct_unit *bare = f->unit[range->slot];
         if (bare != NULL)
             sct_fields_error(f, node, "found %s; expected %s: a number in %s or a string such as \"%s\"",
-                             sct_node_kind_words(node), range->what, bare->name, sct_quantity_example(quantity));
+                             sct_node_kind_words(node), range->what, bare->name, example);
         else
             sct_fields_error(f, node, "found %s; expected %s: a string such as \"%s\"", sct_node_kind_words(node),
-                             range->what, sct_quantity_example(quantity));
+                             range->what, example);
         return false;
     }
     if (sct_quantity_read(text, quantity, value, unit, fault)) return true;
@@ -291,15 +311,20 @@ static bool read_quantity(sct_fields *f, const sct_node *node, const sct_range *
     return false;
 }
 
-/* The unit that makes a value usual, where the one it is in does not: the likely slip. */
+/* The unit that makes a value usual, where the one it is in does not: the likely slip. Of several, the one that brings
+ * it nearest to the middle of what is usual. */
 static const sct_unit *unit_meant(const sct_range *range, double value)
 {
-    const sct_unit *unit;
+    const sct_unit *unit, *best = NULL;
+    const double middle = 0.5 * (log(range->usual_least) + log(range->usual_most));
+    double least = INFINITY;
     for (int i = 0; (unit = sct_unit_of(quantity_of(range->slot), i)) != NULL; i++) {
         const double x = sct_unit_to_SI(unit, range->least < 0 ? fabs(value) : value);
-        if (x >= range->usual_least && x <= range->usual_most) return unit;
+        if (!(x >= range->usual_least && x <= range->usual_most && x > 0) || fabs(log(x) - middle) >= least) continue;
+        least = fabs(log(x) - middle);
+        best = unit;
     }
-    return NULL;
+    return best;
 }
 
 static bool out_of_range(sct_fields *f, const sct_node *node, const sct_range *range, double value,

@@ -96,7 +96,7 @@ static void read_bar_action(sct_reader *r, const sct_node *node, sct_bar_action 
     if (!sct_fields_value(&r->f, found[0], &TEMPERATURE, &action->dT) || !known) return;
     const int group = r->model->members[action->member].group;
     const int material = group < 0 ? -1 : r->model->groups[group].material;
-    if (material >= 0 && isnan(r->model->materials[material].expansion))
+    if (material >= 0 && !r->material_is_wrong[material] && isnan(r->model->materials[material].expansion))
         sct_fields_error(&r->f, found[0], "material \"%s\" has no \"expansion\"; expected such as \"12e-6 1/K\" there",
                          sct_show(r->model->materials[material].name).text);
 }
@@ -164,7 +164,10 @@ void sct_read_cases(sct_reader *r, const sct_node *node)
     if (r->f.failure != SCT_OK || n == 0) return;
     for (const sct_node *c = sct_node_first(node); c != NULL && r->f.failure == SCT_OK; c = sct_node_next(c))
         read_case(r, c, &m->cases[m->n_cases++]);
-    if (r->f.failure != SCT_OK || r->f.n_errors > errors_before) return;
+    const bool *is_wrong = r->f.unit_is_wrong; /* then nothing was read that could act */
+    if (r->f.failure != SCT_OK || r->f.n_errors > errors_before || is_wrong[SCT_FORCE] || is_wrong[SCT_DISPLACEMENT] ||
+        is_wrong[SCT_TEMPERATURE])
+        return;
     int n_acting = 0;
     for (int i = 0; i < n; i++) n_acting += acts(&m->cases[i]);
     if (n_acting == 0) {
@@ -280,7 +283,7 @@ static void read_limited_joints(sct_reader *r, const sct_node *node, sct_deflect
             limit->joints[limit->n_joints++] = j;
         is_taken[j] = true;
     }
-    if (all ? limit->n_joints == 0 && r->f.dimensions > 0 : sct_node_count(node) == 0)
+    if (all ? limit->n_joints == 0 && m->n_joints > 0 && r->f.dimensions > 0 : sct_node_count(node) == 0)
         sct_fields_error(&r->f, node, "found no joint that can move; expected at least one");
 }
 

@@ -8,7 +8,7 @@
 #include "families.h"
 #include "reader.h"
 
-static const sct_range AREA = {"an area", SCT_AREA, 1e-9, 1e3, 1e-6, 1};
+static const sct_range AREA = {"an area", SCT_AREA, 1e-9, 1e3, 1e-6, 0.1};
 static const sct_key AXES[2] = {{"in_plane", "a value for bending in the plane of the truss"},
                                 {"out_of_plane", "a value for bending out of the plane of the truss"}};
 
@@ -32,7 +32,7 @@ static bool read_both_axes(sct_reader *r, const sct_node *node, const sct_range 
 
 static void read_section(sct_reader *r, const sct_node *node, sct_section *section)
 {
-    static const sct_range SECOND_MOMENT = {"a second moment of area", SCT_SECOND_MOMENT, 1e-18, 1e6, 1e-12, 0.1};
+    static const sct_range SECOND_MOMENT = {"a second moment of area", SCT_SECOND_MOMENT, 1e-18, 1e2, 1e-10, 1e-3};
     static const sct_range DEPTH = {"a depth", SCT_LENGTH, 1e-4, 1e2, 5e-3, 3};
     enum { K_AREA, K_I, K_DEPTH, N };
     static const sct_key KEYS[N] = {
@@ -100,9 +100,12 @@ void sct_read_families(sct_reader *r, const sct_node *node)
     if (r->families == NULL) r->f.failure = SCT_NO_MEMORY;
     r->sections = sct_fields_array(&r->f, r->families_room, sizeof *r->sections);
     r->model->families = sct_fields_array(&r->f, r->families_room, sizeof *r->model->families);
+    r->families_are_wrong = node != NULL && !is_there;
     if (!is_there) return;
+    const int errors_before = r->f.n_errors;
     for (const sct_node *c = sct_node_first(node); c != NULL && r->f.failure == SCT_OK; c = sct_node_next(c))
         read_family(r, c);
+    r->families_are_wrong = r->f.n_errors > errors_before;
 }
 
 int sct_reader_family(sct_reader *r, const sct_node *node)
@@ -112,6 +115,7 @@ int sct_reader_family(sct_reader *r, const sct_node *node)
     const int known = sct_names_find(r->families, name);
     if (known >= 0) return known;
     const int shipped = sct_family_find(name);
+    if (shipped < 0 && r->families_are_wrong) return -1;
     if (shipped < 0) { /* the nearest name may be of either kind */
         sct_names *all = sct_names_new(r->families_room);
         int index = -1;

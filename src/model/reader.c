@@ -126,9 +126,10 @@ static void read_units(sct_reader *r, const sct_node *node)
         f->unit_is_wrong[SCT_AREA] = f->unit_is_wrong[SCT_SECOND_MOMENT] = f->unit_is_wrong[SCT_DISPLACEMENT] = true;
         return;
     }
-    if (f->unit[SCT_DISPLACEMENT] == NULL) f->unit[SCT_DISPLACEMENT] = length;
-    if (f->unit[SCT_AREA] == NULL) f->unit[SCT_AREA] = power_of(r, length, 2, SCT_AREA);
-    if (f->unit[SCT_SECOND_MOMENT] == NULL) f->unit[SCT_SECOND_MOMENT] = power_of(r, length, 4, SCT_SECOND_MOMENT);
+    if (f->unit[SCT_DISPLACEMENT] == NULL && !f->unit_is_wrong[SCT_DISPLACEMENT]) f->unit[SCT_DISPLACEMENT] = length;
+    if (f->unit[SCT_AREA] == NULL && !f->unit_is_wrong[SCT_AREA]) f->unit[SCT_AREA] = power_of(r, length, 2, SCT_AREA);
+    if (f->unit[SCT_SECOND_MOMENT] == NULL && !f->unit_is_wrong[SCT_SECOND_MOMENT])
+        f->unit[SCT_SECOND_MOMENT] = power_of(r, length, 4, SCT_SECOND_MOMENT);
     r->model->us_customary = strcmp(length->name, "in") == 0 || strcmp(length->name, "ft") == 0;
 }
 
@@ -371,6 +372,7 @@ static void read_root(sct_reader *r, const sct_node *root)
     if (!sct_fields_keys(&r->f, root, "a model", KEYS, N, found)) return;
     sct_fields_keys(&r->f, found[K_LIMITS], "limits", LIMITS, L, limit);
     if (found[K_LIMITS] == NULL) limit[L_DEFLECTION] = limit[L_BUCKLING] = limit[L_SLENDERNESS] = NULL;
+    if (found[K_LIMITS] != NULL && sct_node_kind_of(found[K_LIMITS]) != SCT_OBJECT) r->buckling.is_given = true;
     sct_fields_string(&r->f, found[K_SCHEMA], "the address of the schema", &text);
     if (sct_fields_string(&r->f, found[K_TITLE], "a title", &text)) r->model->title = sct_fields_copy(&r->f, text);
     read_dimensions(r, found[K_DIMENSIONS]);
