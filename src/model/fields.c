@@ -210,7 +210,7 @@ bool sct_fields_word(sct_fields *f, const sct_node *node, const char *what, cons
 /* `"G", "S", "W"`, where the names are few and short; else false. */
 static bool list_names(const sct_names *names, char *list, size_t room)
 {
-    enum { FEW = 8 };
+    enum { FEW = 12 };
     size_t used = 0;
     for (int i = 0; i < sct_names_count(names); i++) {
         const int more =
@@ -284,7 +284,7 @@ static bool read_quantity(sct_fields *f, const sct_node *node, const sct_range *
                           const sct_unit **unit)
 {
     const sct_quantity quantity = quantity_of(range->slot);
-    const char *example = range->slot == SCT_DISPLACEMENT ? "20 mm" : sct_quantity_example(quantity);
+    const char *example = range->example != NULL ? range->example : sct_quantity_example(quantity);
     if (sct_node_kind_of(node) == SCT_NUMBER) {
         *value = sct_node_number(node);
         *unit = f->unit[range->slot];
@@ -395,7 +395,7 @@ bool sct_fields_vector(sct_fields *f, const sct_node *node, const sct_range *ran
 
 bool sct_fields_direction(sct_fields *f, const sct_node *node, double d[3], const char **label)
 {
-    static const sct_range COMPONENT = {"a component of a direction", -1, -1e100, 1e100, 0, 0};
+    static const sct_range COMPONENT = {"a component of a direction", -1, -1e100, 1e100, 0, 0, NULL};
     d[0] = d[1] = d[2] = 0.0;
     if (node == NULL) return false;
     const char *text = sct_node_string(node);

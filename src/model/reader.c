@@ -138,10 +138,10 @@ static void read_units(sct_reader *r, const sct_node *node)
 
 static void read_material(sct_reader *r, const sct_node *node, sct_material *m)
 {
-    static const sct_range E = {"Young's modulus", SCT_STRESS, 1e6, 2e12, 1e9, 1e12};
-    static const sct_range DENSITY = {"a density", SCT_DENSITY, 1, 3e4, 100, 2.5e4};
-    static const sct_range YIELD = {"a yield stress", SCT_STRESS, 1e3, 1e11, 1e7, 5e9};
-    static const sct_range EXPANSION = {"an expansion coefficient", SCT_EXPANSION, 0, 1e-3, 1e-6, 1e-4};
+    static const sct_range E = {"Young's modulus", SCT_STRESS, 1e6, 2e12, 1e9, 1e12, "210 GPa"};
+    static const sct_range DENSITY = {"a density", SCT_DENSITY, 1, 3e4, 100, 2.5e4, NULL};
+    static const sct_range YIELD = {"a yield stress", SCT_STRESS, 1e3, 1e11, 1e7, 5e9, NULL};
+    static const sct_range EXPANSION = {"an expansion coefficient", SCT_EXPANSION, 0, 1e-3, 1e-6, 1e-4, NULL};
     enum { K_E, K_DENSITY, K_YIELD, K_EXPANSION, K_ALLOWABLE, N };
     static const sct_key KEYS[N] = {{"E", "Young's modulus"},
                                     {"density", "the density, such as \"7850 kg/m3\""},
@@ -216,7 +216,7 @@ static void read_support(sct_reader *r, const sct_node *node, sct_joint *joint)
 
 static void read_joint(sct_reader *r, const sct_node *node, sct_joint *joint)
 {
-    static const sct_range COORDINATE = {"a coordinate", SCT_LENGTH, -1e5, 1e5, 0.01, 1e3};
+    static const sct_range COORDINATE = {"a coordinate", SCT_LENGTH, -1e5, 1e5, 0.01, 1e3, NULL};
     static const sct_key KEYS[] = {{"at", "its coordinates, such as [0, 0]"}, {"support", NULL}};
     const sct_node *found[2];
     joint->where = sct_fields_where(&r->f, node);
@@ -246,8 +246,8 @@ static void read_joints(sct_reader *r, const sct_node *node)
 
 void sct_read_lengths(sct_reader *r, const sct_node *restraint, const sct_node *factor, sct_lengths *lengths)
 {
-    static const sct_range RESTRAINT = {"an effective length", SCT_LENGTH, 1e-6, 1e5, 0.1, 1e3};
-    static const sct_range FACTOR = {"a length factor", -1, 0.01, 10, 0, 0};
+    static const sct_range RESTRAINT = {"an effective length", SCT_LENGTH, 1e-6, 1e5, 0.1, 1e3, NULL};
+    static const sct_range FACTOR = {"a length factor", -1, 0.01, 10, 0, 0, NULL};
     static const sct_key AXES[] = {{"in_plane", NULL}, {"out_of_plane", NULL}};
     const sct_node *distance[2] = {NULL, NULL}, *times[2] = {NULL, NULL};
     *lengths = (sct_lengths){0};
