@@ -154,6 +154,24 @@ bool sct_fields_keys(sct_fields *f, const sct_node *node, const char *what, cons
     return true;
 }
 
+/* Blanks of ASCII, the no-break and ideographic blanks, the blanks of U+2000 to U+200B, the byte order mark. */
+static bool is_blank(const char *name)
+{
+    const unsigned char *p = (const unsigned char *)name;
+    while (*p != '\0') {
+        if (*p == ' ' || (*p >= '\t' && *p <= '\r'))
+            p++;
+        else if (p[0] == 0xC2 && p[1] == 0xA0)
+            p += 2;
+        else if ((p[0] == 0xE2 && p[1] == 0x80 && p[2] <= 0x8B) || (p[0] == 0xE3 && p[1] == 0x80 && p[2] == 0x80) ||
+                 (p[0] == 0xEF && p[1] == 0xBB && p[2] == 0xBF))
+            p += 3;
+        else
+            return false;
+    }
+    return true;
+}
+
 bool sct_fields_name(sct_fields *f, const sct_node *entry, const char **name)
 {
     const char *key = sct_node_key(entry);
@@ -163,7 +181,7 @@ bool sct_fields_name(sct_fields *f, const sct_node *entry, const char **name)
         sct_fields_key_error(f, entry, "a name of %zu bytes; at most %d are allowed", length, MOST_NAME_BYTES);
         return false;
     }
-    if (strspn(key, " \t\r\n") == length) {
+    if (is_blank(key)) {
         sct_fields_key_error(f, entry, "found a blank name; expected a name with at least one visible character");
         return false;
     }
@@ -332,14 +350,14 @@ static bool out_of_range(sct_fields *f, const sct_node *node, const sct_range *r
 {
     const char *name = unit == NULL ? "" : unit->name, *gap = unit == NULL ? "" : " ";
     if (range->least > 0 && !(value > 0)) {
-        sct_fields_error(f, node, "found %g%s%s; expected %s above zero", value, gap, name, range->what);
+        sct_fields_error(f, node, "found %.15g%s%s; expected %s above zero", value, gap, name, range->what);
         return false;
     }
     const char *si = unit == NULL ? "" : sct_unit_of(unit->quantity, 0)->name;
     const sct_unit *meant = unit == NULL ? NULL : unit_meant(range, value);
     char hint[64] = "";
     if (meant != NULL && meant != unit) snprintf(hint, sizeof hint, "; did you mean %s?", meant->name);
-    sct_fields_error(f, node, "found %g%s%s; expected %s from %g to %g%s%s%s", value, gap, name, range->what,
+    sct_fields_error(f, node, "found %.15g%s%s; expected %s from %g to %g%s%s%s", value, gap, name, range->what,
                      range->least, range->most, gap, si, hint);
     return false;
 }

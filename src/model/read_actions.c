@@ -284,7 +284,8 @@ static void read_limited_joints(sct_reader *r, const sct_node *node, sct_deflect
             limit->joints[limit->n_joints++] = j;
         is_taken[j] = true;
     }
-    if (all ? limit->n_joints == 0 && m->n_joints > 0 && r->f.dimensions > 0 : sct_node_count(node) == 0)
+    if (!all && sct_node_count(node) == 0) sct_fields_error(&r->f, node, "found no joint; expected at least one");
+    if (all && limit->n_joints == 0 && m->n_joints > 0 && r->f.dimensions > 0)
         sct_fields_error(&r->f, node, "found no joint that can move; expected at least one");
 }
 
@@ -339,6 +340,12 @@ static void read_at_most(sct_reader *r, const sct_node *node, const sct_node *at
     const char *text = sct_node_string(at_most);
     if (text != NULL && strncmp(text, "L/", 2) == 0) {
         read_span_fraction(r, node, at_most, span, limit);
+        return;
+    }
+    if (text != NULL && strchr(text, '/') != NULL) {
+        sct_fields_error(&r->f, at_most,
+                         "found \"%s\"; expected a displacement, or a fraction of the span such as \"L/300\"",
+                         sct_show(text).text);
         return;
     }
     if (!sct_fields_value(&r->f, at_most, &AT_MOST, &limit->at_most)) return;

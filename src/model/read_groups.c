@@ -34,7 +34,7 @@ static void read_section(sct_reader *r, const sct_node *node, sct_section *secti
 {
     static const sct_range SECOND_MOMENT = {
         "a second moment of area", SCT_SECOND_MOMENT, 1e-18, 1e2, 1e-10, 1e-3, NULL};
-    static const sct_range DEPTH = {"a depth", SCT_LENGTH, 1e-4, 1e2, 5e-3, 3, "60 mm"};
+    static const sct_range DEPTH = {"a depth", SCT_LENGTH, 1e-4, 10, 5e-3, 3, "60 mm"};
     enum { K_AREA, K_I, K_DEPTH, N };
     static const sct_key KEYS[N] = {
         {"A", "its area"}, {"I", "its second moment of area, or one for each axis"}, {"depth", NULL}};

@@ -59,7 +59,7 @@ static bool read_version(sct_reader *r, const sct_node *node)
         return true;
     }
     if (version == SCT_MODEL_FORMAT) return true;
-    sct_fields_error(&r->f, node, "found format %g; this version of scantling reads format %d", version,
+    sct_fields_error(&r->f, node, "found format %.15g; this version of scantling reads format %d", version,
                      SCT_MODEL_FORMAT);
     return false;
 }
@@ -71,7 +71,7 @@ static void read_dimensions(sct_reader *r, const sct_node *node)
     if (n == 2 || n == 3)
         r->f.dimensions = r->model->dimensions = (int)n;
     else if (sct_node_kind_of(node) == SCT_NUMBER)
-        sct_fields_error(&r->f, node, "found %g; expected 2 or 3", n);
+        sct_fields_error(&r->f, node, "found %.15g; expected 2 or 3", n);
     else
         sct_fields_error(&r->f, node, "found %s; expected 2 or 3", sct_node_kind_words(node));
 }
