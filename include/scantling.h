@@ -116,7 +116,7 @@ SCT_API char *sct_issue_line(const sct_issue *issue);
 
 /** The word of a list (n strings, NULL entries are passed over) nearest to `word` by edits (insert, delete, replace, swap
  * of neighbours), when it is near enough to be a slip: at most 2 edits and a third of its length, but 1 is always
- * allowed; else NULL. Ties: the first. */
+ * allowed; else NULL. Ties: the one that begins most like it, then the first. */
 SCT_API const char *sct_nearest(const char *const words[], int n, const char *word);
 
 /* ---- model ---------------------------------------------------------------------------------------------------- */

@@ -12,6 +12,9 @@
 static const double TOL_PLACE = 1e-9;     /* of the model's size: nearer joints are at one place */
 static const double TOL_DIRECTION = 1e-9; /* relative: part of a vector outside the directions it may have */
 
+static const double LEAST_SIZE =
+    1e-6; /* [m] of a whole model: below, lengths squared leave the range of good numbers */
+
 /* At most so many pairs of a joint and a member are looked at for members that pass through a joint: about 0.1 s. */
 static const long long MOST_PAIRS = 20 * 1000 * 1000;
 
@@ -493,6 +496,9 @@ static sct_status build(sct_structure *st, bool flags[], sct_issues *issues)
     bool *has_member = flags, *warned = flags + m->n_joints;
     const double size = model_size(m);
     const int errors_before = sct_issues_errors(issues);
+    if (size > 0.0 && size < LEAST_SIZE)
+        sct_issue_add(issues, SCT_ERROR, (sct_where){.file = m->file},
+                      "all joints lie within %.3g m of each other; is \"length\" in /units the right unit?", size);
     measure_bars(st, size, issues);
     if (sct_issues_errors(issues) > errors_before) return SCT_BAD_INPUT; /* no directions to go on with */
     if (!find_oddities(st, size, issues)) return SCT_NO_MEMORY;

@@ -8,10 +8,10 @@
 #include "scantling.h"
 
 struct sct_names {
-    int n, room;        /* names, and places for them */
-    const char **name;  /* in the order they were put */
+    int n, room;       /* names, and places for them */
+    const char **name; /* in the order they were put */
     int *index;
-    int *slot;          /* hash table of places in `name`, -1 when empty */
+    int *slot; /* hash table of places in `name`, -1 when empty */
     uint32_t mask;
 };
 
@@ -91,6 +91,16 @@ int sct_names_find(const sct_names *t, const char *name)
     return at < 0 ? -1 : t->index[at];
 }
 
+int sct_names_count(const sct_names *t)
+{
+    return t->n;
+}
+
+const char *sct_names_at(const sct_names *t, int i)
+{
+    return t->name[i];
+}
+
 /* Edit distance with swaps of neighbours (optimal string alignment), or `most` + 1 when it is above `most`. */
 static int edits(const char *a, const char *b, int most)
 {
@@ -115,18 +125,27 @@ static int edits(const char *a, const char *b, int most)
     return row[na % 3][nb] <= most ? row[na % 3][nb] : most + 1;
 }
 
+static int common_beginning(const char *a, const char *b)
+{
+    int n = 0;
+    while (a[n] != '\0' && a[n] == b[n]) n++;
+    return n;
+}
+
+/* Of several at the same distance, the one that begins most like it. */
 const char *sct_nearest(const char *const list[], int n, const char *name)
 {
     const int third = (int)(strlen(name) / 3);
+    const bool is_letter = strlen(name) == 1; /* one edit away from every other: only its other case is near */
     int most = third > 2 ? 2 : third < 1 ? 1 : third;
     const char *best = NULL;
-    for (int i = 0; i < n && most >= 0; i++) {
-        if (list[i] == NULL) continue;
+    for (int i = 0; i < n; i++) {
+        if (list[i] == NULL || (is_letter && (list[i][0] | 0x20) != (name[0] | 0x20))) continue;
         const int d = edits(name, list[i], most);
-        if (d <= most) {
-            best = list[i];
-            most = d - 1;
-        }
+        if (d > most) continue;
+        if (best != NULL && d == most && common_beginning(name, list[i]) <= common_beginning(name, best)) continue;
+        best = list[i];
+        most = d;
     }
     return best;
 }

@@ -13,6 +13,9 @@ void sct_names_free(sct_names *names);
 bool sct_names_put(sct_names *names, const char *name, int index);
 /** The index of a name, -1 when it is not known. */
 int sct_names_find(const sct_names *names, const char *name);
+int sct_names_count(const sct_names *names);
+/** The name put in as number i, from 0. */
+const char *sct_names_at(const sct_names *names, int i);
 /** The known name nearest to `name`, as sct_nearest. */
 const char *sct_names_nearest(const sct_names *names, const char *name);
 #endif

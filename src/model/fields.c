@@ -154,6 +154,24 @@ bool sct_fields_keys(sct_fields *f, const sct_node *node, const char *what, cons
     return true;
 }
 
+/* Blanks of ASCII, the no-break and ideographic blanks, the blanks of U+2000 to U+200B, the byte order mark. */
+static bool is_blank(const char *name)
+{
+    const unsigned char *p = (const unsigned char *)name;
+    while (*p != '\0') {
+        if (*p == ' ' || (*p >= '\t' && *p <= '\r'))
+            p++;
+        else if (p[0] == 0xC2 && p[1] == 0xA0)
+            p += 2;
+        else if ((p[0] == 0xE2 && p[1] == 0x80 && p[2] <= 0x8B) || (p[0] == 0xE3 && p[1] == 0x80 && p[2] == 0x80) ||
+                 (p[0] == 0xEF && p[1] == 0xBB && p[2] == 0xBF))
+            p += 3;
+        else
+            return false;
+    }
+    return true;
+}
+
 bool sct_fields_name(sct_fields *f, const sct_node *entry, const char **name)
 {
     const char *key = sct_node_key(entry);
@@ -163,7 +181,7 @@ bool sct_fields_name(sct_fields *f, const sct_node *entry, const char **name)
         sct_fields_key_error(f, entry, "a name of %zu bytes; at most %d are allowed", length, MOST_NAME_BYTES);
         return false;
     }
-    if (strspn(key, " \t\r\n") == length) {
+    if (is_blank(key)) {
         sct_fields_key_error(f, entry, "found a blank name; expected a name with at least one visible character");
         return false;
     }
@@ -207,13 +225,30 @@ bool sct_fields_word(sct_fields *f, const sct_node *node, const char *what, cons
     return false;
 }
 
+/* `"G", "S", "W"`, where the names are few and short; else false. */
+static bool list_names(const sct_names *names, char *list, size_t room)
+{
+    enum { FEW = 12 };
+    size_t used = 0;
+    for (int i = 0; i < sct_names_count(names); i++) {
+        const int more =
+            snprintf(list + used, room - used, "%s\"%s\"", i == 0 ? "" : ", ", sct_show(sct_names_at(names, i)).text);
+        if (i >= FEW || more < 0 || (size_t)more >= room - used) return false;
+        used += (size_t)more;
+    }
+    return true;
+}
+
 /* What to say of a name that is not known. The nearest known one is looked for only where it will be shown. */
 static const char *unknown_name(const sct_fields *f, const char *what, const sct_names *names, const char *name,
                                 char *message, size_t room)
 {
     if (sct_fields_enough(f)) return "unknown name";
     const char *near = sct_names_nearest(names, name);
-    if (near != NULL)
+    char list[200];
+    if (near == NULL && list_names(names, list, sizeof list))
+        snprintf(message, room, "no %s \"%s\"; expected one of %s", what, sct_show(name).text, list);
+    else if (near != NULL)
         snprintf(message, room, "no %s \"%s\"; did you mean \"%s\"?", what, sct_show(name).text, sct_show(near).text);
     else
         snprintf(message, room, "no %s \"%s\"; expected the name of a known %s", what, sct_show(name).text, what);
@@ -230,6 +265,7 @@ bool sct_fields_reference(sct_fields *f, const sct_node *node, const char *what,
     }
     *index = sct_names_find(names, name);
     if (*index >= 0) return true;
+    if (sct_names_count(names) == 0) return false; /* that there are none was told where they should stand */
     char message[640];
     sct_fields_error(f, node, "%s", unknown_name(f, what, names, name, message, sizeof message));
     return false;
@@ -241,6 +277,7 @@ bool sct_fields_key_reference(sct_fields *f, const sct_node *entry, const char *
     const char *name = sct_node_key(entry);
     *index = sct_names_find(names, name);
     if (*index >= 0) return true;
+    if (sct_names_count(names) == 0) return false;
     char message[640];
     sct_fields_key_error(f, entry, "%s", unknown_name(f, what, names, name, message, sizeof message));
     return false;
@@ -265,13 +302,14 @@ static bool read_quantity(sct_fields *f, const sct_node *node, const sct_range *
                           const sct_unit **unit)
 {
     const sct_quantity quantity = quantity_of(range->slot);
+    const char *example = range->example != NULL ? range->example : sct_quantity_example(quantity);
     if (sct_node_kind_of(node) == SCT_NUMBER) {
         *value = sct_node_number(node);
         *unit = f->unit[range->slot];
         if (*unit == NULL && !f->unit_is_wrong[range->slot])
             sct_fields_error(f, node,
                              "found a number without a unit; expected %s such as \"%s\", or a unit in /units/%s",
-                             range->what, sct_quantity_example(quantity), slot_key(range->slot));
+                             range->what, example, slot_key(range->slot));
         return *unit != NULL;
     }
     const char *text = sct_node_string(node);
@@ -280,10 +318,10 @@ static bool read_quantity(sct_fields *f, const sct_node *node, const sct_range *
         const sct_unit *bare = f->unit[range->slot];
         if (bare != NULL)
             sct_fields_error(f, node, "found %s; expected %s: a number in %s or a string such as \"%s\"",
-                             sct_node_kind_words(node), range->what, bare->name, sct_quantity_example(quantity));
+                             sct_node_kind_words(node), range->what, bare->name, example);
         else
             sct_fields_error(f, node, "found %s; expected %s: a string such as \"%s\"", sct_node_kind_words(node),
-                             range->what, sct_quantity_example(quantity));
+                             range->what, example);
         return false;
     }
     if (sct_quantity_read(text, quantity, value, unit, fault)) return true;
@@ -291,15 +329,20 @@ static bool read_quantity(sct_fields *f, const sct_node *node, const sct_range *
     return false;
 }
 
-/* The unit that makes a value usual, where the one it is in does not: the likely slip. */
+/* The unit that makes a value usual, where the one it is in does not: the likely slip. Of several, the one that brings
+ * it nearest to the middle of what is usual. */
 static const sct_unit *unit_meant(const sct_range *range, double value)
 {
-    const sct_unit *unit;
+    const sct_unit *unit, *best = NULL;
+    const double middle = 0.5 * (log(range->usual_least) + log(range->usual_most));
+    double least = INFINITY;
     for (int i = 0; (unit = sct_unit_of(quantity_of(range->slot), i)) != NULL; i++) {
         const double x = sct_unit_to_SI(unit, range->least < 0 ? fabs(value) : value);
-        if (x >= range->usual_least && x <= range->usual_most) return unit;
+        if (!(x >= range->usual_least && x <= range->usual_most && x > 0) || fabs(log(x) - middle) >= least) continue;
+        least = fabs(log(x) - middle);
+        best = unit;
     }
-    return NULL;
+    return best;
 }
 
 static bool out_of_range(sct_fields *f, const sct_node *node, const sct_range *range, double value,
@@ -307,14 +350,14 @@ static bool out_of_range(sct_fields *f, const sct_node *node, const sct_range *r
 {
     const char *name = unit == NULL ? "" : unit->name, *gap = unit == NULL ? "" : " ";
     if (range->least > 0 && !(value > 0)) {
-        sct_fields_error(f, node, "found %g%s%s; expected %s above zero", value, gap, name, range->what);
+        sct_fields_error(f, node, "found %.15g%s%s; expected %s above zero", value, gap, name, range->what);
         return false;
     }
     const char *si = unit == NULL ? "" : sct_unit_of(unit->quantity, 0)->name;
     const sct_unit *meant = unit == NULL ? NULL : unit_meant(range, value);
     char hint[64] = "";
     if (meant != NULL && meant != unit) snprintf(hint, sizeof hint, "; did you mean %s?", meant->name);
-    sct_fields_error(f, node, "found %g%s%s; expected %s from %g to %g%s%s%s", value, gap, name, range->what,
+    sct_fields_error(f, node, "found %.15g%s%s; expected %s from %g to %g%s%s%s", value, gap, name, range->what,
                      range->least, range->most, gap, si, hint);
     return false;
 }
@@ -370,7 +413,7 @@ bool sct_fields_vector(sct_fields *f, const sct_node *node, const sct_range *ran
 
 bool sct_fields_direction(sct_fields *f, const sct_node *node, double d[3], const char **label)
 {
-    static const sct_range COMPONENT = {"a component of a direction", -1, -1e100, 1e100, 0, 0};
+    static const sct_range COMPONENT = {"a component of a direction", -1, -1e100, 1e100, 0, 0, NULL};
     d[0] = d[1] = d[2] = 0.0;
     if (node == NULL) return false;
     const char *text = sct_node_string(node);

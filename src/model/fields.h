@@ -31,6 +31,7 @@ typedef struct sct_range {
     const char *what; /* "a density" */
     int slot;         /* of /units; -1: a plain number */
     double least, most, usual_least, usual_most;
+    const char *example; /* of a value, or NULL for that of its kind */
 } sct_range;
 
 /** Adds an error (warning, note) at a value, or at its key. */

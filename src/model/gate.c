@@ -126,7 +126,8 @@ static bool unexpected(scan *s, const char *expected)
     const unsigned char *text = (const unsigned char *)s->text + s->at;
     if (c == 0 && !at_end(s)) return fault(s, p, "found a zero byte; expected %s", expected);
     if (c < 0x20 || c == 0x7F) return fault(s, p, "found the control byte 0x%02X; expected %s", c, expected);
-    if (c == '/' || c == '#') return fault(s, p, "found \"%c\"; JSON has no comments (use a key \"notes\")", c);
+    if (c == '#' || (c == '/' && (peek(s, 1) == '/' || peek(s, 1) == '*')))
+        return fault(s, p, "found \"%c\"; JSON has no comments (use a key \"notes\")", c);
     if (c == '"') return fault(s, p, "found a string; expected %s", expected);
     if (c == '\'') return fault(s, p, "found a single quote; JSON wants double quotes");
     if (is_word(c)) {

@@ -44,7 +44,7 @@ static double part_not_held(const sct_joint *joint, const double v[3])
 
 static void read_loads(sct_reader *r, const sct_node *node, sct_case *c)
 {
-    static const sct_range LOAD = {"a force", SCT_FORCE, -1e12, 1e12, 1, 1e8};
+    static const sct_range LOAD = {"a force", SCT_FORCE, -1e12, 1e12, 1, 1e8, NULL};
     int n;
     if (!open_object(r, node, "an object of forces, keyed by joint", &n)) return;
     c->loads = sct_fields_array(&r->f, n, sizeof *c->loads);
@@ -59,7 +59,7 @@ static void read_loads(sct_reader *r, const sct_node *node, sct_case *c)
 
 static void read_settlements(sct_reader *r, const sct_node *node, sct_case *c)
 {
-    static const sct_range SETTLEMENT = {"a settlement", SCT_DISPLACEMENT, -1e4, 1e4, 1e-5, 1};
+    static const sct_range SETTLEMENT = {"a settlement", SCT_DISPLACEMENT, -1e4, 1e4, 1e-5, 1, "5 mm"};
     static const double TOL_HELD = 1e-6; /* of its length may point away from the held directions, by rounding */
     int n;
     if (!open_object(r, node, "an object of displacements, keyed by joint", &n)) return;
@@ -81,8 +81,8 @@ static void read_settlements(sct_reader *r, const sct_node *node, sct_case *c)
 
 static void read_bar_action(sct_reader *r, const sct_node *node, sct_bar_action *action)
 {
-    static const sct_range TEMPERATURE = {"a temperature difference", SCT_TEMPERATURE, -2000, 2000, 0, 0};
-    static const sct_range LACK = {"a lack of fit", SCT_DISPLACEMENT, -1e4, 1e4, 1e-5, 1};
+    static const sct_range TEMPERATURE = {"a temperature difference", SCT_TEMPERATURE, -2000, 2000, 0, 0, NULL};
+    static const sct_range LACK = {"a lack of fit", SCT_DISPLACEMENT, -1e4, 1e4, 1e-5, 1, "2 mm"};
     static const sct_key KEYS[] = {{"temperature", NULL}, {"lack_of_fit", NULL}};
     const sct_node *found[2];
     action->where = sct_fields_where(&r->f, node);
@@ -96,7 +96,7 @@ static void read_bar_action(sct_reader *r, const sct_node *node, sct_bar_action 
     if (!sct_fields_value(&r->f, found[0], &TEMPERATURE, &action->dT) || !known) return;
     const int group = r->model->members[action->member].group;
     const int material = group < 0 ? -1 : r->model->groups[group].material;
-    if (material >= 0 && isnan(r->model->materials[material].expansion))
+    if (material >= 0 && !r->material_is_wrong[material] && isnan(r->model->materials[material].expansion))
         sct_fields_error(&r->f, found[0], "material \"%s\" has no \"expansion\"; expected such as \"12e-6 1/K\" there",
                          sct_show(r->model->materials[material].name).text);
 }
@@ -113,7 +113,7 @@ static void read_bar_actions(sct_reader *r, const sct_node *node, sct_case *c)
 
 static void read_self_weight(sct_reader *r, const sct_node *node, double *factor)
 {
-    static const sct_range FACTOR = {"a factor on the self-weight", -1, 1e-3, 100, 0, 0};
+    static const sct_range FACTOR = {"a factor on the self-weight", -1, 1e-3, 100, 0, 0, NULL};
     if (node == NULL) return;
     switch (sct_node_kind_of(node)) {
     case SCT_TRUE: *factor = 1.0; break;
@@ -164,7 +164,10 @@ void sct_read_cases(sct_reader *r, const sct_node *node)
     if (r->f.failure != SCT_OK || n == 0) return;
     for (const sct_node *c = sct_node_first(node); c != NULL && r->f.failure == SCT_OK; c = sct_node_next(c))
         read_case(r, c, &m->cases[m->n_cases++]);
-    if (r->f.failure != SCT_OK || r->f.n_errors > errors_before) return;
+    const bool *is_wrong = r->f.unit_is_wrong; /* then nothing was read that could act */
+    if (r->f.failure != SCT_OK || r->f.n_errors > errors_before || is_wrong[SCT_FORCE] || is_wrong[SCT_DISPLACEMENT] ||
+        is_wrong[SCT_TEMPERATURE])
+        return;
     int n_acting = 0;
     for (int i = 0; i < n; i++) n_acting += acts(&m->cases[i]);
     if (n_acting == 0) {
@@ -182,7 +185,7 @@ void sct_read_cases(sct_reader *r, const sct_node *node)
 
 static void read_sum(sct_reader *r, const sct_node *node, sct_combination *combination)
 {
-    static const sct_range FACTOR = {"a factor on a load case", -1, -1e3, 1e3, 0, 0};
+    static const sct_range FACTOR = {"a factor on a load case", -1, -1e3, 1e3, 0, 0, NULL};
     int n;
     if (!open_object(r, node, "an object of factors, keyed by load case", &n)) return;
     if (n == 0) sct_fields_error(&r->f, node, "found no load case; expected at least one with its factor");
@@ -201,20 +204,21 @@ static void read_combination(sct_reader *r, const sct_node *node, sct_combinatio
 {
     static const sct_key KEYS[] = {{"for", "\"allowable\" or \"service\""},
                                    {"sum", "the load cases with their factors, such as {\"G\": 1}"}};
-    static const char *const BASES[] = {
-        [SCT_STRENGTH] = "strength", [SCT_ALLOWABLE] = "allowable", [SCT_SERVICE] = "service"};
+    static const char *const BASES[] = {"allowable", "service"};
     const sct_node *found[2];
-    int basis = SCT_SERVICE;
+    int word = 1;
     combination->where = sct_fields_where(&r->f, node);
     combination->factor = sct_fields_array(&r->f, r->model->n_cases, sizeof *combination->factor);
     sct_fields_name(&r->f, node, &combination->name);
     if (combination->factor == NULL || !sct_fields_keys(&r->f, node, "a combination", KEYS, 2, found)) return;
-    sct_fields_word(&r->f, found[0], "what the combination is for", BASES, 3, &basis);
-    combination->basis = (sct_basis)basis;
-    if (combination->basis == SCT_STRENGTH)
+    const char *text = found[0] == NULL ? NULL : sct_node_string(found[0]);
+    if (text != NULL && strcmp(text, "strength") == 0)
         sct_fields_error(&r->f, found[0],
                          "found \"strength\", which has factored actions; the allowable stress checks of this "
                          "version work on unfactored ones: expected \"allowable\" or \"service\"");
+    else
+        sct_fields_word(&r->f, found[0], "what the combination is for", BASES, 2, &word);
+    combination->basis = word == 0 ? SCT_ALLOWABLE : SCT_SERVICE;
     read_sum(r, found[1], combination);
 }
 
@@ -280,14 +284,15 @@ static void read_limited_joints(sct_reader *r, const sct_node *node, sct_deflect
             limit->joints[limit->n_joints++] = j;
         is_taken[j] = true;
     }
-    if (all ? limit->n_joints == 0 && r->f.dimensions > 0 : sct_node_count(node) == 0)
+    if (!all && sct_node_count(node) == 0) sct_fields_error(&r->f, node, "found no joint; expected at least one");
+    if (all && limit->n_joints == 0 && m->n_joints > 0 && r->f.dimensions > 0)
         sct_fields_error(&r->f, node, "found no joint that can move; expected at least one");
 }
 
 /* The span: the distance of two joints, or a length. */
 static bool read_span(sct_reader *r, const sct_node *node, double *span)
 {
-    static const sct_range SPAN = {"a span", SCT_LENGTH, 1e-6, 1e6, 0.1, 1e3};
+    static const sct_range SPAN = {"a span", SCT_LENGTH, 1e-6, 1e6, 0.1, 1e3, NULL};
     if (node == NULL || sct_node_kind_of(node) != SCT_ARRAY) return sct_fields_value(&r->f, node, &SPAN, span);
     if (sct_node_count(node) != 2) {
         sct_fields_error(&r->f, node, "expected the names of two joints; found %d", sct_node_count(node));
@@ -330,16 +335,22 @@ static void read_span_fraction(sct_reader *r, const sct_node *node, const sct_no
 static void read_at_most(sct_reader *r, const sct_node *node, const sct_node *at_most, const sct_node *span,
                          sct_deflection_limit *limit)
 {
-    static const sct_range AT_MOST = {"a displacement", SCT_DISPLACEMENT, 1e-9, 1e4, 1e-5, 1};
+    static const sct_range AT_MOST = {"a displacement", SCT_DISPLACEMENT, 1e-9, 1e4, 1e-5, 1, "20 mm"};
     if (at_most == NULL) return;
     const char *text = sct_node_string(at_most);
     if (text != NULL && strncmp(text, "L/", 2) == 0) {
         read_span_fraction(r, node, at_most, span, limit);
         return;
     }
+    if (text != NULL && strchr(text, '/') != NULL) {
+        sct_fields_error(&r->f, at_most,
+                         "found \"%s\"; expected a displacement, or a fraction of the span such as \"L/300\"",
+                         sct_show(text).text);
+        return;
+    }
+    if (!sct_fields_value(&r->f, at_most, &AT_MOST, &limit->at_most)) return;
     if (span != NULL)
         sct_fields_key_error(&r->f, span, "\"span\" goes with a limit such as \"L/300\" only; leave it out");
-    if (!sct_fields_value(&r->f, at_most, &AT_MOST, &limit->at_most)) return;
     if (text == NULL) { /* a bare number: with its unit */
         char number[SCT_NUMBER_ROOM], words[SCT_NUMBER_ROOM + 16];
         sct_number_write(sct_node_number(at_most), number);
@@ -366,7 +377,7 @@ static void read_limited_combinations(sct_reader *r, const sct_node *node, sct_d
         if (!sct_fields_word(&r->f, node, "a kind of combination", BASES, 2, &word)) return;
         const sct_basis basis = word == 0 ? SCT_ALLOWABLE : SCT_SERVICE;
         for (int i = 0; i < m->n_combinations; i++) n += limit->in[i] = m->combinations[i].basis == basis;
-        if (n == 0 && m->n_combinations > 0)
+        if (n == 0 && r->f.n_errors == 0) /* a combination may have lost its kind to an error */
             sct_fields_error(&r->f, node, "no combination is for \"%s\"; expected one, or the limit never holds",
                              BASES[word]);
         return;

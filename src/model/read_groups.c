@@ -8,7 +8,7 @@
 #include "families.h"
 #include "reader.h"
 
-static const sct_range AREA = {"an area", SCT_AREA, 1e-9, 1e3, 1e-6, 1};
+static const sct_range AREA = {"an area", SCT_AREA, 1e-9, 1e3, 1e-6, 0.1, NULL};
 static const sct_key AXES[2] = {{"in_plane", "a value for bending in the plane of the truss"},
                                 {"out_of_plane", "a value for bending out of the plane of the truss"}};
 
@@ -32,8 +32,9 @@ static bool read_both_axes(sct_reader *r, const sct_node *node, const sct_range 
 
 static void read_section(sct_reader *r, const sct_node *node, sct_section *section)
 {
-    static const sct_range SECOND_MOMENT = {"a second moment of area", SCT_SECOND_MOMENT, 1e-18, 1e6, 1e-12, 0.1};
-    static const sct_range DEPTH = {"a depth", SCT_LENGTH, 1e-4, 1e2, 5e-3, 3};
+    static const sct_range SECOND_MOMENT = {
+        "a second moment of area", SCT_SECOND_MOMENT, 1e-18, 1e2, 1e-10, 1e-3, NULL};
+    static const sct_range DEPTH = {"a depth", SCT_LENGTH, 1e-4, 10, 5e-3, 3, "60 mm"};
     enum { K_AREA, K_I, K_DEPTH, N };
     static const sct_key KEYS[N] = {
         {"A", "its area"}, {"I", "its second moment of area, or one for each axis"}, {"depth", NULL}};
@@ -100,9 +101,12 @@ void sct_read_families(sct_reader *r, const sct_node *node)
     if (r->families == NULL) r->f.failure = SCT_NO_MEMORY;
     r->sections = sct_fields_array(&r->f, r->families_room, sizeof *r->sections);
     r->model->families = sct_fields_array(&r->f, r->families_room, sizeof *r->model->families);
+    r->families_are_wrong = node != NULL && !is_there;
     if (!is_there) return;
+    const int errors_before = r->f.n_errors;
     for (const sct_node *c = sct_node_first(node); c != NULL && r->f.failure == SCT_OK; c = sct_node_next(c))
         read_family(r, c);
+    r->families_are_wrong = r->f.n_errors > errors_before;
 }
 
 int sct_reader_family(sct_reader *r, const sct_node *node)
@@ -112,6 +116,7 @@ int sct_reader_family(sct_reader *r, const sct_node *node)
     const int known = sct_names_find(r->families, name);
     if (known >= 0) return known;
     const int shipped = sct_family_find(name);
+    if (shipped < 0 && r->families_are_wrong) return -1;
     if (shipped < 0) { /* the nearest name may be of either kind */
         sct_names *all = sct_names_new(r->families_room);
         int index = -1;
@@ -140,7 +145,7 @@ int sct_reader_family(sct_reader *r, const sct_node *node)
 
 void sct_read_allowable(sct_reader *r, const sct_node *node, double allowable[2])
 {
-    static const sct_range ALLOWABLE = {"an allowable stress", SCT_STRESS, 1e3, 1e11, 1e5, 5e9};
+    static const sct_range ALLOWABLE = {"an allowable stress", SCT_STRESS, 1e3, 1e11, 1e5, 5e9, NULL};
     static const sct_key KEYS[] = {{"tension", NULL}, {"compression", NULL}};
     const sct_node *found[2];
     if (!sct_fields_keys(&r->f, node, "allowable stresses", KEYS, 2, found)) return;
@@ -149,7 +154,7 @@ void sct_read_allowable(sct_reader *r, const sct_node *node, double allowable[2]
 
 static void read_buckling(sct_reader *r, const sct_node *node, sct_buckling_words *words)
 {
-    static const sct_range SAFETY = {"a safety factor", -1, 1, 100, 0, 0};
+    static const sct_range SAFETY = {"a safety factor", -1, 1, 100, 0, 0, NULL};
     static const char *const BY[] = {[SCT_BUCKLING_NONE] = "none",
                                      [SCT_BUCKLING_EULER] = "Euler",
                                      [SCT_BUCKLING_EULER_JOHNSON] = "Euler and Johnson"};
@@ -174,7 +179,7 @@ static void read_buckling(sct_reader *r, const sct_node *node, sct_buckling_word
 
 static void read_slenderness(sct_reader *r, const sct_node *node, double *any, double *compression)
 {
-    static const sct_range SLENDERNESS = {"a slenderness", -1, 1, 1e4, 0, 0};
+    static const sct_range SLENDERNESS = {"a slenderness", -1, 1, 1e4, 0, 0, NULL};
     static const sct_key KEYS[] = {{"any", NULL}, {"compression", NULL}};
     const sct_node *found[2];
     if (!sct_fields_keys(&r->f, node, "slenderness limits", KEYS, 2, found)) return;
@@ -257,7 +262,7 @@ static void read_area_bounds(sct_reader *r, const sct_node *node, sct_group *g)
 
 static void read_area(sct_reader *r, const sct_node *const found[], sct_group *g)
 {
-    static const sct_range C = {"a factor c of I = c A^2", -1, 1e-6, 1e6, 0, 0};
+    static const sct_range C = {"a factor c of I = c A^2", -1, 1e-6, 1e6, 0, 0, NULL};
     static const sct_key FACTOR[] = {{"c", "the factor c of I = c A^2, or one for each axis"}};
     static const int FOR_FAMILIES[] = {K_SECTIONS, K_SECTION};
     const sct_node *area = found[K_AREA], *c;

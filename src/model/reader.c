@@ -59,7 +59,7 @@ static bool read_version(sct_reader *r, const sct_node *node)
         return true;
     }
     if (version == SCT_MODEL_FORMAT) return true;
-    sct_fields_error(&r->f, node, "found format %g; this version of scantling reads format %d", version,
+    sct_fields_error(&r->f, node, "found format %.15g; this version of scantling reads format %d", version,
                      SCT_MODEL_FORMAT);
     return false;
 }
@@ -71,7 +71,7 @@ static void read_dimensions(sct_reader *r, const sct_node *node)
     if (n == 2 || n == 3)
         r->f.dimensions = r->model->dimensions = (int)n;
     else if (sct_node_kind_of(node) == SCT_NUMBER)
-        sct_fields_error(&r->f, node, "found %g; expected 2 or 3", n);
+        sct_fields_error(&r->f, node, "found %.15g; expected 2 or 3", n);
     else
         sct_fields_error(&r->f, node, "found %s; expected 2 or 3", sct_node_kind_words(node));
 }
@@ -126,9 +126,10 @@ static void read_units(sct_reader *r, const sct_node *node)
         f->unit_is_wrong[SCT_AREA] = f->unit_is_wrong[SCT_SECOND_MOMENT] = f->unit_is_wrong[SCT_DISPLACEMENT] = true;
         return;
     }
-    if (f->unit[SCT_DISPLACEMENT] == NULL) f->unit[SCT_DISPLACEMENT] = length;
-    if (f->unit[SCT_AREA] == NULL) f->unit[SCT_AREA] = power_of(r, length, 2, SCT_AREA);
-    if (f->unit[SCT_SECOND_MOMENT] == NULL) f->unit[SCT_SECOND_MOMENT] = power_of(r, length, 4, SCT_SECOND_MOMENT);
+    if (f->unit[SCT_DISPLACEMENT] == NULL && !f->unit_is_wrong[SCT_DISPLACEMENT]) f->unit[SCT_DISPLACEMENT] = length;
+    if (f->unit[SCT_AREA] == NULL && !f->unit_is_wrong[SCT_AREA]) f->unit[SCT_AREA] = power_of(r, length, 2, SCT_AREA);
+    if (f->unit[SCT_SECOND_MOMENT] == NULL && !f->unit_is_wrong[SCT_SECOND_MOMENT])
+        f->unit[SCT_SECOND_MOMENT] = power_of(r, length, 4, SCT_SECOND_MOMENT);
     r->model->us_customary = strcmp(length->name, "in") == 0 || strcmp(length->name, "ft") == 0;
 }
 
@@ -137,10 +138,10 @@ static void read_units(sct_reader *r, const sct_node *node)
 
 static void read_material(sct_reader *r, const sct_node *node, sct_material *m)
 {
-    static const sct_range E = {"Young's modulus", SCT_STRESS, 1e6, 2e12, 1e9, 1e12};
-    static const sct_range DENSITY = {"a density", SCT_DENSITY, 1, 3e4, 100, 2.5e4};
-    static const sct_range YIELD = {"a yield stress", SCT_STRESS, 1e3, 1e11, 1e7, 5e9};
-    static const sct_range EXPANSION = {"an expansion coefficient", SCT_EXPANSION, 0, 1e-3, 1e-6, 1e-4};
+    static const sct_range E = {"Young's modulus", SCT_STRESS, 1e6, 2e12, 1e9, 1e12, "210 GPa"};
+    static const sct_range DENSITY = {"a density", SCT_DENSITY, 1, 3e4, 100, 2.5e4, NULL};
+    static const sct_range YIELD = {"a yield stress", SCT_STRESS, 1e3, 1e11, 1e7, 5e9, NULL};
+    static const sct_range EXPANSION = {"an expansion coefficient", SCT_EXPANSION, 0, 1e-3, 1e-6, 1e-4, NULL};
     enum { K_E, K_DENSITY, K_YIELD, K_EXPANSION, K_ALLOWABLE, N };
     static const sct_key KEYS[N] = {{"E", "Young's modulus"},
                                     {"density", "the density, such as \"7850 kg/m3\""},
@@ -215,7 +216,7 @@ static void read_support(sct_reader *r, const sct_node *node, sct_joint *joint)
 
 static void read_joint(sct_reader *r, const sct_node *node, sct_joint *joint)
 {
-    static const sct_range COORDINATE = {"a coordinate", SCT_LENGTH, -1e5, 1e5, 0.01, 1e3};
+    static const sct_range COORDINATE = {"a coordinate", SCT_LENGTH, -1e5, 1e5, 0.01, 1e3, NULL};
     static const sct_key KEYS[] = {{"at", "its coordinates, such as [0, 0]"}, {"support", NULL}};
     const sct_node *found[2];
     joint->where = sct_fields_where(&r->f, node);
@@ -245,8 +246,8 @@ static void read_joints(sct_reader *r, const sct_node *node)
 
 void sct_read_lengths(sct_reader *r, const sct_node *restraint, const sct_node *factor, sct_lengths *lengths)
 {
-    static const sct_range RESTRAINT = {"an effective length", SCT_LENGTH, 1e-6, 1e5, 0.1, 1e3};
-    static const sct_range FACTOR = {"a length factor", -1, 0.01, 10, 0, 0};
+    static const sct_range RESTRAINT = {"an effective length", SCT_LENGTH, 1e-6, 1e5, 0.1, 1e3, NULL};
+    static const sct_range FACTOR = {"a length factor", -1, 0.01, 10, 0, 0, NULL};
     static const sct_key AXES[] = {{"in_plane", NULL}, {"out_of_plane", NULL}};
     const sct_node *distance[2] = {NULL, NULL}, *times[2] = {NULL, NULL};
     *lengths = (sct_lengths){0};
@@ -371,6 +372,7 @@ static void read_root(sct_reader *r, const sct_node *root)
     if (!sct_fields_keys(&r->f, root, "a model", KEYS, N, found)) return;
     sct_fields_keys(&r->f, found[K_LIMITS], "limits", LIMITS, L, limit);
     if (found[K_LIMITS] == NULL) limit[L_DEFLECTION] = limit[L_BUCKLING] = limit[L_SLENDERNESS] = NULL;
+    if (found[K_LIMITS] != NULL && sct_node_kind_of(found[K_LIMITS]) != SCT_OBJECT) r->buckling.is_given = true;
     sct_fields_string(&r->f, found[K_SCHEMA], "the address of the schema", &text);
     if (sct_fields_string(&r->f, found[K_TITLE], "a title", &text)) r->model->title = sct_fields_copy(&r->f, text);
     read_dimensions(r, found[K_DIMENSIONS]);

@@ -32,6 +32,7 @@ typedef struct sct_reader {
     sct_names *families;                                                     /* those in the model so far */
     sct_names **sections;                                                    /* of each of them */
     int families_room;
+    bool families_are_wrong;                         /* told already, as below */
     bool *material_is_wrong, *joint_is_wrong;        /* told already: what follows from it is not told again */
     sct_lengths *group_lengths;                      /* n_groups */
     sct_buckling_words buckling;                     /* of /limits */

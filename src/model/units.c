@@ -191,6 +191,7 @@ bool sct_quantity_read(const char *text, sct_quantity quantity, double *value, c
     size_t digits = strspn(text, "0123456789+-.,eE");
     /* the longest beginning that is a number: the E of "3 E" and the e of "3em" belong to what follows */
     while (digits > 0 && !sct_number_read(text, digits, value)) digits--;
+    if (text[digits] >= '0' && text[digits] <= '9') digits = 0; /* cut in the middle: too large, or no number */
     const char *rest = text + digits;
     const size_t blanks = strspn(rest, " ");
     if (digits == 0) {
