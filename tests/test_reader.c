@@ -273,7 +273,7 @@ static const mistake MISTAKES[] = {
     {"\"E\": 210000", "\"e\": 210000", "7:15: error: /materials/S355H/e: unknown key \"e\"; did you mean \"E\"?"},
     {"\"E\": 210000", "\"E\": null",
      "7:20: error: /materials/S355H/E: found null; expected Young's modulus: a number in MPa or a string such as \"210 "
-     "MPa\""},
+     "GPa\""},
     {"\"E\": 210000", "\"E\": \"210,5 MPa\"",
      "7:20: error: /materials/S355H/E: found \"210,5 MPa\"; the decimal mark is a point, such as in \"210 MPa\""},
     {"\"E\": 210000", "\"E\": \"210000\"",

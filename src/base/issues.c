@@ -14,7 +14,7 @@ enum { MOST_ERRORS = 20, MOST_OTHERS = 50, MESSAGE_ROOM = 2048 };
 
 struct sct_issues {
     sct_arena *arena;
-    sct_issue list[MOST_ERRORS + MOST_OTHERS];
+    sct_issue list[MOST_ERRORS + MOST_OTHERS + 1]; /* + 1: that more are not shown */
     int n, errors, others;
 };
 
@@ -99,14 +99,18 @@ static bool is_told(const sct_issues *issues, sct_severity severity, sct_where w
 void sct_issue_add(sct_issues *issues, sct_severity severity, sct_where where, const char *format, ...)
 {
     if (issues == NULL) return;
-    if (severity == SCT_ERROR ? issues->errors++ >= MOST_ERRORS : issues->others >= MOST_OTHERS) return;
+    if (severity == SCT_ERROR ? issues->errors++ >= MOST_ERRORS : issues->others > MOST_OTHERS) return;
     char message[MESSAGE_ROOM];
     va_list args;
     va_start(args, format);
     sct_number_vformat(message, sizeof message, format, args);
     va_end(args);
     if (severity != SCT_ERROR && is_told(issues, severity, where, message)) return;
-    issues->others += severity != SCT_ERROR;
+    if (severity != SCT_ERROR && ++issues->others > MOST_OTHERS) {
+        issues->list[issues->n++] = (sct_issue){
+            .severity = SCT_NOTE, .file = keep(issues, where.file), .message = "more warnings and notes are not shown"};
+        return;
+    }
     issues->list[issues->n++] = (sct_issue){
         .severity = severity,
         .file = keep(issues, where.file),

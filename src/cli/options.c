@@ -55,7 +55,8 @@ static int unknown_option(const cli_command *command, const char *word)
     }
     if (n_alike > 1) return ambiguous_option(command, name);
     const char *near = sct_nearest(names, command->n_options + 1, name);
-    if (near != NULL) cli_say("error", "no option %s; did you mean --%s?", word, near);
+    if (near != NULL && strcmp(near, name) == 0) cli_say("error", "option --%s takes no value", name);
+    else if (near != NULL) cli_say("error", "no option %s; did you mean --%s?", word, near);
     else cli_say("error", "no option %s", word);
     return usage_fault(command);
 }
@@ -112,6 +113,11 @@ int cli_parse(const cli_command *command, int argc, char **argv, const char *giv
         else cli_say("error", "%s is missing", command->operands);
         return usage_fault(command);
     }
+    for (int i = optind; i < argc; i++)
+        if (argv[i][0] == '\0') {
+            cli_say("error", "%s is an empty name", command->operands);
+            return usage_fault(command);
+        }
     *operands = argv + optind;
     return 0;
 }

@@ -57,10 +57,11 @@ static char *path_in(const char *folder, const char *name)
 }
 
 /* The folder is made, and what stands in the way is told, before the long work starts. */
-static int prepare_folder(const cli_run *run)
+static int prepare_folder(cli_run *run)
 {
     struct stat about;
-    if (mkdir(run->folder, 0777) != 0 && errno != EEXIST) {
+    run->made_folder = mkdir(run->folder, 0777) == 0;
+    if (!run->made_folder && errno != EEXIST) {
         cli_say("error", "the folder %s cannot be made: %s", run->folder, strerror(errno));
         return EXIT_OUTPUT;
     }
@@ -201,6 +202,7 @@ int cli_run_close(cli_run *run, int code)
     if (run->issues != NULL) cli_issues(run->issues, run->quiet);
     if (code == EXIT_RESOURCES && (run->issues == NULL || sct_issues_errors(run->issues) == 0))
         cli_say("error", "%s", sct_status_text(SCT_NO_MEMORY));
+    if (run->made_folder) rmdir(run->folder); /* stays unless it is empty */
     sct_result_free(run->result);
     sct_model_free(run->model);
     sct_issues_free(run->issues);
