@@ -49,6 +49,9 @@ extern "C" {
 
 #define SCT_VERSION "0.1.0"
 #define SCT_MODEL_FORMAT 1  /* the model files that this version reads and writes: "scantling": 1 */
+/* A limit is kept when value / limit, with the error of the analysis, is at most 1 to nine digits: sums that are equal on
+ * paper differ in the sixteenth. */
+#define SCT_KEPT_TO 1e-9
 #define SCT_RESULT_FORMAT 1 /* result.json: "format": "scantling result", "version": 1 */
 #define SCT_EXPLANATION_FORMAT 1 /* sct_explain_json: "format": "scantling explanation", "version": 1 */
 
@@ -259,7 +262,8 @@ typedef struct sct_price {
     int limit;           /* deflection limit, or -1 */
     double multiplier;   /* [kg] per unit of ln(limit): sum over all constraints that this limit generates */
     double per_unit;     /* [kg] per SI unit of the limit (deflection: per metre; size bound: per m2); NAN when a ratio */
-    char words[160];     /* "1 mm more deflection (L/300 at L4) saves 3.1 kg" */
+    double saving;       /* [kg] for the relief in the words; the dearest comes first */
+    char words[640];     /* "1 mm more deflection (L/300 in y at L4) saves 3.1 kg" */
 } sct_price;
 
 /* Where one start of the descent ended. */
@@ -279,6 +283,7 @@ typedef struct sct_result {
     const sct_model *model; /* borrowed */
     sct_outcome outcome;
     bool kept;          /* every limit is kept by the design shown */
+    sct_settings settings; /* that it was made with */
     bool us_customary;  /* writers show kip, ft, in, ksi, lb instead of kN, m, mm, MPa, kg */
     const char *title;  /* "" when none */
     int dimensions;     /* 2 or 3 */
@@ -288,6 +293,7 @@ typedef struct sct_result {
     sct_member_result *members;
     sct_group_result *groups;
     const char **combinations; /* their names */
+    bool *is_for_strength;     /* n_combinations: strength is checked in it; else deflections only */
     double *u;        /* [m]  n_combinations x n_joints x 3 displacements */
     double *reaction; /* [N]  n_combinations x n_joints x 3; 0 where nothing is held */
     double *N;        /* [N]  n_combinations x n_members; what is below 1e-9 of the largest force is given as 0 */
@@ -307,7 +313,9 @@ typedef struct sct_result {
     int n_prices;
     sct_price *prices;
     sct_accuracy accuracy;  /* of the analysis shown */
-    char verdict[400];      /* the finding in one sentence; for an infeasible model the limit and by how much */
+    int n_warnings;
+    const char **warnings;  /* those in `issues` when the result was made (hand in the list that the model was read with) */
+    char verdict[1000];      /* the finding in one sentence; for an infeasible model the limit and by how much */
 } sct_result;
 
 /**

@@ -44,7 +44,8 @@ for script in tests/cli_*.sh; do
     fi
     passed=$((passed + held))
     failed=$((failed + broken))
-    if [ "$broken" = 0 ]; then
+    [ "$broken" = 0 ] && [ "$code" != 0 ] && failed=$((failed + 1))
+    if [ "$broken" = 0 ] && [ "$code" = 0 ]; then
         printf 'ok   %-28s %4d\n' "$(basename "$script")" "$held"
     else
         printf 'FAIL %-28s %4d of %d\n' "$(basename "$script")" "$broken" "$((held + broken))"

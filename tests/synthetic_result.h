@@ -12,6 +12,8 @@ typedef struct synthetic {
     sct_member_result members[2];
     sct_group_result groups[2];
     const char *combinations[2];
+    bool is_for_strength[2];
+    const char *warnings[1];
     double u[18], reaction[18], N[4], load[18];
     sct_deflection_result deflections[1];
     sct_start_result starts[3];
@@ -35,6 +37,8 @@ static inline sct_result *synthetic_result(synthetic *s)
                                         0,    8e3, 0.25, 8e3, 1e3, 0,          1,          false};
     s->combinations[0] = "S1";
     s->combinations[1] = "W";
+    s->is_for_strength[0] = s->is_for_strength[1] = true;
+    s->warnings[0] = "buckling is not checked";
     s->N[0] = 12.04e3, s->N[1] = 8e3, s->N[2] = -45.26e3, s->N[3] = 1e3;
     s->u[7] = -0.0183, s->u[16] = 0.001;
     s->reaction[0] = -3e3, s->reaction[1] = 20e3, s->reaction[4] = 20e3, s->reaction[9] = 0.01, s->reaction[10] = -5e3;
@@ -44,7 +48,7 @@ static inline sct_result *synthetic_result(synthetic *s)
     s->starts[1] = (sct_start_result){41.6000001, 0, 1e-9, 9, 8, SCT_OPTIMUM};
     s->starts[2] = (sct_start_result){45.0, 0.1, 1e-2, 100, 99, SCT_STALLED};
     s->prices[0] =
-        (sct_price){SCT_CHECK_DEFLECTION, -1, 0, 12.5, -3100, "1 mm more deflection (L/300 at C) saves 3.1 kg"};
+        (sct_price){SCT_CHECK_DEFLECTION, -1, 0, 12.5, -3100, 3.1, "1 mm more deflection (L/300 at C) saves 3.1 kg"};
     s->result = (sct_result){
         .outcome = SCT_SECTIONS_FOUND,
         .kept = true,
@@ -59,6 +63,9 @@ static inline sct_result *synthetic_result(synthetic *s)
         .members = s->members,
         .groups = s->groups,
         .combinations = s->combinations,
+        .is_for_strength = s->is_for_strength,
+        .warnings = s->warnings,
+        .settings = {.starts = 3, .seed = 1, .iterations = 100, .tolerance = 1e-6},
         .u = s->u,
         .reaction = s->reaction,
         .N = s->N,

@@ -499,6 +499,141 @@ START_TEST(the_plain_method_reaches_the_same_optimum_of_a_small_problem)
 }
 END_TEST
 
+/* ---- what a review found ----------------------------------------------------------------------------------------- */
+
+/* A post between two raking ties, held by its own lack of fit: its force changes sign with its size. */
+static char *raked(const char *post, const char *ties, double lift, double safety)
+{
+    sct_text t = {0};
+    sct_text_format(&t, "{ \"scantling\": 1, \"dimensions\": 2, \"units\": { \"length\": \"m\", \"force\": \"kN\","
+                        " \"stress\": \"MPa\", \"area\": \"mm2\" },"
+                        "\"materials\": { \"S\": { \"E\": 210000, \"density\": \"7850 kg/m3\","
+                        " \"allowable\": { \"tension\": 140, \"compression\": 140 } } },"
+                        "\"joints\": { \"A\": { \"at\": [0, 0], \"support\": [\"x\", \"y\"] },"
+                        " \"B\": { \"at\": [2, 0], \"support\": [\"x\", \"y\"] },"
+                        " \"D\": { \"at\": [-2, 0], \"support\": [\"x\", \"y\"] }, \"C\": { \"at\": [0, 2] } },"
+                        "\"groups\": { \"p\": { \"material\": \"S\", %s }, \"s\": { \"material\": \"S\", %s } },"
+                        "\"members\": { \"post\": { \"from\": \"A\", \"to\": \"C\", \"group\": \"p\" },"
+                        " \"l\": { \"from\": \"D\", \"to\": \"C\", \"group\": \"s\" },"
+                        " \"r\": { \"from\": \"B\", \"to\": \"C\", \"group\": \"s\" } },"
+                        "\"cases\": { \"d\": { \"joints\": { \"C\": [0, %g] }, \"members\": { \"post\": { \"lack_of_fit\": \"%g mm\" } } } },"
+                        "\"combinations\": { \"c\": { \"for\": \"allowable\", \"sum\": { \"d\": 1 } } },"
+                        "\"limits\": { \"buckling\": { \"by\": \"Euler\", \"safety\": %g } } }",
+                    post, ties, lift, lift > 0 ? 0.8 : 0.0, safety);
+    return sct_text_take(&t, NULL);
+}
+
+/* At middle sizes the post is compressed and could never keep 150; at the optimum it is a tie. */
+START_TEST(a_member_that_is_a_tie_at_the_optimum_need_not_keep_the_limit_of_struts)
+{
+    char *text = raked("\"area\": { \"at_least\": 20, \"at_most\": 2000 }, \"second_moment\": { \"c\": 0.04 }, \"slenderness\": { \"compression\": 150 }",
+                       "\"area\": { \"at_least\": 50, \"at_most\": 5000 }, \"second_moment\": { \"c\": 5 }", 20, 1.92);
+    sct_model *model = parse(text);
+    sct_result *r = size_with(model, NULL);
+    ck_assert_int_eq(r->outcome, SCT_OPTIMUM);
+    ck_assert(r->kept);
+    ck_assert(!r->members[0].compressed);
+    ck_assert_double_lt(r->mass, 3.6);
+    sct_result_free(r);
+    sct_model_free(model);
+    free(text);
+}
+END_TEST
+
+/* The price of a held column: a longer life by 1 % of length is compared with sizing again. */
+START_TEST(the_price_of_a_held_column_is_what_a_shorter_one_saves)
+{
+    const double factor[3] = {1.0, 0.9995, 1.0005};
+    sct_result *r[3];
+    sct_model *model[3];
+    char *text[3], post[200];
+    for (int k = 0; k < 3; k++) {
+        snprintf(post, sizeof post, "\"area\": 300, \"second_moment\": { \"c\": 0.5 }, \"length_factor\": { \"in_plane\": %.4f, \"out_of_plane\": 0.5 }", factor[k]);
+        text[k] = raked(post, "\"area\": { \"at_least\": 10, \"at_most\": 5000 }, \"second_moment\": { \"c\": 5 }", -20, 1.92);
+        model[k] = parse(text[k]);
+        r[k] = size_with(model[k], NULL);
+    }
+    ck_assert_int_eq(r[0]->n_prices, 1);
+    ck_assert_int_eq(r[0]->prices[0].kind, SCT_CHECK_BUCKLING_IN);
+    const double saved = r[2]->mass - r[1]->mass; /* for 0.1 % of the length */
+    ck_assert_double_gt(saved, 0.0);
+    ck_assert_double_eq_tol(0.1 * r[0]->prices[0].saving, saved, 1e-3 * saved);
+    for (int k = 0; k < 3; k++) {
+        sct_result_free(r[k]);
+        sct_model_free(model[k]);
+        free(text[k]);
+    }
+}
+END_TEST
+
+/* Prices of stress and of a free column: determinate, so that the next sizing tells exactly what a relief saves. */
+START_TEST(the_price_of_stress_is_what_a_higher_stress_saves)
+{
+    char *text = triangle(AREA, AREA, NO_BUCKLING, NULL);
+    sct_model *model = parse(text);
+    sct_result *r = size_with(model, NULL);
+    ck_assert_int_eq(r->n_prices, 2);
+    /* mass ~ 1/f: the multiplier of each group is its mass */
+    for (int k = 0; k < 2; k++) ck_close(r->prices[k].multiplier, r->groups[r->prices[k].group].mass, 1e-6);
+    ck_assert_double_ge(r->prices[0].saving, r->prices[1].saving);
+    sct_result_free(r);
+    sct_model_free(model);
+    free(text);
+}
+END_TEST
+
+START_TEST(a_refusal_names_the_limit_that_applies)
+{
+    const char *group = "\"family\": \"CHS\", \"sections\": [\"CHS 21.3x2.6\"], \"slenderness\": { \"any\": 350, \"compression\": 180 }";
+    char *text = triangle(group, AREA, NO_BUCKLING, NULL);
+    sct_model *model = parse(text);
+    sct_result *r = size_with(model, NULL);
+    ck_assert_int_eq(r->outcome, SCT_NO_FEASIBLE_DESIGN);
+    ck_assert_ptr_nonnull(strstr(r->verdict, "slenderness limit 350"));
+    ck_assert_ptr_nonnull(strstr(r->verdict, "the best reaches 1198")); /* 8000 mm / sqrt(6805.7/152.7) mm, by hand */
+    sct_result_free(r);
+    sct_model_free(model);
+    free(text);
+}
+END_TEST
+
+START_TEST(a_number_that_is_none_is_the_worst_and_is_not_kept)
+{
+    ck_assert(isnan(sct_worse(NAN, 0.5)));
+    ck_assert(isnan(sct_worse(0.5, NAN)));
+    ck_assert(isnan(sct_worse(sct_worse(0.0, NAN), 0.5)));
+    ck_assert(sct_worse(0.4, 0.5) == 0.5 && sct_worse(0.5, 0.4) == 0.5);
+    ck_assert(!sct_keeps(NAN) && sct_keeps(1.0 + 1e-12) && !sct_keeps(1.0 + 1e-8));
+}
+END_TEST
+
+START_TEST(doubts_are_kept_in_the_result)
+{
+    char *text = triangle("\"area\": 300", "\"area\": 400", "\"buckling\": { \"by\": \"none\" }, \"deflection\": [ { \"joints\": [\"C\"], \"direction\": \"y\", \"at_most\": 400 } ]",
+                          "\"Q\": { \"joints\": { \"C\": [0, -6] }, \"settlements\": { \"B\": [0, -200] } }");
+    sct_issues *issues = sct_issues_new();
+    sct_model *model = NULL;
+    sct_result *r = NULL;
+    ck_assert_int_eq(sct_model_parse("t", text, strlen(text), &model, issues), SCT_OK);
+    ck_assert_int_eq(sct_check(model, NULL, &r, issues), SCT_OK);
+    ck_assert_int_eq(r->n_warnings, 3);
+    ck_assert_ptr_nonnull(strstr(r->warnings[0], "buckling is not checked"));
+    ck_assert_ptr_nonnull(strstr(r->warnings[1], "supports settle"));
+    ck_assert_ptr_nonnull(strstr(r->warnings[2], "linear theory"));
+    static const sct_format FORMATS[] = {SCT_SUMMARY, SCT_RESULT_JSON, SCT_SCHEDULE_CSV};
+    for (int k = 0; k < 3; k++) {
+        char *words = NULL;
+        ck_assert_int_eq(sct_write(r, FORMATS[k], NULL, &words, NULL), SCT_OK);
+        ck_assert_ptr_nonnull(strstr(words, "buckling is not checked"));
+        free(words);
+    }
+    sct_result_free(r);
+    sct_model_free(model);
+    sct_issues_free(issues);
+    free(text);
+}
+END_TEST
+
 int main(void)
 {
     Suite *s = suite_create("sizing");
@@ -522,6 +657,12 @@ int main(void)
     tcase_add_test(c, ladders_and_free_areas_mix);
     tcase_add_test(c, no_lighter_pair_of_sections_keeps_the_limits);
     tcase_add_test(c, the_plain_method_reaches_the_same_optimum_of_a_small_problem);
+    tcase_add_test(c, a_member_that_is_a_tie_at_the_optimum_need_not_keep_the_limit_of_struts);
+    tcase_add_test(c, the_price_of_a_held_column_is_what_a_shorter_one_saves);
+    tcase_add_test(c, the_price_of_stress_is_what_a_higher_stress_saves);
+    tcase_add_test(c, a_refusal_names_the_limit_that_applies);
+    tcase_add_test(c, a_number_that_is_none_is_the_worst_and_is_not_kept);
+    tcase_add_test(c, doubts_are_kept_in_the_result);
     suite_add_tcase(s, c);
     return run_suite(s);
 }

@@ -13,8 +13,8 @@ enum {
     EXIT_NO_PROOF = 5,      /* the search ended before it was done */
     EXIT_OUTPUT = 6,        /* an output was not written */
     EXIT_RESOURCES = 7,     /* out of memory, or above a stated limit */
-    EXIT_SELF_CHECK = 70,   /* an internal check failed */
-    EXIT_INTERRUPT = 130, EXIT_TERMINATE = 143
+    EXIT_SELF_CHECK = 70    /* an internal check failed */
+    /* 128 + signal: interrupted */
 };
 
 int cli_exit_of_status(sct_status status);

@@ -23,7 +23,7 @@ static void on_signal(int signal_number)
 
 static void catch_signals(void)
 {
-    struct sigaction action = {.sa_handler = on_signal};
+    struct sigaction action = {.sa_handler = on_signal, .sa_flags = SA_RESTART};
     sigemptyset(&action.sa_mask);
     sigaction(SIGINT, &action, NULL);
     sigaction(SIGTERM, &action, NULL);

@@ -160,16 +160,6 @@ const sct_node *sct_node_find(const sct_node *node, const char *key)
     return NULL;
 }
 
-sct_span sct_node_span(const sct_node *node)
-{
-    return (sct_span){node->at->begin, node->at->end};
-}
-
-sct_span sct_node_key_span(const sct_node *node)
-{
-    return (sct_span){node->at->key_begin, node->at->key_end};
-}
-
 void sct_node_pointer(const sct_node *node, sct_text *out)
 {
     const sct_node *path[SCT_MOST_DEPTH + 1];

@@ -58,11 +58,6 @@ int sct_node_count(const sct_node *node); /* entries of an array or object; 0 fo
 /** The entry of an object with exactly this key; NULL: none. Looks at one entry after the other. */
 const sct_node *sct_node_find(const sct_node *node, const char *key);
 
-/* The bytes of the text: a value (a string with its quotes, an array with its brackets), and its key with quotes (an
- * empty span where it has none). */
-sct_span sct_node_span(const sct_node *node);
-sct_span sct_node_key_span(const sct_node *node);
-
 /** Appends the JSON pointer (RFC 6901), "" for the root. */
 void sct_node_pointer(const sct_node *node, sct_text *out);
 /** The place of the value, or of its key (of the value where it has none); `pointer` is left NULL: set it where it is

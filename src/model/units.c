@@ -106,11 +106,6 @@ const sct_unit *sct_unit_of(sct_quantity quantity, int i)
     return NULL;
 }
 
-const char *sct_quantity_words(sct_quantity quantity)
-{
-    return WORDS[quantity];
-}
-
 const char *sct_quantity_example(sct_quantity quantity)
 {
     return EXAMPLES[quantity];

@@ -37,8 +37,6 @@ static inline double sct_unit_from_SI(const sct_unit *unit, double value)
 const sct_unit *sct_unit_find(const char *name);
 /** The i-th unit of a quantity, the SI unit first; NULL behind the last. */
 const sct_unit *sct_unit_of(sct_quantity quantity, int i);
-/** "a length", "a force", ...: for messages. */
-const char *sct_quantity_words(sct_quantity quantity);
 /** An example such as "3 m". */
 const char *sct_quantity_example(sct_quantity quantity);
 

@@ -266,10 +266,12 @@ static void add_grand_total(sct_text *out, const sct_result *r)
     add_record(out, &rec);
 }
 
-static void add_caution(sct_text *out)
+/* A record of words: they stand in the second column. */
+static void add_words(sct_text *out, const char *kind, const char *words)
 {
-    sct_text_add(out, "caution,");
-    add_text(out, SCT_CAUTION);
+    sct_text_add(out, kind);
+    sct_text_add(out, ",");
+    add_text(out, words);
     for (int i = 2; i < N_COLUMNS; i++) sct_text_add(out, ",");
     sct_text_add(out, "\r\n");
 }
@@ -280,6 +282,7 @@ sct_status sct_schedule_csv(const sct_result *result, sct_text *out)
     add_members(out, result);
     const bool done = add_totals(out, result, false) && add_totals(out, result, true);
     add_grand_total(out, result);
-    add_caution(out);
+    for (int i = 0; i < result->n_warnings; i++) add_words(out, "warning", result->warnings[i]);
+    add_words(out, "caution", SCT_CAUTION);
     return !done || out->failed ? SCT_NO_MEMORY : SCT_OK;
 }

@@ -72,7 +72,7 @@ static void verdict(sheet *s, double utilisation)
 {
     sct_text_add(s->out, " = ");
     sct_text_utilisation(s->out, utilisation);
-    sct_text_add(s->out, utilisation <= 1.0 ? "  passes\n" : "  fails\n");
+    sct_text_add(s->out, utilisation <= 1.0 + SCT_KEPT_TO ? "  passes\n" : "  fails\n");
 }
 
 static void head(sheet *s)
@@ -81,7 +81,7 @@ static void head(sheet *s)
     sct_text_plain(s->out, s->m->name, 64);
     sct_text_add(s->out, ", group ");
     sct_text_plain(s->out, s->g->name, 64);
-    sct_text_add(s->out, s->g->section != NULL ? ": " : ": free area");
+    sct_text_add(s->out, s->g->section != NULL ? ": " : ": area");
     if (s->g->section != NULL) sct_text_plain(s->out, s->g->section, 64);
     sct_text_add(s->out, ", ");
     sct_text_plain(s->out, s->g->material, 64);

@@ -69,7 +69,7 @@ static void check(sct_json *w, const sct_bar_check *c, const char *value, const 
     sct_json_number(w, value, c->value);
     sct_json_number(w, limit, c->limit);
     sct_json_number(w, "utilisation", c->utilisation);
-    sct_json_boolean(w, "passes", c->utilisation <= 1.0);
+    sct_json_boolean(w, "passes", c->utilisation <= 1.0 + SCT_KEPT_TO);
 }
 
 static void combination(sct_json *w, const subject *s, int c)
@@ -118,7 +118,7 @@ static void governing(sct_json *w, const subject *s)
     sct_json_string(w, "check", sct_check_text(s->m->check));
     sct_json_string(w, "combination", s->m->combination >= 0 ? s->r->combinations[s->m->combination] : NULL);
     sct_json_number(w, "utilisation", s->m->utilisation);
-    sct_json_boolean(w, "passes", s->m->utilisation <= 1.0);
+    sct_json_boolean(w, "passes", s->m->utilisation <= 1.0 + SCT_KEPT_TO);
     sct_json_end(w, "}");
 }
 

@@ -97,7 +97,7 @@ static void tell_deflection(const sct_result *r, int d, sct_text *out)
 void sct_finding_details(const sct_result *r, sct_text *out)
 {
     static const char *const ENDINGS[SCT_OUTCOME_COUNT] = {
-        [SCT_NO_FEASIBLE_DESIGN] = " No design was found that keeps every limit; this one comes nearest.",
+        [SCT_NO_FEASIBLE_DESIGN] = " No design was found that keeps every limit.",
         [SCT_STALLED] = " The search ended before its tolerance.",
         [SCT_NOT_OPTIMISED] = " Start design, not optimised.",
         [SCT_STOPPED] = " The search was interrupted.",
@@ -111,6 +111,8 @@ void sct_finding_details(const sct_result *r, sct_text *out)
     else if (d >= 0)
         tell_deflection(r, d, out);
     if (r->outcome < SCT_OUTCOME_COUNT && ENDINGS[r->outcome] != NULL) sct_text_add(out, ENDINGS[r->outcome]);
+    if (r->n_warnings > 0)
+        sct_text_format(out, " %d warning%s: see the schedule.", r->n_warnings, r->n_warnings == 1 ? "" : "s");
 }
 
 const char *sct_finding_task(const sct_result *r)

@@ -64,6 +64,36 @@ static void add_combinations(sct_json *w, const sct_result *r)
         sct_text_json(w->out, r->combinations[c]);
     }
     sct_json_end(w, "]");
+    sct_json_key(w, "combinations_are_for");
+    sct_json_begin(w, "[");
+    for (int c = 0; c < r->n_combinations; c++) {
+        sct_json_entry(w);
+        sct_text_json(w->out, r->is_for_strength[c] ? "allowable" : "service");
+    }
+    sct_json_end(w, "]");
+}
+
+static void add_warnings(sct_json *w, const sct_result *r)
+{
+    sct_json_key(w, "warnings");
+    sct_json_begin(w, "[");
+    for (int i = 0; i < r->n_warnings; i++) {
+        sct_json_entry(w);
+        sct_text_json(w->out, r->warnings[i]);
+    }
+    sct_json_end(w, "]");
+}
+
+static void add_settings(sct_json *w, const sct_result *r)
+{
+    sct_json_key(w, "settings");
+    sct_json_begin(w, "{");
+    sct_json_whole(w, "starts", r->settings.starts);
+    sct_json_whole(w, "seed", (int)r->settings.seed);
+    sct_json_whole(w, "iterations", r->settings.iterations);
+    sct_json_number(w, "tolerance", r->settings.tolerance);
+    sct_json_boolean(w, "plain", r->settings.plain);
+    sct_json_end(w, "}");
 }
 
 static void add_groups(sct_json *w, const sct_result *r)
@@ -212,6 +242,7 @@ static void add_prices(sct_json *w, const sct_result *r)
             sct_text_add(w->out, "null");
         sct_json_number(w, "multiplier_kg", price->multiplier);
         sct_json_number(w, "kg_per_SI_unit", price->per_unit);
+        sct_json_number(w, "saving_kg", price->saving);
         sct_json_words(w, "words", price->words);
         sct_json_end(w, "}");
     }
@@ -230,7 +261,9 @@ sct_status sct_result_json(const sct_result *result, sct_text *out)
     sct_json_string(&w, "outcome", sct_outcome_text(result->outcome));
     sct_json_boolean(&w, "kept", result->kept);
     sct_json_words(&w, "verdict", result->verdict);
+    add_warnings(&w, result);
     sct_json_whole(&w, "dimensions", result->dimensions);
+    add_settings(&w, result);
     add_evidence(&w, result);
     add_starts(&w, result);
     add_prices(&w, result);

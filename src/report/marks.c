@@ -235,24 +235,33 @@ static bool find_leader(sct_scene *scene, int member, double half, leader *best)
     return best->cost < INFINITY;
 }
 
+static void lead(sct_scene *scene, int member)
+{
+    sct_stick *s = &scene->sticks[member];
+    mark m;
+    leader l;
+    if (!s->is_labelled || !(s->length > 1)) return;
+    write_mark(scene, member, &m);
+    if (!find_leader(scene, member, m.half, &l)) return;
+    sct_labels_block(scene->labels, l.words, SCT_SOLID, -1);
+    sct_labels_block(scene->labels, l.line, SCT_SOLID, -1);
+    sct_sheet_line(&scene->sheet, l.from, l.to, ROLE_PAGE, LEADER_CASING);
+    sct_sheet_line(&scene->sheet, l.from, l.to, ROLE_SOFT, HAIR);
+    sct_sheet_circle(&scene->sheet, l.from, LEADER_DOT, ROLE_SOFT, ROLE_PAGE, HAIR);
+    const double x = l.to.x + (l.to_right ? LEADER_GAP : -LEADER_GAP);
+    sct_sheet_runs(&scene->sheet, (sct_point){x, l.to.y + BASELINE * LABEL}, LABEL,
+                   l.to_right ? ANCHOR_START : ANCHOR_END, 0, m.runs, 2);
+    s->is_labelled = false;
+}
+
 void sct_marks_leaders(sct_scene *scene)
 {
-    for (int i = 0; i < scene->result->n_members; i++) {
-        if (!scene->sticks[i].is_labelled || !(scene->sticks[i].length > 1)) continue;
-        mark m;
-        leader l;
-        write_mark(scene, i, &m);
-        if (!find_leader(scene, i, m.half, &l)) continue;
-        sct_labels_block(scene->labels, l.words, SCT_SOLID, -1);
-        sct_labels_block(scene->labels, l.line, SCT_SOLID, -1);
-        sct_sheet_line(&scene->sheet, l.from, l.to, ROLE_PAGE, LEADER_CASING);
-        sct_sheet_line(&scene->sheet, l.from, l.to, ROLE_SOFT, HAIR);
-        sct_sheet_circle(&scene->sheet, l.from, LEADER_DOT, ROLE_SOFT, ROLE_PAGE, HAIR);
-        const double x = l.to.x + (l.to_right ? LEADER_GAP : -LEADER_GAP);
-        sct_sheet_runs(&scene->sheet, (sct_point){x, l.to.y + BASELINE * LABEL}, LABEL,
-                       l.to_right ? ANCHOR_START : ANCHOR_END, 0, m.runs, 2);
-        scene->sticks[i].is_labelled = false;
-    }
+    const sct_result *r = scene->result;
+    int worst = 0;
+    for (int i = 0; i < r->n_members; i++)
+        if (r->members[i].utilisation > r->members[worst].utilisation) worst = i;
+    lead(scene, worst); /* the heading names it: it takes its place first */
+    for (int i = 0; i < r->n_members; i++) lead(scene, i);
 }
 
 void sct_marks_left(const sct_scene *scene, sct_text *out)

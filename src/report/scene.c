@@ -281,6 +281,13 @@ static void choose_named(sct_scene *scene)
         if (scene->detail == DETAIL_FULL || r->joints[j].n_held > 0)
             scene->is_named[j] = scene->detail == DETAIL_FULL || n++ < NAMES_MOST;
     }
+    double most = 0;
+    for (int i = 0; i < r->n_deflections; i++) { /* the heading may name it */
+        if (!(r->deflections[i].utilisation > most)) continue;
+        most = r->deflections[i].utilisation;
+        n = r->deflections[i].joint;
+    }
+    if (most > 0) scene->is_named[n] = true;
     if (scene->detail == DETAIL_SELECTIVE && r->n_joints > 0)
         scene->is_named[top] = scene->is_named[left] = scene->is_named[right] = true;
 }

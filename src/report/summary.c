@@ -276,18 +276,12 @@ static void add_deflections(const page *p)
     say_left_out(p, p->r->n_deflections - n, "result.json, none used more than these");
 }
 
-static double price_multiplier(const sct_result *r, int i)
-{
-    return r->prices[i].multiplier;
-}
-
 static void add_prices(const page *p)
 {
-    int dearest[MOST_PRICES];
-    const int n = largest(p->r, price_multiplier, p->r->n_prices, MOST_PRICES, dearest);
+    const int n = p->r->n_prices < MOST_PRICES ? p->r->n_prices : MOST_PRICES; /* the dearest come first */
     if (n == 0) return;
     heading(p, "What the limits cost (at the continuous sizes)");
-    for (int i = 0; i < n; i++) wrapped_plain(p->out, p->r->prices[dearest[i]].words, 2);
+    for (int i = 0; i < n; i++) wrapped_plain(p->out, p->r->prices[i].words, 2);
     say_left_out(p, p->r->n_prices - n, "result.json");
 }
 
@@ -335,9 +329,13 @@ static void add_ends(const page *p, sct_text *line)
         listed++;
     }
     if (converged > told) sct_text_format(line, "; %d heavier", converged - told);
-    if (r->n_starts > converged) {
-        sct_text_format(line, "%s%d ended without convergence", converged > 0 ? "; " : "", r->n_starts - converged);
-    }
+    int impossible = 0;
+    for (int i = 0; i < r->n_starts; i++) impossible += r->starts[i].outcome == SCT_NO_FEASIBLE_DESIGN;
+    if (impossible > 0)
+        sct_text_format(line, "%s%d found no sizes that keep every limit", converged > 0 ? "; " : "", impossible);
+    if (r->n_starts > converged + impossible)
+        sct_text_format(line, "%s%d ended without convergence", converged + impossible > 0 ? "; " : "",
+                        r->n_starts - converged - impossible);
     sct_text_format(line, ". %d analyses in all.", r->analyses);
 }
 
@@ -346,7 +344,9 @@ static void add_evidence(const page *p, sct_text *line)
     const sct_result *r = p->r;
     if (isfinite(r->kkt)) {
         sct_text_format(line, " Best: KKT residual %.1g, ", r->kkt);
-        if (r->violation > 0)
+        if (r->violation > r->settings.tolerance)
+            sct_text_format(line, "limits exceeded by up to %.3g %%.", 100 * (exp(r->violation) - 1));
+        else if (r->violation > 0)
             sct_text_format(line, "limits met to %.1g.", r->violation);
         else
             sct_text_add(line, "every limit met.");
@@ -368,8 +368,10 @@ static void add_search(const page *p)
         add_ends(p, &line);
         add_evidence(p, &line);
     } else {
-        sct_text_format(&line, "The sizes given were checked; no search was made. %d %s.", r->analyses,
-                        r->analyses == 1 ? "analysis" : "analyses");
+        sct_text_format(&line, "%s %d %s.",
+                        r->outcome == SCT_CHECKED ? "The sizes given were checked; no search was made."
+                                                  : "No search was made: the largest sizes are shown.",
+                        r->analyses, r->analyses == 1 ? "analysis" : "analyses");
     }
     if (line.failed)
         p->out->failed = true;
@@ -449,6 +451,13 @@ static void add_accuracy(const page *p)
     sct_text_free(&line);
 }
 
+static void add_warnings(const page *p)
+{
+    if (p->r->n_warnings == 0) return;
+    heading(p, "Warnings");
+    for (int i = 0; i < p->r->n_warnings; i++) wrapped_plain(p->out, p->r->warnings[i], 2);
+}
+
 sct_status sct_summary(const sct_result *result, bool colour, sct_text *out)
 {
     const page p = {result, colour, result->us_customary, out};
@@ -459,6 +468,7 @@ sct_status sct_summary(const sct_result *result, bool colour, sct_text *out)
     add_search(&p);
     add_reactions(&p);
     add_accuracy(&p);
+    add_warnings(&p);
     sct_text_add(out, "\n");
     sct_text_ink(out, SCT_CAUTION, SCT_INK_HEAD, colour);
     sct_text_add(out, "\n");

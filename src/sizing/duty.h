@@ -5,6 +5,8 @@
 #ifndef SCT_SIZING_DUTY_H
 #define SCT_SIZING_DUTY_H
 
+#include <math.h>
+
 #include "analysis/solver.h"
 #include "rules/allowable.h"
 
@@ -18,6 +20,7 @@ typedef struct sct_design {
 /* One deflection limit at one joint in one combination. */
 typedef struct sct_deflection_row {
     int limit, joint, combination;
+    int result; /* place of this limit at this joint when all are counted through, whatever the combination */
 } sct_deflection_row;
 
 typedef struct sct_duty {
@@ -40,7 +43,13 @@ typedef struct sct_duty {
 /** The larger of two utilisations; NAN counts as the largest, so that a number that is none never reads as a pass. */
 static inline double sct_worse(double a, double b)
 {
-    return b <= a ? a : b;
+    return isnan(a) || b <= a ? a : b;
+}
+
+/** Is a limit kept at this utilisation? NAN: no. */
+static inline bool sct_keeps(double utilisation)
+{
+    return utilisation <= 1.0 + SCT_KEPT_TO;
 }
 
 /** Duty, solver and work arrays for a structure. *status: SCT_OK, SCT_NO_MEMORY, SCT_TOO_LARGE; SCT_SELF_CHECK: a rule

@@ -7,6 +7,7 @@
 
 #include "analysis/sensitivity.h"
 #include "base/number.h"
+#include "base/text.h"
 
 static const double INACTIVE = -9.0;      /* ln: a limit this far away is left alone, with zero gradient */
 
@@ -28,7 +29,7 @@ struct sct_problem {
     /* at the latest value call */
     bool have_value;
     double *x, f;
-    double *A, *z;                /* n_groups, n */
+    double *A;                    /* n_groups */
     sct_need *need;               /* n_bar_rows */
     double *g;                    /* all constraints, log form */
     bool have_du;
@@ -47,6 +48,12 @@ static double force(const sct_problem *P, int j)
     return P->duty->N[(size_t)combination_of(P, j) * (size_t)P->st->n_bars + (size_t)bar_of(P, j)];
 }
 
+/* d ln sigma_cr / d ln lambda */
+static double column_slope(const sct_bar_rule *rule, double lambda)
+{
+    return sct_column_strength(rule->buckling, rule->E, rule->yield, lambda).s1;
+}
+
 /* A group of given size: utilisation with true properties, in which the force enters as it is. */
 static sct_need fixed_need(const sct_problem *P, int bar, double N)
 {
@@ -59,6 +66,7 @@ static sct_need fixed_need(const sct_problem *P, int bar, double N)
         if (checks[k].utilisation > most) {
             most = checks[k].utilisation;
             need.kind = checks[k].kind;
+            need.sL = checks[k].lambda > 0.0 ? -column_slope(&P->duty->rules[bar], checks[k].lambda) : 0.0;
         }
     if (most > 0.0) need.s = log(most) + log(P->fixed.A[g]);
     return need;
@@ -88,6 +96,7 @@ static sct_status judge(sct_problem *P, const double x[])
     for (int j = 0; j < P->nlp.m; j++) {
         const double g = j < P->n_bar_rows ? bar_constraint(P, j)
                                            : log(sct_duty_row_utilisation(P->duty, j - P->n_bar_rows));
+        if (isnan(g)) return SCT_NOT_ACCURATE;
         P->g[j] = fmax(g, INACTIVE);
     }
     memcpy(P->x, x, (size_t)P->n * sizeof *x);
@@ -210,31 +219,32 @@ static void objective(void *user, const double x[], const double d[], double df[
 
 /* ---- set-up --------------------------------------------------------------------------------------------------- */
 
-/* Radius of gyration that every member of a group needs about one axis; *bar is the member that asks for most. */
-static double radius_needed(const sct_problem *P, int group, int axis, const bool compressed[], int *bar)
+/* The member of a group that asks for the largest radius of gyration about one axis. */
+typedef struct asker {
+    double i, limit; /* radius asked for, slenderness limit behind it; i = 0: no limit applies */
+    int bar;
+} asker;
+
+static asker radius_asked(const sct_problem *P, int group, int axis, const bool compressed[])
 {
-    double most = 0.0;
+    asker most = {0.0, INFINITY, -1};
     for (int b = 0; b < P->st->n_bars; b++) {
         const sct_bar_rule *rule = &P->duty->rules[b];
         if (P->st->bars[b].group != group) continue;
         const double limit =
             compressed[b] ? fmin(rule->slenderness_any, rule->slenderness_compression) : rule->slenderness_any;
-        if (rule->Lcr[axis] / limit > most) {
-            most = rule->Lcr[axis] / limit;
-            *bar = b;
-        }
+        if (rule->Lcr[axis] / limit > most.i) most = (asker){rule->Lcr[axis] / limit, limit, b};
     }
     return most;
 }
 
-static sct_status refuse_slenderness(const sct_problem *P, int group, int bar, double best, sct_fault why)
+static sct_status refuse_slenderness(const sct_problem *P, int group, asker who, double best, sct_fault why)
 {
-    const sct_bar_rule *rule = &P->duty->rules[bar];
     sct_number_format(why, SCT_FAULT_ROOM,
-                      "No size of group \"%.60s\" keeps the slenderness limit %.0f of member \"%.60s\": the best "
-                      "reaches %.1f; a stiffer section or a shorter effective length would help.",
-                      P->st->model->groups[group].name, fmin(rule->slenderness_any, rule->slenderness_compression),
-                      P->st->model->members[bar].name, best);
+                      "No size of group \"%s\" keeps the slenderness limit %.0f of member \"%s\": the best reaches %.1f; "
+                      "a stiffer section or a shorter effective length would help.",
+                      sct_show(P->st->model->groups[group].name).text, who.limit,
+                      sct_show(P->st->model->members[who.bar].name).text, best);
     return SCT_INFEASIBLE;
 }
 
@@ -245,15 +255,13 @@ static sct_status free_bounds(sct_problem *P, int v, const bool compressed[], sc
     P->lower[v] = log(g->A_min);
     P->upper[v] = log(g->A_max);
     for (int axis = 0; axis < 2; axis++) {
-        int bar = -1;
-        const double i = radius_needed(P, group, axis, compressed, &bar);
-        if (!(i > 0.0)) continue;
-        const double s = log(i * i / g->c[axis]); /* i^2 = c A */
-        if (s > P->upper[v])
-            return refuse_slenderness(P, group, bar, P->duty->rules[bar].Lcr[axis] / sqrt(g->c[axis] * g->A_max), why);
+        const asker who = radius_asked(P, group, axis, compressed);
+        if (!(who.i > 0.0)) continue;
+        const double s = log(who.i * who.i / g->c[axis]); /* i^2 = c A */
+        if (s > P->upper[v]) return refuse_slenderness(P, group, who, who.limit * who.i / sqrt(g->c[axis] * g->A_max), why);
         if (s <= P->lower[v]) continue;
         P->lower[v] = s;
-        P->source[v] = (sct_bound_source){SCT_CHECK_SLENDERNESS, bar};
+        P->source[v] = (sct_bound_source){SCT_CHECK_SLENDERNESS, who.bar};
     }
     for (int axis = 0; axis < 2; axis++) {
         const sct_status status = sct_envelope_relation(P->arena, g->c[axis], &P->envelope[group][axis]);
@@ -268,28 +276,26 @@ static sct_status ladder_bounds(sct_problem *P, int v, const bool compressed[], 
     const int group = P->st->group_of_var[v];
     const sct_group *g = &P->st->model->groups[group];
     const sct_family *family = &P->st->model->families[g->family];
-    int *kept = sct_arena_array(P->arena, (size_t)g->n_ladder, sizeof *kept), n = 0, bar[2] = {-1, -1}, worse = 0;
+    int *kept = sct_arena_array(P->arena, (size_t)g->n_ladder, sizeof *kept), n = 0, lightest = 0;
     if (kept == NULL) return SCT_NO_MEMORY;
-    double need[2], best = INFINITY;
-    for (int axis = 0; axis < 2; axis++) need[axis] = radius_needed(P, group, axis, compressed, &bar[axis]);
+    const asker who[2] = {radius_asked(P, group, 0, compressed), radius_asked(P, group, 1, compressed)};
+    double best = INFINITY; /* needed / present radius of the stiffest section, about its worse axis */
+    asker best_who = who[0];
     for (int k = 0; k < g->n_ladder; k++) {
         const sct_section *x = &family->sections[g->ladder[k]];
-        const double over[2] = {need[0] / sqrt(x->I[0] / x->A), need[1] / sqrt(x->I[1] / x->A)};
-        if (over[0] <= 1.0 && over[1] <= 1.0) kept[n++] = g->ladder[k];
+        const double over[2] = {who[0].i / sqrt(x->I[0] / x->A), who[1].i / sqrt(x->I[1] / x->A)};
         const int axis = over[1] > over[0];
+        if (over[axis] <= 1.0) kept[n++] = g->ladder[k];
+        else if (n == 0) lightest = axis; /* the axis that dropped the section below the lightest kept one */
         if (over[axis] < best) {
             best = over[axis];
-            worse = axis;
+            best_who = who[axis];
         }
     }
-    if (n == 0) {
-        const sct_bar_rule *rule = &P->duty->rules[bar[worse]];
-        return refuse_slenderness(P, group, bar[worse],
-                                  best * fmin(rule->slenderness_any, rule->slenderness_compression), why);
-    }
+    if (n == 0) return refuse_slenderness(P, group, best_who, best * best_who.limit, why);
     P->lower[v] = log(family->sections[kept[0]].A);
     P->upper[v] = log(family->sections[kept[n - 1]].A);
-    if (kept[0] != g->ladder[0]) P->source[v] = (sct_bound_source){SCT_CHECK_SLENDERNESS, bar[0] >= 0 ? bar[0] : bar[1]};
+    if (kept[0] != g->ladder[0]) P->source[v] = (sct_bound_source){SCT_CHECK_SLENDERNESS, who[lightest].bar};
     for (int axis = 0; axis < 2; axis++) {
         const sct_status status = sct_envelope_ladder(P->arena, family, n, kept, axis, &P->envelope[group][axis]);
         if (status != SCT_OK) return status;
@@ -341,7 +347,7 @@ static sct_status allocate(sct_problem *P)
 #define ARRAY(what, count) ((P->what = sct_arena_array(a, (count), sizeof *P->what)) != NULL)
     const bool ok = ARRAY(is_fixed, n_groups) && ARRAY(envelope, n_groups) && ARRAY(lower, n) && ARRAY(upper, n) &&
                     ARRAY(source, n) && ARRAY(x_lower, n) && ARRAY(x_upper, n) && ARRAY(ref, n) && ARRAY(cluster, m) &&
-                    ARRAY(x, n) && ARRAY(A, n_groups) && ARRAY(z, n) && ARRAY(need, (size_t)P->n_bar_rows) && ARRAY(g, m) &&
+                    ARRAY(x, n) && ARRAY(A, n_groups) && ARRAY(need, (size_t)P->n_bar_rows) && ARRAY(g, m) &&
                     ARRAY(du, n_cases * n * n_dof) && ARRAY(dN, n_cases * n) && ARRAY(row, n) &&
                     ARRAY(wN, n_cases * n_bars) && ARRAY(wu, n_cases * n_dof) && ARRAY(work, n_cases * n_dof);
 #undef ARRAY
@@ -415,6 +421,12 @@ void sct_problem_point(const sct_problem *P, const double A[], double x[])
         const double s = fmin(fmax(log(A[P->st->group_of_var[v]]), P->lower[v]), P->upper[v]);
         x[v] = P->plain ? exp(s) / P->ref[v] : s;
     }
+}
+
+double sct_problem_radius(const sct_problem *P, int group, int axis, double A)
+{
+    const sct_envelope *e = &P->envelope[group][axis];
+    return P->is_fixed[group] ? P->fixed.i[group][axis] : e->n > 0 ? exp(sct_envelope_at(e, log(A)).h) : (double)NAN;
 }
 
 void sct_problem_bounds(const sct_problem *P, double lower[], double upper[], sct_bound_source source[])

@@ -18,7 +18,7 @@
 
 typedef struct sct_problem sct_problem;
 
-enum { SCT_FAULT_ROOM = 400 };
+enum { SCT_FAULT_ROOM = 800 };
 typedef char sct_fault[SCT_FAULT_ROOM]; /* why no design can keep a limit, in one sentence */
 
 /* Which limit sets the lower end of a variable. */
@@ -45,6 +45,9 @@ double sct_problem_mass_unit(const sct_problem *problem);
 /** Areas of all groups (n_groups) at x, and back. */
 void sct_problem_areas(const sct_problem *problem, const double x[], double A[]);
 void sct_problem_point(const sct_problem *problem, const double A[], double x[]);
+
+/** Radius of gyration of a group's envelope at area A [m2]; NAN where none is stated. */
+double sct_problem_radius(const sct_problem *problem, int group, int axis, double A);
 
 /** ln A at the ends of each variable, whatever the form of x. */
 void sct_problem_bounds(const sct_problem *problem, double lower[], double upper[], sct_bound_source source[]);

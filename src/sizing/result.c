@@ -43,7 +43,7 @@ static sct_status allocate(sct_result *r, const sct_duty *duty)
     const size_t n_comb = (size_t)r->n_combinations, n_joints = (size_t)r->n_joints, n_members = (size_t)r->n_members;
 #define ARRAY(what, count) ((r->what = sct_result_array(r, (count), sizeof *r->what)) != NULL)
     const bool ok = ARRAY(joints, n_joints) && ARRAY(members, n_members) && ARRAY(groups, (size_t)r->n_groups) &&
-                    ARRAY(combinations, n_comb) && ARRAY(u, n_comb * n_joints * 3) && ARRAY(N, n_comb * n_members) &&
+                    ARRAY(combinations, n_comb) && ARRAY(is_for_strength, n_comb) && ARRAY(u, n_comb * n_joints * 3) && ARRAY(N, n_comb * n_members) &&
                     ARRAY(reaction, n_comb * n_joints * 3) && ARRAY(load, n_comb * n_joints * 3) &&
                     ARRAY(deflections, (size_t)r->n_deflections);
 #undef ARRAY
@@ -57,6 +57,7 @@ static void fill_responses(sct_result *r, const sct_duty *duty, const sct_design
     for (int c = 0; c < r->n_combinations; c++) {
         const size_t k = (size_t)c;
         r->combinations[c] = duty->st->model->combinations[c].name;
+        r->is_for_strength[c] = duty->st->model->combinations[c].basis == SCT_ALLOWABLE;
         sct_combine_displacements(duty->st, &duty->response, c, r->u + k * block);
         sct_combine_loads(duty->st, design->A, c, r->load + k * block);
         sct_reactions(duty->st, r->N + k * n_members, r->load + k * block, r->reaction + k * block);
@@ -104,9 +105,15 @@ static void fill_groups(sct_result *r, const sct_duty *duty, const sct_design *d
     }
 }
 
+/* What is above 1 by rounding alone is 1, here and so in every report. */
+static double settled(double utilisation)
+{
+    return utilisation > 1.0 && sct_keeps(utilisation) ? 1.0 : utilisation;
+}
+
 static void consider(sct_member_result *m, const sct_bar_check *check, int combination, double N)
 {
-    if (check->utilisation <= m->utilisation) return;
+    if (isnan(m->utilisation) || check->utilisation <= m->utilisation) return;
     m->utilisation = check->utilisation;
     m->check = check->kind;
     m->combination = combination;
@@ -143,6 +150,7 @@ static void fill_member(sct_result *r, const sct_duty *duty, const sct_design *d
     }
     const sct_bar_check slender = sct_bar_slenderness(rule, i, m->compressed, NULL);
     consider(m, &slender, -1, m->compressed ? m->N_min : m->N_max); /* the force that the limit is about */
+    m->utilisation = settled(m->utilisation);
     sct_group_result *g = &r->groups[b->group];
     g->n_members++;
     if (g->worst_member < 0 || m->utilisation > r->members[g->worst_member].utilisation) g->worst_member = bar;
@@ -164,11 +172,9 @@ static void fill_deflections(sct_result *r, const sct_duty *duty)
     }
     for (int row = 0; row < duty->n_rows; row++) {
         const sct_deflection_row *at = &duty->rows[row];
-        const double utilisation = sct_duty_row_utilisation(duty, row);
-        int k = 0;
-        while (r->deflections[k].limit != at->limit || r->deflections[k].joint != at->joint) k++;
-        sct_deflection_result *out = &r->deflections[k];
-        if (out->combination >= 0 && utilisation <= out->utilisation) continue;
+        const double utilisation = settled(sct_duty_row_utilisation(duty, row));
+        sct_deflection_result *out = &r->deflections[at->result];
+        if (out->combination >= 0 && (isnan(out->utilisation) || utilisation <= out->utilisation)) continue;
         out->combination = at->combination;
         out->u = duty->u[row];
         out->utilisation = utilisation;
@@ -198,7 +204,7 @@ sct_status sct_result_new(const sct_duty *duty, const sct_design *design, sct_ac
     fill_groups(r, duty, design);
     for (int bar = 0; bar < r->n_members; bar++) fill_member(r, duty, design, bar);
     fill_deflections(r, duty);
-    r->kept = r->utilisation * (1.0 + accuracy.error) <= 1.0; /* kept only when the error does not matter */
+    r->kept = sct_keeps(r->utilisation * (1.0 + accuracy.error)); /* kept only when the error does not matter */
     sct_result_judge(r, false);
     *result = r;
     return SCT_OK;
@@ -211,49 +217,32 @@ static double shown(double utilisation)
     return utilisation > 1.0 && up < 1.01 ? 1.01 : up;
 }
 
-/* A name for a sentence: cleaned, and cut between two characters of UTF-8. */
-typedef struct short_name {
-    char text[64];
-} short_name;
-
-static short_name shorten(const char *name)
-{
-    short_name cut;
-    const sct_shown whole = sct_show(name);
-    size_t n = strlen(whole.text);
-    if (n >= sizeof cut.text) n = sizeof cut.text - 1;
-    while (n > 0 && ((unsigned char)whole.text[n] & 0xC0) == 0x80) n--;
-    memcpy(cut.text, whole.text, n);
-    cut.text[n] = '\0';
-    return cut;
-}
-
 void sct_result_judge(sct_result *r, bool at_smallest)
 {
     int bar = -1, row = -1;
     double most = 0.0;
     for (int k = 0; k < r->n_members; k++)
-        if (r->members[k].utilisation > most) {
+        if (!(r->members[k].utilisation <= most)) {
             most = r->members[k].utilisation;
             bar = k;
         }
     for (int k = 0; k < r->n_deflections; k++)
-        if (r->deflections[k].utilisation > most) {
+        if (!(r->deflections[k].utilisation <= most)) {
             most = r->deflections[k].utilisation;
             row = k;
         }
-    char what[260] = "nothing is stressed";
+    char what[800] = "";
     if (row >= 0) {
         const sct_deflection_result *d = &r->deflections[row];
         sct_number_format(what, sizeof what, "deflection (%.40s) of joint \"%s\" in \"%s\"", d->label,
-                          shorten(r->joints[d->joint].name).text, shorten(r->combinations[d->combination]).text);
+                          sct_show(r->joints[d->joint].name).text, sct_show(r->combinations[d->combination]).text);
     } else if (bar >= 0) {
         const sct_member_result *m = &r->members[bar];
         if (m->combination < 0)
-            sct_number_format(what, sizeof what, "%s of member \"%s\"", sct_check_text(m->check), shorten(m->name).text);
+            sct_number_format(what, sizeof what, "%s of member \"%s\"", sct_check_text(m->check), sct_show(m->name).text);
         else
             sct_number_format(what, sizeof what, "%s of member \"%s\" in \"%s\"", sct_check_text(m->check),
-                              shorten(m->name).text, shorten(r->combinations[m->combination]).text);
+                              sct_show(m->name).text, sct_show(r->combinations[m->combination]).text);
     }
     if (r->outcome == SCT_NOT_OPTIMISED)
         sct_number_format(r->verdict, sizeof r->verdict, "Not optimised: the start design %s every limit; %s is at %.2f.",
@@ -261,6 +250,8 @@ void sct_result_judge(sct_result *r, bool at_smallest)
     else if (r->kept && at_smallest && most < 0.995) /* shows as less than 1 */
         sct_number_format(r->verdict, sizeof r->verdict,
                           "Every limit is kept; the smallest sizes allowed govern: %s is at %.2f only.", what, shown(most));
+    else if (r->kept && bar < 0 && row < 0)
+        sct_number_format(r->verdict, sizeof r->verdict, "Every limit is kept; no member carries a force.");
     else if (r->kept)
         sct_number_format(r->verdict, sizeof r->verdict, "Every limit is kept; %s governs at %.2f.", what, shown(most));
     else if (r->outcome == SCT_NO_FEASIBLE_DESIGN)

@@ -67,7 +67,7 @@ static int lightest_passing(const search *S, int g, int from)
     int best = S->model->groups[g].n_ladder - 1;
     for (int k = from; k < S->model->groups[g].n_ladder; k++) {
         const double u = group_utilisation(S, g, k);
-        if (u <= 1.0) return k;
+        if (sct_keeps(u)) return k;
         if (u < least) {
             least = u;
             best = k;
@@ -81,9 +81,11 @@ static sct_status judge(search *S, double *utilisation)
 {
     S->budget--;
     const sct_status status = sct_duty_analyse(S->duty, S->trial.A);
+    *utilisation = INFINITY;
+    if (status == SCT_MECHANISM || status == SCT_NOT_ACCURATE) return SCT_OK; /* no design to accept */
     if (status != SCT_OK) return status;
     *utilisation = sct_duty_utilisation(S->duty, &S->trial);
-    const sct_pick pick = {*utilisation <= 1.0, *utilisation, sct_duty_mass(S->duty, &S->trial)};
+    const sct_pick pick = {sct_keeps(*utilisation), *utilisation, sct_duty_mass(S->duty, &S->trial)};
     const bool better = !S->have_best || (pick.kept && !S->pick.kept) ||
                         (pick.kept == S->pick.kept &&
                          (pick.kept ? pick.mass < S->pick.mass : pick.utilisation < S->pick.utilisation));
@@ -177,7 +179,7 @@ static double deflection_after(const search *S, const move *m)
 static sct_status repair(search *S, double *utilisation)
 {
     enum { LOOK_UP = 4 };
-    while (*utilisation > 1.0 && may_go_on(S)) {
+    while (!sct_keeps(*utilisation) && may_go_on(S)) {
         find_slopes(S);
         int best_g = -1, best_k = -1;
         double best_gain = 0.0;
@@ -286,7 +288,7 @@ static sct_status descend(search *S)
             double u;
             status = judge(S, &u);
             if (status != SCT_OK) break;
-            improved = u <= 1.0;
+            improved = sct_keeps(u);
         }
         if (improved) sct_design_copy(n_groups, &S->trial, &S->at);
     }
@@ -302,7 +304,7 @@ static sct_status mend(search *S)
     sct_status status;
     double u = sct_duty_utilisation(S->duty, &S->trial);
     status = repair(S, &u);
-    if (status != SCT_OK || u > 1.0) return status;
+    if (status != SCT_OK || !sct_keeps(u)) return status;
     return descend(S);
 }
 

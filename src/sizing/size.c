@@ -6,6 +6,7 @@
 #include "analysis/accuracy.h"
 #include "analysis/mechanism.h"
 #include "base/random.h"
+#include "sizing/doubts.h"
 #include "sizing/price.h"
 #include "sizing/problem.h"
 #include "sizing/result.h"
@@ -84,8 +85,11 @@ static sct_status open_job(job *J, const sct_model *model, const sct_settings *s
     J->compressed = sct_arena_array(J->arena, (size_t)J->st->n_bars, sizeof *J->compressed);
     if (J->compressed == NULL) return SCT_NO_MEMORY;
     status = sct_design_new(J->arena, model->n_groups, &J->design);
-    if (status == SCT_OK) hold_given_sizes(J);
-    return status;
+    if (status != SCT_OK) return status;
+    hold_given_sizes(J);
+    sct_doubt_settlements(model, issues);
+    sct_doubt_held_slenderness(J->duty, &J->design, issues);
+    return SCT_OK;
 }
 
 /* Analyses the design afresh, vouches for the numbers, and makes the result. */
@@ -97,7 +101,11 @@ static sct_status show(job *J, sct_result **result)
     if (status == SCT_OK) status = sct_accuracy_refine(J->duty->solver, &J->duty->response, &accuracy, J->issues);
     if (status != SCT_OK) return status;
     sct_duty_gather(J->duty);
-    return sct_result_new(J->duty, &J->design, accuracy, result);
+    status = sct_result_new(J->duty, &J->design, accuracy, result);
+    if (status != SCT_OK) return status;
+    (*result)->settings = J->settings;
+    sct_doubt_movement(*result, J->issues);
+    return sct_doubts_keep(*result, J->issues);
 }
 
 static sct_status refuse_unsized(const job *J)
@@ -263,31 +271,41 @@ static void middle_areas(const job *J, double A[])
     }
 }
 
-/* Members in compression at the latest analysis join those that keep the slenderness limit of compression; true when
- * one joined whose limit differs. */
-static bool mark_compressed(job *J)
+/* Where statics alone give the forces, the members in compression are known before any size is. */
+static void mark_compressed(job *J)
+{
+    for (int bar = 0; J->st->n_bars == J->st->n_dof && bar < J->st->n_bars; bar++)
+        J->compressed[bar] = sct_duty_is_compressed(J->duty, bar);
+}
+
+/* Members that are compressed at the latest analysis and too slender for it must keep that limit from now on; true when
+ * one joined. Others are left alone: what is compressed here may be a tie at the optimum. */
+static bool mark_too_slender(job *J, const double A[])
 {
     bool joined = false;
     for (int bar = 0; bar < J->st->n_bars; bar++) {
         const sct_bar_rule *rule = &J->duty->rules[bar];
+        const int g = J->st->bars[bar].group;
         if (J->compressed[bar] || !sct_duty_is_compressed(J->duty, bar)) continue;
-        J->compressed[bar] = true;
-        joined |= rule->slenderness_compression < rule->slenderness_any;
+        for (int axis = 0; axis < 2; axis++) {
+            const double lambda = rule->Lcr[axis] / sct_problem_radius(J->problem, g, axis, A[g]);
+            if (lambda > rule->slenderness_compression * (1.0 + SCT_KEPT_TO)) joined = J->compressed[bar] = true;
+        }
     }
     return joined;
 }
 
-/* Descent from every start; again while the optimum compresses members that were not known to be compressed. */
+/* Descent from every start; again while the optimum compresses members that are too slender for it. */
 static sct_status find_optimum(job *J, sct_fault why)
 {
-    enum { MOST_ROUNDS = 4 };
+    enum { MOST_ROUNDS = 6 };
     for (int round = 0; round < MOST_ROUNDS; round++) {
         sct_status status = open_descent(J, NULL, why);
         if (status == SCT_OK) status = run_starts(J);
         if (status != SCT_OK) return status;
         sct_problem_areas(J->problem, J->x_best, J->A);
         status = sct_duty_analyse(J->duty, J->A);
-        if (status != SCT_OK || J->interrupted || !mark_compressed(J)) return status;
+        if (status != SCT_OK || J->interrupted || !mark_too_slender(J, J->A)) return status;
     }
     return SCT_OK;
 }
@@ -328,7 +346,8 @@ static sct_status tune_free_areas(job *J, sct_fault why)
     bool *is_fixed = sct_arena_array(J->arena, (size_t)J->model->n_groups, sizeof *is_fixed);
     if (is_fixed == NULL) return SCT_NO_MEMORY;
     for (int g = 0; g < J->model->n_groups; g++) is_fixed[g] = J->model->groups[g].kind == SCT_LADDER;
-    sct_status status = open_descent(J, is_fixed, why);
+    const sct_status status = open_descent(J, is_fixed, why);
+    if (status == SCT_INFEASIBLE) return SCT_OK; /* the areas at hand stay */
     if (status != SCT_OK) return status;
     sct_problem_point(J->problem, J->design.A, J->x);
     sct_descent_settings settings = sct_descent_defaults();
@@ -336,27 +355,27 @@ static sct_status tune_free_areas(job *J, sct_fault why)
     settings.eps = log(1.0 / 0.4);
     settings.move = log(4.0);
     const sct_descent_info info = sct_descent_run(J->descent, sct_problem_nlp(J->problem), &settings, J->x, NULL, NULL);
-    if (info.status != SCT_OK) return SCT_OK; /* the areas at hand stay */
+    if (info.status == SCT_NO_MEMORY) return SCT_NO_MEMORY;
+    if (info.status != SCT_OK) return SCT_OK;
     sct_problem_areas(J->problem, J->x, J->A);
     take_areas(J, J->A);
     return SCT_OK;
 }
 
 /* The descent ends within its tolerance of the limits; what is printed keeps them: all free areas grow a little. */
-static sct_status make_strict(job *J)
+static sct_status make_strict(job *J, double margin)
 {
     enum { MOST_ROUNDS = 8 };
-    static const double MARGIN = 1e-9; /* above the error of any analysis that is shown without a warning */
     for (int round = 0; round < MOST_ROUNDS; round++) {
         const sct_status status = sct_duty_analyse(J->duty, J->design.A);
         if (status != SCT_OK) return status;
         const double over = sct_duty_utilisation(J->duty, &J->design);
-        if (over <= 1.0 - 0.1 * MARGIN || over > 1.01) return SCT_OK;
+        if (over <= 1.0 - 0.1 * margin || over > 1.01) return SCT_OK;
         for (int v = 0; v < J->st->n_vars; v++) {
             const int g = J->st->group_of_var[v];
             const sct_group *group = &J->model->groups[g];
             if (group->kind == SCT_FREE_AREA)
-                sct_design_area(J->model, g, fmin(J->design.A[g] * (over + MARGIN), group->A_max), &J->design);
+                sct_design_area(J->model, g, fmin(J->design.A[g] * (over + margin), group->A_max), &J->design);
         }
     }
     return SCT_OK;
@@ -377,7 +396,7 @@ static sct_status choose(job *J, sct_pick *pick, sct_fault why)
         status = sct_sections_pick(J->duty, &J->design, MOST_ANALYSES, tell_sections, J, pick);
         if (status == SCT_OK && has_kind(J, SCT_FREE_AREA) && !J->interrupted) status = tune_free_areas(J, why);
     }
-    if (status == SCT_OK && has_kind(J, SCT_FREE_AREA)) status = make_strict(J);
+    if (status == SCT_OK && has_kind(J, SCT_FREE_AREA)) status = make_strict(J, SCT_KEPT_TO);
     return status;
 }
 
@@ -386,8 +405,8 @@ static sct_outcome outcome_of(const job *J, const sct_result *result)
     if (J->interrupted) return SCT_STOPPED;
     if (J->settings.iterations == 0) return SCT_NOT_OPTIMISED;
     if (!result->kept) return J->starts[J->best].outcome == SCT_STALLED ? SCT_STALLED : SCT_NO_FEASIBLE_DESIGN;
-    if (has_kind(J, SCT_LADDER)) return SCT_SECTIONS_FOUND;
-    return J->starts[J->best].outcome == SCT_OPTIMUM ? SCT_OPTIMUM : SCT_STALLED;
+    if (J->starts[J->best].outcome != SCT_OPTIMUM) return SCT_STALLED;
+    return has_kind(J, SCT_LADDER) ? SCT_SECTIONS_FOUND : SCT_OPTIMUM;
 }
 
 static bool has_smallest_sizes(const job *J)
@@ -449,7 +468,8 @@ static sct_status price_optimum(job *J, sct_result **priced)
     return sct_prices(J->problem, J->duty, J->mu_best, J->mu_bound_best, *priced);
 }
 
-/* No size of some group keeps its slenderness limit: the largest sizes are shown with the reason. */
+/* No size of some group keeps its slenderness limit: the largest sizes are shown with the reason. Where the forces depend
+ * on the sizes they may keep every limit all the same: then they are shown as a design that was not searched for. */
 static sct_status show_infeasible(job *J, const sct_fault why, sct_result **result)
 {
     for (int g = 0; g < J->model->n_groups; g++) {
@@ -459,9 +479,8 @@ static sct_status show_infeasible(job *J, const sct_fault why, sct_result **resu
     }
     const sct_status status = show(J, result);
     if (status != SCT_OK) return status;
-    (*result)->outcome = SCT_NO_FEASIBLE_DESIGN;
-    (*result)->kept = false;
-    memcpy((*result)->verdict, why, sizeof(sct_fault));
+    (*result)->outcome = (*result)->kept ? SCT_STALLED : SCT_NO_FEASIBLE_DESIGN;
+    if (!(*result)->kept) memcpy((*result)->verdict, why, sizeof(sct_fault));
     return SCT_OK;
 }
 
@@ -483,6 +502,13 @@ static sct_status search(job *J, sct_result **result)
     if (status == SCT_OK) sct_problem_areas(J->problem, J->x_best, A);
     if (status == SCT_OK) status = choose(J, &pick, why);
     if (status == SCT_OK) status = show(J, result);
+    if (status == SCT_OK && !(*result)->kept && sct_keeps((*result)->utilisation) && has_kind(J, SCT_FREE_AREA)) {
+        const double margin = 4.0 * (*result)->accuracy.error; /* the error alone stands in the way */
+        sct_result_free(*result);
+        *result = NULL;
+        status = make_strict(J, margin);
+        if (status == SCT_OK) status = show(J, result);
+    }
     if (status == SCT_OK)
         status = tell_search(J, A, priced != NULL ? priced->prices : NULL, priced != NULL ? priced->n_prices : 0, *result);
     sct_result_free(priced);
