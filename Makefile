@@ -63,11 +63,7 @@ EXTRA_PROBE = for tool in mandoc pkg-config dpkg-shlibdeps; do command -v $$tool
 
 packages:
 	@( $(PROBE) ) >/dev/null 2>&1 || sh .ci/packages $(BUILD_PACKAGES)
-test-# Without these some tests are skipped in so many words; their installation is tried once.
-EXTRA_PACKAGES = mandoc pkgconf dpkg-dev
-EXTRA_PROBE = for tool in mandoc pkg-config dpkg-shlibdeps; do command -v $$tool || exit 1; done
-
-packages:
+test-packages:
 	@( $(PROBE) && $(TEST_PROBE) ) >/dev/null 2>&1 || sh .ci/packages $(TEST_PACKAGES)
 	@( $(EXTRA_PROBE) ) >/dev/null 2>&1 || test -e $(BUILD)/.extras || sh .ci/packages $(EXTRA_PACKAGES) || true
 	@mkdir -p $(BUILD) && touch $(BUILD)/.extras
