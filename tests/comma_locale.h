@@ -19,7 +19,7 @@ static inline void comma_locale_make(void)
              "LC_CTYPE\\ncopy \"POSIX\"\\nEND LC_CTYPE\\n' >%s/source && "
              "localedef -c -i %s/source -f ANSI_X3.4-1968 %s/comma >/dev/null 2>&1",
              comma_directory, comma_directory, comma_directory);
-    if (system(command) != 0) return; /* localedef warns about what the source leaves out: seen when it is used */
+    if (system(command) == -1) abort(); /* it warns about what the source leaves out: what counts is if it can be set */
     setenv("LOCPATH", comma_directory, 1);
 }
 

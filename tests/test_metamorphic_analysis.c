@@ -255,7 +255,7 @@ RELATION(actions_reversed, RM_NO_WEIGHT, EXACT)
 
 RELATION(E_times_and_areas_by_a_power_of_two, 0, EXACT)
 {
-    const double k = ldexp(1.0, rm_below(r, 5) - 2);
+    const double k = ldexp(1.0, rm_below(r, 4) - 2);
     rm_model b = *m;
     for (int p = 0; p < 2; p++) {
         b.material[p].E *= k;
@@ -582,7 +582,7 @@ RELATION(E_times_k_multiplies_forces_of_constraint, RM_NO_WEIGHT, CLOSE)
 
 RELATION(similar_models_have_similar_results, RM_BUCKLES, CLOSE)
 {
-    const double k = rm_between(r, 0.2, 5.0);
+    const double k = rm_between(r, 0.4, 2.5);
     rm_model b = *m;
     rm_scale_lengths(&b, k);
     for (int g = 0; g < m->n_groups; g++) b.group[g].A *= k * k;
