@@ -844,6 +844,25 @@ RELATION(more_starts_never_add_mass, RM_SIZED | RM_DEFLECTS, OPTIMUM)
     return off;
 }
 
+/* ---- found by the relations ------------------------------------------------------------------------------------------ */
+
+/* A deflection depends on a held group and on two that are sized, of which one relieves and one strains it: growing both
+ * did not lead back below the limit, and the optimum was called infeasible. */
+START_TEST(an_optimum_beside_a_held_group_ends_below_its_limits)
+{
+    rm_model m = rm_random(CONVEX, 25);
+    rm_run first = size_model(&m);
+    m.group[0].size = RM_HELD;
+    m.group[0].A = first.r->groups[0].A;
+    rm_run second = size_model(&m);
+    ck_assert(second.r->kept);
+    ck_assert_int_eq(second.r->outcome, SCT_OPTIMUM);
+    ck_assert_double_le(second.r->utilisation, 1.0);
+    rm_drop(&first);
+    rm_drop(&second);
+}
+END_TEST
+
 /* ---- the suite ------------------------------------------------------------------------------------------------------ */
 
 int main(void)
@@ -906,6 +925,7 @@ int main(void)
     tcase_add_test(tests, an_optimum_is_one_when_the_model_turns);
     tcase_add_test(tests, an_optimum_is_one_with_other_numbers);
     tcase_add_test(tests, more_starts_never_add_mass);
+    tcase_add_test(tests, an_optimum_beside_a_held_group_ends_below_its_limits);
     suite_add_tcase(suite, tests);
     const int code = run_suite(suite);
     comma_locale_drop();

@@ -342,24 +342,94 @@ static sct_status tune_free_areas(job *J, sct_fault why)
     return SCT_OK;
 }
 
-/* The descent ends within its tolerance of the limits; what is printed keeps them: all free areas grow a little. */
-static sct_status make_strict(job *J)
+/* The descent ends within its tolerance of the limits; what is printed keeps them by a margin above the error of any
+ * analysis that is shown without a warning. */
+static const double MARGIN = 1e-9;
+
+static bool is_strict(double utilisation)
+{
+    return utilisation <= 1.0 - 0.1 * MARGIN;
+}
+
+/* All free areas grow a little. *over: the utilisation that this ends with. */
+static sct_status grow_together(job *J, double *over)
 {
     enum { MOST_ROUNDS = 8 };
-    static const double MARGIN = 1e-9; /* above the error of any analysis that is shown without a warning */
-    for (int round = 0; round < MOST_ROUNDS; round++) {
+    for (int round = 0;; round++) {
         const sct_status status = sct_duty_analyse(J->duty, J->design.A);
         if (status != SCT_OK) return status;
-        const double over = sct_duty_utilisation(J->duty, &J->design);
-        if (over <= 1.0 - 0.1 * MARGIN || over > 1.01) return SCT_OK;
+        *over = sct_duty_utilisation(J->duty, &J->design);
+        if (is_strict(*over) || *over > 1.01 || round == MOST_ROUNDS) return SCT_OK;
         for (int v = 0; v < J->st->n_vars; v++) {
             const int g = J->st->group_of_var[v];
             const sct_group *group = &J->model->groups[g];
             if (group->kind == SCT_FREE_AREA)
-                sct_design_area(J->model, g, fmin(J->design.A[g] * (over + MARGIN), group->A_max), &J->design);
+                sct_design_area(J->model, g, fmin(J->design.A[g] * (*over + MARGIN), group->A_max), &J->design);
         }
     }
+}
+
+/* The same problem with every limit lower by the margin. */
+static sct_status lowered_value(void *user, const double x[], double *f, double g[])
+{
+    const sct_nlp *nlp = user;
+    const sct_status status = nlp->value(nlp->user, x, f, g);
+    for (int j = 0; j < nlp->m; j++) g[j] += MARGIN;
+    return status;
+}
+
+static sct_status lowered_gradient(void *user, const double x[], int n_rows, const int rows[], double df[], double *dg)
+{
+    const sct_nlp *nlp = user;
+    return nlp->gradient(nlp->user, x, n_rows, rows, df, dg);
+}
+
+static sct_status lowered_curvature(void *user, const double x[], int n_rows, const int rows[], const double mu[],
+                                    double *H)
+{
+    const sct_nlp *nlp = user;
+    return nlp->curvature(nlp->user, x, n_rows, rows, mu, H);
+}
+
+static void lowered_objective(void *user, const double x[], const double d[], double df[], double ddf[])
+{
+    const sct_nlp *nlp = user;
+    nlp->objective(nlp->user, x, d, df, ddf);
+}
+
+/* The descent goes on from the design at hand, below limits that are lower by the margin. */
+static sct_status descend_below(job *J)
+{
+    sct_nlp inner = *sct_problem_nlp(J->problem), nlp = inner;
+    nlp.user = &inner;
+    nlp.value = lowered_value;
+    nlp.gradient = lowered_gradient;
+    if (nlp.curvature != NULL) nlp.curvature = lowered_curvature;
+    if (nlp.objective != NULL) nlp.objective = lowered_objective;
+    sct_descent_settings settings = sct_descent_defaults();
+    settings.tol_kkt = J->settings.tolerance;
+    settings.tol_violation = 0.1 * MARGIN;
+    settings.plain = J->settings.plain;
+    if (!settings.plain) {
+        settings.eps = log(1.0 / 0.4);
+        settings.move = log(4.0);
+    }
+    sct_problem_point(J->problem, J->design.A, J->x);
+    const sct_descent_info info = sct_descent_run(J->descent, &nlp, &settings, J->x, NULL, NULL);
+    if (info.status == SCT_NO_MEMORY) return info.status;
+    if (info.status != SCT_OK) return SCT_OK; /* the areas at hand stay */
+    sct_problem_areas(J->problem, J->x, J->A);
+    take_areas(J, J->A);
     return SCT_OK;
+}
+
+/* Growing helps unless a limit is about held sizes too, or some sizes relieve it and others strain it. */
+static sct_status make_strict(job *J)
+{
+    double over;
+    sct_status status = grow_together(J, &over);
+    if (status == SCT_OK && !is_strict(over) && over <= 1.01) status = descend_below(J);
+    return status;
 }
 
 static sct_status choose(job *J, sct_pick *pick, sct_fault why)
