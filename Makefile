@@ -1,5 +1,6 @@
 # scantling: `make` builds, `make demo` sets up and sizes the demo roof truss, `make test` runs the tests.
-# `make` itself never touches the system; demo and test install missing Debian packages (as root or with sudo).
+# `make install` puts it under PREFIX, `make deb` builds Debian packages. Only demo, test, lint and coverage install missing
+# Debian packages (as root or with sudo); the others never touch the system.
 
 CC       ?= gcc
 BUILD    ?= build
@@ -20,15 +21,21 @@ LIB_OBJ  := $(LIB_SRC:%.c=$(BUILD)/%.o) $(BUILD)/families.o
 CLI_OBJ  := $(CLI_SRC:%.c=$(BUILD)/%.o)
 TESTS    := $(patsubst tests/%.c,$(BUILD)/tests/%,$(sort $(wildcard tests/test_*.c)))
 
-.PHONY: all demo test test-full sanitize sanitized format clean packages test-packages
-all: $(BUILD)/scantling $(BUILD)/libscantling.a $(BUILD)/libscantling.so
+# The version stands in the header alone; the number after .so. changes when old programs no longer run with the library.
+VERSION  := $(shell sed -n 's/^\#define SCT_VERSION "\(.*\)"/\1/p' include/scantling.h)
+SONAME    = libscantling.so.0
+
+.PHONY: all demo test test-full sanitize sanitized format clean packages test-packages install uninstall deb
+all: $(BUILD)/scantling $(BUILD)/libscantling.a $(BUILD)/libscantling.so $(BUILD)/$(SONAME)
 
 $(BUILD)/scantling: $(CLI_OBJ) $(BUILD)/libscantling.a
 	$(CC) $(LDFLAGS) -o $@ $^ $(LDLIBS)
 $(BUILD)/libscantling.a: $(LIB_OBJ)
 	rm -f $@ && ar rcsD $@ $^
 $(BUILD)/libscantling.so: $(LIB_OBJ)
-	$(CC) -shared -Wl,-soname,libscantling.so.0 $(LDFLAGS) -o $@ $^ $(LDLIBS)
+	$(CC) -shared -Wl,-soname,$(SONAME) $(LDFLAGS) -o $@ $^ $(LDLIBS)
+$(BUILD)/$(SONAME): $(BUILD)/libscantling.so
+	ln -sf libscantling.so $@
 $(BUILD)/%.o: %.c
 	@mkdir -p $(@D)
 	$(CC) $(CPPFLAGS) $(CFLAGS) -MMD -MP -c -o $@ $<
@@ -50,10 +57,16 @@ TEST_PACKAGES  = $(BUILD_PACKAGES) check liblapack-dev libblas-dev python3-jsons
 PROBE       = printf '\#include <cJSON.h>\n\#include <cholmod.h>\nint main(void){cholmod_common c;return cholmod_start(&c)+(cJSON_Version()==0);}\n' | $(CC) $(CPPFLAGS) -x c - -o /dev/null $(LDLIBS)
 TEST_PROBE  = printf '\#include <check.h>\nvoid dposv_(void);int main(void){dposv_();return check_minor_version;}\n' | $(CC) -x c - -o /dev/null -lcheck -lsubunit -lrt -lpthread -llapack -lblas -lm && python3 -c 'import jsonschema'
 
+# Without these some tests are skipped in so many words; their installation is tried once.
+EXTRA_PACKAGES = mandoc pkgconf dpkg-dev
+EXTRA_PROBE = for tool in mandoc pkg-config dpkg-shlibdeps; do command -v $$tool || exit 1; done
+
 packages:
 	@( $(PROBE) ) >/dev/null 2>&1 || sh .ci/packages $(BUILD_PACKAGES)
 test-packages:
 	@( $(PROBE) && $(TEST_PROBE) ) >/dev/null 2>&1 || sh .ci/packages $(TEST_PACKAGES)
+	@( $(EXTRA_PROBE) ) >/dev/null 2>&1 || test -e $(BUILD)/.extras || sh .ci/packages $(EXTRA_PACKAGES) || true
+	@mkdir -p $(BUILD) && touch $(BUILD)/.extras
 
 # ---- what people run ---------------------------------------------------------------------------------------------------
 demo: packages
@@ -78,6 +91,53 @@ sanitize: test-packages
 	  SAN="-fsanitize=address,undefined,float-cast-overflow,float-divide-by-zero -fno-sanitize-recover=all -fno-omit-frame-pointer" sanitized
 sanitized: all $(TESTS)
 	@BUILD=$(BUILD) CK_DEFAULT_TIMEOUT=120 sh tests/run.sh $(TESTS)
+
+# ---- installation: DESTDIR stages it; every path is made here, so that PREFIX may differ from one call to the next ----------
+PREFIX   ?= /usr/local
+BINDIR   ?= $(PREFIX)/bin
+LIBDIR   ?= $(PREFIX)/lib
+INCLUDEDIR ?= $(PREFIX)/include
+DATADIR  ?= $(PREFIX)/share
+MANDIR   ?= $(DATADIR)/man
+COMPLETIONDIR ?= $(DATADIR)/bash-completion/completions
+PKGCONFIGDIR ?= $(LIBDIR)/pkgconfig
+DOCDIR   ?= $(DATADIR)/doc/scantling
+INSTALL  ?= install
+OURDATA   = $(DATADIR)/scantling
+BENCHMARKS := $(sort $(wildcard models/benchmarks/*.json))
+INSTALLED = $(BINDIR)/scantling $(INCLUDEDIR)/scantling.h $(LIBDIR)/libscantling.a $(LIBDIR)/libscantling.so \
+            $(LIBDIR)/$(SONAME) $(LIBDIR)/libscantling.so.$(VERSION) $(PKGCONFIGDIR)/scantling.pc $(MANDIR)/man1/scantling.1 \
+            $(MANDIR)/man5/scantling-model.5 $(COMPLETIONDIR)/scantling $(OURDATA)/model.schema.json $(OURDATA)/demo_roof.json \
+            $(BENCHMARKS:models/%=$(OURDATA)/%) $(DOCDIR)/README.md $(DOCDIR)/SAFETY.md $(DOCDIR)/examples/size_a_truss.c
+
+install: all
+	$(INSTALL) -D -m 755 $(BUILD)/scantling $(DESTDIR)$(BINDIR)/scantling
+	$(INSTALL) -D -m 644 include/scantling.h $(DESTDIR)$(INCLUDEDIR)/scantling.h
+	$(INSTALL) -D -m 644 $(BUILD)/libscantling.a $(DESTDIR)$(LIBDIR)/libscantling.a
+	$(INSTALL) -D -m 644 $(BUILD)/libscantling.so $(DESTDIR)$(LIBDIR)/libscantling.so.$(VERSION)
+	ln -sf libscantling.so.$(VERSION) $(DESTDIR)$(LIBDIR)/$(SONAME)
+	ln -sf $(SONAME) $(DESTDIR)$(LIBDIR)/libscantling.so
+	$(INSTALL) -d $(DESTDIR)$(PKGCONFIGDIR) $(DESTDIR)$(MANDIR)/man1 $(DESTDIR)$(MANDIR)/man5 $(DESTDIR)$(COMPLETIONDIR)
+	printf '%s\n' 'prefix=$(PREFIX)' 'libdir=$(LIBDIR)' 'includedir=$(INCLUDEDIR)' 'datadir=$(OURDATA)' '' 'Name: scantling' \
+	  'Description: sizes the members of roof trusses' 'Version: $(VERSION)' 'Requires.private: libcjson' \
+	  'Libs: -L$${libdir} -lscantling' 'Libs.private: -lcholmod -lamd -lm' 'Cflags: -I$${includedir}' \
+	  > $(DESTDIR)$(PKGCONFIGDIR)/scantling.pc
+	sed 's|/usr/local/share/scantling|$(OURDATA)|' src/cli/scantling.1 > $(DESTDIR)$(MANDIR)/man1/scantling.1
+	sed 's|/usr/local/share/scantling|$(OURDATA)|' src/model/scantling-model.5 > $(DESTDIR)$(MANDIR)/man5/scantling-model.5
+	$(BUILD)/scantling completion bash > $(DESTDIR)$(COMPLETIONDIR)/scantling
+	$(INSTALL) -d $(DESTDIR)$(OURDATA)/benchmarks $(DESTDIR)$(DOCDIR)/examples
+	$(INSTALL) -m 644 models/model.schema.json models/demo_roof.json $(DESTDIR)$(OURDATA)
+	$(INSTALL) -m 644 $(BENCHMARKS) $(DESTDIR)$(OURDATA)/benchmarks
+	$(INSTALL) -m 644 README.md SAFETY.md $(DESTDIR)$(DOCDIR)
+	$(INSTALL) -m 644 examples/size_a_truss.c $(DESTDIR)$(DOCDIR)/examples
+
+# Takes away what install put there, and the folders that are scantling's own when nothing else is in them.
+uninstall:
+	rm -f $(INSTALLED:%=$(DESTDIR)%)
+	-rmdir $(DESTDIR)$(OURDATA)/benchmarks $(DESTDIR)$(OURDATA) $(DESTDIR)$(DOCDIR)/examples $(DESTDIR)$(DOCDIR) 2>/dev/null || true
+
+deb: all
+	BUILD=$(BUILD) VERSION=$(VERSION) MAKE=$(MAKE) sh .ci/deb
 
 format:
 	clang-format -i $(wildcard src/*/*.[ch] tests/*.[ch] examples/*.c include/*.h)

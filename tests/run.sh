@@ -24,7 +24,7 @@ for program in "$@"; do
     [ "$bad" = 0 ] && [ "$code" != 0 ] && failed=$((failed + 1))
     if [ "$bad" = 0 ] && [ "$code" = 0 ]; then
         printf 'ok   %-28s %4d\n' "$(basename "$program")" "$checks"
-        grep '^measured:' "$log"
+        grep -E '^(measured|skipped):' "$log"
     else
         printf 'FAIL %-28s %4d of %d (exit code %d)\n' "$(basename "$program")" "$bad" "$checks" "$code"
         cat "$log"
@@ -47,6 +47,7 @@ for script in tests/cli_*.sh; do
     [ "$broken" = 0 ] && [ "$code" != 0 ] && failed=$((failed + 1))
     if [ "$broken" = 0 ] && [ "$code" = 0 ]; then
         printf 'ok   %-28s %4d\n' "$(basename "$script")" "$held"
+        grep -E '^(measured|skipped):' "$log"
     else
         printf 'FAIL %-28s %4d of %d\n' "$(basename "$script")" "$broken" "$((held + broken))"
         cat "$log"

@@ -66,8 +66,10 @@ START_TEST(derivatives_of_displacements_and_forces_are_those_of_central_differen
             double *Nv = zeros(3 * bars);
             analyse_at(&s, z);
             for (int e = 0; e < bars; e++) {
-                sct_sensitivity_force(s.solver, &s.r, du, e, dN);
-                for (int k = 0; k < 3; k++) Nv[k * bars + e] = dN[k * vars + v];
+                for (int k = 0; k < 3; k++) {
+                    sct_sensitivity_force(s.solver, &s.r, du, e, k, dN);
+                    Nv[k * bars + e] = dN[v];
+                }
             }
             memset(u_h, 0, (size_t)(3 * n) * sizeof *u_h);
             memset(N_h, 0, (size_t)(3 * bars) * sizeof *N_h);
@@ -80,7 +82,7 @@ START_TEST(derivatives_of_displacements_and_forces_are_those_of_central_differen
             z[v] = 0.0;
             for (int k = 0; k < 3; k++) {
                 for (int j = 0; j < n; j++) {
-                    ck_assert_double_eq_tol(du[(k * vars + v) * n + j], u_h[k * n + j], 1e-7 * u_scale[k]);
+                    ck_assert_double_eq_tol(du[(k * n + j) * vars + v], u_h[k * n + j], 1e-7 * u_scale[k]);
                 }
                 for (int e = 0; e < bars; e++) {
                     ck_assert_double_eq_tol(Nv[k * bars + e], N_h[k * bars + e], 1e-7 * N_scale[k]);
@@ -110,12 +112,12 @@ START_TEST(displacement_derivatives_follow_the_direction_asked_for)
         sct_sensitivity_direct(s.solver, &s.r, du);
         for (int j = 0; j < st->n_joints; j++) {
             const double direction[] = {0.6, -0.8, 0.0};
-            sct_sensitivity_displacement(s.solver, du, j, direction, d);
+            for (int k = 0; k < 3; k++) sct_sensitivity_displacement(s.solver, du, j, direction, k, d + k * vars);
             for (int c = 0; c < 3 * vars; c++) {
                 double expected = 0.0;
                 for (int f = 0; f < st->n_free[j]; f++) {
                     const double *v = st->basis[j][f];
-                    expected += (0.6 * v[0] - 0.8 * v[1]) * du[c * n + st->first_dof[j] + f];
+                    expected += (0.6 * v[0] - 0.8 * v[1]) * du[(c / vars * n + st->first_dof[j] + f) * vars + c % vars];
                 }
                 ck_assert_double_eq_tol(d[c], expected, 1e-14 * fabs(expected) + 1e-300);
             }
@@ -168,14 +170,14 @@ static void direct_gradient(const solved *s, const double du[], sct_weights q, d
     double *dN = zeros(3 * vars);
     for (int v = 0; v < vars; v++) dq[v] = 0.0;
     for (int e = 0; q.wN != NULL && e < bars; e++) {
-        sct_sensitivity_force(s->solver, &s->r, du, e, dN);
         for (int k = 0; k < 3; k++) {
+            sct_sensitivity_force(s->solver, &s->r, du, e, k, dN + k * vars);
             for (int v = 0; v < vars; v++) dq[v] += q.wN[k * bars + e] * dN[k * vars + v];
         }
     }
     for (int k = 0; q.wu != NULL && k < 3; k++) {
         for (int v = 0; v < vars; v++) {
-            for (int j = 0; j < n; j++) dq[v] += q.wu[k * n + j] * du[(k * vars + v) * n + j];
+            for (int j = 0; j < n; j++) dq[v] += q.wu[k * n + j] * du[(k * n + j) * vars + v];
         }
     }
     free(dN);
@@ -310,7 +312,7 @@ START_TEST(one_bar_by_hand)
     ck_close(moved(&s, 0, 1, 1), -(F + half) * L / (E * A), 1e-14);
     sct_sensitivity_direct(s.solver, &s.r, &du);
     ck_close(du, F * L / (E * A), 1e-12);
-    sct_sensitivity_force(s.solver, &s.r, &du, 0, &dN);
+    sct_sensitivity_force(s.solver, &s.r, &du, 0, 0, &dN);
     ck_close(dN, half, 1e-9);
     ck_assert_int_eq(sct_sensitivity_adjoint(s.solver, &s.r, 1, &(sct_weights){.wu = &one}, &dq), SCT_OK);
     ck_close(dq, F * L / (E * A), 1e-12);
@@ -334,8 +336,8 @@ START_TEST(determinate_forces_do_not_depend_on_sizes)
         ck_assert_int_eq(s.st->n_bars, s.st->n_dof);
         sct_sensitivity_direct(s.solver, &s.r, du);
         for (int e = 0; e < s.st->n_bars; e++) {
-            sct_sensitivity_force(s.solver, &s.r, du, e, dN);
             for (int k = 0; k < 3; k++) {
+                sct_sensitivity_force(s.solver, &s.r, du, e, k, dN + k * vars);
                 for (int v = 0; v < vars; v++) {
                     ck_assert_double_eq_tol(dN[k * vars + v], 0.0, 1e-9 * scale_of_forces(&s, k));
                 }

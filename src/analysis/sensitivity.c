@@ -15,6 +15,8 @@
 #include <stdlib.h>
 #include <string.h>
 
+#include "numerics/dense.h"
+
 enum { BATCH = 32 }; /* right-hand sides at once */
 
 static double stiffness(const sct_solver *solver, const sct_bar *bar)
@@ -37,51 +39,71 @@ static double weight_work(const sct_bar *bar, const double u[])
     return sum;
 }
 
-void sct_sensitivity_direct(sct_solver *solver, const sct_response *response, double *du)
+/* Right-hand sides of (1), columns first .. first + count - 1 of all cases and variables. */
+static void fill_batch(const sct_solver *solver, const sct_response *response, size_t first, size_t count, double *rhs)
 {
     const sct_structure *st = sct_solver_structure(solver);
     const double *A = sct_solver_areas(solver);
     const size_t n = (size_t)st->n_dof, vars = (size_t)st->n_vars;
-    memset(du, 0, (size_t)st->n_cases * vars * n * sizeof *du);
-    for (size_t k = 0; k < (size_t)st->n_cases; k++) {
+    memset(rhs, 0, count * n * sizeof *rhs);
+    for (size_t k = first / vars; k * vars < first + count; k++) {
         const double s = st->model->cases[k].self_weight;
         const double *N = response->N + k * (size_t)st->n_bars;
         for (int e = 0; e < st->n_bars; e++) {
             const sct_bar *bar = &st->bars[e];
             const int g = st->var_of_group[bar->group];
-            if (g < 0) continue;
-            double *rhs = du + (k * vars + (size_t)g) * n;
-            for (int i = 0; i < bar->n_dof; i++) rhs[bar->dof[i]] += s * A[bar->group] * bar->w[i] - bar->b[i] * N[e];
+            const size_t c = k * vars + (size_t)g;
+            if (g < 0 || c < first || c >= first + count) continue;
+            double *column = rhs + (c - first) * n;
+            for (int i = 0; i < bar->n_dof; i++)
+                column[bar->dof[i]] += s * A[bar->group] * bar->w[i] - bar->b[i] * N[e];
         }
     }
-    sct_solver_solve(solver, st->n_cases * st->n_vars, du);
 }
 
-void sct_sensitivity_force(const sct_solver *solver, const sct_response *response, const double *du, int bar,
-                           double *dN)
+sct_status sct_sensitivity_direct(sct_solver *solver, const sct_response *response, double *du)
+{
+    const sct_structure *st = sct_solver_structure(solver);
+    const size_t n = (size_t)st->n_dof, vars = (size_t)st->n_vars, columns = (size_t)st->n_cases * vars;
+    double *rhs = malloc((n * BATCH + 1) * sizeof *rhs);
+    if (rhs == NULL) return SCT_NO_MEMORY;
+    for (size_t first = 0; first < columns; first += BATCH) {
+        const size_t count = columns - first < BATCH ? columns - first : BATCH;
+        fill_batch(solver, response, first, count, rhs);
+        sct_solver_solve(solver, (int)count, rhs);
+        for (size_t i = 0; i < n; i++)
+            for (size_t c = 0; c < count; c++) {
+                const size_t k = (first + c) / vars, v = (first + c) % vars;
+                du[(k * n + i) * vars + v] = rhs[c * n + i];
+            }
+    }
+    free(rhs);
+    return SCT_OK;
+}
+
+void sct_sensitivity_force(const sct_solver *solver, const sct_response *response, const double *du, int bar, int k,
+                           double dN[])
 {
     const sct_structure *st = sct_solver_structure(solver);
     const sct_bar *b = &st->bars[bar];
-    const double k_bar = stiffness(solver, b);
-    for (int k = 0; k < st->n_cases; k++) {
-        for (int g = 0; g < st->n_vars; g++) {
-            const size_t column = (size_t)k * (size_t)st->n_vars + (size_t)g;
-            dN[column] = k_bar * elongation(b, du + column * (size_t)st->n_dof);
-            if (st->var_of_group[b->group] == g)
-                dN[column] += response->N[(size_t)k * (size_t)st->n_bars + (size_t)bar];
-        }
-    }
+    const int n_vars = st->n_vars, own = st->var_of_group[b->group];
+    const double *du_k = du + (size_t)k * (size_t)st->n_dof * (size_t)n_vars, k_bar = stiffness(solver, b);
+    for (int v = 0; v < n_vars; v++) dN[v] = 0.0;
+    for (int i = 0; i < b->n_dof; i++) sct_axpy(n_vars, b->b[i], du_k + (size_t)b->dof[i] * (size_t)n_vars, dN);
+    for (int v = 0; v < n_vars; v++) dN[v] *= k_bar;
+    if (own >= 0) dN[own] += response->N[(size_t)k * (size_t)st->n_bars + (size_t)bar];
 }
 
 void sct_sensitivity_displacement(const sct_solver *solver, const double *du, int joint, const double direction[3],
-                                  double *d)
+                                  int k, double d[])
 {
     const sct_structure *st = sct_solver_structure(solver);
-    const size_t columns = (size_t)st->n_cases * (size_t)st->n_vars;
-    for (size_t column = 0; column < columns; column++) {
-        double v[3];
-        sct_joint_displacement(st, du + column * (size_t)st->n_dof, NULL, joint, v);
-        d[column] = v[0] * direction[0] + v[1] * direction[1] + v[2] * direction[2];
+    const int n_vars = st->n_vars;
+    const double *du_k = du + (size_t)k * (size_t)st->n_dof * (size_t)n_vars;
+    for (int v = 0; v < n_vars; v++) d[v] = 0.0;
+    for (int i = 0; i < st->n_free[joint]; i++) {
+        const double *e = st->basis[joint][i], part = e[0] * direction[0] + e[1] * direction[1] + e[2] * direction[2];
+        sct_axpy(n_vars, part, du_k + (size_t)(st->first_dof[joint] + i) * (size_t)n_vars, d);
     }
 }
 
@@ -174,7 +196,7 @@ static void add_curvature(const sct_solver *solver, const sct_response *response
     const double *A = sct_solver_areas(solver), s = st->model->cases[k].self_weight;
     const double *N = response->N + (size_t)k * (size_t)st->n_bars;
     const double *wN = q.wN != NULL ? q.wN + (size_t)k * (size_t)st->n_bars : NULL;
-    const double *du_k = du + (size_t)k * vars * n;
+    const double *du_k = du + (size_t)k * n * vars;
     for (int e = 0; e < st->n_bars; e++) {
         const sct_bar *bar = &st->bars[e];
         if (st->var_of_group[bar->group] < 0) continue;
@@ -184,7 +206,9 @@ static void add_curvature(const sct_solver *solver, const sct_response *response
         H[g * vars + g] += weight * N[e];
         if (s != 0.0) H[g * vars + g] += s * A[bar->group] * weight_work(bar, lambda);
         for (size_t h = 0; h < vars; h++) {
-            const double part = k_weight * elongation(bar, du_k + h * n);
+            double sum = 0.0; /* b'u_h */
+            for (int i = 0; i < bar->n_dof; i++) sum += bar->b[i] * du_k[(size_t)bar->dof[i] * vars + h];
+            const double part = k_weight * sum;
             H[g * vars + h] += part;
             H[h * vars + g] += part;
         }

@@ -7,16 +7,17 @@
 
 #include "analysis/solver.h"
 
-/** Direct: du (n_cases x n_vars x n_dof) = du/dz of every case, by n_cases * n_vars solves with the factor at hand. */
-void sct_sensitivity_direct(sct_solver *solver, const sct_response *response, double *du);
+/** Direct: du (n_cases x n_dof x n_vars) = du/dz of every case, by n_cases * n_vars solves with the factor at hand,
+ * batched by 32. SCT_OK, SCT_NO_MEMORY. */
+sct_status sct_sensitivity_direct(sct_solver *solver, const sct_response *response, double *du);
 
-/** dN (n_cases x n_vars) = dN/dz of one bar, from du. */
-void sct_sensitivity_force(const sct_solver *solver, const sct_response *response, const double *du, int bar,
-                           double *dN);
+/** dN (n_vars) = dN/dz of one bar in case k, from du. */
+void sct_sensitivity_force(const sct_solver *solver, const sct_response *response, const double *du, int bar, int k,
+                           double dN[]);
 
-/** d (n_cases x n_vars) = derivative of the displacement of a joint along `direction`, from du. */
+/** d (n_vars) = derivative of the displacement of a joint along `direction` in case k, from du. */
 void sct_sensitivity_displacement(const sct_solver *solver, const double *du, int joint, const double direction[3],
-                                  double *d);
+                                  int k, double d[]);
 
 /* A weighted sum of forces and displacements of all cases: q = sum_k ( sum_e N[k][e] wN[k][e] + sum_i u[k][i] wu[k][i]
  * ). wN n_cases x n_bars, wu n_cases x n_dof; NULL: all zero. A force in a combination is one bar with the

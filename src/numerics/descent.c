@@ -1,7 +1,7 @@
 /* Constrained steepest descent: one QP (or a few) per point, then a rough line search. */
 #include "numerics/descent.h"
 #include "numerics/dense.h"
-#include "numerics/qp.h"
+#include "numerics/reduced_qp.h"
 #include <float.h>
 #include <math.h>
 #include <stdint.h>
@@ -10,7 +10,8 @@
 
 enum {
     MOST_HALVINGS = 12,
-    MOST_SMALL_STEPS = 3 /* in a row: the search has stalled */
+    MOST_SMALL_STEPS = 3, /* in a row: the search has stalled */
+    GUESS_FROM = 200      /* variables: the QP guesses that the bounds of the last one are reached again */
 };
 static const double SMALL_STEP = 1e-10;  /* of max(1, |x_i|) */
 static const double SMALL_PASS = 1e-9;   /* the next pass would not change the direction */
@@ -27,7 +28,8 @@ struct sct_descent {
     const sct_nlp *nlp; /* of the run in hand */
     const sct_descent_settings *set;
 
-    sct_qp *qp;
+    sct_reduced_qp *qp;
+    signed char *side; /* n + 1: bounds that the last QP ended at, where they are guessed */
     double *block; /* owns all doubles below but `rows` */
     double *rows;  /* gradients of the constraints in W, `stride` apart */
     int stride, n_W;
@@ -129,8 +131,9 @@ sct_descent *sct_descent_new(const sct_nlp *nlp)
     w->best = malloc(((size_t)nlp->n_clusters + 1) * sizeof *w->best);
     w->in_W = malloc((m + 1) * sizeof *w->in_W);
     w->ever = malloc((m + 1) * sizeof *w->ever);
-    w->qp = sct_qp_new(nlp->n + 1, nlp->m + nlp->m_eq);
-    if (!w->block || !w->rows || !w->W || !w->curved || !w->best || !w->in_W || !w->ever || !w->qp) {
+    w->qp = sct_reduced_qp_new(nlp->n + 1, nlp->m + nlp->m_eq);
+    w->side = calloc(n + 1, sizeof *w->side);
+    if (!w->side || !w->block || !w->rows || !w->W || !w->curved || !w->best || !w->in_W || !w->ever || !w->qp) {
         sct_descent_free(w);
         return NULL;
     }
@@ -141,7 +144,8 @@ sct_descent *sct_descent_new(const sct_nlp *nlp)
 void sct_descent_free(sct_descent *w)
 {
     if (w == NULL) return;
-    sct_qp_free(w->qp);
+    sct_reduced_qp_free(w->qp);
+    free(w->side);
     free(w->block);
     free(w->rows);
     free(w->W);
@@ -383,7 +387,16 @@ static void set_quadratic(sct_descent *w, size_t size)
     }
 }
 
-/* The QP over d; e, mu_next and mu_box_next get its solution. */
+/* e, mu_next and mu_box_next get the solution. */
+static sct_status solve(sct_descent *w, const sct_qp_data *data)
+{
+    if (w->n < GUESS_FROM) memset(w->side, 0, (size_t)w->n + 1);
+    const sct_status status = sct_reduced_qp_solve(w->qp, data, w->side, w->e, w->mu_next, w->mu_box_next);
+    w->qp_iterations += sct_reduced_qp_iterations(w->qp);
+    return status;
+}
+
+/* The QP over d. */
 static sct_status solve_qp(sct_descent *w)
 {
     const sct_qp_data data = {.n = w->n,
@@ -397,9 +410,7 @@ static sct_status solve_qp(sct_descent *w)
                               .lower = w->lo,
                               .upper = w->hi};
     set_quadratic(w, (size_t)w->n);
-    const sct_status status = sct_qp_solve(w->qp, &data, w->e, w->mu_next, w->mu_box_next);
-    w->qp_iterations += sct_qp_iterations(w->qp);
-    return status;
+    return solve(w, &data);
 }
 
 /* What multipliers are compared with: f, or how much f changes with x. */
@@ -440,6 +451,7 @@ static sct_status solve_elastic(sct_descent *w)
     w->a[n] = R_e;
     w->lo[n] = 0;
     w->hi[n] = INFINITY;
+    w->side[n] = 0; /* the slack will be needed */
     const sct_qp_data data = {.n = n + 1,
                               .m = n_W + m_eq,
                               .stride = n + 1,
@@ -449,8 +461,7 @@ static sct_status solve_elastic(sct_descent *w)
                               .b = w->b,
                               .lower = w->lo,
                               .upper = w->hi};
-    const sct_status status = sct_qp_solve(w->qp, &data, w->e, w->mu_next, w->mu_box_next);
-    w->qp_iterations += sct_qp_iterations(w->qp);
+    const sct_status status = solve(w, &data);
     for (int k = 0; k < m_eq && status == SCT_OK; ++k) w->mu_next[k] -= w->mu_next[n_W + k];
     return status;
 }
@@ -630,6 +641,7 @@ static sct_status begin(sct_descent *w, const sct_nlp *nlp, const sct_descent_se
     w->has_mu = w->has_step = w->has_B = w->is_elastic = false;
     w->f = w->V = NAN;
     w->worst = -1;
+    memset(w->side, 0, (size_t)w->n + 1);
     memset(w->mu, 0, (size_t)w->m * sizeof *w->mu);
     memset(w->ever, 0, (size_t)w->m * sizeof *w->ever);
     memset(w->mu_box, 0, (size_t)w->n * sizeof *w->mu_box);

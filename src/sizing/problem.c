@@ -8,6 +8,7 @@
 #include "analysis/sensitivity.h"
 #include "base/number.h"
 #include "base/text.h"
+#include "numerics/dense.h"
 
 static const double INACTIVE = -9.0;      /* ln: a limit this far away is left alone, with zero gradient */
 
@@ -26,6 +27,7 @@ struct sct_problem {
     double *ref, mass_unit;       /* plain form: areas and mass are relative to the middle of the ranges; else 1 kg */
     int *cluster;
     sct_nlp nlp;
+    double margin;                /* that is added to every constraint */
     /* at the latest value call */
     bool have_value;
     double *x, f;
@@ -33,7 +35,7 @@ struct sct_problem {
     sct_need *need;               /* n_bar_rows */
     double *g;                    /* all constraints, log form */
     bool have_du;
-    double *du, *dN, *row;        /* n_cases x n x n_dof; n_cases x n; n */
+    double *du, *part, *row;      /* n_cases x n_dof x n; n; n */
     double *wN, *wu, *work;       /* weights for the curvature */
 };
 
@@ -97,7 +99,7 @@ static sct_status judge(sct_problem *P, const double x[])
         const double g = j < P->n_bar_rows ? bar_constraint(P, j)
                                            : log(sct_duty_row_utilisation(P->duty, j - P->n_bar_rows));
         if (isnan(g)) return SCT_NOT_ACCURATE;
-        P->g[j] = fmax(g, INACTIVE);
+        P->g[j] = fmax(g + P->margin, INACTIVE);
     }
     memcpy(P->x, x, (size_t)P->n * sizeof *x);
     P->have_value = true;
@@ -115,33 +117,32 @@ static sct_status value(void *user, const double x[], double *f, double g[])
     return SCT_OK;
 }
 
-/* row = sum over cases of factor * part, part n_cases x n. */
-static void combine(const sct_problem *P, int combination, const double part[], double row[])
-{
-    const double *factor = P->st->model->combinations[combination].factor;
-    for (int v = 0; v < P->n; v++) row[v] = 0.0;
-    for (int k = 0; k < P->st->n_cases; k++)
-        for (int v = 0; factor[k] != 0.0 && v < P->n; v++) row[v] += factor[k] * part[(size_t)k * (size_t)P->n + (size_t)v];
-}
-
 /* Derivative of the force or of the displacement behind constraint j with respect to z; returns the quantity itself. */
 static double quantity(sct_problem *P, int j, double row[])
 {
-    if (j < P->n_bar_rows) {
-        sct_sensitivity_force(P->duty->solver, &P->duty->response, P->du, bar_of(P, j), P->dN);
-        combine(P, combination_of(P, j), P->dN, row);
-        return force(P, j);
+    const bool is_bar = j < P->n_bar_rows;
+    const double *factor = P->st->model->combinations[combination_of(P, j)].factor;
+    for (int v = 0; v < P->n; v++) row[v] = 0.0;
+    for (int k = 0; k < P->st->n_cases; k++) {
+        if (factor[k] == 0.0) continue;
+        if (is_bar) {
+            sct_sensitivity_force(P->duty->solver, &P->duty->response, P->du, bar_of(P, j), k, P->part);
+        } else {
+            const sct_deflection_row *r = &P->duty->rows[j - P->n_bar_rows];
+            sct_sensitivity_displacement(P->duty->solver, P->du, r->joint, P->st->model->deflections[r->limit].direction,
+                                         k, P->part);
+        }
+        sct_axpy(P->n, factor[k], P->part, row);
     }
-    const sct_deflection_row *r = &P->duty->rows[j - P->n_bar_rows];
-    sct_sensitivity_displacement(P->duty->solver, P->du, r->joint, P->st->model->deflections[r->limit].direction, P->dN);
-    combine(P, r->combination, P->dN, row);
-    return P->duty->u[j - P->n_bar_rows];
+    return is_bar ? force(P, j) : P->duty->u[j - P->n_bar_rows];
 }
 
-static void need_du(sct_problem *P)
+static sct_status need_du(sct_problem *P)
 {
-    if (!P->have_du) sct_sensitivity_direct(P->duty->solver, &P->duty->response, P->du);
-    P->have_du = true;
+    if (P->have_du) return SCT_OK;
+    const sct_status status = sct_sensitivity_direct(P->duty->solver, &P->duty->response, P->du);
+    P->have_du = status == SCT_OK;
+    return status;
 }
 
 static sct_status gradient(void *user, const double x[], int n_rows, const int rows[], double df[], double *dg)
@@ -152,7 +153,8 @@ static sct_status gradient(void *user, const double x[], int n_rows, const int r
         const double w = P->duty->unit_mass[st->group_of_var[v]];
         df[v] = P->plain ? w * P->ref[v] / P->mass_unit : w * P->A[st->group_of_var[v]];
     }
-    if (n_rows > 0) need_du(P);
+    const sct_status status = n_rows > 0 ? need_du(P) : SCT_OK;
+    if (status != SCT_OK) return status;
     for (int r = 0; r < n_rows; r++) {
         const int j = rows[r];
         double *row = dg + (size_t)r * (size_t)P->n;
@@ -182,7 +184,8 @@ static sct_status curvature(void *user, const double x[], int n_rows, const int 
     memset(H, 0, n * n * sizeof *H);
     memset(P->wN, 0, n_cases * n_bars * sizeof *P->wN);
     memset(P->wu, 0, n_cases * n_dof * sizeof *P->wu);
-    need_du(P);
+    const sct_status status = need_du(P);
+    if (status != SCT_OK) return status;
     for (int r = 0; r < n_rows; r++) {
         const int j = rows[r];
         if (mu[r] == 0.0 || P->g[j] <= INACTIVE) continue;
@@ -190,8 +193,7 @@ static sct_status curvature(void *user, const double x[], int n_rows, const int 
         const bool is_bar = j < P->n_bar_rows;
         const double s1 = is_bar ? P->need[j].s1 : 1.0, s2 = is_bar ? P->need[j].s2 : 0.0;
         const double outer = mu[r] * (s2 - s1) / (q * q), inner = mu[r] * s1 / q;
-        for (size_t a = 0; a < n; a++)
-            for (size_t b = 0; b < n; b++) H[a * n + b] += outer * P->row[a] * P->row[b];
+        for (size_t a = 0; a < n; a++) sct_axpy((int)a + 1, outer * P->row[a], P->row, H + a * n); /* lower triangle */
         const double *factor = st->model->combinations[combination_of(P, j)].factor;
         const double *dir = is_bar ? NULL : st->model->deflections[P->duty->rows[j - P->n_bar_rows].limit].direction;
         for (size_t k = 0; k < n_cases; k++) {
@@ -207,6 +209,8 @@ static sct_status curvature(void *user, const double x[], int n_rows, const int 
             }
         }
     }
+    for (size_t a = 0; a < n; a++)
+        for (size_t b = 0; b < a; b++) H[b * n + a] = H[a * n + b];
     sct_sensitivity_curvature(P->duty->solver, &P->duty->response, P->du, (sct_weights){P->wN, P->wu}, P->work, H);
     return SCT_OK;
 }
@@ -348,7 +352,7 @@ static sct_status allocate(sct_problem *P)
     const bool ok = ARRAY(is_fixed, n_groups) && ARRAY(envelope, n_groups) && ARRAY(lower, n) && ARRAY(upper, n) &&
                     ARRAY(source, n) && ARRAY(x_lower, n) && ARRAY(x_upper, n) && ARRAY(ref, n) && ARRAY(cluster, m) &&
                     ARRAY(x, n) && ARRAY(A, n_groups) && ARRAY(need, (size_t)P->n_bar_rows) && ARRAY(g, m) &&
-                    ARRAY(du, n_cases * n * n_dof) && ARRAY(dN, n_cases * n) && ARRAY(row, n) &&
+                    ARRAY(du, n_cases * n_dof * n) && ARRAY(part, n) && ARRAY(row, n) &&
                     ARRAY(wN, n_cases * n_bars) && ARRAY(wu, n_cases * n_dof) && ARRAY(work, n_cases * n_dof);
 #undef ARRAY
     if (!ok) return SCT_NO_MEMORY;
@@ -406,6 +410,12 @@ void sct_problem_free(sct_problem *P)
 const sct_nlp *sct_problem_nlp(const sct_problem *P) { return &P->nlp; }
 
 double sct_problem_mass_unit(const sct_problem *P) { return P->mass_unit; }
+
+void sct_problem_tighten(sct_problem *P, double margin)
+{
+    P->margin = margin;
+    P->have_value = false;
+}
 
 void sct_problem_areas(const sct_problem *P, const double x[], double A[])
 {

@@ -42,6 +42,9 @@ const sct_nlp *sct_problem_nlp(const sct_problem *problem);
 /** [kg] what the objective counts in. */
 double sct_problem_mass_unit(const sct_problem *problem);
 
+/** Lowers every limit by a part of itself (0: as the model says). */
+void sct_problem_tighten(sct_problem *problem, double margin);
+
 /** Areas of all groups (n_groups) at x, and back. */
 void sct_problem_areas(const sct_problem *problem, const double x[], double A[]);
 void sct_problem_point(const sct_problem *problem, const double A[], double x[]);

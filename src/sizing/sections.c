@@ -141,21 +141,25 @@ static sct_status round_up(search *S, const sct_design *continuous)
 }
 
 /* Derivatives of the deflections that matter with respect to ln A of every group, at the trial analysed last. */
-static void find_slopes(search *S)
+static sct_status find_slopes(search *S)
 {
     const sct_structure *st = S->st;
-    sct_sensitivity_direct(S->duty->solver, &S->duty->response, S->du);
+    const sct_status status = sct_sensitivity_direct(S->duty->solver, &S->duty->response, S->du);
+    if (status != SCT_OK) return status;
     for (int r = 0; r < S->duty->n_rows; r++) {
         double *slope = S->slope + (size_t)r * (size_t)st->n_groups;
         const sct_deflection_row *row = &S->duty->rows[r];
         memset(slope, 0, (size_t)st->n_groups * sizeof *slope);
         if (sct_duty_row_utilisation(S->duty, r) < 0.7) continue; /* no single or paired change undoes 0.7 */
-        sct_sensitivity_displacement(S->duty->solver, S->du, row->joint, S->model->deflections[row->limit].direction, S->d);
-        for (int k = 0; k < st->n_cases; k++)
-            for (int v = 0; v < st->n_vars; v++)
-                slope[st->group_of_var[v]] +=
-                    S->model->combinations[row->combination].factor[k] * S->d[(size_t)k * (size_t)st->n_vars + (size_t)v];
+        const double *factor = S->model->combinations[row->combination].factor;
+        for (int k = 0; k < st->n_cases; k++) {
+            if (factor[k] == 0.0) continue;
+            sct_sensitivity_displacement(S->duty->solver, S->du, row->joint, S->model->deflections[row->limit].direction, k,
+                                         S->d);
+            for (int v = 0; v < st->n_vars; v++) slope[st->group_of_var[v]] += factor[k] * S->d[v];
+        }
     }
+    return SCT_OK;
 }
 
 /* Largest deflection utilisation after a move, linear in 1/A: exact for a determinate truss but for self-weight. */
@@ -180,7 +184,8 @@ static sct_status repair(search *S, double *utilisation)
 {
     enum { LOOK_UP = 4 };
     while (!sct_keeps(*utilisation) && may_go_on(S)) {
-        find_slopes(S);
+        sct_status status = find_slopes(S);
+        if (status != SCT_OK) return status;
         int best_g = -1, best_k = -1;
         double best_gain = 0.0;
         const move none = {0.0, {-1, -1}, {0, 0}};
@@ -204,7 +209,7 @@ static sct_status repair(search *S, double *utilisation)
         }
         if (best_g < 0) break; /* nothing heavier helps */
         put(S, best_g, best_k, &S->trial);
-        const sct_status status = judge(S, utilisation);
+        status = judge(S, utilisation);
         if (status != SCT_OK) return status;
     }
     return SCT_OK;
@@ -279,7 +284,8 @@ static sct_status descend(search *S)
         status = sct_duty_analyse(S->duty, S->trial.A);
         S->budget--;
         if (status != SCT_OK) break;
-        find_slopes(S);
+        status = find_slopes(S);
+        if (status != SCT_OK) break;
         const int n = list_moves(S, moves, ROOM, rungs, n_rungs);
         for (int t = 0; t < n && t < MOST_TRIES && !improved && may_go_on(S); t++) {
             sct_design_copy(n_groups, &S->at, &S->trial);
@@ -312,7 +318,7 @@ static sct_status run(search *S, const sct_design *continuous)
 {
     const size_t n_groups = (size_t)S->st->n_groups, n_vars = (size_t)S->st->n_vars, n_cases = (size_t)S->st->n_cases;
     S->du = sct_arena_array(S->arena, n_cases * n_vars * (size_t)S->st->n_dof, sizeof(double));
-    S->d = sct_arena_array(S->arena, n_cases * n_vars, sizeof(double));
+    S->d = sct_arena_array(S->arena, n_vars, sizeof(double));
     S->slope = sct_arena_array(S->arena, (size_t)S->duty->n_rows * n_groups, sizeof(double));
     sct_design start;
     if (S->du == NULL || S->d == NULL || S->slope == NULL || sct_design_new(S->arena, S->st->n_groups, &S->trial) != SCT_OK ||
