@@ -39,12 +39,15 @@ files() {
 
 # same_lines FILE OTHER: is OTHER what FILE holds behind its first line?
 same_lines() {
+    same=true
     exec 3<"$1" 4<"$2"
     read -r _ <&3
     while IFS= read -r line <&3; do
-        IFS= read -r other <&4 && [ "$line" = "$other" ] || return 1
+        IFS= read -r other <&4 && [ "$line" = "$other" ] || same=false
     done
-    ! read -r other <&4
+    read -r other <&4 && same=false
+    exec 3<&- 4<&-
+    $same
 }
 
 # kept FOLDER: one case, run in its folder.

@@ -6,6 +6,7 @@
 #include "analysis/accuracy.h"
 #include "analysis/mechanism.h"
 #include "base/random.h"
+#include "base/text.h"
 #include "sizing/price.h"
 #include "sizing/problem.h"
 #include "sizing/result.h"
@@ -88,6 +89,32 @@ static sct_status open_job(job *J, const sct_model *model, const sct_settings *s
     return status;
 }
 
+/* Linear theory leaves the turning of members out: it takes displacements that are small against the model. */
+static void warn_of_large_displacements(const job *J, const sct_result *r)
+{
+    static const double SMALL = 0.1; /* of the diagonal of the box around the model */
+    double low[3] = {INFINITY, INFINITY, INFINITY}, high[3] = {-INFINITY, -INFINITY, -INFINITY}, largest = 0.0;
+    int at = 0;
+    for (int j = 0; j < r->n_joints; j++)
+        for (int i = 0; i < 3; i++) {
+            low[i] = fmin(low[i], J->model->joints[j].at[i]);
+            high[i] = fmax(high[i], J->model->joints[j].at[i]);
+        }
+    for (int k = 0; k < r->n_combinations * r->n_joints; k++) {
+        const double *u = r->u + 3 * (size_t)k, length = hypot(hypot(u[0], u[1]), u[2]);
+        if (!(length > largest)) continue;
+        largest = length;
+        at = k;
+    }
+    const double size = hypot(hypot(high[0] - low[0], high[1] - low[1]), high[2] - low[2]);
+    if (!(largest > SMALL * size)) return;
+    sct_issue_add(J->issues, SCT_WARNING, J->model->joints[at % r->n_joints].where,
+                  "joint \"%s\" moves by %.3g m in \"%s\", more than a tenth of the size of the model: linear theory "
+                  "does not hold",
+                  sct_show(J->model->joints[at % r->n_joints].name).text, largest,
+                  sct_show(r->combinations[at / r->n_joints]).text);
+}
+
 /* Analyses the design afresh, vouches for the numbers, and makes the result. */
 static sct_status show(job *J, sct_result **result)
 {
@@ -97,7 +124,9 @@ static sct_status show(job *J, sct_result **result)
     if (status == SCT_OK) status = sct_accuracy_refine(J->duty->solver, &J->duty->response, &accuracy, J->issues);
     if (status != SCT_OK) return status;
     sct_duty_gather(J->duty);
-    return sct_result_new(J->duty, &J->design, accuracy, result);
+    status = sct_result_new(J->duty, &J->design, accuracy, result);
+    if (status == SCT_OK) warn_of_large_displacements(J, *result);
+    return status;
 }
 
 static sct_status refuse_unsized(const job *J)
