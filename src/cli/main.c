@@ -46,6 +46,7 @@ static int run(int argc, char **argv)
 int main(int argc, char **argv)
 {
     signal(SIGPIPE, SIG_IGN); /* a reader that goes away is an output that cannot be written: exit code 6 */
+    signal(SIGXFSZ, SIG_IGN); /* and so is a limit on the size of files */
     const int code = run(argc, argv);
     if (fflush(stdout) != 0 || ferror(stdout)) {
         cli_say("error", "standard output cannot be written: %s", strerror(errno));

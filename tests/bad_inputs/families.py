@@ -184,8 +184,57 @@ def make_edits(folder, base):
         make(folder, lines[0], base.changed(edits), lines[at], messages, args)
 
 
+def entries(form, n):
+    return ", ".join(form % i for i in range(n))
+
+
+def make_large(folder, base):
+    """Depth, size and number."""
+    many_keys = 'model.json:1:%d: error: nested deeper than 64 levels; that is the most that is read\n'
+    make(folder, "J08-64-arrays", "[" * 64 + "]" * 64, "3",
+         "model.json:1:1: error: found an array; expected an object: a model\n")
+    for n in (65, 1000, 100000):
+        make(folder, "J08-%d-arrays" % n, "[" * n + "]" * n, "3", many_keys % 65)
+        make(folder, "J08-%d-objects" % n, '{"a":' * n + "1" + "}" * n, "3", many_keys % 321)
+    make(folder, "J08-100000-arrays-never-closed", "[" * 100000, "3", many_keys % 65)
+    too_large = "error: the file is larger than 67108864 bytes, the most that is read\n"
+    make(folder, "T07-file-of-100-MB", " " * 100000000, "7", "model.json: " + too_large)
+    make(folder, "T07-standard-input-of-100-MB", "{}", "7", "<stdin>: " + too_large,
+         "size - < ../T07-file-of-100-MB/model.json")
+    make(folder, "T07-file-of-60-MB-of-blanks", " " * 60000000, "3",
+         "model.json:1:1: error: the file is empty; expected a model, which is a JSON object { ... }\n")
+    too_long = "model.json:4:12: error: a string of more than 1048576 bytes; that is the most that is read\n"
+    make(folder, "T07-string-of-2-MB", base.changed([("/title", "=", '"' + "x" * 2000000 + '"')]), "3", too_long)
+    make(folder, "I08-title-of-1-MB-and-one", base.changed([("/title", "=", '"' + "x" * 1048577 + '"')]), "3", too_long)
+    make(folder, "I08-title-of-1-MB", base.changed([("/title", "=", '"' + "x" * 1048576 + '"')]), "0", "")
+    make(folder, "T07-number-of-20-MB", base.changed([("/joints/A/at/1", "=", "0." + "1" * 20000000)]), "3",
+         "model.json:26:22: error: a number of 20000002 characters; at most 64 are read\n")
+    for n in (17, 30, 60):
+        make(folder, "N08-%d-digits" % n, base.changed([("/joints/C/at/1", "=", "1." + ("1234567890" * 6)[:n - 1])]),
+             "0", "")
+    form = '"m%d": { "from": "A", "to": "nowhere", "group": "tie" }'
+    members = base.text[:base.spans["/members"][1] - 1].rstrip()
+    messages, column = "", len(members) - members.rfind("\n") + 2
+    for i in range(20):
+        messages += 'model.json:50:%d: error: /members/m%d/to: no joint "nowhere"; expected one of "A", "B", "C"\n' % (
+            column + (form % i).index('"nowhere"'), i)
+        column += len(form % i) + 2
+    make(folder, "S12-100000-members-with-a-fault-each", base.changed([("/members", "+", entries(form, 100000))]), "3",
+         messages + "scantling: 99980 more errors not shown\n")
+    form = '"c%d": { "joints": { "C": [0, -1] } }'
+    make(folder, "L08-10001-load-cases", base.changed([("/cases", "+", entries(form, 9998))]), "7",
+         "model.json:52:12: error: /cases: found 10001 entries; at most 10000 are read\n")
+    sums = '"k%d": { "for": "allowable", "sum": { "dead": 1, "odd": 1 } }'
+    make(folder, "L08-10000-combinations", base.changed([("/combinations", "+", entries(sums, 9998))]), "0", "")
+    make(folder, "J06-key-100000-times", base.changed([("/joints", "+", entries('"D": { "at": [0, %d] }', 100000))]), "3",
+         "".join('model.json:28:%d: error: /joints/D: the key "D" stands twice in one object; the first is at 28:30\n'
+                 % (30 + len(entries('"D": { "at": [0, %d] }', i)) + 2) for i in range(1, 21)) +
+         "scantling: 99979 more errors not shown\n")
+
+
 def main():
     base = Base(read("base.json"))
+    make_large(sys.argv[1], base)
     make_missing(sys.argv[1], base)
     make_types(sys.argv[1], base)
     make_edits(sys.argv[1], base)
