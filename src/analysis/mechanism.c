@@ -34,6 +34,7 @@ typedef struct search {
     const sct_structure *st;
     const double *A;
     const sct_pattern *pattern;
+    sct_factor *factor; /* the solver's, borrowed for other values */
     sct_issues *issues;
     int n, q;              /* unknowns, vectors */
     bool *ground;          /* n: unknowns held because geometry has told their motion */
@@ -220,12 +221,12 @@ static void rotate_to_ritz(int n, int q, double G[BLOCK][BLOCK], double X[])
     }
 }
 
-static void iterate(search *f, sct_factor *factor)
+static void iterate(search *f)
 {
     sct_random random = {1};
     for (int i = 0; i < f->n * f->q; i++) f->X[i] = sct_random_unit(&random) - 0.5;
     for (int k = 0; k < ITERATIONS; k++) {
-        sct_factor_solve(factor, f->q, f->X);
+        sct_factor_solve(f->factor, f->q, f->X);
         orthonormalise(f->n, f->q, f->X);
     }
 }
@@ -234,20 +235,16 @@ static void iterate(search *f, sct_factor *factor)
  * SCT_NOT_CONVEX: no factor even with the largest shift: a value is not finite. */
 static sct_status inverse_iteration(search *f, bool *definite)
 {
-    sct_status status;
-    sct_factor *factor = sct_factor_new(f->pattern, SCT_ENGINE_AUTO, &status);
-    if (factor == NULL) return status;
-    status = sct_factor_update(factor, f->values, NULL);
+    sct_status status = sct_factor_update(f->factor, f->values, NULL);
     *definite = status == SCT_OK;
     if (status == SCT_OK) status = SCT_NOT_CONVEX;
     double before = 0.0;
     for (size_t k = 0; k < sizeof SHIFTS / sizeof SHIFTS[0] && status == SCT_NOT_CONVEX; k++) {
         for (int i = 0; i < f->n; i++) f->values[diagonal(f->pattern, i)] += SHIFTS[k] - before;
         before = SHIFTS[k];
-        status = sct_factor_update(factor, f->values, NULL);
+        status = sct_factor_update(f->factor, f->values, NULL);
     }
-    if (status == SCT_OK) iterate(f, factor);
-    sct_factor_free(factor);
+    if (status == SCT_OK) iterate(f);
     return status;
 }
 
@@ -510,7 +507,7 @@ static sct_status search_stiffness(search *f)
 
 sct_status sct_mechanism_find(sct_solver *solver, const double A[], sct_issues *issues)
 {
-    search f = {.st = sct_solver_structure(solver), .A = A, .issues = issues};
+    search f = {.st = sct_solver_structure(solver), .A = A, .factor = sct_solver_factor(solver), .issues = issues};
     int n_found = 0;
     f.n = f.st->n_dof;
     f.q = f.n < BLOCK ? f.n : BLOCK;

@@ -11,6 +11,7 @@
  *
  * SCT_OK: stable. SCT_MECHANISM: issues gain one error per independent motion found (at most 6), in words such as
  * "joint U3 can move in y". SCT_NOT_ACCURATE: too ill-conditioned to tell. SCT_NO_MEMORY.
+ * Borrows the solver's factor: analyse again before solving.
  * A: areas to judge with (n_groups).
  */
 sct_status sct_mechanism_find(sct_solver *solver, const double A[], sct_issues *issues);

@@ -6,13 +6,15 @@
 #include <stdlib.h>
 #include <string.h>
 
+#include "numerics/pairs.h"
+
 /* A bar of a case whose prescribed elongation is not zero. */
 typedef struct stretched {
     int k, bar;
 } stretched;
 
 /* Bars are kept as flat arrays of `width` = 2 dim numbers, padded with b = 0 at unknown 0, so that inner loops have
- * constant length. Nothing is allocated after sct_solver_new. */
+ * constant length. Nothing is allocated after the first analysis. */
 struct sct_solver {
     const sct_structure *st;
     sct_factor *factor;
@@ -43,38 +45,67 @@ static void *array(size_t n, size_t size)
 
 /* ---- setting up -------------------------------------------------------------------------------------------------- */
 
-/* A pair of unknowns of one bar: an entry of the upper triangle. */
-typedef struct pair {
-    int row, column, entry;
-} pair;
+/* The entries of the upper triangle that bars and the diagonal have a part in, with scratch to sort them. */
+typedef struct pair_list {
+    int count, *row, *column, *order, *work;
+} pair_list;
 
-static int by_column_then_row(const void *a, const void *b)
+static bool pairs_allocate(pair_list *p, size_t most, size_t n)
 {
-    const pair *p = a, *q = b;
-    if (p->column != q->column) return p->column < q->column ? -1 : 1;
-    return (p->row > q->row) - (p->row < q->row);
+    p->row = array(most, sizeof *p->row);
+    p->column = array(most, sizeof *p->column);
+    p->order = array(most, sizeof *p->order);
+    p->work = array(most + n + 1, sizeof *p->work);
+    return p->row != NULL && p->column != NULL && p->order != NULL && p->work != NULL;
 }
 
-/* All pairs of all bars, and the diagonal (entry -1). Returns how many; sets entry_start and per_area. */
-static size_t list_pairs(sct_solver *s, pair pairs[])
+static void pairs_free(pair_list *p)
+{
+    free(p->row);
+    free(p->column);
+    free(p->order);
+    free(p->work);
+}
+
+/* All pairs of unknowns of all bars, pair p being entry p of per_area, then the diagonal. */
+static void list_pairs(sct_solver *s, pair_list *list)
 {
     const sct_structure *st = s->st;
-    size_t n = 0;
-    int entry = 0;
+    int n = 0;
     for (int e = 0; e < st->n_bars; e++) {
         const sct_bar *bar = &st->bars[e];
-        s->entry_start[e] = entry;
+        s->entry_start[e] = n;
         for (int j = 0; j < bar->n_dof; j++) {
             for (int i = 0; i <= j; i++) {
                 const int p = bar->dof[i], q = bar->dof[j];
-                pairs[n++] = (pair){.row = p < q ? p : q, .column = p < q ? q : p, .entry = entry};
-                s->per_area[entry++] = s->EL[e] * bar->b[i] * bar->b[j];
+                list->row[n] = p < q ? p : q;
+                list->column[n] = p < q ? q : p;
+                s->per_area[n++] = s->EL[e] * bar->b[i] * bar->b[j];
             }
         }
     }
-    s->entry_start[st->n_bars] = entry;
-    for (int i = 0; i < st->n_dof; i++) pairs[n++] = (pair){.row = i, .column = i, .entry = -1};
-    return n;
+    s->entry_start[st->n_bars] = n;
+    for (int i = 0; i < st->n_dof; i++, n++) list->row[n] = list->column[n] = i;
+    list->count = n;
+}
+
+/* The pattern from the sorted pairs; entry: where each pair went. Returns the number of entries. */
+static size_t merge_pairs(sct_solver *s, const pair_list *list)
+{
+    const int n_of_bars = s->entry_start[s->st->n_bars];
+    int last = -1, row = -1, column = -1;
+    for (int k = 0; k < list->count; k++) {
+        const int p = list->order[k];
+        if (list->row[p] != row || list->column[p] != column) {
+            row = list->row[p];
+            column = list->column[p];
+            s->row[++last] = row;
+            s->column[column + 1]++;
+        }
+        if (p < n_of_bars) s->entry[p] = last;
+    }
+    for (int j = 0; j < s->st->n_dof; j++) s->column[j + 1] += s->column[j];
+    return (size_t)last + 1;
 }
 
 static sct_status build_pattern(sct_solver *s)
@@ -82,29 +113,17 @@ static sct_status build_pattern(sct_solver *s)
     const sct_structure *st = s->st;
     size_t most = (size_t)st->n_dof;
     for (int e = 0; e < st->n_bars; e++) most += (size_t)(st->bars[e].n_dof * (st->bars[e].n_dof + 1) / 2);
-    pair *pairs = array(most, sizeof *pairs);
+    pair_list list = {0};
     s->entry = array(most, sizeof *s->entry);
     s->per_area = array(most, sizeof *s->per_area);
     s->row = array(most, sizeof *s->row);
-    if (pairs == NULL || s->entry == NULL || s->per_area == NULL || s->row == NULL) {
-        free(pairs);
-        return SCT_NO_MEMORY;
+    if (pairs_allocate(&list, most, (size_t)st->n_dof) && s->entry != NULL && s->per_area != NULL && s->row != NULL) {
+        list_pairs(s, &list);
+        sct_sort_pairs(st->n_dof, list.count, list.row, list.column, list.order, list.work);
+        s->K = array(merge_pairs(s, &list), sizeof *s->K);
+        s->pattern = (sct_pattern){.n = st->n_dof, .column = s->column, .row = s->row};
     }
-    const size_t n = list_pairs(s, pairs);
-    qsort(pairs, n, sizeof *pairs, by_column_then_row);
-    int last = -1;
-    for (size_t p = 0; p < n; p++) {
-        const bool is_new = p == 0 || pairs[p].row != pairs[p - 1].row || pairs[p].column != pairs[p - 1].column;
-        if (is_new) {
-            s->row[++last] = pairs[p].row;
-            s->column[pairs[p].column + 1]++;
-        }
-        if (pairs[p].entry >= 0) s->entry[pairs[p].entry] = last;
-    }
-    free(pairs);
-    for (int j = 0; j < st->n_dof; j++) s->column[j + 1] += s->column[j];
-    s->pattern = (sct_pattern){.n = st->n_dof, .column = s->column, .row = s->row};
-    s->K = array((size_t)last + 1, sizeof *s->K);
+    pairs_free(&list);
     return s->K != NULL ? SCT_OK : SCT_NO_MEMORY;
 }
 
@@ -295,6 +314,11 @@ int sct_solver_analyses(const sct_solver *s)
 void sct_solver_solve(sct_solver *s, int count, double b[])
 {
     sct_factor_solve(s->factor, count, b);
+}
+
+sct_factor *sct_solver_factor(sct_solver *s)
+{
+    return s->factor;
 }
 
 const double *sct_solver_areas(const sct_solver *s)

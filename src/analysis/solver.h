@@ -1,6 +1,6 @@
 /**
  * Linear-elastic analysis of one structure for many sizes: symbolic work once, then per design fill, factor, solve all
- * load cases, bar forces. No allocation after sct_solver_new.
+ * load cases, bar forces. No allocation after the first analysis.
  */
 #ifndef SCT_ANALYSIS_SOLVER_H
 #define SCT_ANALYSIS_SOLVER_H
@@ -36,6 +36,10 @@ int sct_solver_analyses(const sct_solver *solver);
 /** Solves K x = b in place for `count` right-hand sides (n_dof x count, column-major) with the factor of the latest
  * analysis, in batches. */
 void sct_solver_solve(sct_solver *solver, int count, double b[]);
+
+/** The factor, for mechanism.c and for asking its size: whoever updates it spoils it for sct_solver_solve until the next
+ * analysis. */
+sct_factor *sct_solver_factor(sct_solver *solver);
 
 /** Areas of the latest analysis (n_groups). */
 const double *sct_solver_areas(const sct_solver *solver);

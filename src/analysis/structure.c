@@ -519,7 +519,9 @@ static sct_status check_size(const sct_model *m, sct_issues *issues)
 {
     const double entries = 21.0 * m->n_members + 3.0 * m->n_joints;
     const double results = ((double)m->n_cases + m->n_combinations) * (3.0 * m->n_joints + m->n_members);
-    if (entries < INT_MAX && results < INT_MAX) return SCT_OK;
+    double checks = (double)m->n_combinations * m->n_members;
+    for (int i = 0; i < m->n_deflections; i++) checks += (double)m->n_combinations * m->deflections[i].n_joints;
+    if (entries < INT_MAX && results < INT_MAX && checks < INT_MAX) return SCT_OK;
     sct_issue_add(issues, SCT_ERROR, (sct_where){.file = m->file},
                   "the model is too large: %d members and %d joints with %d cases and %d combinations", m->n_members,
                   m->n_joints, m->n_cases, m->n_combinations);

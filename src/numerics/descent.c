@@ -114,6 +114,13 @@ static size_t lay_out(sct_descent *w, double *block)
     return used;
 }
 
+/* Square matrices here and in the QP; gradients of the potential set, in the QP once more; vectors of all. */
+double sct_descent_bytes(double n, double m, double at_once)
+{
+    enum { SQUARES = 9, OF_ALL = 8 };
+    return (double)sizeof(double) * (SQUARES * n * n + 2 * at_once * n + OF_ALL * m);
+}
+
 sct_descent *sct_descent_new(const sct_nlp *nlp)
 {
     const size_t n = (size_t)nlp->n, m = (size_t)nlp->m, all = m + (size_t)nlp->m_eq;

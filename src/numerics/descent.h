@@ -91,6 +91,8 @@ typedef struct sct_descent_info {
     int worst;          /* the constraint of the largest violation, -1 when m = 0 */
 } sct_descent_info;
 
+/** [bytes] that the workspace comes to use for n variables and m constraints, `at_once` of them in the potential set. */
+double sct_descent_bytes(double n, double m, double at_once);
 /** Workspace for problems of this size; NULL when out of memory. */
 sct_descent *sct_descent_new(const sct_nlp *nlp);
 void sct_descent_free(sct_descent *descent);

@@ -1,6 +1,8 @@
 /* One interface to two factorizations, chosen by size. */
 #include "factor.h"
 
+#include <limits.h>
+#include <math.h>
 #include <stdlib.h>
 
 #include "numerics/small.h"
@@ -45,6 +47,18 @@ void sct_factor_free(sct_factor *factor)
 sct_engine sct_factor_engine(const sct_factor *factor)
 {
     return factor->small != NULL ? SCT_ENGINE_SMALL : SCT_ENGINE_SPARSE;
+}
+
+double sct_factor_entries(const sct_factor *factor)
+{
+    return factor->small != NULL ? sct_small_entries(factor->small) : sct_sparse_entries(factor->sparse);
+}
+
+double sct_factor_bytes(const sct_factor *factor)
+{
+    if (factor->small != NULL) return 0.0;
+    const double entries = sct_sparse_entries(factor->sparse);
+    return entries < INT_MAX ? entries * (sizeof(double) + sizeof(int)) : INFINITY;
 }
 
 sct_status sct_factor_update(sct_factor *factor, const double values[], int *stopped_at)

@@ -94,20 +94,24 @@ static void find_parents(int n, columns *c)
 }
 
 /* Row i of L is the part of the elimination tree that is reached from the entries of A in row i. Visiting the rows in
- * order makes each column ascending. First pass (row == NULL) counts, second writes. */
-static void walk_rows(int n, columns *c)
+ * order makes each column ascending. First pass (row == NULL) counts, second writes. Gives up beyond `most` entries;
+ * returns how many there are. */
+static size_t walk_rows(int n, size_t most, columns *c)
 {
+    size_t entries = 0;
     for (int i = 0; i < n; i++) c->mark[i] = -1;
-    for (int i = 0; i < n; i++) {
+    for (int i = 0; i < n && entries <= most; i++) {
         c->mark[i] = i;
         for (int k = c->upper_start[i]; k < c->upper_start[i + 1]; k++) {
             for (int j = c->upper[k]; c->mark[j] != i; j = c->parent[j]) {
                 c->mark[j] = i;
                 if (c->row != NULL) c->row[c->start[j] + (size_t)c->count[j]] = i;
                 c->count[j]++;
+                entries++;
             }
         }
     }
+    return entries;
 }
 
 /* SCT_OK, SCT_NO_MEMORY; SCT_TOO_LARGE when L has more entries than `most` (counted before they are stored). */
@@ -123,13 +127,12 @@ static sct_status find_columns(const sct_pattern *a, const int inverse_order[], 
     if (!c->parent || !c->count || !c->mark || !c->upper_start || !c->upper || !c->start) return SCT_NO_MEMORY;
     permute_upper(a, inverse_order, c);
     find_parents(a->n, c);
-    walk_rows(a->n, c);
+    if (walk_rows(a->n, most, c) > most) return SCT_TOO_LARGE;
     for (size_t j = 0; j < n; j++) c->start[j + 1] = c->start[j] + (size_t)c->count[j];
-    if (c->start[n] > most) return SCT_TOO_LARGE;
     c->row = array(c->start[n], sizeof *c->row);
     if (c->row == NULL) return SCT_NO_MEMORY;
     memset(c->count, 0, n * sizeof *c->count);
-    walk_rows(a->n, c);
+    walk_rows(a->n, most, c);
     return SCT_OK;
 }
 
@@ -264,6 +267,11 @@ void sct_small_free(sct_small *s)
     free(s->t);
     free(s->b);
     free(s);
+}
+
+double sct_small_entries(const sct_small *s)
+{
+    return (double)s->size;
 }
 
 /* The triangle D = L d L' in place. Returns the column with a bad pivot, or -1. */

@@ -14,6 +14,9 @@ typedef struct sct_small sct_small;
 sct_small *sct_small_new(const sct_pattern *pattern, int most_updates, sct_status *status);
 void sct_small_free(sct_small *small);
 
+/** Entries of L. */
+double sct_small_entries(const sct_small *small);
+
 /** As sct_factor_update; refuses pivots that are not positive or not finite. Never SCT_NO_MEMORY. */
 sct_status sct_small_update(sct_small *small, const double values[], int *stopped_at);
 

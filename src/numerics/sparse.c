@@ -13,6 +13,8 @@
 #include <stdint.h>
 #include <stdlib.h>
 
+#include "numerics/pairs.h"
+
 #define INLINE static inline __attribute__((always_inline)) /* so that R is a constant inside */
 
 enum { AT_ONCE = 4 }; /* right-hand sides of one sweep through L */
@@ -26,6 +28,7 @@ struct sct_sparse {
     double *b;  /* n x AT_ONCE right-hand sides, permuted and interleaved */
     int *order; /* order[k]: unknown of the pattern that stands k-th */
     int *place; /* value of the pattern -> place in A */
+    double entries; /* of L */
 };
 
 static sct_status status_of(int cholmod_status)
@@ -63,44 +66,57 @@ static sct_status find_order(sct_sparse *s, const sct_pattern *pattern)
     return SCT_OK;
 }
 
-/* Column and row of a pattern entry in elimination order, upper triangle. */
-typedef struct entry {
-    int row, column, value;
-} entry;
+/* Scratch of the set-up: row and column of every value in elimination order, and what sorting them takes. */
+typedef struct scratch {
+    int *inverse, *row, *column, *sorted, *work;
+} scratch;
 
-static int by_column_then_row(const void *a, const void *b)
+static bool scratch_allocate(scratch *t, size_t n, size_t n_values)
 {
-    const entry *p = a, *q = b;
-    if (p->column != q->column) return p->column < q->column ? -1 : 1;
-    return (p->row > q->row) - (p->row < q->row);
+    t->inverse = calloc(n, sizeof *t->inverse);
+    t->row = calloc(n_values, sizeof *t->row);
+    t->column = calloc(n_values, sizeof *t->column);
+    t->sorted = calloc(n_values, sizeof *t->sorted);
+    t->work = calloc(n + 1 + n_values, sizeof *t->work);
+    return t->inverse != NULL && t->row != NULL && t->column != NULL && t->sorted != NULL && t->work != NULL;
 }
 
-/* Lays out s->A and fills s->place; `entries` is scratch for every value, `inverse` for every unknown. */
-static void permute(sct_sparse *s, const sct_pattern *pattern, entry entries[], int inverse[])
+static void scratch_free(scratch *t)
 {
-    const int n = pattern->n;
+    free(t->inverse);
+    free(t->row);
+    free(t->column);
+    free(t->sorted);
+    free(t->work);
+}
+
+/* Lays out s->A and fills s->place. */
+static void permute(sct_sparse *s, const sct_pattern *pattern, const scratch *t)
+{
+    const int n = pattern->n, n_values = pattern->column[n];
     int *column = s->A->p, *row = s->A->i;
-    for (int k = 0; k < n; k++) inverse[s->order[k]] = k;
+    for (int k = 0; k < n; k++) t->inverse[s->order[k]] = k;
     for (int j = 0; j < n; j++) {
         for (int k = pattern->column[j]; k < pattern->column[j + 1]; k++) {
-            const int p = inverse[pattern->row[k]], q = inverse[j];
-            entries[k] = (entry){.row = p < q ? p : q, .column = p < q ? q : p, .value = k};
+            const int p = t->inverse[pattern->row[k]], q = t->inverse[j];
+            t->row[k] = p < q ? p : q;
+            t->column[k] = p < q ? q : p;
         }
     }
-    qsort(entries, (size_t)pattern->column[n], sizeof *entries, by_column_then_row);
+    sct_sort_pairs(n, n_values, t->row, t->column, t->sorted, t->work);
     for (int j = 0; j <= n; j++) column[j] = 0;
-    for (int k = 0; k < pattern->column[n]; k++) {
-        column[entries[k].column + 1]++;
-        row[k] = entries[k].row;
-        s->place[entries[k].value] = k;
-        ((double *)s->A->x)[k] = entries[k].row == entries[k].column ? 1.0 : 0.0;
+    for (int k = 0; k < n_values; k++) {
+        const int value = t->sorted[k];
+        column[t->column[value] + 1]++;
+        row[k] = t->row[value];
+        s->place[value] = k;
     }
     for (int j = 0; j < n; j++) column[j + 1] += column[j];
 }
 
-/* Symbolic work, and one factorization of the identity so that all memory is there before the first use.
- */
-static sct_status set_up(sct_sparse *s, const sct_pattern *pattern, entry entries[], int inverse[])
+/* Symbolic work only: the numbers of the factor are allocated by the first update, so that its size can be asked for
+ * before. */
+static sct_status set_up(sct_sparse *s, const sct_pattern *pattern, const scratch *t)
 {
     const size_t n = (size_t)pattern->n;
     cholmod_common *common = &s->common;
@@ -108,13 +124,13 @@ static sct_status set_up(sct_sparse *s, const sct_pattern *pattern, entry entrie
     if (ordered != SCT_OK) return ordered;
     s->A = cholmod_allocate_sparse(n, n, (size_t)pattern->column[n], 1, 1, 1, CHOLMOD_REAL, common);
     if (s->A == NULL) return status_of(common->status);
-    permute(s, pattern, entries, inverse);
+    permute(s, pattern, t);
     common->nmethods = 1;
     common->method[0].ordering = CHOLMOD_NATURAL;
     common->postorder = 0;
     s->L = cholmod_analyze(s->A, common);
     if (s->L == NULL) return status_of(common->status);
-    if (!cholmod_factorize(s->A, s->L, common) || common->status != CHOLMOD_OK) return status_of(common->status);
+    s->entries = common->lnz;
     return SCT_OK;
 }
 
@@ -128,13 +144,11 @@ sct_sparse *sct_sparse_new(const sct_pattern *pattern, sct_status *status)
     s->order = calloc(n, sizeof *s->order);
     s->place = calloc(n_values, sizeof *s->place);
     s->b = calloc(n * AT_ONCE, sizeof *s->b);
-    entry *entries = calloc(n_values, sizeof *entries);
-    int *inverse = calloc(n, sizeof *inverse);
-    if (s->order != NULL && s->place != NULL && s->b != NULL && entries != NULL && inverse != NULL) {
-        *status = set_up(s, pattern, entries, inverse);
+    scratch t = {0};
+    if (scratch_allocate(&t, n, n_values) && s->order != NULL && s->place != NULL && s->b != NULL) {
+        *status = set_up(s, pattern, &t);
     }
-    free(entries);
-    free(inverse);
+    scratch_free(&t);
     if (*status == SCT_OK) return s;
     sct_sparse_free(s);
     return NULL;
@@ -150,6 +164,11 @@ void sct_sparse_free(sct_sparse *s)
     free(s->place);
     free(s->b);
     free(s);
+}
+
+double sct_sparse_entries(const sct_sparse *s)
+{
+    return s->entries;
 }
 
 static sct_status stop(const sct_sparse *s, size_t column, int *stopped_at)

@@ -6,11 +6,14 @@
 
 typedef struct sct_sparse sct_sparse;
 
-/** *status: SCT_OK, SCT_NO_MEMORY, SCT_TOO_LARGE (beyond what 32-bit indices hold). pattern->n >= 1. */
+/** Symbolic work. *status: SCT_OK, SCT_NO_MEMORY, SCT_TOO_LARGE (beyond what 32-bit indices hold). pattern->n >= 1. */
 sct_sparse *sct_sparse_new(const sct_pattern *pattern, sct_status *status);
 void sct_sparse_free(sct_sparse *sparse);
 
-/** As sct_factor_update. */
+/** Entries of L. */
+double sct_sparse_entries(const sct_sparse *sparse);
+
+/** As sct_factor_update; SCT_TOO_LARGE when L has more entries than 32-bit indices reach. */
 sct_status sct_sparse_update(sct_sparse *sparse, const double values[], int *stopped_at);
 
 /** As sct_factor_solve. */

@@ -64,17 +64,22 @@ static void list_members_at_joints(sct_scene *scene)
     start[r->n_joints] = 2 * r->n_members;
 }
 
-static sct_sense sense_of(const sct_result *r, int member)
+/* Largest component of the loads of each combination. */
+static void find_largest_loads(const sct_result *r, double largest[])
+{
+    for (int c = 0; c < r->n_combinations; c++) {
+        const double *load = r->load + (size_t)c * (size_t)r->n_joints * 3;
+        largest[c] = 0;
+        for (int i = 0; i < 3 * r->n_joints; i++) largest[c] = fmax(largest[c], fabs(load[i]));
+    }
+}
+
+static sct_sense sense_of(const sct_result *r, const double largest_load[], int member)
 {
     const sct_member_result *m = &r->members[member];
-    double N = m->N, largest = 0;
+    double N = m->N;
     if (m->combination < 0 && N == 0) N = fabs(m->N_max) >= fabs(m->N_min) ? m->N_max : m->N_min;
-    if (m->combination >= 0) {
-        const double *load = r->load + (size_t)m->combination * (size_t)r->n_joints * 3;
-        for (int i = 0; i < 3 * r->n_joints; i++) largest = fmax(largest, fabs(load[i]));
-    } else {
-        largest = fmax(fabs(m->N_max), fabs(m->N_min));
-    }
+    const double largest = m->combination >= 0 ? largest_load[m->combination] : fmax(fabs(m->N_max), fabs(m->N_min));
     if (fabs(N) <= NO_FORCE_MOST && fabs(N) <= NO_FORCE * largest) return SENSE_NONE;
     return N > 0 ? SENSE_TENSION : SENSE_COMPRESSION;
 }
@@ -115,13 +120,15 @@ sct_status sct_scene_open(sct_scene *scene, const sct_result *result, const sct_
     scene->near = sct_arena_array(scene->arena, 2 * n_members, sizeof *scene->near);
     scene->sticks = sct_arena_array(scene->arena, n_members, sizeof *scene->sticks);
     scene->lengths = sct_arena_array(scene->arena, n_members, sizeof *scene->lengths);
-    if (scene->lengths == NULL || scene->at == NULL || scene->away == NULL || scene->is_named == NULL ||
+    double *largest_load = sct_arena_array(scene->arena, (size_t)result->n_combinations, sizeof *largest_load);
+    if (largest_load == NULL || scene->lengths == NULL || scene->at == NULL || scene->away == NULL || scene->is_named == NULL ||
         scene->near_start == NULL || scene->near == NULL || scene->sticks == NULL)
         return SCT_NO_MEMORY;
     if (scene->options.combination < 0 || scene->options.combination >= result->n_combinations)
         scene->options.combination = worst_for_deflection(result);
     list_members_at_joints(scene);
-    for (int m = 0; m < result->n_members; m++) scene->sticks[m].sense = sense_of(result, m);
+    find_largest_loads(result, largest_load);
+    for (int m = 0; m < result->n_members; m++) scene->sticks[m].sense = sense_of(result, largest_load, m);
     return SCT_OK;
 }
 

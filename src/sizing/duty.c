@@ -18,18 +18,17 @@ static bool is_sound(const sct_bar_rule *r)
            r->slenderness_compression > 0.0;
 }
 
+/* By limit, combination, joint. */
 static void list_rows(const sct_model *model, sct_deflection_row *rows, int *n)
 {
-    int before = 0; /* limits times their joints, so far */
     *n = 0;
     for (int limit = 0; limit < model->n_deflections; limit++) {
         const sct_deflection_limit *d = &model->deflections[limit];
         for (int c = 0; c < model->n_combinations; c++)
             for (int k = 0; d->in[c] && k < d->n_joints; k++) {
-                if (rows != NULL) rows[*n] = (sct_deflection_row){limit, d->joints[k], c, before + k};
+                if (rows != NULL) rows[*n] = (sct_deflection_row){limit, d->joints[k], c};
                 (*n)++;
             }
-        before += d->n_joints;
     }
 }
 

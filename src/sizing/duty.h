@@ -20,7 +20,6 @@ typedef struct sct_design {
 /* One deflection limit at one joint in one combination. */
 typedef struct sct_deflection_row {
     int limit, joint, combination;
-    int result; /* place of this limit at this joint when all are counted through, whatever the combination */
 } sct_deflection_row;
 
 typedef struct sct_duty {

@@ -407,6 +407,16 @@ void sct_problem_free(sct_problem *P)
     free(P);
 }
 
+double sct_problem_bytes(const sct_duty *duty)
+{
+    const sct_structure *st = duty->st;
+    const double bar_rows = (double)duty->n_allowable * st->n_bars, m = bar_rows + duty->n_rows, n = st->n_vars;
+    const double at_once = fmin(bar_rows, 2.0 * sct_descent_defaults().per_cluster * st->n_groups) + duty->n_rows;
+    const double du = (double)st->n_cases * n * st->n_dof;
+    return 2.0 * du * sizeof(double) + /* twice: the choice of sections has its own */
+           bar_rows * sizeof(sct_need) + sct_descent_bytes(n, m, at_once);
+}
+
 const sct_nlp *sct_problem_nlp(const sct_problem *P) { return &P->nlp; }
 
 double sct_problem_mass_unit(const sct_problem *P) { return P->mass_unit; }

@@ -37,6 +37,9 @@ sct_status sct_problem_new(sct_duty *duty, const bool compressed[], const bool i
                            bool plain, sct_problem **problem, sct_fault why);
 void sct_problem_free(sct_problem *problem);
 
+/** [bytes] that the problem of a duty and a descent on it come to use. */
+double sct_problem_bytes(const sct_duty *duty);
+
 const sct_nlp *sct_problem_nlp(const sct_problem *problem);
 
 /** [kg] what the objective counts in. */

@@ -157,28 +157,32 @@ static void fill_member(sct_result *r, const sct_duty *duty, const sct_design *d
     r->utilisation = sct_worse(r->utilisation, m->utilisation);
 }
 
+static void consider_row(sct_result *r, const sct_duty *duty, int row, sct_deflection_result *out)
+{
+    const double utilisation = settled(sct_duty_row_utilisation(duty, row));
+    if (out->combination >= 0 && (isnan(out->utilisation) || utilisation <= out->utilisation)) return;
+    out->combination = duty->rows[row].combination;
+    out->u = duty->u[row];
+    out->utilisation = utilisation;
+    r->utilisation = sct_worse(r->utilisation, utilisation);
+}
+
+/* The duty's rows come by limit, combination, joint. */
 static void fill_deflections(sct_result *r, const sct_duty *duty)
 {
     const sct_model *model = duty->st->model;
-    int n = 0;
+    sct_deflection_result *out = r->deflections;
+    int row = 0;
     for (int limit = 0; limit < model->n_deflections; limit++) {
         const sct_deflection_limit *d = &model->deflections[limit];
         for (int k = 0; k < d->n_joints; k++) {
-            sct_deflection_result *out = &r->deflections[n++];
-            *out = (sct_deflection_result){.limit = limit, .joint = d->joints[k], .combination = -1, .at_most = d->at_most,
-                                           .label = d->label};
-            memcpy(out->direction, d->direction, sizeof out->direction);
+            out[k] = (sct_deflection_result){.limit = limit, .joint = d->joints[k], .combination = -1, .at_most = d->at_most,
+                                             .label = d->label};
+            memcpy(out[k].direction, d->direction, sizeof out[k].direction);
         }
-    }
-    for (int row = 0; row < duty->n_rows; row++) {
-        const sct_deflection_row *at = &duty->rows[row];
-        const double utilisation = settled(sct_duty_row_utilisation(duty, row));
-        sct_deflection_result *out = &r->deflections[at->result];
-        if (out->combination >= 0 && (isnan(out->utilisation) || utilisation <= out->utilisation)) continue;
-        out->combination = at->combination;
-        out->u = duty->u[row];
-        out->utilisation = utilisation;
-        r->utilisation = sct_worse(r->utilisation, utilisation);
+        for (int c = 0; c < model->n_combinations; c++)
+            for (int k = 0; d->in[c] && k < d->n_joints; k++) consider_row(r, duty, row++, &out[k]);
+        out += d->n_joints;
     }
 }
 

@@ -5,6 +5,7 @@
 
 #include "analysis/accuracy.h"
 #include "analysis/mechanism.h"
+#include "base/memory.h"
 #include "base/random.h"
 #include "sizing/doubts.h"
 #include "sizing/price.h"
@@ -66,8 +67,26 @@ static void hold_given_sizes(job *J)
     }
 }
 
+/* Before the memory is taken: what the numbers of the factor and of the search need. */
+static sct_status check_memory(const job *J, bool is_sizing)
+{
+    const double MB = 1e6, factor = sct_factor_bytes(sct_solver_factor(J->duty->solver)), most = sct_memory_most();
+    const double search = is_sizing ? sct_problem_bytes(J->duty) : 0.0;
+    if (factor + search <= most) return SCT_OK;
+    if (!isfinite(factor))
+        sct_issue_add(J->issues, SCT_ERROR, (sct_where){.file = J->model->file},
+                      "the model is too large: the factor of its stiffness matrix has more entries than can be numbered");
+    else
+        sct_issue_add(J->issues, SCT_ERROR, (sct_where){.file = J->model->file},
+                      "the model is too large: %d unknowns and %d sized groups need about %.0f MB of memory (%.0f MB for the "
+                      "factor of the stiffness matrix, %.0f MB for the search); at most %.0f MB may be taken here",
+                      J->st->n_dof, J->st->n_vars, (factor + search) / MB, factor / MB, search / MB, most / MB);
+    return SCT_TOO_LARGE;
+}
+
 /* Structure, duty and an empty design; settings checked. */
-static sct_status open_job(job *J, const sct_model *model, const sct_settings *settings, sct_issues *issues)
+static sct_status open_job(job *J, const sct_model *model, const sct_settings *settings, bool is_sizing,
+                           sct_issues *issues)
 {
     *J = (job){.model = model, .issues = issues, .best = -1};
     J->settings = settings != NULL ? *settings : sct_settings_defaults();
@@ -80,6 +99,8 @@ static sct_status open_job(job *J, const sct_model *model, const sct_settings *s
     if (status != SCT_OK) return status;
     J->duty = sct_duty_new(J->st, J->settings.engine, &status);
     if (J->duty == NULL) return status;
+    status = check_memory(J, is_sizing && J->st->n_vars > 0);
+    if (status != SCT_OK) return status;
     J->arena = sct_arena_new();
     if (J->arena == NULL) return SCT_NO_MEMORY;
     J->compressed = sct_arena_array(J->arena, (size_t)J->st->n_bars, sizeof *J->compressed);
@@ -124,7 +145,7 @@ sct_status sct_check(const sct_model *model, const sct_settings *settings, sct_r
 {
     job J;
     *result = NULL;
-    sct_status status = open_job(&J, model, settings, issues);
+    sct_status status = open_job(&J, model, settings, false, issues);
     if (status == SCT_OK) status = refuse_unsized(&J);
     if (status == SCT_OK) status = show(&J, result);
     close_job(&J);
@@ -159,9 +180,15 @@ static bool tell_sections(double mass, void *user)
     return tell(J, "sections", mass, 0.0, mass);
 }
 
-static int default_starts(const sct_structure *st)
+/* As many starts as take about a second, by the operations that a descent of a dozen points needs: sensitivities of
+ * every case and variable, and dense work on the square of the variables. */
+static int default_starts(const job *J)
 {
-    return st->n_dof <= 500 ? 8 : st->n_dof <= 3000 ? 3 : 1; /* "cheap" is up to about half a second in all */
+    enum { MOST = 8, POINTS = 12, SOLVE = 4, DENSE = 12 };
+    const double AFFORDED = 1.5e9, n = J->st->n_vars;
+    const double entries = sct_factor_entries(sct_solver_factor(J->duty->solver));
+    const double work = POINTS * (SOLVE * entries * J->st->n_cases * (n + 1.0) + DENSE * n * n * n);
+    return (int)fmax(1.0, fmin(MOST, AFFORDED / work));
 }
 
 /* Start k: the middle of every range (or the model's own start), everything largest, then seeded random points within a
@@ -556,12 +583,12 @@ sct_status sct_size(const sct_model *model, const sct_settings *settings, sct_re
 {
     job J;
     *result = NULL;
-    sct_status status = open_job(&J, model, settings, issues);
+    sct_status status = open_job(&J, model, settings, true, issues);
     if (status == SCT_OK && J.st->n_vars == 0) {
         sct_issue_add(issues, SCT_NOTE, (sct_where){.file = model->file}, "every group is held: nothing to size, checked only");
         status = show(&J, result);
     } else if (status == SCT_OK) {
-        if (J.settings.starts == 0) J.settings.starts = default_starts(J.st);
+        if (J.settings.starts == 0) J.settings.starts = default_starts(&J);
         if (J.settings.iterations == 0) J.settings.starts = 1;
         status = search(&J, result);
     }
