@@ -5,6 +5,7 @@
 
 #include "base/random.h"
 #include "numerics/factor.h"
+#include "numerics/pairs.h"
 
 /* LAPACK: solves A X = B for a dense positive definite A; the independent path. */
 void dposv_(const char *uplo, const int *n, const int *nrhs, double *a, const int *lda, double *b, const int *ldb,
@@ -221,6 +222,41 @@ START_TEST(the_small_engine_refuses_tables_beyond_its_limit)
 }
 END_TEST
 
+START_TEST(pairs_are_sorted_by_column_then_row_and_equal_ones_keep_their_order)
+{
+    enum { N = 7, COUNT = 200 };
+    int row[COUNT], column[COUNT], order[COUNT], work[N + 1 + COUNT];
+    sct_random r = {.state = 11};
+    for (int p = 0; p < COUNT; p++) {
+        row[p] = (int)(sct_random_bits(&r) % N);
+        column[p] = (int)(sct_random_bits(&r) % N);
+    }
+    sct_sort_pairs(N, COUNT, row, column, order, work);
+    for (int k = 1; k < COUNT; k++) {
+        const int a = order[k - 1], b = order[k], A = (column[a] * N + row[a]) * COUNT + a,
+                  B = (column[b] * N + row[b]) * COUNT + b;
+        ck_assert_int_lt(A, B);
+    }
+    sct_sort_pairs(N, 0, row, column, order, work);
+}
+END_TEST
+
+START_TEST(the_size_of_a_factor_is_known_before_its_numbers)
+{
+    enum { N = 200 }; /* full: N (N + 1) / 2 entries */
+    matrix a;
+    sct_random r = {.state = 12};
+    random_matrix(&a, &r, N, 1.0, 0.0);
+    for (int e = 0; e < 2; e++) {
+        sct_factor *f = factor_of(&a, ENGINES[e]);
+        ck_assert_double_eq(sct_factor_entries(f), N * (N + 1) / 2.0);
+        ck_assert_double_eq(sct_factor_bytes(f), ENGINES[e] == SCT_ENGINE_SPARSE ? 12.0 * N * (N + 1) / 2.0 : 0.0);
+        sct_factor_free(f);
+    }
+    matrix_free(&a);
+}
+END_TEST
+
 START_TEST(the_same_values_give_the_same_bits)
 {
     sct_random r = {.state = 5};
@@ -251,6 +287,8 @@ int main(void)
     tcase_add_test(tests, no_unknowns_is_a_matrix_too);
     tcase_add_test(tests, auto_takes_the_small_engine_for_little_work_and_CHOLMOD_for_much);
     tcase_add_test(tests, the_small_engine_refuses_tables_beyond_its_limit);
+    tcase_add_test(tests, pairs_are_sorted_by_column_then_row_and_equal_ones_keep_their_order);
+    tcase_add_test(tests, the_size_of_a_factor_is_known_before_its_numbers);
     tcase_add_test(tests, the_same_values_give_the_same_bits);
     suite_add_tcase(suite, tests);
     return run_suite(suite);

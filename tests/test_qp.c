@@ -1,7 +1,7 @@
 /* The dense kernels and the dual active set QP. */
 #include "base/random.h"
 #include "numerics/dense.h"
-#include "numerics/qp.h"
+#include "numerics/reduced_qp.h"
 #include "support.h"
 #include <string.h>
 
@@ -338,6 +338,54 @@ START_TEST(four_hundred_degenerate_problems_end_at_kkt_points)
 }
 END_TEST
 
+/* The same answer whatever is guessed of the sides: nothing, the truth, something at random. */
+START_TEST(guessed_bounds_change_nothing_but_the_way)
+{
+    static problem p;
+    static solution whole, guessed;
+    double inside[N_MOST];
+    sct_random r = {5};
+    for (int k = 0; k < 600; ++k) {
+        random_problem(&r, &p, inside, k % 4 == 3);
+        ck_assert_int_eq(solve(&p, &whole), SCT_OK);
+        const sct_qp_data data = {p.n, p.m, p.m_eq, p.n, p.G, p.a, p.rows, p.b, p.has_bounds ? p.lower : NULL,
+                                  p.has_bounds ? p.upper : NULL};
+        signed char side[N_MOST];
+        for (int i = 0; i < p.n; ++i) {
+            const signed char truth = (signed char)((whole.mu_bound[i] > 0) - (whole.mu_bound[i] < 0));
+            const double u = sct_random_unit(&r);
+            side[i] = k % 3 == 0 || u < 0.5 ? truth : k % 3 == 1 ? 0 : (signed char)(u < 0.75 ? -1 : 1);
+        }
+        sct_reduced_qp *qp = sct_reduced_qp_new(p.n, p.m);
+        ck_assert_int_eq(sct_reduced_qp_solve(qp, &data, side, guessed.x, guessed.mu, guessed.mu_bound), SCT_OK);
+        sct_reduced_qp_free(qp);
+        const double error = kkt_error(&p, &guessed);
+        ck_assert_msg(error <= 1e-9, "problem %d (n %d, m %d, m_eq %d): KKT error %g", k, p.n, p.m, p.m_eq, error);
+        for (int i = 0; i < p.n; ++i) { /* G is definite: one solution */
+            ck_assert_double_eq_tol(guessed.x[i], whole.x[i], 1e-6);
+            ck_assert_int_eq(side[i], (guessed.mu_bound[i] > 0) - (guessed.mu_bound[i] < 0));
+        }
+    }
+}
+END_TEST
+
+START_TEST(guesses_that_leave_no_room_are_given_up)
+{
+    /* x1 + x2 >= 1.5 in the unit square: with both at 0 there is nothing */
+    const double G[4] = {1, 0, 0, 1}, a[2] = {0, 0}, row[2] = {-1, -1}, b[1] = {-1.5}, lower[2] = {0, 0}, upper[2] = {1, 1};
+    const sct_qp_data data = {2, 1, 0, 2, G, a, row, b, lower, upper};
+    signed char side[2] = {-1, 0};
+    double x[2], mu[1], mu_bound[2];
+    sct_reduced_qp *qp = sct_reduced_qp_new(2, 1);
+    ck_assert_int_eq(sct_reduced_qp_solve(qp, &data, side, x, mu, mu_bound), SCT_OK);
+    ck_close(x[0], 0.75, 1e-14);
+    ck_close(x[1], 0.75, 1e-14);
+    ck_assert_int_eq(side[0], 0);
+    sct_reduced_qp_free(qp);
+    sct_reduced_qp_free(NULL);
+}
+END_TEST
+
 /* A nonnegative combination of rows that must be <= b, and its negative that must be <= -b - gap. */
 START_TEST(contradictory_rows_are_reported_infeasible)
 {
@@ -437,6 +485,8 @@ int main(void)
     tcase_add_test(known, hock_and_schittkowski_28_nearly_singular);
     tcase_add_test(random, four_hundred_random_problems_end_at_kkt_points);
     tcase_add_test(random, four_hundred_degenerate_problems_end_at_kkt_points);
+    tcase_add_test(random, guessed_bounds_change_nothing_but_the_way);
+    tcase_add_test(random, guesses_that_leave_no_room_are_given_up);
     tcase_add_test(random, contradictory_rows_are_reported_infeasible);
     tcase_add_test(random, bounds_that_cross_and_rows_of_zeros_are_infeasible);
     tcase_add_test(random, an_indefinite_matrix_is_not_convex);

@@ -56,15 +56,21 @@ int sct_reduced_qp_iterations(const sct_reduced_qp *r)
     return r->iterations;
 }
 
-/* Fixes x where a side is guessed and that bound exists, and lists the others. */
+/* Does the variable have the bound of its guessed side, and no other that contradicts it? */
+static bool can_be_fixed(const sct_qp_data *p, int i, int side)
+{
+    const double lower = p->lower != NULL ? p->lower[i] : -INFINITY, upper = p->upper != NULL ? p->upper[i] : INFINITY;
+    return isfinite(side < 0 ? lower : upper) && lower <= upper;
+}
+
+/* Fixes x where a side is guessed, and lists the others. */
 static void split(sct_reduced_qp *r, const sct_qp_data *p, signed char side[], double x[])
 {
     r->n_free = 0;
     for (int i = 0; i < p->n; ++i) {
-        const double *bound = side[i] < 0 ? p->lower : p->upper;
-        if (side[i] != 0 && (bound == NULL || !isfinite(bound[i]))) side[i] = 0;
+        if (side[i] != 0 && !can_be_fixed(p, i, side[i])) side[i] = 0;
         if (side[i] == 0) r->free[r->n_free++] = i;
-        x[i] = side[i] != 0 ? bound[i] : 0;
+        x[i] = side[i] == 0 ? 0 : side[i] < 0 ? p->lower[i] : p->upper[i];
     }
 }
 

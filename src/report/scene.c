@@ -194,7 +194,7 @@ static double free_side(const sct_scene *scene, int m)
     bool left = false, right = false;
     for (int end = 0; end < 2; end++) {
         const int joint = end == 0 ? r->members[m].from : r->members[m].to;
-        for (int i = scene->near_start[joint]; i < scene->near_start[joint + 1]; i++) {
+        for (int i = scene->near_start[joint]; i < scene->near_start[joint + 1] && !(left && right); i++) {
             const sct_member_result *other = &r->members[scene->near[i]];
             const sct_point q = scene->at[other->from == joint ? other->to : other->from], p = scene->at[joint];
             const double L = hypot(q.x - p.x, q.y - p.y) * s->length;
