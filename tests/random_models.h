@@ -62,7 +62,7 @@ typedef struct rm_section {
 
 typedef struct rm_model {
     int dim, n_joints, n_bars, n_groups, n_cases, n_sums, n_limits, n_sections;
-    int base; /* joints 0 .. base - 1 are the pinned ones it grew from */
+    int base;   /* joints 0 .. base - 1 are the pinned ones it grew from */
     int needed; /* bars 0 .. needed - 1 hold it; the others are redundant */
     rm_material material[2];
     rm_joint joint[RM_JOINTS];
@@ -143,7 +143,8 @@ static inline bool rm_has_bar(const rm_model *m, int a, int b)
     return false;
 }
 
-/* Adds a joint that is held by bars to joints below `reach` and, now and then, by an inclined roller in place of one. */
+/* Adds a joint that is held by bars to joints below `reach` and, now and then, by an inclined roller in place of one.
+ */
 static inline void rm_add_joint(rm_model *m, sct_random *r, int reach, bool may_roll)
 {
     const int j = m->n_joints++;
@@ -427,11 +428,11 @@ enum { RM_UNIT_SETS = sizeof RM_UNITS / sizeof *RM_UNITS };
 /* How a model is written down. All zero: SI, in order, compact. */
 typedef struct rm_style {
     int units;
-    sct_random *order;  /* keys of objects whose order says nothing are shuffled; NULL: not */
-    sct_random *blanks; /* random blanks between tokens; NULL: none */
-    bool crlf;          /* a line per entry, ended as on other systems */
-    bool exponents;     /* numbers as 1.25000000000000000e-03 */
-    bool reversed;      /* the sections of the family the other way round */
+    sct_random *order;               /* keys of objects whose order says nothing are shuffled; NULL: not */
+    sct_random *blanks;              /* random blanks between tokens; NULL: none */
+    bool crlf;                       /* a line per entry, ended as on other systems */
+    bool exponents;                  /* numbers as 1.25000000000000000e-03 */
+    bool reversed;                   /* the sections of the family the other way round */
     const char *joint, *bar, *thing; /* prefixes of names; NULL: "J", "M", "" */
 } rm_style;
 
@@ -449,12 +450,15 @@ static inline void rm_blank(sct_text *t, const rm_style *s)
 
 static inline void rm_number(sct_text *t, const rm_style *s, double value)
 {
-    if (s->exponents) sct_text_format(t, "%.17e", value);
-    else sct_text_number(t, value);
+    if (s->exponents)
+        sct_text_format(t, "%.17e", value);
+    else
+        sct_text_number(t, value);
 }
 
 /* Puts `"<thing><key><i>": value` into the list (i < 0: without); takes the value over. */
-static inline void rm_put_thing(rm_list *list, const rm_style *s, const char *thing, const char *key, int i, char *value)
+static inline void rm_put_thing(rm_list *list, const rm_style *s, const char *thing, const char *key, int i,
+                                char *value)
 {
     sct_text t = {0};
     sct_text_format(&t, "\"%s%s", thing != NULL ? thing : "", key);

@@ -1,7 +1,8 @@
 /* Metamorphic relations: a fact about two models, each tried on many seeded random models.
  *
- * RELATION(fact, kind, tolerance) { ... } defines the test `fact`. Its body sees the model `m`, a random stream `r`, and
- * returns how far the fact is missed (relative), or DOES_NOT_APPLY to have another model. Tolerance 0: every bit. */
+ * RELATION(fact, kind, tolerance) { ... } defines the test `fact`. Its body sees the model `m`, a random stream `r`,
+ * and returns how far the fact is missed (relative), or DOES_NOT_APPLY to have another model. Tolerance 0: every bit.
+ */
 #ifndef TESTS_RELATIONS_H
 #define TESTS_RELATIONS_H
 

@@ -1,4 +1,5 @@
-/* What must stay the same, or change in a known way, when a model is told otherwise: forces, displacements, reactions. */
+/* What must stay the same, or change in a known way, when a model is told otherwise: forces, displacements, reactions.
+ */
 #define _DEFAULT_SOURCE
 #include "relations.h"
 
@@ -235,7 +236,8 @@ RELATION(a_model_written_back_gives_the_same_bits, RM_DEFLECTS, EXACT)
     return off;
 }
 
-/* ---- powers of two, signs, mirrors: no rounding changes ----------------------------------------------------------- */
+/* ---- powers of two, signs, mirrors: no rounding changes -----------------------------------------------------------
+ */
 
 RELATION(actions_times_a_power_of_two, 0, EXACT)
 {
@@ -359,7 +361,8 @@ RELATION(a_group_split_in_two_of_the_same_area_changes_no_bit, 0, EXACT)
     return missed_by(m, &b, (change){0});
 }
 
-/* ---- numbering ---------------------------------------------------------------------------------------------------- */
+/* ---- numbering ----------------------------------------------------------------------------------------------------
+ */
 
 RELATION(renumbered_joints, 0, CLOSE)
 {
@@ -416,7 +419,8 @@ RELATION(both_engines_agree, 0, CLOSE)
     return off;
 }
 
-/* ---- place and direction ------------------------------------------------------------------------------------------ */
+/* ---- place and direction ------------------------------------------------------------------------------------------
+ */
 
 RELATION(a_shifted_model, 0, CLOSE)
 {
@@ -497,7 +501,8 @@ RELATION(a_pin_may_be_told_by_any_directions, 0, CLOSE)
     return missed_by(m, &b, (change){0});
 }
 
-/* ---- loads and stiffness ------------------------------------------------------------------------------------------- */
+/* ---- loads and stiffness -------------------------------------------------------------------------------------------
+ */
 
 RELATION(actions_times_k, 0, CLOSE)
 {
@@ -632,7 +637,8 @@ RELATION(heat_is_a_lack_of_fit_of_alpha_dT_L, 0, CLOSE)
     return missed_by(m, &b, (change){0});
 }
 
-/* ---- members and supports put in or taken out ---------------------------------------------------------------------- */
+/* ---- members and supports put in or taken out ----------------------------------------------------------------------
+ */
 
 RELATION(two_members_of_half_the_area_are_one, 0, CLOSE)
 {
@@ -783,7 +789,8 @@ RELATION(one_more_support_never_gives_way_more, RM_LOADS_ONLY, CLOSE)
     return fmax(0.0, work(&b) / work(&a) - 1.0);
 }
 
-/* ---- laws ---------------------------------------------------------------------------------------------------------- */
+/* ---- laws ----------------------------------------------------------------------------------------------------------
+ */
 
 RELATION(displacements_are_reciprocal, RM_LOADS_ONLY, CLOSE)
 {
@@ -903,7 +910,8 @@ RELATION(heat_misfit_and_settlement_strain_no_determinate_truss, RM_DETERMINATE 
     return off;
 }
 
-/* ---- known fields -------------------------------------------------------------------------------------------------- */
+/* ---- known fields --------------------------------------------------------------------------------------------------
+ */
 
 /* The field x -> t + G x as the only case: settlements of the supports; `fits`: bars are made to fit it. */
 static rm_model field_model(const rm_model *m, const double t[3], const double G[9], bool fits)
@@ -1108,7 +1116,8 @@ RELATION(a_symmetric_model_has_symmetric_results, 0, CLOSE)
     return most;
 }
 
-/* ---- the suite ------------------------------------------------------------------------------------------------------ */
+/* ---- the suite ------------------------------------------------------------------------------------------------------
+ */
 
 int main(void)
 {

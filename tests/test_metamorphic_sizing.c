@@ -1,10 +1,10 @@
 /* What must stay the same, or change in a known way, when a model to be sized is told otherwise.
  *
- * Which facts are true. Of a determinate truss without self-weight, heat and settlement the forces do not know the areas
- * and displacements are linear in 1/A. There mass is convex in 1/A and every limit is linear: one optimum, whatever the
- * start, so that loosening, tightening and adding limits have the sign one expects. Of a redundant truss there may be
- * several local optima: there a fact is about the design at hand - that it stays kept, keeps its mass, and stays an
- * optimum when the search starts from it. */
+ * Which facts are true. Of a determinate truss without self-weight, heat and settlement the forces do not know the
+ * areas and displacements are linear in 1/A. There mass is convex in 1/A and every limit is linear: one optimum,
+ * whatever the start, so that loosening, tightening and adding limits have the sign one expects. Of a redundant truss
+ * there may be several local optima: there a fact is about the design at hand - that it stays kept, keeps its mass, and
+ * stays an optimum when the search starts from it. */
 #define _DEFAULT_SOURCE
 #include "relations.h"
 
@@ -13,8 +13,8 @@
 enum { FEW_MODELS = 12, ONE_OPTIMUM = RM_DETERMINATE | RM_LOADS_ONLY | RM_SIZED, ANY_TRUSS = RM_SIZED };
 
 #define EXACT 0.0
-#define OPTIMUM 2e-6  /* of the mass: twice the tolerance that is set */
-#define SIZES 1e-4    /* of each area: mass is flat around the optimum, areas follow less closely */
+#define OPTIMUM 2e-6 /* of the mass: twice the tolerance that is set */
+#define SIZES 1e-4   /* of each area: mass is flat around the optimum, areas follow less closely */
 
 static sct_settings few_starts(void)
 {
@@ -60,8 +60,8 @@ static double sizes_apart(const rm_run *a, const rm_run *b, double factor, const
     return most;
 }
 
-/* Both models sized: mass by factor_mass, areas by factor_A. What counts is the mass within OPTIMUM and the areas within
- * SIZES: the larger of both parts of what is allowed, in units of OPTIMUM. */
+/* Both models sized: mass by factor_mass, areas by factor_A. What counts is the mass within OPTIMUM and the areas
+ * within SIZES: the larger of both parts of what is allowed, in units of OPTIMUM. */
 static double optimum_apart(const rm_model *a, const rm_model *b, double factor_mass, double factor_A)
 {
     rm_run first = size_model(a), second = size_model(b);
@@ -104,7 +104,8 @@ static rm_model with_sizes(const rm_model *m, const sct_result *r)
     return b;
 }
 
-/* ---- how it is told ------------------------------------------------------------------------------------------------ */
+/* ---- how it is told ------------------------------------------------------------------------------------------------
+ */
 
 static char *size_text(const rm_model *m, const rm_style *style, sct_format format)
 {
@@ -215,9 +216,11 @@ RELATION(units_keep_the_sections, ONE_OPTIMUM | RM_LADDERS, EXACT)
     return off;
 }
 
-/* ---- the design reads back ----------------------------------------------------------------------------------------- */
+/* ---- the design reads back -----------------------------------------------------------------------------------------
+ */
 
-/* An area is written as the shortest number that reads back as the same or the next larger one: the last bit may differ. */
+/* An area is written as the shortest number that reads back as the same or the next larger one: the last bit may
+ * differ. */
 static double reads_back(const rm_model *m)
 {
     rm_run sized = size_model(m);
@@ -253,7 +256,8 @@ RELATION(the_sections_picked_check_as_they_were_shown, ANY_TRUSS | RM_LADDERS | 
     return reads_back(m);
 }
 
-/* ---- closed forms -------------------------------------------------------------------------------------------------- */
+/* ---- closed forms --------------------------------------------------------------------------------------------------
+ */
 
 RELATION(a_determinate_truss_takes_force_over_allowable_stress, ONE_OPTIMUM, OPTIMUM)
 {
@@ -325,7 +329,8 @@ RELATION(each_group_takes_its_lightest_section, ONE_OPTIMUM | RM_LADDERS, EXACT)
         double need = 0.0, least = INFINITY;
         for (int e = 0; e < m->n_bars; e++) {
             if (m->bar[e].group != g) continue;
-            need = fmax(need, fmax(run.r->members[e].N_max / m->group[g].f_t, -run.r->members[e].N_min / m->group[g].f_c));
+            need =
+                fmax(need, fmax(run.r->members[e].N_max / m->group[g].f_t, -run.r->members[e].N_min / m->group[g].f_c));
         }
         for (int k = 0; k < m->n_sections; k++) {
             if (m->section[k].A >= need) least = fmin(least, m->section[k].A);
@@ -364,7 +369,8 @@ RELATION(what_no_size_can_carry_is_said_to_be_infeasible, ONE_OPTIMUM, EXACT)
     return off;
 }
 
-/* ---- one optimum: changes that keep it ------------------------------------------------------------------------------ */
+/* ---- one optimum: changes that keep it ------------------------------------------------------------------------------
+ */
 
 enum { CONVEX = ONE_OPTIMUM | RM_DEFLECTS };
 
@@ -587,7 +593,8 @@ RELATION(sizes_within_the_optimum_of_their_bounds_keep_it, CONVEX, OPTIMUM)
     return off;
 }
 
-/* ---- one optimum: changes of known sign ----------------------------------------------------------------------------- */
+/* ---- one optimum: changes of known sign -----------------------------------------------------------------------------
+ */
 
 RELATION(stricter_stresses_never_save_mass, CONVEX, OPTIMUM)
 {
@@ -699,7 +706,8 @@ RELATION(no_size_of_an_optimum_can_be_taken_down, CONVEX | RM_BUCKLES, EXACT)
     return off;
 }
 
-/* ---- any truss: the design at hand ---------------------------------------------------------------------------------- */
+/* ---- any truss: the design at hand ----------------------------------------------------------------------------------
+ */
 
 enum { REDUNDANT = RM_SIZED | RM_DEFLECTS | RM_NO_WEIGHT };
 
@@ -712,7 +720,8 @@ static double design_apart(const rm_model *m, const rm_model *b, double factor_m
         rm_model held = with_sizes(b, sized.r);
         for (int g = 0; g < m->n_groups; g++) held.group[g].A *= factor_A;
         rm_run checked = rm_check(&held);
-        off = fmax(mass_apart(&sized, &checked, factor_mass), fabs(checked.r->utilisation / sized.r->utilisation - 1.0));
+        off =
+            fmax(mass_apart(&sized, &checked, factor_mass), fabs(checked.r->utilisation / sized.r->utilisation - 1.0));
         if (sized.r->utilisation < 1.0 - 1e-10) ck_assert(checked.r->kept);
         rm_drop(&checked);
     }
@@ -844,10 +853,11 @@ RELATION(more_starts_never_add_mass, RM_SIZED | RM_DEFLECTS, OPTIMUM)
     return off;
 }
 
-/* ---- found by the relations ------------------------------------------------------------------------------------------ */
+/* ---- found by the relations
+ * ------------------------------------------------------------------------------------------ */
 
-/* A deflection depends on a held group and on two that are sized, of which one relieves and one strains it: growing both
- * did not lead back below the limit, and the optimum was called infeasible. */
+/* A deflection depends on a held group and on two that are sized, of which one relieves and one strains it: growing
+ * both did not lead back below the limit, and the optimum was called infeasible. */
 START_TEST(an_optimum_beside_a_held_group_ends_below_its_limits)
 {
     rm_model m = rm_random(CONVEX, 25);
@@ -863,7 +873,8 @@ START_TEST(an_optimum_beside_a_held_group_ends_below_its_limits)
 }
 END_TEST
 
-/* ---- the suite ------------------------------------------------------------------------------------------------------ */
+/* ---- the suite ------------------------------------------------------------------------------------------------------
+ */
 
 int main(void)
 {

@@ -3,7 +3,9 @@
  * The stiffness is scaled to a unit diagonal by powers of two (exact), shifted a little so that a factor exists,
  * and its smallest eigenvectors are found by block inverse iteration. How stiff a vector is, is measured on the bars
  * themselves: the sum of (E A / L) (b'v)^2 has no cancellation, so a mechanism shows 1e-30 where the matrix shows
- * rounding. The stretch of the bars tells a mechanism from a soft structure. */
+ * rounding. The stretch of the bars tells a mechanism from a soft structure.
+ * Where the numbers are good, the search is done once more without the bars that are hardly stiff beside the others:
+ * what they alone hold is warned about, for the answer hangs on them. */
 #include "analysis/mechanism.h"
 
 #include <float.h>
@@ -28,6 +30,8 @@ static const double NO_STRETCH = 1e-8; /* largest stretch of a bar / largest dis
 /* Scaled stiffness of a mode below which it is lost in the rounding of the matrix. Above, accuracy.c judges by results.
  */
 static const double TOO_SOFT = DBL_EPSILON / 2.0;
+/* [1] of the stiffness E A / L of half of all bars: what is softer hardly holds anything. */
+static const double HARDLY_STIFF = 1e-10;
 static const double SHOWN = 0.05; /* joints that move at least this part of the largest displacement are named */
 
 typedef struct search {
@@ -39,6 +43,8 @@ typedef struct search {
     int n, q;              /* unknowns, vectors */
     bool *ground;          /* n: unknowns held because geometry has told their motion */
     double held;           /* [N/m] stiffness that holds them */
+    double usual;          /* [N/m] half of the bars are at least this stiff */
+    double absent_below;   /* [N/m] softer bars count as absent; 0: all are there */
     double *values;        /* of the pattern */
     double *s;             /* n: scale, powers of two */
     double *X;             /* n x q, column-major: orthonormal, in scaled unknowns */
@@ -80,6 +86,11 @@ static double bar_stiffness(const search *f, const sct_bar *bar)
     return bar->E * f->A[bar->group] / bar->L;
 }
 
+static bool is_absent(const search *f, const sct_bar *bar)
+{
+    return bar_stiffness(f, bar) < f->absent_below;
+}
+
 /* ---- the scaled matrix ------------------------------------------------------------------------------------------ */
 
 /* Place of entry (i, j) in the pattern. */
@@ -108,6 +119,7 @@ static void assemble(search *f)
     for (int e = 0; e < f->st->n_bars; e++) {
         const sct_bar *bar = &f->st->bars[e];
         const double k = bar_stiffness(f, bar);
+        if (is_absent(f, bar)) continue;
         for (int a = 0; a < bar->n_dof; a++) {
             for (int b = 0; b <= a; b++) {
                 const double product = k * bar->b[a] * bar->b[b];
@@ -124,14 +136,15 @@ static void assemble(search *f)
 
 enum { SCALED = -1, NOT_FINITE = -2 };
 
-/* Scales to a diagonal within [0.5, 2]: SCALED, NOT_FINITE, or the first unknown without stiffness. */
+/* Scales to a diagonal within [0.5, 2]: SCALED, NOT_FINITE, or the first unknown without stiffness. With bars absent
+ * such unknowns are nothing new: they keep their scale. */
 static int scale(search *f)
 {
     for (int i = 0; i < f->n; i++) {
         const double K_ii = f->values[diagonal(f->pattern, i)];
         if (!(K_ii <= DBL_MAX)) return NOT_FINITE;
-        if (!(K_ii > 0.0)) return i;
-        f->s[i] = ldexp(1.0, -(int)lround(0.5 * log2(K_ii)));
+        if (!(K_ii > 0.0) && !(f->absent_below > 0.0)) return i;
+        f->s[i] = K_ii > 0.0 ? ldexp(1.0, -(int)lround(0.5 * log2(K_ii))) : 1.0;
     }
     for (int j = 0; j < f->n; j++) {
         for (int p = f->pattern->column[j]; p < f->pattern->column[j + 1]; p++) {
@@ -174,6 +187,7 @@ static void energies(const search *f, const double X[], int q, double G[BLOCK][B
         const sct_bar *bar = &f->st->bars[e];
         const double k = bar_stiffness(f, bar);
         double elongation[BLOCK];
+        if (is_absent(f, bar)) continue;
         for (int a = 0; a < q; a++) elongation[a] = stretch(f, bar, X + (size_t)a * (size_t)f->n);
         for (int a = 0; a < q; a++) {
             for (int b = 0; b < q; b++) G[a][b] += k * elongation[a] * elongation[b];
@@ -369,6 +383,31 @@ static sct_status tell_too_soft(search *f, const double v[], double stiffness)
                                                                                            : SCT_NO_MEMORY;
 }
 
+/* A motion v (in unknowns) that only absent bars resist: the one that stretches most is named. */
+static sct_status tell_hardly_held(search *f, const double v[])
+{
+    double most = 0.0;
+    int hardly = -1;
+    for (int e = 0; e < f->st->n_bars; e++) {
+        const sct_bar *bar = &f->st->bars[e];
+        double elongation = 0.0;
+        if (!is_absent(f, bar)) continue;
+        for (int i = 0; i < bar->n_dof; i++) elongation += bar->b[i] * v[bar->dof[i]];
+        if (!(fabs(elongation) > most)) continue;
+        most = fabs(elongation);
+        hardly = e;
+    }
+    if (hardly < 0) return SCT_OK;
+    sct_text text = {0};
+    const int joint = describe(f, v, &text);
+    sct_text_add(&text, " almost without resistance: what resists is as soft as member ");
+    sct_motion_name(&text, f->st->model->members[hardly].name);
+    sct_text_format(&text, ", with %.1g of the stiffness (E A / L) of most members; make them more alike",
+                    bar_stiffness(f, &f->st->bars[hardly]) / f->usual);
+    f->n_told++;
+    return sct_motion_tell(&text, SCT_WARNING, f->st->model->joints[joint].where, f->issues) ? SCT_OK : SCT_NO_MEMORY;
+}
+
 /* ---- the verdict ------------------------------------------------------------------------------------------------- */
 
 /* Gauss-Jordan with full pivoting over m vectors of n entries: the same motions, each as local as it can be, so that
@@ -434,7 +473,9 @@ static void sort_motions(int n, int m, double V[])
 static double relative_stretch(const search *f, const double x[], double v[])
 {
     double most = 0.0, largest = 0.0;
-    for (int e = 0; e < f->st->n_bars; e++) most = fmax(most, fabs(stretch(f, &f->st->bars[e], x)));
+    for (int e = 0; e < f->st->n_bars; e++) {
+        if (!is_absent(f, &f->st->bars[e])) most = fmax(most, fabs(stretch(f, &f->st->bars[e], x)));
+    }
     for (int i = 0; i < f->n; i++) v[i] = f->s[i] * x[i];
     for (int j = 0; j < f->st->n_joints; j++) {
         double d[3];
@@ -443,8 +484,24 @@ static double relative_stretch(const search *f, const double x[], double v[])
     return largest > 0.0 ? most / largest : 1.0;
 }
 
-/* Judges the q vectors of X: moves the mechanisms to the front (in unknowns) and tells them; else the softest mode,
- * when it is too soft or the matrix has no factor. */
+/* Moves the vectors of X that are mechanisms to its front, in unknowns, each as local as it can be, in the order of the
+ * joints; returns how many. */
+static int gather_mechanisms(search *f, const bool is_mechanism[])
+{
+    int n_free = 0;
+    for (int k = 0; k < f->q; k++) {
+        double *to = f->X + (size_t)n_free * (size_t)f->n;
+        if (!is_mechanism[k]) continue;
+        for (int i = 0; i < f->n; i++) to[i] = f->s[i] * f->X[(size_t)k * (size_t)f->n + (size_t)i];
+        n_free++;
+    }
+    localise(f->n, n_free, f->X);
+    sort_motions(f->n, n_free, f->X);
+    return n_free;
+}
+
+/* Judges the q vectors of X: tells the mechanisms; else the softest mode, when it is too soft or the matrix has no
+ * factor. With bars absent only mechanisms count, as warnings. */
 static sct_status judge(search *f, bool definite, double v[])
 {
     double G[BLOCK][BLOCK];
@@ -452,7 +509,7 @@ static sct_status judge(search *f, bool definite, double v[])
     rotate_to_ritz(f->n, f->q, G, f->X);
     const double null_limit = fmax((double)f->n * DBL_EPSILON, TOO_SOFT);
     double softest = definite ? TOO_SOFT : INFINITY;
-    int n_free = 0, soft = -1;
+    int soft = -1;
     bool is_mechanism[BLOCK] = {false};
     for (int k = 0; k < f->q; k++) {
         double quotient[BLOCK][BLOCK];
@@ -464,18 +521,14 @@ static sct_status judge(search *f, bool definite, double v[])
         soft = k;
     }
     if (soft >= 0) relative_stretch(f, f->X + (size_t)soft * (size_t)f->n, v); /* kept in v: X is overwritten now */
-    for (int k = 0; k < f->q; k++) {
-        double *to = f->X + (size_t)n_free * (size_t)f->n;
-        if (!is_mechanism[k]) continue;
-        for (int i = 0; i < f->n; i++) to[i] = f->s[i] * f->X[(size_t)k * (size_t)f->n + (size_t)i];
-        n_free++;
-    }
-    localise(f->n, n_free, f->X);
-    sort_motions(f->n, n_free, f->X);
+    const int n_free = gather_mechanisms(f, is_mechanism);
+    const bool hardly = f->absent_below > 0.0;
     sct_status status = SCT_OK;
     for (int k = 0; k < n_free && f->n_told < SCT_MOTIONS_TOLD && status != SCT_NO_MEMORY; k++) {
-        status = tell_mechanism(f, f->X + (size_t)k * (size_t)f->n);
+        const double *motion = f->X + (size_t)k * (size_t)f->n;
+        status = hardly ? tell_hardly_held(f, motion) : tell_mechanism(f, motion);
     }
+    if (hardly) return status;
     if (n_free == 0 && soft >= 0) return tell_too_soft(f, v, softest);
     if (n_free == 0 && !definite) return SCT_NOT_CONVEX;
     return n_free > 0 && status == SCT_OK ? SCT_MECHANISM : status;
@@ -492,6 +545,7 @@ static sct_status tell_no_numbers(const search *f)
 
 static sct_status search_stiffness(search *f)
 {
+    memset(f->values, 0, (size_t)f->pattern->column[f->n] * sizeof *f->values);
     assemble(f);
     const int scaled = scale(f);
     if (scaled == NOT_FINITE) return tell_no_numbers(f);
@@ -505,6 +559,28 @@ static sct_status search_stiffness(search *f)
     return status == SCT_NOT_CONVEX ? tell_no_numbers(f) : status;
 }
 
+static int by_size(const void *left, const void *right)
+{
+    const double *a = left, *b = right;
+    return (*a > *b) - (*a < *b);
+}
+
+/* Warns of what only bars hold that are hardly stiff beside the usual one. */
+static sct_status search_hardly_held(search *f)
+{
+    const size_t n = (size_t)f->st->n_bars;
+    double *k = malloc((n + 1) * sizeof *k);
+    if (k == NULL) return SCT_NO_MEMORY;
+    for (size_t e = 0; e < n; e++) k[e] = bar_stiffness(f, &f->st->bars[e]);
+    qsort(k, n, sizeof *k, by_size);
+    f->usual = n > 0 ? k[n / 2] : 0.0;
+    const bool any = n > 0 && k[0] < HARDLY_STIFF * f->usual;
+    free(k);
+    if (!any) return SCT_OK;
+    f->absent_below = HARDLY_STIFF * f->usual;
+    return search_stiffness(f);
+}
+
 sct_status sct_mechanism_find(sct_solver *solver, const double A[], sct_issues *issues)
 {
     search f = {.st = sct_solver_structure(solver), .A = A, .factor = sct_solver_factor(solver), .issues = issues};
@@ -515,6 +591,7 @@ sct_status sct_mechanism_find(sct_solver *solver, const double A[], sct_issues *
     sct_status status =
         search_allocate(&f) ? sct_connectivity_check(f.st, f.ground, &n_found, &f.n_told, issues) : SCT_NO_MEMORY;
     if (status == SCT_OK && f.n > 0) status = search_stiffness(&f);
+    if (status == SCT_OK && f.n > 0 && n_found == 0) status = search_hardly_held(&f);
     search_free(&f);
     if (n_found > 0 && (status == SCT_OK || status == SCT_NOT_ACCURATE)) return SCT_MECHANISM;
     return status;
