@@ -372,8 +372,26 @@ SCT_API sct_status sct_explain(const sct_result *result, const char *member, cha
 /** The same as JSON, SI and full precision: "format": "scantling explanation". Within a version keys are only added. */
 SCT_API sct_status sct_explain_json(const sct_result *result, const char *member, char **text, sct_issues *issues);
 
-/** Saves text whole or not at all: written beside `path`, flushed, closed, renamed. `force`: replace what is there.
- * SCT_CANNOT_WRITE with the system's reason in issues. */
+/* A file to be saved: `size` bytes of text. */
+typedef struct sct_file {
+    const char *path, *text;
+    size_t size;
+} sct_file;
+
+/**
+ * Saves n files that belong together, all or none: every one is written beside its place, flushed and closed; only then
+ * they are put in place. When one cannot be, those before it are taken away again and what they replaced is put back.
+ *
+ * force  replace what is there; without it nothing is written when one of the files exists
+ *
+ * SCT_CANNOT_WRITE with the system's reason in issues, SCT_NO_MEMORY (nothing was written).
+ * What stays possible: a process killed, or a machine that loses power, between two of the n last steps leaves whole
+ * files, some new and some old, and scantling.*.part and scantling.*.old beside them; on file systems without second
+ * names for a file (link) a replaced file cannot be put back, and a warning says so.
+ */
+SCT_API sct_status sct_save_set(const sct_file files[], int n, bool force, sct_issues *issues);
+
+/** The same for one file: saved whole or not at all. */
 SCT_API sct_status sct_save(const char *path, const char *text, size_t size, bool force, sct_issues *issues);
 
 #ifdef __cplusplus

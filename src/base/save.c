@@ -68,11 +68,20 @@ static int write_all(int fd, const char *text, size_t size)
     while (size > 0) {
         const ssize_t put = write(fd, text, size);
         if (put < 0 && errno == EINTR) continue;
+        if (put == 0) errno = EIO;
         if (put <= 0) return -1;
         text += put;
         size -= (size_t)put;
     }
     return 0;
+}
+
+/* Bytes on the disk; a file system that cannot be asked (EINVAL) is no fault. */
+static int flush(int fd)
+{
+    int done;
+    while ((done = fsync(fd)) != 0 && errno == EINTR) continue;
+    return done == 0 || errno == EINVAL ? 0 : -1;
 }
 
 static sct_status save_fault(sct_issues *issues, const char *path, const char *what)
@@ -81,27 +90,127 @@ static sct_status save_fault(sct_issues *issues, const char *path, const char *w
     return SCT_CANNOT_WRITE;
 }
 
-sct_status sct_save(const char *path, const char *text, size_t size, bool force, sct_issues *issues)
+static sct_status exists_already(sct_issues *issues, const char *path)
+{
+    sct_issue_add(issues, SCT_ERROR, file_place(path), "exists already; --force replaces it");
+    return SCT_CANNOT_WRITE;
+}
+
+/* One file on its way. Both names are in the folder of the target and short, whatever the target is called. */
+typedef struct saving {
+    char *fresh, *before; /* the new bytes; a second name of what is replaced */
+    bool has_fresh, has_before, placed, replaces;
+} saving;
+
+enum { MOST_TRIES = 1000, NAME_ROOM = 64 };
+
+/* Names the next try of a file beside `path`; left-overs of killed runs keep theirs. */
+static void name_beside(char *name, const char *path, int try, const char *ending)
+{
+    const char *slash = strrchr(path, '/');
+    const int folder = slash != NULL ? (int)(slash + 1 - path) : 0;
+    snprintf(name, (size_t)folder + NAME_ROOM, "%.*sscantling.%ld.%d.%s", folder, path, (long)getpid(), try, ending);
+}
+
+static sct_status write_fresh(saving *s, const sct_file *file, sct_issues *issues)
+{
+    int fd = -1;
+    for (int try = 0; try < MOST_TRIES; try++) {
+        name_beside(s->fresh, file->path, try, "part");
+        fd = open(s->fresh, O_WRONLY | O_CREAT | O_EXCL | O_CLOEXEC, 0666);
+        if (fd >= 0 || errno != EEXIST) break;
+    }
+    if (fd < 0) return save_fault(issues, file->path, "cannot be created");
+    s->has_fresh = true;
+    sct_status status = SCT_OK;
+    if (write_all(fd, file->text, file->size) != 0 || flush(fd) != 0)
+        status = save_fault(issues, file->path, "cannot be written");
+    if (close(fd) != 0 && errno != EINTR && status == SCT_OK)
+        status = save_fault(issues, file->path, "cannot be closed");
+    return status;
+}
+
+/* Gives what is to be replaced a second name, so that it can come back. Some file systems have no second names: then
+ * it cannot. */
+static void keep_before(saving *s, const char *path)
+{
+    for (int try = 0; try < MOST_TRIES; try++) {
+        name_beside(s->before, path, try, "old");
+        s->has_before = link(path, s->before) == 0;
+        if (s->has_before || errno != EEXIST) return;
+    }
+}
+
+static sct_status place(saving *s, const char *path, bool force, sct_issues *issues)
 {
     struct stat about;
-    if (!force && lstat(path, &about) == 0) {
-        sct_issue_add(issues, SCT_ERROR, file_place(path), "exists already; --force replaces it");
-        return SCT_CANNOT_WRITE;
+    s->replaces = lstat(path, &about) == 0;
+    if (s->replaces && !force) return exists_already(issues, path);
+    if (s->replaces) keep_before(s, path);
+    /* a second name is refused where a file has appeared meanwhile; a new name would replace it */
+    if (!force && link(s->fresh, path) == 0) {
+        s->placed = true;
+        return SCT_OK;
     }
-    const size_t room = strlen(path) + 32;
-    char *beside = malloc(room);
-    if (beside == NULL) return SCT_NO_MEMORY;
-    snprintf(beside, room, "%s.%ld.part", path, (long)getpid());
-    const int fd = open(beside, O_WRONLY | O_CREAT | O_EXCL | O_CLOEXEC, 0666);
-    sct_status status = SCT_OK;
-    if (fd < 0) {
-        status = save_fault(issues, path, "cannot be created");
+    if (!force && errno == EEXIST) return exists_already(issues, path);
+    if (rename(s->fresh, path) != 0) return save_fault(issues, path, "cannot be put in place");
+    s->has_fresh = false;
+    s->placed = true;
+    return SCT_OK;
+}
+
+static void take_back(saving *s, const char *path, sct_issues *issues)
+{
+    if (!s->placed) return;
+    if (!s->replaces) {
+        unlink(path);
+    } else if (s->has_before && rename(s->before, path) == 0) {
+        s->has_before = false;
+    } else if (s->has_before) {
+        save_fault(issues, path, "the file as it was before cannot be put back");
+        s->has_before = false; /* it stays under its second name */
     } else {
-        if (write_all(fd, text, size) != 0 || fsync(fd) != 0) status = save_fault(issues, path, "cannot be written");
-        if (close(fd) != 0 && status == SCT_OK) status = save_fault(issues, path, "cannot be closed");
-        if (status == SCT_OK && rename(beside, path) != 0) status = save_fault(issues, path, "cannot be put in place");
-        if (status != SCT_OK) unlink(beside);
+        sct_issue_add(issues, SCT_WARNING, file_place(path), "is replaced already, though other files are not");
     }
-    free(beside);
+}
+
+static sct_status save_set(saving s[], const sct_file files[], int n, bool force, sct_issues *issues)
+{
+    struct stat about;
+    sct_status status = SCT_OK;
+    for (int i = 0; i < n && status == SCT_OK && !force; i++)
+        if (lstat(files[i].path, &about) == 0) status = exists_already(issues, files[i].path);
+    for (int i = 0; i < n && status == SCT_OK; i++) status = write_fresh(&s[i], &files[i], issues);
+    for (int i = 0; i < n && status == SCT_OK; i++) status = place(&s[i], files[i].path, force, issues);
+    for (int i = n - 1; i >= 0 && status != SCT_OK; i--) take_back(&s[i], files[i].path, issues);
+    for (int i = 0; i < n; i++) {
+        if (s[i].has_fresh) unlink(s[i].fresh);
+        if (s[i].has_before) unlink(s[i].before);
+    }
     return status;
+}
+
+sct_status sct_save_set(const sct_file files[], int n, bool force, sct_issues *issues)
+{
+    saving *s = calloc((size_t)n + 1, sizeof *s);
+    bool has_memory = s != NULL;
+    for (int i = 0; i < n && has_memory; i++) {
+        const size_t room = strlen(files[i].path) + NAME_ROOM;
+        s[i].fresh = malloc(room);
+        s[i].before = malloc(room);
+        has_memory = s[i].fresh != NULL && s[i].before != NULL;
+    }
+    const sct_status status = has_memory ? save_set(s, files, n, force, issues) : SCT_NO_MEMORY;
+    for (int i = 0; i < n && s != NULL; i++) {
+        free(s[i].fresh);
+        free(s[i].before);
+    }
+    free(s);
+    return status;
+}
+
+sct_status sct_save(const char *path, const char *text, size_t size, bool force, sct_issues *issues)
+{
+    const sct_file file = {path, text, size};
+    return sct_save_set(&file, 1, force, issues);
 }

@@ -1,9 +1,12 @@
 /* scantling: finds the command and runs it. */
-#define _POSIX_C_SOURCE 200809L
+#define _XOPEN_SOURCE 700
 #include <errno.h>
+#include <fcntl.h>
 #include <signal.h>
+#include <stdbool.h>
 #include <stdio.h>
 #include <string.h>
+#include <unistd.h>
 
 #include "cli/commands.h"
 #include "cli/exits.h"
@@ -43,10 +46,22 @@ static int run(int argc, char **argv)
     return command->run(command, given, operands);
 }
 
+/* A standard stream that is closed is held by one that fails, so that no file of ours gets its number. False: none is
+ * left to hold it. */
+static bool hold_streams(void)
+{
+    for (int fd = STDIN_FILENO; fd <= STDERR_FILENO; fd++) {
+        if (fcntl(fd, F_GETFD) != -1) continue;
+        if (open("/dev/null", fd == STDIN_FILENO ? O_WRONLY : O_RDONLY) != fd) return false;
+    }
+    return true;
+}
+
 int main(int argc, char **argv)
 {
-    signal(SIGPIPE, SIG_IGN); /* a reader that goes away is an output that cannot be written: exit code 6 */
-    signal(SIGXFSZ, SIG_IGN); /* and so is a limit on the size of files */
+    signal(SIGPIPE, SIG_IGN); /* a reader that goes away, */
+    signal(SIGXFSZ, SIG_IGN); /* or a file that may not grow, is an output that cannot be written: exit code 6 */
+    if (!hold_streams()) return EXIT_OUTPUT;
     const int code = run(argc, argv);
     if (fflush(stdout) != 0 || ferror(stdout)) {
         cli_say("error", "standard output cannot be written: %s", strerror(errno));

@@ -4,6 +4,7 @@
 
 #include <errno.h>
 #include <math.h>
+#include <signal.h>
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
@@ -13,7 +14,7 @@
 #include "cli/exits.h"
 #include "cli/messages.h"
 
-/* The files of a folder of outputs, in the order in which they are written. */
+/* The files of a folder of outputs; the model is the last. */
 static const struct { const char *name; sct_format format; } OUTPUTS[] = {
     {"result.json", SCT_RESULT_JSON},
     {"schedule.csv", SCT_SCHEDULE_CSV},
@@ -134,26 +135,26 @@ static int find_drawn(cli_run *run)
     return EXIT_USAGE;
 }
 
-/* The written model is read back and checked: it must carry the design that the other files show. */
-static int self_check(cli_run *run, const char *path)
+/* The model to be written is read and checked like any other: it must carry the design that the other files show. */
+static int self_check(const cli_run *run, const sct_file *file)
 {
     sct_model *model = NULL;
     sct_result *again = NULL;
     sct_issues *issues = sct_issues_new();
     if (issues == NULL) return EXIT_RESOURCES;
-    sct_status status = sct_model_read(path, &model, issues);
+    sct_status status = sct_model_parse(file->path, file->text, file->size, &model, issues);
     if (status == SCT_OK) status = sct_check(model, NULL, &again, issues);
     int code = 0;
     const sct_result *r = run->result;
     if (status == SCT_NO_MEMORY) {
         code = EXIT_RESOURCES;
     } else if (status != SCT_OK) {
-        cli_say("error", "internal check failed: the written model cannot be checked: %s", sct_status_text(status));
+        cli_say("error", "internal check failed: the sized model cannot be checked: %s", sct_status_text(status));
         cli_issues(issues, true);
         code = EXIT_SELF_CHECK;
     } else if (again->kept != r->kept || !(fabs(again->mass - r->mass) <= 1e-9 * r->mass) ||
                !(fabs(again->utilisation - r->utilisation) <= 1e-9 + 1e-6 * r->utilisation)) {
-        cli_say("error", "internal check failed: the written model gives mass %.9g kg, utilisation %.9g; the result says %.9g kg, %.9g",
+        cli_say("error", "internal check failed: the sized model gives mass %.9g kg, utilisation %.9g; the result says %.9g kg, %.9g",
                 again->mass, again->utilisation, r->mass, r->utilisation);
         code = EXIT_SELF_CHECK;
     }
@@ -163,38 +164,57 @@ static int self_check(cli_run *run, const char *path)
     return code;
 }
 
-static int write_folder(cli_run *run, bool with_model)
+/* The signals that end a program wait while files are put in place: a set is whole, and no part of a file stays. */
+static sct_status save_undisturbed(const cli_run *run, const sct_file files[], int n)
 {
-    for (int k = 0; k < N_OUTPUTS; k++) {
-        if (OUTPUTS[k].format == SCT_MODEL_JSON && !with_model) continue;
-        char *text = NULL, *path = path_in(run->folder, OUTPUTS[k].name);
-        size_t size = 0;
-        sct_status status = path == NULL ? SCT_NO_MEMORY : sct_write(run->result, OUTPUTS[k].format, &run->write, &text, &size);
-        if (status == SCT_OK) status = sct_save(path, text, size, run->force, run->issues);
-        int code = cli_exit_of_status(status);
-        if (code == 0 && OUTPUTS[k].format == SCT_MODEL_JSON) code = self_check(run, path);
-        free(text);
-        free(path);
-        if (code != 0) return code;
-    }
-    return 0;
+    sigset_t ending, before;
+    sigemptyset(&ending);
+    sigaddset(&ending, SIGHUP);
+    sigaddset(&ending, SIGINT);
+    sigaddset(&ending, SIGTERM);
+    sigprocmask(SIG_BLOCK, &ending, &before);
+    const sct_status status = sct_save_set(files, n, run->force, run->issues);
+    sigprocmask(SIG_SETMASK, &before, NULL);
+    return status;
 }
 
+static int write_folder(cli_run *run, bool with_model)
+{
+    sct_file files[N_OUTPUTS];
+    char *texts[N_OUTPUTS] = {NULL}, *paths[N_OUTPUTS] = {NULL};
+    int n = 0, code = 0;
+    for (; n < N_OUTPUTS && code == 0; n++) {
+        if (OUTPUTS[n].format == SCT_MODEL_JSON && !with_model) break;
+        size_t size = 0;
+        paths[n] = path_in(run->folder, OUTPUTS[n].name);
+        if (paths[n] == NULL) code = EXIT_RESOURCES;
+        else code = cli_exit_of_status(sct_write(run->result, OUTPUTS[n].format, &run->write, &texts[n], &size));
+        files[n] = (sct_file){paths[n], texts[n], size};
+        if (code == 0 && OUTPUTS[n].format == SCT_MODEL_JSON) code = self_check(run, &files[n]);
+    }
+    if (code == 0) code = cli_exit_of_status(save_undisturbed(run, files, n));
+    for (int k = 0; k < N_OUTPUTS; k++) {
+        free(texts[k]);
+        free(paths[k]);
+    }
+    return code;
+}
+
+/* Everything that takes memory comes before the first output. */
 int cli_run_report(cli_run *run, bool with_model)
 {
+    char *text = NULL;
     int code = find_drawn(run);
-    if (code == 0 && run->folder != NULL) code = write_folder(run, with_model);
-    if (code != 0) return code;
-    if (!run->quiet || run->json) {
-        char *text = NULL;
+    if (code == 0 && (!run->quiet || run->json)) {
         sct_write_options options = run->write;
         options.colour = cli_colours(STDOUT_FILENO, run->colour);
-        const sct_status status = sct_write(run->result, run->json ? SCT_RESULT_JSON : SCT_SUMMARY, &options, &text, NULL);
-        if (status == SCT_OK) cli_put(text);
-        free(text);
-        if (status != SCT_OK) return cli_exit_of_status(status);
+        code = cli_exit_of_status(
+            sct_write(run->result, run->json ? SCT_RESULT_JSON : SCT_SUMMARY, &options, &text, NULL));
     }
-    return cli_exit_of_result(run->result);
+    if (code == 0 && run->folder != NULL) code = write_folder(run, with_model);
+    if (code == 0 && text != NULL) cli_put(text);
+    free(text);
+    return code != 0 ? code : cli_exit_of_result(run->result);
 }
 
 int cli_run_close(cli_run *run, int code)

@@ -115,11 +115,11 @@ static int run_size(const cli_command *command, const char *const given[], char 
     teller t = {.started = now()};
     int code = read_settings(command, given, &settings, &t);
     if (code != 0) return code;
-    catch_signals();
     settings.observer = observe;
     settings.user = &t;
     cli_run run;
     code = cli_run_open(&run, command, given, operands[0]);
+    catch_signals(); /* until here nothing is found that could be shown: a signal just ends the program */
     if (code == 0) code = cli_exit_of_status(sct_size(run.model, &settings, &run.result, run.issues));
     if (t.shown) fprintf(stderr, "\r\033[K");
     if (code == 0) code = cli_run_report(&run, true);
@@ -138,7 +138,7 @@ const cli_command CLI_SIZE = {
     .examples = "  scantling size models/demo_roof.json -o build/demo --force\n"
                 "  scantling size --json models/benchmarks/10bar_case1.json | jq .mass_kg",
     .more = "MODEL is a model file, or - for standard input. With -o: result.json, schedule.csv, drawing.svg, and\n"
-            "model.json with the sizes put in, which is read back and checked before the run ends.\n"
+            "model.json with the sizes put in, which is read and checked again before anything is written.\n"
             "Exit code: 0 every limit kept, 1 no feasible design, 2 command line, 3 input, 4 cannot be analysed,\n"
             "5 the search ended before it was done, 6 output, 7 out of memory or too large, 70 internal check,\n"
             "130 interrupted (the best so far is written; a second interrupt writes nothing more).",
