@@ -51,6 +51,15 @@ $(BUILD)/tests/%: tests/%.c $(BUILD)/libscantling.a
 	@mkdir -p $(@D)
 	$(CC) $(CPPFLAGS) $(CFLAGS) -MMD -MP -Itests -o $@ $< $(BUILD)/libscantling.a $(LDFLAGS) -lcheck -lsubunit -lrt -lpthread -llapack -lblas $(LDLIBS)
 
+# The program whole, its main and its calls to the system led through the test.
+comma := ,
+FAULTS := main open read write close fsync rename link unlink mkdir stat lstat fstat access fflush \
+          $(if $(SAN),malloc calloc realloc free)
+$(BUILD)/tests/test_faults: tests/test_faults.c $(CLI_OBJ) $(BUILD)/libscantling.a
+	@mkdir -p $(@D)
+	$(CC) $(CPPFLAGS) $(CFLAGS) -MMD -MP -Itests -o $@ $< $(CLI_OBJ) $(BUILD)/libscantling.a $(LDFLAGS) \
+	  $(FAULTS:%=-Wl$(comma)--wrap=%) -lcheck -lsubunit -lrt -lpthread -lsuitesparseconfig $(LDLIBS)
+
 # ---- packages: what is missing is installed by demo and test, never by plain make -------------------------------------
 BUILD_PACKAGES = gcc libc6-dev libcjson-dev libsuitesparse-dev
 TEST_PACKAGES  = $(BUILD_PACKAGES) check liblapack-dev libblas-dev python3-jsonschema

@@ -45,7 +45,9 @@ static void settle(cholmod_common *common)
     common->final_ll = 1;
 }
 
-/* CHOLMOD's choice of ordering (AMD, or METIS when AMD looks poor), copied to s->order. */
+/* AMD's ordering and CHOLMOD's postorder of it, copied to s->order. By itself CHOLMOD would try METIS too where AMD
+ * looks poor (dense lattices in space, which then take two thirds of the time); but METIS draws from the random
+ * numbers of the whole process, and takes SIGTERM and SIGABRT for itself while it runs. */
 static sct_status find_order(sct_sparse *s, const sct_pattern *pattern)
 {
     cholmod_sparse upper = {.nrow = (size_t)pattern->n,
@@ -59,6 +61,8 @@ static sct_status find_order(sct_sparse *s, const sct_pattern *pattern)
                             .dtype = CHOLMOD_DOUBLE,
                             .sorted = 1,
                             .packed = 1};
+    s->common.nmethods = 1;
+    s->common.method[0].ordering = CHOLMOD_AMD;
     cholmod_factor *L = cholmod_analyze(&upper, &s->common);
     if (L == NULL) return status_of(s->common.status);
     for (int k = 0; k < pattern->n; k++) s->order[k] = ((const int *)L->Perm)[k];
@@ -125,7 +129,6 @@ static sct_status set_up(sct_sparse *s, const sct_pattern *pattern, const scratc
     s->A = cholmod_allocate_sparse(n, n, (size_t)pattern->column[n], 1, 1, 1, CHOLMOD_REAL, common);
     if (s->A == NULL) return status_of(common->status);
     permute(s, pattern, t);
-    common->nmethods = 1;
     common->method[0].ordering = CHOLMOD_NATURAL;
     common->postorder = 0;
     s->L = cholmod_analyze(s->A, common);
