@@ -441,8 +441,9 @@ static void expect(int j, call kind, long at, bool sticky)
     if (fault == NULL) return;
     size_t size;
     char *err = read_whole(STREAM[1], &size);
-    printf("%s, %s %ld%s: %s; standard error: %.400s\n", JOBS[j].name, CALL_WORDS[kind], at, sticky ? " and later" : "",
-           fault, err != NULL ? err : "");
+    const tally t = look(j);
+    printf("%s, %s %ld%s: %s; outputs: %d whole, %d none, %d old, %d other; standard error: %.400s\n", JOBS[j].name,
+           CALL_WORDS[kind], at, sticky ? " and later" : "", fault, t.whole, t.none, t.old, t.mixed, err != NULL ? err : "");
     free(err);
     broken++;
 }
