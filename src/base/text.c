@@ -119,30 +119,48 @@ static bool starts_character(char c)
     return ((unsigned char)c & 0xC0) != 0x80;
 }
 
+enum { SHOWN_ROOM = 5 };
+
+/* What a terminal is shown for the character at *p, which moves on: C0, DEL, and the C1 controls that terminals obey
+ * too (U+0080 to U+009F: C2 80 to C2 9F) as \xNN. Returns how many bytes. */
+static size_t show_next(const char **p, char out[SHOWN_ROOM])
+{
+    const unsigned char c = (unsigned char)**p, second = c == 0xC2 ? (unsigned char)(*p)[1] : 0;
+    const bool c1 = second >= 0x80 && second < 0xA0;
+    *p += c1 ? 2 : 1;
+    if (c1 || c < 0x20 || c == 0x7f) return (size_t)snprintf(out, SHOWN_ROOM, "\\x%02x", c1 ? second : c);
+    out[0] = (char)c;
+    return 1;
+}
+
 void sct_text_plain(sct_text *text, const char *raw, int most)
 {
     int n = 0;
-    for (const char *p = raw; *p != '\0'; p++) {
-        const unsigned char c = (unsigned char)*p;
+    char out[SHOWN_ROOM];
+    for (const char *p = raw; *p != '\0';) {
         if (starts_character(*p) && most > 0 && n++ >= most) {
             sct_text_add(text, "...");
             return;
         }
-        /* C0, DEL, and the C1 controls that terminals obey too (U+0080 to U+009F: C2 80 to C2 9F) */
-        const bool c1 = c == 0xC2 && (unsigned char)p[1] >= 0x80 && (unsigned char)p[1] < 0xA0;
-        if (c1) sct_text_format(text, "\\x%02x", (unsigned char)*++p);
-        else if (c < 0x20 || c == 0x7f) sct_text_format(text, "\\x%02x", c);
-        else sct_text_bytes(text, p, 1);
+        sct_text_bytes(text, out, show_next(&p, out));
     }
 }
 
+/* Takes no memory: what is said of a model must not depend on it. */
 sct_shown sct_show(const char *name)
 {
+    enum { MOST = 64 };
     sct_shown shown = {""};
-    sct_text text = {0};
-    sct_text_plain(&text, name, 64);
-    if (text.data != NULL) snprintf(shown.text, sizeof shown.text, "%s", text.data);
-    sct_text_free(&text);
+    size_t size = 0;
+    int n = 0;
+    for (const char *p = name; *p != '\0';) {
+        if ((starts_character(*p) && n++ >= MOST) || size + SHOWN_ROOM + 3 > sizeof shown.text) {
+            memcpy(shown.text + size, "...", 4);
+            break;
+        }
+        size += show_next(&p, shown.text + size);
+        shown.text[size] = '\0';
+    }
     return shown;
 }
 
