@@ -4,18 +4,17 @@
  * ends. So rounding in the assembly is repaired as well, and where it cannot be, the steps do not shrink.
  * Displacements are kept in long double while they are refined: then a healthy second step is at least a hundred times
  * smaller than the first, however badly scaled the model is, and its size is an estimate of what is left that
- * errs on the safe side. (Wilkinson; Higham, Accuracy
- * and Stability of Numerical Algorithms, chapter 12.) */
+ * errs on the safe side. (Wilkinson; Higham, Accuracy and Stability of Numerical Algorithms, chapter 12.) What is left
+ * in the end is bounded by certificate.c. */
 #include "analysis/accuracy.h"
 
-#include <float.h>
 #include <math.h>
 #include <stdlib.h>
 #include <string.h>
 
+#include "analysis/certificate.h"
+#include "analysis/elongation.h"
 #include "analysis/motion.h"
-
-_Static_assert(LDBL_MANT_DIG >= 64, "residuals need a long double that is wider than double");
 
 enum { MOST_STEPS = 5 }; /* two always; more while they win digits and two have left an error above ENOUGH */
 
@@ -27,22 +26,26 @@ static const double ENOUGH = 1e-10;      /* a step of this size is the last */
  * has no relative error. */
 static const double SMALL_PART = 1e-3;
 
+/* The displacements are u + step, not rounded together: a stiff member that is carried along keeps its small
+ * elongation. */
 typedef struct refinement {
     const sct_structure *st;
     const double *A;
     size_t n, n_bars, n_cases, n_joints;
-    double *weight; /* n: own weight, unit factor */
-    long double *u; /* n_cases x n */
-    long double *r; /* n: residual of one case */
-    double *d;      /* n_cases x n: one step */
-    double *N, *dN; /* n_bars: forces of one case, and what a step adds to them */
-    double *force;  /* n_joints: largest force at each joint */
+    long double *weight; /* n: own weight, unit factor */
+    long double *u;      /* n_cases x n */
+    long double *step;   /* n_cases x n: the latest one */
+    long double *r;      /* n: residual of one case */
+    double *d;           /* n_cases x n: residuals, then steps */
+    double *dN;          /* n_bars: what a step adds to the forces of one case */
+    double *force;       /* n_joints: largest force at each joint */
 } refinement;
 
 static void refinement_free(refinement *w)
 {
     free(w->weight);
     free(w->u);
+    free(w->step);
     free(w->r);
     free(w->d);
     free(w->dN);
@@ -51,18 +54,14 @@ static void refinement_free(refinement *w)
 
 static bool refinement_allocate(refinement *w)
 {
-    w->weight = malloc((w->n + 1) * sizeof *w->weight);
+    w->weight = calloc(w->n + 1, sizeof *w->weight);
     w->u = malloc((w->n_cases * w->n + 1) * sizeof *w->u);
+    w->step = calloc(w->n_cases * w->n + 1, sizeof *w->step);
     w->r = malloc((w->n + 1) * sizeof *w->r);
     w->d = malloc((w->n_cases * w->n + 1) * sizeof *w->d);
     w->dN = malloc((w->n_bars + 1) * sizeof *w->dN);
     w->force = malloc((w->n_joints + 1) * sizeof *w->force);
-    return w->weight != NULL && w->u != NULL && w->r != NULL && w->d != NULL && w->dN != NULL && w->force != NULL;
-}
-
-static long double axial_stiffness(const refinement *w, const sct_bar *bar)
-{
-    return (long double)bar->E * w->A[bar->group] / bar->L;
+    return w->weight && w->u && w->step && w->r && w->d && w->dN && w->force;
 }
 
 static double stretch(const refinement *w, size_t k, size_t e)
@@ -70,13 +69,21 @@ static double stretch(const refinement *w, size_t k, size_t e)
     return w->st->stretch[k * w->n_bars + e];
 }
 
-/* Force of bar e in case k for the displacements at hand. */
+/* Force of bar e in case k for the displacements u of that case, without the latest step. */
 static long double bar_force(const refinement *w, size_t k, size_t e)
 {
+    long double size;
     const sct_bar *bar = &w->st->bars[e];
-    long double elongation = stretch(w, k, e);
-    for (int i = 0; i < bar->n_dof; i++) elongation += w->u[k * w->n + (size_t)bar->dof[i]] * bar->b[i];
-    return axial_stiffness(w, bar) * elongation;
+    const long double elongation = stretch(w, k, e) + sct_elongation(bar, w->u + k * w->n, &size);
+    return sct_axial_stiffness(bar, w->A) * elongation;
+}
+
+static void weigh(refinement *w)
+{
+    for (size_t e = 0; e < w->n_bars; e++) {
+        const sct_bar *bar = &w->st->bars[e];
+        for (int i = 0; i < bar->n_dof; i++) w->weight[bar->dof[i]] += (long double)w->A[bar->group] * bar->w[i];
+    }
 }
 
 /* r = load of case k, to be reduced by bar forces. */
@@ -126,38 +133,47 @@ static double joint_step(const sct_structure *st, size_t joint, const double d[]
     return sum;
 }
 
-/* Adds the step at hand to the displacements and forces of case k and returns its size, relative to them. The step's
- * forces are added to those before it: that keeps the balance of joints which forces from the new displacements lose,
- * where a stiff member hardly stretches. Prescribed elongations count as sizes too: heat may strain a truss that hardly
- * moves, or move one without force. */
-static double add_step(refinement *w, size_t k, double N[])
+/* The size of changes du (n) of the displacements and dN of the forces N of case k, relative to them. Prescribed
+ * elongations count as sizes too: heat may strain a truss that hardly moves, or move one without force. */
+static double relative_size(refinement *w, size_t k, const double N[], const double du[], const double dN[])
 {
-    const double *d = w->d + k * w->n;
-    long double *u = w->u + k * w->n;
-    double u_scale = 0.0, N_scale = 0.0, size = 0.0;
+    long double *u = w->r; /* free between two residuals */
+    double u_scale = 0.0, N_scale = largest(w->n_bars, N), size = 0.0;
+    for (size_t i = 0; i < w->n; i++) u[i] = w->u[k * w->n + i] + w->step[k * w->n + i];
     for (size_t e = 0; e < w->n_bars; e++) {
-        const sct_bar *bar = &w->st->bars[e];
-        const long double stiffness = axial_stiffness(w, bar);
-        long double added = 0.0L;
-        for (int i = 0; i < bar->n_dof; i++) added += (long double)d[bar->dof[i]] * bar->b[i];
-        w->dN[e] = (double)(stiffness * added);
-        N[e] = (double)(bar_force(w, k, e) + stiffness * added);
+        const long double stiffness = sct_axial_stiffness(&w->st->bars[e], w->A);
         u_scale = fmax(u_scale, fabs(stretch(w, k, e)));
-        N_scale = fmax(N_scale, fabs((double)stiffness * stretch(w, k, e)));
+        N_scale = fmax(N_scale, fabs((double)(stiffness * stretch(w, k, e))));
     }
-    for (size_t i = 0; i < w->n; i++) u[i] += d[i];
-    N_scale = fmax(N_scale, largest(w->n_bars, N));
     for (size_t j = 0; j < w->n_joints; j++) u_scale = fmax(u_scale, joint_size(w->st, j, u));
     for (size_t j = 0; j < w->n_joints; j++) {
-        size = worse(relative(joint_step(w->st, j, d), joint_size(w->st, j, u), u_scale), size);
+        size = worse(relative(joint_step(w->st, j, du), joint_size(w->st, j, u), u_scale), size);
     }
-    for (size_t e = 0; e < w->n_bars; e++) size = worse(relative(w->dN[e], N[e], N_scale), size);
+    for (size_t e = 0; e < w->n_bars; e++) size = worse(relative(dN[e], N[e], N_scale), size);
     return size;
 }
 
-/* One step for all cases: u += K^-1 (load - bar forces), and the forces N (n_cases x n_bars). Returns its size. */
+/* Makes d the step of case k and returns its size; N: forces of u + step, each part by itself. */
+static double take_step(refinement *w, size_t k, double N[])
+{
+    const double *d = w->d + k * w->n;
+    long double *step = w->step + k * w->n;
+    for (size_t i = 0; i < w->n; i++) step[i] = d[i];
+    for (size_t e = 0; e < w->n_bars; e++) {
+        long double size;
+        const sct_bar *bar = &w->st->bars[e];
+        const long double added = sct_axial_stiffness(bar, w->A) * sct_elongation(bar, step, &size);
+        w->dN[e] = (double)added;
+        N[e] = (double)(bar_force(w, k, e) + added);
+    }
+    return relative_size(w, k, N, d, w->dN);
+}
+
+/* One step for all cases: u += the step before; step = K^-1 (load - bar forces); forces N (n_cases x n_bars). Returns
+ * its size. */
 static double refine(refinement *w, sct_solver *solver, double N[])
 {
+    for (size_t i = 0; i < w->n_cases * w->n; i++) w->u[i] += w->step[i];
     for (size_t k = 0; k < w->n_cases; k++) {
         start_with_load(w, k);
         for (size_t e = 0; e < w->n_bars; e++) subtract_force(w, &w->st->bars[e], bar_force(w, k, e));
@@ -165,7 +181,7 @@ static double refine(refinement *w, sct_solver *solver, double N[])
     }
     sct_solver_solve(solver, (int)w->n_cases, w->d);
     double size = 0.0;
-    for (size_t k = 0; k < w->n_cases; k++) size = worse(add_step(w, k, N + k * w->n_bars), size);
+    for (size_t k = 0; k < w->n_cases; k++) size = worse(take_step(w, k, N + k * w->n_bars), size);
     return size;
 }
 
@@ -177,7 +193,7 @@ static void find_joint_forces(refinement *w, size_t k, const double N[])
     for (size_t j = 0; j < w->n_joints; j++) w->force[j] = joint_size(st, j, w->r);
     for (size_t e = 0; e < w->n_bars; e++) {
         const sct_bar *bar = &st->bars[e];
-        const double held = fabs((double)axial_stiffness(w, bar) * stretch(w, k, e));
+        const double held = fabs((double)(sct_axial_stiffness(bar, w->A) * stretch(w, k, e)));
         const double force = fmax(fabs(N[e]), held);
         w->force[bar->from] = fmax(w->force[bar->from], force);
         w->force[bar->to] = fmax(w->force[bar->to], force);
@@ -246,7 +262,8 @@ static double refine_fully(refinement *w, sct_solver *solver, double N[], bool *
     return last;
 }
 
-static sct_status judge(const refinement *w, bool contracts, const sct_accuracy *accuracy, sct_issues *issues)
+/* By the estimate, before a proof is tried. */
+static sct_status judge_estimate(const refinement *w, bool contracts, const sct_accuracy *accuracy, sct_issues *issues)
 {
     if (!(accuracy->error <= SCT_ERROR_REFUSE)) {
         return tell(w, "the answer cannot be trusted: its relative error is about %.0e; ", accuracy->error,
@@ -260,11 +277,57 @@ static sct_status judge(const refinement *w, bool contracts, const sct_accuracy 
         return tell(w, "the answer cannot be trusted: a joint is out of balance by %.0e of the forces there; ",
                     accuracy->equilibrium, SCT_NOT_ACCURATE, issues);
     }
-    if (accuracy->error > SCT_ERROR_WARN) {
-        return tell(w, "the relative error of displacements and forces may be as large as %.0e; ", accuracy->error,
+    return SCT_OK;
+}
+
+static sct_status judge_bound(const refinement *w, const sct_accuracy *accuracy, sct_issues *issues)
+{
+    if (isnan(accuracy->bound)) {
+        return tell(
+            w,
+            "accuracy not certified; estimate %.0e of displacements and forces: the structure is almost movable, "
+            "or its members are too unlike, for a proof; ",
+            accuracy->error, SCT_OK, issues);
+    }
+    if (!(accuracy->bound <= SCT_ERROR_REFUSE)) {
+        return tell(w, "the answer cannot be trusted: its relative error is proven to be below %.0e only; ",
+                    accuracy->bound, SCT_NOT_ACCURATE, issues);
+    }
+    if (accuracy->bound > SCT_ERROR_WARN) {
+        return tell(w, "the relative error of displacements and forces may be as large as %.0e; ", accuracy->bound,
                     SCT_OK, issues);
     }
     return SCT_OK;
+}
+
+static double bound_of(refinement *w, const sct_response *response)
+{
+    double bound = 0.0;
+    for (size_t k = 0; k < w->n_cases; k++) {
+        bound = worse(relative_size(w, k, response->N + k * w->n_bars, response->u_error + k * w->n,
+                                    response->N_error + k * w->n_bars),
+                      bound);
+    }
+    return bound;
+}
+
+static sct_status run(refinement *w, sct_solver *solver, sct_response *response, sct_accuracy *accuracy,
+                      sct_issues *issues)
+{
+    bool contracts;
+    if (!refinement_allocate(w)) return SCT_NO_MEMORY;
+    weigh(w);
+    for (size_t i = 0; i < w->n_cases * w->n; i++) w->u[i] = response->u[i];
+    accuracy->error = refine_fully(w, solver, response->N, &contracts);
+    for (size_t i = 0; i < w->n_cases * w->n; i++) response->u[i] = (double)(w->u[i] + w->step[i]);
+    for (size_t k = 0; k < w->n_cases; k++) {
+        accuracy->equilibrium = worse(imbalance(w, k, response->N + k * w->n_bars), accuracy->equilibrium);
+    }
+    sct_status status = judge_estimate(w, contracts, accuracy, issues);
+    if (status == SCT_OK) status = sct_certify(solver, w->u, w->step, response);
+    if (status != SCT_OK) return status;
+    accuracy->bound = bound_of(w, response);
+    return judge_bound(w, accuracy, issues);
 }
 
 sct_status sct_accuracy_refine(sct_solver *solver, sct_response *response, sct_accuracy *accuracy, sct_issues *issues)
@@ -278,19 +341,8 @@ sct_status sct_accuracy_refine(sct_solver *solver, sct_response *response, sct_a
         .n_cases = (size_t)st->n_cases,
         .n_joints = (size_t)st->n_joints,
     };
-    if (!refinement_allocate(&w)) {
-        refinement_free(&w);
-        return SCT_NO_MEMORY;
-    }
-    sct_structure_weight(st, w.A, w.weight);
-    for (size_t i = 0; i < w.n_cases * w.n; i++) w.u[i] = response->u[i];
-    bool contracts;
-    *accuracy = (sct_accuracy){.error = refine_fully(&w, solver, response->N, &contracts)};
-    for (size_t i = 0; i < w.n_cases * w.n; i++) response->u[i] = (double)w.u[i];
-    for (size_t k = 0; k < w.n_cases; k++) {
-        accuracy->equilibrium = worse(imbalance(&w, k, response->N + k * w.n_bars), accuracy->equilibrium);
-    }
-    const sct_status status = judge(&w, contracts, accuracy, issues);
+    *accuracy = (sct_accuracy){.bound = NAN};
+    const sct_status status = run(&w, solver, response, accuracy, issues);
     refinement_free(&w);
     return status;
 }

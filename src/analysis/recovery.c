@@ -1,6 +1,9 @@
 /* Combinations as sums of cases, and reactions from equilibrium of the supported joints. */
 #include "recovery.h"
 
+#include <float.h>
+#include <math.h>
+
 static double factor_of(const sct_structure *st, int combination, int k)
 {
     return st->model->combinations[combination].factor[k];
@@ -73,4 +76,41 @@ void sct_reactions(const sct_structure *st, const double N[], const double load[
             for (int i = 0; i < 3; i++) r[i] -= along * v[i];
         }
     }
+}
+
+/* What the sums of a combination may add by rounding: products and sums of n_cases terms. */
+static double sum_rounding(const sct_structure *st, double terms)
+{
+    return (st->n_cases + 2) * DBL_EPSILON * terms;
+}
+
+double sct_combined_force_error(const sct_structure *st, const sct_response *response, int combination, int bar)
+{
+    double error = 0.0, terms = 0.0;
+    for (int k = 0; k < st->n_cases; k++) {
+        const double factor = fabs(factor_of(st, combination, k));
+        const size_t at = (size_t)k * (size_t)st->n_bars + (size_t)bar;
+        if (factor == 0.0) continue;
+        error += factor * response->N_error[at];
+        terms += factor * fabs(response->N[at]);
+    }
+    return error + sum_rounding(st, terms);
+}
+
+double sct_combined_displacement_error(const sct_structure *st, const sct_response *response, int combination, int joint,
+                                       const double direction[3])
+{
+    double error = 0.0, terms = 0.0;
+    for (int k = 0; k < st->n_cases; k++) {
+        const double factor = fabs(factor_of(st, combination, k));
+        if (factor == 0.0) continue;
+        for (int i = 0; i < st->n_free[joint]; i++) {
+            const size_t at = (size_t)k * (size_t)st->n_dof + (size_t)(st->first_dof[joint] + i);
+            const double *v = st->basis[joint][i];
+            const double along = fabs(v[0] * direction[0] + v[1] * direction[1] + v[2] * direction[2]);
+            error += factor * along * response->u_error[at];
+            terms += factor * fabs(response->u[at]);
+        }
+    }
+    return error + sum_rounding(st, terms);
 }

@@ -16,4 +16,10 @@ void sct_combine_loads(const sct_structure *st, const double A[], int combinatio
 /** reaction (n_joints x 3) that the supports give: what balances bar forces and loads at each joint with a support;
  * 0 elsewhere. */
 void sct_reactions(const sct_structure *st, const double N[], const double load[], double *reaction);
+
+/** Proven bounds of the errors of sct_combine_forces for one bar, and of a joint's displacement along a direction; NAN where
+ * the analysis is not certified. Only after sct_accuracy_refine. */
+double sct_combined_force_error(const sct_structure *st, const sct_response *response, int combination, int bar);
+double sct_combined_displacement_error(const sct_structure *st, const sct_response *response, int combination, int joint,
+                                       const double direction[3]);
 #endif

@@ -221,7 +221,9 @@ sct_status sct_response_new(const sct_structure *st, sct_response *response)
     const size_t cases = (size_t)st->n_cases;
     response->u = array(cases * (size_t)st->n_dof, sizeof *response->u);
     response->N = array(cases * (size_t)st->n_bars, sizeof *response->N);
-    if (response->u != NULL && response->N != NULL) return SCT_OK;
+    response->u_error = array(cases * (size_t)st->n_dof, sizeof *response->u_error);
+    response->N_error = array(cases * (size_t)st->n_bars, sizeof *response->N_error);
+    if (response->u && response->N && response->u_error && response->N_error) return SCT_OK;
     sct_response_free(response);
     return SCT_NO_MEMORY;
 }
@@ -230,6 +232,8 @@ void sct_response_free(sct_response *response)
 {
     free(response->u);
     free(response->N);
+    free(response->u_error);
+    free(response->N_error);
     *response = (sct_response){0};
 }
 
@@ -335,4 +339,9 @@ const double *sct_solver_stiffness(const sct_solver *s, const sct_pattern **patt
 {
     *pattern = &s->pattern;
     return s->K;
+}
+
+const int *sct_solver_places(const sct_solver *s, int e)
+{
+    return s->entry + s->entry_start[e];
 }

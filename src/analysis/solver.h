@@ -8,9 +8,10 @@
 #include "analysis/structure.h"
 #include "numerics/factor.h"
 
-/* Response of every case. u n_cases x n_dof [m]; N n_cases x n_bars [N]. */
+/* Response of every case. u n_cases x n_dof [m]; N n_cases x n_bars [N]; u_error, N_error likewise: proven bounds of
+ * their errors, set by sct_accuracy_refine (NAN: none could be proven), 0 until then. */
 typedef struct sct_response {
-    double *u, *N;
+    double *u, *N, *u_error, *N_error;
 } sct_response;
 
 typedef struct sct_solver sct_solver;
@@ -37,7 +38,7 @@ int sct_solver_analyses(const sct_solver *solver);
  * analysis, in batches. */
 void sct_solver_solve(sct_solver *solver, int count, double b[]);
 
-/** The factor, for mechanism.c and for asking its size: whoever updates it spoils it for sct_solver_solve until the next
+/** The factor, for mechanism.c, eigenvalue.c and for asking its size: whoever updates it spoils it for sct_solver_solve until the next
  * analysis. */
 sct_factor *sct_solver_factor(sct_solver *solver);
 
@@ -46,4 +47,6 @@ const double *sct_solver_areas(const sct_solver *solver);
 const sct_structure *sct_solver_structure(const sct_solver *solver);
 /** The stiffness matrix of the latest analysis, for accuracy.c and mechanism.c: upper triangle in *pattern. */
 const double *sct_solver_stiffness(const sct_solver *solver, const sct_pattern **pattern);
+/** Where bar e stands in that matrix: place of (dof[i], dof[j]) for j = 0 .. n_dof-1 and, inside, i = 0 .. j. */
+const int *sct_solver_places(const sct_solver *solver, int e);
 #endif

@@ -67,6 +67,11 @@ sct_status sct_factor_update(sct_factor *factor, const double values[], int *sto
                                  : sct_sparse_update(factor->sparse, values, stopped_at);
 }
 
+double sct_factor_rounding(sct_factor *factor)
+{
+    return factor->small != NULL ? sct_small_rounding(factor->small) : sct_sparse_rounding(factor->sparse);
+}
+
 void sct_factor_solve(sct_factor *factor, int count, double b[])
 {
     if (factor->small != NULL)

@@ -37,6 +37,28 @@ double sct_factor_bytes(const sct_factor *factor);
  */
 sct_status sct_factor_update(sct_factor *factor, const double values[], int *stopped_at);
 
+/**
+ * How far the product of the factors of the latest update is from the matrix M that was factored: a proven bound of
+ * || L D L' - M ||_2 (L L' where D = 1), rounding in the bound itself included.
+ *
+ * Row p of M is made of sums of at most t_p products, t_p the stored entries of row p of L left of the diagonal, each with
+ * at most `c` roundings more for the scaling by a pivot. Then, for any order of summation,
+ *
+ *     |L D L' - M| <= gamma(min(t_p, t_q) + c) |L| D |L'|   entry by entry (Higham, Accuracy and Stability of Numerical
+ *                                                           Algorithms, 2nd ed., lemma 8.4 and theorem 10.3)
+ *     || . ||_2 <= max_p gamma(t_p + c) (|L| D |L'| e)_p     (a symmetric matrix: its largest row sum; e: all ones)
+ *
+ * with gamma(k) = k u / (1 - k u), u = 2^-53. Underflow is not charged: DEVELOPERS.md, "Accuracy".
+ */
+double sct_factor_rounding(sct_factor *factor);
+
+/** gamma(k) with a little more for its own rounding. */
+static inline double sct_gamma(double k)
+{
+    static const double U = 0x1p-53;
+    return k * U / (1.0 - k * U) * (1.0 + 0x1p-50);
+}
+
 /** Solves for `count` right-hand sides in place: b is n x count, column-major. */
 void sct_factor_solve(sct_factor *factor, int count, double b[]);
 #endif

@@ -2,6 +2,7 @@
 #include "small.h"
 
 #include <float.h>
+#include <math.h>
 #include <stdbool.h>
 #include <stdlib.h>
 #include <string.h>
@@ -438,6 +439,46 @@ INLINE void solve_block(const int R, const sct_small *s, int count, double *rest
     for (size_t k = 0; k < n; k++) {
         for (int r = 0; r < count; r++) rhs[(size_t)r * n + (size_t)s->order[k]] = b[k * (size_t)R + (size_t)r];
     }
+}
+
+/* v = D |L'| e by the columns of a panel, and in t the number of entries of L left of the diagonal. */
+static void weigh_columns(const panel *p, const double *x, const double *inverse, double v[], double t[])
+{
+    const double *D = x + p->diagonal, *l = x + p->rectangle;
+    for (int c = 0; c < p->w; c++) {
+        double sum = 1.0;
+        for (int r = c + 1; r < p->w; r++) sum += fabs(D[r * (r + 1) / 2 + c]);
+        for (int k = 0; k < p->m; k++) sum += fabs(l[k * p->w + c]);
+        v[p->first + c] = sum / inverse[p->first + c];
+        t[p->first + c] += c;
+    }
+    for (int k = 0; k < p->m; k++) t[p->row[k]] += p->w;
+}
+
+/* z += |L| v by the columns of a panel. */
+static void add_columns(const panel *p, const double *x, const double v[], double z[])
+{
+    const double *D = x + p->diagonal, *l = x + p->rectangle;
+    for (int c = 0; c < p->w; c++) {
+        const double v_c = v[p->first + c];
+        z[p->first + c] += v_c;
+        for (int r = c + 1; r < p->w; r++) z[p->first + r] += fabs(D[r * (r + 1) / 2 + c]) * v_c;
+        for (int k = 0; k < p->m; k++) z[p->row[k]] += fabs(l[k * p->w + c]) * v_c;
+    }
+}
+
+/* An entry is L(p, k) = fl(y(p, k) fl(1 / d_k)), and y(p, q) what is left after t_p products y(q, k) L(p, k) at most:
+ * two roundings more than the products. */
+double sct_small_rounding(sct_small *s)
+{
+    enum { BY_PIVOT = 2 };
+    const size_t n = (size_t)s->n;
+    double *v = s->b, *z = v + n, *t = z + n, most = 0.0;
+    memset(v, 0, 3 * n * sizeof *v);
+    for (int k = 0; k < s->n_panels; k++) weigh_columns(&s->panels[k], s->x, s->inverse, v, t);
+    for (int k = 0; k < s->n_panels; k++) add_columns(&s->panels[k], s->x, v, z);
+    for (size_t p = 0; p < n; p++) most = fmax(most, sct_gamma(t[p] + BY_PIVOT) * z[p]);
+    return most * (1.0 + sct_gamma(3.0 * (double)n + 8.0)); /* sums of up to n terms, three deep */
 }
 
 void sct_small_solve(sct_small *s, int count, double b[])

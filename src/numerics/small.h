@@ -20,6 +20,9 @@ double sct_small_entries(const sct_small *small);
 /** As sct_factor_update; refuses pivots that are not positive or not finite. Never SCT_NO_MEMORY. */
 sct_status sct_small_update(sct_small *small, const double values[], int *stopped_at);
 
+/** As sct_factor_rounding. */
+double sct_small_rounding(sct_small *small);
+
 /** As sct_factor_solve. */
 void sct_small_solve(sct_small *small, int count, double b[]);
 #endif

@@ -16,6 +16,9 @@ double sct_sparse_entries(const sct_sparse *sparse);
 /** As sct_factor_update; SCT_TOO_LARGE when L has more entries than 32-bit indices reach. */
 sct_status sct_sparse_update(sct_sparse *sparse, const double values[], int *stopped_at);
 
+/** As sct_factor_rounding. */
+double sct_sparse_rounding(sct_sparse *sparse);
+
 /** As sct_factor_solve. */
 void sct_sparse_solve(sct_sparse *sparse, int count, double b[]);
 #endif

@@ -25,6 +25,7 @@ static void add_evidence(sct_json *w, const sct_result *r)
     sct_json_number(w, "mass_kg", r->mass);
     sct_json_number(w, "mass_continuous_kg", r->mass_continuous);
     sct_json_number(w, "utilisation", r->utilisation);
+    sct_json_number(w, "utilisation_at_most", r->utilisation_at_most);
     sct_json_number(w, "kkt", r->kkt);
     sct_json_number(w, "violation", r->violation);
     sct_json_whole(w, "analyses", r->analyses);
@@ -32,6 +33,7 @@ static void add_evidence(sct_json *w, const sct_result *r)
     sct_json_begin(w, "{");
     sct_json_number(w, "equilibrium", r->accuracy.equilibrium);
     sct_json_number(w, "error", r->accuracy.error);
+    sct_json_number(w, "bound", r->accuracy.bound);
     sct_json_end(w, "}");
 }
 

@@ -120,6 +120,20 @@ static void consider(sct_member_result *m, const sct_bar_check *check, int combi
     m->N = N;
 }
 
+/* The strength checks of a bar, with its force moved either way by what its error may be. */
+static double utilisation_at_most(const sct_result *r, const sct_duty *duty, int combination, int bar, double N, double A,
+                                  const double i[2])
+{
+    double error = sct_combined_force_error(duty->st, &duty->response, combination, bar), most = 0.0;
+    if (isnan(error)) error = r->accuracy.error * fabs(N);
+    for (int side = -1; side <= 1 && N != 0.0; side += 2) {
+        sct_bar_check checks[SCT_MOST_BAR_CHECKS];
+        const int n = sct_bar_checks(&duty->rules[bar], N + side * error, A, i, checks);
+        for (int j = 0; j < n; j++) most = sct_worse(most, checks[j].utilisation);
+    }
+    return most;
+}
+
 static void fill_member(sct_result *r, const sct_duty *duty, const sct_design *design, int bar)
 {
     const sct_bar *b = &duty->st->bars[bar];
@@ -147,9 +161,12 @@ static void fill_member(sct_result *r, const sct_duty *duty, const sct_design *d
         sct_bar_check checks[SCT_MOST_BAR_CHECKS];
         const int n = sct_bar_checks(rule, N, design->A[b->group], i, checks);
         for (int j = 0; j < n; j++) consider(m, &checks[j], c, N);
+        r->utilisation_at_most =
+            sct_worse(r->utilisation_at_most, utilisation_at_most(r, duty, c, bar, N, design->A[b->group], i));
     }
     const sct_bar_check slender = sct_bar_slenderness(rule, i, m->compressed, NULL);
     consider(m, &slender, -1, m->compressed ? m->N_min : m->N_max); /* the force that the limit is about */
+    r->utilisation_at_most = sct_worse(r->utilisation_at_most, slender.utilisation);
     m->utilisation = settled(m->utilisation);
     sct_group_result *g = &r->groups[b->group];
     g->n_members++;
@@ -160,8 +177,14 @@ static void fill_member(sct_result *r, const sct_duty *duty, const sct_design *d
 static void consider_row(sct_result *r, const sct_duty *duty, int row, sct_deflection_result *out)
 {
     const double utilisation = settled(sct_duty_row_utilisation(duty, row));
+    const sct_deflection_row *at = &duty->rows[row];
+    const sct_deflection_limit *limit = &duty->st->model->deflections[at->limit];
+    double error =
+        sct_combined_displacement_error(duty->st, &duty->response, at->combination, at->joint, limit->direction);
+    if (isnan(error)) error = r->accuracy.error * fabs(duty->u[row]);
+    r->utilisation_at_most = sct_worse(r->utilisation_at_most, (fabs(duty->u[row]) + error) / limit->at_most);
     if (out->combination >= 0 && (isnan(out->utilisation) || utilisation <= out->utilisation)) return;
-    out->combination = duty->rows[row].combination;
+    out->combination = at->combination;
     out->u = duty->u[row];
     out->utilisation = utilisation;
     r->utilisation = sct_worse(r->utilisation, utilisation);
@@ -208,7 +231,7 @@ sct_status sct_result_new(const sct_duty *duty, const sct_design *design, sct_ac
     fill_groups(r, duty, design);
     for (int bar = 0; bar < r->n_members; bar++) fill_member(r, duty, design, bar);
     fill_deflections(r, duty);
-    r->kept = sct_keeps(r->utilisation * (1.0 + accuracy.error)); /* kept only when the error does not matter */
+    r->kept = sct_keeps(r->utilisation_at_most); /* kept only when the error does not matter */
     sct_result_judge(r, false);
     *result = r;
     return SCT_OK;
@@ -258,9 +281,18 @@ void sct_result_judge(sct_result *r, bool at_smallest)
         sct_number_format(r->verdict, sizeof r->verdict, "Every limit is kept; no member carries a force.");
     else if (r->kept)
         sct_number_format(r->verdict, sizeof r->verdict, "Every limit is kept; %s governs at %.2f.", what, shown(most));
+    else if (sct_keeps(r->utilisation) && !sct_keeps(r->utilisation_at_most))
+        sct_number_format(r->verdict, sizeof r->verdict,
+                          "Not decided: %s is at its limit, within the error of the analysis (%.0e of it).", what,
+                          r->utilisation_at_most - r->utilisation);
     else if (r->outcome == SCT_NO_FEASIBLE_DESIGN)
         sct_number_format(r->verdict, sizeof r->verdict,
                           "No design found that keeps every limit; the least violation found leaves %s at %.2f.", what,
                           shown(most));
     else sct_number_format(r->verdict, sizeof r->verdict, "Not every limit is kept: %s is at %.2f.", what, shown(most));
+    if (isnan(r->accuracy.bound)) { /* never silent */
+        const size_t used = strlen(r->verdict);
+        sct_number_format(r->verdict + used, sizeof r->verdict - used, " Accuracy not certified; estimate %.0e.",
+                          r->accuracy.error);
+    }
 }

@@ -118,7 +118,14 @@ static sct_status show(job *J, sct_result **result)
 {
     sct_accuracy accuracy;
     sct_status status = sct_mechanism_find(J->duty->solver, J->design.A, J->issues);
-    if (status == SCT_OK) status = sct_duty_analyse(J->duty, J->design.A);
+    if (status != SCT_OK) return status;
+    status = sct_duty_analyse(J->duty, J->design.A);
+    if (status == SCT_MECHANISM || status == SCT_NOT_ACCURATE) { /* no mechanism was found: the solver is at fault */
+        sct_issue_add(J->issues, SCT_ERROR, (sct_where){.file = J->model->file},
+                      "internal check failed: the stiffness matrix of a sound structure has no factor (%s)",
+                      sct_status_text(status));
+        return SCT_SELF_CHECK;
+    }
     if (status == SCT_OK) status = sct_accuracy_refine(J->duty->solver, &J->duty->response, &accuracy, J->issues);
     if (status != SCT_OK) return status;
     sct_duty_gather(J->duty);
@@ -567,7 +574,8 @@ static sct_status search(job *J, sct_result **result)
     if (status == SCT_OK) status = choose(J, &pick, why);
     if (status == SCT_OK) status = show(J, result);
     if (status == SCT_OK && !(*result)->kept && sct_keeps((*result)->utilisation) && has_kind(J, SCT_FREE_AREA)) {
-        const double margin = 4.0 * (*result)->accuracy.error; /* the error alone stands in the way */
+        /* the error alone stands in the way */
+        const double margin = 40.0 * ((*result)->utilisation_at_most - (*result)->utilisation) + SCT_KEPT_TO;
         sct_result_free(*result);
         *result = NULL;
         status = make_strict(J, margin);

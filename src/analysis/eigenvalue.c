@@ -1,0 +1,166 @@
+/* A lower bound of the smallest eigenvalue: if A - alpha I has a factor, then A cannot have an eigenvalue below alpha,
+ * up to the rounding of the factor, which is known afterwards. */
+#include "analysis/eigenvalue.h"
+
+#include <math.h>
+#include <stdlib.h>
+#include <string.h>
+
+#include "analysis/elongation.h"
+#include "base/random.h"
+
+enum { ITERATIONS = 4, MOST_TRIALS = 5 };
+static const double PART = 0.7; /* of the estimate, tried first: an estimate is too high as a rule, by a few per cent */
+/* Entries that fall below the smallest double, in the scaled matrix and in its factor: DEVELOPERS.md, "Accuracy". */
+static const double UNDERFLOW_PER_ENTRY = 0x1p-500;
+
+typedef struct scaled {
+    const sct_structure *st;
+    const sct_pattern *pattern;
+    sct_solver *solver;
+    const double *s;
+    size_t n, n_values;
+    long double *sums; /* n_values: the scaled matrix before it is rounded */
+    double *values;    /* n_values: A, rounded once; then A - alpha I */
+    double *row_sum;   /* n: of the absolute values of all terms */
+    double *count;     /* n: bars at each unknown */
+    double *y, *z;     /* n */
+} scaled;
+
+static void scaled_free(scaled *a)
+{
+    free(a->sums);
+    free(a->values);
+    free(a->row_sum);
+    free(a->count);
+    free(a->y);
+    free(a->z);
+}
+
+static bool scaled_allocate(scaled *a)
+{
+    a->sums = calloc(a->n_values + 1, sizeof *a->sums);
+    a->values = malloc((a->n_values + 1) * sizeof *a->values);
+    a->row_sum = calloc(a->n + 1, sizeof *a->row_sum);
+    a->count = calloc(a->n + 1, sizeof *a->count);
+    a->y = malloc((a->n + 1) * sizeof *a->y);
+    a->z = malloc((a->n + 1) * sizeof *a->z);
+    return a->sums && a->values && a->row_sum && a->count && a->y && a->z;
+}
+
+static int diagonal(const sct_pattern *pattern, size_t i)
+{
+    return pattern->column[i + 1] - 1; /* rows ascend and end at the diagonal */
+}
+
+/* False when a diagonal entry is not positive and finite. */
+static bool find_scale(size_t n, const double K[], const sct_pattern *pattern, double s[])
+{
+    for (size_t i = 0; i < n; i++) {
+        const double K_ii = K[diagonal(pattern, i)];
+        if (!(K_ii > 0.0 && K_ii <= DBL_MAX)) return false;
+        s[i] = ldexp(1.0, -(int)lround(0.5 * log2(K_ii)));
+    }
+    return true;
+}
+
+static void assemble(scaled *a, const double A[])
+{
+    for (int e = 0; e < a->st->n_bars; e++) {
+        const sct_bar *bar = &a->st->bars[e];
+        const int *place = sct_solver_places(a->solver, e);
+        const long double k = sct_axial_stiffness(bar, A);
+        long double scaled_b[6], sum = 0.0L;
+        for (int i = 0; i < bar->n_dof; i++) {
+            scaled_b[i] = (long double)bar->b[i] * a->s[bar->dof[i]];
+            sum += fabsl(scaled_b[i]);
+        }
+        for (int j = 0, p = 0; j < bar->n_dof; j++) {
+            for (int i = 0; i <= j; i++, p++) a->sums[place[p]] += k * scaled_b[i] * scaled_b[j];
+            a->row_sum[bar->dof[j]] += (double)(k * fabsl(scaled_b[j]) * sum);
+            a->count[bar->dof[j]] += 1.0;
+        }
+    }
+    for (size_t p = 0; p < a->n_values; p++) a->values[p] = (double)a->sums[p];
+}
+
+/* || values - S K S ||_2 at most: each entry is a sum of as many terms as bars meet, five roundings in each, rounded to
+ * double at the end. */
+static double assembly_rounding(const scaled *a)
+{
+    double most = 0.0;
+    for (size_t i = 0; i < a->n; i++) {
+        const double relative = 0x1p-53 + (double)sct_gamma_long(a->count[i] + 6.0L);
+        most = fmax(most, relative * a->row_sum[i] * (1.0 + sct_gamma(a->count[i] + 10.0)));
+    }
+    return most;
+}
+
+/* Rayleigh quotient after some inverse iterations: no bound, but close above the smallest eigenvalue. */
+static double estimate(scaled *a)
+{
+    sct_random random = {1};
+    double quotient = 0.0;
+    for (size_t i = 0; i < a->n; i++) a->z[i] = sct_random_unit(&random) - 0.5;
+    for (int k = 0; k < ITERATIONS; k++) {
+        double length = 0.0, product = 0.0;
+        for (size_t i = 0; i < a->n; i++) length += a->z[i] * a->z[i];
+        length = sqrt(length);
+        for (size_t i = 0; i < a->n; i++) {
+            a->y[i] = a->z[i] / length;
+            a->z[i] = a->y[i] / a->s[i];
+        }
+        sct_solver_solve(a->solver, 1, a->z);
+        length = 0.0;
+        for (size_t i = 0; i < a->n; i++) {
+            a->z[i] /= a->s[i];
+            product += a->y[i] * a->z[i];
+            length += a->z[i] * a->z[i];
+        }
+        quotient = product / length;
+    }
+    return quotient;
+}
+
+/* Factors A - alpha I; *lambda: the bound that it proves, 0 when it has no factor. */
+static sct_status try_shift(scaled *a, double alpha, double *lambda)
+{
+    for (size_t i = 0; i < a->n; i++) {
+        const int p = diagonal(a->pattern, i);
+        a->values[p] = (double)a->sums[p] - alpha;
+    }
+    sct_factor *factor = sct_solver_factor(a->solver);
+    const sct_status status = sct_factor_update(factor, a->values, NULL);
+    *lambda = 0.0;
+    if (status != SCT_OK) return status;
+    const double n = (double)a->n, shift_rounding = 4.0 * 0x1p-53; /* of a diagonal of at most 2 + alpha */
+    const double lost =
+        sct_factor_rounding(factor) + assembly_rounding(a) + shift_rounding + n * n * UNDERFLOW_PER_ENTRY;
+    *lambda = fmax((alpha - lost) * (1.0 - 0x1p-40), 0.0);
+    return SCT_OK;
+}
+
+static sct_status search(scaled *a, const double A[], double *lambda)
+{
+    assemble(a, A);
+    double alpha = PART * estimate(a);
+    sct_status status = SCT_NOT_CONVEX;
+    for (int trial = 0; trial < MOST_TRIALS && status == SCT_NOT_CONVEX && alpha > 0.0 && alpha < 2.0; trial++) {
+        status = try_shift(a, alpha, lambda);
+        alpha *= 0.5;
+    }
+    return status == SCT_NOT_CONVEX ? SCT_OK : status;
+}
+
+sct_status sct_eigenvalue_bound(sct_solver *solver, double s[], double *lambda)
+{
+    scaled a = {.st = sct_solver_structure(solver), .solver = solver, .s = s};
+    const double *K = sct_solver_stiffness(solver, &a.pattern);
+    *lambda = 0.0;
+    a.n = (size_t)a.st->n_dof;
+    a.n_values = (size_t)a.pattern->column[a.n];
+    if (a.n == 0 || !find_scale(a.n, K, a.pattern, s)) return SCT_OK;
+    const sct_status status = scaled_allocate(&a) ? search(&a, sct_solver_areas(solver), lambda) : SCT_NO_MEMORY;
+    scaled_free(&a);
+    return status;
+}
