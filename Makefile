@@ -25,7 +25,7 @@ TESTS    := $(patsubst tests/%.c,$(BUILD)/tests/%,$(sort $(wildcard tests/test_*
 VERSION  := $(shell sed -n 's/^\#define SCT_VERSION "\(.*\)"/\1/p' include/scantling.h)
 SONAME    = libscantling.so.0
 
-.PHONY: all demo test test-full sanitize sanitized format clean packages test-packages install uninstall deb
+.PHONY: all demo test test-full sanitize sanitized format clean packages test-packages bench bench-packages install uninstall deb
 all: $(BUILD)/scantling $(BUILD)/libscantling.a $(BUILD)/libscantling.so $(BUILD)/$(SONAME)
 
 $(BUILD)/scantling: $(CLI_OBJ) $(BUILD)/libscantling.a
@@ -70,8 +70,13 @@ TEST_PROBE  = printf '\#include <check.h>\nvoid dposv_(void);int main(void){dpos
 EXTRA_PACKAGES = mandoc pkgconf dpkg-dev
 EXTRA_PROBE = for tool in mandoc pkg-config dpkg-shlibdeps; do command -v $$tool || exit 1; done
 
+BENCH_PACKAGES = $(BUILD_PACKAGES) libnlopt-dev
+BENCH_PROBE = printf '\#include <nlopt.h>\nint main(void){return nlopt_create(NLOPT_LD_MMA,1)==0;}\n' | $(CC) -x c - -o /dev/null -lnlopt -lm
+
 packages:
 	@( $(PROBE) ) >/dev/null 2>&1 || sh .ci/packages $(BUILD_PACKAGES)
+bench-packages:
+	@( $(PROBE) && $(BENCH_PROBE) ) >/dev/null 2>&1 || sh .ci/packages $(BENCH_PACKAGES)
 test-packages:
 	@( $(PROBE) && $(TEST_PROBE) ) >/dev/null 2>&1 || sh .ci/packages $(TEST_PACKAGES)
 	@( $(EXTRA_PROBE) ) >/dev/null 2>&1 || test -e $(BUILD)/.extras || sh .ci/packages $(EXTRA_PACKAGES) || true
@@ -147,6 +152,14 @@ uninstall:
 
 deb: all
 	BUILD=$(BUILD) VERSION=$(VERSION) MAKE=$(MAKE) sh .ci/deb
+
+# Ratios against CHOLMOD and NLopt in one run, as text and in $(BUILD)/bench.json; FULL=full: the largest models as well.
+BENCH_SRC := $(sort $(wildcard tests/bench*.c))
+$(BUILD)/bench: $(BENCH_SRC) tests/bench.h tests/grid.h tests/model_build.h $(BUILD)/libscantling.a
+	$(CC) $(CPPFLAGS) $(CFLAGS) -Itests -o $@ $(BENCH_SRC) $(BUILD)/libscantling.a $(LDFLAGS) -lnlopt $(LDLIBS)
+bench: bench-packages
+	@$(MAKE) --no-print-directory -s all $(BUILD)/bench
+	@OMP_THREAD_LIMIT=1 OPENBLAS_NUM_THREADS=1 $(BUILD)/bench $(BUILD)/bench.json $(FULL)
 
 format:
 	clang-format -i $(wildcard src/*/*.[ch] tests/*.[ch] examples/*.c include/*.h)

@@ -10,9 +10,9 @@
 /* 10 x 10 bays in 4 zones: 800 members, 42 groups; 25 x 25 in 6: 5000 members, 93 groups. */
 typedef struct grid_spec {
     int nx, ny;
-    int zones;     /* per half side: groups are symmetric about both middle lines and the diagonal; 0: every member is
-                    * a group of its own */
-    bool deep;     /* deflection limits at every joint of the top layer, else at nine */
+    int zones; /* per half side: groups are symmetric about both middle lines and the diagonal; 0: every member is
+                * a group of its own */
+    bool deep; /* deflection limits at every joint of the top layer, else at nine */
 } grid_spec;
 
 enum { GRID_TOP, GRID_BOTTOM, GRID_WEB };
@@ -44,7 +44,8 @@ typedef struct grid_writer {
     int n_members;
 } grid_writer;
 
-static inline void grid_member(grid_writer *w, const char *from, const char *to, int kind, bool along_y, double x, double y)
+static inline void grid_member(grid_writer *w, const char *from, const char *to, int kind, bool along_y, double x,
+                               double y)
 {
     const int group = w->spec->zones > 0 ? grid_group(w->spec, kind, along_y, x, y) : w->n_members;
     sct_text_format(w->text, "%s\n    \"M%d\": {\"from\": \"%s\", \"to\": \"%s\", \"group\": \"G%d\"}",
@@ -98,8 +99,8 @@ static inline void grid_joints(const grid_spec *s, sct_text *text)
     const double bay = 3.0, depth = 2.1;
     for (int j = 0; j <= s->ny; j++)
         for (int i = 0; i <= s->nx; i++) {
-            sct_text_format(text, "%s\n    \"%s\": {\"at\": [%g, %g, %g]", i + j > 0 ? "," : "", grid_joint('T', i, j).text,
-                            bay * i, bay * j, depth);
+            sct_text_format(text, "%s\n    \"%s\": {\"at\": [%g, %g, %g]", i + j > 0 ? "," : "",
+                            grid_joint('T', i, j).text, bay * i, bay * j, depth);
             if (grid_is_held(s, i, j)) {
                 const bool is_origin = i == 0 && j == 0, on_x = i == s->nx && j == 0;
                 sct_text_add(text, is_origin ? ", \"support\": [\"x\", \"y\", \"z\"]"
@@ -127,7 +128,8 @@ static inline double grid_load(const grid_spec *s, int k, int i, int j)
 static inline void grid_cases(const grid_spec *s, sct_text *text)
 {
     for (int k = 0; k < 4; k++) {
-        sct_text_format(text, "%s\n    \"C%d\": {%s\"joints\": {", k > 0 ? "," : "", k, k == 0 ? "\"self_weight\": true, " : "");
+        sct_text_format(text, "%s\n    \"C%d\": {%s\"joints\": {", k > 0 ? "," : "", k,
+                        k == 0 ? "\"self_weight\": true, " : "");
         for (int j = 0; j <= s->ny; j++)
             for (int i = 0; i <= s->nx; i++)
                 sct_text_format(text, "%s\"%s\": [0, 0, %g]", i + j > 0 ? ", " : "", grid_joint('T', i, j).text,
@@ -136,7 +138,8 @@ static inline void grid_cases(const grid_spec *s, sct_text *text)
     }
     sct_text_add(text, "\n  },\n  \"combinations\": {");
     for (int k = 0; k < 4; k++)
-        sct_text_format(text, "%s\n    \"K%d\": {\"for\": \"allowable\", \"sum\": {\"C%d\": 1}}", k > 0 ? "," : "", k, k);
+        sct_text_format(text, "%s\n    \"K%d\": {\"for\": \"allowable\", \"sum\": {\"C%d\": 1}}", k > 0 ? "," : "", k,
+                        k);
 }
 
 static inline void grid_deflections(const grid_spec *s, sct_text *text)
@@ -160,13 +163,16 @@ static inline void grid_json(const grid_spec *s, sct_text *text)
     grid_writer w = {.spec = s, .text = text};
     sct_text_format(text, "{\n  \"scantling\": 1,\n  \"title\": \"space grid, %d members\",\n  \"dimensions\": 3,\n",
                     8 * s->nx * s->ny);
-    sct_text_add(text, "  \"units\": {\"length\": \"m\", \"force\": \"kN\", \"stress\": \"MPa\", \"area\": \"mm2\", \"density\": "
-                       "\"kg/m3\"},\n  \"materials\": {\"steel\": {\"E\": 210000, \"density\": 7850, \"allowable\": "
-                       "{\"tension\": 160, \"compression\": 110}}},\n  \"joints\": {");
+    sct_text_add(
+        text,
+        "  \"units\": {\"length\": \"m\", \"force\": \"kN\", \"stress\": \"MPa\", \"area\": \"mm2\", \"density\": "
+        "\"kg/m3\"},\n  \"materials\": {\"steel\": {\"E\": 210000, \"density\": 7850, \"allowable\": "
+        "{\"tension\": 160, \"compression\": 110}}},\n  \"joints\": {");
     grid_joints(s, text);
     sct_text_add(text, "\n  },\n  \"groups\": {");
     for (int g = 0; g < n_groups; g++)
-        sct_text_format(text, "%s\n    \"G%d\": {\"material\": \"steel\", \"area\": {\"at_least\": 100, \"at_most\": 40000}}",
+        sct_text_format(text,
+                        "%s\n    \"G%d\": {\"material\": \"steel\", \"area\": {\"at_least\": 100, \"at_most\": 40000}}",
                         g > 0 ? "," : "", g);
     sct_text_add(text, "\n  },\n  \"members\": {");
     grid_members(&w);
