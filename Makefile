@@ -25,7 +25,7 @@ TESTS    := $(patsubst tests/%.c,$(BUILD)/tests/%,$(sort $(wildcard tests/test_*
 VERSION  := $(shell sed -n 's/^\#define SCT_VERSION "\(.*\)"/\1/p' include/scantling.h)
 SONAME    = libscantling.so.0
 
-.PHONY: all demo test test-full sanitize sanitized format clean packages test-packages bench bench-packages install uninstall deb
+.PHONY: all demo test test-full sanitize sanitized format clean packages test-packages bench bench-packages install uninstall deb lint
 all: $(BUILD)/scantling $(BUILD)/libscantling.a $(BUILD)/libscantling.so $(BUILD)/$(SONAME)
 
 $(BUILD)/scantling: $(CLI_OBJ) $(BUILD)/libscantling.a
@@ -149,6 +149,13 @@ install: all
 uninstall:
 	rm -f $(INSTALLED:%=$(DESTDIR)%)
 	-rmdir $(DESTDIR)$(OURDATA)/benchmarks $(DESTDIR)$(OURDATA) $(DESTDIR)$(DOCDIR)/examples $(DESTDIR)$(DOCDIR) 2>/dev/null || true
+
+# Zero findings, or the exceptions and their reasons in .ci/lint and .clang-tidy.
+LINT_PACKAGES = gcc clang clang-tidy cppcheck shellcheck mandoc check
+lint: packages
+	@( for tool in clang clang-tidy cppcheck shellcheck mandoc; do command -v $$tool || exit 1; done ) >/dev/null 2>&1 || sh .ci/packages $(LINT_PACKAGES)
+	@$(MAKE) --no-print-directory -s all
+	@BUILD=$(BUILD) sh .ci/lint
 
 deb: all
 	BUILD=$(BUILD) VERSION=$(VERSION) MAKE=$(MAKE) sh .ci/deb

@@ -102,7 +102,7 @@ int cli_parse(const cli_command *command, int argc, char **argv, const char *giv
         }
         given[i] = optarg != NULL ? optarg : "";
         if (strcmp(command->options[i].name, "color") == 0) { /* from here on also for what is said of the others */
-            int when;
+            int when = 0;
             if (!cli_word(command, given, "color", &when)) return usage_fault(command);
             cli_colour_messages(when);
         }
@@ -184,9 +184,10 @@ bool cli_word(const cli_command *command, const char *const given[], const char 
 {
     const char *text = cli_given(command, given, name);
     if (text == NULL) return true;
-    const char *const *words = NULL;
+    static const char *const NONE[] = {NULL};
+    const char *const *words = NONE;
     for (int i = 0; i < command->n_options; i++)
-        if (strcmp(command->options[i].name, name) == 0) words = command->options[i].words;
+        if (strcmp(command->options[i].name, name) == 0 && command->options[i].words != NULL) words = command->options[i].words;
     char list[120] = "";
     int n = 0;
     for (; words[n] != NULL; n++) {

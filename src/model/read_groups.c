@@ -210,7 +210,7 @@ enum {
     K_FACTOR,
     N_KEYS
 };
-static const sct_key KEYS[N_KEYS] = {{"material", "the name of a material"},
+static const sct_key GROUP_KEYS[N_KEYS] = {{"material", "the name of a material"},
                                      {"area", NULL},
                                      {"family", NULL},
                                      {"sections", NULL},
@@ -279,7 +279,7 @@ static void read_area(sct_reader *r, const sct_node *const found[], sct_group *g
     for (int i = 0; i < 2; i++)
         if (found[FOR_FAMILIES[i]] != NULL && found[K_FAMILY] == NULL)
             sct_fields_key_error(&r->f, found[FOR_FAMILIES[i]], "\"%s\" goes with \"family\", not with \"area\"",
-                                 KEYS[FOR_FAMILIES[i]].name);
+                                 GROUP_KEYS[FOR_FAMILIES[i]].name);
     if (sct_fields_keys(&r->f, found[K_SECOND_MOMENT], "a second moment of area", FACTOR, 1, &c))
         read_both_axes(r, c, &C, g->c);
 }
@@ -404,7 +404,7 @@ static void read_group(sct_reader *r, const sct_node *node, sct_group *g, sct_le
     *g = (sct_group){.material = -1, .family = -1, .held = -1, .where = sct_fields_where(&r->f, node)};
     g->A_min = g->A_max = g->A_start = g->A_held = g->c[0] = g->c[1] = g->allowable[0] = g->allowable[1] = (double)NAN;
     sct_fields_name(&r->f, node, &g->name);
-    if (!sct_fields_keys(&r->f, node, "a group", KEYS, N_KEYS, found)) return;
+    if (!sct_fields_keys(&r->f, node, "a group", GROUP_KEYS, N_KEYS, found)) return;
     sct_fields_reference(&r->f, found[K_MATERIAL], "material", r->materials, &g->material);
     read_size(r, node, found, g);
     sct_read_allowable(r, found[K_ALLOWABLE], g->allowable);

@@ -69,7 +69,7 @@ static bool is_among_worst(const sct_result *r, int i)
     int worse = 0;
     for (int k = 0; k < r->n_deflections; k++) {
         const bool before = r->deflections[k].utilisation > r->deflections[i].utilisation ||
-                            (r->deflections[k].utilisation == r->deflections[i].utilisation && k < i);
+                            (k < i && r->deflections[k].utilisation == r->deflections[i].utilisation);
         if (before && r->deflections[k].joint == r->deflections[i].joint) return false;
         worse += before;
     }

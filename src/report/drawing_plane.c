@@ -213,7 +213,7 @@ static sct_point on_line(const sct_scene *scene, const chain *c, int i, int axis
 static void one_line(sct_scene *scene, const chain *c, const run runs[], int n, int axis, double across)
 {
     const sct_point along = axis == 0 ? (sct_point){1, 0} : (sct_point){0, -1};
-    sct_point at[POINTS_MOST];
+    sct_point at[POINTS_MOST] = {0};
     for (int i = 0; i < c->n; i++) at[i] = on_line(scene, c, i, axis, across);
     sct_dimension(&scene->sheet, at, c->n, along);
     for (int i = 0; i < n; i++) {

@@ -53,7 +53,8 @@ void sct_space_view(sct_scene *scene, double width, double height)
     scene->tilt = TILT * RADIAN;
     for (int i = 0; i < TURNS && fewest != 0 && scene->result->n_joints <= JOINTS_TO_COMPARE; i++) {
         /* 0, +7, -7, +14, ...: the nearest turn to the usual one that hides least */
-        const double turn = first + (i % 2 == 1 ? 1 : -1) * ((i + 1) / 2) * TURN_STEP;
+        const int steps = (i + 1) / 2;
+        const double turn = first + (i % 2 == 1 ? 1 : -1) * steps * TURN_STEP;
         sct_project(scene->result, turn * RADIAN, scene->tilt, scene->at, scene->away);
         const int hidden = count_hidden(scene, width, height);
         if (fewest < 0 || hidden < fewest) {

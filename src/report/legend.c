@@ -110,7 +110,7 @@ static void group_row(sct_sheet *sheet, const sct_result *r, int g, double x, do
 
 double sct_group_table(sct_sheet *sheet, const sct_result *r, sct_point at, double width)
 {
-    int rows[ROWS_MOST];
+    int rows[ROWS_MOST] = {0};
     const int n = choose_groups(r, rows);
     const double x = at.x;
     double y = at.y;
@@ -163,7 +163,7 @@ double sct_group_strip(sct_sheet *sheet, const sct_result *r, sct_point at, doub
         double u;
         const char *words;
     } MARKS[] = {{0, "0"}, {0.25, "0.25"}, {0.5, "0.50"}, {0.75, "0.75"}, {0.9, NULL}, {1, "1"}};
-    int rows[ROWS_MOST];
+    int rows[ROWS_MOST] = {0};
     const int n = choose_groups(r, rows);
     /* Above 1 the scale goes on to the largest, at most to 2: what lies beyond stands at its end. */
     const double most = r->utilisation > 1 ? fmin(2, fmax(1.1, r->utilisation)) : 1;

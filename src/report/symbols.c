@@ -95,7 +95,7 @@ static void support_way(const sct_scene *scene, int joint, double way[3])
 
 static sct_point plane_way(const sct_scene *scene, int joint)
 {
-    double way[3];
+    double way[3] = {0};
     support_way(scene, joint, way);
     const double L = hypot(way[0], way[1]);
     return L > 1e-9 ? (sct_point){way[0] / L, -way[1] / L} : (sct_point){0, 1};

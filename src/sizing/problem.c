@@ -113,7 +113,7 @@ static sct_status value(void *user, const double x[], double *f, double g[])
     if (!P->have_value || memcmp(x, P->x, (size_t)P->n * sizeof *x) != 0) status = judge(P, x);
     if (status != SCT_OK) return status;
     *f = P->f / P->mass_unit;
-    for (int j = 0; j < P->nlp.m; j++) g[j] = P->plain ? exp(P->g[j]) - 1.0 : P->g[j];
+    for (int j = 0; j < P->nlp.m; j++) g[j] = P->plain ? expm1(P->g[j]) : P->g[j];
     return SCT_OK;
 }
 
@@ -195,13 +195,13 @@ static sct_status curvature(void *user, const double x[], int n_rows, const int 
         const double outer = mu[r] * (s2 - s1) / (q * q), inner = mu[r] * s1 / q;
         for (size_t a = 0; a < n; a++) sct_axpy((int)a + 1, outer * P->row[a], P->row, H + a * n); /* lower triangle */
         const double *factor = st->model->combinations[combination_of(P, j)].factor;
-        const double *dir = is_bar ? NULL : st->model->deflections[P->duty->rows[j - P->n_bar_rows].limit].direction;
         for (size_t k = 0; k < n_cases; k++) {
             if (is_bar) {
                 P->wN[k * n_bars + (size_t)bar_of(P, j)] += inner * factor[k];
                 continue;
             }
             const int joint = P->duty->rows[j - P->n_bar_rows].joint;
+            const double *dir = st->model->deflections[P->duty->rows[j - P->n_bar_rows].limit].direction;
             for (int d = 0; d < st->n_free[joint]; d++) {
                 const double *e = st->basis[joint][d];
                 P->wu[k * n_dof + (size_t)(st->first_dof[joint] + d)] +=
