@@ -343,6 +343,18 @@ SCT_API sct_status sct_size(const sct_model *model, const sct_settings *settings
                             sct_issues *issues);
 SCT_API void sct_result_free(sct_result *result);
 
+/**
+ * Checks a finished result against a second analysis by separate code: other unknowns, another matrix and solver, formulas
+ * written a second time. Every size, mass, load, force, displacement, reaction, utilisation and the verdict are compared.
+ *
+ * sized   the model with the sizes put in, read back from what SCT_MODEL_JSON wrote (for a result of sct_check: its model)
+ * issues  gains an error with both numbers for each that differs by more than rounding and the error bounds explain
+ *         (1e-7 relative where the analysis is accurate)
+ *
+ * SCT_OK: all agree. SCT_SELF_CHECK: some do not, or `sized` is another model. SCT_NO_MEMORY, SCT_TOO_LARGE.
+ */
+SCT_API sct_status sct_verify(const sct_model *sized, const sct_result *result, sct_issues *issues);
+
 /* ---- writers ---------------------------------------------------------------------------------------------------- */
 
 typedef enum sct_format {

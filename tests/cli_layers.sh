@@ -21,8 +21,12 @@ up model 'numerics|analysis|rules|sizing|report|cli'
 up analysis 'rules|sizing|report|cli'
 up rules 'numerics|analysis|sizing|report|cli'
 up sizing 'report|cli'
+up verify 'analysis|rules|sizing|report|cli' # a second path shares nothing with the first
+up analysis 'verify'
+up rules 'verify'
+up sizing 'verify'
 up report 'cli'
-up cli 'base|numerics|model|analysis|rules|sizing|report'
+up cli 'base|numerics|model|analysis|rules|sizing|report|verify'
 
 door() { # door HEADER FILE
     none "$1 enters through $2 only" "$(grep -rln "#include <.*$1>" src include | grep -v "^$2\$")"
