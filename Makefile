@@ -11,6 +11,7 @@ SAN      ?=
 CFLAGS   += -std=c11 $(OPT) $(WARN) -ffp-contract=off -fvisibility=hidden -fPIC $(SAN) -Iinclude -Isrc
 CPPFLAGS += -DNGPL -I/usr/include/suitesparse -I/usr/include/cjson
 LDFLAGS  += $(SAN)
+export CC SAN # for the tests that compile something
 LDLIBS   += -lcholmod -lamd -lcjson -lm
 
 LIB_SRC  := $(sort $(filter-out src/cli/%,$(wildcard src/*/*.c)))
@@ -25,7 +26,7 @@ TESTS    := $(patsubst tests/%.c,$(BUILD)/tests/%,$(sort $(wildcard tests/test_*
 VERSION  := $(shell sed -n 's/^\#define SCT_VERSION "\(.*\)"/\1/p' include/scantling.h)
 SONAME    = libscantling.so.0
 
-.PHONY: all demo test test-full sanitize sanitized format clean packages test-packages bench bench-packages install uninstall deb lint
+.PHONY: all demo test test-full sanitize sanitized format clean packages test-packages bench bench-packages install uninstall deb lint coverage covered
 all: $(BUILD)/scantling $(BUILD)/libscantling.a $(BUILD)/libscantling.so $(BUILD)/$(SONAME)
 
 $(BUILD)/scantling: $(CLI_OBJ) $(BUILD)/libscantling.a
@@ -54,7 +55,7 @@ $(BUILD)/tests/%: tests/%.c $(BUILD)/libscantling.a
 # The program whole, its main and its calls to the system led through the test.
 comma := ,
 FAULTS := main open read write close fsync rename link unlink mkdir stat lstat fstat access fflush \
-          $(if $(SAN),malloc calloc realloc free)
+          $(if $(findstring address,$(SAN)),malloc calloc realloc free)
 $(BUILD)/tests/test_faults: tests/test_faults.c $(CLI_OBJ) $(BUILD)/libscantling.a
 	@mkdir -p $(@D)
 	$(CC) $(CPPFLAGS) $(CFLAGS) -MMD -MP -Itests -o $@ $< $(CLI_OBJ) $(BUILD)/libscantling.a $(LDFLAGS) \
@@ -98,6 +99,9 @@ test: test-packages
 test-full: test-packages
 	@$(MAKE) --no-print-directory -s all $(TESTS)
 	@BUILD=$(BUILD) SCT_TEST_FULL=1 CK_DEFAULT_TIMEOUT=600 sh tests/run.sh $(TESTS)
+	@command -v valgrind >/dev/null 2>&1 || sh .ci/packages valgrind || true
+	@sh tests/memory.sh $(TESTS)
+	@python3 tests/mutate.py --count 12 --floor 70
 
 # The whole suite under address, undefined-behaviour and float checks; the first report ends a run.
 sanitize: test-packages
@@ -167,6 +171,18 @@ $(BUILD)/bench: $(BENCH_SRC) tests/bench.h tests/grid.h tests/model_build.h $(BU
 bench: bench-packages
 	@$(MAKE) --no-print-directory -s all $(BUILD)/bench
 	@OMP_THREAD_LIMIT=1 OPENBLAS_NUM_THREADS=1 $(BUILD)/bench $(BUILD)/bench.json $(FULL)
+
+# Which lines and branches of src the suite takes: build/coverage/coverage.html. Floors below which it fails, in per cent.
+# Whether the tests pass is for `make test` to say: a few look at files and handles that the counting itself uses.
+LINES_FLOOR    ?= 95
+BRANCHES_FLOOR ?= 85
+coverage: test-packages
+	@command -v gcovr >/dev/null 2>&1 || sh .ci/packages gcovr
+	@find $(BUILD)/coverage -name '*.gcda' -delete 2>/dev/null || true
+	@$(MAKE) --no-print-directory -s BUILD=$(BUILD)/coverage OPT="-O0 -g" SAN="--coverage" covered
+	@BUILD=$(BUILD)/coverage LINES_FLOOR=$(LINES_FLOOR) BRANCHES_FLOOR=$(BRANCHES_FLOOR) sh .ci/coverage
+covered: all $(TESTS)
+	-@BUILD=$(BUILD) CK_DEFAULT_TIMEOUT=120 sh tests/run.sh $(TESTS) >$(BUILD)/tests.log 2>&1; tail -n 1 $(BUILD)/tests.log
 
 format:
 	clang-format -i $(wildcard src/*/*.[ch] tests/*.[ch] examples/*.c include/*.h)

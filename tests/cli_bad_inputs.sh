@@ -207,7 +207,7 @@ says R03-depth-on-a-small-stack 3 'deep.json:1:65: error: nested deeper than 64 
     limited -s 256 "$program" size deep.json
 says R08-file-size-limit 6 'out/result.json: error: cannot be written: File too large' \
      limited -f 1 "$program" size -q -o out model.json
-[ ! -e out ] || [ -z "$(ls -A out | grep -v '\.csv$\|\.json$\|\.svg$')" ]
+[ ! -e out ] || ! ls -A out | grep -qv '\.csv$\|\.json$\|\.svg$'
 holds $? R08-no-half-file "left: $(ls -A out 2>&1)"
 cd "$root" || exit 1
 

@@ -67,7 +67,7 @@ fi
 
 # ---- installation
 case $BUILD in
-*sanitize*)
+*sanitize* | *coverage*)
     echo "skipped: installation, which the plain build tests"
     finish ;;
 esac

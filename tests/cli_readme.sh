@@ -17,8 +17,8 @@ for i, (kind, body) in enumerate(blocks):
         run = subprocess.run([build + "/scantling", "size", path], capture_output=True, text=True)
         expected = None
     elif kind == "sh":
-        flags = "-fsanitize=address,undefined,float-cast-overflow,float-divide-by-zero " if "sanitize" in build else ""
-        command = body.replace("build/", build + "/").replace("cc ", "cc " + flags)
+        compiler = os.environ.get("CC", "cc") + " " + os.environ.get("SAN", "") + " "
+        command = body.replace("build/", build + "/").replace("cc ", compiler)
         run = subprocess.run(["sh", "-ec", command], capture_output=True, text=True)
         expected = blocks[i + 1][1] if i + 1 < len(blocks) and blocks[i + 1][0] == "text" else None
     else:

@@ -68,6 +68,11 @@ static bool fails(call kind)
 
 /* Memory. The plain build puts its own malloc before the C library's, so that every library's requests are seen; a
  * sanitizer has its own malloc, and there the requests of our objects, of CHOLMOD, AMD and cJSON are. */
+#ifdef __has_feature /* clang's way */
+#if __has_feature(address_sanitizer)
+#define __SANITIZE_ADDRESS__ 1
+#endif
+#endif
 #ifdef __SANITIZE_ADDRESS__
 #define MINE(f) __wrap_##f
 #define ITS(f) __real_##f

@@ -14,7 +14,7 @@ for file in "$@"; do
         echo "embed.sh: $file: the first line must be \"# family: NAME\"" >&2
         exit 1
     fi
-    echo "static const char TEXT_$n[] = {"
+    echo "static const char TEXT_${n}[] = {"
     # signed, as char may be: 7-bit files give the same bytes either way
     od -An -v -td1 "$file" | sed 's/  *\(-*[0-9][0-9]*\)/\1,/g'
     echo '};'
