@@ -26,7 +26,7 @@ TESTS    := $(patsubst tests/%.c,$(BUILD)/tests/%,$(sort $(wildcard tests/test_*
 VERSION  := $(shell sed -n 's/^\#define SCT_VERSION "\(.*\)"/\1/p' include/scantling.h)
 SONAME    = libscantling.so.0
 
-.PHONY: all demo test test-full sanitize sanitized format clean packages test-packages bench bench-packages install uninstall deb lint coverage covered
+.PHONY: all fuzz fuzzers linked-fuzzers demo test test-full sanitize sanitized format clean packages test-packages bench bench-packages install uninstall deb lint coverage covered
 all: $(BUILD)/scantling $(BUILD)/libscantling.a $(BUILD)/libscantling.so $(BUILD)/$(SONAME)
 
 $(BUILD)/scantling: $(CLI_OBJ) $(BUILD)/libscantling.a
@@ -61,6 +61,24 @@ $(BUILD)/tests/test_faults: tests/test_faults.c $(CLI_OBJ) $(BUILD)/libscantling
 	$(CC) $(CPPFLAGS) $(CFLAGS) -MMD -MP -Itests -o $@ $< $(CLI_OBJ) $(BUILD)/libscantling.a $(LDFLAGS) \
 	  $(FAULTS:%=-Wl$(comma)--wrap=%) -lcheck -lsubunit -lrt -lpthread -lsuitesparseconfig $(LDLIBS)
 
+# Fuzzers (tests/fuzz): kept inputs are replayed by the tests; `make fuzz` runs libFuzzer for FUZZ_SECONDS each (clang,
+# libclang-rt-14-dev); FUZZ=1 CC=afl-clang-fast builds the replay programs for AFL++.
+FUZZERS      := gate reader analysis
+FUZZ_SECONDS ?= 60
+FUZZ_SAN     ?= address,undefined,float-cast-overflow,float-divide-by-zero
+REPLAYS      := $(FUZZERS:%=$(BUILD)/tests/fuzz_%)
+$(BUILD)/tests/fuzz_%: tests/fuzz/%.c tests/fuzz/replay.c tests/fuzz/fuzz.h $(BUILD)/libscantling.a
+	@mkdir -p $(@D)
+	$(CC) $(CPPFLAGS) $(CFLAGS) -o $@ tests/fuzz/$*.c tests/fuzz/replay.c $(BUILD)/libscantling.a $(LDFLAGS) $(LDLIBS)
+fuzzers:
+	@$(MAKE) --no-print-directory -s BUILD=$(BUILD)/libfuzzer CC=clang OPT="-O1 -g" \
+	  SAN="-fsanitize=fuzzer-no-link$(comma)$(FUZZ_SAN) -fno-sanitize-recover=all" linked-fuzzers
+linked-fuzzers: $(FUZZERS:%=$(BUILD)/fuzz_%)
+$(BUILD)/fuzz_%: tests/fuzz/%.c tests/fuzz/fuzz.h $(BUILD)/libscantling.a
+	$(CC) $(CPPFLAGS) $(CFLAGS) -fsanitize=fuzzer -o $@ $< $(BUILD)/libscantling.a $(LDFLAGS) $(LDLIBS)
+fuzz: fuzzers
+	@BUILD=$(BUILD) FUZZ_SECONDS=$(FUZZ_SECONDS) sh tests/fuzz/run.sh $(FUZZERS)
+
 # ---- packages: what is missing is installed by demo and test, never by plain make -------------------------------------
 BUILD_PACKAGES = gcc libc6-dev libcjson-dev libsuitesparse-dev
 TEST_PACKAGES  = $(BUILD_PACKAGES) check liblapack-dev libblas-dev python3-jsonschema
@@ -92,12 +110,12 @@ demo: packages
 	@echo "numbers, model.json the sized model. One member worked out: $(BUILD)/scantling explain $(BUILD)/demo/model.json --member T4"
 
 test: test-packages
-	@$(MAKE) --no-print-directory -s all $(TESTS)
+	@$(MAKE) --no-print-directory -s all $(TESTS) $(REPLAYS)
 	@BUILD=$(BUILD) sh tests/run.sh $(TESTS)
 
 # Slow and random tests as well.
 test-full: test-packages
-	@$(MAKE) --no-print-directory -s all $(TESTS)
+	@$(MAKE) --no-print-directory -s all $(TESTS) $(REPLAYS)
 	@BUILD=$(BUILD) SCT_TEST_FULL=1 CK_DEFAULT_TIMEOUT=600 sh tests/run.sh $(TESTS)
 	@command -v valgrind >/dev/null 2>&1 || sh .ci/packages valgrind || true
 	@sh tests/memory.sh $(TESTS)
@@ -107,7 +125,7 @@ test-full: test-packages
 sanitize: test-packages
 	@$(MAKE) --no-print-directory -s BUILD=$(BUILD)/sanitize OPT="-O1 -g" \
 	  SAN="-fsanitize=address,undefined,float-cast-overflow,float-divide-by-zero -fno-sanitize-recover=all -fno-omit-frame-pointer" sanitized
-sanitized: all $(TESTS)
+sanitized: all $(TESTS) $(REPLAYS)
 	@BUILD=$(BUILD) CK_DEFAULT_TIMEOUT=120 sh tests/run.sh $(TESTS)
 
 # ---- installation: DESTDIR stages it; every path is made here, so that PREFIX may differ from one call to the next ----------
