@@ -115,6 +115,8 @@ static void open_cholmod(side *s, bool ll)
     cholmod_start(c);
     c->supernodal = CHOLMOD_SIMPLICIAL;
     c->final_ll = ll;
+    c->nmethods = 1; /* as in numerics/sparse.c */
+    c->method[0].ordering = CHOLMOD_AMD;
     s->K = cholmod_allocate_sparse((size_t)p->n, (size_t)p->n, (size_t)p->column[p->n], 1, 1, 1, CHOLMOD_REAL, c);
     memcpy(s->K->p, p->column, ((size_t)p->n + 1) * sizeof(int));
     memcpy(s->K->i, p->row, (size_t)p->column[p->n] * sizeof(int));

@@ -71,11 +71,12 @@ sct_status sct_sensitivity_direct(sct_solver *solver, const sct_response *respon
         const size_t count = columns - first < BATCH ? columns - first : BATCH;
         fill_batch(solver, response, first, count, rhs);
         sct_solver_solve(solver, (int)count, rhs);
-        for (size_t i = 0; i < n; i++)
-            for (size_t c = 0; c < count; c++) {
-                const size_t k = (first + c) / vars, v = (first + c) % vars;
-                du[(k * n + i) * vars + v] = rhs[c * n + i];
-            }
+        for (size_t c = 0, run; c < count; c += run) { /* columns of one case */
+            const size_t k = (first + c) / vars, v = (first + c) % vars;
+            run = vars - v < count - c ? vars - v : count - c;
+            for (size_t i = 0; i < n; i++)
+                for (size_t j = 0; j < run; j++) du[(k * n + i) * vars + v + j] = rhs[(c + j) * n + i];
+        }
     }
     free(rhs);
     return SCT_OK;

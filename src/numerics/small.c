@@ -8,10 +8,9 @@
 #include <string.h>
 
 #include "numerics/order.h"
+#include "numerics/lanes.h"
 
-#define INLINE static inline __attribute__((always_inline)) /* so that widths are constants inside */
-
-enum { WIDEST = 3, AT_ONCE = 4 }; /* columns of a panel: the unknowns of a joint; right-hand sides of one sweep */
+enum { WIDEST = 3 }; /* columns of a panel: the unknowns of a joint */
 
 /* Neighbouring columns of L with the same rows below them. The w x w block on the diagonal is stored as a packed lower
  * triangle, the rectangle below it row by row, so that one pass over the targets does the work of all w columns. */
@@ -33,7 +32,7 @@ struct sct_small {
     double *x;         /* triangles and rectangles of all panels */
     double *inverse;   /* n: 1 / D */
     double *t;         /* largest rectangle: L D of the panel at work */
-    double *b;         /* n x AT_ONCE right-hand sides, permuted and interleaved */
+    sct_lanes *b;       /* n x SCT_AT_ONCE: right-hand sides, permuted and interleaved */
 };
 
 /* Rows of L by columns: entries below the diagonal of column j are row[start[j]] .. row[start[j + 1] - 1]. */
@@ -242,7 +241,7 @@ sct_small *sct_small_new(const sct_pattern *pattern, int most_updates, sct_statu
         s->order = array(n, sizeof *s->order);
         s->place = array((size_t)s->n_values, sizeof *s->place);
         s->inverse = array(n, sizeof *s->inverse);
-        s->b = array(n * AT_ONCE, sizeof *s->b);
+        s->b = array(n * SCT_AT_ONCE, sizeof *s->b);
         if (inverse_order && panel_of && s->panels && s->order && s->place && s->inverse && s->b) {
             *status = set_up(s, pattern, most_updates, inverse_order, panel_of, &c);
         }
@@ -276,7 +275,7 @@ double sct_small_entries(const sct_small *s)
 }
 
 /* The triangle D = L d L' in place. Returns the column with a bad pivot, or -1. */
-INLINE int factor_triangle(const int w, double *restrict D, double *restrict inverse)
+SCT_INLINE int factor_triangle(const int w, double *restrict D, double *restrict inverse)
 {
     for (int c = 0; c < w; c++) {
         double *row = D + c * (c + 1) / 2, y[WIDEST];
@@ -297,7 +296,7 @@ INLINE int factor_triangle(const int w, double *restrict D, double *restrict inv
 }
 
 /* The rectangle: t = L d by substitution with the triangle, and L itself in place. */
-INLINE void factor_rectangle(const int w, int m, const double *restrict D, const double *restrict inverse,
+SCT_INLINE void factor_rectangle(const int w, int m, const double *restrict D, const double *restrict inverse,
                              double *restrict l, double *restrict t)
 {
     for (int p = 0; p < m; p++, l += w, t += w) {
@@ -311,7 +310,7 @@ INLINE void factor_rectangle(const int w, int m, const double *restrict D, const
 }
 
 /* A(row[p], row[q]) -= sum_c L d(q, c) L(p, c). The targets lie in later panels: never in l. */
-INLINE void update_targets(const int w, int m, const double *restrict l, const double *restrict t,
+SCT_INLINE void update_targets(const int w, int m, const double *restrict l, const double *restrict t,
                            const int *restrict target, double *restrict x)
 {
     for (int q = 0; q < m; q++, t += w, l += w) {
@@ -334,7 +333,7 @@ INLINE void update_targets(const int w, int m, const double *restrict l, const d
     }
 }
 
-INLINE int factor_panel(const int w, const panel *p, double *x, double *inverse, double *t)
+SCT_INLINE int factor_panel(const int w, const panel *p, double *x, double *inverse, double *t)
 {
     const int bad = factor_triangle(w, x + p->diagonal, inverse + p->first);
     if (bad >= 0) return p->first + bad;
@@ -363,82 +362,84 @@ sct_status sct_small_update(sct_small *s, const double values[], int *stopped_at
     return SCT_OK;
 }
 
-/* y = L^-1 b for the columns of a panel, for R interleaved right-hand sides. */
-INLINE void forward_panel(const int w, const int R, const panel *p, const double *restrict x, double *restrict b)
+/* y = L^-1 b for the columns of a panel, for P interleaved pairs of right-hand sides. */
+SCT_INLINE void forward_panel(const int w, const int P, const panel *p, const double *restrict x, sct_lanes *restrict b)
 {
     const double *D = x + p->diagonal, *l = x + p->rectangle;
-    double *y = b + p->first * R;
-    for (int c = 1; c < w; c++) {
-        for (int e = 0; e < c; e++) {
-            for (int r = 0; r < R; r++) y[c * R + r] -= D[c * (c + 1) / 2 + e] * y[e * R + r];
+    sct_lanes *y = b + p->first * P, v[WIDEST * SCT_AT_ONCE];
+    SCT_UNROLL
+    for (int c = 0; c < w; c++) {
+        SCT_UNROLL
+        for (int r = 0; r < P; r++) {
+            v[c * P + r] = y[c * P + r];
+            SCT_UNROLL
+            for (int e = 0; e < c; e++) v[c * P + r] -= D[c * (c + 1) / 2 + e] * v[e * P + r];
+            y[c * P + r] = v[c * P + r];
         }
     }
-    double v[WIDEST * AT_ONCE];
-    for (int c = 0; c < w; c++) {
-        for (int r = 0; r < R; r++) v[c * R + r] = y[c * R + r];
-    }
     for (int k = 0; k < p->m; k++, l += w) {
-        double *z = b + p->row[k] * R;
-        for (int r = 0; r < R; r++) {
-            double sum = l[0] * v[r];
-            for (int c = 1; c < w; c++) sum += l[c] * v[c * R + r];
+        sct_lanes *z = b + p->row[k] * P;
+        SCT_UNROLL
+        for (int r = 0; r < P; r++) {
+            sct_lanes sum = l[0] * v[r];
+            SCT_UNROLL
+            for (int c = 1; c < w; c++) sum += l[c] * v[c * P + r];
             z[r] -= sum;
         }
     }
 }
 
 /* b = L'^-1 D^-1 y for the columns of a panel. */
-INLINE void backward_panel(const int w, const int R, const panel *p, const double *restrict x,
-                           const double *restrict inverse, double *restrict b)
+SCT_INLINE void backward_panel(const int w, const int P, const panel *p, const double *restrict x,
+                           const double *restrict inverse, sct_lanes *restrict b)
 {
     const double *D = x + p->diagonal, *l = x + p->rectangle;
-    double *y = b + p->first * R;
-    double v[WIDEST * AT_ONCE];
+    sct_lanes *y = b + p->first * P, v[WIDEST * SCT_AT_ONCE];
+    SCT_UNROLL
     for (int c = 0; c < w; c++) {
-        for (int r = 0; r < R; r++) v[c * R + r] = y[c * R + r] * inverse[p->first + c];
+        SCT_UNROLL
+        for (int r = 0; r < P; r++) v[c * P + r] = y[c * P + r] * inverse[p->first + c];
     }
     for (int k = 0; k < p->m; k++, l += w) {
-        const double *z = b + p->row[k] * R;
+        const sct_lanes *z = b + p->row[k] * P;
+        SCT_UNROLL
         for (int c = 0; c < w; c++) {
-            for (int r = 0; r < R; r++) v[c * R + r] -= l[c] * z[r];
+            SCT_UNROLL
+            for (int r = 0; r < P; r++) v[c * P + r] -= l[c] * z[r];
         }
     }
+    SCT_UNROLL
     for (int c = w - 1; c >= 0; c--) {
-        for (int e = c + 1; e < w; e++) {
-            for (int r = 0; r < R; r++) v[c * R + r] -= D[e * (e + 1) / 2 + c] * v[e * R + r];
+        SCT_UNROLL
+        for (int r = 0; r < P; r++) {
+            SCT_UNROLL
+            for (int e = c + 1; e < w; e++) v[c * P + r] -= D[e * (e + 1) / 2 + c] * v[e * P + r];
+            y[c * P + r] = v[c * P + r];
         }
-        for (int r = 0; r < R; r++) y[c * R + r] = v[c * R + r];
     }
 }
 
-/* Both sweeps over R right-hand sides, of which `count` are real; the others are zero. */
-INLINE void solve_block(const int R, const sct_small *s, int count, double *restrict rhs)
+/* Both sweeps over `count` <= 2 P right-hand sides. */
+SCT_INLINE void solve_block(const int P, const sct_small *s, int count, double *restrict rhs)
 {
-    const size_t n = (size_t)s->n;
-    double *b = s->b;
-    for (size_t k = 0; k < n; k++) {
-        for (int r = 0; r < R; r++)
-            b[k * (size_t)R + (size_t)r] = r < count ? rhs[(size_t)r * n + (size_t)s->order[k]] : 0.0;
-    }
+    sct_lanes_gather(P, s->n, count, s->order, rhs, s->b);
     for (int k = 0; k < s->n_panels; k++) {
         const panel *p = &s->panels[k];
         switch (p->w) {
-        case 1: forward_panel(1, R, p, s->x, b); break;
-        case 2: forward_panel(2, R, p, s->x, b); break;
-        default: forward_panel(3, R, p, s->x, b); break;
+        case 1: forward_panel(1, P, p, s->x, s->b); break;
+        case 2: forward_panel(2, P, p, s->x, s->b); break;
+        default: forward_panel(3, P, p, s->x, s->b); break;
         }
     }
     for (int k = s->n_panels - 1; k >= 0; k--) {
         const panel *p = &s->panels[k];
         switch (p->w) {
-        case 1: backward_panel(1, R, p, s->x, s->inverse, b); break;
-        case 2: backward_panel(2, R, p, s->x, s->inverse, b); break;
-        default: backward_panel(3, R, p, s->x, s->inverse, b); break;
+        case 1: backward_panel(1, P, p, s->x, s->inverse, s->b); break;
+        case 2: backward_panel(2, P, p, s->x, s->inverse, s->b); break;
+        default: backward_panel(3, P, p, s->x, s->inverse, s->b); break;
         }
     }
-    for (size_t k = 0; k < n; k++) {
-        for (int r = 0; r < count; r++) rhs[(size_t)r * n + (size_t)s->order[k]] = b[k * (size_t)R + (size_t)r];
-    }
+    sct_lanes_scatter(P, s->n, count, s->order, s->b, rhs);
 }
 
 /* v = D |L'| e by the columns of a panel, and in t the number of entries of L left of the diagonal. */
@@ -473,7 +474,7 @@ double sct_small_rounding(sct_small *s)
 {
     enum { BY_PIVOT = 2 };
     const size_t n = (size_t)s->n;
-    double *v = s->b, *z = v + n, *t = z + n, most = 0.0;
+    double *v = (double *)s->b, *z = v + n, *t = z + n, most = 0.0;
     memset(v, 0, 3 * n * sizeof *v);
     for (int k = 0; k < s->n_panels; k++) weigh_columns(&s->panels[k], s->x, s->inverse, v, t);
     for (int k = 0; k < s->n_panels; k++) add_columns(&s->panels[k], s->x, v, z);
@@ -483,12 +484,12 @@ double sct_small_rounding(sct_small *s)
 
 void sct_small_solve(sct_small *s, int count, double b[])
 {
-    for (int done = 0; done < count; done += AT_ONCE) {
+    for (int done = 0; done < count; done += 2 * SCT_AT_ONCE) {
         const int left = count - done;
         double *rhs = b + (size_t)done * (size_t)s->n;
-        if (left == 1)
-            solve_block(1, s, 1, rhs);
+        if (left <= 2)
+            solve_block(1, s, left, rhs);
         else
-            solve_block(AT_ONCE, s, left < AT_ONCE ? left : AT_ONCE, rhs);
+            solve_block(SCT_AT_ONCE, s, left < 2 * SCT_AT_ONCE ? left : 2 * SCT_AT_ONCE, rhs);
     }
 }

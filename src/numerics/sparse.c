@@ -13,11 +13,10 @@
 #include <stdint.h>
 #include <stdlib.h>
 
+#include "numerics/lanes.h"
 #include "numerics/pairs.h"
 
-#define INLINE static inline __attribute__((always_inline)) /* so that R is a constant inside */
-
-enum { AT_ONCE = 4 }; /* right-hand sides of one sweep through L */
+enum { WIDEST = 3 }; /* columns swept together */
 
 /* The matrix is put into elimination order here, once, so that CHOLMOD has nothing to permute and allocates nothing
  * after the first factorization. */
@@ -25,7 +24,7 @@ struct sct_sparse {
     cholmod_common common;
     cholmod_sparse *A; /* upper triangle, permuted */
     cholmod_factor *L;
-    double *b;  /* n x AT_ONCE right-hand sides, permuted and interleaved */
+    sct_lanes *b; /* n x SCT_AT_ONCE: right-hand sides, permuted and interleaved */
     int *order; /* order[k]: unknown of the pattern that stands k-th */
     int *place; /* value of the pattern -> place in A */
     double entries; /* of L */
@@ -146,7 +145,7 @@ sct_sparse *sct_sparse_new(const sct_pattern *pattern, sct_status *status)
     settle(&s->common);
     s->order = calloc(n, sizeof *s->order);
     s->place = calloc(n_values, sizeof *s->place);
-    s->b = calloc(n * AT_ONCE, sizeof *s->b);
+    s->b = calloc(n * SCT_AT_ONCE, sizeof *s->b);
     scratch t = {0};
     if (scratch_allocate(&t, n, n_values) && s->order != NULL && s->place != NULL && s->b != NULL) {
         *status = set_up(s, pattern, &t);
@@ -221,7 +220,7 @@ double sct_sparse_rounding(sct_sparse *s)
     const size_t n = s->L->n;
     const int *column = s->L->p, *count = s->L->nz, *row = s->L->i;
     const double *x = s->L->x;
-    double *z = s->b, *t = z + n, most = 0.0;
+    double *z = (double *)s->b, *t = z + n, most = 0.0;
     for (size_t p = 0; p < 2 * n; p++) z[p] = 0.0;
     for (size_t j = 0; j < n; j++) {
         const int start = column[j], end = start + count[j];
@@ -234,55 +233,122 @@ double sct_sparse_rounding(sct_sparse *s)
     return most * (1.0 + sct_gamma(3.0 * (double)n + 8.0));
 }
 
-/* L y = b, then L' x = y, in place for R interleaved right-hand sides. Column j of L: diagonal first, nz[j] entries. */
-INLINE void sweep(const int R, const cholmod_factor *L, double *restrict b)
+/* Column j of L: diagonal first, rows ascending, nz[j] entries. Neighbouring columns with the same rows below them, as the
+ * unknowns of a joint have, are swept together. */
+typedef struct columns {
+    int n;
+    const int *start, *count, *row;
+    const double *x;
+} columns;
+
+/* Does column j + 1 continue column j? It holds all rows that j has below, so that their numbers tell. */
+static inline bool continues(const columns *L, int j)
 {
-    const int n = (int)L->n, *column = L->p, *count = L->nz, *row = L->i;
-    const double *x = L->x;
-    for (int j = 0; j < n; j++) {
-        const int start = column[j], end = start + count[j];
-        double v[AT_ONCE];
-        for (int r = 0; r < R; r++) v[r] = b[j * R + r] / x[start];
-        for (int r = 0; r < R; r++) b[j * R + r] = v[r];
-        for (int p = start + 1; p < end; p++) {
-            for (int r = 0; r < R; r++) b[row[p] * R + r] -= x[p] * v[r];
+    return j + 1 < L->n && L->count[j] == L->count[j + 1] + 1 && L->row[L->start[j] + 1] == j + 1;
+}
+
+/* L y = b for w columns from j on and P pairs of right-hand sides, in place. */
+SCT_INLINE void forward_columns(const int w, const int P, const columns *L, int j, sct_lanes *restrict b)
+{
+    const double *x[WIDEST];
+    sct_lanes v[WIDEST * SCT_AT_ONCE];
+    SCT_UNROLL
+    for (int c = 0; c < w; c++) {
+        x[c] = L->x + L->start[j + c];
+        SCT_UNROLL
+        for (int r = 0; r < P; r++) {
+            v[c * P + r] = b[(j + c) * P + r];
+            SCT_UNROLL
+            for (int e = 0; e < c; e++) v[c * P + r] -= x[e][c - e] * v[e * P + r];
+            v[c * P + r] /= x[c][0];
+            b[(j + c) * P + r] = v[c * P + r];
         }
     }
-    for (int j = n - 1; j >= 0; j--) {
-        const int start = column[j], end = start + count[j];
-        double v[AT_ONCE];
-        for (int r = 0; r < R; r++) v[r] = b[j * R + r];
-        for (int p = start + 1; p < end; p++) {
-            for (int r = 0; r < R; r++) v[r] -= x[p] * b[row[p] * R + r];
+    const int *row = L->row + L->start[j] + w;
+    const int m = L->count[j] - w;
+    for (int k = 0; k < m; k++) {
+        sct_lanes *z = b + row[k] * P;
+        SCT_UNROLL
+        for (int r = 0; r < P; r++) {
+            sct_lanes sum = z[r];
+            SCT_UNROLL
+            for (int c = 0; c < w; c++) sum -= x[c][w - c + k] * v[c * P + r];
+            z[r] = sum;
         }
-        for (int r = 0; r < R; r++) b[j * R + r] = v[r] / x[start];
     }
 }
 
-/* Solves for R right-hand sides, of which `count` are real; the others are zero. */
-INLINE void solve_block(const int R, const sct_sparse *s, int count, double *restrict rhs)
+/* L'x = y for the same. */
+SCT_INLINE void backward_columns(const int w, const int P, const columns *L, int j, sct_lanes *restrict b)
 {
-    const size_t n = s->L->n;
-    for (size_t k = 0; k < n; k++) {
-        for (int r = 0; r < R; r++) {
-            s->b[k * (size_t)R + (size_t)r] = r < count ? rhs[(size_t)r * n + (size_t)s->order[k]] : 0.0;
+    const double *x[WIDEST];
+    sct_lanes v[WIDEST * SCT_AT_ONCE];
+    SCT_UNROLL
+    for (int c = 0; c < w; c++) {
+        x[c] = L->x + L->start[j + c];
+        SCT_UNROLL
+        for (int r = 0; r < P; r++) v[c * P + r] = b[(j + c) * P + r];
+    }
+    const int *row = L->row + L->start[j] + w;
+    const int m = L->count[j] - w;
+    for (int k = 0; k < m; k++) {
+        const sct_lanes *z = b + row[k] * P;
+        SCT_UNROLL
+        for (int c = 0; c < w; c++) {
+            SCT_UNROLL
+            for (int r = 0; r < P; r++) v[c * P + r] -= x[c][w - c + k] * z[r];
         }
     }
-    sweep(R, s->L, s->b);
-    for (size_t k = 0; k < n; k++) {
-        for (int r = 0; r < count; r++) rhs[(size_t)r * n + (size_t)s->order[k]] = s->b[k * (size_t)R + (size_t)r];
+    SCT_UNROLL
+    for (int c = w - 1; c >= 0; c--) {
+        SCT_UNROLL
+        for (int r = 0; r < P; r++) {
+            SCT_UNROLL
+            for (int e = c + 1; e < w; e++) v[c * P + r] -= x[c][e - c] * v[e * P + r];
+            v[c * P + r] /= x[c][0];
+            b[(j + c) * P + r] = v[c * P + r];
+        }
     }
+}
+
+SCT_INLINE void sweep(const int P, const columns *L, sct_lanes *restrict b)
+{
+    for (int j = 0, w; j < L->n; j += w) {
+        for (w = 1; w < WIDEST && continues(L, j + w - 1);) w++;
+        switch (w) {
+        case 1: forward_columns(1, P, L, j, b); break;
+        case 2: forward_columns(2, P, L, j, b); break;
+        default: forward_columns(3, P, L, j, b); break;
+        }
+    }
+    for (int end = L->n, w; end > 0; end -= w) {
+        for (w = 1; w < WIDEST && w < end && continues(L, end - w - 1);) w++;
+        switch (w) {
+        case 1: backward_columns(1, P, L, end - 1, b); break;
+        case 2: backward_columns(2, P, L, end - 2, b); break;
+        default: backward_columns(3, P, L, end - 3, b); break;
+        }
+    }
+}
+
+/* Solves for `count` <= 2 P right-hand sides. */
+SCT_INLINE void solve_block(const int P, const sct_sparse *s, int count, double *restrict rhs)
+{
+    const columns L = {(int)s->L->n, s->L->p, s->L->nz, s->L->i, s->L->x};
+    sct_lanes_gather(P, L.n, count, s->order, rhs, s->b);
+    sweep(P, &L, s->b);
+    sct_lanes_scatter(P, L.n, count, s->order, s->b, rhs);
 }
 
 /* Not cholmod_solve2: its work arrays are allocated anew whenever the number of right-hand sides changes. */
 void sct_sparse_solve(sct_sparse *s, int count, double b[])
 {
-    for (int done = 0; done < count; done += AT_ONCE) {
+    for (int done = 0; done < count; done += 2 * SCT_AT_ONCE) {
         const int left = count - done;
         double *rhs = b + (size_t)done * s->L->n;
-        if (left == 1)
-            solve_block(1, s, 1, rhs);
+        if (left <= 2)
+            solve_block(1, s, left, rhs);
         else
-            solve_block(AT_ONCE, s, left < AT_ONCE ? left : AT_ONCE, rhs);
+            solve_block(SCT_AT_ONCE, s, left < 2 * SCT_AT_ONCE ? left : 2 * SCT_AT_ONCE, rhs);
     }
 }
