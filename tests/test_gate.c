@@ -138,6 +138,79 @@ static const gate_case CASES[] = {
     CASE("[1,\r\n2,\r3,\n\n4,\r\r\n?]", "7:1: error: found \"?\"; expected a value"),
     CASE("[\"\xC3\xA9\xC3\xA9\", ?]", "1:8: error: found \"?\"; expected a value"),
     CASE("[\t?]", "1:3: error: found \"?\"; expected a value"),
+    /* and the rest of what may stand in the wrong place */
+    CASE("?", "1:1: error: found \"?\"; expected a value"),
+    CASE("]", "1:1: error: found \"]\"; expected a value"),
+    CASE("[$x]", "1:2: error: found $x; expected a value: a number, true, false, null, or a string in double quotes"),
+    CASE("[a_word_of_more_than_forty_characters_is_shown_in_part]",
+         "1:2: error: found a_word_of_more_than_forty_characters_is_; expected a value: a number, true, false, null, "
+         "or a string in double quotes"),
+    CASE("[\xC3\xA9]", "1:2: error: found \"\xC3\xA9"
+                       "\"; expected a value"),
+    CASE("[\xE2\x82\xAC]", "1:2: error: found \"\xE2\x82\xAC"
+                           "\"; expected a value"),
+    CASE("[\xF0\x9F\x98\x80]", "1:2: error: found \"\xF0\x9F\x98\x80"
+                               "\"; expected a value"),
+    CASE("[\xE2\x80\x9D"
+         "a]",
+         "1:2: error: found a typographic quote; JSON wants the plain double quote"),
+    CASE("[\xE2\x80\x99"
+         "a]",
+         "1:2: error: found \"\xE2\x80\x99"
+         "\"; expected a value"),
+    CASE("[\xE0\x80\x80]", "1:2: error: byte 0xE0 (number 2 of the file) is not UTF-8; save the file as UTF-8"),
+    CASE("[\x80]", "1:2: error: byte 0x80 (number 2 of the file) is not UTF-8; save the file as UTF-8"),
+    CASE("[\x7F]", "1:2: error: found the control byte 0x7F; expected a value"),
+    CASE("[#]", "1:2: error: found \"#\"; JSON has no comments (use a key \"notes\")"),
+    CASE("[/]", "1:2: error: found \"/\"; expected a value"),
+    CASE("[\"\xE0\xA0\x80\"]", ""),
+    CASE("[\"\xE0\x80\x80\"]", "1:3: error: byte 0xE0 (number 3 of the file) is not UTF-8; save the file as UTF-8"),
+    CASE("[\"\x7F\"]", ""),
+    CASE("[\"\\u00g0\"]", "1:3: error: \\u must be followed by four hexadecimal digits"),
+    CASE("[\"\\u00G0\"]", "1:3: error: \\u must be followed by four hexadecimal digits"),
+    CASE("[\"\\u00!0\"]", "1:3: error: \\u must be followed by four hexadecimal digits"),
+    CASE("[\"\\uE000\\uFFFD\\uABCD\"]", ""),
+    CASE("[\"\\\0\"]", "1:3: error: a backslash in a string must be followed by one of \" \\ / b f n r t u"),
+    CASE("[\"\\ud800\\n\"]", "1:3: error: \\ud800 is the first half of a pair; the second half does not follow"),
+    CASE("[\"\\ud800x\"]", "1:3: error: \\ud800 is the first half of a pair; the second half does not follow"),
+    CASE("[\"\\ud800\\u0041\"]", "1:3: error: \\ud800 is the first half of a pair; the second half does not follow"),
+    CASE("[\"\\ud800\\uE000\"]", "1:3: error: \\ud800 is the first half of a pair; the second half does not follow"),
+    CASE("[\"a\rb\"]", "1:4: error: the line ends inside the string that begins at 1:2; close it with \", or write \\n "
+                       "for a line feed"),
+    CASE("[1E5, 0E5, 0E-999]", ""),
+    CASE("[1E-999]", "1:2: error: 1E-999 is too small for a number: it underflows to zero"),
+    CASE("[0.01E-999]", "1:2: error: 0.01E-999 is too small for a number: it underflows to zero"),
+    CASE("[1+2]", "1:3: error: the number that begins at 1:2 ends here with a character that no number has; a quantity "
+                  "with a unit is a string such as \"3 m\""),
+    CASE("[1-2]", "1:3: error: the number that begins at 1:2 ends here with a character that no number has; a quantity "
+                  "with a unit is a string such as \"3 m\""),
+    CASE("[-Infinity]", "1:2: error: JSON has no infinity and no not-a-number; expected a number"),
+    CASE("[-NaN]", "1:2: error: JSON has no infinity and no not-a-number; expected a number"),
+    CASE("[-x]", "1:3: error: the number that begins at 1:2 has no digit behind its minus sign"),
+    CASE("{\0\0x", "1:2: error: found a zero byte; expected a key in double quotes"),
+    CASE("\0\0\0\0", "1:1: error: found a zero byte; expected a value"),
+    CASE("\0\0x?", "1:1: error: found a zero byte; expected a value"),
+    CASE("\0{xx", "1:1: error: found a zero byte; expected a value"),
+    /* doubled keys, however they are written */
+    CASE("{\"\":1,\"\":2}", "1:7: error: /: the key \"\" stands twice in one object; the first is at 1:2"),
+    CASE("{\"a\\nb\":1,\"a\\nb\":2}",
+         "1:11: error: /a\\x0ab: the key \"a\\x0ab\" stands twice in one object; the first is at 1:2"),
+    CASE("{\"\\\"\\\\/\":1,\"\\\"\\\\\\/\":2}",
+         "1:12: error: /\"\\~1: the key \"\"\\/\" stands twice in one object; the first is at 1:2"),
+    CASE("{\"~/\":{\"\xC3\xA9\":1,\"\\u00e9\":2}}", "1:14: error: /~0~1/\xC3\xA9"
+                                                    ": the key \"\xC3\xA9"
+                                                    "\" stands twice in one object; the first is at 1:8"),
+    CASE("{\"\\u20ac\":1,\"\xE2\x82\xAC\":2}", "1:13: error: /\xE2\x82\xAC"
+                                               ": the key \"\xE2\x82\xAC"
+                                               "\" stands twice in one object; the first is at 1:2"),
+    CASE("{\"\xF0\x9F\x98\x80\":1,\"\\ud83d\\ude00\":2}", "1:8: error: /\xF0\x9F\x98\x80"
+                                                          ": the key \"\xF0\x9F\x98\x80"
+                                                          "\" stands twice in one object; the first is at 1:2"),
+    /* two keys of one 64-bit FNV-1a hash (a known pair) are two keys; each of them twice is told */
+    CASE("{\"8yn0iYCKYHlIj4-BwPqk\":1,\"GReLUrM4wMqfg9yzV3KQ\":2}", ""),
+    CASE("{\"GReLUrM4wMqfg9yzV3KQ\":1,\"8yn0iYCKYHlIj4-BwPqk\":2,\"GReLUrM4wMqfg9yzV3KQ\":3}",
+         "1:52: error: /GReLUrM4wMqfg9yzV3KQ: the key \"GReLUrM4wMqfg9yzV3KQ\" stands twice in one object; the first "
+         "is at 1:2"),
 };
 
 /* The first message without the file's name, "" when there is none. */

@@ -124,7 +124,7 @@ static bool unexpected(scan *s, const char *expected)
     const place p = here(s);
     const unsigned char c = peek(s, 0);
     const unsigned char *text = (const unsigned char *)s->text + s->at;
-    if (c == 0 && !at_end(s)) return fault(s, p, "found a zero byte; expected %s", expected);
+    if (c == 0) return fault(s, p, "found a zero byte; expected %s", expected);
     if (c < 0x20 || c == 0x7F) return fault(s, p, "found the control byte 0x%02X; expected %s", c, expected);
     if (c == '#' || (c == '/' && (peek(s, 1) == '/' || peek(s, 1) == '*')))
         return fault(s, p, "found \"%c\"; JSON has no comments (use a key \"notes\")", c);
@@ -264,7 +264,10 @@ static bool scan_string(scan *s)
 static size_t decode(const char **p, char out[4])
 {
     const char *q = *p;
-    if (*q == '"') return 0;
+    if (*q == '"') {
+        out[0] = '\0';
+        return 0;
+    }
     if (*q != '\\') {
         out[0] = *q;
         *p = q + 1;
@@ -315,9 +318,8 @@ static int compare_texts(const char *a, const char *b)
             nb = decode(&b, cb);
             ib = 0;
         }
-        if (na == 0 || nb == 0) return (na != 0) - (nb != 0);
-        const int difference = (unsigned char)ca[ia++] - (unsigned char)cb[ib++];
-        if (difference != 0) return difference;
+        const int byte = (unsigned char)ca[ia++], difference = byte - (unsigned char)cb[ib++];
+        if (difference != 0 || byte == 0) return difference; /* a zero byte is the end: no key holds one */
     }
 }
 
@@ -375,7 +377,7 @@ static bool doubled(scan *s, uint32_t first, const key *second)
     sct_text_free(&pointer);
     sct_text_free(&name);
     sct_text_free(&shown);
-    return !failed || no_memory(s);
+    return failed ? no_memory(s) : true;
 }
 
 /* Looks for doubled keys in the object that closes here. Hashes of few keys are compared pair by pair; many are sorted.
@@ -426,8 +428,8 @@ static bool check_value(scan *s, place began, const char *text, size_t length)
     if (!sct_number_read(text, length, &value))
         return fault(s, began, "%.*s is too large for a number (the largest is about 1.8e308)", (int)length, text);
     if (value != 0.0) return true;
-    for (size_t i = 0; i < length && text[i] != 'e' && text[i] != 'E'; i++)
-        if (text[i] >= '1' && text[i] <= '9')
+    for (size_t i = 0; text[i] != 'e' && text[i] != 'E'; i++) /* there is one: see scan_number */
+        if (text[i] >= '1')
             return fault(s, began, "%.*s is too small for a number: it underflows to zero", (int)length, text);
     return true;
 }
@@ -479,7 +481,8 @@ static bool scan_word(scan *s)
         if (!whole && s->at + length < s->size) continue;
         const place began = here(s);
         s->at += length;
-        return whole || ends_inside(s, "word", began);
+        if (!whole) return ends_inside(s, "word", began);
+        return true;
     }
     static const char *const SLIPS[][2] = {{"True", "true"},   {"TRUE", "true"}, {"False", "false"},
                                            {"FALSE", "false"}, {"None", "null"}, {"nul", "null"}};
@@ -628,7 +631,8 @@ static bool scan_document(scan *s)
         if (!again && !close_containers(s, &again)) return false;
     }
     skip_blanks(s);
-    return at_end(s) || unexpected(s, "nothing more behind the end of the document");
+    if (at_end(s)) return true;
+    return unexpected(s, "nothing more behind the end of the document");
 }
 
 /* ---- the whole ----------------------------------------------------------------------------------------------------
@@ -656,7 +660,8 @@ static bool check_start(scan *s)
     if (encoding != NULL) return fault(s, start, "the file looks like %s; save it as UTF-8", encoding);
     if (s->size >= 3 && memcmp(p, "\xEF\xBB\xBF", 3) == 0) s->line_begin = s->at = 3;
     skip_blanks(s);
-    return !at_end(s) || fault(s, start, "the file is empty; expected a model, which is a JSON object { ... }");
+    if (!at_end(s)) return true;
+    return fault(s, start, "the file is empty; expected a model, which is a JSON object { ... }");
 }
 
 sct_status sct_gate_check(const char *file, const char *text, size_t size, sct_gate_value **values, size_t *n,
