@@ -21,8 +21,10 @@ static void print_result(const sct_result *result)
     printf("%s\n%s\n", result->title, result->verdict);
     for (int g = 0; g < result->n_groups; g++) {
         const sct_group_result *group = &result->groups[g];
-        if (group->section != NULL) printf("  %-22s %-16s %8.1f kg\n", group->name, group->section, group->mass);
-        else printf("  %-22s %10.0f mm2   %8.1f kg\n", group->name, 1e6 * group->A, group->mass);
+        if (group->section != NULL)
+            printf("  %-22s %-16s %8.1f kg\n", group->name, group->section, group->mass);
+        else
+            printf("  %-22s %10.0f mm2   %8.1f kg\n", group->name, 1e6 * group->A, group->mass);
     }
     printf("  %-22s %-16s %8.1f kg\n%s\n", "all", "", result->mass, SCT_CAUTION);
 }
@@ -40,8 +42,10 @@ int main(int argc, char **argv)
     sct_status status = sct_model_read(argv[1], &model, issues);
     if (status == SCT_OK) status = sct_size(model, NULL, &result, issues);
     print_issues(issues);
-    if (status == SCT_OK) print_result(result);
-    else fprintf(stderr, "%s\n", sct_status_text(status));
+    if (status == SCT_OK)
+        print_result(result);
+    else
+        fprintf(stderr, "%s\n", sct_status_text(status));
     const int code = status != SCT_OK ? 3 : result->kept ? 0 : 1;
     sct_result_free(result);
     sct_model_free(model);

@@ -48,11 +48,11 @@ extern "C" {
 #endif
 
 #define SCT_VERSION "0.1.0"
-#define SCT_MODEL_FORMAT 1  /* the model files that this version reads and writes: "scantling": 1 */
-/* A limit is kept when value / limit, with the error of the analysis, is at most 1 to nine digits: sums that are equal on
- * paper differ in the sixteenth. */
+#define SCT_MODEL_FORMAT 1 /* the model files that this version reads and writes: "scantling": 1 */
+/* A limit is kept when value / limit, with the error of the analysis, is at most 1 to nine digits: sums that are equal
+ * on paper differ in the sixteenth. */
 #define SCT_KEPT_TO 1e-9
-#define SCT_RESULT_FORMAT 1 /* result.json: "format": "scantling result", "version": 1 */
+#define SCT_RESULT_FORMAT 1      /* result.json: "format": "scantling result", "version": 1 */
 #define SCT_EXPLANATION_FORMAT 1 /* sct_explain_json: "format": "scantling explanation", "version": 1 */
 
 /* The one caution text; it stands in every output. */
@@ -117,8 +117,8 @@ SCT_API const sct_issue *sct_issues_get(const sct_issues *issues, int i);
  * of memory. Control characters are shown as \xNN. */
 SCT_API char *sct_issue_line(const sct_issue *issue);
 
-/** The word of a list (n strings, NULL entries are passed over) nearest to `word` by edits (insert, delete, replace, swap
- * of neighbours), when it is near enough to be a slip: at most 2 edits and a third of its length, but 1 is always
+/** The word of a list (n strings, NULL entries are passed over) nearest to `word` by edits (insert, delete, replace,
+ * swap of neighbours), when it is near enough to be a slip: at most 2 edits and a third of its length, but 1 is always
  * allowed; else NULL. Ties: the one that begins most like it, then the first. */
 SCT_API const char *sct_nearest(const char *const words[], int n, const char *word);
 
@@ -146,12 +146,12 @@ SCT_API void sct_model_free(sct_model *model);
 
 /* One step of the search, told to an observer. */
 typedef struct sct_progress {
-    const char *stage;    /* "descent" or "sections" */
-    int start, n_starts;  /* which start of how many, from 1 */
-    int analyses;         /* so far, all starts */
-    double mass;          /* [kg] of the current design */
-    double violation;     /* largest ln(value/limit), 0 when every limit is kept */
-    double best;          /* [kg] best design so far that keeps every limit; NAN when none yet */
+    const char *stage;   /* "descent" or "sections" */
+    int start, n_starts; /* which start of how many, from 1 */
+    int analyses;        /* so far, all starts */
+    double mass;         /* [kg] of the current design */
+    double violation;    /* largest ln(value/limit), 0 when every limit is kept */
+    double best;         /* [kg] best design so far that keeps every limit; NAN when none yet */
 } sct_progress;
 
 /* Called after each step; return false to stop the search (the best design so far is kept and marked interrupted). */
@@ -160,12 +160,12 @@ typedef bool sct_observer(const sct_progress *progress, void *user);
 typedef enum sct_engine { SCT_ENGINE_AUTO, SCT_ENGINE_SMALL, SCT_ENGINE_SPARSE } sct_engine;
 
 typedef struct sct_settings {
-    int starts;          /* seeded starts of the descent; 0 (default): 8 where cheap, fewer for large models; >= 0 */
-    unsigned seed;       /* of the random starts; default 1 */
-    int iterations;      /* of each start, default 100; 0: the start design is checked and marked not optimised */
-    double tolerance;    /* on the KKT residual and on ln(value/limit); default 1e-6; > 0 and <= 1e-2 */
-    bool plain;          /* the published constrained steepest descent in areas, for comparison; default false */
-    sct_engine engine;   /* default SCT_ENGINE_AUTO */
+    int starts;             /* seeded starts of the descent; 0 (default): 8 where cheap, fewer for large models; >= 0 */
+    unsigned seed;          /* of the random starts; default 1 */
+    int iterations;         /* of each start, default 100; 0: the start design is checked and marked not optimised */
+    double tolerance;       /* on the KKT residual and on ln(value/limit); default 1e-6; > 0 and <= 1e-2 */
+    bool plain;             /* the published constrained steepest descent in areas, for comparison; default false */
+    sct_engine engine;      /* default SCT_ENGINE_AUTO */
     sct_observer *observer; /* default NULL */
     void *user;
 } sct_settings;
@@ -178,13 +178,13 @@ SCT_API const char *sct_settings_fault(const sct_settings *settings);
 
 /* How a run ended. */
 #define SCT_OUTCOME_LIST(X)                                                                                            \
-    X(SCT_CHECKED, "checked")             /* given sections were checked; `kept` tells the verdict */                  \
-    X(SCT_OPTIMUM, "optimum")             /* a local optimum: KKT residual and violation within the tolerance */       \
-    X(SCT_SECTIONS_FOUND, "sections")     /* sections picked from the ladders; every limit kept */                     \
+    X(SCT_CHECKED, "checked")               /* given sections were checked; `kept` tells the verdict */                \
+    X(SCT_OPTIMUM, "optimum")               /* a local optimum: KKT residual and violation within the tolerance */     \
+    X(SCT_SECTIONS_FOUND, "sections")       /* sections picked from the ladders; every limit kept */                   \
     X(SCT_NO_FEASIBLE_DESIGN, "infeasible") /* no design found that keeps every limit; the least violation is shown */ \
-    X(SCT_STALLED, "stalled")             /* the search ended before its tolerance; the best design is shown */        \
-    X(SCT_NOT_OPTIMISED, "not optimised") /* the start design, checked */                                              \
-    X(SCT_STOPPED, "interrupted")         /* stopped by the observer; the best design so far is shown */
+    X(SCT_STALLED, "stalled")               /* the search ended before its tolerance; the best design is shown */      \
+    X(SCT_NOT_OPTIMISED, "not optimised")   /* the start design, checked */                                            \
+    X(SCT_STOPPED, "interrupted")           /* stopped by the observer; the best design so far is shown */
 #define SCT_OUTCOME_NAME(name, text) name,
 typedef enum sct_outcome { SCT_OUTCOME_LIST(SCT_OUTCOME_NAME) SCT_OUTCOME_COUNT } sct_outcome;
 #undef SCT_OUTCOME_NAME
@@ -223,18 +223,18 @@ typedef struct sct_group_result {
 
 typedef struct sct_member_result {
     const char *name;
-    int group, from, to;     /* indices */
-    double L;                /* [m] between joints */
-    double Lcr[2];           /* [m] effective lengths */
-    double lambda[2];        /* Lcr/i; NAN when i is not stated */
-    double mass;             /* [kg] */
-    sct_check_kind check;    /* the governing check; SCT_CHECK_NONE when no check applies */
-    int combination;         /* it governs in this one; -1 when it holds in all (slenderness) or none applies */
-    double N;                /* [N] force there */
-    double utilisation;      /* largest value/limit */
-    double N_max, N_min;     /* [N] over all combinations */
-    int N_max_in, N_min_in;  /* their combinations */
-    bool compressed;         /* in compression in some combination in which strength is checked */
+    int group, from, to;    /* indices */
+    double L;               /* [m] between joints */
+    double Lcr[2];          /* [m] effective lengths */
+    double lambda[2];       /* Lcr/i; NAN when i is not stated */
+    double mass;            /* [kg] */
+    sct_check_kind check;   /* the governing check; SCT_CHECK_NONE when no check applies */
+    int combination;        /* it governs in this one; -1 when it holds in all (slenderness) or none applies */
+    double N;               /* [N] force there */
+    double utilisation;     /* largest value/limit */
+    double N_max, N_min;    /* [N] over all combinations */
+    int N_max_in, N_min_in; /* their combinations */
+    bool compressed;        /* in compression in some combination in which strength is checked */
 } sct_member_result;
 
 typedef struct sct_joint_result {
@@ -246,24 +246,24 @@ typedef struct sct_joint_result {
 
 /* One deflection limit at one joint: its worst combination. */
 typedef struct sct_deflection_result {
-    int limit;           /* index in the model's list */
+    int limit; /* index in the model's list */
     int joint, combination;
     double direction[3];
-    double u;            /* [m] along the direction */
-    double at_most;      /* [m] */
+    double u;       /* [m] along the direction */
+    double at_most; /* [m] */
     double utilisation;
-    const char *label;   /* "L/300" or "20 mm", as written */
+    const char *label; /* "L/300" or "20 mm", as written */
 } sct_deflection_result;
 
 /* The price of a limit that holds the mass up, at the continuous optimum: what the next small relief would save. */
 typedef struct sct_price {
     sct_check_kind kind;
-    int group;           /* of the members concerned, or of the size bound; -1 for a deflection limit */
-    int limit;           /* deflection limit, or -1 */
-    double multiplier;   /* [kg] per unit of ln(limit): sum over all constraints that this limit generates */
-    double per_unit;     /* [kg] per SI unit of the limit (deflection: per metre; size bound: per m2); NAN when a ratio */
-    double saving;       /* [kg] for the relief in the words; the dearest comes first */
-    char words[640];     /* "1 mm more deflection (L/300 in y at L4) saves 3.1 kg" */
+    int group;         /* of the members concerned, or of the size bound; -1 for a deflection limit */
+    int limit;         /* deflection limit, or -1 */
+    double multiplier; /* [kg] per unit of ln(limit): sum over all constraints that this limit generates */
+    double per_unit;   /* [kg] per SI unit of the limit (deflection: per metre; size bound: per m2); NAN when a ratio */
+    double saving;     /* [kg] for the relief in the words; the dearest comes first */
+    char words[640];   /* "1 mm more deflection (L/300 in y at L4) saves 3.1 kg" */
 } sct_price;
 
 /* Where one start of the descent ended. */
@@ -285,11 +285,11 @@ typedef struct sct_accuracy {
 typedef struct sct_result {
     const sct_model *model; /* borrowed */
     sct_outcome outcome;
-    bool kept;          /* every limit is kept by the design shown */
+    bool kept;             /* every limit is kept by the design shown */
     sct_settings settings; /* that it was made with */
-    bool us_customary;  /* writers show kip, ft, in, ksi, lb instead of kN, m, mm, MPa, kg */
-    const char *title;  /* "" when none */
-    int dimensions;     /* 2 or 3 */
+    bool us_customary;     /* writers show kip, ft, in, ksi, lb instead of kN, m, mm, MPa, kg */
+    const char *title;     /* "" when none */
+    int dimensions;        /* 2 or 3 */
 
     int n_joints, n_members, n_groups, n_combinations, n_cases;
     sct_joint_result *joints;
@@ -297,30 +297,31 @@ typedef struct sct_result {
     sct_group_result *groups;
     const char **combinations; /* their names */
     bool *is_for_strength;     /* n_combinations: strength is checked in it; else deflections only */
-    double *u;        /* [m]  n_combinations x n_joints x 3 displacements */
-    double *reaction; /* [N]  n_combinations x n_joints x 3; 0 where nothing is held */
-    double *N;        /* [N]  n_combinations x n_members; what is below 1e-9 of the largest force is given as 0 */
-    double *load;     /* [N]  n_combinations x n_joints x 3, self-weight included */
+    double *u;                 /* [m]  n_combinations x n_joints x 3 displacements */
+    double *reaction;          /* [N]  n_combinations x n_joints x 3; 0 where nothing is held */
+    double *N;    /* [N]  n_combinations x n_members; what is below 1e-9 of the largest force is given as 0 */
+    double *load; /* [N]  n_combinations x n_joints x 3, self-weight included */
 
     int n_deflections;
     sct_deflection_result *deflections;
 
-    double mass;            /* [kg] of the design shown */
-    double mass_continuous; /* [kg] where the descent ended (NAN without): no bound, see README.md */
-    double utilisation;     /* largest of all checks */
-    double utilisation_at_most; /* the same with every force and displacement moved to its unsafe side by its proven error
-                                 * bound (by the estimate where nothing could be proven); `kept`: at most 1 */
-    double kkt, violation;  /* at the continuous optimum: relative residual, largest ln(value/limit); NAN without */
-    int analyses;           /* factorizations in all */
+    double mass;                /* [kg] of the design shown */
+    double mass_continuous;     /* [kg] where the descent ended (NAN without): no bound, see README.md */
+    double utilisation;         /* largest of all checks */
+    double utilisation_at_most; /* the same with every force and displacement moved to its unsafe side by its proven
+                                 * error bound (by the estimate where nothing could be proven); `kept`: at most 1 */
+    double kkt, violation;      /* at the continuous optimum: relative residual, largest ln(value/limit); NAN without */
+    int analyses;               /* factorizations in all */
     int n_starts;
     sct_start_result *starts;
     int best_start;
     int n_prices;
     sct_price *prices;
-    sct_accuracy accuracy;  /* of the analysis shown */
+    sct_accuracy accuracy; /* of the analysis shown */
     int n_warnings;
-    const char **warnings;  /* those in `issues` when the result was made (hand in the list that the model was read with) */
-    char verdict[1000];      /* the finding in one sentence; for an infeasible model the limit and by how much */
+    const char *
+        *warnings;      /* those in `issues` when the result was made (hand in the list that the model was read with) */
+    char verdict[1000]; /* the finding in one sentence; for an infeasible model the limit and by how much */
 } sct_result;
 
 /**
@@ -344,12 +345,13 @@ SCT_API sct_status sct_size(const sct_model *model, const sct_settings *settings
 SCT_API void sct_result_free(sct_result *result);
 
 /**
- * Checks a finished result against a second analysis by separate code: other unknowns, another matrix and solver, formulas
- * written a second time. Every size, mass, load, force, displacement, reaction, utilisation and the verdict are compared.
+ * Checks a finished result against a second analysis by separate code: other unknowns, another matrix and solver,
+ * formulas written a second time. Every size, mass, load, force, displacement, reaction, utilisation and the verdict
+ * are compared.
  *
- * sized   the model with the sizes put in, read back from what SCT_MODEL_JSON wrote (for a result of sct_check: its model)
- * issues  gains an error with both numbers for each that differs by more than rounding and the error bounds explain
- *         (1e-7 relative where the analysis is accurate)
+ * sized   the model with the sizes put in, read back from what SCT_MODEL_JSON wrote (for a result of sct_check: its
+ * model) issues  gains an error with both numbers for each that differs by more than rounding and the error bounds
+ * explain (1e-7 relative where the analysis is accurate)
  *
  * SCT_OK: all agree. SCT_SELF_CHECK: some do not, or `sized` is another model. SCT_NO_MEMORY, SCT_TOO_LARGE.
  */
@@ -358,18 +360,18 @@ SCT_API sct_status sct_verify(const sct_model *sized, const sct_result *result, 
 /* ---- writers ---------------------------------------------------------------------------------------------------- */
 
 typedef enum sct_format {
-    SCT_SUMMARY,     /* plain text for a terminal */
-    SCT_RESULT_JSON, /* everything, SI, full precision */
-    SCT_SCHEDULE_CSV,/* the member schedule */
-    SCT_MODEL_JSON,  /* the model with the sizes put in: input for sct_check */
-    SCT_DRAWING_SVG  /* the truss with marks and utilisations */
+    SCT_SUMMARY,      /* plain text for a terminal */
+    SCT_RESULT_JSON,  /* everything, SI, full precision */
+    SCT_SCHEDULE_CSV, /* the member schedule */
+    SCT_MODEL_JSON,   /* the model with the sizes put in: input for sct_check */
+    SCT_DRAWING_SVG   /* the truss with marks and utilisations */
 } sct_format;
 
 typedef struct sct_write_options {
-    bool colour;          /* summary: terminal colours */
-    int  combination;     /* drawing: loads and deflected shape of this one; default -1: the worst for deflection */
-    bool draw_loads;      /* drawing: the loads of the combination */
-    bool draw_deflected;  /* drawing: the deflected shape of the combination */
+    bool colour;         /* summary: terminal colours */
+    int combination;     /* drawing: loads and deflected shape of this one; default -1: the worst for deflection */
+    bool draw_loads;     /* drawing: the loads of the combination */
+    bool draw_deflected; /* drawing: the deflected shape of the combination */
 } sct_write_options;
 SCT_API sct_write_options sct_write_defaults(void);
 
@@ -379,8 +381,8 @@ SCT_API sct_write_options sct_write_defaults(void);
  * options may be NULL. *text is a new zero-terminated string for free(), *size its length (NULL: not wanted).
  * SCT_NO_MEMORY.
  */
-SCT_API sct_status sct_write(const sct_result *result, sct_format format, const sct_write_options *options,
-                             char **text, size_t *size);
+SCT_API sct_status sct_write(const sct_result *result, sct_format format, const sct_write_options *options, char **text,
+                             size_t *size);
 
 /** One member's checks with the numbers put in, every combination; `member` is its name. SCT_BAD_INPUT: no such
  * member (issues name the nearest). */

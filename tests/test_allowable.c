@@ -23,8 +23,10 @@ START_TEST(johnson_meets_euler_at_half_yield_with_one_tangent)
     for (int k = 0; k < 2; k++) {
         const double meet = PI * sqrt(2.0 * 210000 / fy[k]);
         ck_assert_double_eq_tol(meet, printed[k], 0.05);
-        const sct_column below = sct_column_strength(SCT_BUCKLING_EULER_JOHNSON, 210000 * MPA, fy[k] * MPA, meet * (1 - 1e-9));
-        const sct_column above = sct_column_strength(SCT_BUCKLING_EULER_JOHNSON, 210000 * MPA, fy[k] * MPA, meet * (1 + 1e-9));
+        const sct_column below =
+            sct_column_strength(SCT_BUCKLING_EULER_JOHNSON, 210000 * MPA, fy[k] * MPA, meet * (1 - 1e-9));
+        const sct_column above =
+            sct_column_strength(SCT_BUCKLING_EULER_JOHNSON, 210000 * MPA, fy[k] * MPA, meet * (1 + 1e-9));
         ck_assert(below.johnson && !above.johnson);
         ck_close(below.sigma, 0.5 * fy[k] * MPA, 1e-8);
         ck_close(above.sigma, 0.5 * fy[k] * MPA, 1e-8);
@@ -40,7 +42,8 @@ START_TEST(a_stocky_column_reaches_the_yield_strength)
 END_TEST
 
 /* Old allowable stress practice (AISC 1989, from memory) uses the same two curves with Cc = sqrt(2 pi^2 E/Fy) = 126.10
- * for Fy 36 ksi, E 29000 ksi; there 12 pi^2 E/(23 lambda^2) is Euler with safety 23/12: 6.637 ksi at 150, 3.733 at 200. */
+ * for Fy 36 ksi, E 29000 ksi; there 12 pi^2 E/(23 lambda^2) is Euler with safety 23/12: 6.637 ksi at 150, 3.733 at 200.
+ */
 START_TEST(euler_with_safety_23_12_gives_the_tabulated_allowables)
 {
     const double ksi = 6.894757e6;
@@ -58,7 +61,8 @@ START_TEST(column_derivatives_agree_with_differences)
         const double l = log(5.0 * k), h = 1e-5;
         double s[3];
         for (int d = -1; d <= 1; d++)
-            s[d + 1] = log(sct_column_strength(SCT_BUCKLING_EULER_JOHNSON, 210000 * MPA, 355 * MPA, exp(l + d * h)).sigma);
+            s[d + 1] =
+                log(sct_column_strength(SCT_BUCKLING_EULER_JOHNSON, 210000 * MPA, 355 * MPA, exp(l + d * h)).sigma);
         const sct_column c = sct_column_strength(SCT_BUCKLING_EULER_JOHNSON, 210000 * MPA, 355 * MPA, exp(l));
         ck_assert_double_eq_tol(c.s1, (s[2] - s[0]) / (2 * h), 1e-7);
         ck_assert_double_eq_tol(c.s2, (s[2] - 2 * s[1] + s[0]) / (h * h), 2e-4);
@@ -67,8 +71,15 @@ START_TEST(column_derivatives_agree_with_differences)
 END_TEST
 
 static const sct_bar_rule RULE = {
-    .E = 210e9, .yield = 355e6, .f_t = 212e6, .f_c = 200e6, .buckling = SCT_BUCKLING_EULER_JOHNSON, .safety = 1.92,
-    .Lcr = {3.0, 6.0}, .slenderness_any = 300, .slenderness_compression = 180,
+    .E = 210e9,
+    .yield = 355e6,
+    .f_t = 212e6,
+    .f_c = 200e6,
+    .buckling = SCT_BUCKLING_EULER_JOHNSON,
+    .safety = 1.92,
+    .Lcr = {3.0, 6.0},
+    .slenderness_any = 300,
+    .slenderness_compression = 180,
 };
 
 START_TEST(a_tie_is_checked_in_tension_only)

@@ -19,7 +19,8 @@ static sct_result *size_file(const char *file, int starts, sct_model **model)
     sct_status status = sct_model_read(path, model, issues);
     if (status == SCT_OK) status = sct_size(*model, &settings, &result, issues);
     for (int i = 0; i < sct_issues_count(issues); i++)
-        if (sct_issues_get(issues, i)->severity == SCT_ERROR) printf("%s: %s\n", path, sct_issues_get(issues, i)->message);
+        if (sct_issues_get(issues, i)->severity == SCT_ERROR)
+            printf("%s: %s\n", path, sct_issues_get(issues, i)->message);
     ck_assert_int_eq(status, SCT_OK);
     sct_issues_free(issues);
     return result;
@@ -42,8 +43,8 @@ static void run_problem(const benchmark_optimum *b, int *sum, int *worst)
     for (int k = 0; k < r->n_starts; k++) {
         const sct_start_result *s = &r->starts[k];
         const int which = listed(b, s->mass);
-        ck_assert_msg(which >= 0, "%s start %d ended at %.9g kg (%.9g lb), %s", b->file, k, s->mass, s->mass / BENCHMARK_LB,
-                      sct_outcome_text(s->outcome));
+        ck_assert_msg(which >= 0, "%s start %d ended at %.9g kg (%.9g lb), %s", b->file, k, s->mass,
+                      s->mass / BENCHMARK_LB, sct_outcome_text(s->outcome));
         ck_assert_int_eq(s->outcome, SCT_OPTIMUM);
         ck_assert_double_le(s->violation, 1e-6);
         ck_assert_double_le(s->kkt, 1e-6);

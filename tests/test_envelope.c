@@ -32,7 +32,8 @@ START_TEST(no_section_is_above_the_envelope_which_is_smooth_and_never_falls)
         sct_envelope e;
         ck_assert_int_eq(sct_envelope_ladder(arena, &family, N, all, 0, &e), SCT_OK);
         for (int k = 0; k < N; k++)
-            ck_assert_double_ge(sct_envelope_at(&e, log(sections[k].A)).h + 1e-12, 0.5 * log(sections[k].I[0] / sections[k].A));
+            ck_assert_double_ge(sct_envelope_at(&e, log(sections[k].A)).h + 1e-12,
+                                0.5 * log(sections[k].I[0] / sections[k].A));
         for (int k = 0; k < e.n; k++) { /* C1 at the knots */
             const sct_curve a = sct_envelope_at(&e, e.s[k] - 1e-13), b = sct_envelope_at(&e, e.s[k] + 1e-13);
             ck_assert_double_eq_tol(a.h, b.h, 1e-11);
@@ -42,7 +43,8 @@ START_TEST(no_section_is_above_the_envelope_which_is_smooth_and_never_falls)
             const sct_curve c = sct_envelope_at(&e, s);
             const double h = 1e-6;
             ck_assert_double_ge(c.h1, -1e-12);
-            ck_assert_double_eq_tol(c.h1, (sct_envelope_at(&e, s + h).h - sct_envelope_at(&e, s - h).h) / (2 * h), 1e-4 * (1 + c.h1));
+            ck_assert_double_eq_tol(c.h1, (sct_envelope_at(&e, s + h).h - sct_envelope_at(&e, s - h).h) / (2 * h),
+                                    1e-4 * (1 + c.h1));
         }
         sct_arena_free(arena);
     }
@@ -64,8 +66,15 @@ END_TEST
 
 static sct_bar_rule rule(sct_buckling buckling)
 {
-    return (sct_bar_rule){.E = 210e9, .yield = 355e6, .f_t = 212e6, .f_c = 212e6, .buckling = buckling, .safety = 1.92,
-                          .Lcr = {3.0, 5.0}, .slenderness_any = INFINITY, .slenderness_compression = INFINITY};
+    return (sct_bar_rule){.E = 210e9,
+                          .yield = 355e6,
+                          .f_t = 212e6,
+                          .f_c = 212e6,
+                          .buckling = buckling,
+                          .safety = 1.92,
+                          .Lcr = {3.0, 5.0},
+                          .slenderness_any = INFINITY,
+                          .slenderness_compression = INFINITY};
 }
 
 START_TEST(the_area_needed_is_just_enough)
@@ -77,7 +86,8 @@ START_TEST(the_area_needed_is_just_enough)
     for (int k = 0; k < N; k++) all[k] = k;
     sct_arena *arena = sct_arena_new();
     sct_envelope e[2];
-    for (int axis = 0; axis < 2; axis++) ck_assert_int_eq(sct_envelope_ladder(arena, &family, N, all, axis, &e[axis]), SCT_OK);
+    for (int axis = 0; axis < 2; axis++)
+        ck_assert_int_eq(sct_envelope_ladder(arena, &family, N, all, axis, &e[axis]), SCT_OK);
     const sct_bar_rule rules[2] = {rule(SCT_BUCKLING_EULER), rule(SCT_BUCKLING_EULER_JOHNSON)};
     for (int which = 0; which < 2; which++)
         for (double p = log(1e2); p < log(1e7); p += 0.05) {
@@ -129,7 +139,8 @@ START_TEST(euler_on_a_free_area_has_the_closed_form)
     sct_bar_rule q = rule(SCT_BUCKLING_EULER);
     q.f_c = 1e12;
     const double NN = 40e3, PI = 3.14159265358979323846;
-    ck_close(exp(sct_area_needed(&q, e, false, log(NN), -5).s), sqrt(1.92 * NN * 25.0 / (PI * PI * 210e9 * 0.8)), 1e-12);
+    ck_close(exp(sct_area_needed(&q, e, false, log(NN), -5).s), sqrt(1.92 * NN * 25.0 / (PI * PI * 210e9 * 0.8)),
+             1e-12);
     sct_arena_free(arena);
 }
 END_TEST

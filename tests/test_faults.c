@@ -53,7 +53,7 @@ static struct shared {
     long calls[N_CALLS];
     long live; /* blocks of memory not given back */
     bool returned;
-} *shared;
+} * shared;
 static bool counts; /* in the child, while the job runs */
 
 static bool fails(call kind)
@@ -136,7 +136,7 @@ PASS(STAT, int, stat, (const char *path, struct stat *about), (path, about))
 PASS(STAT, int, lstat, (const char *path, struct stat *about), (path, about))
 PASS(STAT, int, fstat, (int fd, struct stat *about), (fd, about))
 PASS(ACCESS, int, access, (const char *path, int mode), (path, mode))
-PASS(FLUSH, int, fflush, (FILE *stream), (stream))
+PASS(FLUSH, int, fflush, (FILE * stream), (stream))
 
 int __real_open(const char *path, int flags, ...);
 int __wrap_open(const char *path, int flags, ...);
@@ -171,7 +171,8 @@ ssize_t __wrap_write(int fd, const void *bytes, size_t size)
     return -1;
 }
 
-/* ---- jobs ---------------------------------------------------------------------------------------------------------- */
+/* ---- jobs ----------------------------------------------------------------------------------------------------------
+ */
 
 int __real_main(int argc, char **argv);
 int __wrap_main(void);
@@ -183,9 +184,9 @@ static const char OLD[] = "old\n";
 typedef struct job {
     const char *name;
     const char *arguments[MOST_ARGUMENTS];
-    int n_outputs; /* into OUT */
-    bool replaces; /* the folder holds old outputs */
-    int code;      /* of a run without fault */
+    int n_outputs;     /* into OUT */
+    bool replaces;     /* the folder holds old outputs */
+    int code;          /* of a run without fault */
     int (*call)(void); /* instead of the program */
 } job;
 
@@ -220,8 +221,18 @@ static int size_with_cholmod(void)
 
 static const job JOBS[] = {
     {"size with outputs", {"size", "models/demo_roof.json", "-o", OUT}, 4, false, 0, NULL},
-    {"size over old outputs", {"size", "models/demo_roof.json", "-o", OUT, "--force", "--json", "--starts=2"}, 4, true, 0, NULL},
-    {"size 200 bars", {"size", "models/benchmarks/200bar.json", "--starts", "1", "--iterations", "4"}, 0, false, 1, NULL},
+    {"size over old outputs",
+     {"size", "models/demo_roof.json", "-o", OUT, "--force", "--json", "--starts=2"},
+     4,
+     true,
+     0,
+     NULL},
+    {"size 200 bars",
+     {"size", "models/benchmarks/200bar.json", "--starts", "1", "--iterations", "4"},
+     0,
+     false,
+     1,
+     NULL},
     {"check a sized model", {"check", SIZED, "-o", OUT}, 3, false, 0, NULL},
     {"explain", {"explain", SIZED, "--member", "T4"}, 0, false, 0, NULL},
     {"a model with many faults", {"check", WRONG}, 0, false, 3, NULL},
@@ -298,10 +309,11 @@ static int run(const job *j, call kind, long fail_at, bool sticky)
     return status;
 }
 
-/* ---- what must hold after a fault ----------------------------------------------------------------------------------- */
+/* ---- what must hold after a fault -----------------------------------------------------------------------------------
+ */
 
 typedef struct seen {
-    char *out;              /* standard output */
+    char *out; /* standard output */
     char *output[N_OUTPUTS];
 } seen;
 
@@ -321,10 +333,14 @@ static tally look(int j)
         snprintf(path, sizeof path, "%s/%s", OUT, OUTPUTS[k]);
         char *text = read_whole(path, &size);
         const char *wanted = reference[j].output[k];
-        if (text == NULL) t.none++;
-        else if (wanted != NULL && strcmp(text, wanted) == 0) t.whole++;
-        else if (strcmp(text, OLD) == 0) t.old++;
-        else t.mixed++;
+        if (text == NULL)
+            t.none++;
+        else if (wanted != NULL && strcmp(text, wanted) == 0)
+            t.whole++;
+        else if (strcmp(text, OLD) == 0)
+            t.old++;
+        else
+            t.mixed++;
         free(text);
     }
     DIR *dir = opendir(OUT);
@@ -384,7 +400,8 @@ static const char *fault_of(int j, call kind, long at, bool sticky)
     return untouched ? NULL : "a half set of outputs";
 }
 
-/* ---- tests ------------------------------------------------------------------------------------------------------------ */
+/* ---- tests
+ * ------------------------------------------------------------------------------------------------------------ */
 
 static bool is_full(void)
 {
@@ -414,7 +431,8 @@ static void set_up(void)
     path_of(STREAM[1], "stderr");
     size_t size;
     char path[128], *model = read_whole("models/demo_roof.json", &size);
-    for (char *p = model; (p = strstr(p, "\"from\"")) != NULL; p += 6) p[2] = 'x'; /* "fxom": as many faults as members */
+    for (char *p = model; (p = strstr(p, "\"from\"")) != NULL; p += 6)
+        p[2] = 'x'; /* "fxom": as many faults as members */
     write_whole(WRONG, model);
     free(model);
     for (int j = 0; j < N_JOBS; j++) {
@@ -448,7 +466,8 @@ static void expect(int j, call kind, long at, bool sticky)
     char *err = read_whole(STREAM[1], &size);
     const tally t = look(j);
     printf("%s, %s %ld%s: %s; outputs: %d whole, %d none, %d old, %d other; standard error: %.400s\n", JOBS[j].name,
-           CALL_WORDS[kind], at, sticky ? " and later" : "", fault, t.whole, t.none, t.old, t.mixed, err != NULL ? err : "");
+           CALL_WORDS[kind], at, sticky ? " and later" : "", fault, t.whole, t.none, t.old, t.mixed,
+           err != NULL ? err : "");
     free(err);
     broken++;
 }

@@ -348,8 +348,8 @@ START_TEST(guessed_bounds_change_nothing_but_the_way)
     for (int k = 0; k < 600; ++k) {
         random_problem(&r, &p, inside, k % 4 == 3);
         ck_assert_int_eq(solve(&p, &whole), SCT_OK);
-        const sct_qp_data data = {p.n, p.m, p.m_eq, p.n, p.G, p.a, p.rows, p.b, p.has_bounds ? p.lower : NULL,
-                                  p.has_bounds ? p.upper : NULL};
+        const sct_qp_data data = {
+            p.n, p.m, p.m_eq, p.n, p.G, p.a, p.rows, p.b, p.has_bounds ? p.lower : NULL, p.has_bounds ? p.upper : NULL};
         signed char side[N_MOST];
         for (int i = 0; i < p.n; ++i) {
             const signed char truth = (signed char)((whole.mu_bound[i] > 0) - (whole.mu_bound[i] < 0));
@@ -372,7 +372,8 @@ END_TEST
 START_TEST(guesses_that_leave_no_room_are_given_up)
 {
     /* x1 + x2 >= 1.5 in the unit square: with both at 0 there is nothing */
-    const double G[4] = {1, 0, 0, 1}, a[2] = {0, 0}, row[2] = {-1, -1}, b[1] = {-1.5}, lower[2] = {0, 0}, upper[2] = {1, 1};
+    const double G[4] = {1, 0, 0, 1}, a[2] = {0, 0}, row[2] = {-1, -1}, b[1] = {-1.5}, lower[2] = {0, 0},
+                 upper[2] = {1, 1};
     const sct_qp_data data = {2, 1, 0, 2, G, a, row, b, lower, upper};
     signed char side[2] = {-1, 0};
     double x[2], mu[1], mu_bound[2];

@@ -268,7 +268,8 @@ static const mistake MISTAKES[] = {
      "7:20: error: /materials/S355H/E: found 210000 Pa; expected Young's modulus from 1e+06 to 2e+12 Pa; did you mean "
      "MPa?"},
     {"\"E\": 210000", "\"E\": 2.1e11",
-     "7:20: error: /materials/S355H/E: found 210000000000 MPa; expected Young's modulus from 1e+06 to 2e+12 Pa; did you "
+     "7:20: error: /materials/S355H/E: found 210000000000 MPa; expected Young's modulus from 1e+06 to 2e+12 Pa; did "
+     "you "
      "mean Pa?"},
     {"\"E\": 210000", "\"e\": 210000", "7:15: error: /materials/S355H/e: unknown key \"e\"; did you mean \"E\"?"},
     {"\"E\": 210000", "\"E\": null",

@@ -38,7 +38,8 @@ static sct_result *size_with(const sct_model *model, const sct_settings *setting
     sct_issues *issues = sct_issues_new();
     sct_result *result = NULL;
     const sct_status status = sct_size(model, settings, &result, issues);
-    for (int i = 0; status != SCT_OK && i < sct_issues_count(issues); i++) printf("%s\n", sct_issues_get(issues, i)->message);
+    for (int i = 0; status != SCT_OK && i < sct_issues_count(issues); i++)
+        printf("%s\n", sct_issues_get(issues, i)->message);
     ck_assert_int_eq(status, SCT_OK);
     sct_issues_free(issues);
     return result;
@@ -48,19 +49,20 @@ static sct_result *size_with(const sct_model *model, const sct_settings *setting
 static char *triangle(const char *tie, const char *rafters, const char *limits, const char *cases)
 {
     sct_text t = {0};
-    sct_text_format(&t, "{ \"scantling\": 1, \"dimensions\": 2, \"units\": { \"length\": \"m\", \"force\": \"kN\","
-                        " \"stress\": \"MPa\", \"area\": \"mm2\", \"displacement\": \"mm\" },"
-                        "\"materials\": { \"S\": { \"E\": 210000, \"density\": \"7850 kg/m3\", \"yield\": 355,"
-                        " \"expansion\": \"12e-6 1/K\", \"allowable\": { \"tension\": 200, \"compression\": 160 } } },"
-                        "\"joints\": { \"A\": { \"at\": [0, 0], \"support\": [\"x\", \"y\"] },"
-                        " \"B\": { \"at\": [8, 0], \"support\": [\"y\"] }, \"C\": { \"at\": [4, 3] } },"
-                        "\"groups\": { \"tie\": { \"material\": \"S\", %s }, \"rafters\": { \"material\": \"S\", %s } },"
-                        "\"members\": { \"AB\": { \"from\": \"A\", \"to\": \"B\", \"group\": \"tie\" },"
-                        " \"AC\": { \"from\": \"A\", \"to\": \"C\", \"group\": \"rafters\" },"
-                        " \"CB\": { \"from\": \"C\", \"to\": \"B\", \"group\": \"rafters\" } },"
-                        "\"cases\": { %s },"
-                        "\"combinations\": { \"all\": { \"for\": \"allowable\", \"sum\": { \"Q\": 1 } } },"
-                        "\"limits\": { %s } }",
+    sct_text_format(&t,
+                    "{ \"scantling\": 1, \"dimensions\": 2, \"units\": { \"length\": \"m\", \"force\": \"kN\","
+                    " \"stress\": \"MPa\", \"area\": \"mm2\", \"displacement\": \"mm\" },"
+                    "\"materials\": { \"S\": { \"E\": 210000, \"density\": \"7850 kg/m3\", \"yield\": 355,"
+                    " \"expansion\": \"12e-6 1/K\", \"allowable\": { \"tension\": 200, \"compression\": 160 } } },"
+                    "\"joints\": { \"A\": { \"at\": [0, 0], \"support\": [\"x\", \"y\"] },"
+                    " \"B\": { \"at\": [8, 0], \"support\": [\"y\"] }, \"C\": { \"at\": [4, 3] } },"
+                    "\"groups\": { \"tie\": { \"material\": \"S\", %s }, \"rafters\": { \"material\": \"S\", %s } },"
+                    "\"members\": { \"AB\": { \"from\": \"A\", \"to\": \"B\", \"group\": \"tie\" },"
+                    " \"AC\": { \"from\": \"A\", \"to\": \"C\", \"group\": \"rafters\" },"
+                    " \"CB\": { \"from\": \"C\", \"to\": \"B\", \"group\": \"rafters\" } },"
+                    "\"cases\": { %s },"
+                    "\"combinations\": { \"all\": { \"for\": \"allowable\", \"sum\": { \"Q\": 1 } } },"
+                    "\"limits\": { %s } }",
                     tie, rafters, cases != NULL ? cases : "\"Q\": { \"joints\": { \"C\": [0, -60] } }", limits);
     return sct_text_take(&t, NULL);
 }
@@ -111,11 +113,13 @@ static void check_derivatives(const sct_model *model, bool plain, unsigned seed,
     sct_random random = {seed};
     double *x = calloc(un, sizeof *x), *y = calloc(un, sizeof *y), *df = calloc(un, sizeof *df);
     double *g = calloc(um, sizeof *g), *up = calloc(um, sizeof *up), *down = calloc(um, sizeof *down);
-    double *dg = calloc(um * un, sizeof *dg), *dg_up = calloc(um * un, sizeof *dg_up), *dg_down = calloc(um * un, sizeof *dg_down);
+    double *dg = calloc(um * un, sizeof *dg), *dg_up = calloc(um * un, sizeof *dg_up),
+           *dg_down = calloc(um * un, sizeof *dg_down);
     double *H = calloc(un * un, sizeof *H), *mu = calloc(um, sizeof *mu);
     int *rows = calloc(um, sizeof *rows);
     double f, f_up, f_down;
-    for (int v = 0; v < n; v++) x[v] = p.nlp->lower[v] + (0.3 + 0.4 * sct_random_unit(&random)) * (p.nlp->upper[v] - p.nlp->lower[v]);
+    for (int v = 0; v < n; v++)
+        x[v] = p.nlp->lower[v] + (0.3 + 0.4 * sct_random_unit(&random)) * (p.nlp->upper[v] - p.nlp->lower[v]);
     for (int j = 0; j < m; j++) {
         rows[j] = j;
         mu[j] = sct_random_unit(&random);
@@ -146,7 +150,18 @@ static void check_derivatives(const sct_model *model, bool plain, unsigned seed,
             ck_assert_double_eq_tol(H[(size_t)v * un + (size_t)w], change, tol * (1 + fabs(change)));
         }
     }
-    free(x); free(y); free(df); free(g); free(up); free(down); free(dg); free(dg_up); free(dg_down); free(H); free(mu); free(rows);
+    free(x);
+    free(y);
+    free(df);
+    free(g);
+    free(up);
+    free(down);
+    free(dg);
+    free(dg_up);
+    free(dg_down);
+    free(H);
+    free(mu);
+    free(rows);
     close_probe(&p);
 }
 
@@ -168,23 +183,32 @@ END_TEST
 START_TEST(derivatives_agree_with_self_weight_temperature_and_settlement)
 {
     sct_model *model = parse(
-        "{ \"scantling\": 1, \"dimensions\": 2, \"units\": { \"length\": \"m\", \"force\": \"kN\", \"stress\": \"MPa\" },"
+        "{ \"scantling\": 1, \"dimensions\": 2, \"units\": { \"length\": \"m\", \"force\": \"kN\", \"stress\": \"MPa\" "
+        "},"
         "\"materials\": { \"S\": { \"E\": 210000, \"density\": \"7850 kg/m3\", \"expansion\": \"12e-6 1/K\","
         " \"allowable\": { \"tension\": 200, \"compression\": 160 } } },"
         "\"joints\": { \"A\": { \"at\": [0, 0], \"support\": [\"x\", \"y\"] }, \"B\": { \"at\": [4, 0] },"
-        " \"C\": { \"at\": [8, 0], \"support\": [[0.6, 0.8], \"x\"] }, \"D\": { \"at\": [4, 3] }, \"E\": { \"at\": [8, 3.5] } },"
+        " \"C\": { \"at\": [8, 0], \"support\": [[0.6, 0.8], \"x\"] }, \"D\": { \"at\": [4, 3] }, \"E\": { \"at\": [8, "
+        "3.5] } },"
         "\"groups\": { \"a\": { \"material\": \"S\", \"area\": { \"at_least\": \"1 cm2\", \"at_most\": \"50 cm2\" } },"
         " \"b\": { \"material\": \"S\", \"area\": { \"at_least\": \"1 cm2\", \"at_most\": \"50 cm2\" } },"
         " \"c\": { \"material\": \"S\", \"area\": \"12 cm2\" },"
         " \"d\": { \"material\": \"S\", \"area\": { \"at_least\": \"1 cm2\", \"at_most\": \"50 cm2\" } } },"
-        "\"members\": { \"1\": { \"from\": \"A\", \"to\": \"B\", \"group\": \"a\" }, \"2\": { \"from\": \"B\", \"to\": \"C\", \"group\": \"a\" },"
-        " \"3\": { \"from\": \"A\", \"to\": \"D\", \"group\": \"b\" }, \"4\": { \"from\": \"B\", \"to\": \"D\", \"group\": \"c\" },"
-        " \"5\": { \"from\": \"D\", \"to\": \"C\", \"group\": \"b\" }, \"6\": { \"from\": \"D\", \"to\": \"E\", \"group\": \"d\" },"
-        " \"7\": { \"from\": \"B\", \"to\": \"E\", \"group\": \"d\" }, \"8\": { \"from\": \"C\", \"to\": \"E\", \"group\": \"c\" } },"
-        "\"cases\": { \"G\": { \"self_weight\": 1.1, \"joints\": { \"D\": [0, -50] } }, \"T\": { \"members\": { \"1\": { \"temperature\": \"40 K\" },"
+        "\"members\": { \"1\": { \"from\": \"A\", \"to\": \"B\", \"group\": \"a\" }, \"2\": { \"from\": \"B\", \"to\": "
+        "\"C\", \"group\": \"a\" },"
+        " \"3\": { \"from\": \"A\", \"to\": \"D\", \"group\": \"b\" }, \"4\": { \"from\": \"B\", \"to\": \"D\", "
+        "\"group\": \"c\" },"
+        " \"5\": { \"from\": \"D\", \"to\": \"C\", \"group\": \"b\" }, \"6\": { \"from\": \"D\", \"to\": \"E\", "
+        "\"group\": \"d\" },"
+        " \"7\": { \"from\": \"B\", \"to\": \"E\", \"group\": \"d\" }, \"8\": { \"from\": \"C\", \"to\": \"E\", "
+        "\"group\": \"c\" } },"
+        "\"cases\": { \"G\": { \"self_weight\": 1.1, \"joints\": { \"D\": [0, -50] } }, \"T\": { \"members\": { \"1\": "
+        "{ \"temperature\": \"40 K\" },"
         " \"6\": { \"lack_of_fit\": \"3 mm\" } } }, \"S\": { \"settlements\": { \"C\": [\"0 mm\", \"-12 mm\"] } } },"
-        "\"combinations\": { \"1\": { \"for\": \"allowable\", \"sum\": { \"G\": 1, \"T\": 1 } }, \"2\": { \"for\": \"allowable\", \"sum\": { \"G\": 0.9, \"T\": -0.5, \"S\": 1 } } },"
-        "\"limits\": { \"buckling\": { \"by\": \"none\" }, \"deflection\": [ { \"joints\": \"all\", \"direction\": \"y\", \"at_most\": \"10 mm\" } ] } }");
+        "\"combinations\": { \"1\": { \"for\": \"allowable\", \"sum\": { \"G\": 1, \"T\": 1 } }, \"2\": { \"for\": "
+        "\"allowable\", \"sum\": { \"G\": 0.9, \"T\": -0.5, \"S\": 1 } } },"
+        "\"limits\": { \"buckling\": { \"by\": \"none\" }, \"deflection\": [ { \"joints\": \"all\", \"direction\": "
+        "\"y\", \"at_most\": \"10 mm\" } ] } }");
     for (unsigned seed = 1; seed <= 5; seed++) check_derivatives(model, false, seed, 1e-5);
     sct_model_free(model);
 }
@@ -213,8 +237,10 @@ END_TEST
 /* Euler with safety 2 on I = 0.5 A^2: A = sqrt(2 N L^2/(pi^2 E 0.5)). */
 START_TEST(a_strut_under_euler_has_its_closed_form)
 {
-    char *text = triangle(AREA, "\"area\": { \"at_least\": 10, \"at_most\": 100000 }, \"second_moment\": { \"c\": 0.5 },"
-                                "\"buckling\": { \"by\": \"Euler\", \"safety\": 2 }", NO_BUCKLING, NULL);
+    char *text = triangle(AREA,
+                          "\"area\": { \"at_least\": 10, \"at_most\": 100000 }, \"second_moment\": { \"c\": 0.5 },"
+                          "\"buckling\": { \"by\": \"Euler\", \"safety\": 2 }",
+                          NO_BUCKLING, NULL);
     sct_model *model = parse(text);
     sct_result *r = size_with(model, NULL);
     const double PI = 3.14159265358979323846;
@@ -230,7 +256,10 @@ END_TEST
  * s = sum L sqrt(N n) / (E U), groups summed. */
 START_TEST(a_deflection_limit_alone_has_its_closed_form)
 {
-    char *text = triangle(AREA, AREA, "\"buckling\": { \"by\": \"none\" }, \"deflection\": [ { \"joints\": [\"C\"], \"direction\": \"y\", \"at_most\": 1 } ]", NULL);
+    char *text = triangle(AREA, AREA,
+                          "\"buckling\": { \"by\": \"none\" }, \"deflection\": [ { \"joints\": [\"C\"], \"direction\": "
+                          "\"y\", \"at_most\": 1 } ]",
+                          NULL);
     sct_model *model = parse(text);
     sct_result *r = size_with(model, NULL);
     const double N[2] = {40e3, 50e3}, n[2] = {40.0 / 60, 50.0 / 60}, L[2] = {8, 10}, E = 210e9, U = 1e-3;
@@ -246,11 +275,13 @@ START_TEST(a_deflection_limit_alone_has_its_closed_form)
 }
 END_TEST
 
-/* ---- outcomes ----------------------------------------------------------------------------------------------------- */
+/* ---- outcomes -----------------------------------------------------------------------------------------------------
+ */
 
 START_TEST(slack_limits_leave_the_smallest_sizes)
 {
-    char *text = triangle("\"area\": { \"at_least\": 5000, \"at_most\": 100000 }", "\"area\": { \"at_least\": 6000, \"at_most\": 100000 }", NO_BUCKLING, NULL);
+    char *text = triangle("\"area\": { \"at_least\": 5000, \"at_most\": 100000 }",
+                          "\"area\": { \"at_least\": 6000, \"at_most\": 100000 }", NO_BUCKLING, NULL);
     sct_model *model = parse(text);
     sct_result *r = size_with(model, NULL);
     ck_assert_int_eq(r->outcome, SCT_OPTIMUM);
@@ -283,7 +314,10 @@ END_TEST
 
 START_TEST(an_impossible_slenderness_is_told_before_the_search)
 {
-    char *text = triangle(AREA, "\"area\": { \"at_least\": 10, \"at_most\": 1000 }, \"second_moment\": { \"c\": 0.5 }, \"slenderness\": { \"any\": 50 }", NO_BUCKLING, NULL);
+    char *text = triangle(AREA,
+                          "\"area\": { \"at_least\": 10, \"at_most\": 1000 }, \"second_moment\": { \"c\": 0.5 }, "
+                          "\"slenderness\": { \"any\": 50 }",
+                          NO_BUCKLING, NULL);
     sct_model *model = parse(text);
     sct_result *r = size_with(model, NULL);
     ck_assert_int_eq(r->outcome, SCT_NO_FEASIBLE_DESIGN);
@@ -298,7 +332,8 @@ END_TEST
 /* i^2 = c A: lambda <= 200 asks A >= (5/200)^2/0.5; only the compressed rafters must keep it. */
 START_TEST(slenderness_of_compression_binds_compressed_members_only)
 {
-    const char *group = "\"area\": { \"at_least\": 10, \"at_most\": 100000 }, \"second_moment\": { \"c\": 0.5 }, \"slenderness\": { \"compression\": 200 }";
+    const char *group = "\"area\": { \"at_least\": 10, \"at_most\": 100000 }, \"second_moment\": { \"c\": 0.5 }, "
+                        "\"slenderness\": { \"compression\": 200 }";
     char *text = triangle(group, group, NO_BUCKLING, NULL);
     sct_model *model = parse(text);
     sct_result *r = size_with(model, NULL);
@@ -313,7 +348,8 @@ END_TEST
 
 START_TEST(without_iterations_the_start_is_checked_and_marked)
 {
-    char *text = triangle("\"area\": { \"at_least\": 10, \"at_most\": 100000, \"start\": 777 }", AREA, NO_BUCKLING, NULL);
+    char *text =
+        triangle("\"area\": { \"at_least\": 10, \"at_most\": 100000, \"start\": 777 }", AREA, NO_BUCKLING, NULL);
     sct_model *model = parse(text);
     sct_settings settings = sct_settings_defaults();
     settings.iterations = 0;
@@ -378,7 +414,8 @@ START_TEST(check_refuses_a_group_without_a_size)
 }
 END_TEST
 
-/* ---- search ------------------------------------------------------------------------------------------------------- */
+/* ---- search -------------------------------------------------------------------------------------------------------
+ */
 
 START_TEST(the_same_run_gives_the_same_bits_with_either_engine_near)
 {
@@ -406,7 +443,9 @@ START_TEST(the_price_of_deflection_is_what_a_wider_limit_saves)
     sct_model *model[3];
     for (int k = 0; k < 3; k++) {
         snprintf(words, sizeof words,
-                 "\"buckling\": { \"by\": \"none\" }, \"deflection\": [ { \"joints\": [\"C\"], \"direction\": \"y\", \"at_most\": %.6f } ]", limit[k]);
+                 "\"buckling\": { \"by\": \"none\" }, \"deflection\": [ { \"joints\": [\"C\"], \"direction\": \"y\", "
+                 "\"at_most\": %.6f } ]",
+                 limit[k]);
         text[k] = triangle("\"area\": { \"at_least\": 200, \"at_most\": 900 }", AREA, words, NULL);
         model[k] = parse(text[k]);
         r[k] = size_with(model[k], NULL);
@@ -427,8 +466,12 @@ END_TEST
 /* Ladder and free area in one truss. */
 START_TEST(ladders_and_free_areas_mix)
 {
-    char *text = triangle(AREA, "\"family\": \"CHS\", \"buckling\": { \"by\": \"Euler and Johnson\", \"safety\": 1.92 }, \"slenderness\": { \"compression\": 180 }",
-                          "\"buckling\": { \"by\": \"none\" }, \"deflection\": [ { \"joints\": [\"C\"], \"direction\": \"y\", \"at_most\": 4 } ]", NULL);
+    char *text = triangle(AREA,
+                          "\"family\": \"CHS\", \"buckling\": { \"by\": \"Euler and Johnson\", \"safety\": 1.92 }, "
+                          "\"slenderness\": { \"compression\": 180 }",
+                          "\"buckling\": { \"by\": \"none\" }, \"deflection\": [ { \"joints\": [\"C\"], \"direction\": "
+                          "\"y\", \"at_most\": 4 } ]",
+                          NULL);
     sct_model *model = parse(text);
     sct_result *r = size_with(model, NULL);
     ck_assert_int_eq(r->outcome, SCT_SECTIONS_FOUND);
@@ -444,13 +487,16 @@ END_TEST
 /* Every lighter pair of sections fails: checked one by one through sct_check on a model with the sections put in. */
 START_TEST(no_lighter_pair_of_sections_keeps_the_limits)
 {
-    static const char *const LIST[] = {"CHS 42.4x2.6", "CHS 48.3x2.6", "CHS 48.3x3.2", "CHS 60.3x2.6", "CHS 60.3x3.2", "CHS 60.3x4",
-                                       "CHS 76.1x2.6", "CHS 76.1x3.2", "CHS 76.1x4", "CHS 88.9x3.2", "CHS 88.9x4", "CHS 114.3x3.2"};
+    static const char *const LIST[] = {"CHS 42.4x2.6", "CHS 48.3x2.6", "CHS 48.3x3.2", "CHS 60.3x2.6",
+                                       "CHS 60.3x3.2", "CHS 60.3x4",   "CHS 76.1x2.6", "CHS 76.1x3.2",
+                                       "CHS 76.1x4",   "CHS 88.9x3.2", "CHS 88.9x4",   "CHS 114.3x3.2"};
     enum { N = sizeof LIST / sizeof LIST[0] };
     char list[400] = "\"family\": \"CHS\", \"sections\": [";
-    for (int k = 0; k < N; k++) snprintf(list + strlen(list), sizeof list - strlen(list), "%s\"%s\"", k ? ", " : "", LIST[k]);
+    for (int k = 0; k < N; k++)
+        snprintf(list + strlen(list), sizeof list - strlen(list), "%s\"%s\"", k ? ", " : "", LIST[k]);
     strcat(list, "]");
-    const char *limits = "\"buckling\": { \"by\": \"Euler and Johnson\", \"safety\": 1.92 }, \"slenderness\": { \"any\": 300, \"compression\": 180 },"
+    const char *limits = "\"buckling\": { \"by\": \"Euler and Johnson\", \"safety\": 1.92 }, \"slenderness\": { "
+                         "\"any\": 300, \"compression\": 180 },"
                          "\"deflection\": [ { \"joints\": [\"C\"], \"direction\": \"y\", \"at_most\": 4.4 } ]";
     char *text = triangle(list, list, limits, NULL);
     sct_model *model = parse(text);
@@ -505,20 +551,22 @@ END_TEST
 static char *raked(const char *post, const char *ties, double lift, double safety)
 {
     sct_text t = {0};
-    sct_text_format(&t, "{ \"scantling\": 1, \"dimensions\": 2, \"units\": { \"length\": \"m\", \"force\": \"kN\","
-                        " \"stress\": \"MPa\", \"area\": \"mm2\" },"
-                        "\"materials\": { \"S\": { \"E\": 210000, \"density\": \"7850 kg/m3\","
-                        " \"allowable\": { \"tension\": 140, \"compression\": 140 } } },"
-                        "\"joints\": { \"A\": { \"at\": [0, 0], \"support\": [\"x\", \"y\"] },"
-                        " \"B\": { \"at\": [2, 0], \"support\": [\"x\", \"y\"] },"
-                        " \"D\": { \"at\": [-2, 0], \"support\": [\"x\", \"y\"] }, \"C\": { \"at\": [0, 2] } },"
-                        "\"groups\": { \"p\": { \"material\": \"S\", %s }, \"s\": { \"material\": \"S\", %s } },"
-                        "\"members\": { \"post\": { \"from\": \"A\", \"to\": \"C\", \"group\": \"p\" },"
-                        " \"l\": { \"from\": \"D\", \"to\": \"C\", \"group\": \"s\" },"
-                        " \"r\": { \"from\": \"B\", \"to\": \"C\", \"group\": \"s\" } },"
-                        "\"cases\": { \"d\": { \"joints\": { \"C\": [0, %g] }, \"members\": { \"post\": { \"lack_of_fit\": \"%g mm\" } } } },"
-                        "\"combinations\": { \"c\": { \"for\": \"allowable\", \"sum\": { \"d\": 1 } } },"
-                        "\"limits\": { \"buckling\": { \"by\": \"Euler\", \"safety\": %g } } }",
+    sct_text_format(&t,
+                    "{ \"scantling\": 1, \"dimensions\": 2, \"units\": { \"length\": \"m\", \"force\": \"kN\","
+                    " \"stress\": \"MPa\", \"area\": \"mm2\" },"
+                    "\"materials\": { \"S\": { \"E\": 210000, \"density\": \"7850 kg/m3\","
+                    " \"allowable\": { \"tension\": 140, \"compression\": 140 } } },"
+                    "\"joints\": { \"A\": { \"at\": [0, 0], \"support\": [\"x\", \"y\"] },"
+                    " \"B\": { \"at\": [2, 0], \"support\": [\"x\", \"y\"] },"
+                    " \"D\": { \"at\": [-2, 0], \"support\": [\"x\", \"y\"] }, \"C\": { \"at\": [0, 2] } },"
+                    "\"groups\": { \"p\": { \"material\": \"S\", %s }, \"s\": { \"material\": \"S\", %s } },"
+                    "\"members\": { \"post\": { \"from\": \"A\", \"to\": \"C\", \"group\": \"p\" },"
+                    " \"l\": { \"from\": \"D\", \"to\": \"C\", \"group\": \"s\" },"
+                    " \"r\": { \"from\": \"B\", \"to\": \"C\", \"group\": \"s\" } },"
+                    "\"cases\": { \"d\": { \"joints\": { \"C\": [0, %g] }, \"members\": { \"post\": { \"lack_of_fit\": "
+                    "\"%g mm\" } } } },"
+                    "\"combinations\": { \"c\": { \"for\": \"allowable\", \"sum\": { \"d\": 1 } } },"
+                    "\"limits\": { \"buckling\": { \"by\": \"Euler\", \"safety\": %g } } }",
                     post, ties, lift, lift > 0 ? 0.8 : 0.0, safety);
     return sct_text_take(&t, NULL);
 }
@@ -526,7 +574,8 @@ static char *raked(const char *post, const char *ties, double lift, double safet
 /* At middle sizes the post is compressed and could never keep 150; at the optimum it is a tie. */
 START_TEST(a_member_that_is_a_tie_at_the_optimum_need_not_keep_the_limit_of_struts)
 {
-    char *text = raked("\"area\": { \"at_least\": 20, \"at_most\": 2000 }, \"second_moment\": { \"c\": 0.04 }, \"slenderness\": { \"compression\": 150 }",
+    char *text = raked("\"area\": { \"at_least\": 20, \"at_most\": 2000 }, \"second_moment\": { \"c\": 0.04 }, "
+                       "\"slenderness\": { \"compression\": 150 }",
                        "\"area\": { \"at_least\": 50, \"at_most\": 5000 }, \"second_moment\": { \"c\": 5 }", 20, 1.92);
     sct_model *model = parse(text);
     sct_result *r = size_with(model, NULL);
@@ -548,8 +597,12 @@ START_TEST(the_price_of_a_held_column_is_what_a_shorter_one_saves)
     sct_model *model[3];
     char *text[3], post[200];
     for (int k = 0; k < 3; k++) {
-        snprintf(post, sizeof post, "\"area\": 300, \"second_moment\": { \"c\": 0.5 }, \"length_factor\": { \"in_plane\": %.4f, \"out_of_plane\": 0.5 }", factor[k]);
-        text[k] = raked(post, "\"area\": { \"at_least\": 10, \"at_most\": 5000 }, \"second_moment\": { \"c\": 5 }", -20, 1.92);
+        snprintf(post, sizeof post,
+                 "\"area\": 300, \"second_moment\": { \"c\": 0.5 }, \"length_factor\": { \"in_plane\": %.4f, "
+                 "\"out_of_plane\": 0.5 }",
+                 factor[k]);
+        text[k] = raked(post, "\"area\": { \"at_least\": 10, \"at_most\": 5000 }, \"second_moment\": { \"c\": 5 }", -20,
+                        1.92);
         model[k] = parse(text[k]);
         r[k] = size_with(model[k], NULL);
     }
@@ -584,7 +637,8 @@ END_TEST
 
 START_TEST(a_refusal_names_the_limit_that_applies)
 {
-    const char *group = "\"family\": \"CHS\", \"sections\": [\"CHS 21.3x2.6\"], \"slenderness\": { \"any\": 350, \"compression\": 180 }";
+    const char *group = "\"family\": \"CHS\", \"sections\": [\"CHS 21.3x2.6\"], \"slenderness\": { \"any\": 350, "
+                        "\"compression\": 180 }";
     char *text = triangle(group, AREA, NO_BUCKLING, NULL);
     sct_model *model = parse(text);
     sct_result *r = size_with(model, NULL);
@@ -609,7 +663,9 @@ END_TEST
 
 START_TEST(doubts_are_kept_in_the_result)
 {
-    char *text = triangle("\"area\": 300", "\"area\": 400", "\"buckling\": { \"by\": \"none\" }, \"deflection\": [ { \"joints\": [\"C\"], \"direction\": \"y\", \"at_most\": 400 } ]",
+    char *text = triangle("\"area\": 300", "\"area\": 400",
+                          "\"buckling\": { \"by\": \"none\" }, \"deflection\": [ { \"joints\": [\"C\"], \"direction\": "
+                          "\"y\", \"at_most\": 400 } ]",
                           "\"Q\": { \"joints\": { \"C\": [0, -6] }, \"settlements\": { \"B\": [0, -200] } }");
     sct_issues *issues = sct_issues_new();
     sct_model *model = NULL;

@@ -97,8 +97,8 @@ double sct_combined_force_error(const sct_structure *st, const sct_response *res
     return error + sum_rounding(st, terms);
 }
 
-double sct_combined_displacement_error(const sct_structure *st, const sct_response *response, int combination, int joint,
-                                       const double direction[3])
+double sct_combined_displacement_error(const sct_structure *st, const sct_response *response, int combination,
+                                       int joint, const double direction[3])
 {
     double error = 0.0, terms = 0.0;
     for (int k = 0; k < st->n_cases; k++) {

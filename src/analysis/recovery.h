@@ -17,9 +17,9 @@ void sct_combine_loads(const sct_structure *st, const double A[], int combinatio
  * 0 elsewhere. */
 void sct_reactions(const sct_structure *st, const double N[], const double load[], double *reaction);
 
-/** Proven bounds of the errors of sct_combine_forces for one bar, and of a joint's displacement along a direction; NAN where
- * the analysis is not certified. Only after sct_accuracy_refine. */
+/** Proven bounds of the errors of sct_combine_forces for one bar, and of a joint's displacement along a direction; NAN
+ * where the analysis is not certified. Only after sct_accuracy_refine. */
 double sct_combined_force_error(const sct_structure *st, const sct_response *response, int combination, int bar);
-double sct_combined_displacement_error(const sct_structure *st, const sct_response *response, int combination, int joint,
-                                       const double direction[3]);
+double sct_combined_displacement_error(const sct_structure *st, const sct_response *response, int combination,
+                                       int joint, const double direction[3]);
 #endif

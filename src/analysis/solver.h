@@ -26,8 +26,8 @@ void sct_response_free(sct_response *response);
 /**
  * Analyses with the areas A (n_groups, [m2], > 0): fills and factors the stiffness, solves every case, recovers forces.
  *
- * SCT_OK; SCT_MECHANISM: the matrix is not positive definite (mechanism.h tells how it moves); SCT_NOT_ACCURATE: a value
- * that is not finite; SCT_NO_MEMORY.
+ * SCT_OK; SCT_MECHANISM: the matrix is not positive definite (mechanism.h tells how it moves); SCT_NOT_ACCURATE: a
+ * value that is not finite; SCT_NO_MEMORY.
  */
 sct_status sct_solver_analyse(sct_solver *solver, const double A[], sct_response *response);
 
@@ -38,8 +38,8 @@ int sct_solver_analyses(const sct_solver *solver);
  * analysis, in batches. */
 void sct_solver_solve(sct_solver *solver, int count, double b[]);
 
-/** The factor, for mechanism.c, eigenvalue.c and for asking its size: whoever updates it spoils it for sct_solver_solve until the next
- * analysis. */
+/** The factor, for mechanism.c, eigenvalue.c and for asking its size: whoever updates it spoils it for sct_solver_solve
+ * until the next analysis. */
 sct_factor *sct_solver_factor(sct_solver *solver);
 
 /** Areas of the latest analysis (n_groups). */

@@ -4,7 +4,9 @@
 
 #include <stdint.h>
 
-typedef struct sct_random { uint64_t state; } sct_random;
+typedef struct sct_random {
+    uint64_t state;
+} sct_random;
 
 /** Next 64 bits (splitmix64; Steele, Lea and Flood 2014). */
 static inline uint64_t sct_random_bits(sct_random *r)

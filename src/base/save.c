@@ -35,7 +35,10 @@ sct_status sct_read_file(const char *path, size_t most, char **bytes, size_t *si
     while (status == SCT_OK) {
         if (n + 1 == room) {
             char *more = realloc(data, 2 * room);
-            if (more == NULL) { status = SCT_NO_MEMORY; break; }
+            if (more == NULL) {
+                status = SCT_NO_MEMORY;
+                break;
+            }
             data = more;
             room *= 2;
         }

@@ -21,11 +21,17 @@ static bool grow(sct_text *text, size_t more)
     if (text->room - text->size > more) return true;
     size_t room = text->room < 128 ? 256 : text->room;
     while (room - text->size <= more) {
-        if (room > (size_t)-1 / 2) { text->failed = true; return false; }
+        if (room > (size_t)-1 / 2) {
+            text->failed = true;
+            return false;
+        }
         room *= 2;
     }
     char *data = realloc(text->data, room);
-    if (data == NULL) { text->failed = true; return false; }
+    if (data == NULL) {
+        text->failed = true;
+        return false;
+    }
     text->data = data;
     text->room = room;
     return true;
@@ -108,8 +114,10 @@ void sct_text_xml(sct_text *text, const char *raw)
         case '"': sct_text_add(text, "&quot;"); break;
         case '\'': sct_text_add(text, "&#39;"); break;
         default:
-            if ((unsigned char)*p < 0x20 && *p != '\t' && *p != '\n') sct_text_add(text, "\xEF\xBF\xBD");
-            else sct_text_bytes(text, p, 1);
+            if ((unsigned char)*p < 0x20 && *p != '\t' && *p != '\n')
+                sct_text_add(text, "\xEF\xBF\xBD");
+            else
+                sct_text_bytes(text, p, 1);
         }
     }
 }

@@ -19,9 +19,10 @@ const cli_command CLI_CHECK = {
     .purpose = "Checks the sizes that MODEL gives against every limit in every combination.",
     .examples = "  scantling check build/demo/model.json\n"
                 "  scantling check --json build/demo/model.json | jq .utilisation",
-    .more = "MODEL is a model file, or - for standard input. Exit code: 0 every limit kept, 1 some limit not kept,\n"
-            "2 command line, 3 input, 4 cannot be analysed, 6 output, 7 out of memory or too large, 70 internal check.\n"
-            "With -o: result.json, schedule.csv, drawing.svg.",
+    .more =
+        "MODEL is a model file, or - for standard input. Exit code: 0 every limit kept, 1 some limit not kept,\n"
+        "2 command line, 3 input, 4 cannot be analysed, 6 output, 7 out of memory or too large, 70 internal check.\n"
+        "With -o: result.json, schedule.csv, drawing.svg.",
     .n_options = CLI_N_OUTPUT_OPTIONS,
     .options = {CLI_OUTPUT_OPTIONS},
     .run = run_check,

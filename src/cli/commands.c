@@ -27,8 +27,10 @@ const cli_command *cli_find_command(const char *name)
     names[N_COMMANDS] = "--help";
     names[N_COMMANDS + 1] = "--version";
     const char *what = name[0] == '-' ? "option" : "command", *near = sct_nearest(names, N_COMMANDS + 2, name);
-    if (near != NULL) cli_say("error", "no %s \"%.200s\"; did you mean \"%s\"?", what, name, near);
-    else cli_say("error", "no %s \"%.200s\"; scantling --help lists what there is", what, name);
+    if (near != NULL)
+        cli_say("error", "no %s \"%.200s\"; did you mean \"%s\"?", what, name, near);
+    else
+        cli_say("error", "no %s \"%.200s\"; scantling --help lists what there is", what, name);
     return NULL;
 }
 

@@ -19,6 +19,7 @@ void cli_overview(FILE *out);
 
 extern const char *const CLI_WHEN[]; /* auto, always, never */
 
+/* clang-format off */
 #define CLI_COLOR_OPTION {0, "color", "WHEN", "colour the summary and the messages", CLI_WHEN}
 
 /* Options that size and check share. */
@@ -30,5 +31,6 @@ extern const char *const CLI_WHEN[]; /* auto, always, never */
     CLI_COLOR_OPTION,                                                                                                  \
     {0, "draw-loads", "COMBINATION", "show the loads of a combination in drawing.svg", NULL},                          \
     {0, "draw-deflected", "COMBINATION", "show the deflected shape under a combination in drawing.svg", NULL}
+/* clang-format on */
 enum { CLI_N_OUTPUT_OPTIONS = 7 };
 #endif

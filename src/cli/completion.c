@@ -60,8 +60,10 @@ static void put_bash(void)
     printf("# bash completion of scantling %s; made by: scantling completion bash\n"
            "# shellcheck shell=bash\n"
            "_scantling()\n{\n"
-           "    local word=${COMP_WORDS[COMP_CWORD]} before=${COMP_WORDS[COMP_CWORD - 1]} command=${COMP_WORDS[1]} options\n"
-           "    if [ \"$word\" = \"=\" ]; then word=; elif [ \"$before\" = \"=\" ]; then before=${COMP_WORDS[COMP_CWORD - 2]}; fi\n"
+           "    local word=${COMP_WORDS[COMP_CWORD]} before=${COMP_WORDS[COMP_CWORD - 1]} command=${COMP_WORDS[1]} "
+           "options\n"
+           "    if [ \"$word\" = \"=\" ]; then word=; elif [ \"$before\" = \"=\" ]; then "
+           "before=${COMP_WORDS[COMP_CWORD - 2]}; fi\n"
            "    if [ \"$COMP_CWORD\" = 1 ]; then\n"
            "        mapfile -t COMPREPLY < <(compgen -W \"%s --help --version\" -- \"$word\")\n"
            "        return\n"
@@ -93,8 +95,10 @@ static int run_completion(const cli_command *command, const char *const given[],
         return EXIT_KEPT;
     }
     const char *near = sct_nearest(SHELLS, 1, operands[0]);
-    if (near != NULL) cli_say("error", "no completion for \"%.200s\"; did you mean \"%s\"?", operands[0], near);
-    else cli_say("error", "no completion for \"%.200s\"; there is one for bash", operands[0]);
+    if (near != NULL)
+        cli_say("error", "no completion for \"%.200s\"; did you mean \"%s\"?", operands[0], near);
+    else
+        cli_say("error", "no completion for \"%.200s\"; there is one for bash", operands[0]);
     return EXIT_USAGE;
 }
 

@@ -18,8 +18,11 @@ void cli_colour_messages(int when)
 /* One line on standard error. The word of the severity is the only part with colour, and says the same without. */
 static void put_issue(const sct_issue *issue)
 {
-    static const struct { const char *word, *escape; } LOOK[] = {
-        [SCT_NOTE] = {": note: ", "\033[1m"}, [SCT_WARNING] = {": warning: ", "\033[1;33m"}, [SCT_ERROR] = {": error: ", "\033[1;31m"}};
+    static const struct {
+        const char *word, *escape;
+    } LOOK[] = {[SCT_NOTE] = {": note: ", "\033[1m"},
+                [SCT_WARNING] = {": warning: ", "\033[1;33m"},
+                [SCT_ERROR] = {": error: ", "\033[1;31m"}};
     char *line = sct_issue_line(issue);
     if (line == NULL) {
         fprintf(stderr, "%s\n", issue->message);
@@ -28,7 +31,8 @@ static void put_issue(const sct_issue *issue)
     const char *word = LOOK[issue->severity].word, *at = strstr(line, word);
     if (at != NULL && cli_colours(STDERR_FILENO, colour_when)) {
         const int before = (int)(at - line) + 2, size = (int)strlen(word) - 3;
-        fprintf(stderr, "%.*s%s%.*s\033[0m%s\n", before, line, LOOK[issue->severity].escape, size, at + 2, at + 2 + size);
+        fprintf(stderr, "%.*s%s%.*s\033[0m%s\n", before, line, LOOK[issue->severity].escape, size, at + 2,
+                at + 2 + size);
     } else {
         fprintf(stderr, "%s\n", line);
     }
@@ -42,8 +46,11 @@ void cli_say(const char *severity, const char *format, ...)
     va_start(args, format);
     vsnprintf(message, sizeof message, format, args);
     va_end(args);
-    const sct_issue issue = {.severity = severity[0] == 'e' ? SCT_ERROR : severity[0] == 'w' ? SCT_WARNING : SCT_NOTE,
-                             .file = "scantling", .message = message};
+    const sct_issue issue = {.severity = severity[0] == 'e'   ? SCT_ERROR
+                                         : severity[0] == 'w' ? SCT_WARNING
+                                                              : SCT_NOTE,
+                             .file = "scantling",
+                             .message = message};
     put_issue(&issue);
 }
 

@@ -55,9 +55,12 @@ static int unknown_option(const cli_command *command, const char *word)
     }
     if (n_alike > 1) return ambiguous_option(command, name);
     const char *near = sct_nearest(names, command->n_options + 1, name);
-    if (near != NULL && strcmp(near, name) == 0) cli_say("error", "option --%s takes no value", name);
-    else if (near != NULL) cli_say("error", "no option %s; did you mean --%s?", word, near);
-    else cli_say("error", "no option %s", word);
+    if (near != NULL && strcmp(near, name) == 0)
+        cli_say("error", "option --%s takes no value", name);
+    else if (near != NULL)
+        cli_say("error", "no option %s; did you mean --%s?", word, near);
+    else
+        cli_say("error", "no option %s", word);
     return usage_fault(command);
 }
 
@@ -110,7 +113,8 @@ int cli_parse(const cli_command *command, int argc, char **argv, const char *giv
     if (argc - optind != command->n_operands && !(argc == optind && command->is_operand_optional)) {
         if (argc - optind > command->n_operands)
             cli_say("error", "unexpected argument \"%s\"", argv[optind + command->n_operands]);
-        else cli_say("error", "%s is missing", command->operands);
+        else
+            cli_say("error", "%s is missing", command->operands);
         return usage_fault(command);
     }
     for (int i = optind; i < argc; i++)
@@ -187,7 +191,8 @@ bool cli_word(const cli_command *command, const char *const given[], const char 
     static const char *const NONE[] = {NULL};
     const char *const *words = NONE;
     for (int i = 0; i < command->n_options; i++)
-        if (strcmp(command->options[i].name, name) == 0 && command->options[i].words != NULL) words = command->options[i].words;
+        if (strcmp(command->options[i].name, name) == 0 && command->options[i].words != NULL)
+            words = command->options[i].words;
     char list[120] = "";
     int n = 0;
     for (; words[n] != NULL; n++) {
@@ -199,7 +204,9 @@ bool cli_word(const cli_command *command, const char *const given[], const char 
         strncat(list, words[n], sizeof list - strlen(list) - 1);
     }
     const char *near = sct_nearest(words, n, text);
-    if (near != NULL) cli_say("error", "--%s: found \"%s\"; did you mean \"%s\"?", name, text, near);
-    else cli_say("error", "--%s: found \"%s\"; expected one of %s", name, text, list);
+    if (near != NULL)
+        cli_say("error", "--%s: found \"%s\"; did you mean \"%s\"?", name, text, near);
+    else
+        cli_say("error", "--%s: found \"%s\"; expected one of %s", name, text, list);
     return false;
 }

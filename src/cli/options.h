@@ -6,7 +6,7 @@
 
 /* One option. value: the name of its argument in the help; NULL for a switch. */
 typedef struct cli_option {
-    char letter;       /* 0: long form only */
+    char letter; /* 0: long form only */
     const char *name;
     const char *value;
     const char *help;
@@ -17,19 +17,19 @@ enum { CLI_MOST_OPTIONS = 24 };
 
 typedef struct cli_command {
     const char *name;
-    const char *operands;      /* "MODEL" */
-    int n_operands;            /* 1 */
-    bool is_operand_optional;  /* operands[0] is NULL where it was not given */
-    const char *purpose;       /* one line */
-    const char *examples;      /* lines that run as they stand, first in the help */
-    const char *more;          /* further text at the end of the help, or NULL */
+    const char *operands;     /* "MODEL" */
+    int n_operands;           /* 1 */
+    bool is_operand_optional; /* operands[0] is NULL where it was not given */
+    const char *purpose;      /* one line */
+    const char *examples;     /* lines that run as they stand, first in the help */
+    const char *more;         /* further text at the end of the help, or NULL */
     int n_options;
     cli_option options[CLI_MOST_OPTIONS];
     int (*run)(const struct cli_command *command, const char *const given[], char *const operands[]);
 } cli_command;
 
-/* Options of one command line: given[i] is the argument of options[i], "" for a switch that is set, NULL when it was not
- * given. Returns 0, or the exit code after a message. */
+/* Options of one command line: given[i] is the argument of options[i], "" for a switch that is set, NULL when it was
+ * not given. Returns 0, or the exit code after a message. */
 int cli_parse(const cli_command *command, int argc, char **argv, const char *given[CLI_MOST_OPTIONS],
               char *const **operands, bool *help);
 
@@ -39,7 +39,8 @@ void cli_help(const cli_command *command);
 const char *cli_given(const cli_command *command, const char *const given[], const char *name);
 
 /** Whole number or number of an option; false after a message when the text is not one or is out of range. */
-bool cli_whole(const cli_command *command, const char *const given[], const char *name, int least, int most, int *value);
+bool cli_whole(const cli_command *command, const char *const given[], const char *name, int least, int most,
+               int *value);
 bool cli_number(const cli_command *command, const char *const given[], const char *name, double *value);
 
 /** One of the words of an option; the index in *value. */

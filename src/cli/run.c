@@ -14,7 +14,10 @@
 #include "cli/messages.h"
 
 /* The files of a folder of outputs; the model is the last. */
-static const struct { const char *name; sct_format format; } OUTPUTS[] = {
+static const struct {
+    const char *name;
+    sct_format format;
+} OUTPUTS[] = {
     {"result.json", SCT_RESULT_JSON},
     {"schedule.csv", SCT_SCHEDULE_CSV},
     {"drawing.svg", SCT_DRAWING_SVG},
@@ -129,8 +132,10 @@ static int find_drawn(cli_run *run)
             return 0;
         }
     const char *near = sct_nearest(r->combinations, r->n_combinations, run->drawn);
-    if (near != NULL) cli_say("error", "no combination \"%s\"; did you mean \"%s\"?", run->drawn, near);
-    else cli_say("error", "no combination \"%s\" in the model", run->drawn);
+    if (near != NULL)
+        cli_say("error", "no combination \"%s\"; did you mean \"%s\"?", run->drawn, near);
+    else
+        cli_say("error", "no combination \"%s\" in the model", run->drawn);
     return EXIT_USAGE;
 }
 
@@ -181,8 +186,10 @@ static int write_folder(cli_run *run, bool with_model)
         if (OUTPUTS[n].format == SCT_MODEL_JSON && !with_model) break;
         size_t size = 0;
         paths[n] = path_in(run->folder, OUTPUTS[n].name);
-        if (paths[n] == NULL) code = EXIT_RESOURCES;
-        else code = cli_exit_of_status(sct_write(run->result, OUTPUTS[n].format, &run->write, &texts[n], &size));
+        if (paths[n] == NULL)
+            code = EXIT_RESOURCES;
+        else
+            code = cli_exit_of_status(sct_write(run->result, OUTPUTS[n].format, &run->write, &texts[n], &size));
         files[n] = (sct_file){paths[n], texts[n], size};
     }
     if (code == 0) code = cli_exit_of_status(save_undisturbed(run, files, n));

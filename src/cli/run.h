@@ -10,11 +10,11 @@ typedef struct cli_run {
     const cli_command *command;
     const char *const *given;
     bool quiet, json, force;
-    int colour;              /* 0 auto, 1 always, 2 never */
-    const char *folder;      /* of the outputs; NULL: none */
+    int colour;         /* 0 auto, 1 always, 2 never */
+    const char *folder; /* of the outputs; NULL: none */
     bool made_folder;
     sct_write_options write;
-    const char *drawn;       /* combination to draw loads or displacements of; NULL: none */
+    const char *drawn; /* combination to draw loads or displacements of; NULL: none */
     sct_issues *issues;
     sct_model *model;
     sct_result *result;

@@ -59,14 +59,17 @@ static void tell_person(const sct_progress *p, double elapsed)
 
 static void tell_number(const char *name, double value)
 {
-    if (isfinite(value)) fprintf(stderr, ",\"%s\":%.6g", name, value);
-    else fprintf(stderr, ",\"%s\":null", name);
+    if (isfinite(value))
+        fprintf(stderr, ",\"%s\":%.6g", name, value);
+    else
+        fprintf(stderr, ",\"%s\":null", name);
 }
 
 /* One object a line. */
 static void tell_program(const sct_progress *p, double elapsed)
 {
-    fprintf(stderr, "{\"stage\":\"%s\",\"start\":%d,\"starts\":%d,\"analyses\":%d", p->stage, p->start, p->n_starts, p->analyses);
+    fprintf(stderr, "{\"stage\":\"%s\",\"start\":%d,\"starts\":%d,\"analyses\":%d", p->stage, p->start, p->n_starts,
+            p->analyses);
     tell_number("mass_kg", p->mass);
     tell_number("violation", p->violation);
     tell_number("best_kg", p->best);
@@ -98,8 +101,7 @@ static int read_settings(const cli_command *command, const char *const given[], 
     if (!cli_whole(command, given, "starts", 1, 1000, &settings->starts) ||
         !cli_whole(command, given, "seed", 0, 1000000000, &seed) ||
         !cli_whole(command, given, "iterations", 0, 100000, &settings->iterations) ||
-        !cli_number(command, given, "tolerance", &settings->tolerance) ||
-        !cli_word(command, given, "progress", &kind))
+        !cli_number(command, given, "tolerance", &settings->tolerance) || !cli_word(command, given, "progress", &kind))
         return EXIT_USAGE;
     settings->seed = (unsigned)seed;
     settings->plain = cli_given(command, given, "plain") != NULL;

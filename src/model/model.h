@@ -31,9 +31,9 @@ typedef struct sct_joint {
 
 typedef struct sct_section {
     const char *name;
-    double A;          /* [m2] > 0 */
-    double I[2];       /* [m4] in plane, out of plane; > 0 */
-    double depth;      /* [m] for drawing; 0: not given */
+    double A;     /* [m2] > 0 */
+    double I[2];  /* [m4] in plane, out of plane; > 0 */
+    double depth; /* [m] for drawing; 0: not given */
 } sct_section;
 
 /* A family of sections, lightest first (ties in the order given). */
@@ -52,9 +52,9 @@ typedef enum sct_sizing_kind {
 } sct_sizing_kind;
 
 typedef enum sct_buckling {
-    SCT_BUCKLING_NONE,          /* said in so many words: "none"; warned about */
-    SCT_BUCKLING_EULER,         /* pi^2 E / lambda^2 */
-    SCT_BUCKLING_EULER_JOHNSON  /* Euler, and Johnson's parabola above half the yield strength */
+    SCT_BUCKLING_NONE,         /* said in so many words: "none"; warned about */
+    SCT_BUCKLING_EULER,        /* pi^2 E / lambda^2 */
+    SCT_BUCKLING_EULER_JOHNSON /* Euler, and Johnson's parabola above half the yield strength */
 } sct_buckling;
 
 typedef struct sct_group {
@@ -62,17 +62,17 @@ typedef struct sct_group {
     sct_where where;
     int material;
     sct_sizing_kind kind;
-    double A_min, A_max;  /* [m2] free area: 0 < A_min <= A_max */
-    double A_start;       /* [m2] free area: first start; NAN: none given */
-    double A_held;        /* [m2] held area */
-    double c[2];          /* held or free area: I = c A^2 about each axis; NAN: not stated */
-    int family;           /* ladder, held section; else -1 */
+    double A_min, A_max; /* [m2] free area: 0 < A_min <= A_max */
+    double A_start;      /* [m2] free area: first start; NAN: none given */
+    double A_held;       /* [m2] held area */
+    double c[2];         /* held or free area: I = c A^2 about each axis; NAN: not stated */
+    int family;          /* ladder, held section; else -1 */
     int n_ladder;
-    int *ladder;          /* ladder: indices into the family's sections, lightest first */
-    int held;             /* held section: index into the family's sections; else -1 */
-    double allowable[2];  /* [Pa] tension, compression: the group's own or its material's; NAN: not given */
+    int *ladder;         /* ladder: indices into the family's sections, lightest first */
+    int held;            /* held section: index into the family's sections; else -1 */
+    double allowable[2]; /* [Pa] tension, compression: the group's own or its material's; NAN: not given */
     sct_buckling buckling;
-    double safety;        /* on the column strength, >= 1 */
+    double safety;                  /* on the column strength, >= 1 */
     double slenderness_any;         /* Lcr/i at most, every member; INFINITY: no limit */
     double slenderness_compression; /* members in compression in some combination; INFINITY: no limit */
 } sct_group;
@@ -89,16 +89,28 @@ typedef struct sct_member {
     double length[2];
 } sct_member;
 
-typedef struct sct_joint_load { int joint; double F[3]; sct_where where; } sct_joint_load;        /* [N] */
-typedef struct sct_settlement { int joint; double d[3]; sct_where where; } sct_settlement;        /* [m] */
-typedef struct sct_bar_action { int member; double dT, lack; sct_where where; } sct_bar_action;
+typedef struct sct_joint_load {
+    int joint;
+    double F[3];
+    sct_where where;
+} sct_joint_load; /* [N] */
+typedef struct sct_settlement {
+    int joint;
+    double d[3];
+    sct_where where;
+} sct_settlement; /* [m] */
+typedef struct sct_bar_action {
+    int member;
+    double dT, lack;
+    sct_where where;
+} sct_bar_action;
 /* dT [K] warmer than when built; lack [m] bar made longer than the distance of its joints (free elongation) */
 
 typedef struct sct_case {
     const char *name;
     sct_where where;
-    const char *action;  /* "permanent", "imposed", "snow", "wind", "temperature", "other" */
-    double self_weight;  /* times the members' own weight, downwards; 0: without */
+    const char *action; /* "permanent", "imposed", "snow", "wind", "temperature", "other" */
+    double self_weight; /* times the members' own weight, downwards; 0: without */
     int n_loads, n_settlements, n_bar_actions;
     sct_joint_load *loads;
     sct_settlement *settlements;
@@ -117,21 +129,21 @@ typedef struct sct_combination {
 typedef struct sct_deflection_limit {
     sct_where where;
     int n_joints, *joints;
-    double direction[3];     /* unit vector; |displacement along it| is limited */
-    double at_most;          /* [m] > 0 */
-    const char *label;       /* as written: "L/300", "20 mm", "20" */
+    double direction[3];         /* unit vector; |displacement along it| is limited */
+    double at_most;              /* [m] > 0 */
+    const char *label;           /* as written: "L/300", "20 mm", "20" */
     const char *direction_label; /* "x", "y", "z" or "along (0.6, 0.8)" */
-    bool *in;                /* one per combination: does the limit hold in it? */
+    bool *in;                    /* one per combination: does the limit hold in it? */
 } sct_deflection_limit;
 
 typedef struct sct_model {
-    sct_arena *arena;        /* owns everything below */
-    const char *file;        /* for messages */
-    const char *source;      /* the bytes read, zero-terminated, for rewriting */
+    sct_arena *arena;   /* owns everything below */
+    const char *file;   /* for messages */
+    const char *source; /* the bytes read, zero-terminated, for rewriting */
     size_t source_size;
-    const char *title;       /* "" when none */
-    int dimensions;          /* 2 or 3 */
-    bool us_customary;       /* the file's length unit is in or ft: writers follow */
+    const char *title; /* "" when none */
+    int dimensions;    /* 2 or 3 */
+    bool us_customary; /* the file's length unit is in or ft: writers follow */
     int n_materials, n_joints, n_members, n_groups, n_cases, n_combinations, n_deflections, n_families;
     sct_material *materials;
     sct_joint *joints;
@@ -140,6 +152,6 @@ typedef struct sct_model {
     sct_case *cases;
     sct_combination *combinations;
     sct_deflection_limit *deflections;
-    sct_family *families;    /* the shipped ones that the model names, and its own */
+    sct_family *families; /* the shipped ones that the model names, and its own */
 } sct_model;
 #endif

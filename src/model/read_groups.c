@@ -211,16 +211,16 @@ enum {
     N_KEYS
 };
 static const sct_key GROUP_KEYS[N_KEYS] = {{"material", "the name of a material"},
-                                     {"area", NULL},
-                                     {"family", NULL},
-                                     {"sections", NULL},
-                                     {"section", NULL},
-                                     {"second_moment", NULL},
-                                     {"allowable", NULL},
-                                     {"buckling", NULL},
-                                     {"slenderness", NULL},
-                                     {"restraint", NULL},
-                                     {"length_factor", NULL}};
+                                           {"area", NULL},
+                                           {"family", NULL},
+                                           {"sections", NULL},
+                                           {"section", NULL},
+                                           {"second_moment", NULL},
+                                           {"allowable", NULL},
+                                           {"buckling", NULL},
+                                           {"slenderness", NULL},
+                                           {"restraint", NULL},
+                                           {"length_factor", NULL}};
 
 /* An area that was read, as the file says it. */
 static sct_shown said(const sct_reader *r, const sct_node *node)

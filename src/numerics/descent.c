@@ -30,8 +30,8 @@ struct sct_descent {
 
     sct_reduced_qp *qp;
     signed char *side; /* n + 1: bounds that the last QP ended at, where they are guessed */
-    double *block; /* owns all doubles below but `rows` */
-    double *rows;  /* gradients of the constraints in W, `stride` apart */
+    double *block;     /* owns all doubles below but `rows` */
+    double *rows;      /* gradients of the constraints in W, `stride` apart */
     int stride, n_W;
     int *W, *curved, *best; /* the potential set, ascending; scratch for curvature and for clusters */
     bool *in_W, *ever;      /* of every constraint; ever: had a positive multiplier */

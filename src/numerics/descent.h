@@ -56,22 +56,22 @@ typedef struct sct_descent_step {
 #define SCT_DESCENT_MEMORY 32
 
 typedef struct sct_descent_settings {
-    int    max_iterations;  /* default 100, >= 0; 0: x0 is only evaluated */
-    double tol_kkt;         /* default 1e-6 */
-    double tol_violation;   /* default 1e-6 */
-    double eps;             /* potential set g >= -eps; default 0.6 */
-    double move;            /* largest step of each x_i; INFINITY (default): no limit. Shrinks and grows between steps */
-    double gamma;           /* Armijo constant, default 0.01 */
-    int    memory;          /* Phi is compared with the worst of the last `memory` points; 1: monotone; default 5,
-                             * at most SCT_DESCENT_MEMORY */
-    int    passes;          /* QPs per point when `objective` is given; default 2 */
-    double floor;           /* smallest eigenvalue of the Lagrangian Hessian relative to the metric (absolute where there
-                             * is no `objective`: lower it for flat minima), default 0.05 */
-    int    per_cluster;     /* default 4 */
-    bool   plain;           /* the published form: identity metric (no curvature, no objective model, no updates), Phi
-                             * falls monotonically by gamma t |d|^2; default false */
+    int max_iterations;   /* default 100, >= 0; 0: x0 is only evaluated */
+    double tol_kkt;       /* default 1e-6 */
+    double tol_violation; /* default 1e-6 */
+    double eps;           /* potential set g >= -eps; default 0.6 */
+    double move;          /* largest step of each x_i; INFINITY (default): no limit. Shrinks and grows between steps */
+    double gamma;         /* Armijo constant, default 0.01 */
+    int memory;           /* Phi is compared with the worst of the last `memory` points; 1: monotone; default 5,
+                           * at most SCT_DESCENT_MEMORY */
+    int passes;           /* QPs per point when `objective` is given; default 2 */
+    double floor;         /* smallest eigenvalue of the Lagrangian Hessian relative to the metric (absolute where there
+                           * is no `objective`: lower it for flat minima), default 0.05 */
+    int per_cluster;      /* default 4 */
+    bool plain;           /* the published form: identity metric (no curvature, no objective model, no updates), Phi
+                           * falls monotonically by gamma t |d|^2; default false */
     bool (*observer)(const sct_descent_step *step, void *user); /* false: stop */
-    void  *user;
+    void *user;
 } sct_descent_settings;
 
 sct_descent_settings sct_descent_defaults(void);
@@ -81,17 +81,18 @@ const char *sct_descent_settings_fault(const sct_descent_settings *settings);
 typedef struct sct_descent sct_descent; /* workspace */
 
 typedef struct sct_descent_info {
-    sct_status status;  /* SCT_OK: converged. SCT_INFEASIBLE: no feasible point near, `violation` is the least found.
-                         * SCT_NOT_CONVERGED: iteration limit or stalled. SCT_INTERRUPTED: the observer said stop.
-                         * Others: from `value` at x0 (SCT_BAD_INPUT where it is not finite), from `gradient` or
-                         * `curvature`; SCT_NO_MEMORY and SCT_INTERRUPTED from any `value`; SCT_NOT_CONVEX: the Hessian
-                         * of `objective` is not positive. */
+    sct_status status; /* SCT_OK: converged. SCT_INFEASIBLE: no feasible point near, `violation` is the least found.
+                        * SCT_NOT_CONVERGED: iteration limit or stalled. SCT_INTERRUPTED: the observer said stop.
+                        * Others: from `value` at x0 (SCT_BAD_INPUT where it is not finite), from `gradient` or
+                        * `curvature`; SCT_NO_MEMORY and SCT_INTERRUPTED from any `value`; SCT_NOT_CONVEX: the Hessian
+                        * of `objective` is not positive. */
     double f, violation, kkt; /* at the x returned; kkt NAN where it was not computed */
     int iterations, values, qp_iterations;
-    int worst;          /* the constraint of the largest violation, -1 when m = 0 */
+    int worst; /* the constraint of the largest violation, -1 when m = 0 */
 } sct_descent_info;
 
-/** [bytes] that the workspace comes to use for n variables and m constraints, `at_once` of them in the potential set. */
+/** [bytes] that the workspace comes to use for n variables and m constraints, `at_once` of them in the potential set.
+ */
 double sct_descent_bytes(double n, double m, double at_once);
 /** Workspace for problems of this size; NULL when out of memory. */
 sct_descent *sct_descent_new(const sct_nlp *nlp);

@@ -41,8 +41,8 @@ sct_status sct_factor_update(sct_factor *factor, const double values[], int *sto
  * How far the product of the factors of the latest update is from the matrix M that was factored: a proven bound of
  * || L D L' - M ||_2 (L L' where D = 1), rounding in the bound itself included.
  *
- * Row p of M is made of sums of at most t_p products, t_p the stored entries of row p of L left of the diagonal, each with
- * at most `c` roundings more for the scaling by a pivot. Then, for any order of summation,
+ * Row p of M is made of sums of at most t_p products, t_p the stored entries of row p of L left of the diagonal, each
+ * with at most `c` roundings more for the scaling by a pivot. Then, for any order of summation,
  *
  *     |L D L' - M| <= gamma(min(t_p, t_q) + c) |L| D |L'|   entry by entry (Higham, Accuracy and Stability of Numerical
  *                                                           Algorithms, 2nd ed., lemma 8.4 and theorem 10.3)

@@ -22,9 +22,9 @@ void sct_qp_free(sct_qp *qp);
 /* One problem. All arrays are borrowed. Rows are dense, row-major, `stride` doubles apart (stride >= n). */
 typedef struct sct_qp_data {
     int n, m, m_eq, stride;
-    const double *G;            /* n x n, full storage */
-    const double *a;            /* n */
-    const double *rows, *b;     /* m x n, m */
+    const double *G;             /* n x n, full storage */
+    const double *a;             /* n */
+    const double *rows, *b;      /* m x n, m */
     const double *lower, *upper; /* n each; NULL: no bounds; -INFINITY and INFINITY allowed */
 } sct_qp_data;
 

@@ -32,7 +32,7 @@ struct sct_small {
     double *x;         /* triangles and rectangles of all panels */
     double *inverse;   /* n: 1 / D */
     double *t;         /* largest rectangle: L D of the panel at work */
-    sct_lanes *b;       /* n x SCT_AT_ONCE: right-hand sides, permuted and interleaved */
+    sct_lanes *b;      /* n x SCT_AT_ONCE: right-hand sides, permuted and interleaved */
 };
 
 /* Rows of L by columns: entries below the diagonal of column j are row[start[j]] .. row[start[j + 1] - 1]. */
@@ -297,7 +297,7 @@ SCT_INLINE int factor_triangle(const int w, double *restrict D, double *restrict
 
 /* The rectangle: t = L d by substitution with the triangle, and L itself in place. */
 SCT_INLINE void factor_rectangle(const int w, int m, const double *restrict D, const double *restrict inverse,
-                             double *restrict l, double *restrict t)
+                                 double *restrict l, double *restrict t)
 {
     for (int p = 0; p < m; p++, l += w, t += w) {
         for (int c = 0; c < w; c++) {
@@ -311,7 +311,7 @@ SCT_INLINE void factor_rectangle(const int w, int m, const double *restrict D, c
 
 /* A(row[p], row[q]) -= sum_c L d(q, c) L(p, c). The targets lie in later panels: never in l. */
 SCT_INLINE void update_targets(const int w, int m, const double *restrict l, const double *restrict t,
-                           const int *restrict target, double *restrict x)
+                               const int *restrict target, double *restrict x)
 {
     for (int q = 0; q < m; q++, t += w, l += w) {
         int p = 0;
@@ -391,7 +391,7 @@ SCT_INLINE void forward_panel(const int w, const int P, const panel *p, const do
 
 /* b = L'^-1 D^-1 y for the columns of a panel. */
 SCT_INLINE void backward_panel(const int w, const int P, const panel *p, const double *restrict x,
-                           const double *restrict inverse, sct_lanes *restrict b)
+                               const double *restrict inverse, sct_lanes *restrict b)
 {
     const double *D = x + p->diagonal, *l = x + p->rectangle;
     sct_lanes *y = b + p->first * P, v[WIDEST * SCT_AT_ONCE];

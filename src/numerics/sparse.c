@@ -24,9 +24,9 @@ struct sct_sparse {
     cholmod_common common;
     cholmod_sparse *A; /* upper triangle, permuted */
     cholmod_factor *L;
-    sct_lanes *b; /* n x SCT_AT_ONCE: right-hand sides, permuted and interleaved */
-    int *order; /* order[k]: unknown of the pattern that stands k-th */
-    int *place; /* value of the pattern -> place in A */
+    sct_lanes *b;   /* n x SCT_AT_ONCE: right-hand sides, permuted and interleaved */
+    int *order;     /* order[k]: unknown of the pattern that stands k-th */
+    int *place;     /* value of the pattern -> place in A */
     double entries; /* of L */
 };
 
@@ -212,8 +212,8 @@ sct_status sct_sparse_update(sct_sparse *s, const double values[], int *stopped_
     return SCT_OK;
 }
 
-/* Row by row: l(k, i) = (a(k, i) - sum of products) / l(i, i), l(k, k) = sqrt(a(k, k) - sum of squares): two roundings more
- * than the products by the formula, four if a pivot is inverted first. */
+/* Row by row: l(k, i) = (a(k, i) - sum of products) / l(i, i), l(k, k) = sqrt(a(k, k) - sum of squares): two roundings
+ * more than the products by the formula, four if a pivot is inverted first. */
 double sct_sparse_rounding(sct_sparse *s)
 {
     enum { BY_PIVOT = 4 };
@@ -233,8 +233,8 @@ double sct_sparse_rounding(sct_sparse *s)
     return most * (1.0 + sct_gamma(3.0 * (double)n + 8.0));
 }
 
-/* Column j of L: diagonal first, rows ascending, nz[j] entries. Neighbouring columns with the same rows below them, as the
- * unknowns of a joint have, are swept together. */
+/* Column j of L: diagonal first, rows ascending, nz[j] entries. Neighbouring columns with the same rows below them, as
+ * the unknowns of a joint have, are swept together. */
 typedef struct columns {
     int n;
     const int *start, *count, *row;

@@ -52,11 +52,16 @@ enum { WIDTH = 26 }; /* of the first column */
 static void line(sheet *s, const char *words, const double numbers[])
 {
     for (int k = 0; *words != '\0'; words++) {
-        if (*words == '#') number(s->out, numbers[k++], 5);
-        else if (*words == '$') sct_text_add(s->out, s->in.stress_name);
-        else if (*words == '@') sct_text_add(s->out, s->in.length_name);
-        else if (*words == '!') sct_text_add(s->out, s->in.force_name);
-        else sct_text_bytes(s->out, words, 1);
+        if (*words == '#')
+            number(s->out, numbers[k++], 5);
+        else if (*words == '$')
+            sct_text_add(s->out, s->in.stress_name);
+        else if (*words == '@')
+            sct_text_add(s->out, s->in.length_name);
+        else if (*words == '!')
+            sct_text_add(s->out, s->in.force_name);
+        else
+            sct_text_bytes(s->out, words, 1);
     }
 }
 
@@ -90,7 +95,8 @@ static void head(sheet *s)
 
 static void given(sheet *s, int index)
 {
-    static const char *const SOURCE[] = {"distance of the joints, default", "given factor times the distance of the joints",
+    static const char *const SOURCE[] = {"distance of the joints, default",
+                                         "given factor times the distance of the joints",
                                          "given distance of restraints"};
     const sct_member *member = &s->model->members[index];
     const hand_units *u = &s->in;
@@ -191,8 +197,14 @@ sct_status sct_explain(const sct_result *result, const char *member, char **text
     sct_text out = {0};
     const sct_member_result *m = &result->members[index];
     const sct_group_result *g = &result->groups[m->group];
-    sheet s = {&out, result, result->model, m, g, result->us_customary ? US : METRIC,
-               sct_bar_rule_of(result->model, index, m->L), {sqrt(g->I[0] / g->A), sqrt(g->I[1] / g->A)}};
+    sheet s = {&out,
+               result,
+               result->model,
+               m,
+               g,
+               result->us_customary ? US : METRIC,
+               sct_bar_rule_of(result->model, index, m->L),
+               {sqrt(g->I[0] / g->A), sqrt(g->I[1] / g->A)}};
     head(&s);
     given(&s, index);
     strengths(&s);

@@ -129,7 +129,12 @@ sct_status sct_explain_json(const sct_result *result, const char *member, char *
     if (index < 0) return SCT_BAD_INPUT;
     const sct_member_result *m = &result->members[index];
     const sct_group_result *g = &result->groups[m->group];
-    const subject s = {result, result->model, index, m, g, sct_bar_rule_of(result->model, index, m->L),
+    const subject s = {result,
+                       result->model,
+                       index,
+                       m,
+                       g,
+                       sct_bar_rule_of(result->model, index, m->L),
                        {sqrt(g->I[0] / g->A), sqrt(g->I[1] / g->A)}};
     sct_text out = {0};
     sct_json w = {&out, 0, true};

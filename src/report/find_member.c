@@ -15,8 +15,10 @@ int sct_find_member(const sct_result *result, const char *member, sct_issues *is
     for (int k = 0; names != NULL && k < result->n_members; k++) sct_names_put(names, result->members[k].name, k);
     const char *near = names != NULL ? sct_names_nearest(names, member) : NULL;
     const sct_where where = {.file = result->model->file};
-    if (near != NULL) sct_issue_add(issues, SCT_ERROR, where, "no member \"%.64s\"; did you mean \"%s\"?", member, near);
-    else sct_issue_add(issues, SCT_ERROR, where, "no member \"%.64s\"", member);
+    if (near != NULL)
+        sct_issue_add(issues, SCT_ERROR, where, "no member \"%.64s\"; did you mean \"%s\"?", member, near);
+    else
+        sct_issue_add(issues, SCT_ERROR, where, "no member \"%.64s\"", member);
     sct_names_free(names);
     return -1;
 }

@@ -121,8 +121,8 @@ sct_status sct_scene_open(sct_scene *scene, const sct_result *result, const sct_
     scene->sticks = sct_arena_array(scene->arena, n_members, sizeof *scene->sticks);
     scene->lengths = sct_arena_array(scene->arena, n_members, sizeof *scene->lengths);
     double *largest_load = sct_arena_array(scene->arena, (size_t)result->n_combinations, sizeof *largest_load);
-    if (largest_load == NULL || scene->lengths == NULL || scene->at == NULL || scene->away == NULL || scene->is_named == NULL ||
-        scene->near_start == NULL || scene->near == NULL || scene->sticks == NULL)
+    if (largest_load == NULL || scene->lengths == NULL || scene->at == NULL || scene->away == NULL ||
+        scene->is_named == NULL || scene->near_start == NULL || scene->near == NULL || scene->sticks == NULL)
         return SCT_NO_MEMORY;
     if (scene->options.combination < 0 || scene->options.combination >= result->n_combinations)
         scene->options.combination = worst_for_deflection(result);

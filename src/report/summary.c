@@ -445,10 +445,11 @@ static void add_accuracy(const page *p)
     if (isnan(a->bound)) {
         sct_text_format(&line, "accuracy not certified; estimate %.0e of displacements and forces.", a->error);
     } else {
-        sct_text_format(&line,
-                        "displacements and forces are good to about %.0e, proven to %.0e of each (of 1/1000 of the largest "
-                        "where they are smaller).",
-                        a->error, a->bound);
+        sct_text_format(
+            &line,
+            "displacements and forces are good to about %.0e, proven to %.0e of each (of 1/1000 of the largest "
+            "where they are smaller).",
+            a->error, a->bound);
     }
     if (line.failed) p->out->failed = true;
     sct_text_add(p->out, "\n");

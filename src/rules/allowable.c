@@ -72,10 +72,12 @@ int sct_bar_checks(const sct_bar_rule *rule, double N, double A, const double i[
 
 sct_bar_check sct_bar_slenderness(const sct_bar_rule *rule, const double i[2], bool compressed, int *axis)
 {
-    const double limit = compressed ? fmin(rule->slenderness_any, rule->slenderness_compression) : rule->slenderness_any;
+    const double limit =
+        compressed ? fmin(rule->slenderness_any, rule->slenderness_compression) : rule->slenderness_any;
     const double lambda[2] = {rule->Lcr[0] / i[0], rule->Lcr[1] / i[1]};
     const int worse = lambda[1] > lambda[0];
     if (axis != NULL) *axis = worse;
     if (!isfinite(limit) || !(lambda[worse] > 0.0)) return (sct_bar_check){.kind = SCT_CHECK_NONE};
-    return (sct_bar_check){SCT_CHECK_SLENDERNESS, lambda[worse], limit, lambda[worse], NAN, false, lambda[worse] / limit};
+    return (sct_bar_check){SCT_CHECK_SLENDERNESS, lambda[worse], limit, lambda[worse], NAN, false,
+                           lambda[worse] / limit};
 }

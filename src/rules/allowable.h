@@ -19,24 +19,25 @@
 
 /* What the rules need to know of one member. */
 typedef struct sct_bar_rule {
-    double E;                 /* [Pa] */
-    double yield;             /* [Pa]; needed by Johnson */
-    double f_t, f_c;          /* [Pa] allowable stresses */
+    double E;        /* [Pa] */
+    double yield;    /* [Pa]; needed by Johnson */
+    double f_t, f_c; /* [Pa] allowable stresses */
     sct_buckling buckling;
-    double safety;            /* n */
-    double Lcr[2];            /* [m] about both axes */
+    double safety;                                   /* n */
+    double Lcr[2];                                   /* [m] about both axes */
     double slenderness_any, slenderness_compression; /* INFINITY: no limit */
 } sct_bar_rule;
 
-/** The rule data of a member whose joints are L [m] apart: its group's and material's numbers, its effective lengths. */
+/** The rule data of a member whose joints are L [m] apart: its group's and material's numbers, its effective lengths.
+ */
 sct_bar_rule sct_bar_rule_of(const sct_model *model, int member, double L);
 
 /* The critical stress and its first and second derivative in logarithms: s = ln sigma_cr as a function of
  * l = ln lambda. */
 typedef struct sct_column {
-    double sigma;     /* [Pa] sigma_cr */
-    double s1, s2;    /* ds/dl, d2s/dl2 */
-    bool johnson;     /* the parabola holds */
+    double sigma;  /* [Pa] sigma_cr */
+    double s1, s2; /* ds/dl, d2s/dl2 */
+    bool johnson;  /* the parabola holds */
 } sct_column;
 
 /** Critical stress at slenderness lambda > 0; sigma = INFINITY with SCT_BUCKLING_NONE. */
@@ -45,10 +46,10 @@ sct_column sct_column_strength(sct_buckling buckling, double E, double yield, do
 /* One check with everything put in. */
 typedef struct sct_bar_check {
     sct_check_kind kind;
-    double value, limit; /* stresses [Pa], or slenderness */
+    double value, limit;     /* stresses [Pa], or slenderness */
     double lambda, sigma_cr; /* column checks; else NAN */
     bool johnson;
-    double utilisation;  /* value / limit */
+    double utilisation; /* value / limit */
 } sct_bar_check;
 
 enum { SCT_MOST_BAR_CHECKS = 4 };

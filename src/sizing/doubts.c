@@ -31,11 +31,11 @@ void sct_doubt_movement(const sct_result *r, sct_issues *issues)
             combination = c;
         }
     if (most > LARGE * extent)
-        sct_issue_add(issues, SCT_WARNING, r->model->joints[joint].where,
-                      "joint \"%s\" moves %.3g m in \"%s\", %.2g times the smallest extent of the structure; linear theory "
-                      "holds for small movements only",
-                      sct_show(r->joints[joint].name).text, most, sct_show(r->combinations[combination]).text,
-                      most / extent);
+        sct_issue_add(
+            issues, SCT_WARNING, r->model->joints[joint].where,
+            "joint \"%s\" moves %.3g m in \"%s\", %.2g times the smallest extent of the structure; linear theory "
+            "holds for small movements only",
+            sct_show(r->joints[joint].name).text, most, sct_show(r->combinations[combination]).text, most / extent);
 }
 
 /* Displacements are absolute: a settling support moves the joints with it, and can hide a sag or fill a limit alone. */
@@ -45,10 +45,11 @@ void sct_doubt_settlements(const sct_model *m, sct_issues *issues)
         for (int c = 0; c < m->n_combinations; c++)
             for (int k = 0; m->deflections[limit].in[c] && k < m->n_cases; k++) {
                 if (m->combinations[c].factor[k] == 0.0 || m->cases[k].n_settlements == 0) continue;
-                sct_issue_add(issues, SCT_WARNING, m->deflections[limit].where,
-                              "this limit holds in \"%s\", where supports settle: displacements are absolute, the settlement "
-                              "is counted in; give \"in\" combinations without settlement to limit the sag alone",
-                              sct_show(m->combinations[c].name).text);
+                sct_issue_add(
+                    issues, SCT_WARNING, m->deflections[limit].where,
+                    "this limit holds in \"%s\", where supports settle: displacements are absolute, the settlement "
+                    "is counted in; give \"in\" combinations without settlement to limit the sag alone",
+                    sct_show(m->combinations[c].name).text);
                 c = m->n_combinations;
                 break;
             }
@@ -63,10 +64,11 @@ void sct_doubt_held_slenderness(const sct_duty *duty, const sct_design *design, 
         if (duty->st->var_of_group[g] >= 0) continue;
         const sct_bar_check c = sct_bar_slenderness(&duty->rules[bar], design->i[g], false, NULL);
         if (c.kind == SCT_CHECK_SLENDERNESS && !sct_keeps(c.utilisation))
-            sct_issue_add(issues, SCT_WARNING, model->groups[g].where,
-                          "the size that the group is held at has slenderness %.1f in member \"%s\", limit %.0f, whatever else "
-                          "is sized",
-                          c.value, sct_show(model->members[bar].name).text, c.limit);
+            sct_issue_add(
+                issues, SCT_WARNING, model->groups[g].where,
+                "the size that the group is held at has slenderness %.1f in member \"%s\", limit %.0f, whatever else "
+                "is sized",
+                c.value, sct_show(model->members[bar].name).text, c.limit);
     }
 }
 

@@ -12,9 +12,9 @@
 
 /* The sizes of all groups with their true properties. */
 typedef struct sct_design {
-    double *A;        /* [m2] n_groups */
-    double (*i)[2];   /* [m] radii of gyration; NAN: not stated */
-    int *section;     /* index in the group's family; -1: an area */
+    double *A;      /* [m2] n_groups */
+    double (*i)[2]; /* [m] radii of gyration; NAN: not stated */
+    int *section;   /* index in the group's family; -1: an area */
 } sct_design;
 
 /* One deflection limit at one joint in one combination. */
@@ -23,12 +23,12 @@ typedef struct sct_deflection_row {
 } sct_deflection_row;
 
 typedef struct sct_duty {
-    const sct_structure *st;   /* borrowed */
+    const sct_structure *st; /* borrowed */
     sct_solver *solver;
     sct_arena *arena;
-    sct_bar_rule *rules;       /* n_bars */
-    double *length;            /* [m] n_groups: of all members */
-    double *unit_mass;         /* [kg/m2] n_groups: mass per unit area = density * length */
+    sct_bar_rule *rules;         /* n_bars */
+    double *length;              /* [m] n_groups: of all members */
+    double *unit_mass;           /* [kg/m2] n_groups: mass per unit area = density * length */
     int n_allowable, *allowable; /* combinations in which strength is checked */
     int n_rows;
     sct_deflection_row *rows;

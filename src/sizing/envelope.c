@@ -73,8 +73,10 @@ sct_curve sct_envelope_at(const sct_envelope *e, double s)
     int lo = 0, hi = last;
     while (hi - lo > 1) {
         const int mid = (lo + hi) / 2;
-        if (e->s[mid] <= s) lo = mid;
-        else hi = mid;
+        if (e->s[mid] <= s)
+            lo = mid;
+        else
+            hi = mid;
     }
     const double w = e->s[hi] - e->s[lo], t = (s - e->s[lo]) / w, D = secant(e, lo), a = e->slope[lo], b = e->slope[hi];
     const double c2 = 3.0 * D - 2.0 * a - b, c3 = a + b - 2.0 * D; /* h = h0 + w (a t + c2 t^2 + c3 t^3) */

@@ -9,11 +9,13 @@
 #include "model/model.h"
 
 typedef struct sct_envelope {
-    int n;        /* knots; 0: no radius of gyration is stated */
+    int n;                 /* knots; 0: no radius of gyration is stated */
     double *s, *h, *slope; /* ln A ascending, ln i, dh/ds at the knots; beyond the ends h is straight */
 } sct_envelope;
 
-typedef struct sct_curve { double h, h1, h2; } sct_curve; /* value, first and second derivative */
+typedef struct sct_curve {
+    double h, h1, h2;
+} sct_curve; /* value, first and second derivative */
 
 /** I = c A^2 (c NAN: nothing stated). */
 sct_status sct_envelope_relation(sct_arena *arena, double c, sct_envelope *envelope);

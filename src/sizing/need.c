@@ -26,8 +26,10 @@ static sct_need column_need(const sct_bar_rule *rule, const sct_envelope *envelo
         phi = resistance(rule, envelope, axis, s, &s1);
         const double miss = phi.h - p;
         if (fabs(miss) <= 1e-13 * (1.0 + fabs(p))) break;
-        if (miss > 0.0) hi = s;
-        else lo = s;
+        if (miss > 0.0)
+            hi = s;
+        else
+            lo = s;
         double next = s - miss / phi.h1; /* Newton; slopes are at least 1, so this never runs away */
         if (!(next > lo && next < hi)) next = 0.5 * (lo + hi);
         if (next == s) break;

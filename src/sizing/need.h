@@ -9,9 +9,9 @@
 #include "sizing/envelope.h"
 
 typedef struct sct_need {
-    double s, s1, s2;     /* ln of the area needed, ds/dp, d2s/dp2 */
-    double sL;            /* ds/dln Lcr of the governing axis; 0 unless a column check governs */
-    sct_check_kind kind;  /* the governing check */
+    double s, s1, s2;    /* ln of the area needed, ds/dp, d2s/dp2 */
+    double sL;           /* ds/dln Lcr of the governing axis; 0 unless a column check governs */
+    sct_check_kind kind; /* the governing check */
 } sct_need;
 
 /** tension: N > 0. p = ln |N|. near: a guess for s (any finite number). */

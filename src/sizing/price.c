@@ -9,9 +9,9 @@
 #include "base/text.h"
 #include "sizing/result.h"
 
-static const double LEAST = 1e-4;         /* of the mass: smaller prices are left out */
-static const double PERCENT = 0.01;       /* the relief that is priced: beyond a few per cent a multiplier says little */
-static const double WIDEST_STEP = 0.025;  /* of a deflection limit: 1 mm (0.1 in) is priced where it is no more */
+static const double LEAST = 1e-4;        /* of the mass: smaller prices are left out */
+static const double PERCENT = 0.01;      /* the relief that is priced: beyond a few per cent a multiplier says little */
+static const double WIDEST_STEP = 0.025; /* of a deflection limit: 1 mm (0.1 in) is priced where it is no more */
 static const double POUND = 0.45359237, INCH = 0.0254; /* exact by definition (international yard and pound, 1959) */
 
 /* The multipliers of one limit, added up. */
@@ -30,15 +30,19 @@ static int by_saving(const void *a, const void *b)
     return (int)p->kind - (int)q->kind;
 }
 
-typedef struct mass_words { char text[32]; } mass_words;
+typedef struct mass_words {
+    char text[32];
+} mass_words;
 
 static mass_words shown_mass(const sct_result *r, double kg)
 {
     mass_words out;
     const double value = r->us_customary ? kg / POUND : kg;
     const char *unit = r->us_customary ? "lb" : "kg";
-    if (fabs(value) < 0.095) sct_number_format(out.text, sizeof out.text, "%.2g %s", value, unit);
-    else sct_number_format(out.text, sizeof out.text, "%.*f %s", fabs(value) < 10.0 ? 2 : 1, value, unit);
+    if (fabs(value) < 0.095)
+        sct_number_format(out.text, sizeof out.text, "%.2g %s", value, unit);
+    else
+        sct_number_format(out.text, sizeof out.text, "%.*f %s", fabs(value) < 10.0 ? 2 : 1, value, unit);
     return out;
 }
 
@@ -47,27 +51,36 @@ static void price_deflection(sct_result *r, const sct_duty *duty, int limit, con
     const sct_deflection_limit *d = &duty->st->model->deflections[limit];
     const double unit = r->us_customary ? 0.1 * INCH : 1e-3;
     const bool by_unit = unit <= WIDEST_STEP * d->at_most;
-    sct_price price = {.kind = SCT_CHECK_DEFLECTION, .group = -1, .limit = limit, .multiplier = t->sum,
+    sct_price price = {.kind = SCT_CHECK_DEFLECTION,
+                       .group = -1,
+                       .limit = limit,
+                       .multiplier = t->sum,
                        .per_unit = t->sum / d->at_most,
                        .saving = t->sum * (by_unit ? unit / d->at_most : PERCENT)};
     sct_number_format(price.words, sizeof price.words, "%s more deflection (%s in %s at %s) saves %s",
-                      !by_unit ? "1 %" : r->us_customary ? "0.1 in" : "1 mm", sct_show(d->label).text,
-                      sct_show(d->direction_label).text, sct_show(r->joints[t->joint].name).text,
-                      shown_mass(r, price.saving).text);
+                      !by_unit          ? "1 %"
+                      : r->us_customary ? "0.1 in"
+                                        : "1 mm",
+                      sct_show(d->label).text, sct_show(d->direction_label).text,
+                      sct_show(r->joints[t->joint].name).text, shown_mass(r, price.saving).text);
     r->prices[r->n_prices++] = price;
 }
 
 static void price_group(sct_result *r, int group, sct_check_kind kind, const tally *t)
 {
     const bool column = kind == SCT_CHECK_BUCKLING_IN || kind == SCT_CHECK_BUCKLING_OUT;
-    sct_price price = {.kind = kind, .group = group, .limit = -1, .multiplier = t->sum, .per_unit = NAN,
+    sct_price price = {.kind = kind,
+                       .group = group,
+                       .limit = -1,
+                       .multiplier = t->sum,
+                       .per_unit = NAN,
                        .saving = PERCENT * (column ? t->length : t->sum)};
     const char *what = kind == SCT_CHECK_TENSION       ? "higher allowable stress in tension"
                        : kind == SCT_CHECK_COMPRESSION ? "higher allowable stress in compression"
                        : kind == SCT_CHECK_BUCKLING_IN ? "shorter effective length in plane"
                                                        : "shorter effective length out of plane";
-    sct_number_format(price.words, sizeof price.words, "1 %% %s of %s saves %s", what, sct_show(r->groups[group].name).text,
-                      shown_mass(r, price.saving).text);
+    sct_number_format(price.words, sizeof price.words, "1 %% %s of %s saves %s", what,
+                      sct_show(r->groups[group].name).text, shown_mass(r, price.saving).text);
     r->prices[r->n_prices++] = price;
 }
 
@@ -78,8 +91,11 @@ static void price_bound(sct_result *r, const sct_duty *duty, int group, bool upp
 {
     const sct_group *g = &duty->st->model->groups[group];
     const bool slender = !upper && source.kind == SCT_CHECK_SLENDERNESS, ladder = g->kind == SCT_LADDER;
-    sct_price price = {.kind = upper ? SCT_CHECK_LARGEST : source.kind, .group = group, .limit = -1,
-                       .multiplier = multiplier, .per_unit = multiplier / exp(s),
+    sct_price price = {.kind = upper ? SCT_CHECK_LARGEST : source.kind,
+                       .group = group,
+                       .limit = -1,
+                       .multiplier = multiplier,
+                       .per_unit = multiplier / exp(s),
                        .saving = PERCENT * (slender && !ladder ? 2.0 : 1.0) * multiplier};
     const mass_words mass = shown_mass(r, price.saving);
     if (slender && ladder)
@@ -112,7 +128,8 @@ static sct_status price_bounds(const sct_problem *P, const sct_duty *duty, const
     return SCT_OK;
 }
 
-sct_status sct_prices(const sct_problem *P, const sct_duty *duty, const double mu[], const double mu_bound[], sct_result *r)
+sct_status sct_prices(const sct_problem *P, const sct_duty *duty, const double mu[], const double mu_bound[],
+                      sct_result *r)
 {
     const sct_model *model = duty->st->model;
     const int kinds = SCT_CHECK_COUNT, n_groups = r->n_groups;

@@ -10,36 +10,39 @@
 #include "base/text.h"
 #include "numerics/dense.h"
 
-static const double INACTIVE = -9.0;      /* ln: a limit this far away is left alone, with zero gradient */
+static const double INACTIVE = -9.0; /* ln: a limit this far away is left alone, with zero gradient */
 
 struct sct_problem {
     sct_duty *duty;
     const sct_structure *st;
     sct_arena *arena;
     bool plain;
-    int n, n_bar_rows;            /* variables; constraints on bars come first */
-    bool *is_fixed;               /* n_groups: true properties below, no envelope */
+    int n, n_bar_rows; /* variables; constraints on bars come first */
+    bool *is_fixed;    /* n_groups: true properties below, no envelope */
     sct_design fixed;
-    sct_envelope (*envelope)[2];  /* n_groups */
-    double *lower, *upper;        /* ln A */
+    sct_envelope (*envelope)[2]; /* n_groups */
+    double *lower, *upper;       /* ln A */
     sct_bound_source *source;
-    double *x_lower, *x_upper;    /* the same in the form of x */
-    double *ref, mass_unit;       /* plain form: areas and mass are relative to the middle of the ranges; else 1 kg */
+    double *x_lower, *x_upper; /* the same in the form of x */
+    double *ref, mass_unit;    /* plain form: areas and mass are relative to the middle of the ranges; else 1 kg */
     int *cluster;
     sct_nlp nlp;
-    double margin;                /* that is added to every constraint */
+    double margin; /* that is added to every constraint */
     /* at the latest value call */
     bool have_value;
     double *x, f;
-    double *A;                    /* n_groups */
-    sct_need *need;               /* n_bar_rows */
-    double *g;                    /* all constraints, log form */
+    double *A;      /* n_groups */
+    sct_need *need; /* n_bar_rows */
+    double *g;      /* all constraints, log form */
     bool have_du;
-    double *du, *part, *row;      /* n_cases x n_dof x n; n; n */
-    double *wN, *wu, *work;       /* weights for the curvature */
+    double *du, *part, *row; /* n_cases x n_dof x n; n; n */
+    double *wN, *wu, *work;  /* weights for the curvature */
 };
 
-static int bar_of(const sct_problem *P, int j) { return j % P->st->n_bars; }
+static int bar_of(const sct_problem *P, int j)
+{
+    return j % P->st->n_bars;
+}
 static int combination_of(const sct_problem *P, int j)
 {
     return j < P->n_bar_rows ? P->duty->allowable[j / P->st->n_bars] : P->duty->rows[j - P->n_bar_rows].combination;
@@ -80,8 +83,10 @@ static double bar_constraint(sct_problem *P, int j)
     const double N = force(P, j);
     sct_need *need = &P->need[j];
     if (!(fabs(N) > 0.0)) return INACTIVE;
-    if (P->is_fixed[group]) *need = fixed_need(P, bar, N);
-    else *need = sct_area_needed(&P->duty->rules[bar], P->envelope[group], N > 0.0, log(fabs(N)), log(P->A[group]));
+    if (P->is_fixed[group])
+        *need = fixed_need(P, bar, N);
+    else
+        *need = sct_area_needed(&P->duty->rules[bar], P->envelope[group], N > 0.0, log(fabs(N)), log(P->A[group]));
     return need->s - log(P->A[group]);
 }
 
@@ -96,8 +101,8 @@ static sct_status judge(sct_problem *P, const double x[])
     P->f = 0.0;
     for (int v = 0; v < P->n; v++) P->f += P->duty->unit_mass[st->group_of_var[v]] * P->A[st->group_of_var[v]];
     for (int j = 0; j < P->nlp.m; j++) {
-        const double g = j < P->n_bar_rows ? bar_constraint(P, j)
-                                           : log(sct_duty_row_utilisation(P->duty, j - P->n_bar_rows));
+        const double g =
+            j < P->n_bar_rows ? bar_constraint(P, j) : log(sct_duty_row_utilisation(P->duty, j - P->n_bar_rows));
         if (isnan(g)) return SCT_NOT_ACCURATE;
         P->g[j] = fmax(g + P->margin, INACTIVE);
     }
@@ -129,8 +134,8 @@ static double quantity(sct_problem *P, int j, double row[])
             sct_sensitivity_force(P->duty->solver, &P->duty->response, P->du, bar_of(P, j), k, P->part);
         } else {
             const sct_deflection_row *r = &P->duty->rows[j - P->n_bar_rows];
-            sct_sensitivity_displacement(P->duty->solver, P->du, r->joint, P->st->model->deflections[r->limit].direction,
-                                         k, P->part);
+            sct_sensitivity_displacement(P->duty->solver, P->du, r->joint,
+                                         P->st->model->deflections[r->limit].direction, k, P->part);
         }
         sct_axpy(P->n, factor[k], P->part, row);
     }
@@ -180,7 +185,8 @@ static sct_status curvature(void *user, const double x[], int n_rows, const int 
     (void)x;
     sct_problem *P = user;
     const sct_structure *st = P->st;
-    const size_t n = (size_t)P->n, n_bars = (size_t)st->n_bars, n_dof = (size_t)st->n_dof, n_cases = (size_t)st->n_cases;
+    const size_t n = (size_t)P->n, n_bars = (size_t)st->n_bars, n_dof = (size_t)st->n_dof,
+                 n_cases = (size_t)st->n_cases;
     memset(H, 0, n * n * sizeof *H);
     memset(P->wN, 0, n_cases * n_bars * sizeof *P->wN);
     memset(P->wu, 0, n_cases * n_dof * sizeof *P->wu);
@@ -244,11 +250,12 @@ static asker radius_asked(const sct_problem *P, int group, int axis, const bool 
 
 static sct_status refuse_slenderness(const sct_problem *P, int group, asker who, double best, sct_fault why)
 {
-    sct_number_format(why, SCT_FAULT_ROOM,
-                      "No size of group \"%s\" keeps the slenderness limit %.0f of member \"%s\": the best reaches %.1f; "
-                      "a stiffer section or a shorter effective length would help.",
-                      sct_show(P->st->model->groups[group].name).text, who.limit,
-                      sct_show(P->st->model->members[who.bar].name).text, best);
+    sct_number_format(
+        why, SCT_FAULT_ROOM,
+        "No size of group \"%s\" keeps the slenderness limit %.0f of member \"%s\": the best reaches %.1f; "
+        "a stiffer section or a shorter effective length would help.",
+        sct_show(P->st->model->groups[group].name).text, who.limit, sct_show(P->st->model->members[who.bar].name).text,
+        best);
     return SCT_INFEASIBLE;
 }
 
@@ -262,7 +269,8 @@ static sct_status free_bounds(sct_problem *P, int v, const bool compressed[], sc
         const asker who = radius_asked(P, group, axis, compressed);
         if (!(who.i > 0.0)) continue;
         const double s = log(who.i * who.i / g->c[axis]); /* i^2 = c A */
-        if (s > P->upper[v]) return refuse_slenderness(P, group, who, who.limit * who.i / sqrt(g->c[axis] * g->A_max), why);
+        if (s > P->upper[v])
+            return refuse_slenderness(P, group, who, who.limit * who.i / sqrt(g->c[axis] * g->A_max), why);
         if (s <= P->lower[v]) continue;
         P->lower[v] = s;
         P->source[v] = (sct_bound_source){SCT_CHECK_SLENDERNESS, who.bar};
@@ -289,8 +297,10 @@ static sct_status ladder_bounds(sct_problem *P, int v, const bool compressed[], 
         const sct_section *x = &family->sections[g->ladder[k]];
         const double over[2] = {who[0].i / sqrt(x->I[0] / x->A), who[1].i / sqrt(x->I[1] / x->A)};
         const int axis = over[1] > over[0];
-        if (over[axis] <= 1.0) kept[n++] = g->ladder[k];
-        else if (n == 0) lightest = axis; /* the axis that dropped the section below the lightest kept one */
+        if (over[axis] <= 1.0)
+            kept[n++] = g->ladder[k];
+        else if (n == 0)
+            lightest = axis; /* the axis that dropped the section below the lightest kept one */
         if (over[axis] < best) {
             best = over[axis];
             best_who = who[axis];
@@ -313,9 +323,12 @@ static sct_status set_bounds(sct_problem *P, const bool compressed[], sct_fault 
         const int group = P->st->group_of_var[v];
         P->source[v] = (sct_bound_source){SCT_CHECK_SMALLEST, -1};
         sct_status status = SCT_OK;
-        if (P->is_fixed[group]) P->lower[v] = P->upper[v] = log(P->fixed.A[group]);
-        else if (P->st->model->groups[group].kind == SCT_LADDER) status = ladder_bounds(P, v, compressed, why);
-        else status = free_bounds(P, v, compressed, why);
+        if (P->is_fixed[group])
+            P->lower[v] = P->upper[v] = log(P->fixed.A[group]);
+        else if (P->st->model->groups[group].kind == SCT_LADDER)
+            status = ladder_bounds(P, v, compressed, why);
+        else
+            status = free_bounds(P, v, compressed, why);
         if (status != SCT_OK) return status;
         P->ref[v] = exp(0.5 * (P->lower[v] + P->upper[v]));
         P->x_lower[v] = P->plain ? exp(P->lower[v]) / P->ref[v] : P->lower[v];
@@ -331,12 +344,15 @@ static void set_fixed(sct_problem *P, const bool is_fixed[], const sct_design *f
     const sct_model *model = P->st->model;
     for (int g = 0; g < P->st->n_groups; g++) {
         const sct_group *group = &model->groups[g];
-        if (group->kind == SCT_HELD_SECTION) sct_design_section(model, g, group->held, &P->fixed);
-        else if (group->kind == SCT_HELD_AREA) sct_design_area(model, g, group->A_held, &P->fixed);
+        if (group->kind == SCT_HELD_SECTION)
+            sct_design_section(model, g, group->held, &P->fixed);
+        else if (group->kind == SCT_HELD_AREA)
+            sct_design_area(model, g, group->A_held, &P->fixed);
         else if (is_fixed != NULL && is_fixed[g]) {
             P->fixed.A[g] = fixed->A[g];
             memcpy(P->fixed.i[g], fixed->i[g], sizeof P->fixed.i[g]);
-        } else continue;
+        } else
+            continue;
         P->is_fixed[g] = true;
         P->A[g] = P->fixed.A[g];
     }
@@ -352,8 +368,8 @@ static sct_status allocate(sct_problem *P)
     const bool ok = ARRAY(is_fixed, n_groups) && ARRAY(envelope, n_groups) && ARRAY(lower, n) && ARRAY(upper, n) &&
                     ARRAY(source, n) && ARRAY(x_lower, n) && ARRAY(x_upper, n) && ARRAY(ref, n) && ARRAY(cluster, m) &&
                     ARRAY(x, n) && ARRAY(A, n_groups) && ARRAY(need, (size_t)P->n_bar_rows) && ARRAY(g, m) &&
-                    ARRAY(du, n_cases * n_dof * n) && ARRAY(part, n) && ARRAY(row, n) &&
-                    ARRAY(wN, n_cases * n_bars) && ARRAY(wu, n_cases * n_dof) && ARRAY(work, n_cases * n_dof);
+                    ARRAY(du, n_cases * n_dof * n) && ARRAY(part, n) && ARRAY(row, n) && ARRAY(wN, n_cases * n_bars) &&
+                    ARRAY(wu, n_cases * n_dof) && ARRAY(work, n_cases * n_dof);
 #undef ARRAY
     if (!ok) return SCT_NO_MEMORY;
     return sct_design_new(a, st->n_groups, &P->fixed);
@@ -367,7 +383,8 @@ static sct_status build(sct_problem *P, const bool compressed[], const bool is_f
     if (P->arena == NULL) return SCT_NO_MEMORY;
     P->n = st->n_vars;
     P->n_bar_rows = P->duty->n_allowable * st->n_bars;
-    P->nlp = (sct_nlp){.n = P->n, .m = P->n_bar_rows + P->duty->n_rows, .user = P, .value = value, .gradient = gradient};
+    P->nlp =
+        (sct_nlp){.n = P->n, .m = P->n_bar_rows + P->duty->n_rows, .user = P, .value = value, .gradient = gradient};
     sct_status status = allocate(P);
     if (status != SCT_OK) return status;
     set_fixed(P, is_fixed, fixed);
@@ -395,8 +412,10 @@ sct_status sct_problem_new(sct_duty *duty, const bool compressed[], const bool i
     P->st = duty->st;
     P->plain = plain;
     const sct_status status = build(P, compressed, is_fixed, fixed, why);
-    if (status == SCT_OK) *problem = P;
-    else sct_problem_free(P);
+    if (status == SCT_OK)
+        *problem = P;
+    else
+        sct_problem_free(P);
     return status;
 }
 
@@ -417,9 +436,15 @@ double sct_problem_bytes(const sct_duty *duty)
            bar_rows * sizeof(sct_need) + sct_descent_bytes(n, m, at_once);
 }
 
-const sct_nlp *sct_problem_nlp(const sct_problem *P) { return &P->nlp; }
+const sct_nlp *sct_problem_nlp(const sct_problem *P)
+{
+    return &P->nlp;
+}
 
-double sct_problem_mass_unit(const sct_problem *P) { return P->mass_unit; }
+double sct_problem_mass_unit(const sct_problem *P)
+{
+    return P->mass_unit;
+}
 
 void sct_problem_tighten(sct_problem *P, double margin)
 {

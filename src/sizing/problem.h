@@ -5,9 +5,9 @@
  *     bar     g = ln(area needed for the force) - ln A        (for each strength combination)
  *     joint   g = ln(|u| / limit)
  *
- * In z = ln A mass has equal gradient and diagonal Hessian (w_g A_g), which is the metric; forces of a determinate truss
- * do not depend on z, so its constraints are nearly linear. Plain setting: areas and mass relative to the middle of their
- * ranges, and needed / present - 1, for comparison.
+ * In z = ln A mass has equal gradient and diagonal Hessian (w_g A_g), which is the metric; forces of a determinate
+ * truss do not depend on z, so its constraints are nearly linear. Plain setting: areas and mass relative to the middle
+ * of their ranges, and needed / present - 1, for comparison.
  */
 #ifndef SCT_SIZING_PROBLEM_H
 #define SCT_SIZING_PROBLEM_H
@@ -64,10 +64,10 @@ int sct_problem_scale(sct_problem *problem, double x[]);
 
 /* What constraint j is about. */
 typedef struct sct_constraint {
-    int bar;            /* a bar check; -1 for a deflection */
-    int row;            /* duty row; -1 for a bar check */
+    int bar; /* a bar check; -1 for a deflection */
+    int row; /* duty row; -1 for a bar check */
     int combination;
-    sct_need need;      /* of a bar check at the latest value call */
+    sct_need need; /* of a bar check at the latest value call */
 } sct_constraint;
 sct_constraint sct_problem_constraint(const sct_problem *problem, int j);
 #endif

@@ -43,9 +43,9 @@ static sct_status allocate(sct_result *r, const sct_duty *duty)
     const size_t n_comb = (size_t)r->n_combinations, n_joints = (size_t)r->n_joints, n_members = (size_t)r->n_members;
 #define ARRAY(what, count) ((r->what = sct_result_array(r, (count), sizeof *r->what)) != NULL)
     const bool ok = ARRAY(joints, n_joints) && ARRAY(members, n_members) && ARRAY(groups, (size_t)r->n_groups) &&
-                    ARRAY(combinations, n_comb) && ARRAY(is_for_strength, n_comb) && ARRAY(u, n_comb * n_joints * 3) && ARRAY(N, n_comb * n_members) &&
-                    ARRAY(reaction, n_comb * n_joints * 3) && ARRAY(load, n_comb * n_joints * 3) &&
-                    ARRAY(deflections, (size_t)r->n_deflections);
+                    ARRAY(combinations, n_comb) && ARRAY(is_for_strength, n_comb) && ARRAY(u, n_comb * n_joints * 3) &&
+                    ARRAY(N, n_comb * n_members) && ARRAY(reaction, n_comb * n_joints * 3) &&
+                    ARRAY(load, n_comb * n_joints * 3) && ARRAY(deflections, (size_t)r->n_deflections);
 #undef ARRAY
     return ok ? SCT_OK : SCT_NO_MEMORY;
 }
@@ -121,8 +121,8 @@ static void consider(sct_member_result *m, const sct_bar_check *check, int combi
 }
 
 /* The strength checks of a bar, with its force moved either way by what its error may be. */
-static double utilisation_at_most(const sct_result *r, const sct_duty *duty, int combination, int bar, double N, double A,
-                                  const double i[2])
+static double utilisation_at_most(const sct_result *r, const sct_duty *duty, int combination, int bar, double N,
+                                  double A, const double i[2])
 {
     double error = sct_combined_force_error(duty->st, &duty->response, combination, bar), most = 0.0;
     if (isnan(error)) error = r->accuracy.error * fabs(N);
@@ -142,18 +142,28 @@ static void fill_member(sct_result *r, const sct_duty *duty, const sct_design *d
     sct_member_result *m = &r->members[bar];
     *m = (sct_member_result){
         .name = duty->st->model->members[bar].name,
-        .group = b->group, .from = b->from, .to = b->to, .L = b->L,
+        .group = b->group,
+        .from = b->from,
+        .to = b->to,
+        .L = b->L,
         .Lcr = {rule->Lcr[0], rule->Lcr[1]},
         .lambda = {rule->Lcr[0] / i[0], rule->Lcr[1] / i[1]},
         .mass = b->density * design->A[b->group] * b->L,
         .combination = -1,
-        .N_max = -INFINITY, .N_min = INFINITY,
+        .N_max = -INFINITY,
+        .N_min = INFINITY,
         .compressed = sct_duty_is_compressed(duty, bar),
     };
     for (int c = 0; c < r->n_combinations; c++) {
         const double N = r->N[(size_t)c * (size_t)r->n_members + (size_t)bar];
-        if (N > m->N_max) { m->N_max = N; m->N_max_in = c; }
-        if (N < m->N_min) { m->N_min = N; m->N_min_in = c; }
+        if (N > m->N_max) {
+            m->N_max = N;
+            m->N_max_in = c;
+        }
+        if (N < m->N_min) {
+            m->N_min = N;
+            m->N_min_in = c;
+        }
     }
     for (int k = 0; k < duty->n_allowable; k++) {
         const int c = duty->allowable[k];
@@ -199,8 +209,8 @@ static void fill_deflections(sct_result *r, const sct_duty *duty)
     for (int limit = 0; limit < model->n_deflections; limit++) {
         const sct_deflection_limit *d = &model->deflections[limit];
         for (int k = 0; k < d->n_joints; k++) {
-            out[k] = (sct_deflection_result){.limit = limit, .joint = d->joints[k], .combination = -1, .at_most = d->at_most,
-                                             .label = d->label};
+            out[k] = (sct_deflection_result){
+                .limit = limit, .joint = d->joints[k], .combination = -1, .at_most = d->at_most, .label = d->label};
             memcpy(out[k].direction, d->direction, sizeof out[k].direction);
         }
         for (int c = 0; c < model->n_combinations; c++)
@@ -266,17 +276,20 @@ void sct_result_judge(sct_result *r, bool at_smallest)
     } else if (bar >= 0) {
         const sct_member_result *m = &r->members[bar];
         if (m->combination < 0)
-            sct_number_format(what, sizeof what, "%s of member \"%s\"", sct_check_text(m->check), sct_show(m->name).text);
+            sct_number_format(what, sizeof what, "%s of member \"%s\"", sct_check_text(m->check),
+                              sct_show(m->name).text);
         else
             sct_number_format(what, sizeof what, "%s of member \"%s\" in \"%s\"", sct_check_text(m->check),
                               sct_show(m->name).text, sct_show(r->combinations[m->combination]).text);
     }
     if (r->outcome == SCT_NOT_OPTIMISED)
-        sct_number_format(r->verdict, sizeof r->verdict, "Not optimised: the start design %s every limit; %s is at %.2f.",
+        sct_number_format(r->verdict, sizeof r->verdict,
+                          "Not optimised: the start design %s every limit; %s is at %.2f.",
                           r->kept ? "keeps" : "does not keep", what, shown(most));
     else if (r->kept && at_smallest && most < 0.995) /* shows as less than 1 */
         sct_number_format(r->verdict, sizeof r->verdict,
-                          "Every limit is kept; the smallest sizes allowed govern: %s is at %.2f only.", what, shown(most));
+                          "Every limit is kept; the smallest sizes allowed govern: %s is at %.2f only.", what,
+                          shown(most));
     else if (r->kept && bar < 0 && row < 0)
         sct_number_format(r->verdict, sizeof r->verdict, "Every limit is kept; no member carries a force.");
     else if (r->kept)
@@ -289,7 +302,8 @@ void sct_result_judge(sct_result *r, bool at_smallest)
         sct_number_format(r->verdict, sizeof r->verdict,
                           "No design found that keeps every limit; the least violation found leaves %s at %.2f.", what,
                           shown(most));
-    else sct_number_format(r->verdict, sizeof r->verdict, "Not every limit is kept: %s is at %.2f.", what, shown(most));
+    else
+        sct_number_format(r->verdict, sizeof r->verdict, "Not every limit is kept: %s is at %.2f.", what, shown(most));
     if (isnan(r->accuracy.bound)) { /* never silent */
         const size_t used = strlen(r->verdict);
         sct_number_format(r->verdict + used, sizeof r->verdict - used, " Accuracy not certified; estimate %.0e.",

@@ -12,15 +12,15 @@ typedef struct search {
     const sct_structure *st;
     const sct_model *model;
     sct_arena *arena;
-    int budget;              /* analyses left */
+    int budget; /* analyses left */
     bool (*more)(double mass, void *user);
     void *user;
     sct_design trial, at, best; /* at: where the descent stands; best: kept design of least mass, or of least
-                              * utilisation while none is kept */
+                                 * utilisation while none is kept */
     bool have_best;
-    sct_pick pick;           /* of `best` */
-    double *du, *d, *slope;  /* sensitivities at the design at hand; slope: n_rows x n_groups of u per ln A */
-    double slack;            /* utilisation that frozen forces may overestimate: forces of redundant bars move */
+    sct_pick pick;          /* of `best` */
+    double *du, *d, *slope; /* sensitivities at the design at hand; slope: n_rows x n_groups of u per ln A */
+    double slack;           /* utilisation that frozen forces may overestimate: forces of redundant bars move */
 } search;
 
 /* A change of up to two groups. */
@@ -29,7 +29,10 @@ typedef struct move {
     int group[2], section[2];
 } move;
 
-static bool is_ladder(const search *S, int g) { return S->model->groups[g].kind == SCT_LADDER; }
+static bool is_ladder(const search *S, int g)
+{
+    return S->model->groups[g].kind == SCT_LADDER;
+}
 
 static const sct_section *section_at(const search *S, int g, int k)
 {
@@ -86,9 +89,9 @@ static sct_status judge(search *S, double *utilisation)
     if (status != SCT_OK) return status;
     *utilisation = sct_duty_utilisation(S->duty, &S->trial);
     const sct_pick pick = {sct_keeps(*utilisation), *utilisation, sct_duty_mass(S->duty, &S->trial)};
-    const bool better = !S->have_best || (pick.kept && !S->pick.kept) ||
-                        (pick.kept == S->pick.kept &&
-                         (pick.kept ? pick.mass < S->pick.mass : pick.utilisation < S->pick.utilisation));
+    const bool better =
+        !S->have_best || (pick.kept && !S->pick.kept) ||
+        (pick.kept == S->pick.kept && (pick.kept ? pick.mass < S->pick.mass : pick.utilisation < S->pick.utilisation));
     if (better) {
         S->have_best = true;
         S->pick = pick;
@@ -154,8 +157,8 @@ static sct_status find_slopes(search *S)
         const double *factor = S->model->combinations[row->combination].factor;
         for (int k = 0; k < st->n_cases; k++) {
             if (factor[k] == 0.0) continue;
-            sct_sensitivity_displacement(S->duty->solver, S->du, row->joint, S->model->deflections[row->limit].direction, k,
-                                         S->d);
+            sct_sensitivity_displacement(S->duty->solver, S->du, row->joint,
+                                         S->model->deflections[row->limit].direction, k, S->d);
             for (int v = 0; v < st->n_vars; v++) slope[st->group_of_var[v]] += factor[k] * S->d[v];
         }
     }
@@ -268,13 +271,15 @@ static int list_moves(search *S, move *moves, int room, int (*rungs)[MOST_RUNGS]
     return n;
 }
 
-/* From the trial, which keeps every limit: tries the likely changes, most saving first; goes on from each that holds. */
+/* From the trial, which keeps every limit: tries the likely changes, most saving first; goes on from each that holds.
+ */
 static sct_status descend(search *S)
 {
     enum { MOST_TRIES = 30, ROOM = 200000 };
     const int n_groups = S->st->n_groups;
     move *moves = malloc(ROOM * sizeof *moves);
-    int(*rungs)[MOST_RUNGS] = calloc((size_t)n_groups, sizeof *rungs), *n_rungs = calloc((size_t)n_groups, sizeof *n_rungs);
+    int(*rungs)[MOST_RUNGS] = calloc((size_t)n_groups, sizeof *rungs),
+    *n_rungs = calloc((size_t)n_groups, sizeof *n_rungs);
     sct_status status = moves == NULL || rungs == NULL || n_rungs == NULL ? SCT_NO_MEMORY : SCT_OK;
     bool improved = true;
     sct_design_copy(n_groups, &S->trial, &S->at);
@@ -321,7 +326,8 @@ static sct_status run(search *S, const sct_design *continuous)
     S->d = sct_arena_array(S->arena, n_vars, sizeof(double));
     S->slope = sct_arena_array(S->arena, (size_t)S->duty->n_rows * n_groups, sizeof(double));
     sct_design start;
-    if (S->du == NULL || S->d == NULL || S->slope == NULL || sct_design_new(S->arena, S->st->n_groups, &S->trial) != SCT_OK ||
+    if (S->du == NULL || S->d == NULL || S->slope == NULL ||
+        sct_design_new(S->arena, S->st->n_groups, &S->trial) != SCT_OK ||
         sct_design_new(S->arena, S->st->n_groups, &S->best) != SCT_OK ||
         sct_design_new(S->arena, S->st->n_groups, &S->at) != SCT_OK ||
         sct_design_new(S->arena, S->st->n_groups, &start) != SCT_OK)
@@ -346,7 +352,8 @@ static sct_status run(search *S, const sct_design *continuous)
 sct_status sct_sections_pick(sct_duty *duty, sct_design *design, int most_analyses,
                              bool (*more)(double mass, void *user), void *user, sct_pick *pick)
 {
-    search S = {.duty = duty, .st = duty->st, .model = duty->st->model, .budget = most_analyses, .more = more, .user = user};
+    search S = {
+        .duty = duty, .st = duty->st, .model = duty->st->model, .budget = most_analyses, .more = more, .user = user};
     /* members = unknowns: forces follow from statics alone, frozen forces are off by self-weight only */
     S.slack = duty->st->n_bars <= duty->st->n_dof ? 0.01 : 0.1;
     S.arena = sct_arena_new();

@@ -21,18 +21,18 @@ typedef struct job {
     sct_structure *st;
     sct_duty *duty;
     sct_arena *arena;
-    sct_design design;           /* the one that will be shown */
-    bool *compressed;            /* members that must keep the slenderness limit of compression */
+    sct_design design; /* the one that will be shown */
+    bool *compressed;  /* members that must keep the slenderness limit of compression */
     bool interrupted;
     /* the descent */
     sct_problem *problem;
     sct_descent *descent;
     double *x, *x_best, *mu, *mu_best, *mu_bound, *mu_bound_best, *A;
-    double *lower, *upper;       /* ln A */
+    double *lower, *upper; /* ln A */
     sct_bound_source *source;
     sct_start_result *starts;
     int n_starts, best;
-    int analyses_before;         /* of the start that runs */
+    int analyses_before; /* of the start that runs */
 } job;
 
 sct_settings sct_settings_defaults(void)
@@ -74,13 +74,15 @@ static sct_status check_memory(const job *J, bool is_sizing)
     const double search = is_sizing ? sct_problem_bytes(J->duty) : 0.0;
     if (factor + search <= most) return SCT_OK;
     if (!isfinite(factor))
-        sct_issue_add(J->issues, SCT_ERROR, (sct_where){.file = J->model->file},
-                      "the model is too large: the factor of its stiffness matrix has more entries than can be numbered");
+        sct_issue_add(
+            J->issues, SCT_ERROR, (sct_where){.file = J->model->file},
+            "the model is too large: the factor of its stiffness matrix has more entries than can be numbered");
     else
-        sct_issue_add(J->issues, SCT_ERROR, (sct_where){.file = J->model->file},
-                      "the model is too large: %d unknowns and %d sized groups need about %.0f MB of memory (%.0f MB for the "
-                      "factor of the stiffness matrix, %.0f MB for the search); at most %.0f MB may be taken here",
-                      J->st->n_dof, J->st->n_vars, (factor + search) / MB, factor / MB, search / MB, most / MB);
+        sct_issue_add(
+            J->issues, SCT_ERROR, (sct_where){.file = J->model->file},
+            "the model is too large: %d unknowns and %d sized groups need about %.0f MB of memory (%.0f MB for the "
+            "factor of the stiffness matrix, %.0f MB for the search); at most %.0f MB may be taken here",
+            J->st->n_dof, J->st->n_vars, (factor + search) / MB, factor / MB, search / MB, most / MB);
     return SCT_TOO_LARGE;
 }
 
@@ -141,9 +143,9 @@ static sct_status refuse_unsized(const job *J)
     for (int g = 0; g < J->model->n_groups; g++) {
         const sct_group *group = &J->model->groups[g];
         if (group->kind == SCT_LADDER || group->kind == SCT_FREE_AREA)
-            sct_issue_add(J->issues, SCT_ERROR, group->where,
-                          "the group has no size to check; expected %s (size finds one)",
-                          group->kind == SCT_LADDER ? "\"section\" with a name of its family" : "\"area\" as one number");
+            sct_issue_add(
+                J->issues, SCT_ERROR, group->where, "the group has no size to check; expected %s (size finds one)",
+                group->kind == SCT_LADDER ? "\"section\" with a name of its family" : "\"area\" as one number");
     }
     return J->st->n_vars > 0 ? SCT_BAD_INPUT : SCT_OK;
 }
@@ -169,8 +171,13 @@ static double best_kept_mass(const job *J)
 static bool tell(job *J, const char *stage, double mass, double violation, double best)
 {
     if (J->settings.observer == NULL || J->interrupted) return !J->interrupted;
-    const sct_progress progress = {stage, J->n_starts + (stage[0] == 'd'), J->settings.starts,
-                                   sct_solver_analyses(J->duty->solver), mass, violation, best};
+    const sct_progress progress = {stage,
+                                   J->n_starts + (stage[0] == 'd'),
+                                   J->settings.starts,
+                                   sct_solver_analyses(J->duty->solver),
+                                   mass,
+                                   violation,
+                                   best};
     if (!J->settings.observer(&progress, J->settings.user)) J->interrupted = true;
     return !J->interrupted;
 }
@@ -249,7 +256,10 @@ static sct_status run_start(job *J, int k, sct_random *random)
         return info.status;
     sct_start_result *start = &J->starts[J->n_starts];
     *start = (sct_start_result){
-        .mass = info.f * sct_problem_mass_unit(J->problem), .violation = info.violation, .kkt = info.kkt, .iterations = info.iterations,
+        .mass = info.f * sct_problem_mass_unit(J->problem),
+        .violation = info.violation,
+        .kkt = info.kkt,
+        .iterations = info.iterations,
         .analyses = sct_solver_analyses(J->duty->solver) - J->analyses_before,
         .outcome = info.status == SCT_OK            ? SCT_OPTIMUM
                    : info.status == SCT_INFEASIBLE  ? SCT_NO_FEASIBLE_DESIGN
@@ -273,7 +283,8 @@ static sct_status run_starts(job *J)
     sct_status status = SCT_OK;
     J->n_starts = 0;
     J->best = -1;
-    for (int k = 0; status == SCT_OK && k < J->settings.starts && !J->interrupted; k++) status = run_start(J, k, &random);
+    for (int k = 0; status == SCT_OK && k < J->settings.starts && !J->interrupted; k++)
+        status = run_start(J, k, &random);
     return status;
 }
 
@@ -291,8 +302,8 @@ static sct_status open_descent(job *J, const bool is_fixed[], sct_fault why)
     if (J->descent == NULL) return SCT_NO_MEMORY;
 #define ARRAY(what, count) (J->what != NULL || (J->what = sct_arena_array(J->arena, (count), sizeof *J->what)) != NULL)
     const bool ok = ARRAY(x, n) && ARRAY(x_best, n) && ARRAY(mu, m) && ARRAY(mu_best, m) && ARRAY(mu_bound, n) &&
-                    ARRAY(mu_bound_best, n) && ARRAY(A, (size_t)J->st->n_groups) && ARRAY(lower, n) && ARRAY(upper, n) &&
-                    ARRAY(source, n) && ARRAY(starts, (size_t)J->settings.starts);
+                    ARRAY(mu_bound_best, n) && ARRAY(A, (size_t)J->st->n_groups) && ARRAY(lower, n) &&
+                    ARRAY(upper, n) && ARRAY(source, n) && ARRAY(starts, (size_t)J->settings.starts);
 #undef ARRAY
     if (!ok) return SCT_NO_MEMORY;
     sct_problem_bounds(J->problem, J->lower, J->upper, J->source);
@@ -304,11 +315,13 @@ static void middle_areas(const job *J, double A[])
 {
     for (int g = 0; g < J->model->n_groups; g++) {
         const sct_group *group = &J->model->groups[g];
-        if (group->kind == SCT_FREE_AREA) A[g] = sqrt(group->A_min * group->A_max);
+        if (group->kind == SCT_FREE_AREA)
+            A[g] = sqrt(group->A_min * group->A_max);
         else if (group->kind == SCT_LADDER) {
             const sct_section *s = J->model->families[group->family].sections;
             A[g] = sqrt(s[group->ladder[0]].A * s[group->ladder[group->n_ladder - 1]].A);
-        } else A[g] = J->design.A[g];
+        } else
+            A[g] = J->design.A[g];
     }
 }
 
@@ -351,7 +364,8 @@ static sct_status find_optimum(job *J, sct_fault why)
     return SCT_OK;
 }
 
-/* ---- from the optimum to the design that is shown ----------------------------------------------------------------- */
+/* ---- from the optimum to the design that is shown -----------------------------------------------------------------
+ */
 
 static bool has_kind(const job *J, sct_sizing_kind kind)
 {
@@ -364,7 +378,8 @@ static void take_areas(job *J, const double A[])
 {
     for (int v = 0; v < J->st->n_vars; v++) {
         const int g = J->st->group_of_var[v];
-        if (J->model->groups[g].kind == SCT_FREE_AREA || J->design.section[g] < 0) sct_design_area(J->model, g, A[g], &J->design);
+        if (J->model->groups[g].kind == SCT_FREE_AREA || J->design.section[g] < 0)
+            sct_design_area(J->model, g, A[g], &J->design);
     }
 }
 
@@ -500,8 +515,10 @@ static sct_status tell_search(job *J, const double A_continuous[], const sct_pri
     r->n_prices = n_prices;
     double held = 0.0; /* the descent counts only what it sizes */
     for (int g = 0; g < r->n_groups; g++)
-        if (J->st->var_of_group[g] < 0) held += r->groups[g].mass;
-        else r->groups[g].A_continuous = A_continuous[g];
+        if (J->st->var_of_group[g] < 0)
+            held += r->groups[g].mass;
+        else
+            r->groups[g].A_continuous = A_continuous[g];
     for (int k = 0; k < J->n_starts; k++) {
         r->starts[k] = J->starts[k];
         r->starts[k].mass += held;
@@ -539,8 +556,9 @@ static sct_status price_optimum(job *J, sct_result **priced)
     return sct_prices(J->problem, J->duty, J->mu_best, J->mu_bound_best, *priced);
 }
 
-/* No size of some group keeps its slenderness limit: the largest sizes are shown with the reason. Where the forces depend
- * on the sizes they may keep every limit all the same: then they are shown as a design that was not searched for. */
+/* No size of some group keeps its slenderness limit: the largest sizes are shown with the reason. Where the forces
+ * depend on the sizes they may keep every limit all the same: then they are shown as a design that was not searched
+ * for. */
 static sct_status show_infeasible(job *J, const sct_fault why, sct_result **result)
 {
     for (int g = 0; g < J->model->n_groups; g++) {
@@ -582,7 +600,8 @@ static sct_status search(job *J, sct_result **result)
         if (status == SCT_OK) status = show(J, result);
     }
     if (status == SCT_OK)
-        status = tell_search(J, A, priced != NULL ? priced->prices : NULL, priced != NULL ? priced->n_prices : 0, *result);
+        status =
+            tell_search(J, A, priced != NULL ? priced->prices : NULL, priced != NULL ? priced->n_prices : 0, *result);
     sct_result_free(priced);
     return status;
 }
@@ -593,7 +612,8 @@ sct_status sct_size(const sct_model *model, const sct_settings *settings, sct_re
     *result = NULL;
     sct_status status = open_job(&J, model, settings, true, issues);
     if (status == SCT_OK && J.st->n_vars == 0) {
-        sct_issue_add(issues, SCT_NOTE, (sct_where){.file = model->file}, "every group is held: nothing to size, checked only");
+        sct_issue_add(issues, SCT_NOTE, (sct_where){.file = model->file},
+                      "every group is held: nothing to size, checked only");
         status = show(&J, result);
     } else if (status == SCT_OK) {
         if (J.settings.starts == 0) J.settings.starts = default_starts(&J);

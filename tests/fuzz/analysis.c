@@ -26,7 +26,8 @@ static double draw_size(bytes *b, double from)
     return from * (1.0 + draw(b, 256) / 16.0) * (kind < 4 ? FAR[kind] : 1.0);
 }
 
-/* ---- a model in words ----------------------------------------------------------------------------------------------- */
+/* ---- a model in words -----------------------------------------------------------------------------------------------
+ */
 
 enum { MOST_JOINTS = 9, MOST_GROUPS = 3 };
 
@@ -34,14 +35,17 @@ static void write_joints(bytes *b, int dimensions, int n_joints, sct_text *out)
 {
     sct_text_add(out, "\"joints\": {");
     for (int j = 0; j < n_joints; j++) {
-        sct_text_format(out, "%s\"J%d\": {\"at\": [%.3f, %.3f", j > 0 ? ", " : "", j, (j / 2) * 2.0 + draw(b, 256) / 256.0,
-                        (j % 2) * 2.0 + draw(b, 256) / 256.0);
+        sct_text_format(out, "%s\"J%d\": {\"at\": [%.3f, %.3f", j > 0 ? ", " : "", j,
+                        (j / 2) * 2.0 + draw(b, 256) / 256.0, (j % 2) * 2.0 + draw(b, 256) / 256.0);
         if (dimensions == 3) sct_text_format(out, ", %.3f", (j % 3) + draw(b, 256) / 128.0);
         sct_text_add(out, "]");
         const int support = j < dimensions ? 1 : draw(b, 12);
-        if (support == 1) sct_text_add(out, dimensions == 2 ? ", \"support\": [\"x\", \"y\"]" : ", \"support\": [\"x\", \"y\", \"z\"]");
+        if (support == 1)
+            sct_text_add(out,
+                         dimensions == 2 ? ", \"support\": [\"x\", \"y\"]" : ", \"support\": [\"x\", \"y\", \"z\"]");
         if (support == 2) sct_text_add(out, ", \"support\": [\"y\"]");
-        if (support == 3) sct_text_add(out, dimensions == 2 ? ", \"support\": [[0.6, 0.8]]" : ", \"support\": [[0.6, 0, 0.8]]");
+        if (support == 3)
+            sct_text_add(out, dimensions == 2 ? ", \"support\": [[0.6, 0.8]]" : ", \"support\": [[0.6, 0, 0.8]]");
         sct_text_add(out, "}");
     }
     sct_text_add(out, "},\n");
@@ -56,9 +60,10 @@ static int write_members(bytes *b, int dimensions, int n_joints, int n_groups, s
         for (int k = 0; k < back; k++) {
             const int jump = draw(b, 8) == 7 ? 1 : 0, to = j - 1 - k - jump;
             if (to < 0) continue;
-            sct_text_format(out, "%s\"M%d\": {\"from\": \"J%d\", \"to\": \"J%d\", \"group\": \"G%d\"", n > 0 ? ", " : "", n, j, to,
-                            n < n_groups ? n : draw(b, n_groups));
-            if (draw(b, 8) == 7) sct_text_format(out, ", \"length_factor\": {\"in_plane\": %.2f}", 0.5 + draw(b, 16) / 8.0);
+            sct_text_format(out, "%s\"M%d\": {\"from\": \"J%d\", \"to\": \"J%d\", \"group\": \"G%d\"",
+                            n > 0 ? ", " : "", n, j, to, n < n_groups ? n : draw(b, n_groups));
+            if (draw(b, 8) == 7)
+                sct_text_format(out, ", \"length_factor\": {\"in_plane\": %.2f}", 0.5 + draw(b, 16) / 8.0);
             sct_text_add(out, "}");
             n++;
         }
@@ -73,11 +78,13 @@ static void write_groups(bytes *b, int n_groups, bool is_held, sct_text *out)
     for (int g = 0; g < n_groups; g++) {
         sct_text_format(out, "%s\"G%d\": {\"material\": \"S\", ", g > 0 ? ", " : "", g);
         const int kind = draw(b, 4);
-        if (is_held || kind == 0) sct_text_format(out, "\"area\": %.9g, \"second_moment\": {\"c\": 1}}", draw_size(b, 1e-4));
+        if (is_held || kind == 0)
+            sct_text_format(out, "\"area\": %.9g, \"second_moment\": {\"c\": 1}}", draw_size(b, 1e-4));
         else if (kind == 1)
-            sct_text_format(out, "\"area\": {\"at_least\": %.9g, \"at_most\": 0.02}, \"second_moment\": {\"c\": %d}}", 1e-5 * (1 + draw(b, 50)),
-                            1 + draw(b, 4));
-        else sct_text_format(out, "\"family\": \"%s\"}", draw(b, 2) ? "CHS" : "HEA");
+            sct_text_format(out, "\"area\": {\"at_least\": %.9g, \"at_most\": 0.02}, \"second_moment\": {\"c\": %d}}",
+                            1e-5 * (1 + draw(b, 50)), 1 + draw(b, 4));
+        else
+            sct_text_format(out, "\"family\": \"%s\"}", draw(b, 2) ? "CHS" : "HEA");
     }
     sct_text_add(out, "},\n");
 }
@@ -85,19 +92,26 @@ static void write_groups(bytes *b, int n_groups, bool is_held, sct_text *out)
 static void write_cases(bytes *b, int dimensions, int n_joints, int n_members, sct_text *out)
 {
     const bool has_weight = draw(b, 2) == 1;
-    sct_text_format(out, "\"cases\": {\"a\": {\"action\": \"permanent\"%s, \"joints\": {", has_weight ? ", \"self_weight\": true" : "");
+    sct_text_format(out, "\"cases\": {\"a\": {\"action\": \"permanent\"%s, \"joints\": {",
+                    has_weight ? ", \"self_weight\": true" : "");
     for (int k = 0; k < 2; k++) {
-        const int joint = dimensions + (n_joints > dimensions ? draw(b, n_joints - dimensions) : 0) - (n_joints == dimensions);
+        const int joint =
+            dimensions + (n_joints > dimensions ? draw(b, n_joints - dimensions) : 0) - (n_joints == dimensions);
         if (k == 1 && joint == n_joints - 1) continue;
         sct_text_format(out, "%s\"J%d\": [%.9g, %.9g%s]", k > 0 ? ", " : "", k == 0 ? n_joints - 1 : joint,
                         draw_size(b, 1e3) * (draw(b, 3) - 1), -draw_size(b, 2e3), dimensions == 3 ? ", -500" : "");
     }
     sct_text_add(out, "}}, \"b\": {\"action\": \"other\"");
     const int kind = draw(b, 4);
-    if (kind == 1) sct_text_format(out, ", \"members\": {\"M%d\": {\"temperature\": \"%d K\"}}", draw(b, n_members), draw(b, 80) - 40);
-    if (kind == 2) sct_text_format(out, ", \"settlements\": {\"J0\": [%s0, -0.0%02d]}", dimensions == 3 ? "0, " : "", draw(b, 100));
+    if (kind == 1)
+        sct_text_format(out, ", \"members\": {\"M%d\": {\"temperature\": \"%d K\"}}", draw(b, n_members),
+                        draw(b, 80) - 40);
+    if (kind == 2)
+        sct_text_format(out, ", \"settlements\": {\"J0\": [%s0, -0.0%02d]}", dimensions == 3 ? "0, " : "",
+                        draw(b, 100));
     if (kind != 1 && kind != 2)
-        sct_text_format(out, ", \"joints\": {\"J%d\": [%d, 100%s]}", n_joints - 1, draw(b, 200) - 100, dimensions == 3 ? ", 0" : "");
+        sct_text_format(out, ", \"joints\": {\"J%d\": [%d, 100%s]}", n_joints - 1, draw(b, 200) - 100,
+                        dimensions == 3 ? ", 0" : "");
     sct_text_add(out, "}},\n\"combinations\": {\"both\": {\"for\": \"allowable\", \"sum\": {\"a\": 1, \"b\": 1}}, "
                       "\"first\": {\"for\": \"allowable\", \"sum\": {\"a\": 1.5}}, "
                       "\"use\": {\"for\": \"service\", \"sum\": {\"a\": 1}}},\n");
@@ -109,27 +123,33 @@ static char *write_model(bytes *b, bool is_held)
     sct_text out = {0};
     const int dimensions = 2 + (draw(b, 4) == 3), n_joints = dimensions + 1 + draw(b, MOST_JOINTS - 3);
     const int n_groups = 1 + draw(b, MOST_GROUPS);
-    sct_text_format(&out, "{\"scantling\": 1, \"dimensions\": %d, \"units\": {\"length\": \"m\", \"force\": \"N\", \"stress\": \"Pa\"},\n"
-                          "\"materials\": {\"S\": {\"E\": %.9g, \"density\": \"7850 kg/m3\", \"yield\": 2.35e8, \"expansion\": \"1.2e-5 1/K\", "
-                          "\"allowable\": {\"tension\": 1.4e8, \"compression\": 1.2e8}}},\n",
-                    dimensions, draw(b, 8) == 7 ? draw_size(b, 1e10) : 2.1e11);
+    sct_text_format(
+        &out,
+        "{\"scantling\": 1, \"dimensions\": %d, \"units\": {\"length\": \"m\", \"force\": \"N\", \"stress\": \"Pa\"},\n"
+        "\"materials\": {\"S\": {\"E\": %.9g, \"density\": \"7850 kg/m3\", \"yield\": 2.35e8, \"expansion\": \"1.2e-5 "
+        "1/K\", "
+        "\"allowable\": {\"tension\": 1.4e8, \"compression\": 1.2e8}}},\n",
+        dimensions, draw(b, 8) == 7 ? draw_size(b, 1e10) : 2.1e11);
     write_joints(b, dimensions, n_joints, &out);
     const int n_members = write_members(b, dimensions, n_joints, n_groups, &out);
     write_groups(b, n_groups, is_held, &out);
     write_cases(b, dimensions, n_joints, n_members, &out);
     const int kind = draw(b, 3);
-    sct_text_format(&out, "\"limits\": {\"buckling\": {\"by\": \"%s\"%s}", BUCKLING[kind], kind > 0 ? ", \"safety\": 1.92" : "");
+    sct_text_format(&out, "\"limits\": {\"buckling\": {\"by\": \"%s\"%s}", BUCKLING[kind],
+                    kind > 0 ? ", \"safety\": 1.92" : "");
     if (draw(b, 2)) sct_text_format(&out, ", \"slenderness\": {\"any\": %d, \"compression\": 200}", 250 + draw(b, 200));
     if (draw(b, 2))
-        sct_text_format(&out, ", \"deflection\": [{\"joints\": [\"J%d\"], \"direction\": \"y\", \"at_most\": 0.0%02d1}]", n_joints - 1,
-                        draw(b, 100));
+        sct_text_format(&out,
+                        ", \"deflection\": [{\"joints\": [\"J%d\"], \"direction\": \"y\", \"at_most\": 0.0%02d1}]",
+                        n_joints - 1, draw(b, 100));
     sct_text_add(&out, "}}\n");
     char *text = sct_text_take(&out, NULL);
     MUST(text != NULL);
     return text;
 }
 
-/* ---- what holds of a result ------------------------------------------------------------------------------------------ */
+/* ---- what holds of a result
+ * ------------------------------------------------------------------------------------------ */
 
 static double largest_force(const sct_result *r)
 {
@@ -151,7 +171,8 @@ static void check_balance(const sct_result *r)
         for (int e = 0; e < r->n_members; e++) {
             const sct_member_result *m = &r->members[e];
             for (int i = 0; i < 3; i++) {
-                const double pull = r->N[c * r->n_members + e] * (r->joints[m->to].at[i] - r->joints[m->from].at[i]) / m->L;
+                const double pull =
+                    r->N[c * r->n_members + e] * (r->joints[m->to].at[i] - r->joints[m->from].at[i]) / m->L;
                 sum[m->from][i] += pull;
                 sum[m->to][i] -= pull;
             }
@@ -199,7 +220,8 @@ static double member_utilisation(const sct_result *r, int c, int e)
         const double Lcr = r->members[e].L * (member->source[axis] == SCT_LENGTH_FACTOR ? member->length[axis] : 1.0);
         const double lambda = Lcr / sqrt(size->I[axis] / size->A);
         if (N < 0.0 && group->buckling != SCT_BUCKLING_NONE)
-            worst = fmax(worst, sigma * group->safety / critical_stress(material->E, material->yield, lambda, group->buckling));
+            worst = fmax(worst, sigma * group->safety /
+                                    critical_stress(material->E, material->yield, lambda, group->buckling));
         worst = fmax(worst, lambda / group->slenderness_any);
     }
     return worst;
@@ -253,7 +275,8 @@ int LLVMFuzzerTestOneInput(const unsigned char *data, size_t size)
     MUST(issues != NULL);
     sct_status status = sct_model_parse("fuzz", text, strlen(text), &model, issues);
     if (getenv("SCT_FUZZ_SHOW") != NULL) fputs(text, stdout);
-    if (status == SCT_OK) status = is_held ? sct_check(model, &settings, &result, issues) : sct_size(model, &settings, &result, issues);
+    if (status == SCT_OK)
+        status = is_held ? sct_check(model, &settings, &result, issues) : sct_size(model, &settings, &result, issues);
     MUST(status == SCT_OK || status == SCT_BAD_INPUT || status == SCT_MECHANISM || status == SCT_NOT_ACCURATE);
     MUST((status == SCT_OK) == (result != NULL) && (status == SCT_OK) == (sct_issues_errors(issues) == 0));
     if (result != NULL) {

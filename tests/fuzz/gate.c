@@ -10,7 +10,8 @@
 static int lines_of(const char *text, size_t size)
 {
     int lines = 1;
-    for (size_t i = 0; i < size; i++) lines += text[i] == '\n' || (text[i] == '\r' && !(i + 1 < size && text[i + 1] == '\n'));
+    for (size_t i = 0; i < size; i++)
+        lines += text[i] == '\n' || (text[i] == '\r' && !(i + 1 < size && text[i + 1] == '\n'));
     return lines;
 }
 
@@ -46,7 +47,8 @@ int LLVMFuzzerTestOneInput(const unsigned char *data, size_t size)
     if (status == SCT_OK) {
         check_places(text, size, values, n);
         sct_document *document = NULL;
-        MUST(sct_document_parse("fuzz", text, size, &document, issues) == SCT_OK); /* joins the places with cJSON's tree */
+        MUST(sct_document_parse("fuzz", text, size, &document, issues) ==
+             SCT_OK); /* joins the places with cJSON's tree */
         sct_document_free(document);
     }
     free(values);

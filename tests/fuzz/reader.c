@@ -37,7 +37,8 @@ static void check_model(const sct_model *m)
         const sct_group *group = &m->groups[g];
         const sct_material *material = &m->materials[group->material];
         MUST(material->E > 0.0 && isfinite(material->E) && material->density > 0.0 && isfinite(material->density));
-        if (group->kind == SCT_FREE_AREA) MUST(group->A_min > 0.0 && group->A_min <= group->A_max && isfinite(group->A_max));
+        if (group->kind == SCT_FREE_AREA)
+            MUST(group->A_min > 0.0 && group->A_min <= group->A_max && isfinite(group->A_max));
         if (group->kind == SCT_HELD_AREA) MUST(group->A_held > 0.0 && isfinite(group->A_held));
         if (group->kind == SCT_LADDER) MUST(group->n_ladder > 0);
     }
