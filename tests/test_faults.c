@@ -80,14 +80,15 @@ static bool fails(call kind)
 #define MINE(f) f
 #define ITS(f) __libc_##f
 #endif
+#define SEEN __attribute__((visibility("default"))) /* by the shared libraries too */
 void *ITS(malloc)(size_t size);
 void *ITS(calloc)(size_t n, size_t size);
 void *ITS(realloc)(void *p, size_t size);
 void ITS(free)(void *p);
-void *MINE(malloc)(size_t size);
-void *MINE(calloc)(size_t n, size_t size);
-void *MINE(realloc)(void *p, size_t size);
-void MINE(free)(void *p);
+SEEN void *MINE(malloc)(size_t size);
+SEEN void *MINE(calloc)(size_t n, size_t size);
+SEEN void *MINE(realloc)(void *p, size_t size);
+SEEN void MINE(free)(void *p);
 
 static void *counted(void *p)
 {
@@ -297,6 +298,9 @@ static int run(const job *j, call kind, long fail_at, bool sticky)
     ck_assert_int_ge(child, 0);
     if (child == 0) {
         if (freopen(STREAM[0], "wb", stdout) == NULL || freopen(STREAM[1], "wb", stderr) == NULL) _exit(99);
+        static char buffer[BUFSIZ]; /* so that the C library asks for none, which it would keep */
+        setvbuf(stdout, buffer, _IOFBF, sizeof buffer);
+        setvbuf(stderr, NULL, _IONBF, 0);
         alarm(60);
         counts = true;
         const int code = j->call != NULL ? j->call() : __real_main(n, arguments);
