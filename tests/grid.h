@@ -54,7 +54,7 @@ static inline void grid_member(grid_writer *w, const char *from, const char *to,
 }
 
 typedef struct grid_name {
-    char text[24];
+    char text[28];
 } grid_name;
 
 static inline grid_name grid_joint(char layer, int i, int j)
