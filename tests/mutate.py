@@ -11,6 +11,7 @@ import argparse
 import os
 import random
 import re
+import resource
 import shutil
 import subprocess
 import sys
@@ -77,7 +78,7 @@ class Copy:
     def __init__(self, root):
         self.root = root
         self.environment = dict(os.environ, OMP_THREAD_LIMIT="1", OPENBLAS_NUM_THREADS="1", LC_ALL="C", BUILD="build",
-                                CK_DEFAULT_TIMEOUT="20", CK_VERBOSITY="minimal")
+                                CK_FORK="no", CK_VERBOSITY="minimal")
         for variable in ("MAKEFLAGS", "MFLAGS", "MAKELEVEL", "SAN", "SCT_TEST_FULL"):
             self.environment.pop(variable, None)
         for name in ("Makefile", "README.md", "DEVELOPERS.md", "SAFETY.md", "include", "src", "models", "tests", "examples", ".ci"):
@@ -97,26 +98,34 @@ class Copy:
                                 "-lamd", "-lcjson", "-lm"], cwd=root, check=True, env=self.environment)
                 self.programs[name[5:-2]] = [out]
         self.scripts = {name: ["sh", "tests/cli_%s.sh" % name] for name in ("readme", "commands", "bad_inputs")}
-        self.usual = {}
+        self.usual = {}  # [s] of processor time, which other work on the machine does not change much
         for name in list(self.programs) + list(self.scripts):
-            start = time.monotonic()
-            if self.passes(name, 900):
-                self.usual[name] = time.monotonic() - start
+            before = self.spent()
+            if self.passes(name, 600):
+                self.usual[name] = self.spent() - before
             else:
                 print("left out: %s fails without a fault" % name, flush=True)
                 self.programs.pop(name, None)
                 self.scripts.pop(name, None)
+
+    @staticmethod
+    def spent():
+        used = resource.getrusage(resource.RUSAGE_CHILDREN)
+        return used.ru_utime + used.ru_stime
 
     def make(self):
         return subprocess.run(["make", "-s", "all", "OPT=-O2 -g0", "SAN=-fvisibility=default -w"], cwd=self.root,
                               env=self.environment, stdout=subprocess.DEVNULL, stderr=subprocess.DEVNULL).returncode == 0
 
     def passes(self, name, limit):
+        """Does a test pass, within `limit` seconds of processor time for each of its processes?"""
         command = self.programs.get(name) or self.scripts[name]
+        seconds = int(limit) + 1
         run = subprocess.Popen(command, cwd=self.root, env=self.environment, stdout=subprocess.PIPE, stderr=subprocess.STDOUT,
-                               text=True, errors="replace", start_new_session=True)
+                               text=True, errors="replace", start_new_session=True,
+                               preexec_fn=lambda: resource.setrlimit(resource.RLIMIT_CPU, (seconds, seconds)))
         try:
-            told = run.communicate(timeout=limit)[0]
+            told = run.communicate(timeout=60 + 20 * seconds)[0]
         except subprocess.TimeoutExpired:
             os.killpg(run.pid, 9)
             run.wait()
@@ -130,7 +139,7 @@ class Copy:
         near = [n for n in self.programs if n == stem or n.startswith(stem) or stem.startswith(n)]
         rest = sorted((n for n in self.programs if n not in near and n not in unlike), key=self.usual.get)
         scripts = [n for n in ("readme", "commands") if n in self.scripts]
-        if path.startswith(("src/analysis", "src/sizing")) and "bad_inputs" in self.scripts: # slow, and tells of structures
+        if path.startswith("src/analysis") and "bad_inputs" in self.scripts: # slow, and tells of structures
             scripts.append("bad_inputs")
         return near + rest + scripts
 
@@ -147,7 +156,7 @@ class Copy:
             if not self.make() or self.object_of(path) == before:
                 return None
             for name in self.order(path):
-                if not self.passes(name, 10 + 10 * self.usual[name]):
+                if not self.passes(name, 2 + 5 * self.usual[name]):
                     return name
             return ""
         finally:
@@ -166,6 +175,7 @@ def main():
     os.chdir(os.path.join(os.path.dirname(os.path.abspath(__file__)), ".."))
     paths = [os.path.join(f, n) for f in FOLDERS for n in sorted(os.listdir(f)) if n.endswith(".c")]
     faults = [f for p in paths if asked.only in p for f in faults_of(p)]
+    texts = {p: open(p).read() for p in paths}
     random.Random(asked.seed).shuffle(faults)
     with tempfile.TemporaryDirectory() as root:
         copy = None if asked.list else Copy(root)
@@ -174,7 +184,7 @@ def main():
             if caught + len(left) == asked.count:
                 break
             path, start, end, replacement, kind = fault
-            text = open(path).read()
+            text = texts[path]
             line = text.count("\n", 0, start) + 1
             words = "%s:%d: %s: %s -> %s" % (path, line, kind, text[start:end].split("\n")[0], replacement.split("\n")[0])
             if asked.list:

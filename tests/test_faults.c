@@ -236,6 +236,8 @@ static const job JOBS[] = {
      NULL},
     {"check a sized model", {"check", SIZED, "-o", OUT}, 3, false, 0, NULL},
     {"explain", {"explain", SIZED, "--member", "T4"}, 0, false, 0, NULL},
+    {"explain as JSON", {"explain", SIZED, "--member", "T4", "--json"}, 0, false, 0, NULL},
+    {"a doubled key", {"check", "tests/bad_inputs/J06-same-joint-twice/model.json"}, 0, false, 3, NULL},
     {"a model with many faults", {"check", WRONG}, 0, false, 3, NULL},
     {"a mechanism", {"size", "tests/bad_inputs/C03-panel-without-diagonal/model.json"}, 0, false, 4, NULL},
     {"size by CHOLMOD", {""}, 0, false, 0, size_with_cholmod},
@@ -483,12 +485,14 @@ START_TEST(every_failing_request_for_memory_ends_with_exit_code_7_and_no_output)
     for (int j = 0; j < N_JOBS; j++) total += 2 * n_calls[j][MEMORY];
 #ifdef __SANITIZE_ADDRESS__
     const double share = is_full() ? 1.0 : 50.0 / (double)total;
+    const long few = 0;
 #else
+    const long few = 100; /* jobs of so many requests are tried wholly: those that end at the gate */
     const double share = is_full() ? 1.0 : 200.0 / (double)total;
 #endif
     for (int j = 0; j < N_JOBS; j++) {
         for (long k = 0; k < 2 * n_calls[j][MEMORY]; k++) {
-            if (sct_random_unit(&random) >= share) continue;
+            if (n_calls[j][MEMORY] > few && sct_random_unit(&random) >= share) continue;
             expect(j, MEMORY, k / 2, k % 2 == 1);
             done++;
         }

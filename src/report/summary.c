@@ -345,7 +345,7 @@ static void add_evidence(const page *p, sct_text *line)
     if (isfinite(r->kkt)) {
         sct_text_format(line, " Best: KKT residual %.1g, ", r->kkt);
         if (r->violation > r->settings.tolerance)
-            sct_text_format(line, "limits exceeded by up to %.3g %%.", 100 * (exp(r->violation) - 1));
+            sct_text_format(line, "limits exceeded by up to %.3g %%.", 100 * expm1(r->violation));
         else if (r->violation > 0)
             sct_text_format(line, "limits met to %.1g.", r->violation);
         else

@@ -36,7 +36,7 @@ typedef struct mass_words {
 
 static mass_words shown_mass(const sct_result *r, double kg)
 {
-    mass_words out;
+    mass_words out = {0};
     const double value = r->us_customary ? kg / POUND : kg;
     const char *unit = r->us_customary ? "lb" : "kg";
     if (fabs(value) < 0.095)
