@@ -1,10 +1,11 @@
 """Plants small faults in the numerical core, one at a time in a copy, and reports how many the tests catch.
 
-    python3 tests/mutate.py [--count N] [--seed S] [--floor PERCENT] [--only PART_OF_A_PATH] [--list]
+    python3 tests/mutate.py [--count N] [--seed S] [--floor PERCENT] [--only PART_OF_A_PATH] [--sanitize] [--list]
 
 A fault is one token changed: a relation, a sign, an operation, a whole number one larger, a real number a tenth larger, a
 condition turned round, a statement left out. Faults that the compiler refuses, or that give the same machine code, are not
-counted. A fault is caught when a test program fails or hangs; the tests named after the changed file run first. The places
+counted. A fault is caught when a test program fails or hangs; the tests named after the changed file run first. With
+--sanitize what the plain build lets pass is tried under the address and undefined-behaviour sanitizers, too. The places
 are drawn by a seeded generator, so that the same sources with the same seed give the same faults.
 """
 import argparse
@@ -75,7 +76,7 @@ def faults_of(path):
 class Copy:
     """A copy of the tree that builds: tests are linked with the shared library, so that one fault costs one compilation."""
 
-    def __init__(self, root):
+    def __init__(self, root, sanitize):
         self.root = root
         self.environment = dict(os.environ, OMP_THREAD_LIMIT="1", OPENBLAS_NUM_THREADS="1", LC_ALL="C", BUILD="build",
                                 CK_FORK="no", CK_VERBOSITY="minimal")
@@ -86,18 +87,11 @@ class Copy:
                 shutil.copytree(name, os.path.join(root, name))
             elif os.path.exists(name):
                 shutil.copy(name, root)
-        self.make()
-        here = os.path.join(root, "build")
-        self.programs = {}
-        for name in sorted(os.listdir(os.path.join(root, "tests"))):
-            if name.startswith("test_") and name.endswith(".c") and name != "test_faults.c": # has no use for wrong numbers
-                out = os.path.join(here, name[:-2])
-                subprocess.run(["cc", "-std=c11", "-O1", "-DNGPL", "-Iinclude", "-Isrc", "-Itests", "-I/usr/include/suitesparse",
-                                "-I/usr/include/cjson", "-o", out, "tests/" + name, "-Lbuild", "-Wl,-rpath," + here,
-                                "-lscantling", "-lcheck", "-lsubunit", "-lrt", "-lpthread", "-llapack", "-lblas", "-lcholmod",
-                                "-lamd", "-lcjson", "-lm"], cwd=root, check=True, env=self.environment)
-                self.programs[name[5:-2]] = [out]
+        self.objects = {}
         self.scripts = {name: ["sh", "tests/cli_%s.sh" % name] for name in ("readme", "commands", "bad_inputs")}
+        self.programs = self.build("build")
+        self.sanitized = self.build("build/sanitize") if sanitize else {}
+        self.sanitized = {name: command for name, command in self.sanitized.items() if self.passes(name, 600, True)}
         self.usual = {}  # [s] of processor time, which other work on the machine does not change much
         for name in list(self.programs) + list(self.scripts):
             before = self.spent()
@@ -113,13 +107,35 @@ class Copy:
         used = resource.getrusage(resource.RUSAGE_CHILDREN)
         return used.ru_utime + used.ru_stime
 
-    def make(self):
-        return subprocess.run(["make", "-s", "all", "OPT=-O2 -g0", "SAN=-fvisibility=default -w"], cwd=self.root,
-                              env=self.environment, stdout=subprocess.DEVNULL, stderr=subprocess.DEVNULL).returncode == 0
+    def build(self, folder):
+        """Makes everything, and the test programs against the shared library; returns them by name."""
+        if not self.make(folder):
+            sys.exit("mutate: the sources do not build")
+        here, programs = os.path.join(self.root, folder), {}
+        for name in sorted(os.listdir(os.path.join(self.root, "tests"))):
+            if name.startswith("test_") and name.endswith(".c") and name != "test_faults.c":  # which looks at no number
+                out = os.path.join(here, name[:-2])
+                subprocess.run(["cc", "-std=c11", "-O1", "-DNGPL", "-Iinclude", "-Isrc", "-Itests", "-I/usr/include/suitesparse",
+                                "-I/usr/include/cjson", "-o", out, "tests/" + name, "-L" + folder, "-Wl,-rpath," + here]
+                               + self.flags(folder).split() +
+                               ["-lscantling", "-lcheck", "-lsubunit", "-lrt", "-lpthread", "-llapack", "-lblas", "-lcholmod",
+                                "-lamd", "-lcjson", "-lm"], cwd=self.root, check=True, env=self.environment)
+                programs[name[5:-2]] = [out]
+        return programs
 
-    def passes(self, name, limit):
+    @staticmethod
+    def flags(folder):
+        return "-fsanitize=address,undefined,float-cast-overflow -fno-sanitize-recover=all" if "sanitize" in folder else ""
+
+    def make(self, folder="build"):
+        flags = "SAN=%s -fvisibility=default -w" % self.flags(folder)
+        optimise = "OPT=-O1 -g0" if "sanitize" in folder else "OPT=-O2 -g0"
+        return subprocess.run(["make", "-s", "all", optimise, flags, "BUILD=" + folder], cwd=self.root, env=self.environment,
+                              stdout=subprocess.DEVNULL, stderr=subprocess.DEVNULL).returncode == 0
+
+    def passes(self, name, limit, sanitized=False):
         """Does a test pass, within `limit` seconds of processor time for each of its processes?"""
-        command = self.programs.get(name) or self.scripts[name]
+        command = (self.sanitized if sanitized else self.programs).get(name) or self.scripts[name]
         seconds = int(limit) + 1
         run = subprocess.Popen(command, cwd=self.root, env=self.environment, stdout=subprocess.PIPE, stderr=subprocess.STDOUT,
                                text=True, errors="replace", start_new_session=True,
@@ -150,7 +166,8 @@ class Copy:
         """None: not counted; else the name of the test that caught it, "" when none did."""
         path, start, end, replacement, _ = fault
         place = os.path.join(self.root, path)
-        text, before = open(place).read(), self.object_of(path)
+        text = open(place).read()
+        before = self.objects.setdefault(path, self.object_of(path))  # first asked for before the file's first fault
         try:
             open(place, "w").write(text[:start] + replacement + text[end:])
             if not self.make() or self.object_of(path) == before:
@@ -158,10 +175,13 @@ class Copy:
             for name in self.order(path):
                 if not self.passes(name, 2 + 5 * self.usual[name]):
                     return name
+            if self.sanitized and self.make("build/sanitize"):
+                for name in self.order(path):
+                    if name in self.sanitized and not self.passes(name, 10 + 20 * self.usual[name], True):
+                        return name + " (sanitized)"
             return ""
         finally:
-            open(place, "w").write(text)
-            self.make()
+            open(place, "w").write(text)  # newer than the object: the next make compiles it again
 
 
 def main():
@@ -170,6 +190,7 @@ def main():
     ask.add_argument("--seed", type=int, default=1)
     ask.add_argument("--floor", type=float, default=0.0, help="fail when fewer per cent are caught")
     ask.add_argument("--only", default="", help="files whose path holds this")
+    ask.add_argument("--sanitize", action="store_true", help="try what is left under the sanitizers, too")
     ask.add_argument("--list", action="store_true", help="print the faults, plant none")
     asked = ask.parse_args()
     os.chdir(os.path.join(os.path.dirname(os.path.abspath(__file__)), ".."))
@@ -178,7 +199,7 @@ def main():
     texts = {p: open(p).read() for p in paths}
     random.Random(asked.seed).shuffle(faults)
     with tempfile.TemporaryDirectory() as root:
-        copy = None if asked.list else Copy(root)
+        copy = None if asked.list else Copy(root, asked.sanitize)
         caught, left = 0, []
         for fault in faults:
             if caught + len(left) == asked.count:

@@ -749,6 +749,17 @@ START_TEST(settings_out_of_range_are_named)
     FAULT(passes, 0, "passes");
     FAULT(floor, NAN, "floor");
     FAULT(per_cluster, 0, "per_cluster");
+#define SOUND(field, good)                                                                                             \
+    do {                                                                                                               \
+        s = sct_descent_defaults();                                                                                    \
+        s.field = good;                                                                                                \
+        ck_assert_ptr_null(sct_descent_settings_fault(&s));                                                            \
+    } while (0)
+    SOUND(max_iterations, 0);
+    SOUND(memory, 1);
+    SOUND(memory, SCT_DESCENT_MEMORY);
+    SOUND(passes, 1);
+    SOUND(per_cluster, 1);
 }
 END_TEST
 

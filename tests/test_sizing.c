@@ -289,6 +289,7 @@ START_TEST(slack_limits_leave_the_smallest_sizes)
     ck_close(r->groups[1].A, 6000e-6, 1e-12);
     ck_assert_int_eq(r->n_prices, 2);
     ck_assert_int_eq(r->prices[0].kind, SCT_CHECK_SMALLEST);
+    ck_assert_ptr_nonnull(strstr(r->verdict, "the smallest sizes allowed govern"));
     sct_result_free(r);
     sct_model_free(model);
     free(text);
@@ -661,6 +662,74 @@ START_TEST(a_number_that_is_none_is_the_worst_and_is_not_kept)
 }
 END_TEST
 
+/* What the reader promises is asked for again where the checks are made: without it every check would pass in silence.
+ */
+START_TEST(a_limit_that_is_no_number_ends_the_check)
+{
+    char *text =
+        triangle("\"area\": 5000, \"second_moment\": { \"c\": 1 }", "\"area\": 6000, \"second_moment\": { \"c\": 1 }",
+                 "\"buckling\": { \"by\": \"Euler and Johnson\", \"safety\": 1.9 }, \"slenderness\": { \"any\": 300, "
+                 "\"compression\": 200 }",
+                 NULL);
+    for (int k = -1; k < 8; k++) {
+        sct_model *model = parse(text);
+        sct_issues *issues = sct_issues_new();
+        sct_result *r = NULL;
+        sct_group *g = &model->groups[1];
+        double *const poisoned[] = {&g->allowable[0],
+                                    &g->allowable[1],
+                                    &g->safety,
+                                    &g->slenderness_any,
+                                    &g->slenderness_compression,
+                                    &model->materials[0].yield,
+                                    &model->members[1].length[0],
+                                    &model->members[1].length[1]};
+        if (k >= 6) model->members[1].source[k - 6] = SCT_LENGTH_RESTRAINT;
+        if (k >= 0) *poisoned[k] = NAN;
+        ck_assert_int_eq(sct_check(model, NULL, &r, issues), k < 0 ? SCT_OK : SCT_SELF_CHECK);
+        ck_assert((r != NULL) == (k < 0));
+        sct_result_free(r);
+        sct_issues_free(issues);
+        sct_model_free(model);
+    }
+    free(text);
+}
+END_TEST
+
+/* Eight triangles apart from one another, each held at one corner only. */
+START_TEST(at_most_six_parts_that_turn_are_told)
+{
+    sct_text t = {0};
+    sct_text_add(
+        &t,
+        "{ \"scantling\": 1, \"dimensions\": 2, \"units\": { \"length\": \"m\", \"force\": \"kN\", \"stress\": \"MPa\" "
+        "}, "
+        "\"materials\": { \"S\": { \"E\": 210000, \"density\": \"7850 kg/m3\", \"allowable\": { \"tension\": 200, "
+        "\"compression\": 160 } } }, \"groups\": { \"all\": { \"material\": \"S\", \"area\": \"500 mm2\" } }, "
+        "\"cases\": { \"Q\": { \"joints\": { \"B0\": [1, 0] } } }, \"combinations\": { \"Q\": { \"for\": "
+        "\"allowable\", \"sum\": { \"Q\": 1 } } }, \"limits\": { \"buckling\": { \"by\": \"none\" } }, \"joints\": {");
+    for (int i = 0; i < 8; i++)
+        sct_text_format(&t,
+                        "%s \"A%d\": { \"at\": [1, %d], \"support\": [\"x\", \"y\"] }, \"B%d\": { \"at\": [4, %d] }, "
+                        "\"C%d\": { \"at\": [2.5, %d] }",
+                        i > 0 ? "," : "", i, 3 * i, i, 3 * i, i, 3 * i + 1);
+    sct_text_add(&t, " }, \"members\": {");
+    for (int i = 0; i < 24; i++)
+        sct_text_format(&t, "%s \"M%d\": { \"from\": \"%c%d\", \"to\": \"%c%d\", \"group\": \"all\" }",
+                        i > 0 ? "," : "", i, "ABC"[i % 3], i / 3, "BCA"[i % 3], i / 3);
+    sct_text_add(&t, " } }");
+    sct_model *model = parse(t.data);
+    sct_issues *issues = sct_issues_new();
+    sct_result *r = NULL;
+    ck_assert_int_eq(sct_check(model, NULL, &r, issues), SCT_MECHANISM);
+    ck_assert_int_eq(sct_issues_errors(issues), 6);
+    ck_assert_ptr_nonnull(strstr(sct_issues_get(issues, 2)->message, "\"A2\" can turn about (1, 6) m"));
+    sct_issues_free(issues);
+    sct_model_free(model);
+    sct_text_free(&t);
+}
+END_TEST
+
 START_TEST(doubts_are_kept_in_the_result)
 {
     char *text = triangle("\"area\": 300", "\"area\": 400",
@@ -718,6 +787,8 @@ int main(void)
     tcase_add_test(c, the_price_of_stress_is_what_a_higher_stress_saves);
     tcase_add_test(c, a_refusal_names_the_limit_that_applies);
     tcase_add_test(c, a_number_that_is_none_is_the_worst_and_is_not_kept);
+    tcase_add_test(c, a_limit_that_is_no_number_ends_the_check);
+    tcase_add_test(c, at_most_six_parts_that_turn_are_told);
     tcase_add_test(c, doubts_are_kept_in_the_result);
     suite_add_tcase(s, c);
     return run_suite(s);
