@@ -20,6 +20,7 @@
 #include <unistd.h>
 
 #include "base/random.h"
+#include "model/gate.h"
 #include "scantling.h"
 
 /* ---- the calls that can be made to fail -------------------------------------------------------------------------- */
@@ -220,6 +221,22 @@ static int size_with_cholmod(void)
     return status == SCT_OK ? 0 : status == SCT_NO_MEMORY ? 7 : status == SCT_CANNOT_READ ? 3 : 70;
 }
 
+/* Tables of the gate grow at keys and at values: a text of many of both. */
+static int look_at_many_values(void)
+{
+    static char text[1 << 16];
+    size_t size = (size_t)snprintf(text, sizeof text, "{");
+    for (int i = 0; i < 300; i++) size += (size_t)snprintf(text + size, sizeof text - size, "\"k%d\": %d, ", i, i);
+    size += (size_t)snprintf(text + size, sizeof text - size, "\"list\": [0");
+    for (int i = 0; i < 3000; i++) size += (size_t)snprintf(text + size, sizeof text - size, ", %d", i);
+    size += (size_t)snprintf(text + size, sizeof text - size, "]}");
+    sct_gate_value *values;
+    size_t n;
+    const sct_status status = sct_gate_check("many", text, size, &values, &n, NULL);
+    free(values);
+    return status == SCT_OK ? 0 : status == SCT_NO_MEMORY ? 7 : 70;
+}
+
 static const job JOBS[] = {
     {"size with outputs", {"size", "models/demo_roof.json", "-o", OUT}, 4, false, 0, NULL},
     {"size over old outputs",
@@ -240,6 +257,7 @@ static const job JOBS[] = {
     {"a doubled key", {"check", "tests/bad_inputs/J06-same-joint-twice/model.json"}, 0, false, 3, NULL},
     {"a model with many faults", {"check", WRONG}, 0, false, 3, NULL},
     {"a mechanism", {"size", "tests/bad_inputs/C03-panel-without-diagonal/model.json"}, 0, false, 4, NULL},
+    {"many values", {""}, 0, false, 0, look_at_many_values},
     {"size by CHOLMOD", {""}, 0, false, 0, size_with_cholmod},
 };
 enum { N_JOBS = sizeof JOBS / sizeof JOBS[0] };

@@ -377,7 +377,8 @@ static bool doubled(scan *s, uint32_t first, const key *second)
     sct_text_free(&pointer);
     sct_text_free(&name);
     sct_text_free(&shown);
-    return failed ? no_memory(s) : true;
+    if (failed) return no_memory(s);
+    return true;
 }
 
 /* Looks for doubled keys in the object that closes here. Hashes of few keys are compared pair by pair; many are sorted.
