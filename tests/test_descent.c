@@ -744,6 +744,9 @@ START_TEST(settings_out_of_range_are_named)
     FAULT(eps, NAN, "eps");
     FAULT(move, 0, "move");
     FAULT(gamma, 1, "gamma");
+    FAULT(gamma, 0, "gamma");
+    FAULT(tol_kkt, 0, "tol_kkt");
+    FAULT(eps, 0, "eps");
     FAULT(memory, 0, "memory");
     FAULT(memory, SCT_DESCENT_MEMORY + 1, "32");
     FAULT(passes, 0, "passes");
