@@ -285,9 +285,9 @@ static sct_status judge_bound(const refinement *w, const sct_accuracy *accuracy,
     if (isnan(accuracy->bound)) {
         return tell(
             w,
-            "accuracy not certified; estimate %.0e of displacements and forces: the structure is almost movable, "
-            "or its members are too unlike, for a proof; ",
-            accuracy->error, SCT_OK, issues);
+            "the answer cannot be vouched for: accuracy not certified; estimate %.0e of displacements and forces: the "
+            "structure is almost movable, or its members are too unlike, for a proof; ",
+            accuracy->error, SCT_NOT_ACCURATE, issues);
     }
     if (!(accuracy->bound <= SCT_ERROR_REFUSE)) {
         return tell(w, "the answer cannot be trusted: its relative error is proven to be below %.0e only; ",
