@@ -4,61 +4,13 @@
 #include <stdbool.h>
 #include <string.h>
 
+#include "count_memory.h"
 #include "report/drawing.h"
 #include "report/labels.h"
 #include "report/quantity.h"
 #include "report/sheet.h"
 #include "report/shown.h"
 #include "scantling.h"
-
-/* ---- making allocations fail (glibc; a sanitizer has its own malloc) ---- */
-
-static long until_failure = -1, live; /* how many allocations still succeed; -1: all */
-
-#if defined(__GLIBC__) && !defined(__SANITIZE_ADDRESS__)
-#define FAILS_ALLOCATIONS 1
-void *__libc_malloc(size_t size);
-void *__libc_calloc(size_t n, size_t size);
-void *__libc_realloc(void *p, size_t size);
-void __libc_free(void *p);
-
-/* One fails, the next ones succeed again: what was lost must not go unnoticed. */
-static bool fails(void)
-{
-    return until_failure >= 0 && until_failure-- == 0;
-}
-
-static void *counted(void *p)
-{
-    live += p != NULL;
-    return p;
-}
-
-void *malloc(size_t size)
-{
-    return fails() ? NULL : counted(__libc_malloc(size));
-}
-
-void *calloc(size_t n, size_t size)
-{
-    return fails() ? NULL : counted(__libc_calloc(n, size));
-}
-
-void *realloc(void *p, size_t size)
-{
-    if (fails()) return NULL;
-    live -= p != NULL;
-    return counted(__libc_realloc(p, size));
-}
-
-void free(void *p)
-{
-    live -= p != NULL;
-    __libc_free(p);
-}
-#else
-#define FAILS_ALLOCATIONS 0
-#endif
 
 /* ---- hand-made results ------------------------------------------------------------------------------------------- */
 
@@ -729,20 +681,21 @@ END_TEST
 START_TEST(a_failed_allocation_is_told_or_changes_nothing)
 {
     truss *(*const make[])(void) = {cantilever, mast, hostile_tower};
-    for (size_t i = 0; FAILS_ALLOCATIONS && i < sizeof make / sizeof *make; i++) {
+    for (size_t i = 0; COUNTS_MEMORY && i < sizeof make / sizeof *make; i++) {
         truss *t = make[i]();
         sct_text whole = draw(t, true, true);
         const sct_write_options options = {.combination = -1, .draw_loads = true, .draw_deflected = true};
         for (long n = 0, failed = 1; failed; n++) {
-            const long before = live;
+            const long before = memory.live;
             sct_text out = {0};
-            until_failure = n;
+            const long point = memory.requests + n;
+            memory.fail_at = point;
             const sct_status status = sct_drawing_svg(&t->r, &options, &out);
-            failed = until_failure < 0; /* the C library's sort may lose its scratch and sort without */
-            until_failure = -1;
+            failed = memory.requests > point; /* the C library's sort may lose its scratch and sort without */
+            memory.fail_at = -1;
             must(status == SCT_NO_MEMORY || (out.size == whole.size && memcmp(out.data, whole.data, out.size) == 0));
             sct_text_free(&out);
-            must(live == before);
+            must(memory.live == before);
         }
         sct_text_free(&whole);
         truss_free(t);

@@ -3,64 +3,16 @@
  * expression, and all bar forces of determinate trusses (from the equilibrium of the joints by LAPACK), to 1e-9. */
 #include "solved.h"
 
+#include <cholmod.h>
+
 #include "analysis/sensitivity.h"
+#include "count_memory.h"
 
 /* LAPACK: dense LU and Cholesky solvers; the independent paths. */
 void dgesv_(const int *n, const int *nrhs, double *a, const int *lda, int *pivots, double *b, const int *ldb,
             int *info);
 void dposv_(const char *uplo, const int *n, const int *nrhs, double *a, const int *lda, double *b, const int *ldb,
             int *info);
-
-/* ---- counting allocations and making them fail (glibc; a sanitizer has its own malloc) ------------------------------
- */
-
-static long allocations, live, fail_at = -1; /* fail_at: number of the allocation that fails; -1: none */
-static bool fails_for_good;                  /* all later ones fail too */
-
-#if defined(__GLIBC__) && !defined(__SANITIZE_ADDRESS__)
-#define COUNTS_ALLOCATIONS 1
-void *__libc_malloc(size_t size);
-void *__libc_calloc(size_t n, size_t size);
-void *__libc_realloc(void *p, size_t size);
-void __libc_free(void *p);
-
-static bool fails(void)
-{
-    const long number = allocations++;
-    return fail_at >= 0 && (number == fail_at || (fails_for_good && number > fail_at));
-}
-
-static void *counted(void *p)
-{
-    live += p != NULL;
-    return p;
-}
-
-void *malloc(size_t size)
-{
-    return fails() ? NULL : counted(__libc_malloc(size));
-}
-
-void *calloc(size_t n, size_t size)
-{
-    return fails() ? NULL : counted(__libc_calloc(n, size));
-}
-
-void *realloc(void *p, size_t size)
-{
-    if (fails()) return NULL;
-    live -= p != NULL;
-    return counted(__libc_realloc(p, size));
-}
-
-void free(void *p)
-{
-    live -= p != NULL;
-    __libc_free(p);
-}
-#else
-#define COUNTS_ALLOCATIONS 0
-#endif
 
 /* ---- building plane and space trusses from tables --------------------------------------------------------------- */
 
@@ -1276,6 +1228,28 @@ START_TEST(survey_coordinates_give_the_answer_of_the_shifted_model)
 }
 END_TEST
 
+START_TEST(the_requests_of_CHOLMOD_itself_are_counted_and_can_fail)
+{
+    if (!COUNTS_MEMORY) return;
+    cholmod_common common;
+    cholmod_start(&common);
+    common.print = 0;
+    const long requests = memory.requests, live = memory.live;
+    cholmod_dense *x = cholmod_zeros(3, 3, CHOLMOD_REAL, &common);
+    const long asked = memory.requests - requests, kept = memory.live - live;
+    cholmod_free_dense(&x, &common);
+    const long left = memory.live - live;
+    memory.fail_at = memory.requests;
+    x = cholmod_zeros(3, 3, CHOLMOD_REAL, &common);
+    memory.fail_at = -1;
+    ck_assert(x == NULL && common.status == CHOLMOD_OUT_OF_MEMORY);
+    ck_assert_int_ge(asked, 2); /* the matrix and its numbers */
+    ck_assert_int_eq(kept, asked);
+    ck_assert_int_eq(left, 0);
+    cholmod_finish(&common);
+}
+END_TEST
+
 START_TEST(an_analysis_allocates_nothing)
 {
     for (int e = SCT_ENGINE_SMALL; e <= SCT_ENGINE_SPARSE; e++) {
@@ -1283,15 +1257,15 @@ START_TEST(an_analysis_allocates_nothing)
         solved s = solve_with(random_truss(&r, 3, 40, 60), (sct_engine)e);
         double *b = calloc((size_t)(40 * s.st->n_dof), sizeof *b);
         bool ok = true; /* Check's own assertions allocate */
-        const long before = allocations;
+        const long before = memory.requests;
         for (int i = 0; i < 5; i++) {
             for (int g = 0; g < s.st->n_groups; g++) s.A[g] *= 1.1;
             ok = sct_solver_analyse(s.solver, s.A, &s.r) == SCT_OK && ok;
             sct_solver_solve(s.solver, 40, b);
         }
-        const long after = allocations;
+        const long after = memory.requests;
         ck_assert(ok);
-        if (COUNTS_ALLOCATIONS) ck_assert_int_gt(before, 0);
+        if (COUNTS_MEMORY) ck_assert_int_gt(before, 0);
         ck_assert_int_eq(after - before, 0);
         free(b);
         solved_free(&s);
@@ -1321,7 +1295,7 @@ static sct_status whole_job(const sct_model *m, sct_engine engine, const double 
 
 START_TEST(every_allocation_may_fail_once_or_for_good_without_a_leak)
 {
-    for (int mode = 0; COUNTS_ALLOCATIONS && mode < 4; mode++) {
+    for (int mode = 0; COUNTS_MEMORY && mode < 4; mode++) {
         const sct_engine engine = mode % 2 == 0 ? SCT_ENGINE_SMALL : SCT_ENGINE_SPARSE;
         sct_random r = {.state = 78};
         sct_model *m = random_truss(&r, 3, 12, 10);
@@ -1329,20 +1303,20 @@ START_TEST(every_allocation_may_fail_once_or_for_good_without_a_leak)
         double A[8];
         for (int g = 0; g < m->n_groups; g++) A[g] = m->groups[g].A_held;
         sct_status status = whole_job(m, engine, A, issues); /* the libraries' own lasting memory is there now */
-        const long first = allocations;
+        const long first = memory.requests;
         const sct_status again = whole_job(m, engine, A, issues);
-        const long points = allocations - first;
+        const long points = memory.requests - first;
         ck_assert(status == SCT_OK && again == SCT_OK && points > 25);
         for (long point = 0; point < points; point++) {
-            const long live_before = live;
-            fail_at = allocations + point;
-            fails_for_good = mode >= 2;
+            const long before = memory.live;
+            memory.fail_at = memory.requests + point;
+            memory.for_good = mode >= 2;
             status = whole_job(m, engine, A, issues);
-            fail_at = -1;
-            const long leaked = live - live_before;
+            memory.fail_at = -1;
+            const long leaked = memory.live - before;
             ck_assert_int_eq(leaked, 0);
             /* qsort and CHOLMOD can do without some of their memory, once */
-            ck_assert(status == SCT_NO_MEMORY || (status == SCT_OK && !fails_for_good));
+            ck_assert(status == SCT_NO_MEMORY || (status == SCT_OK && !memory.for_good));
         }
         sct_issues_free(issues);
         mb_free(m);
@@ -1396,6 +1370,7 @@ int main(void)
     tcase_add_test(facts, cases_superpose_reverse_and_scale);
     tcase_add_test(facts, stiffness_times_c_divides_displacements_by_c_and_keeps_forces);
     tcase_add_test(facts, survey_coordinates_give_the_answer_of_the_shifted_model);
+    tcase_add_test(facts, the_requests_of_CHOLMOD_itself_are_counted_and_can_fail);
     tcase_add_test(facts, an_analysis_allocates_nothing);
     tcase_add_test(facts, every_allocation_may_fail_once_or_for_good_without_a_leak);
     suite_add_tcase(suite, closed);
