@@ -6,10 +6,9 @@
 #include <stdlib.h>
 #include <string.h>
 
-#include "analysis/elongation.h"
 #include "base/random.h"
 
-enum { ITERATIONS = 4, MOST_TRIALS = 5 };
+enum { ITERATIONS = 3, MOST_TRIALS = 5 };
 static const double PART = 0.7; /* of the estimate, tried first: an estimate is too high as a rule, by a few per cent */
 /* Entries that fall below the smallest double, in the scaled matrix and in its factor: DEVELOPERS.md, "Accuracy". */
 static const double UNDERFLOW_PER_ENTRY = 0x1p-500;
@@ -20,17 +19,17 @@ typedef struct scaled {
     sct_solver *solver;
     const double *s;
     size_t n, n_values;
-    long double *sums; /* n_values: the scaled matrix before it is rounded */
-    double *values;    /* n_values: A, rounded once; then A - alpha I */
-    double *row_sum;   /* n: of the absolute values of all terms */
-    double *count;     /* n: bars at each unknown */
-    double *y, *z;     /* n */
+    double *values;   /* n_values: A; its diagonal less alpha while a shift is tried */
+    double *diagonal; /* n: of A */
+    double *row_sum;  /* n: of the absolute values of all terms */
+    double *count;    /* n: bars at each unknown */
+    double *y, *z;    /* n */
 } scaled;
 
 static void scaled_free(scaled *a)
 {
-    free(a->sums);
     free(a->values);
+    free(a->diagonal);
     free(a->row_sum);
     free(a->count);
     free(a->y);
@@ -39,13 +38,13 @@ static void scaled_free(scaled *a)
 
 static bool scaled_allocate(scaled *a)
 {
-    a->sums = calloc(a->n_values + 1, sizeof *a->sums);
-    a->values = malloc((a->n_values + 1) * sizeof *a->values);
+    a->values = calloc(a->n_values + 1, sizeof *a->values);
+    a->diagonal = malloc((a->n + 1) * sizeof *a->diagonal);
     a->row_sum = calloc(a->n + 1, sizeof *a->row_sum);
     a->count = calloc(a->n + 1, sizeof *a->count);
     a->y = malloc((a->n + 1) * sizeof *a->y);
     a->z = malloc((a->n + 1) * sizeof *a->z);
-    return a->sums && a->values && a->row_sum && a->count && a->y && a->z;
+    return a->values && a->diagonal && a->row_sum && a->count && a->y && a->z;
 }
 
 static int diagonal(const sct_pattern *pattern, size_t i)
@@ -53,45 +52,46 @@ static int diagonal(const sct_pattern *pattern, size_t i)
     return pattern->column[i + 1] - 1; /* rows ascend and end at the diagonal */
 }
 
-/* False when a diagonal entry is not positive and finite. */
+/* False when a diagonal entry is not positive, or so far from 1 that underflow would count. */
 static bool find_scale(size_t n, const double K[], const sct_pattern *pattern, double s[])
 {
     for (size_t i = 0; i < n; i++) {
         const double K_ii = K[diagonal(pattern, i)];
-        if (!(K_ii > 0.0 && K_ii <= DBL_MAX)) return false;
+        if (!(K_ii >= 0x1p-500 && K_ii <= 0x1p500)) return false;
         s[i] = ldexp(1.0, -(int)lround(0.5 * log2(K_ii)));
     }
     return true;
 }
 
+/* A = sum over bars of t t', t = sqrt(E A / L) S b. A scaled t is below 1.5 (its square is part of a diagonal entry),
+ * so that nothing that underflows is multiplied by anything large. */
 static void assemble(scaled *a, const double A[])
 {
     for (int e = 0; e < a->st->n_bars; e++) {
         const sct_bar *bar = &a->st->bars[e];
         const int *place = sct_solver_places(a->solver, e);
-        const long double k = sct_axial_stiffness(bar, A);
-        long double scaled_b[6], sum = 0.0L;
+        const double root = sqrt(bar->E * A[bar->group] / bar->L);
+        double t[6], sum = 0.0;
         for (int i = 0; i < bar->n_dof; i++) {
-            scaled_b[i] = (long double)bar->b[i] * a->s[bar->dof[i]];
-            sum += fabsl(scaled_b[i]);
+            t[i] = root * a->s[bar->dof[i]] * bar->b[i];
+            sum += fabs(t[i]);
         }
         for (int j = 0, p = 0; j < bar->n_dof; j++) {
-            for (int i = 0; i <= j; i++, p++) a->sums[place[p]] += k * scaled_b[i] * scaled_b[j];
-            a->row_sum[bar->dof[j]] += (double)(k * fabsl(scaled_b[j]) * sum);
+            for (int i = 0; i <= j; i++, p++) a->values[place[p]] += t[i] * t[j];
+            a->row_sum[bar->dof[j]] += fabs(t[j]) * sum;
             a->count[bar->dof[j]] += 1.0;
         }
     }
-    for (size_t p = 0; p < a->n_values; p++) a->values[p] = (double)a->sums[p];
+    for (size_t i = 0; i < a->n; i++) a->diagonal[i] = a->values[diagonal(a->pattern, i)];
 }
 
-/* || values - S K S ||_2 at most: each entry is a sum of as many terms as bars meet, five roundings in each, rounded to
- * double at the end. */
+/* || values - S K S ||_2 at most: each entry is a sum of as many terms as bars meet; a term has 9 roundings: 4 in each
+ * t (E A / L 2, root, product), one where they meet. */
 static double assembly_rounding(const scaled *a)
 {
     double most = 0.0;
     for (size_t i = 0; i < a->n; i++) {
-        const double relative = 0x1p-53 + (double)sct_gamma_long(a->count[i] + 6.0L);
-        most = fmax(most, relative * a->row_sum[i] * (1.0 + sct_gamma(a->count[i] + 10.0)));
+        most = fmax(most, sct_gamma(a->count[i] + 8.0) * a->row_sum[i] * (1.0 + sct_gamma(a->count[i] + 16.0)));
     }
     return most;
 }
@@ -105,9 +105,9 @@ static double estimate(scaled *a)
     for (int k = 0; k < ITERATIONS; k++) {
         double length = 0.0, product = 0.0;
         for (size_t i = 0; i < a->n; i++) length += a->z[i] * a->z[i];
-        length = sqrt(length);
+        const double by_length = 1.0 / sqrt(length);
         for (size_t i = 0; i < a->n; i++) {
-            a->y[i] = a->z[i] / length;
+            a->y[i] = a->z[i] * by_length;
             a->z[i] = a->y[i] / a->s[i];
         }
         sct_solver_solve(a->solver, 1, a->z);
@@ -125,10 +125,7 @@ static double estimate(scaled *a)
 /* Factors A - alpha I; *lambda: the bound that it proves, 0 when it has no factor. */
 static sct_status try_shift(scaled *a, double alpha, double *lambda)
 {
-    for (size_t i = 0; i < a->n; i++) {
-        const int p = diagonal(a->pattern, i);
-        a->values[p] = (double)a->sums[p] - alpha;
-    }
+    for (size_t i = 0; i < a->n; i++) a->values[diagonal(a->pattern, i)] = a->diagonal[i] - alpha;
     sct_factor *factor = sct_solver_factor(a->solver);
     const sct_status status = sct_factor_update(factor, a->values, NULL);
     *lambda = 0.0;

@@ -12,7 +12,7 @@
  * s        out, n_dof
  * *lambda  out: > 0, or 0 when nothing could be proven (or there are no unknowns)
  *
- * SCT_OK, SCT_NO_MEMORY. Cost: one factorization as a rule (more where the estimate was too high), six solves.
+ * SCT_OK, SCT_NO_MEMORY. Cost: one factorization as a rule (more where the estimate was too high), three solves.
  * Source: Rump, Verification of positive definiteness, BIT 46, 2006; Higham, Accuracy and Stability of Numerical
  * Algorithms, 2nd ed., theorem 10.3. Derivation: DEVELOPERS.md, "Accuracy".
  */
