@@ -50,6 +50,7 @@ static inline void random_loads(unsigned long long *seed, double L, int n, sct_b
         if (i % 5 == 2) b = L;
         if (i % 5 == 3) a = load[i - 1].a;
         load[i] = (sct_beam_load){.is_point = i % 2 == 0, .a = fmin(a, b), .b = fmax(a, b)};
+        if (load[i].is_point && i % 5 == 1) load[i].b = 0;
         if (load[i].is_point) load[i].a = load[i].b;
         for (int j = 0; j < 3; ++j) {
             if (load[i].is_point) {
