@@ -2,6 +2,8 @@
 #include "support.h"
 
 #include "analysis/accuracy.h"
+#include "base/number.h"
+#include "base/random.h"
 #include "analysis/mechanism.h"
 #include "truss_shapes.h"
 
@@ -286,6 +288,22 @@ START_TEST(an_error_between_the_limits_is_a_warning_with_both_members)
 }
 END_TEST
 
+START_TEST(a_printed_bound_is_never_below_the_bound)
+{
+    sct_random r = {1};
+    for (int i = 0; i < 20000; i++) {
+        char text[SCT_NUMBER_ROOM];
+        const double bound = pow(10.0, 600.0 * sct_random_unit(&r) - 300.0);
+        sct_number_format(text, sizeof text, "%.0e", sct_number_rounded_up(bound));
+        ck_assert_double_ge(atof(text), bound);
+        ck_assert_double_le(atof(text), 2.0 * bound * (1.0 + 1e-12));
+    }
+    ck_assert_double_eq(sct_number_rounded_up(3e-8), 3e-8);
+    ck_assert_double_eq(sct_number_rounded_up(3.01e-8), 4e-8);
+    ck_assert_double_eq(sct_number_rounded_up(9.01e-8), 1e-7);
+}
+END_TEST
+
 /* ---- what must not be refused --------------------------------------------------------------------------------------
  */
 
@@ -395,6 +413,7 @@ int main(void)
     tcase_add_test(tests, ratios_of_the_catalogue_get_their_verdict);
     tcase_add_test(tests, a_bar_of_1e_14_of_the_rest_is_refused_with_its_name);
     tcase_add_test(tests, an_error_between_the_limits_is_a_warning_with_both_members);
+    tcase_add_test(tests, a_printed_bound_is_never_below_the_bound);
     tcase_add_test(tests, heat_in_a_determinate_truss_gives_no_force_and_no_refusal);
     tcase_add_test(tests, joints_that_stand_still_by_symmetry_are_no_error);
     tcase_add_test(tests, an_empty_case_beside_a_loaded_one_is_no_error);

@@ -15,6 +15,7 @@
 #include "analysis/certificate.h"
 #include "analysis/elongation.h"
 #include "analysis/motion.h"
+#include "base/number.h"
 
 enum { MOST_STEPS = 5 }; /* two always; more while they win digits and two have left an error above ENOUGH */
 
@@ -291,11 +292,11 @@ static sct_status judge_bound(const refinement *w, const sct_accuracy *accuracy,
     }
     if (!(accuracy->bound <= SCT_ERROR_REFUSE)) {
         return tell(w, "the answer cannot be trusted: its relative error is proven to be below %.0e only; ",
-                    accuracy->bound, SCT_NOT_ACCURATE, issues);
+                    sct_number_rounded_up(accuracy->bound), SCT_NOT_ACCURATE, issues);
     }
     if (accuracy->bound > SCT_ERROR_WARN) {
-        return tell(w, "the relative error of displacements and forces may be as large as %.0e; ", accuracy->bound,
-                    SCT_OK, issues);
+        return tell(w, "the relative error of displacements and forces may be as large as %.0e; ",
+                    sct_number_rounded_up(accuracy->bound), SCT_OK, issues);
     }
     return SCT_OK;
 }

@@ -133,7 +133,7 @@ static sct_status try_shift(scaled *a, double alpha, double *lambda)
     const double n = (double)a->n, shift_rounding = 4.0 * 0x1p-53; /* of a diagonal of at most 2 + alpha */
     const double lost =
         sct_factor_rounding(factor) + assembly_rounding(a) + shift_rounding + n * n * UNDERFLOW_PER_ENTRY;
-    *lambda = fmax((alpha - lost) * (1.0 - 0x1p-40), 0.0);
+    *lambda = fmax((alpha - lost * (1.0 + 0x1p-50)) * (1.0 - 0x1p-50), 0.0); /* rounded downwards */
     return SCT_OK;
 }
 

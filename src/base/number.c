@@ -84,3 +84,16 @@ bool sct_number_read(const char *text, size_t length, double *value)
     *value = x;
     return true;
 }
+
+double sct_number_rounded_up(double bound)
+{
+    char text[SCT_NUMBER_ROOM];
+    double up = bound;
+    if (!(bound > 0.0 && bound < 1e300)) return bound;
+    sct_number_format(text, sizeof text, "%.0e", bound);
+    sct_number_read(text, strlen(text), &up);
+    if (up >= bound) return up;
+    sct_number_format(text, sizeof text, "%.0e", up + up / (text[0] - '0')); /* one more in that digit */
+    sct_number_read(text, strlen(text), &up);
+    return up;
+}

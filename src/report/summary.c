@@ -4,6 +4,7 @@
 #include <math.h>
 #include <string.h>
 
+#include "base/number.h"
 #include "report/shown.h"
 #include "report/table.h"
 
@@ -449,7 +450,7 @@ static void add_accuracy(const page *p)
             &line,
             "displacements and forces are good to about %.0e, proven to %.0e of each (of 1/1000 of the largest "
             "where they are smaller).",
-            a->error, a->bound);
+            a->error, sct_number_rounded_up(a->bound));
     }
     if (line.failed) p->out->failed = true;
     sct_text_add(p->out, "\n");
