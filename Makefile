@@ -52,6 +52,9 @@ $(BUILD)/tests/%: tests/%.c $(BUILD)/libscantling.a
 	@mkdir -p $(@D)
 	$(CC) $(CPPFLAGS) $(CFLAGS) -MMD -MP -Itests -o $@ $< $(BUILD)/libscantling.a $(LDFLAGS) -lcheck -lsubunit -lrt -lpthread -llapack -lblas $(LDLIBS)
 
+# Requests to arenas are led through the test.
+$(BUILD)/tests/test_memory: private LDFLAGS += -Wl,--wrap=sct_arena_array -Wl,--wrap=sct_arena_string
+
 # The program whole, its main and its calls to the system led through the test.
 comma := ,
 FAULTS := main open read write close fsync rename link unlink mkdir stat lstat fstat access fflush \

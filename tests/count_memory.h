@@ -15,11 +15,20 @@
 #endif
 
 static struct {
-    long requests; /* malloc, calloc and realloc so far */
-    long live;     /* blocks not given back */
-    long fail_at;  /* number of the request that fails; -1: none */
-    bool for_good; /* all later ones fail too */
+    long requests;              /* malloc, calloc and realloc so far */
+    long live;                  /* blocks not given back */
+    long fail_at;               /* number of the request that fails; -1: none */
+    bool for_good;              /* all later ones fail too */
+    void (*seen)(long request); /* told of every request when set; may ask for nothing itself */
 } memory = {.fail_at = -1};
+
+/* Counts a request; does it fail? */
+static inline bool memory_fails(void)
+{
+    const long number = memory.requests++;
+    if (memory.seen != NULL) memory.seen(number);
+    return memory.fail_at >= 0 && (number == memory.fail_at || (memory.for_good && number > memory.fail_at));
+}
 
 #if defined(__GLIBC__) && !defined(__SANITIZE_ADDRESS__)
 #define COUNTS_MEMORY 1
@@ -32,12 +41,6 @@ SEEN void *malloc(size_t size);
 SEEN void *calloc(size_t n, size_t size);
 SEEN void *realloc(void *p, size_t size);
 SEEN void free(void *p);
-
-static bool memory_fails(void)
-{
-    const long number = memory.requests++;
-    return memory.fail_at >= 0 && (number == memory.fail_at || (memory.for_good && number > memory.fail_at));
-}
 
 static void *memory_counted(void *p)
 {

@@ -10,7 +10,7 @@ trap 'rm -rf "$work"' EXIT
 programs=0 bad=0
 for program in "$@"; do
     case $program in
-    */test_faults) continue ;; # has a malloc of its own, and counts what is lost itself
+    */test_faults | */test_memory) continue ;; # have a malloc of their own, and count what is lost themselves
     */test_benchmarks | */test_large) continue ;; # hours
     esac
     valgrind -q --leak-check=full --errors-for-leak-kinds=definite,indirect --error-exitcode=99 --log-file="$work/log.%p" \

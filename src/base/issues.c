@@ -16,6 +16,7 @@ struct sct_issues {
     sct_arena *arena;
     sct_issue list[MOST_ERRORS + MOST_OTHERS + 1]; /* + 1: that more are not shown */
     int n, errors, others;
+    bool lost; /* words of a message */
 };
 
 #define STATUS_TEXT(name, text) text,
@@ -81,7 +82,14 @@ static const char *keep(sct_issues *issues, const char *text)
 {
     if (text == NULL) return NULL;
     const char *copy = sct_arena_string(issues->arena, text, strlen(text));
-    return copy != NULL ? copy : "(out of memory)";
+    if (copy != NULL) return copy;
+    issues->lost = true;
+    return "(out of memory)";
+}
+
+bool sct_issues_lost(const sct_issues *issues)
+{
+    return issues != NULL && issues->lost;
 }
 
 /* Is the same remark there already? One job may look at a structure more than once. */

@@ -74,6 +74,7 @@ void sct_doubt_held_slenderness(const sct_duty *duty, const sct_design *design, 
 
 sct_status sct_doubts_keep(sct_result *r, const sct_issues *issues)
 {
+    if (sct_issues_lost(issues)) return SCT_NO_MEMORY; /* a result without some of its warnings is none */
     const int n = sct_issues_count(issues);
     r->warnings = sct_result_array(r, (size_t)n, sizeof *r->warnings);
     if (r->warnings == NULL) return SCT_NO_MEMORY;
