@@ -313,8 +313,8 @@ static const mistake MISTAKES[] = {
      "36:77: error: /cases/T/members/T1/temperature: material \"S355H\" has no \"expansion\"; expected such as \"12e-6 "
      "1/K\" there"},
     {"\"at\": [3, 0]", "\"at\": [3, 0, 0]",
-     "17:18: error: /joints/L1/at: found 3 entries; expected 2: a coordinate along x and y (a joint of a plane truss "
-     "has no third component and no moment)"},
+     "17:18: error: /joints/L1/at: found 3 entries; expected 2: a coordinate along x and y (a plane model has no third "
+     "component)"},
     {"\"at\": [3, 0]", "\"at\": [3]",
      "17:18: error: /joints/L1/at: found 1 entry; expected 2: a coordinate along x and y"},
     {"\"at\": [3, 0]", "\"at\": [1e9, 0]",
@@ -326,16 +326,16 @@ static const mistake MISTAKES[] = {
     {"\"at\": [3, 0]", "\"at\": [3000000, 0]",
      "17:19: error: /joints/L1/at/0: found 3000000 m; expected a coordinate from -100000 to 100000 m"},
     {"\"support\": [\"y\"]", "\"support\": [\"z\"]",
-     "18:38: error: /joints/L2/support/0: found \"z\"; expected a direction: \"x\", \"y\", or a vector such as [0.6, "
-     "0.8]"},
+     "18:38: error: /joints/L2/support/0: found \"z\"; expected a direction: \"x\", \"y\", \"rotation\", or a vector such "
+     "as [0.6, 0.8]"},
     {"\"support\": [\"y\"]", "\"support\": [\"y\", \"y\"]",
      "18:43: error: /joints/L2/support/1: the directions before this one hold it already; expected independent "
      "directions"},
     {"\"support\": [\"y\"]", "\"support\": [\"y\", \"x\", [1,1]]",
      "18:37: error: /joints/L2/support: found 3 directions; at most 2 can be held"},
     {"\"support\": [\"y\"]", "\"support\": \"y\"",
-     "18:37: error: /joints/L2/support: found a string; expected an array of the directions held, such as [\"x\", "
-     "\"y\"]"},
+     "18:37: error: /joints/L2/support: found \"y\"; expected \"fixed\", or an array of the directions held, such as "
+     "[\"x\", \"y\"]"},
     {"\"support\": [\"y\"]", "\"support\": [[0,0]]",
      "18:38: error: /joints/L2/support/0: found a direction of length zero; expected a vector that points somewhere"},
     {"\"support\": [\"x\", \"y\"]", "\"support\": [[1,1],[2,2]]",
@@ -420,8 +420,8 @@ static const mistake MISTAKES[] = {
     {"\"U1\": [0, -4.2]", "\"U9\": [0, -4.2]",
      "34:66: error: /cases/G/joints/U9: no joint \"U9\"; did you mean \"U1\"?"},
     {"\"U1\": [0, -4.2]", "\"U1\": [0, -4.2, 1]",
-     "34:72: error: /cases/G/joints/U1: found 3 entries; expected 2: a force along x and y (a joint of a plane truss "
-     "has no third component and no moment)"},
+     "34:72: error: /cases/G/joints/U1: found 3 entries; expected 2: a force along x and y (moments stand in "
+     "\"moments\")"},
     {"\"U1\": [0, -4.2]", "\"U1\": [0, -1e30]",
      "34:76: error: /cases/G/joints/U1/1: found -1e+30 kN; expected a force from -1e+12 to 1e+12 N"},
     {"\"U1\": [0, -4.2]", "\"U1\": [0, \"4.2 kg\"]",
@@ -436,13 +436,13 @@ static const mistake MISTAKES[] = {
      "36:77: error: /cases/T/members/T1/temperature: found 300000 K; expected a temperature difference from -2000 to "
      "2000 K"},
     {"{\"temperature\": 30, \"lack_of_fit\": \"2 mm\"}", "{}",
-     "36:61: error: /cases/T/members/T1: found neither \"temperature\" nor \"lack_of_fit\"; expected one of them "
-     "(loads act on joints)"},
+     "36:61: error: /cases/T/members/T1: found neither \"temperature\", \"gradient\" nor \"lack_of_fit\"; expected "
+     "one of them (loads on members stand in \"loads\")"},
     {"\"T1\": {\"temperature\": 30", "\"T9\": {\"temperature\": 30",
      "36:55: error: /cases/T/members/T9: no member \"T9\"; did you mean \"T1\"?"},
     {"{\"temperature\": 30", "{\"load\": 3, \"temperature\": 30",
      "36:62: error: /cases/T/members/T1/load: unknown key \"load\"; an action on a member has \"temperature\", "
-     "\"lack_of_fit\""},
+     "\"lack_of_fit\", \"gradient\""},
     {"\"for\": \"allowable\"", "\"for\": \"strength\"",
      "39:19: error: /combinations/A1/for: found \"strength\", which has factored actions; the allowable stress checks "
      "of this version work on unfactored ones: expected \"allowable\" or \"service\""},

@@ -1,6 +1,7 @@
 /* The section families that come with the program. */
 #include "families.h"
 
+#include <math.h>
 #include <stdint.h>
 #include <stdlib.h>
 #include <string.h>
@@ -46,13 +47,16 @@ bool sct_sections_sort(sct_section sections[], int n)
 /* ---- reading ---------------------------------------------------------------------------------------------------- */
 
 /* The columns that are read, each under the first of its headings that stands in the first record. */
-enum { NAME, AREA, IN_PLANE, OUT_OF_PLANE, DEPTH, N_COLUMNS };
+enum { NAME, AREA, IN_PLANE, OUT_OF_PLANE, DEPTH, N_NEEDED, W_IN_PLANE = N_NEEDED, W_OUT_OF_PLANE, TORSION, N_COLUMNS };
 static const char *const HEADINGS[N_COLUMNS][3] = {
     [NAME] = {"name"},
     [AREA] = {"A_mm2"},
     [IN_PLANE] = {"Iy_mm4", "Iy_inplane_mm4"},
     [OUT_OF_PLANE] = {"Iz_mm4", "Iz_outplane_mm4"},
     [DEPTH] = {"h_mm", "D_mm", "a_mm"},
+    [W_IN_PLANE] = {"Wel_y_mm3"},
+    [W_OUT_OF_PLANE] = {"Wel_z_mm3"},
+    [TORSION] = {"It_mm4", "It_thin_mm4"},
 };
 
 static bool find_columns(const sct_csv *csv, int column[N_COLUMNS])
@@ -61,7 +65,7 @@ static bool find_columns(const sct_csv *csv, int column[N_COLUMNS])
         column[i] = -1;
         for (int k = 0; k < 3 && column[i] < 0 && HEADINGS[i][k] != NULL; k++)
             column[i] = sct_csv_column(csv, HEADINGS[i][k]);
-        if (column[i] < 0) return false;
+        if (column[i] < 0 && i < N_NEEDED) return false;
     }
     return true;
 }
@@ -70,6 +74,16 @@ static bool read_positive(const sct_csv *csv, int column, double *value)
 {
     const char *text = csv->field[column];
     return sct_number_read(text, strlen(text), value) && *value > 0;
+}
+
+/* A value in its SI unit; NAN where there is no such column. False: it is no number above zero. */
+static bool read_optional(const sct_csv *csv, int column, double per_unit, double *value)
+{
+    *value = (double)NAN;
+    if (column < 0) return true;
+    const bool read = read_positive(csv, column, value);
+    *value /= per_unit;
+    return read;
 }
 
 /* One record as a section; false: damaged. The name is left in the record. */
@@ -86,7 +100,9 @@ static bool read_section(const sct_csv *csv, const int column[N_COLUMNS], sct_se
     section->I[SCT_IN_PLANE] = Iy_mm4 / 1e12;
     section->I[SCT_OUT_OF_PLANE] = Iz_mm4 / 1e12;
     section->depth = depth_mm / 1e3;
-    return true;
+    return read_optional(csv, column[W_IN_PLANE], 1e9, &section->W[SCT_IN_PLANE]) &&
+           read_optional(csv, column[W_OUT_OF_PLANE], 1e9, &section->W[SCT_OUT_OF_PLANE]) &&
+           read_optional(csv, column[TORSION], 1e12, &section->J);
 }
 
 static int count_records(sct_csv *csv, const sct_shipped_family *shipped)

@@ -22,7 +22,8 @@ int sct_family_find(const char *name);
  * Reads a shipped family: its sections, lightest first. The family's `where` is left empty.
  *
  * Columns: name; A_mm2; Iy_mm4 (or Iy_inplane_mm4), in plane; Iz_mm4 (or Iz_outplane_mm4), out of plane; D_mm, h_mm or
- * a_mm, the depth. SCT_OK, SCT_NO_MEMORY; SCT_SELF_CHECK: the built-in text is damaged.
+ * a_mm, the depth; where there are such columns, Wel_y_mm3 and Wel_z_mm3, the section moduli, and It_mm4 (or
+ * It_thin_mm4), the torsion constant. SCT_OK, SCT_NO_MEMORY; SCT_SELF_CHECK: the built-in text is damaged.
  */
 sct_status sct_family_load(int index, sct_arena *arena, sct_family *family);
 

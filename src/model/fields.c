@@ -290,10 +290,18 @@ static sct_quantity quantity_of(int slot)
     return slot == SCT_DISPLACEMENT ? SCT_LENGTH : (sct_quantity)slot;
 }
 
+/* The key of /units that gives a slot its unit; NULL: none does. */
 static const char *slot_key(int slot)
 {
-    static const char *const KEYS[SCT_UNIT_SLOTS] = {
-        "length", "force", "stress", "area", "second_moment", "density", "temperature", "expansion", "displacement"};
+    static const char *const KEYS[SCT_UNIT_SLOTS] = {[SCT_LENGTH] = "length",
+                                                     [SCT_FORCE] = "force",
+                                                     [SCT_STRESS] = "stress",
+                                                     [SCT_AREA] = "area",
+                                                     [SCT_SECOND_MOMENT] = "second_moment",
+                                                     [SCT_DENSITY] = "density",
+                                                     [SCT_TEMPERATURE] = "temperature",
+                                                     [SCT_GRADIENT] = "temperature",
+                                                     [SCT_DISPLACEMENT] = "displacement"};
     return KEYS[slot];
 }
 
@@ -306,11 +314,11 @@ static bool read_quantity(sct_fields *f, const sct_node *node, const sct_range *
     if (sct_node_kind_of(node) == SCT_NUMBER) {
         *value = sct_node_number(node);
         *unit = f->unit[range->slot];
-        if (*unit == NULL && !f->unit_is_wrong[range->slot])
-            sct_fields_error(f, node,
-                             "found a number without a unit; expected %s such as \"%s\", or a unit in /units/%s",
-                             range->what, example, slot_key(range->slot));
-        return *unit != NULL;
+        if (*unit != NULL || f->unit_is_wrong[range->slot]) return *unit != NULL;
+        const char *key = slot_key(range->slot);
+        sct_fields_error(f, node, "found a number without a unit; expected %s such as \"%s\"%s%s", range->what, example,
+                         key != NULL ? ", or a unit in /units/" : "", key != NULL ? key : "");
+        return false;
     }
     const char *text = sct_node_string(node);
     char fault[SCT_UNIT_FAULT_ROOM];
@@ -383,14 +391,16 @@ bool sct_fields_value(sct_fields *f, const sct_node *node, const sct_range *rang
 
 /* ---- vectors ---------------------------------------------------------------------------------------------------- */
 
-static bool has_dimensions(sct_fields *f, const sct_node *node, const char *what)
+static bool has_dimensions(sct_fields *f, const sct_node *node, const sct_range *range)
 {
     const int n = sct_node_count(node);
     if (f->dimensions == 0 ? n == 2 || n == 3 : n == f->dimensions) return true;
-    const char *hint =
-        f->dimensions == 2 && n == 3 ? " (a joint of a plane truss has no third component and no moment)" : "";
+    const char *hint = "";
+    if (f->dimensions == 2 && n == 3)
+        hint = range->slot == SCT_FORCE ? " (moments stand in \"moments\")" : " (a plane model has no third component)";
     sct_fields_error(f, node, "found %d entr%s; expected %d: %s along %s%s", n, n == 1 ? "y" : "ies",
-                     f->dimensions == 0 ? 2 : f->dimensions, what, f->dimensions == 3 ? "x, y and z" : "x and y", hint);
+                     f->dimensions == 0 ? 2 : f->dimensions, range->what, f->dimensions == 3 ? "x, y and z" : "x and y",
+                     hint);
     return false;
 }
 
@@ -403,7 +413,7 @@ bool sct_fields_vector(sct_fields *f, const sct_node *node, const sct_range *ran
                          f->dimensions == 3 ? "three components" : "two components");
         return false;
     }
-    if (!has_dimensions(f, node, range->what)) return false;
+    if (!has_dimensions(f, node, range)) return false;
     bool right = true;
     int i = 0;
     for (const sct_node *c = sct_node_first(node); c != NULL; c = sct_node_next(c))

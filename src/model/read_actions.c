@@ -1,9 +1,8 @@
-/* What acts on a model and what is asked of it: load cases, combinations, deflection limits. */
+/* What acts on a model: load cases, and their combinations. */
 #include <math.h>
-#include <stdio.h>
 #include <string.h>
 
-#include "base/number.h"
+#include "axes.h"
 #include "reader.h"
 
 /* ---- load cases
@@ -18,97 +17,157 @@ static bool open_object(sct_reader *r, const sct_node *node, const char *expecte
     return true;
 }
 
-/* The part of v that the supports of a joint do not hold, relative to its length. */
-static double part_not_held(const sct_joint *joint, const double v[3])
+/* The part of v that n directions held do not span, relative to its length. */
+static double part_not_held(const double held[][3], int n, const double v[3])
 {
-    double basis[3][3], rest[3] = {v[0], v[1], v[2]};
+    double basis[3][3], rest[3];
     const double length = hypot(hypot(v[0], v[1]), v[2]);
     if (!(length > 0)) return 0.0;
-    int n = 0;
-    for (int i = 0; i < joint->n_held; i++) { /* an orthonormal basis of the directions held: Gram and Schmidt */
-        double d[3] = {joint->held[i][0], joint->held[i][1], joint->held[i][2]};
-        for (int k = 0; k < n; k++) {
-            const double along = d[0] * basis[k][0] + d[1] * basis[k][1] + d[2] * basis[k][2];
-            for (int c = 0; c < 3; c++) d[c] -= along * basis[k][c];
-        }
-        const double norm = sqrt(d[0] * d[0] + d[1] * d[1] + d[2] * d[2]);
-        for (int c = 0; c < 3; c++) basis[n][c] = d[c] / norm;
-        n++;
+    for (int i = 0; i < n; i++) {
+        const double apart = sct_length_apart(held[i], (const double(*)[3])basis, i, rest);
+        for (int k = 0; k < 3; k++) basis[i][k] = rest[k] / apart;
     }
-    for (int k = 0; k < n; k++) {
-        const double along = rest[0] * basis[k][0] + rest[1] * basis[k][1] + rest[2] * basis[k][2];
-        for (int c = 0; c < 3; c++) rest[c] -= along * basis[k][c];
-    }
-    return hypot(hypot(rest[0], rest[1]), rest[2]) / length;
+    return sct_length_apart(v, (const double(*)[3])basis, n, rest) / length;
 }
 
-static void read_loads(sct_reader *r, const sct_node *node, sct_case *c)
+bool sct_read_turn(sct_reader *r, const sct_node *node, const sct_range *range, double v[3])
 {
-    static const sct_range LOAD = {"a force", SCT_FORCE, -1e12, 1e12, 1, 1e8, NULL};
-    int n;
-    if (!open_object(r, node, "an object of forces, keyed by joint", &n)) return;
-    c->loads = sct_fields_array(&r->f, n, sizeof *c->loads);
+    v[0] = v[1] = v[2] = 0.0;
+    if (r->f.dimensions == 3) return sct_fields_vector(&r->f, node, range, v);
+    return r->f.dimensions == 2 && sct_fields_value(&r->f, node, range, &v[2]);
+}
+
+/* "joints" and "moments": forces and moments by joint. */
+static void read_joint_loads(sct_reader *r, const sct_node *forces, const sct_node *moments, sct_case *c)
+{
+    static const sct_range FORCE = {"a force", SCT_FORCE, -1e12, 1e12, 1, 1e8, NULL};
+    static const sct_range MOMENT = {"a moment", SCT_MOMENT, -1e12, 1e12, 1, 1e8, NULL};
+    int n, n_moments;
+    const bool has_forces = open_object(r, forces, "an object of forces, keyed by joint", &n);
+    const bool has_moments = open_object(r, moments, "an object of moments, keyed by joint", &n_moments);
+    c->loads = sct_fields_array(&r->f, n + n_moments, sizeof *c->loads);
     if (c->loads == NULL) return;
-    for (const sct_node *entry = sct_node_first(node); entry != NULL; entry = sct_node_next(entry)) {
+    for (const sct_node *entry = has_forces ? sct_node_first(forces) : NULL; entry != NULL;
+         entry = sct_node_next(entry)) {
         sct_joint_load *load = &c->loads[c->n_loads++];
         load->where = sct_fields_where(&r->f, entry);
         sct_fields_key_reference(&r->f, entry, "joint", r->joints, &load->joint);
-        sct_fields_vector(&r->f, entry, &LOAD, load->F);
+        sct_fields_vector(&r->f, entry, &FORCE, load->F);
+    }
+    for (const sct_node *entry = has_moments ? sct_node_first(moments) : NULL; entry != NULL;
+         entry = sct_node_next(entry)) {
+        sct_joint_load *load = &c->loads[c->n_loads++];
+        load->where = sct_fields_where(&r->f, entry);
+        sct_fields_key_reference(&r->f, entry, "joint", r->joints, &load->joint);
+        sct_read_turn(r, entry, &MOMENT, load->M);
     }
 }
 
-static void read_settlements(sct_reader *r, const sct_node *node, sct_case *c)
+/* One entry of "settlements" (is_turn: of "rotations"); it must go along what the joint's supports hold. */
+static void read_settlement(sct_reader *r, const sct_node *entry, bool is_turn, sct_settlement *s)
 {
     static const sct_range SETTLEMENT = {"a settlement", SCT_DISPLACEMENT, -1e4, 1e4, 1e-5, 1, "5 mm"};
+    static const sct_range ROTATION = {"a rotation", SCT_ANGLE, -6.3, 6.3, 0, 0, "2 mrad"};
     static const double TOL_HELD = 1e-6; /* of its length may point away from the held directions, by rounding */
-    int n;
-    if (!open_object(r, node, "an object of displacements, keyed by joint", &n)) return;
-    c->settlements = sct_fields_array(&r->f, n, sizeof *c->settlements);
-    if (c->settlements == NULL) return;
-    for (const sct_node *entry = sct_node_first(node); entry != NULL; entry = sct_node_next(entry)) {
-        sct_settlement *s = &c->settlements[c->n_settlements++];
-        s->where = sct_fields_where(&r->f, entry);
-        const bool known = sct_fields_key_reference(&r->f, entry, "joint", r->joints, &s->joint);
-        if (!sct_fields_vector(&r->f, entry, &SETTLEMENT, s->d) || !known) continue;
-        const double free = part_not_held(&r->model->joints[s->joint], s->d);
-        if (free > TOL_HELD && !r->joint_is_wrong[s->joint])
-            sct_fields_error(&r->f, entry,
-                             "joint \"%s\" is not held in the direction of this settlement; expected one along "
-                             "its supports",
-                             sct_show(r->model->joints[s->joint].name).text);
-    }
+    s->where = sct_fields_where(&r->f, entry);
+    const bool known = sct_fields_key_reference(&r->f, entry, "joint", r->joints, &s->joint);
+    const bool read =
+        is_turn ? sct_read_turn(r, entry, &ROTATION, s->turn) : sct_fields_vector(&r->f, entry, &SETTLEMENT, s->d);
+    if (!read || !known || r->joint_is_wrong[s->joint]) return;
+    const sct_joint *joint = &r->model->joints[s->joint];
+    const double free = is_turn ? part_not_held((const double(*)[3])joint->turns_held, joint->n_turns_held, s->turn)
+                                : part_not_held((const double(*)[3])joint->held, joint->n_held, s->d);
+    if (free > TOL_HELD)
+        sct_fields_error(&r->f, entry, "joint \"%s\" is not held %s; expected one along its supports",
+                         sct_show(joint->name).text,
+                         is_turn ? "against this rotation" : "in the direction of this settlement");
 }
 
-static void read_bar_action(sct_reader *r, const sct_node *node, sct_bar_action *action)
+static void read_settlements(sct_reader *r, const sct_node *shifts, const sct_node *turns, sct_case *c)
+{
+    int n, n_turns;
+    const bool has_shifts = open_object(r, shifts, "an object of displacements, keyed by joint", &n);
+    const bool has_turns = open_object(r, turns, "an object of rotations, keyed by joint", &n_turns);
+    c->settlements = sct_fields_array(&r->f, n + n_turns, sizeof *c->settlements);
+    if (c->settlements == NULL) return;
+    for (const sct_node *entry = has_shifts ? sct_node_first(shifts) : NULL; entry != NULL;
+         entry = sct_node_next(entry))
+        read_settlement(r, entry, false, &c->settlements[c->n_settlements++]);
+    for (const sct_node *entry = has_turns ? sct_node_first(turns) : NULL; entry != NULL; entry = sct_node_next(entry))
+        read_settlement(r, entry, true, &c->settlements[c->n_settlements++]);
+}
+
+/* One number in plane, or one for each axis. */
+static bool read_gradient(sct_reader *r, const sct_node *node, double gradient[2])
+{
+    static const sct_range GRADIENT = {"a temperature gradient", SCT_GRADIENT, -1e5, 1e5, 0, 0, NULL};
+    static const sct_key AXES[] = {{"in_plane", NULL}, {"out_of_plane", NULL}};
+    const sct_node *found[2];
+    if (node == NULL) return false;
+    if (sct_node_kind_of(node) != SCT_OBJECT) return sct_fields_value(&r->f, node, &GRADIENT, &gradient[0]);
+    if (!sct_fields_keys(&r->f, node, "a temperature gradient", AXES, 2, found)) return false;
+    const bool first = sct_fields_value(&r->f, found[0], &GRADIENT, &gradient[0]);
+    if (found[1] != NULL && r->f.dimensions == 2) {
+        sct_fields_key_error(&r->f, found[1], "the members of a plane model bend in plane only; leave it out");
+        return false;
+    }
+    return sct_fields_value(&r->f, found[1], &GRADIENT, &gradient[1]) || first;
+}
+
+static void need_expansion(sct_reader *r, const sct_node *node, int member)
+{
+    const int group = r->model->members[member].group;
+    const int material = group < 0 ? -1 : r->model->groups[group].material;
+    if (material >= 0 && !r->material_is_wrong[material] && isnan(r->model->materials[material].expansion))
+        sct_fields_error(&r->f, node, "material \"%s\" has no \"expansion\"; expected such as \"12e-6 1/K\" there",
+                         sct_show(r->model->materials[material].name).text);
+}
+
+/* The action on a member, or on every piece of a run: the lack of fit of a run is shared by length. */
+static void read_bar_action(sct_reader *r, const sct_node *node, sct_case *c)
 {
     static const sct_range TEMPERATURE = {"a temperature difference", SCT_TEMPERATURE, -2000, 2000, 0, 0, NULL};
     static const sct_range LACK = {"a lack of fit", SCT_DISPLACEMENT, -1e4, 1e4, 1e-5, 1, "2 mm"};
-    static const sct_key KEYS[] = {{"temperature", NULL}, {"lack_of_fit", NULL}};
-    const sct_node *found[2];
-    action->where = sct_fields_where(&r->f, node);
-    const bool known = sct_fields_key_reference(&r->f, node, "member", r->members, &action->member);
-    if (!sct_fields_keys(&r->f, node, "an action on a member", KEYS, 2, found)) return;
-    if (found[0] == NULL && found[1] == NULL)
+    enum { K_TEMPERATURE, K_LACK, K_GRADIENT, N };
+    static const sct_key KEYS[N] = {{"temperature", NULL}, {"lack_of_fit", NULL}, {"gradient", NULL}};
+    const sct_node *found[N];
+    sct_bar_action action = {.where = sct_fields_where(&r->f, node)};
+    int number, first = 0, n = 0;
+    double length = 0;
+    if (sct_fields_key_reference(&r->f, node, "member", r->members, &number)) sct_reader_pieces(r, number, &first, &n);
+    if (!sct_fields_keys(&r->f, node, "an action on a member", KEYS, N, found)) return;
+    if (found[K_TEMPERATURE] == NULL && found[K_LACK] == NULL && found[K_GRADIENT] == NULL)
         sct_fields_error(&r->f, node,
-                         "found neither \"temperature\" nor \"lack_of_fit\"; expected one of them (loads act on "
-                         "joints)");
-    sct_fields_value(&r->f, found[1], &LACK, &action->lack);
-    if (!sct_fields_value(&r->f, found[0], &TEMPERATURE, &action->dT) || !known) return;
-    const int group = r->model->members[action->member].group;
-    const int material = group < 0 ? -1 : r->model->groups[group].material;
-    if (material >= 0 && !r->material_is_wrong[material] && isnan(r->model->materials[material].expansion))
-        sct_fields_error(&r->f, found[0], "material \"%s\" has no \"expansion\"; expected such as \"12e-6 1/K\" there",
-                         sct_show(r->model->materials[material].name).text);
+                         "found neither \"temperature\", \"gradient\" nor \"lack_of_fit\"; expected one of them (loads "
+                         "on members stand in \"loads\")");
+    sct_fields_value(&r->f, found[K_LACK], &LACK, &action.lack);
+    if (sct_fields_value(&r->f, found[K_TEMPERATURE], &TEMPERATURE, &action.dT) && n > 0)
+        need_expansion(r, found[K_TEMPERATURE], first);
+    if (read_gradient(r, found[K_GRADIENT], action.gradient) && n > 0) need_expansion(r, found[K_GRADIENT], first);
+    for (int i = 0; i < n; i++) length += sct_reader_length(r, first + i);
+    for (int i = 0; i < n; i++) {
+        sct_bar_action *of_piece = &c->bar_actions[c->n_bar_actions++];
+        *of_piece = action;
+        of_piece->member = first + i;
+        if (n > 1) of_piece->lack *= length > 0 ? sct_reader_length(r, first + i) / length : 0;
+    }
 }
 
 static void read_bar_actions(sct_reader *r, const sct_node *node, sct_case *c)
 {
-    int n;
+    int n, n_pieces = 0, first, of_entry;
     if (!open_object(r, node, "an object of temperatures and lacks of fit, keyed by member", &n)) return;
-    c->bar_actions = sct_fields_array(&r->f, n, sizeof *c->bar_actions);
+    for (const sct_node *entry = sct_node_first(node); entry != NULL; entry = sct_node_next(entry)) {
+        const int number = sct_names_find(r->members, sct_node_key(entry));
+        if (number < 0) continue;
+        sct_reader_pieces(r, number, &first, &of_entry);
+        n_pieces += of_entry;
+        if (!sct_reader_has_room(r, entry, of_entry)) return;
+    }
+    c->bar_actions = sct_fields_array(&r->f, n_pieces, sizeof *c->bar_actions);
     if (c->bar_actions == NULL) return;
     for (const sct_node *entry = sct_node_first(node); entry != NULL; entry = sct_node_next(entry))
-        read_bar_action(r, entry, &c->bar_actions[c->n_bar_actions++]);
+        read_bar_action(r, entry, c);
 }
 
 static void read_self_weight(sct_reader *r, const sct_node *node, double *factor)
@@ -123,23 +182,46 @@ static void read_self_weight(sct_reader *r, const sct_node *node, double *factor
     }
 }
 
-static bool acts(const sct_case *c)
+static bool is_zero(const double v[3])
 {
-    bool any = c->self_weight > 0;
-    for (int i = 0; i < c->n_loads; i++)
-        for (int k = 0; k < 3; k++) any |= fabs(c->loads[i].F[k]) > 0;
-    for (int i = 0; i < c->n_settlements; i++)
-        for (int k = 0; k < 3; k++) any |= fabs(c->settlements[i].d[k]) > 0;
-    for (int i = 0; i < c->n_bar_actions; i++)
-        any |= fabs(c->bar_actions[i].dT) > 0 || fabs(c->bar_actions[i].lack) > 0;
+    return !(fabs(v[0]) > 0 || fabs(v[1]) > 0 || fabs(v[2]) > 0);
+}
+
+static bool acts(const sct_reader *r, int index)
+{
+    const sct_case *c = &r->model->cases[index];
+    bool any = c->self_weight > 0 || (r->notional[index].node != NULL && r->f.n_errors > 0); /* then none were made */
+    for (int i = 0; i < c->n_loads && !any; i++) any = !is_zero(c->loads[i].F) || !is_zero(c->loads[i].M);
+    for (int i = 0; i < c->n_settlements && !any; i++)
+        any = !is_zero(c->settlements[i].d) || !is_zero(c->settlements[i].turn);
+    for (int i = 0; i < c->n_bar_actions && !any; i++) {
+        const sct_bar_action *a = &c->bar_actions[i];
+        any = fabs(a->dT) > 0 || fabs(a->lack) > 0 || fabs(a->gradient[0]) > 0 || fabs(a->gradient[1]) > 0;
+    }
+    for (int i = 0; i < c->n_member_loads && !any; i++) {
+        const sct_member_load *load = &c->member_loads[i];
+        any = !is_zero(load->qa) || !is_zero(load->qb) || !is_zero(load->F) || !is_zero(load->M);
+    }
     return any;
 }
 
 static void read_case(sct_reader *r, const sct_node *node, sct_case *c)
 {
-    enum { K_ACTION, K_SELF_WEIGHT, K_JOINTS, K_SETTLEMENTS, K_MEMBERS, N };
-    static const sct_key KEYS[N] = {
-        {"action", NULL}, {"self_weight", NULL}, {"joints", NULL}, {"settlements", NULL}, {"members", NULL}};
+    enum {
+        K_ACTION,
+        K_SELF_WEIGHT,
+        K_JOINTS,
+        K_SETTLEMENTS,
+        K_MEMBERS,
+        K_MOMENTS,
+        K_LOADS,
+        K_ROTATIONS,
+        K_NOTIONAL,
+        N
+    };
+    static const sct_key KEYS[N] = {{"action", NULL},      {"self_weight", NULL}, {"joints", NULL},
+                                    {"settlements", NULL}, {"members", NULL},     {"moments", NULL},
+                                    {"loads", NULL},       {"rotations", NULL},   {"notional", NULL}};
     static const char *const ACTIONS[] = {"permanent", "imposed", "snow", "wind", "temperature", "other"};
     enum { N_ACTIONS = sizeof ACTIONS / sizeof *ACTIONS };
     const sct_node *found[N];
@@ -150,9 +232,11 @@ static void read_case(sct_reader *r, const sct_node *node, sct_case *c)
     if (!sct_fields_keys(&r->f, node, "a load case", KEYS, N, found)) return;
     if (sct_fields_word(&r->f, found[K_ACTION], "an action", ACTIONS, N_ACTIONS, &action)) c->action = ACTIONS[action];
     read_self_weight(r, found[K_SELF_WEIGHT], &c->self_weight);
-    read_loads(r, found[K_JOINTS], c);
-    read_settlements(r, found[K_SETTLEMENTS], c);
+    read_joint_loads(r, found[K_JOINTS], found[K_MOMENTS], c);
+    read_settlements(r, found[K_SETTLEMENTS], found[K_ROTATIONS], c);
     read_bar_actions(r, found[K_MEMBERS], c);
+    sct_read_member_loads(r, found[K_LOADS], c);
+    if (found[K_NOTIONAL] != NULL) sct_read_notional(r, found[K_NOTIONAL], (int)(c - r->model->cases));
 }
 
 void sct_read_cases(sct_reader *r, const sct_node *node)
@@ -160,24 +244,25 @@ void sct_read_cases(sct_reader *r, const sct_node *node)
     sct_model *m = r->model;
     const int n = sct_reader_count(r, node, "load case", SCT_MOST_CASES), errors_before = r->f.n_errors;
     m->cases = sct_fields_array(&r->f, n, sizeof *m->cases);
+    r->notional = sct_fields_array(&r->f, n, sizeof *r->notional);
     r->cases = sct_reader_names(r, node);
     if (r->f.failure != SCT_OK || n == 0) return;
     for (const sct_node *c = sct_node_first(node); c != NULL && r->f.failure == SCT_OK; c = sct_node_next(c))
         read_case(r, c, &m->cases[m->n_cases++]);
+    if (r->f.failure == SCT_OK && r->f.n_errors == 0) sct_add_notional_loads(r);
     const bool *is_wrong = r->f.unit_is_wrong; /* then nothing was read that could act */
     if (r->f.failure != SCT_OK || r->f.n_errors > errors_before || is_wrong[SCT_FORCE] || is_wrong[SCT_DISPLACEMENT] ||
         is_wrong[SCT_TEMPERATURE])
         return;
     int n_acting = 0;
-    for (int i = 0; i < n; i++) n_acting += acts(&m->cases[i]);
+    for (int i = 0; i < n; i++) n_acting += acts(r, i);
     if (n_acting == 0) {
         sct_fields_error(&r->f, node, "no case has a load that is not zero; there is nothing to size for");
         return;
     }
     int i = 0;
     for (const sct_node *c = sct_node_first(node); c != NULL; c = sct_node_next(c))
-        if (!acts(&m->cases[i++]))
-            sct_fields_remark(&r->f, SCT_WARNING, c, "the case has no load; its results are zero");
+        if (!acts(r, i++)) sct_fields_remark(&r->f, SCT_WARNING, c, "the case has no load; its results are zero");
 }
 
 /* ---- combinations
@@ -253,178 +338,4 @@ void sct_read_combinations(sct_reader *r, const sct_node *node)
     for (const sct_node *c = sct_node_first(node); c != NULL && r->f.failure == SCT_OK; c = sct_node_next(c))
         read_combination(r, c, &m->combinations[m->n_combinations++]);
     if (r->f.failure == SCT_OK && r->f.n_errors == errors_before) check_combinations(r, node);
-}
-
-/* ---- deflection limits
- * ------------------------------------------------------------------------------------------------ */
-
-static void read_limited_joints(sct_reader *r, const sct_node *node, sct_deflection_limit *limit)
-{
-    const sct_model *m = r->model;
-    if (node == NULL) return;
-    const char *text = sct_node_string(node);
-    const bool all = text != NULL && strcmp(text, "all") == 0;
-    if (!all && sct_node_kind_of(node) != SCT_ARRAY) {
-        sct_fields_error(&r->f, node, "found %s%s%s; expected \"all\" or an array with the names of joints",
-                         text != NULL ? "\"" : "", text != NULL ? sct_show(text).text : sct_node_kind_words(node),
-                         text != NULL ? "\"" : "");
-        return;
-    }
-    limit->joints = sct_fields_array(&r->f, all ? m->n_joints : sct_node_count(node), sizeof *limit->joints);
-    bool *is_taken = all ? NULL : sct_fields_array(&r->f, m->n_joints, sizeof *is_taken);
-    if (r->f.failure != SCT_OK) return;
-    for (int j = 0; all && j < m->n_joints; j++)
-        if (m->joints[j].n_held < m->dimensions) limit->joints[limit->n_joints++] = j;
-    for (const sct_node *c = all ? NULL : sct_node_first(node); c != NULL; c = sct_node_next(c)) {
-        int j;
-        if (!sct_fields_reference(&r->f, c, "joint", r->joints, &j)) continue;
-        if (is_taken[j])
-            sct_fields_error(&r->f, c, "joint \"%s\" stands in this list already", sct_show(m->joints[j].name).text);
-        else
-            limit->joints[limit->n_joints++] = j;
-        is_taken[j] = true;
-    }
-    if (!all && sct_node_count(node) == 0) sct_fields_error(&r->f, node, "found no joint; expected at least one");
-    if (all && limit->n_joints == 0 && m->n_joints > 0 && r->f.dimensions > 0)
-        sct_fields_error(&r->f, node, "found no joint that can move; expected at least one");
-}
-
-/* The span: the distance of two joints, or a length. */
-static bool read_span(sct_reader *r, const sct_node *node, double *span)
-{
-    static const sct_range SPAN = {"a span", SCT_LENGTH, 1e-6, 1e6, 0.1, 1e3, NULL};
-    if (node == NULL || sct_node_kind_of(node) != SCT_ARRAY) return sct_fields_value(&r->f, node, &SPAN, span);
-    if (sct_node_count(node) != 2) {
-        sct_fields_error(&r->f, node, "expected the names of two joints; found %d", sct_node_count(node));
-        return false;
-    }
-    const sct_node *first = sct_node_first(node);
-    int a, b;
-    const bool has_a = sct_fields_reference(&r->f, first, "joint", r->joints, &a);
-    if (!sct_fields_reference(&r->f, sct_node_next(first), "joint", r->joints, &b) || !has_a) return false;
-    const double *p = r->model->joints[a].at, *q = r->model->joints[b].at;
-    *span = hypot(hypot(p[0] - q[0], p[1] - q[1]), p[2] - q[2]);
-    if (*span > 0) return true;
-    if (r->joint_is_wrong[a] || r->joint_is_wrong[b]) return false;
-    sct_fields_error(&r->f, node, "the two joints stand at one place; expected the ends of a span");
-    return false;
-}
-
-/* "L/300" as a fraction of the span. */
-static void read_span_fraction(sct_reader *r, const sct_node *node, const sct_node *at_most, const sct_node *span,
-                               sct_deflection_limit *limit)
-{
-    const char *text = sct_node_string(at_most);
-    double n, L;
-    limit->label = sct_fields_copy(&r->f, text);
-    if (!sct_number_read(text + 2, strlen(text + 2), &n) || !(n >= 1 && n <= 1e5)) {
-        sct_fields_error(&r->f, at_most,
-                         "found \"%s\"; expected a fraction of the span from L/1 to L/100000, such as \"L/300\"",
-                         sct_show(text).text);
-        return;
-    }
-    if (span == NULL) {
-        sct_fields_error(&r->f, node,
-                         "no \"span\"; \"%s\" needs it: expected two joints such as [\"L0\", \"L8\"], or a length",
-                         sct_show(text).text);
-        return;
-    }
-    if (read_span(r, span, &L)) limit->at_most = L / n;
-}
-
-static void read_at_most(sct_reader *r, const sct_node *node, const sct_node *at_most, const sct_node *span,
-                         sct_deflection_limit *limit)
-{
-    static const sct_range AT_MOST = {"a displacement", SCT_DISPLACEMENT, 1e-9, 1e4, 1e-5, 1, "20 mm"};
-    if (at_most == NULL) return;
-    const char *text = sct_node_string(at_most);
-    if (text != NULL && strncmp(text, "L/", 2) == 0) {
-        read_span_fraction(r, node, at_most, span, limit);
-        return;
-    }
-    if (text != NULL && strchr(text, '/') != NULL) {
-        sct_fields_error(&r->f, at_most,
-                         "found \"%s\"; expected a displacement, or a fraction of the span such as \"L/300\"",
-                         sct_show(text).text);
-        return;
-    }
-    if (!sct_fields_value(&r->f, at_most, &AT_MOST, &limit->at_most)) return;
-    if (span != NULL)
-        sct_fields_key_error(&r->f, span, "\"span\" goes with a limit such as \"L/300\" only; leave it out");
-    if (text == NULL) { /* a bare number: with its unit */
-        char number[SCT_NUMBER_ROOM], words[SCT_NUMBER_ROOM + 16];
-        sct_number_write(sct_node_number(at_most), number);
-        snprintf(words, sizeof words, "%s %s", number, r->f.unit[SCT_DISPLACEMENT]->name);
-        limit->label = sct_fields_copy(&r->f, words);
-    } else {
-        limit->label = sct_fields_copy(&r->f, text);
-    }
-}
-
-/* The combinations in which a limit holds: all, those for one basis, or some by name. */
-static void read_limited_combinations(sct_reader *r, const sct_node *node, sct_deflection_limit *limit)
-{
-    static const char *const BASES[] = {"allowable", "service"};
-    const sct_model *m = r->model;
-    limit->in = sct_fields_array(&r->f, m->n_combinations, sizeof *limit->in);
-    if (limit->in == NULL) return;
-    if (node == NULL) {
-        for (int i = 0; i < m->n_combinations; i++) limit->in[i] = true;
-        return;
-    }
-    if (sct_node_kind_of(node) == SCT_STRING) {
-        int word, n = 0;
-        if (!sct_fields_word(&r->f, node, "a kind of combination", BASES, 2, &word)) return;
-        const sct_basis basis = word == 0 ? SCT_ALLOWABLE : SCT_SERVICE;
-        for (int i = 0; i < m->n_combinations; i++) n += limit->in[i] = m->combinations[i].basis == basis;
-        if (n == 0 && r->f.n_errors == 0) /* a combination may have lost its kind to an error */
-            sct_fields_error(&r->f, node, "no combination is for \"%s\"; expected one, or the limit never holds",
-                             BASES[word]);
-        return;
-    }
-    if (!sct_fields_is(&r->f, node, SCT_ARRAY, "\"allowable\", \"service\" or an array with the names of combinations"))
-        return;
-    if (sct_node_count(node) == 0) sct_fields_error(&r->f, node, "found no combination; expected at least one");
-    for (const sct_node *c = sct_node_first(node); c != NULL; c = sct_node_next(c)) {
-        int i;
-        if (!sct_fields_reference(&r->f, c, "combination", r->combinations, &i)) continue;
-        if (limit->in[i])
-            sct_fields_error(&r->f, c, "combination \"%s\" stands in this list already",
-                             sct_show(m->combinations[i].name).text);
-        limit->in[i] = true;
-    }
-}
-
-static void read_deflection(sct_reader *r, const sct_node *node, sct_deflection_limit *limit)
-{
-    enum { K_JOINTS, K_DIRECTION, K_AT_MOST, K_SPAN, K_IN, N };
-    static const sct_key KEYS[N] = {{"joints", "\"all\" or an array with the names of joints"},
-                                    {"direction", "\"x\", \"y\", \"z\" or a vector"},
-                                    {"at_most", "a displacement such as \"20 mm\", or a fraction such as \"L/300\""},
-                                    {"span", NULL},
-                                    {"in", NULL}};
-    const sct_node *found[N];
-    limit->where = sct_fields_where(&r->f, node);
-    if (!sct_fields_keys(&r->f, node, "a deflection limit", KEYS, N, found)) return;
-    read_limited_joints(r, found[K_JOINTS], limit);
-    sct_fields_direction(&r->f, found[K_DIRECTION], limit->direction, &limit->direction_label);
-    read_at_most(r, node, found[K_AT_MOST], found[K_SPAN], limit);
-    read_limited_combinations(r, found[K_IN], limit);
-}
-
-void sct_read_deflections(sct_reader *r, const sct_node *node)
-{
-    sct_model *m = r->model;
-    if (!sct_fields_is(&r->f, node, SCT_ARRAY, "an array of deflection limits")) return;
-    const int n = sct_node_count(node);
-    if ((double)n * (m->n_joints + m->n_combinations) > SCT_MOST_TABLE) {
-        sct_fields_error(&r->f, node, "%d deflection limits on up to %d joints; at most %d pairs are kept", n,
-                         m->n_joints, SCT_MOST_TABLE);
-        r->f.failure = SCT_TOO_LARGE;
-        return;
-    }
-    m->deflections = sct_fields_array(&r->f, n, sizeof *m->deflections);
-    if (m->deflections == NULL) return;
-    for (const sct_node *c = sct_node_first(node); c != NULL && r->f.failure == SCT_OK; c = sct_node_next(c))
-        read_deflection(r, c, &m->deflections[m->n_deflections++]);
 }

@@ -5,140 +5,7 @@
 #include <string.h>
 
 #include "base/number.h"
-#include "families.h"
 #include "reader.h"
-
-static const sct_range AREA = {"an area", SCT_AREA, 1e-9, 1e3, 1e-6, 0.1, NULL};
-static const sct_key AXES[2] = {{"in_plane", "a value for bending in the plane of the truss"},
-                                {"out_of_plane", "a value for bending out of the plane of the truss"}};
-
-/* ---- families -------------------------------------------------------------------------------------------------------
- */
-
-/* One number for both axes, or an object with one for each. */
-static bool read_both_axes(sct_reader *r, const sct_node *node, const sct_range *range, double v[2])
-{
-    const sct_node *found[2];
-    if (node == NULL) return false;
-    if (sct_node_kind_of(node) != SCT_OBJECT) {
-        const bool read = sct_fields_value(&r->f, node, range, &v[0]);
-        v[1] = v[0];
-        return read;
-    }
-    if (!sct_fields_keys(&r->f, node, range->what, AXES, 2, found)) return false;
-    const bool first = sct_fields_value(&r->f, found[0], range, &v[0]);
-    return sct_fields_value(&r->f, found[1], range, &v[1]) && first;
-}
-
-static void read_section(sct_reader *r, const sct_node *node, sct_section *section)
-{
-    static const sct_range SECOND_MOMENT = {
-        "a second moment of area", SCT_SECOND_MOMENT, 1e-18, 1e2, 1e-10, 1e-3, NULL};
-    static const sct_range DEPTH = {"a depth", SCT_LENGTH, 1e-4, 10, 5e-3, 3, "60 mm"};
-    enum { K_AREA, K_I, K_DEPTH, N };
-    static const sct_key KEYS[N] = {
-        {"A", "its area"}, {"I", "its second moment of area, or one for each axis"}, {"depth", NULL}};
-    const sct_node *found[N];
-    sct_fields_name(&r->f, node, &section->name);
-    if (!sct_fields_keys(&r->f, node, "a section", KEYS, N, found)) return;
-    const bool has_A = sct_fields_value(&r->f, found[K_AREA], &AREA, &section->A);
-    const bool has_I = read_both_axes(r, found[K_I], &SECOND_MOMENT, section->I);
-    if (!sct_fields_value(&r->f, found[K_DEPTH], &DEPTH, &section->depth) || !has_A || !has_I) return;
-    const double most = section->A * section->depth * section->depth / 4.0; /* all of A at the outermost fibres */
-    if (section->I[SCT_IN_PLANE] > most)
-        sct_fields_remark(
-            &r->f, SCT_WARNING, found[K_I],
-            "I = %g m4 in plane is more than A depth^2 / 4 = %g m4, the most that a section of this area and "
-            "depth can have",
-            section->I[SCT_IN_PLANE], most);
-}
-
-/* Room for a family and its names; false when out of memory. */
-static bool add_family(sct_reader *r, const sct_family *family)
-{
-    sct_model *m = r->model;
-    const int i = m->n_families;
-    sct_names *names = sct_names_new(family->n);
-    r->sections[i] = names;
-    bool put = names != NULL && sct_names_put(r->families, family->name, i);
-    for (int k = 0; k < family->n && put; k++) put = sct_names_put(names, family->sections[k].name, k);
-    if (!put) r->f.failure = SCT_NO_MEMORY;
-    m->families[m->n_families++] = *family;
-    return put;
-}
-
-static void read_family(sct_reader *r, const sct_node *node)
-{
-    static const sct_key KEYS[] = {{"sections", "an object with at least one section, keyed by name"}};
-    const sct_node *sections;
-    sct_family family = {.where = sct_fields_where(&r->f, node)};
-    if (!sct_fields_name(&r->f, node, &family.name)) return;
-    if (sct_family_find(family.name) >= 0) {
-        sct_fields_key_error(&r->f, node, "\"%s\" is a family that comes with the program; give yours another name",
-                             family.name);
-        return;
-    }
-    if (!sct_fields_keys(&r->f, node, "a family", KEYS, 1, &sections)) return;
-    const int n = sections == NULL ? 0 : sct_reader_count(r, sections, "section", SCT_MOST_MEMBERS);
-    family.sections = sct_fields_array(&r->f, n, sizeof *family.sections);
-    if (family.sections == NULL || n == 0) return;
-    for (const sct_node *c = sct_node_first(sections); c != NULL; c = sct_node_next(c)) {
-        sct_section *section = &family.sections[family.n++];
-        read_section(r, c, section);
-        if (section->name == NULL) return; /* out of memory */
-    }
-    if (!sct_sections_sort(family.sections, n))
-        r->f.failure = SCT_NO_MEMORY;
-    else
-        add_family(r, &family);
-}
-
-void sct_read_families(sct_reader *r, const sct_node *node)
-{
-    const bool is_there = sct_fields_is(&r->f, node, SCT_OBJECT, "an object of families, keyed by name");
-    r->families_room = (is_there ? sct_node_count(node) : 0) + sct_n_shipped_families;
-    r->families = sct_names_new(r->families_room);
-    if (r->families == NULL) r->f.failure = SCT_NO_MEMORY;
-    r->sections = sct_fields_array(&r->f, r->families_room, sizeof *r->sections);
-    r->model->families = sct_fields_array(&r->f, r->families_room, sizeof *r->model->families);
-    r->families_are_wrong = node != NULL && !is_there;
-    if (!is_there) return;
-    const int errors_before = r->f.n_errors;
-    for (const sct_node *c = sct_node_first(node); c != NULL && r->f.failure == SCT_OK; c = sct_node_next(c))
-        read_family(r, c);
-    r->families_are_wrong = r->f.n_errors > errors_before;
-}
-
-int sct_reader_family(sct_reader *r, const sct_node *node)
-{
-    const char *name;
-    if (!sct_fields_string(&r->f, node, "the name of a family", &name)) return -1;
-    const int known = sct_names_find(r->families, name);
-    if (known >= 0) return known;
-    const int shipped = sct_family_find(name);
-    if (shipped < 0 && r->families_are_wrong) return -1;
-    if (shipped < 0) { /* the nearest name may be of either kind */
-        sct_names *all = sct_names_new(r->families_room);
-        int index = -1;
-        bool put = all != NULL;
-        for (int i = 0; i < sct_n_shipped_families && put; i++)
-            put = sct_names_put(all, sct_shipped_families[i].name, i);
-        for (int i = 0; i < r->model->n_families && put; i++) put = sct_names_put(all, r->model->families[i].name, i);
-        if (put)
-            sct_fields_reference(&r->f, node, "family", all, &index);
-        else
-            r->f.failure = SCT_NO_MEMORY;
-        sct_names_free(all);
-        return -1;
-    }
-    sct_family family;
-    const sct_status status = sct_family_load(shipped, r->f.arena, &family);
-    if (status != SCT_OK) {
-        r->f.failure = status;
-        return -1;
-    }
-    return add_family(r, &family) ? r->model->n_families - 1 : -1;
-}
 
 /* ---- stresses and stability ----------------------------------------------------------------------------------------
  */
@@ -202,7 +69,10 @@ enum {
     K_FAMILY,
     K_SECTIONS,
     K_SECTION,
-    K_SECOND_MOMENT,
+    K_SECOND_MOMENT, /* and the three behind it, in the order of sct_property */
+    K_SECTION_MODULUS,
+    K_TORSION_CONSTANT,
+    K_SHAPE,
     K_ALLOWABLE,
     K_BUCKLING,
     K_SLENDERNESS,
@@ -216,6 +86,9 @@ static const sct_key GROUP_KEYS[N_KEYS] = {{"material", "the name of a material"
                                            {"sections", NULL},
                                            {"section", NULL},
                                            {"second_moment", NULL},
+                                           {"section_modulus", NULL},
+                                           {"torsion_constant", NULL},
+                                           {"shape", NULL},
                                            {"allowable", NULL},
                                            {"buckling", NULL},
                                            {"slenderness", NULL},
@@ -240,9 +113,9 @@ static void read_area_bounds(sct_reader *r, const sct_node *node, sct_group *g)
     const sct_node *found[N];
     g->kind = SCT_FREE_AREA;
     if (!sct_fields_keys(&r->f, node, "bounds of an area", BOUNDS, N, found)) return;
-    const bool has_least = sct_fields_value(&r->f, found[K_LEAST], &AREA, &g->A_min);
-    const bool has_most = sct_fields_value(&r->f, found[K_MOST], &AREA, &g->A_max);
-    const bool has_start = sct_fields_value(&r->f, found[K_START], &AREA, &g->A_start);
+    const bool has_least = sct_fields_value(&r->f, found[K_LEAST], &SCT_AREAS, &g->A_min);
+    const bool has_most = sct_fields_value(&r->f, found[K_MOST], &SCT_AREAS, &g->A_max);
+    const bool has_start = sct_fields_value(&r->f, found[K_START], &SCT_AREAS, &g->A_start);
     if (!has_least || !has_most) return;
     if (g->A_min > g->A_max) {
         const sct_where other = sct_node_where(r->f.document, found[K_MOST]);
@@ -262,16 +135,14 @@ static void read_area_bounds(sct_reader *r, const sct_node *node, sct_group *g)
 
 static void read_area(sct_reader *r, const sct_node *const found[], sct_group *g)
 {
-    static const sct_range C = {"a factor c of I = c A^2", -1, 1e-6, 1e6, 0, 0, NULL};
-    static const sct_key FACTOR[] = {{"c", "the factor c of I = c A^2, or one for each axis"}};
     static const int FOR_FAMILIES[] = {K_SECTIONS, K_SECTION};
-    const sct_node *area = found[K_AREA], *c;
+    const sct_node *area = found[K_AREA];
     if (sct_node_kind_of(area) == SCT_OBJECT) {
         read_area_bounds(r, area, g);
     } else {
         g->kind = SCT_HELD_AREA;
         if (sct_node_kind_of(area) == SCT_NUMBER || sct_node_kind_of(area) == SCT_STRING)
-            sct_fields_value(&r->f, area, &AREA, &g->A_held);
+            sct_fields_value(&r->f, area, &SCT_AREAS, &g->A_held);
         else
             sct_fields_error(&r->f, area, "found %s; expected an area, or {\"at_least\": ..., \"at_most\": ...}",
                              sct_node_kind_words(area));
@@ -280,8 +151,7 @@ static void read_area(sct_reader *r, const sct_node *const found[], sct_group *g
         if (found[FOR_FAMILIES[i]] != NULL && found[K_FAMILY] == NULL)
             sct_fields_key_error(&r->f, found[FOR_FAMILIES[i]], "\"%s\" goes with \"family\", not with \"area\"",
                                  GROUP_KEYS[FOR_FAMILIES[i]].name);
-    if (sct_fields_keys(&r->f, found[K_SECOND_MOMENT], "a second moment of area", FACTOR, 1, &c))
-        read_both_axes(r, c, &C, g->c);
+    sct_read_properties(r, &found[K_SECOND_MOMENT], g);
 }
 
 static int compare_ints(const void *a, const void *b)
@@ -315,10 +185,10 @@ static void read_sections(sct_reader *r, const sct_node *node, sct_group *g)
 static void read_family_choice(sct_reader *r, const sct_node *const found[], sct_group *g)
 {
     g->kind = SCT_LADDER;
-    if (found[K_SECOND_MOMENT] != NULL)
-        sct_fields_key_error(&r->f, found[K_SECOND_MOMENT],
-                             "\"second_moment\" goes with \"area\"; the sections of a family "
-                             "bring their own");
+    for (int i = K_SECOND_MOMENT; i <= K_SHAPE; i++)
+        if (found[i] != NULL)
+            sct_fields_key_error(&r->f, found[i], "\"%s\" goes with \"area\"; the sections of a family bring their own",
+                                 GROUP_KEYS[i].name);
     g->family = sct_reader_family(r, found[K_FAMILY]);
     if (g->family < 0) return;
     const sct_family *family = &r->model->families[g->family];
@@ -371,7 +241,8 @@ static void read_stability(sct_reader *r, const sct_node *node, const sct_node *
     g->safety = words.safety;
     const bool is_slender = isfinite(g->slenderness_any) || isfinite(g->slenderness_compression);
     const bool has_area = found[K_AREA] != NULL;
-    if (has_area && found[K_SECOND_MOMENT] == NULL && (g->buckling != SCT_BUCKLING_NONE || is_slender))
+    if (has_area && found[K_SECOND_MOMENT] == NULL && found[K_SHAPE] == NULL &&
+        (g->buckling != SCT_BUCKLING_NONE || is_slender))
         sct_fields_error(&r->f, node, "no \"second_moment\"; %s needs it: expected {\"c\": ...} for I = c A^2",
                          g->buckling != SCT_BUCKLING_NONE ? "the buckling rule" : "the slenderness limit");
 }
@@ -403,6 +274,7 @@ static void read_group(sct_reader *r, const sct_node *node, sct_group *g, sct_le
     const int errors_before = r->f.n_errors;
     *g = (sct_group){.material = -1, .family = -1, .held = -1, .where = sct_fields_where(&r->f, node)};
     g->A_min = g->A_max = g->A_start = g->A_held = g->c[0] = g->c[1] = g->allowable[0] = g->allowable[1] = (double)NAN;
+    g->W[0] = g->W[1] = g->J = (sct_power){(double)NAN, (double)NAN};
     sct_fields_name(&r->f, node, &g->name);
     if (!sct_fields_keys(&r->f, node, "a group", GROUP_KEYS, N_KEYS, found)) return;
     sct_fields_reference(&r->f, found[K_MATERIAL], "material", r->materials, &g->material);

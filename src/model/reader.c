@@ -1,4 +1,4 @@
-/* The reader of model files: the public calls, the head of the file, its materials, joints and members. */
+/* The reader of model files: the public calls, the head of the file, its materials. */
 #include "reader.h"
 
 #include <math.h>
@@ -43,6 +43,16 @@ int sct_reader_count(sct_reader *r, const sct_node *node, const char *what, int 
         return 0;
     }
     return n;
+}
+
+bool sct_reader_has_room(sct_reader *r, const sct_node *node, long long more)
+{
+    r->n_placed += more;
+    if (r->n_placed <= SCT_MOST_TABLE) return true;
+    sct_fields_error(&r->f, node, "too many actions, counted on every piece of a run; at most %d are kept",
+                     SCT_MOST_TABLE);
+    r->f.failure = SCT_TOO_LARGE;
+    return false;
 }
 
 /* ---- the head -----------------------------------------------------------------------------------------------------
@@ -91,6 +101,38 @@ static const sct_unit *power_of(sct_reader *r, const sct_unit *length, int power
     return unit;
 }
 
+/* The product (join " ") or ratio (join "/") of two units as the unit of a slot; without one of them there is none. */
+static void derive(sct_reader *r, int slot, const sct_unit *a, const char *join, const sct_unit *b, const char *behind)
+{
+    char name[48];
+    const bool is_product = join[0] == ' ';
+    if (a == NULL || b == NULL) return;
+    snprintf(name, sizeof name, "%s%s%s%s", a->name, join, b->name, behind);
+    sct_unit *unit = sct_fields_array(&r->f, 1, sizeof *unit);
+    if (unit == NULL) return;
+    *unit = (sct_unit){sct_fields_copy(&r->f, name), (sct_quantity)slot,
+                       a->numerator * (is_product ? b->numerator : b->denominator),
+                       a->denominator * (is_product ? b->denominator : b->numerator)};
+    r->f.unit[slot] = unit;
+}
+
+/* Units that follow from those of length, force and temperature. Angles and frequencies have none: they are written. */
+static void derive_units(sct_reader *r)
+{
+    sct_fields *f = &r->f;
+    const sct_unit *length = f->unit[SCT_LENGTH], *force = f->unit[SCT_FORCE];
+    const bool is_wrong = length == NULL || force == NULL;
+    f->unit_is_wrong[SCT_SECTION_MODULUS] = length == NULL;
+    f->unit_is_wrong[SCT_MOMENT] = f->unit_is_wrong[SCT_FORCE_PER_LENGTH] = f->unit_is_wrong[SCT_TURN_STIFFNESS] =
+        is_wrong;
+    f->unit_is_wrong[SCT_GRADIENT] = length == NULL || f->unit_is_wrong[SCT_TEMPERATURE];
+    if (length != NULL) f->unit[SCT_SECTION_MODULUS] = power_of(r, length, 3, SCT_SECTION_MODULUS);
+    derive(r, SCT_MOMENT, force, " ", length, "");
+    derive(r, SCT_TURN_STIFFNESS, force, " ", length, "/rad");
+    derive(r, SCT_FORCE_PER_LENGTH, force, "/", length, "");
+    derive(r, SCT_GRADIENT, f->unit[SCT_TEMPERATURE], "/", length, "");
+}
+
 static void read_units(sct_reader *r, const sct_node *node)
 {
     static const sct_key KEYS[] = {{"length", "the unit of bare lengths, such as \"m\""},
@@ -122,6 +164,7 @@ static void read_units(sct_reader *r, const sct_node *node)
         f->unit_is_wrong[SLOTS[i]] = f->unit[SLOTS[i]] == NULL && (found[i] != NULL || KEYS[i].required != NULL);
     }
     const sct_unit *length = f->unit[SCT_LENGTH];
+    derive_units(r);
     if (length == NULL) {
         f->unit_is_wrong[SCT_AREA] = f->unit_is_wrong[SCT_SECOND_MOMENT] = f->unit_is_wrong[SCT_DISPLACEMENT] = true;
         return;
@@ -142,14 +185,13 @@ static void read_material(sct_reader *r, const sct_node *node, sct_material *m)
     static const sct_range DENSITY = {"a density", SCT_DENSITY, 1, 3e4, 100, 2.5e4, NULL};
     static const sct_range YIELD = {"a yield stress", SCT_STRESS, 1e3, 1e11, 1e7, 5e9, NULL};
     static const sct_range EXPANSION = {"an expansion coefficient", SCT_EXPANSION, 0, 1e-3, 1e-6, 1e-4, NULL};
-    enum { K_E, K_DENSITY, K_YIELD, K_EXPANSION, K_ALLOWABLE, N };
-    static const sct_key KEYS[N] = {{"E", "Young's modulus"},
-                                    {"density", "the density, such as \"7850 kg/m3\""},
-                                    {"yield", NULL},
-                                    {"expansion", NULL},
-                                    {"allowable", NULL}};
+    static const sct_range G = {"a shear modulus", SCT_STRESS, 1e5, 2e12, 1e8, 1e12, "81 GPa"};
+    enum { K_E, K_DENSITY, K_YIELD, K_EXPANSION, K_ALLOWABLE, K_G, N };
+    static const sct_key KEYS[N] = {{"E", "Young's modulus"}, {"density", "the density, such as \"7850 kg/m3\""},
+                                    {"yield", NULL},          {"expansion", NULL},
+                                    {"allowable", NULL},      {"G", NULL}};
     const sct_node *found[N];
-    m->expansion = m->yield = m->allowable[0] = m->allowable[1] = (double)NAN;
+    m->G = m->expansion = m->yield = m->allowable[0] = m->allowable[1] = (double)NAN;
     m->where = sct_fields_where(&r->f, node);
     sct_fields_name(&r->f, node, &m->name);
     if (!sct_fields_keys(&r->f, node, "a material", KEYS, N, found)) return;
@@ -158,6 +200,9 @@ static void read_material(sct_reader *r, const sct_node *node, sct_material *m)
     sct_fields_value(&r->f, found[K_YIELD], &YIELD, &m->yield);
     sct_fields_value(&r->f, found[K_EXPANSION], &EXPANSION, &m->expansion);
     sct_read_allowable(r, found[K_ALLOWABLE], m->allowable);
+    if (sct_fields_value(&r->f, found[K_G], &G, &m->G) && m->G > m->E / 2)
+        sct_fields_remark(&r->f, SCT_WARNING, found[K_G],
+                          "G is %.3g times E; expected at most E/2, as of metals and wood", m->G / m->E);
 }
 
 static void read_materials(sct_reader *r, const sct_node *node)
@@ -175,144 +220,8 @@ static void read_materials(sct_reader *r, const sct_node *node)
     }
 }
 
-/* ---- joints ---------------------------------------------------------------------------------------------------------
+/* ---- the whole ------------------------------------------------------------------------------------------------------
  */
-
-/* The part of d that is not along the directions held so far, by Gram and Schmidt, as a length. */
-static double length_apart(const double d[3], const double basis[][3], int n, double apart[3])
-{
-    memcpy(apart, d, 3 * sizeof *apart);
-    for (int pass = 0; pass < 2; pass++) /* twice is enough (Kahan) */
-        for (int i = 0; i < n; i++) {
-            const double along = apart[0] * basis[i][0] + apart[1] * basis[i][1] + apart[2] * basis[i][2];
-            for (int k = 0; k < 3; k++) apart[k] -= along * basis[i][k];
-        }
-    return sqrt(apart[0] * apart[0] + apart[1] * apart[1] + apart[2] * apart[2]);
-}
-
-static void read_support(sct_reader *r, const sct_node *node, sct_joint *joint)
-{
-    static const double APART = 1e-6; /* sine of the least angle between a direction and those before it */
-    double basis[3][3], apart[3];
-    if (!sct_fields_is(&r->f, node, SCT_ARRAY, "an array of the directions held, such as [\"x\", \"y\"]")) return;
-    if (r->f.dimensions > 0 && sct_node_count(node) > r->f.dimensions) {
-        sct_fields_error(&r->f, node, "found %d directions; at most %d can be held", sct_node_count(node),
-                         r->f.dimensions);
-        return;
-    }
-    for (const sct_node *c = sct_node_first(node); c != NULL && joint->n_held < 3; c = sct_node_next(c)) {
-        double *d = joint->held[joint->n_held];
-        if (!sct_fields_direction(&r->f, c, d, NULL)) continue;
-        const double length = length_apart(d, (const double(*)[3])basis, joint->n_held, apart);
-        if (!(length > APART)) {
-            sct_fields_error(&r->f, c,
-                             "the directions before this one hold it already; expected independent directions");
-            continue;
-        }
-        for (int k = 0; k < 3; k++) basis[joint->n_held][k] = apart[k] / length;
-        joint->n_held++;
-    }
-}
-
-static void read_joint(sct_reader *r, const sct_node *node, sct_joint *joint)
-{
-    static const sct_range COORDINATE = {"a coordinate", SCT_LENGTH, -1e5, 1e5, 0.01, 1e3, NULL};
-    static const sct_key KEYS[] = {{"at", "its coordinates, such as [0, 0]"}, {"support", NULL}};
-    const sct_node *found[2];
-    joint->where = sct_fields_where(&r->f, node);
-    sct_fields_name(&r->f, node, &joint->name);
-    if (!sct_fields_keys(&r->f, node, "a joint", KEYS, 2, found)) return;
-    sct_fields_vector(&r->f, found[0], &COORDINATE, joint->at);
-    read_support(r, found[1], joint);
-}
-
-static void read_joints(sct_reader *r, const sct_node *node)
-{
-    sct_model *m = r->model;
-    const int n = sct_reader_count(r, node, "joint", SCT_MOST_JOINTS);
-    m->joints = sct_fields_array(&r->f, n, sizeof *m->joints);
-    r->joint_is_wrong = sct_fields_array(&r->f, n, sizeof *r->joint_is_wrong);
-    r->joints = sct_reader_names(r, node);
-    if (failed(r) || n == 0) return;
-    for (const sct_node *c = sct_node_first(node); c != NULL; c = sct_node_next(c)) {
-        const int errors_before = r->f.n_errors;
-        read_joint(r, c, &m->joints[m->n_joints]);
-        r->joint_is_wrong[m->n_joints++] = r->f.n_errors > errors_before || r->f.unit_is_wrong[SCT_LENGTH];
-    }
-}
-
-/* ---- members --------------------------------------------------------------------------------------------------------
- */
-
-void sct_read_lengths(sct_reader *r, const sct_node *restraint, const sct_node *factor, sct_lengths *lengths)
-{
-    static const sct_range RESTRAINT = {"an effective length", SCT_LENGTH, 1e-6, 1e5, 0.1, 1e3, NULL};
-    static const sct_range FACTOR = {"a length factor", -1, 0.01, 10, 0, 0, NULL};
-    static const sct_key AXES[] = {{"in_plane", NULL}, {"out_of_plane", NULL}};
-    const sct_node *distance[2] = {NULL, NULL}, *times[2] = {NULL, NULL};
-    *lengths = (sct_lengths){0};
-    sct_fields_keys(&r->f, restraint, "a restraint", AXES, 2, distance);
-    sct_fields_keys(&r->f, factor, "a length factor", AXES, 2, times);
-    for (int axis = 0; axis < 2; axis++) {
-        if (distance[axis] != NULL && times[axis] != NULL) {
-            const sct_where other = sct_node_where(r->f.document, distance[axis]);
-            sct_fields_error(&r->f, times[axis],
-                             "the effective length is given twice; \"restraint\" at %d:%d gives it too", other.line,
-                             other.column);
-            continue;
-        }
-        const bool by_distance = distance[axis] != NULL;
-        lengths->source[axis] = by_distance ? SCT_LENGTH_RESTRAINT : SCT_LENGTH_FACTOR;
-        lengths->is_given[axis] = sct_fields_value(&r->f, by_distance ? distance[axis] : times[axis],
-                                                   by_distance ? &RESTRAINT : &FACTOR, &lengths->length[axis]);
-    }
-}
-
-static void resolve_lengths(const sct_lengths *own, const sct_lengths *of_group, sct_member *member)
-{
-    for (int axis = 0; axis < 2; axis++) {
-        const sct_lengths *said = own->is_given[axis] ? own : of_group;
-        const bool is_given = said != NULL && said->is_given[axis];
-        member->source[axis] = is_given ? said->source[axis] : SCT_LENGTH_SYSTEM;
-        member->length[axis] = is_given ? said->length[axis] : (double)NAN;
-    }
-}
-
-static void read_member(sct_reader *r, const sct_node *node, sct_member *member)
-{
-    enum { K_FROM, K_TO, K_GROUP, K_RESTRAINT, K_FACTOR, N };
-    static const sct_key KEYS[N] = {{"from", "the name of a joint"},
-                                    {"to", "the name of a joint"},
-                                    {"group", "the name of a group"},
-                                    {"restraint", NULL},
-                                    {"length_factor", NULL}};
-    const sct_node *found[N];
-    sct_lengths own;
-    member->from = member->to = member->group = -1;
-    member->where = sct_fields_where(&r->f, node);
-    sct_fields_name(&r->f, node, &member->name);
-    if (!sct_fields_keys(&r->f, node, "a member", KEYS, N, found)) return;
-    const bool has_from = sct_fields_reference(&r->f, found[K_FROM], "joint", r->joints, &member->from);
-    const bool has_to = sct_fields_reference(&r->f, found[K_TO], "joint", r->joints, &member->to);
-    if (has_from && has_to && member->from == member->to)
-        sct_fields_error(&r->f, found[K_TO], "the member begins and ends at joint \"%s\"; expected two joints",
-                         sct_show(sct_node_string(found[K_TO])).text);
-    sct_fields_reference(&r->f, found[K_GROUP], "group", r->groups, &member->group);
-    sct_read_lengths(r, found[K_RESTRAINT], found[K_FACTOR], &own);
-    resolve_lengths(&own, member->group < 0 || r->group_lengths == NULL ? NULL : &r->group_lengths[member->group],
-                    member);
-}
-
-static void read_members(sct_reader *r, const sct_node *node)
-{
-    sct_model *m = r->model;
-    const int n = sct_reader_count(r, node, "member", SCT_MOST_MEMBERS);
-    m->members = sct_fields_array(&r->f, n, sizeof *m->members);
-    r->members = sct_reader_names(r, node);
-    if (failed(r) || n == 0) return;
-    for (const sct_node *c = sct_node_first(node); c != NULL; c = sct_node_next(c))
-        read_member(r, c, &m->members[m->n_members++]);
-}
 
 /* A group without members has nothing to size. `node` is /groups. */
 static void check_groups_used(sct_reader *r, const sct_node *node)
@@ -326,9 +235,6 @@ static void check_groups_used(sct_reader *r, const sct_node *node)
     for (const sct_node *c = sct_node_first(node); c != NULL; c = sct_node_next(c), g++)
         if (!is_used[g]) sct_fields_error(&r->f, c, "no member is in this group; give it one or leave the group out");
 }
-
-/* ---- the whole ------------------------------------------------------------------------------------------------------
- */
 
 static void read_root(sct_reader *r, const sct_node *root)
 {
@@ -363,15 +269,20 @@ static void read_root(sct_reader *r, const sct_node *root)
         [K_CASES] = {"cases", "an object with at least one load case, keyed by name"},
         [K_COMBINATIONS] = {"combinations", "an object with at least one combination, keyed by name"},
         [K_LIMITS] = {"limits", NULL}};
-    enum { L_DEFLECTION, L_BUCKLING, L_SLENDERNESS, L };
-    static const sct_key LIMITS[L] = {{"deflection", NULL}, {"buckling", NULL}, {"slenderness", NULL}};
-    const sct_node *found[N], *limit[L];
+    static const sct_key LIMITS[SCT_LIMITS] = {[SCT_LIMITS_DEFLECTION] = {"deflection", NULL},
+                                               [SCT_LIMITS_BUCKLING] = {"buckling", NULL},
+                                               [SCT_LIMITS_SLENDERNESS] = {"slenderness", NULL},
+                                               [SCT_LIMITS_DRIFT] = {"drift", NULL},
+                                               [SCT_LIMITS_BOW] = {"bow", NULL},
+                                               [SCT_LIMITS_CRITICAL_FACTOR] = {"critical_factor", NULL},
+                                               [SCT_LIMITS_AMPLIFY_SWAY] = {"amplify_sway", NULL},
+                                               [SCT_LIMITS_FREQUENCY] = {"frequency", NULL}};
+    const sct_node *found[N], *limit[SCT_LIMITS];
     const char *text;
     /* another format has other keys: its number is looked at first */
     if (sct_node_kind_of(root) == SCT_OBJECT && !read_version(r, sct_node_find(root, KEYS[K_FORMAT].name))) return;
     if (!sct_fields_keys(&r->f, root, "a model", KEYS, N, found)) return;
-    sct_fields_keys(&r->f, found[K_LIMITS], "limits", LIMITS, L, limit);
-    if (found[K_LIMITS] == NULL) limit[L_DEFLECTION] = limit[L_BUCKLING] = limit[L_SLENDERNESS] = NULL;
+    sct_fields_keys(&r->f, found[K_LIMITS], "limits", LIMITS, SCT_LIMITS, limit);
     if (found[K_LIMITS] != NULL && sct_node_kind_of(found[K_LIMITS]) != SCT_OBJECT) r->buckling.is_given = true;
     sct_fields_string(&r->f, found[K_SCHEMA], "the address of the schema", &text);
     if (sct_fields_string(&r->f, found[K_TITLE], "a title", &text)) r->model->title = sct_fields_copy(&r->f, text);
@@ -379,13 +290,13 @@ static void read_root(sct_reader *r, const sct_node *root)
     read_units(r, found[K_UNITS]);
     read_materials(r, found[K_MATERIALS]);
     if (!failed(r)) sct_read_families(r, found[K_FAMILIES]);
-    if (!failed(r)) read_joints(r, found[K_JOINTS]);
-    if (!failed(r)) sct_read_limit_defaults(r, limit[L_BUCKLING], limit[L_SLENDERNESS]);
+    if (!failed(r)) sct_read_joints(r, found[K_JOINTS]);
+    if (!failed(r)) sct_read_limit_defaults(r, limit[SCT_LIMITS_BUCKLING], limit[SCT_LIMITS_SLENDERNESS]);
     if (!failed(r)) sct_read_groups(r, found[K_GROUPS]);
-    if (!failed(r)) read_members(r, found[K_MEMBERS]);
+    if (!failed(r)) sct_read_members(r, found[K_MEMBERS]);
     if (!failed(r)) sct_read_cases(r, found[K_CASES]);
     if (!failed(r)) sct_read_combinations(r, found[K_COMBINATIONS]);
-    if (!failed(r)) sct_read_deflections(r, limit[L_DEFLECTION]);
+    if (!failed(r)) sct_read_limits(r, limit);
     if (!failed(r)) check_groups_used(r, found[K_GROUPS]);
 }
 
@@ -413,6 +324,7 @@ static sct_model *new_model(const char *name, const char *bytes, size_t size)
         model->source = sct_arena_string(arena, bytes, size);
         model->source_size = size;
         model->title = "";
+        model->least_factor = model->least_frequency = (double)NAN;
     }
     if (model != NULL && model->file != NULL && model->source != NULL) return model;
     sct_arena_free(arena);
@@ -435,7 +347,7 @@ static sct_status read_model(sct_model *model, sct_issues *issues)
     return r.f.n_errors > 0 ? SCT_BAD_INPUT : SCT_OK;
 }
 
-sct_status sct_model_parse(const char *name, const char *bytes, size_t size, sct_model **model, sct_issues *issues)
+sct_status sct_reader_parse(const char *name, const char *bytes, size_t size, sct_model **model, sct_issues *issues)
 {
     *model = NULL;
     if (size > SCT_MOST_BYTES) { /* before a copy of it is made */
@@ -451,6 +363,56 @@ sct_status sct_model_parse(const char *name, const char *bytes, size_t size, sct
     else
         sct_model_free(m);
     return status;
+}
+
+/* What a model asks of the analysis that it does not carry yet: the first such thing and its place. NULL: nothing. */
+static const char *not_carried(const sct_model *m, sct_where *where)
+{
+    for (int i = 0; i < m->n_joints; i++) {
+        *where = m->joints[i].where;
+        if (m->joints[i].n_turns_held > 0) return "the rotation of a joint is held";
+        if (m->joints[i].n_springs > 0) return "the joint stands on springs";
+    }
+    for (int i = 0; i < m->n_members; i++) {
+        *where = m->members[i].where;
+        for (int k = 0; k < 2 * SCT_TURNS; k++)
+            if (m->members[i].end[k / SCT_TURNS].fixity[k % SCT_TURNS] != SCT_PINNED) return "the member bends";
+        if (m->members[i].run >= 0) return "the member runs through joints";
+        if (m->members[i].tension_only) return "the member carries tension only";
+    }
+    for (int i = 0; i < m->n_cases; i++) {
+        const sct_case *c = &m->cases[i];
+        *where = c->where;
+        if (c->n_member_loads > 0) return "loads act on members";
+        for (int k = 0; k < c->n_loads; k++)
+            if (fabs(c->loads[k].M[0]) > 0 || fabs(c->loads[k].M[1]) > 0 || fabs(c->loads[k].M[2]) > 0)
+                return "moments act on joints";
+        for (int k = 0; k < c->n_bar_actions; k++)
+            if (fabs(c->bar_actions[k].gradient[0]) > 0 || fabs(c->bar_actions[k].gradient[1]) > 0)
+                return "members are warmed on one side";
+    }
+    for (int i = 0; i < m->n_deflections; i++) {
+        *where = m->deflections[i].where;
+        if (m->deflections[i].from != NULL) return "the limit is on a movement between joints";
+    }
+    *where = (sct_where){.file = m->file, .pointer = "/limits"};
+    if (m->n_bows > 0) return "the bow of members is limited";
+    if (m->least_factor > 0 || m->amplifies) return "sway is limited or amplified";
+    if (m->least_frequency > 0) return "the frequency is limited";
+    return NULL;
+}
+
+/* A frame that was analysed as a truss would be silently wrong. */
+sct_status sct_model_parse(const char *name, const char *bytes, size_t size, sct_model **model, sct_issues *issues)
+{
+    sct_where where;
+    const sct_status status = sct_reader_parse(name, bytes, size, model, issues);
+    const char *what = status == SCT_OK ? not_carried(*model, &where) : NULL;
+    if (what == NULL) return status;
+    sct_issue_add(issues, SCT_ERROR, where, "%s; frames are not carried yet: this version sizes trusses only", what);
+    sct_model_free(*model);
+    *model = NULL;
+    return SCT_BAD_INPUT;
 }
 
 sct_status sct_model_read(const char *path, sct_model **model, sct_issues *issues)

@@ -9,8 +9,11 @@
 #include "base/number.h"
 #include "base/text.h"
 
+#define PI 3.14159265358979323846
+
 /* Exact by definition: 1 in = 0.0254 m, 1 lb = 0.45359237 kg (International yard and pound agreement, 1959), standard
- * gravity 9.80665 m/s2 (3rd CGPM, 1901), so 1 lbf = 4.4482216152605 N. Each is written as a ratio of whole numbers. */
+ * gravity 9.80665 m/s2 (3rd CGPM, 1901), so 1 lbf = 4.4482216152605 N. Each is written as a ratio of whole numbers, or
+ * of the doubles nearest to what is none (degrees, moments in lbf). */
 static const sct_unit UNITS[] = {
     {"m", SCT_LENGTH, 1, 1},
     {"cm", SCT_LENGTH, 1, 1e2},
@@ -55,30 +58,80 @@ static const sct_unit UNITS[] = {
     {"1/K", SCT_EXPANSION, 1, 1},
     {"1/C", SCT_EXPANSION, 1, 1},
     {"1/F", SCT_EXPANSION, 9, 5},
+    {"rad", SCT_ANGLE, 1, 1},
+    {"mrad", SCT_ANGLE, 1, 1e3},
+    {"deg", SCT_ANGLE, PI, 180},
+    {"N m", SCT_MOMENT, 1, 1},
+    {"kN m", SCT_MOMENT, 1e3, 1},
+    {"MN m", SCT_MOMENT, 1e6, 1},
+    {"N mm", SCT_MOMENT, 1, 1e3},
+    {"kN cm", SCT_MOMENT, 10, 1},
+    {"lbf in", SCT_MOMENT, 1129848290276167, 1e16},
+    {"lbf ft", SCT_MOMENT, 13558179483314004, 1e16},
+    {"kip in", SCT_MOMENT, 1129848290276167, 1e13},
+    {"kip ft", SCT_MOMENT, 13558179483314004, 1e13},
+    {"N/m", SCT_FORCE_PER_LENGTH, 1, 1},
+    {"kN/m", SCT_FORCE_PER_LENGTH, 1e3, 1},
+    {"MN/m", SCT_FORCE_PER_LENGTH, 1e6, 1},
+    {"N/mm", SCT_FORCE_PER_LENGTH, 1e3, 1},
+    {"kN/mm", SCT_FORCE_PER_LENGTH, 1e6, 1},
+    {"kN/cm", SCT_FORCE_PER_LENGTH, 1e5, 1},
+    {"lbf/in", SCT_FORCE_PER_LENGTH, 44482216152605, 254e9},
+    {"lbf/ft", SCT_FORCE_PER_LENGTH, 44482216152605, 3048e9},
+    {"kip/in", SCT_FORCE_PER_LENGTH, 44482216152605, 254e6},
+    {"kip/ft", SCT_FORCE_PER_LENGTH, 44482216152605, 3048e6},
+    {"N m/rad", SCT_TURN_STIFFNESS, 1, 1},
+    {"kN m/rad", SCT_TURN_STIFFNESS, 1e3, 1},
+    {"MN m/rad", SCT_TURN_STIFFNESS, 1e6, 1},
+    {"kN m/deg", SCT_TURN_STIFFNESS, 180e3, PI},
+    {"lbf in/rad", SCT_TURN_STIFFNESS, 1129848290276167, 1e16},
+    {"kip in/rad", SCT_TURN_STIFFNESS, 1129848290276167, 1e13},
+    {"kip ft/rad", SCT_TURN_STIFFNESS, 13558179483314004, 1e13},
+    {"m3", SCT_SECTION_MODULUS, 1, 1},
+    {"cm3", SCT_SECTION_MODULUS, 1, 1e6},
+    {"mm3", SCT_SECTION_MODULUS, 1, 1e9},
+    {"in3", SCT_SECTION_MODULUS, 16387064, 1e12},
+    {"K/m", SCT_GRADIENT, 1, 1},
+    {"C/m", SCT_GRADIENT, 1, 1},
+    {"K/mm", SCT_GRADIENT, 1e3, 1},
+    {"F/ft", SCT_GRADIENT, 5e4, 27432},
+    {"F/in", SCT_GRADIENT, 5e4, 2286},
+    {"Hz", SCT_FREQUENCY, 1, 1},
 };
 enum { N_UNITS = sizeof UNITS / sizeof *UNITS };
 
 /* What people write instead. */
 static const char *const SLIPS[][2] = {
-    {"foot", "ft"},       {"feet", "ft"},          {"'", "ft"},
-    {"inch", "in"},       {"inches", "in"},        {"\"", "in"},
-    {"metre", "m"},       {"meter", "m"},          {"metres", "m"},
-    {"meters", "m"},      {"millimetre", "mm"},    {"millimeter", "mm"},
-    {"newton", "N"},      {"lb", "lbf"},           {"lbs", "lbf"},
-    {"pound", "lbf"},     {"pounds", "lbf"},       {"kips", "kip"},
-    {"pascal", "Pa"},     {"psig", "psi"},         {"N/mm\u00b2", "N/mm2"},
-    {"N/mm^2", "N/mm2"},  {"kN/m\u00b2", "kN/m2"}, {"kN/m^2", "kN/m2"},
-    {"m\u00b2", "m2"},    {"m^2", "m2"},           {"mm\u00b2", "mm2"},
-    {"mm^2", "mm2"},      {"cm\u00b2", "cm2"},     {"cm^2", "cm2"},
-    {"sqin", "in2"},      {"in^2", "in2"},         {"in\u00b2", "in2"},
-    {"mm^4", "mm4"},      {"cm^4", "cm4"},         {"mm\u2074", "mm4"},
-    {"cm\u2074", "cm4"},  {"in^4", "in4"},         {"kg/m\u00b3", "kg/m3"},
-    {"kg/m^3", "kg/m3"},  {"t/m^3", "t/m3"},       {"pcf", "lb/ft3"},
-    {"pci", "lb/in3"},    {"lb/in^3", "lb/in3"},   {"\u00b0C", "C"},
-    {"\u00b0F", "F"},     {"degC", "C"},           {"degF", "F"},
-    {"celsius", "C"},     {"kelvin", "K"},         {"/K", "1/K"},
-    {"/C", "1/C"},        {"/F", "1/F"},           {"1/\u00b0C", "1/C"},
-    {"1/\u00b0F", "1/F"}, {"K^-1", "1/K"},
+    {"foot", "ft"},        {"feet", "ft"},          {"'", "ft"},
+    {"inch", "in"},        {"inches", "in"},        {"\"", "in"},
+    {"metre", "m"},        {"meter", "m"},          {"metres", "m"},
+    {"meters", "m"},       {"millimetre", "mm"},    {"millimeter", "mm"},
+    {"newton", "N"},       {"lb", "lbf"},           {"lbs", "lbf"},
+    {"pound", "lbf"},      {"pounds", "lbf"},       {"kips", "kip"},
+    {"pascal", "Pa"},      {"psig", "psi"},         {"N/mm\u00b2", "N/mm2"},
+    {"N/mm^2", "N/mm2"},   {"kN/m\u00b2", "kN/m2"}, {"kN/m^2", "kN/m2"},
+    {"m\u00b2", "m2"},     {"m^2", "m2"},           {"mm\u00b2", "mm2"},
+    {"mm^2", "mm2"},       {"cm\u00b2", "cm2"},     {"cm^2", "cm2"},
+    {"sqin", "in2"},       {"in^2", "in2"},         {"in\u00b2", "in2"},
+    {"mm^4", "mm4"},       {"cm^4", "cm4"},         {"mm\u2074", "mm4"},
+    {"cm\u2074", "cm4"},   {"in^4", "in4"},         {"kg/m\u00b3", "kg/m3"},
+    {"kg/m^3", "kg/m3"},   {"t/m^3", "t/m3"},       {"pcf", "lb/ft3"},
+    {"pci", "lb/in3"},     {"lb/in^3", "lb/in3"},   {"\u00b0C", "C"},
+    {"\u00b0", "deg"},     {"degree", "deg"},       {"degrees", "deg"},
+    {"kNm", "kN m"},       {"kN*m", "kN m"},        {"kN-m", "kN m"},
+    {"kN.m", "kN m"},      {"Nm", "N m"},           {"Nmm", "N mm"},
+    {"kNcm", "kN cm"},     {"lb-ft", "lbf ft"},     {"ft-lb", "lbf ft"},
+    {"lbf-ft", "lbf ft"},  {"lb-in", "lbf in"},     {"kip-ft", "kip ft"},
+    {"kip-in", "kip in"},  {"ft-kip", "kip ft"},    {"plf", "lbf/ft"},
+    {"lb/ft", "lbf/ft"},   {"klf", "kip/ft"},       {"kNm/rad", "kN m/rad"},
+    {"Nm/rad", "N m/rad"}, {"kNm", "kN m/rad"},     {"kN m", "kN m/rad"},
+    {"N m", "N m/rad"},    {"mm^3", "mm3"},         {"mm\u00b3", "mm3"},
+    {"cm^3", "cm3"},       {"cm\u00b3", "cm3"},     {"in^3", "in3"},
+    {"1/s", "Hz"},         {"hertz", "Hz"},         {"\u00b0F", "F"},
+    {"degC", "C"},         {"degF", "F"},           {"celsius", "C"},
+    {"kelvin", "K"},       {"/K", "1/K"},           {"/C", "1/C"},
+    {"/F", "1/F"},         {"1/\u00b0C", "1/C"},    {"1/\u00b0F", "1/F"},
+    {"K^-1", "1/K"},
 };
 
 static const char *const WORDS[SCT_QUANTITIES] = {"a length",
@@ -88,9 +141,17 @@ static const char *const WORDS[SCT_QUANTITIES] = {"a length",
                                                   "a second moment of area",
                                                   "a density",
                                                   "a temperature difference",
-                                                  "an expansion coefficient"};
-static const char *const EXAMPLES[SCT_QUANTITIES] = {"3 m",       "4.2 kN",     "210 MPa", "700 mm2",
-                                                     "2.8e5 mm4", "7850 kg/m3", "30 K",    "12e-6 1/K"};
+                                                  "an expansion coefficient",
+                                                  "an angle",
+                                                  "a moment",
+                                                  "a force per length",
+                                                  "a rotational stiffness",
+                                                  "a section modulus",
+                                                  "a temperature gradient",
+                                                  "a frequency"};
+static const char *const EXAMPLES[SCT_QUANTITIES] = {"3 m",        "4.2 kN",       "210 MPa",   "700 mm2", "2.8e5 mm4",
+                                                     "7850 kg/m3", "30 K",         "12e-6 1/K", "30 deg",  "12 kN m",
+                                                     "5 kN/m",     "200 kN m/rad", "9.2e3 mm3", "10 K/m",  "3 Hz"};
 
 const sct_unit *sct_unit_find(const char *name)
 {

@@ -13,6 +13,13 @@ typedef enum sct_quantity {
     SCT_DENSITY,
     SCT_TEMPERATURE, /* a difference */
     SCT_EXPANSION,
+    SCT_ANGLE,
+    SCT_MOMENT,
+    SCT_FORCE_PER_LENGTH, /* line loads, stiffness of springs */
+    SCT_TURN_STIFFNESS,   /* moment per angle */
+    SCT_SECTION_MODULUS,
+    SCT_GRADIENT, /* of temperature */
+    SCT_FREQUENCY,
     SCT_QUANTITIES
 } sct_quantity;
 
