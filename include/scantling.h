@@ -142,6 +142,10 @@ SCT_API sct_status sct_model_parse(const char *name, const char *bytes, size_t s
                                    sct_issues *issues);
 SCT_API void sct_model_free(sct_model *model);
 
+/** The number of a combination of the model by its name, as sct_write_options take it; -1 when there is none: then
+ * *nearest is the name that was probably meant, or NULL. */
+SCT_API int sct_model_combination(const sct_model *model, const char *name, const char **nearest);
+
 /* ---- settings --------------------------------------------------------------------------------------------------- */
 
 /* One step of the search, told to an observer. */
@@ -277,9 +281,9 @@ typedef struct sct_start_result {
 typedef struct sct_accuracy {
     double equilibrium; /* largest joint imbalance / largest force at a joint */
     double error;       /* estimate of the relative error of displacements and forces: size of the last refinement */
-    double bound;       /* proven upper bound of that error, rounding of the proof included; NAN: none could be proven.
-                         * Relative to each value, or to 1e-3 of the largest of its kind where the value is smaller. It
-                         * covers the analysis of the structure as numbered: not the model, the loads or the theory. */
+    double bound; /* proven upper bound of that error, rounding of the proof included. Relative to each value, or to
+                   * 1e-3 of the largest of its kind where the value is smaller. It covers the analysis of the structure
+                   * as numbered: not the model, the loads or the theory. */
 } sct_accuracy;
 
 typedef struct sct_result {
@@ -309,7 +313,7 @@ typedef struct sct_result {
     double mass_continuous;     /* [kg] where the descent ended (NAN without): no bound, see README.md */
     double utilisation;         /* largest of all checks */
     double utilisation_at_most; /* the same with every force and displacement moved to its unsafe side by its proven
-                                 * error bound (by the estimate where nothing could be proven); `kept`: at most 1 */
+                                 * error bound; `kept`: at most 1 */
     double kkt, violation;      /* at the continuous optimum: relative residual, largest ln(value/limit); NAN without */
     int analyses;               /* factorizations in all */
     int n_starts;

@@ -1,7 +1,11 @@
 /* Sizing: derivatives of the problem, closed forms, outcomes, prices, sections. Models are invented. */
 #include "support.h"
 
+#include <fenv.h>
 #include <string.h>
+#ifdef __SSE2__
+#include <xmmintrin.h>
+#endif
 
 #include "analysis/structure.h"
 #include "base/random.h"
@@ -402,6 +406,34 @@ START_TEST(unsound_settings_are_refused)
 }
 END_TEST
 
+static void check_arithmetic(const sct_model *model, sct_status expected, const char *words)
+{
+    sct_result *result;
+    sct_issues *issues = sct_issues_new();
+    ck_assert_int_eq(sct_size(model, NULL, &result, issues), expected);
+    if (words != NULL) ck_assert_ptr_nonnull(strstr(sct_issues_get(issues, 0)->message, words));
+    sct_result_free(result);
+    sct_issues_free(issues);
+}
+
+/* Every bound rests on it; a host program may have changed it. */
+START_TEST(another_arithmetic_than_the_usual_is_refused)
+{
+    sct_model *model = read_file("models/benchmarks/10bar_case1.json");
+    check_arithmetic(model, SCT_OK, NULL);
+    ck_assert_int_eq(fesetround(FE_UPWARD), 0);
+    check_arithmetic(model, SCT_SELF_CHECK, "not rounded to the nearest");
+    ck_assert_int_eq(fesetround(FE_TONEAREST), 0);
+#ifdef __SSE2__
+    _mm_setcsr(_mm_getcsr() | 0x8000u); /* flush to zero, as libraries built with -ffast-math set it */
+    check_arithmetic(model, SCT_SELF_CHECK, "flushed to zero");
+    _mm_setcsr(_mm_getcsr() & ~0x8000u);
+#endif
+    check_arithmetic(model, SCT_OK, NULL);
+    sct_model_free(model);
+}
+END_TEST
+
 START_TEST(check_refuses_a_group_without_a_size)
 {
     sct_model *model = read_file("models/demo_roof.json");
@@ -776,6 +808,7 @@ int main(void)
     tcase_add_test(c, without_iterations_the_start_is_checked_and_marked);
     tcase_add_test(c, an_observer_can_stop_the_search_and_gets_the_best_so_far);
     tcase_add_test(c, unsound_settings_are_refused);
+    tcase_add_test(c, another_arithmetic_than_the_usual_is_refused);
     tcase_add_test(c, check_refuses_a_group_without_a_size);
     tcase_add_test(c, the_same_run_gives_the_same_bits_with_either_engine_near);
     tcase_add_test(c, the_price_of_deflection_is_what_a_wider_limit_saves);

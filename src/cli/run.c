@@ -87,6 +87,19 @@ static int prepare_folder(cli_run *run)
     return 0;
 }
 
+/* Before the long work starts. */
+static int find_drawn(cli_run *run, const char *name)
+{
+    const char *near;
+    run->write.combination = sct_model_combination(run->model, name, &near);
+    if (run->write.combination >= 0) return 0;
+    if (near != NULL)
+        cli_say("error", "no combination \"%s\"; did you mean \"%s\"?", name, near);
+    else
+        cli_say("error", "no combination \"%s\" in the model", name);
+    return EXIT_USAGE;
+}
+
 int cli_run_open(cli_run *run, const cli_command *command, const char *const given[], const char *path)
 {
     *run = (cli_run){.command = command, .given = given, .write = sct_write_defaults()};
@@ -112,31 +125,15 @@ int cli_run_open(cli_run *run, const cli_command *command, const char *const giv
         cli_say("error", "standard input is a terminal; pipe a model in, or name a file");
         return EXIT_USAGE;
     }
-    run->drawn = loads != NULL ? loads : moved;
+    const char *drawn = loads != NULL ? loads : moved;
     run->write.draw_loads = loads != NULL;
     run->write.draw_deflected = moved != NULL;
     const int fault = run->folder != NULL ? prepare_folder(run) : 0;
     if (fault != 0) return fault;
     run->issues = sct_issues_new();
     if (run->issues == NULL) return EXIT_RESOURCES;
-    return cli_exit_of_status(sct_model_read(path, &run->model, run->issues));
-}
-
-static int find_drawn(cli_run *run)
-{
-    const sct_result *r = run->result;
-    if (run->drawn == NULL) return 0;
-    for (int c = 0; c < r->n_combinations; c++)
-        if (strcmp(r->combinations[c], run->drawn) == 0) {
-            run->write.combination = c;
-            return 0;
-        }
-    const char *near = sct_nearest(r->combinations, r->n_combinations, run->drawn);
-    if (near != NULL)
-        cli_say("error", "no combination \"%s\"; did you mean \"%s\"?", run->drawn, near);
-    else
-        cli_say("error", "no combination \"%s\" in the model", run->drawn);
-    return EXIT_USAGE;
+    const int code = cli_exit_of_status(sct_model_read(path, &run->model, run->issues));
+    return code == 0 && drawn != NULL ? find_drawn(run, drawn) : code;
 }
 
 /* The model with the sizes put in is read back from its text, and all that the reports say is checked against a second
@@ -204,8 +201,7 @@ static int write_folder(cli_run *run, bool with_model)
 int cli_run_report(cli_run *run, bool with_model)
 {
     char *text = NULL;
-    int code = find_drawn(run);
-    if (code == 0) code = self_check(run, with_model);
+    int code = self_check(run, with_model);
     if (code == 0 && (!run->quiet || run->json)) {
         sct_write_options options = run->write;
         options.colour = cli_colours(STDOUT_FILENO, run->colour);

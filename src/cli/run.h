@@ -14,7 +14,6 @@ typedef struct cli_run {
     const char *folder; /* of the outputs; NULL: none */
     bool made_folder;
     sct_write_options write;
-    const char *drawn; /* combination to draw loads or displacements of; NULL: none */
     sct_issues *issues;
     sct_model *model;
     sct_result *result;

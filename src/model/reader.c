@@ -431,3 +431,17 @@ void sct_model_free(sct_model *model)
 {
     if (model != NULL) sct_arena_free(model->arena); /* the model itself is in it */
 }
+
+int sct_model_combination(const sct_model *model, const char *name, const char **nearest)
+{
+    const int n = model->n_combinations;
+    *nearest = NULL;
+    for (int c = 0; c < n; c++)
+        if (strcmp(model->combinations[c].name, name) == 0) return c;
+    const char **names = malloc(((size_t)n + 1) * sizeof *names);
+    if (names == NULL) return -1;
+    for (int c = 0; c < n; c++) names[c] = model->combinations[c].name;
+    *nearest = sct_nearest(names, n, name);
+    free(names);
+    return -1;
+}

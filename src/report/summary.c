@@ -440,18 +440,13 @@ static void add_reactions(const page *p)
 static void add_accuracy(const page *p)
 {
     const sct_accuracy *a = &p->r->accuracy;
-    if (!isfinite(a->equilibrium) || !isfinite(a->error)) return;
+    if (!isfinite(a->equilibrium) || !isfinite(a->error) || !isfinite(a->bound)) return;
     sct_text line = {0};
     sct_text_format(&line, "Accuracy: joints balance to %.0e of the largest force; ", a->equilibrium);
-    if (isnan(a->bound)) {
-        sct_text_format(&line, "accuracy not certified; estimate %.0e of displacements and forces.", a->error);
-    } else {
-        sct_text_format(
-            &line,
-            "displacements and forces are good to about %.0e, proven to %.0e of each (of 1/1000 of the largest "
-            "where they are smaller).",
-            a->error, sct_number_rounded_up(a->bound));
-    }
+    sct_text_format(&line,
+                    "displacements and forces are good to about %.0e, proven to %.0e of each (of 1/1000 of the largest "
+                    "where they are smaller).",
+                    a->error, sct_number_rounded_up(a->bound));
     if (line.failed) p->out->failed = true;
     sct_text_add(p->out, "\n");
     if (!line.failed) wrapped(p->out, line.data, 0);

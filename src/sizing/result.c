@@ -121,11 +121,10 @@ static void consider(sct_member_result *m, const sct_bar_check *check, int combi
 }
 
 /* The strength checks of a bar, with its force moved either way by what its error may be. */
-static double utilisation_at_most(const sct_result *r, const sct_duty *duty, int combination, int bar, double N,
-                                  double A, const double i[2])
+static double utilisation_at_most(const sct_duty *duty, int combination, int bar, double N, double A, const double i[2])
 {
-    double error = sct_combined_force_error(duty->st, &duty->response, combination, bar), most = 0.0;
-    if (isnan(error)) error = r->accuracy.error * fabs(N);
+    const double error = sct_combined_force_error(duty->st, &duty->response, combination, bar);
+    double most = 0.0;
     for (int side = -1; side <= 1 && N != 0.0; side += 2) {
         sct_bar_check checks[SCT_MOST_BAR_CHECKS];
         const int n = sct_bar_checks(&duty->rules[bar], N + side * error, A, i, checks);
@@ -172,7 +171,7 @@ static void fill_member(sct_result *r, const sct_duty *duty, const sct_design *d
         const int n = sct_bar_checks(rule, N, design->A[b->group], i, checks);
         for (int j = 0; j < n; j++) consider(m, &checks[j], c, N);
         r->utilisation_at_most =
-            sct_worse(r->utilisation_at_most, utilisation_at_most(r, duty, c, bar, N, design->A[b->group], i));
+            sct_worse(r->utilisation_at_most, utilisation_at_most(duty, c, bar, N, design->A[b->group], i));
     }
     const sct_bar_check slender = sct_bar_slenderness(rule, i, m->compressed, NULL);
     consider(m, &slender, -1, m->compressed ? m->N_min : m->N_max); /* the force that the limit is about */
@@ -189,9 +188,8 @@ static void consider_row(sct_result *r, const sct_duty *duty, int row, sct_defle
     const double utilisation = settled(sct_duty_row_utilisation(duty, row));
     const sct_deflection_row *at = &duty->rows[row];
     const sct_deflection_limit *limit = &duty->st->model->deflections[at->limit];
-    double error =
+    const double error =
         sct_combined_displacement_error(duty->st, &duty->response, at->combination, at->joint, limit->direction);
-    if (isnan(error)) error = r->accuracy.error * fabs(duty->u[row]);
     r->utilisation_at_most = sct_worse(r->utilisation_at_most, (fabs(duty->u[row]) + error) / limit->at_most);
     if (out->combination >= 0 && (isnan(out->utilisation) || utilisation <= out->utilisation)) return;
     out->combination = at->combination;
@@ -304,9 +302,4 @@ void sct_result_judge(sct_result *r, bool at_smallest)
                           shown(most));
     else
         sct_number_format(r->verdict, sizeof r->verdict, "Not every limit is kept: %s is at %.2f.", what, shown(most));
-    if (isnan(r->accuracy.bound)) { /* never silent */
-        const size_t used = strlen(r->verdict);
-        sct_number_format(r->verdict + used, sizeof r->verdict - used, " Accuracy not certified; estimate %.0e.",
-                          r->accuracy.error);
-    }
 }

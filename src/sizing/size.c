@@ -5,6 +5,7 @@
 
 #include "analysis/accuracy.h"
 #include "analysis/mechanism.h"
+#include "base/arithmetic.h"
 #include "base/memory.h"
 #include "base/random.h"
 #include "sizing/doubts.h"
@@ -96,6 +97,12 @@ static sct_status open_job(job *J, const sct_model *model, const sct_settings *s
     if (fault != NULL) {
         sct_issue_add(issues, SCT_ERROR, (sct_where){0}, "settings: %s", fault);
         return SCT_BAD_INPUT;
+    }
+    fault = sct_arithmetic_fault();
+    if (fault != NULL) {
+        sct_issue_add(issues, SCT_ERROR, (sct_where){0}, "internal check failed: the arithmetic of this process: %s",
+                      fault);
+        return SCT_SELF_CHECK;
     }
     sct_status status = sct_structure_build(model, &J->st, issues);
     if (status != SCT_OK) return status;

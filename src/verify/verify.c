@@ -308,8 +308,7 @@ static sct_status run(verifier *v, sct_arena *arena)
                 "internal check failed: a second analysis of the written model finds no factor of its stiffness");
         return status;
     }
-    v->accuracy =
-        10.0 * (isnan(v->r->accuracy.bound) ? v->r->accuracy.error : v->r->accuracy.bound) + 10.0 * v->s.error;
+    v->accuracy = 10.0 * v->r->accuracy.bound + 10.0 * v->s.error;
     combine_all(v);
     compare_all(v, R);
     return v->n_wrong > 0 ? SCT_SELF_CHECK : SCT_OK;
