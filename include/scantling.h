@@ -304,7 +304,11 @@ typedef struct sct_result {
     double *u;                 /* [m]  n_combinations x n_joints x 3 displacements */
     double *reaction;          /* [N]  n_combinations x n_joints x 3; 0 where nothing is held */
     double *N;    /* [N]  n_combinations x n_members; what is below 1e-9 of the largest force is given as 0 */
-    double *load; /* [N]  n_combinations x n_joints x 3, self-weight included */
+    double *load; /* [N]  n_combinations x n_joints x 3, self-weight included; loads on members count at their ends */
+    /* frames, each n_combinations x n_joints x 3, about x, y, z */
+    double *turn;        /* [rad] rotations; 0 where no member's end takes part */
+    double *moment;      /* [N m] that supports give */
+    double *moment_load; /* [N m] as `load` */
 
     int n_deflections;
     sct_deflection_result *deflections;

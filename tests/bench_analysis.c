@@ -88,7 +88,7 @@ static void map_bars(side *s, const sct_pattern *p)
     s->entry = malloc((size_t)s->st->n_bars * 21 * sizeof *s->entry);
     int *next = s->entry;
     for (int e = 0; e < s->st->n_bars; e++) {
-        const sct_bar *bar = &s->st->bars[e];
+        const sct_spring *bar = &s->st->springs[e];
         for (int j = 0; j < bar->n_dof; j++)
             for (int i = 0; i <= j; i++) *next++ = place(p, bar->dof[i], bar->dof[j]);
     }
@@ -100,7 +100,7 @@ static void fill(side *s)
     const int *next = s->entry;
     memset(x, 0, s->K->nzmax * sizeof *x);
     for (int e = 0; e < s->st->n_bars; e++) {
-        const sct_bar *bar = &s->st->bars[e];
+        const sct_spring *bar = &s->st->springs[e];
         const double k = bar->E * s->A[bar->group] / bar->L;
         for (int j = 0; j < bar->n_dof; j++)
             for (int i = 0; i <= j; i++) x[*next++] += k * bar->b[i] * bar->b[j];
@@ -176,7 +176,7 @@ static void forces(side *s)
         const double *u = (const double *)s->u->x + (size_t)k * s->u->d;
         double *N = s->N + (size_t)k * (size_t)s->st->n_bars;
         for (int e = 0; e < s->st->n_bars; e++) {
-            const sct_bar *bar = &s->st->bars[e];
+            const sct_spring *bar = &s->st->springs[e];
             double elongation = 0.0;
             for (int i = 0; i < bar->n_dof; i++) elongation += bar->b[i] * u[bar->dof[i]];
             N[e] = bar->E * s->A[bar->group] / bar->L * elongation;

@@ -79,7 +79,7 @@ static inline int null_motion(const sct_structure *st, double v[])
     double *vt = calloc((size_t)(n * n), sizeof *vt), *work = calloc((size_t)lwork, sizeof *work), none;
     int info, nullity = n - least;
     for (int e = 0; e < m; e++) {
-        for (int i = 0; i < st->bars[e].n_dof; i++) B[st->bars[e].dof[i] * m + e] = st->bars[e].b[i];
+        for (int i = 0; i < st->springs[e].n_dof; i++) B[st->springs[e].dof[i] * m + e] = st->springs[e].b[i];
     }
     dgesvd_("N", "A", &m, &n, B, &m, s, &none, &m, vt, &n, work, &lwork, &info);
     ck_assert_int_eq(info, 0);

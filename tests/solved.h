@@ -65,21 +65,34 @@ static inline double moved(const solved *s, int k, int joint, int axis)
 }
 
 /* Loads and reactions of a combination, 3 n_joints each, for free(). */
+static inline double *forces_of(const solved *s, const double *both)
+{
+    double *force = calloc((size_t)(3 * s->st->n_joints), sizeof *force);
+    for (int i = 0; i < 3 * s->st->n_joints; i++) force[i] = both[6 * (i / 3) + i % 3];
+    return force;
+}
+
 static inline double *loads_of(const solved *s, int combination)
 {
-    double *load = calloc((size_t)(3 * s->st->n_joints), sizeof *load);
-    sct_combine_loads(s->st, s->A, combination, load);
+    double *both = calloc((size_t)(6 * s->st->n_joints), sizeof *both);
+    sct_combine_loads(s->st, s->A, combination, both);
+    double *load = forces_of(s, both);
+    free(both);
     return load;
 }
 
 static inline double *reactions_of(const solved *s, int combination)
 {
-    double *load = loads_of(s, combination), *N = calloc((size_t)s->st->n_bars, sizeof *N);
-    double *reaction = calloc((size_t)(3 * s->st->n_joints), sizeof *reaction);
-    sct_combine_forces(s->st, &s->r, combination, N);
-    sct_reactions(s->st, N, load, reaction);
+    double *load = calloc((size_t)(6 * s->st->n_joints), sizeof *load);
+    double *S = calloc((size_t)s->st->n_springs, sizeof *S);
+    double *both = calloc((size_t)(6 * s->st->n_joints), sizeof *both);
+    sct_combine_loads(s->st, s->A, combination, load);
+    sct_combine_springs(s->st, &s->r, combination, S);
+    sct_reactions(s->st, S, load, both);
+    double *reaction = forces_of(s, both);
     free(load);
-    free(N);
+    free(S);
+    free(both);
     return reaction;
 }
 

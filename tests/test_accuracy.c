@@ -88,17 +88,17 @@ static void solve_reference(const bench *b, quad *u, quad *N)
     quad *K = calloc((size_t)(n * n), sizeof *K);
     for (int i = 0; i < n; i++) u[i] = st->f[i];
     for (int e = 0; e < st->n_bars; e++) {
-        const sct_bar *bar = &st->bars[e];
+        const sct_spring *bar = &st->springs[e];
         const quad A = b->A[bar->group], k = bar->E * A / bar->L;
         for (int i = 0; i < bar->n_dof; i++) {
-            u[bar->dof[i]] += b->m->cases[0].self_weight * A * bar->w[i] - k * st->stretch[e] * bar->b[i];
+            u[bar->dof[i]] += b->m->cases[0].self_weight * A * st->bars[e].w[i] - k * st->stretch[e] * bar->b[i];
             for (int j = 0; j < bar->n_dof; j++) K[bar->dof[i] * n + bar->dof[j]] += k * bar->b[i] * bar->b[j];
         }
     }
     solve_dense(n, K, u);
     free(K);
     for (int e = 0; e < st->n_bars; e++) {
-        const sct_bar *bar = &st->bars[e];
+        const sct_spring *bar = &st->springs[e];
         N[e] = st->stretch[e];
         for (int i = 0; i < bar->n_dof; i++) N[e] += u[bar->dof[i]] * bar->b[i];
         N[e] *= bar->E * (quad)b->A[bar->group] / bar->L;

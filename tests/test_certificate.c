@@ -72,7 +72,7 @@ static envelope assemble(const bench *b)
     v.start = calloc((size_t)v.n + 2, sizeof *v.start);
     for (int i = 0; i < v.n; i++) v.first[i] = i;
     for (int e = 0; e < st->n_bars; e++) {
-        const sct_bar *bar = &st->bars[e];
+        const sct_spring *bar = &st->springs[e];
         for (int i = 0; i < bar->n_dof; i++) {
             for (int j = 0; j < bar->n_dof; j++) {
                 if (bar->dof[j] < v.first[bar->dof[i]]) v.first[bar->dof[i]] = bar->dof[j];
@@ -82,7 +82,7 @@ static envelope assemble(const bench *b)
     for (int i = 0; i < v.n; i++) v.start[i + 1] = v.start[i] + (size_t)(i - v.first[i] + 1);
     v.a = calloc(v.start[v.n] + 1, sizeof *v.a);
     for (int e = 0; e < st->n_bars; e++) {
-        const sct_bar *bar = &st->bars[e];
+        const sct_spring *bar = &st->springs[e];
         const quad k = (quad)bar->E * b->A[bar->group] / bar->L;
         for (int i = 0; i < bar->n_dof; i++) {
             for (int j = 0; j < bar->n_dof; j++) {
@@ -128,15 +128,15 @@ static void solve_case(const bench *b, const envelope *v, int k, quad u[], quad 
     const double *stretch = st->stretch + (size_t)k * (size_t)st->n_bars;
     for (int i = 0; i < st->n_dof; i++) u[i] = st->f[k * st->n_dof + i];
     for (int e = 0; e < st->n_bars; e++) {
-        const sct_bar *bar = &st->bars[e];
+        const sct_spring *bar = &st->springs[e];
         const quad A = b->A[bar->group], stiffness = bar->E * A / bar->L;
         for (int i = 0; i < bar->n_dof; i++) {
-            u[bar->dof[i]] += b->m->cases[k].self_weight * A * bar->w[i] - stiffness * stretch[e] * bar->b[i];
+            u[bar->dof[i]] += b->m->cases[k].self_weight * A * st->bars[e].w[i] - stiffness * stretch[e] * bar->b[i];
         }
     }
     solve(v, u);
     for (int e = 0; e < st->n_bars; e++) {
-        const sct_bar *bar = &st->bars[e];
+        const sct_spring *bar = &st->springs[e];
         N[e] = stretch[e];
         for (int i = 0; i < bar->n_dof; i++) N[e] += u[bar->dof[i]] * bar->b[i];
         N[e] *= bar->E * (quad)b->A[bar->group] / bar->L;

@@ -62,7 +62,7 @@ static void check_statics(const solved *s, int k)
     double *B = calloc((size_t)(n * n), sizeof *B), *N = calloc((size_t)n, sizeof *N);
     int *pivots = calloc((size_t)n, sizeof *pivots), info;
     for (int e = 0; e < n; e++) {
-        const sct_bar *bar = &st->bars[e];
+        const sct_spring *bar = &st->springs[e];
         for (int i = 0; i < bar->n_dof; i++) B[e * n + bar->dof[i]] = bar->b[i]; /* B N = f: pull back what is loaded */
     }
     memcpy(N, st->f + (size_t)k * (size_t)n, (size_t)n * sizeof *N);
@@ -106,8 +106,8 @@ static void check_balance(const solved *s, int combination, bool by_loads_only)
         largest = fmax(largest, fabs(N[e]));
         energy += N[e] * N[e] * bar->L / (bar->E * s->A[bar->group]);
         for (int i = 0; i < 3; i++) {
-            joint[3 * bar->from + i] += N[e] * bar->dir[i];
-            joint[3 * bar->to + i] -= N[e] * bar->dir[i];
+            joint[3 * bar->from + i] += N[e] * bar->axes[0][i];
+            joint[3 * bar->to + i] -= N[e] * bar->axes[0][i];
         }
     }
     for (int i = 0; i < 3; i++) ck_assert_double_eq_tol(sum[i], 0.0, 1e-9 * largest);
@@ -964,7 +964,7 @@ START_TEST(both_engines_and_dense_LAPACK_agree)
         double *K = calloc((size_t)(n * n), sizeof *K), *u = calloc((size_t)(n * cases), sizeof *u);
         double *weight = calloc((size_t)n, sizeof *weight);
         for (int e = 0; e < st->n_bars; e++) { /* assembled bar by bar, sharing nothing with the solver */
-            const sct_bar *bar = &st->bars[e];
+            const sct_spring *bar = &st->springs[e];
             for (int p = 0; p < bar->n_dof; p++) {
                 for (int q = 0; q < bar->n_dof; q++) {
                     K[bar->dof[p] * n + bar->dof[q]] += bar->E * small.A[bar->group] / bar->L * bar->b[p] * bar->b[q];

@@ -1,7 +1,7 @@
-/* How far an analysis can be trusted: iterative refinement with residuals summed bar by bar in long double.
+/* How far an analysis can be trusted: iterative refinement with residuals summed spring by spring in long double.
  *
- * The matrix never enters: a residual is load minus bar forces, and a bar force comes from the displacements of its
- * ends. So rounding in the assembly is repaired as well, and where it cannot be, the steps do not shrink.
+ * The matrix never enters: a residual is load minus spring forces, and a spring force comes from the displacements of
+ * its ends. So rounding in the assembly is repaired as well, and where it cannot be, the steps do not shrink.
  * Displacements are kept in long double while they are refined: then a healthy second step is at least a hundred times
  * smaller than the first, however badly scaled the model is, and its size is an estimate of what is left that
  * errs on the safe side. (Wilkinson; Higham, Accuracy and Stability of Numerical Algorithms, chapter 12.) What is left
@@ -32,14 +32,15 @@ static const double SMALL_PART = 1e-3;
 typedef struct refinement {
     const sct_structure *st;
     const double *A;
-    size_t n, n_bars, n_cases, n_joints;
+    const sct_properties *sizes;
+    size_t n, n_springs, n_cases, n_joints;
     long double *weight; /* n: own weight, unit factor */
     long double *u;      /* n_cases x n */
     long double *step;   /* n_cases x n: the latest one */
     long double *r;      /* n: residual of one case */
     double *d;           /* n_cases x n: residuals, then steps */
-    double *dN;          /* n_bars: what a step adds to the forces of one case */
-    double *force;       /* n_joints: largest force at each joint */
+    double *dN;          /* n_springs: what a step adds to the forces of one case */
+    double *force;       /* n_joints: largest force at each joint; a moment counts by its span */
 } refinement;
 
 static void refinement_free(refinement *w)
@@ -60,43 +61,43 @@ static bool refinement_allocate(refinement *w)
     w->step = calloc(w->n_cases * w->n + 1, sizeof *w->step);
     w->r = malloc((w->n + 1) * sizeof *w->r);
     w->d = malloc((w->n_cases * w->n + 1) * sizeof *w->d);
-    w->dN = malloc((w->n_bars + 1) * sizeof *w->dN);
+    w->dN = malloc((w->n_springs + 1) * sizeof *w->dN);
     w->force = malloc((w->n_joints + 1) * sizeof *w->force);
     return w->weight && w->u && w->step && w->r && w->d && w->dN && w->force;
 }
 
 static double stretch(const refinement *w, size_t k, size_t e)
 {
-    return w->st->stretch[k * w->n_bars + e];
+    return w->st->stretch[k * w->n_springs + e];
 }
 
-/* Force of bar e in case k for the displacements u of that case, without the latest step. */
-static long double bar_force(const refinement *w, size_t k, size_t e)
+/* Force of spring e in case k for the displacements u of that case, without the latest step. */
+static long double spring_force(const refinement *w, size_t k, size_t e)
 {
     long double size;
-    const sct_bar *bar = &w->st->bars[e];
-    const long double elongation = stretch(w, k, e) + sct_elongation(bar, w->u + k * w->n, &size);
-    return sct_axial_stiffness(bar, w->A) * elongation;
+    const sct_spring *spring = &w->st->springs[e];
+    const long double elongation = stretch(w, k, e) + sct_elongation(spring, w->u + k * w->n, &size);
+    return sct_stiffness_long(spring, w->sizes) * elongation;
 }
 
 static void weigh(refinement *w)
 {
-    for (size_t e = 0; e < w->n_bars; e++) {
+    for (int e = 0; e < w->st->n_bars; e++) {
         const sct_bar *bar = &w->st->bars[e];
         for (int i = 0; i < bar->n_dof; i++) w->weight[bar->dof[i]] += (long double)w->A[bar->group] * bar->w[i];
     }
 }
 
-/* r = load of case k, to be reduced by bar forces. */
+/* r = load of case k, to be reduced by spring forces. */
 static void start_with_load(refinement *w, size_t k)
 {
     const long double factor = w->st->model->cases[k].self_weight;
     for (size_t i = 0; i < w->n; i++) w->r[i] = w->st->f[k * w->n + i] + factor * w->weight[i];
 }
 
-static void subtract_force(refinement *w, const sct_bar *bar, long double N)
+static void subtract_force(refinement *w, const sct_spring *spring, long double S)
 {
-    for (int i = 0; i < bar->n_dof; i++) w->r[bar->dof[i]] -= N * bar->b[i];
+    for (int i = 0; i < spring->n_dof; i++) w->r[spring->dof[i]] -= S * spring->b[i];
 }
 
 static double largest(size_t n, const double a[])
@@ -120,37 +121,58 @@ static double worse(double a, double b)
     return a > b || isnan(a) ? a : b;
 }
 
-static double joint_size(const sct_structure *st, size_t joint, const long double u[])
+/* The displacement of a joint, or its rotation. */
+typedef enum part { MOVES, TURNS, PARTS } part;
+
+static size_t first_of(const sct_structure *st, size_t joint, part which)
 {
+    return (size_t)(st->first_dof[joint] + (which == TURNS ? st->n_free[joint] : 0));
+}
+
+static int count_of(const sct_structure *st, size_t joint, part which)
+{
+    return which == TURNS ? st->n_turns[joint] : st->n_free[joint];
+}
+
+static double joint_size(const sct_structure *st, size_t joint, part which, const long double u[])
+{
+    const long double *v = u + first_of(st, joint, which);
     long double sum = 0.0L;
-    for (int i = 0; i < st->n_free[joint]; i++) sum += u[st->first_dof[joint] + i] * u[st->first_dof[joint] + i];
+    for (int i = 0; i < count_of(st, joint, which); i++) sum += v[i] * v[i];
     return (double)sqrtl(sum);
 }
 
-static double joint_step(const sct_structure *st, size_t joint, const double d[])
+static double joint_step(const sct_structure *st, size_t joint, part which, const double d[])
 {
+    const double *v = d + first_of(st, joint, which);
     double sum = 0.0;
-    for (int i = 0; i < st->n_free[joint]; i++) sum = hypot(sum, d[st->first_dof[joint] + i]);
+    for (int i = 0; i < count_of(st, joint, which); i++) sum = hypot(sum, v[i]);
     return sum;
 }
 
 /* The size of changes du (n) of the displacements and dN of the forces N of case k, relative to them. Prescribed
- * elongations count as sizes too: heat may strain a truss that hardly moves, or move one without force. */
+ * elongations count as sizes too: heat may strain a truss that hardly moves, or move one without force. Moments count
+ * beside forces by their span, rotations beside displacements by the mean length of a member. */
 static double relative_size(refinement *w, size_t k, const double N[], const double du[], const double dN[])
 {
+    const sct_structure *st = w->st;
+    const double lever[PARTS] = {1.0, st->lever};
     long double *u = w->r; /* free between two residuals */
-    double u_scale = 0.0, N_scale = largest(w->n_bars, N), size = 0.0;
+    double u_scale = 0.0, N_scale = 0.0, size = 0.0;
     for (size_t i = 0; i < w->n; i++) u[i] = w->u[k * w->n + i] + w->step[k * w->n + i];
-    for (size_t e = 0; e < w->n_bars; e++) {
-        const long double stiffness = sct_axial_stiffness(&w->st->bars[e], w->A);
-        u_scale = fmax(u_scale, fabs(stretch(w, k, e)));
-        N_scale = fmax(N_scale, fabs((double)(stiffness * stretch(w, k, e))));
+    for (size_t e = 0; e < w->n_springs; e++) {
+        const sct_spring *spring = &st->springs[e];
+        const long double stiffness = sct_stiffness_long(spring, w->sizes);
+        u_scale = fmax(u_scale, fabs(stretch(w, k, e)) * spring->span);
+        N_scale = fmax(N_scale, fabs((double)(stiffness * stretch(w, k, e))) / spring->span);
+        N_scale = fmax(N_scale, fabs(N[e]) / spring->span);
     }
-    for (size_t j = 0; j < w->n_joints; j++) u_scale = fmax(u_scale, joint_size(w->st, j, u));
-    for (size_t j = 0; j < w->n_joints; j++) {
-        size = worse(relative(joint_step(w->st, j, du), joint_size(w->st, j, u), u_scale), size);
-    }
-    for (size_t e = 0; e < w->n_bars; e++) size = worse(relative(dN[e], N[e], N_scale), size);
+    for (size_t j = 0; j < w->n_joints; j++)
+        for (part p = MOVES; p < PARTS; p++) u_scale = fmax(u_scale, lever[p] * joint_size(st, j, p, u));
+    for (size_t j = 0; j < w->n_joints; j++)
+        for (part p = MOVES; p < PARTS; p++)
+            size = worse(relative(joint_step(st, j, p, du), joint_size(st, j, p, u), u_scale / lever[p]), size);
+    for (size_t e = 0; e < w->n_springs; e++) size = worse(relative(dN[e], N[e], N_scale * st->springs[e].span), size);
     return size;
 }
 
@@ -160,58 +182,67 @@ static double take_step(refinement *w, size_t k, double N[])
     const double *d = w->d + k * w->n;
     long double *step = w->step + k * w->n;
     for (size_t i = 0; i < w->n; i++) step[i] = d[i];
-    for (size_t e = 0; e < w->n_bars; e++) {
+    for (size_t e = 0; e < w->n_springs; e++) {
         long double size;
-        const sct_bar *bar = &w->st->bars[e];
-        const long double added = sct_axial_stiffness(bar, w->A) * sct_elongation(bar, step, &size);
+        const sct_spring *spring = &w->st->springs[e];
+        const long double added = sct_stiffness_long(spring, w->sizes) * sct_elongation(spring, step, &size);
         w->dN[e] = (double)added;
-        N[e] = (double)(bar_force(w, k, e) + added);
+        N[e] = (double)(spring_force(w, k, e) + added);
     }
     return relative_size(w, k, N, d, w->dN);
 }
 
-/* One step for all cases: u += the step before; step = K^-1 (load - bar forces); forces N (n_cases x n_bars). Returns
- * its size. */
+/* One step for all cases: u += the step before; step = K^-1 (load - spring forces); forces N (n_cases x n_springs).
+ * Returns its size. */
 static double refine(refinement *w, sct_solver *solver, double N[])
 {
     for (size_t i = 0; i < w->n_cases * w->n; i++) w->u[i] += w->step[i];
     for (size_t k = 0; k < w->n_cases; k++) {
         start_with_load(w, k);
-        for (size_t e = 0; e < w->n_bars; e++) subtract_force(w, &w->st->bars[e], bar_force(w, k, e));
+        for (size_t e = 0; e < w->n_springs; e++) subtract_force(w, &w->st->springs[e], spring_force(w, k, e));
         for (size_t i = 0; i < w->n; i++) w->d[k * w->n + i] = (double)w->r[i];
     }
     sct_solver_solve(solver, (int)w->n_cases, w->d);
     double size = 0.0;
-    for (size_t k = 0; k < w->n_cases; k++) size = worse(take_step(w, k, N + k * w->n_bars), size);
+    for (size_t k = 0; k < w->n_cases; k++) size = worse(take_step(w, k, N + k * w->n_springs), size);
     return size;
 }
 
-/* Largest force that acts at each joint in case k: load, bar forces N, forces of prescribed elongations. */
+static void raise(double *most, double value)
+{
+    *most = fmax(*most, value);
+}
+
+/* Largest force that acts at each joint in case k: load, spring forces N, forces of prescribed elongations. */
 static void find_joint_forces(refinement *w, size_t k, const double N[])
 {
     const sct_structure *st = w->st;
     start_with_load(w, k);
-    for (size_t j = 0; j < w->n_joints; j++) w->force[j] = joint_size(st, j, w->r);
-    for (size_t e = 0; e < w->n_bars; e++) {
-        const sct_bar *bar = &st->bars[e];
-        const double held = fabs((double)(sct_axial_stiffness(bar, w->A) * stretch(w, k, e)));
-        const double force = fmax(fabs(N[e]), held);
-        w->force[bar->from] = fmax(w->force[bar->from], force);
-        w->force[bar->to] = fmax(w->force[bar->to], force);
+    for (size_t j = 0; j < w->n_joints; j++)
+        w->force[j] = fmax(joint_size(st, j, MOVES, w->r), joint_size(st, j, TURNS, w->r) / st->lever);
+    for (size_t e = 0; e < w->n_springs; e++) {
+        const sct_spring *spring = &st->springs[e];
+        if (spring->bar < 0) continue;
+        const double held = fabs((double)(sct_stiffness_long(spring, w->sizes) * stretch(w, k, e)));
+        const double force = fmax(fabs(N[e]), held) / spring->span;
+        raise(&w->force[st->bars[spring->bar].from], force);
+        raise(&w->force[st->bars[spring->bar].to], force);
     }
 }
 
 /* Largest imbalance of a joint / largest force there, from the forces that are reported. */
 static double imbalance(refinement *w, size_t k, const double N[])
 {
+    const sct_structure *st = w->st;
+    const double lever[PARTS] = {1.0, st->lever};
     find_joint_forces(w, k, N);
     const double scale = largest(w->n_joints, w->force);
     double worst = 0.0;
     start_with_load(w, k);
-    for (size_t e = 0; e < w->n_bars; e++) subtract_force(w, &w->st->bars[e], N[e]);
-    for (size_t j = 0; j < w->n_joints; j++) {
-        worst = worse(relative(joint_size(w->st, j, w->r), w->force[j], scale), worst);
-    }
+    for (size_t e = 0; e < w->n_springs; e++) subtract_force(w, &st->springs[e], N[e]);
+    for (size_t j = 0; j < w->n_joints; j++)
+        for (part p = MOVES; p < PARTS; p++)
+            worst = worse(relative(joint_size(st, j, p, w->r) / lever[p], w->force[j], scale), worst);
     return worst;
 }
 
@@ -305,8 +336,8 @@ static double bound_of(refinement *w, const sct_response *response)
 {
     double bound = 0.0;
     for (size_t k = 0; k < w->n_cases; k++) {
-        bound = worse(relative_size(w, k, response->N + k * w->n_bars, response->u_error + k * w->n,
-                                    response->N_error + k * w->n_bars),
+        bound = worse(relative_size(w, k, response->N + k * w->n_springs, response->u_error + k * w->n,
+                                    response->N_error + k * w->n_springs),
                       bound);
     }
     return bound;
@@ -322,7 +353,7 @@ static sct_status run(refinement *w, sct_solver *solver, sct_response *response,
     accuracy->error = refine_fully(w, solver, response->N, &contracts);
     for (size_t i = 0; i < w->n_cases * w->n; i++) response->u[i] = (double)(w->u[i] + w->step[i]);
     for (size_t k = 0; k < w->n_cases; k++) {
-        accuracy->equilibrium = worse(imbalance(w, k, response->N + k * w->n_bars), accuracy->equilibrium);
+        accuracy->equilibrium = worse(imbalance(w, k, response->N + k * w->n_springs), accuracy->equilibrium);
     }
     sct_status status = judge_estimate(w, contracts, accuracy, issues);
     if (status == SCT_OK) status = sct_certify(solver, w->u, w->step, response);
@@ -337,8 +368,9 @@ sct_status sct_accuracy_refine(sct_solver *solver, sct_response *response, sct_a
     refinement w = {
         .st = st,
         .A = sct_solver_areas(solver),
+        .sizes = sct_solver_sizes(solver),
         .n = (size_t)st->n_dof,
-        .n_bars = (size_t)st->n_bars,
+        .n_springs = (size_t)st->n_springs,
         .n_cases = (size_t)st->n_cases,
         .n_joints = (size_t)st->n_joints,
     };

@@ -144,7 +144,7 @@ static void find_loose(graph *g, int j)
     const int n = st->n_free[j], m = g->at[j + 1] - g->at[j];
     loose *l = &g->loose[j];
     for (int i = 0; i < m; i++) {
-        const double *dir = st->bars[g->bars[g->at[j] + i]].dir;
+        const double *dir = st->bars[g->bars[g->at[j] + i]].axes[0];
         for (int k = 0; k < n; k++) g->rows[i][k] = sct_dot(3, st->basis[j][k], dir);
     }
     sct_row N[SCT_ROW];

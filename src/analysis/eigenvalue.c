@@ -22,7 +22,7 @@ typedef struct scaled {
     double *values;   /* n_values: A; its diagonal less alpha while a shift is tried */
     double *diagonal; /* n: of A */
     double *row_sum;  /* n: of the absolute values of all terms */
-    double *count;    /* n: bars at each unknown */
+    double *count;    /* n: springs at each unknown */
     double *y, *z;    /* n */
 } scaled;
 
@@ -63,30 +63,30 @@ static bool find_scale(size_t n, const double K[], const sct_pattern *pattern, d
     return true;
 }
 
-/* A = sum over bars of t t', t = sqrt(E A / L) S b. A scaled t is below 1.5 (its square is part of a diagonal entry),
+/* A = sum over springs of t t', t = sqrt(k) S b. A scaled t is below 1.5 (its square is part of a diagonal entry),
  * so that nothing that underflows is multiplied by anything large. */
-static void assemble(scaled *a, const double A[])
+static void assemble(scaled *a, const sct_properties sizes[])
 {
-    for (int e = 0; e < a->st->n_bars; e++) {
-        const sct_bar *bar = &a->st->bars[e];
+    for (int e = 0; e < a->st->n_springs; e++) {
+        const sct_spring *spring = &a->st->springs[e];
         const int *place = sct_solver_places(a->solver, e);
-        const double root = sqrt(bar->E * A[bar->group] / bar->L);
-        double t[6], sum = 0.0;
-        for (int i = 0; i < bar->n_dof; i++) {
-            t[i] = root * a->s[bar->dof[i]] * bar->b[i];
+        const double root = sqrt(sct_spring_stiffness(spring, sizes));
+        double t[SCT_MOST_SPRING_DOF], sum = 0.0;
+        for (int i = 0; i < spring->n_dof; i++) {
+            t[i] = root * a->s[spring->dof[i]] * spring->b[i];
             sum += fabs(t[i]);
         }
-        for (int j = 0, p = 0; j < bar->n_dof; j++) {
+        for (int j = 0, p = 0; j < spring->n_dof; j++) {
             for (int i = 0; i <= j; i++, p++) a->values[place[p]] += t[i] * t[j];
-            a->row_sum[bar->dof[j]] += fabs(t[j]) * sum;
-            a->count[bar->dof[j]] += 1.0;
+            a->row_sum[spring->dof[j]] += fabs(t[j]) * sum;
+            a->count[spring->dof[j]] += 1.0;
         }
     }
     for (size_t i = 0; i < a->n; i++) a->diagonal[i] = a->values[diagonal(a->pattern, i)];
 }
 
-/* || values - S K S ||_2 at most: each entry is a sum of as many terms as bars meet; a term has 9 roundings: 4 in each
- * t (E A / L 2, root, product), one where they meet. */
+/* || values - S K S ||_2 at most: each entry is a sum of as many terms as springs meet; a term has 9 roundings: 4 in each
+ * t (E P / L 2, root, product), one where they meet. */
 static double assembly_rounding(const scaled *a)
 {
     double most = 0.0;
@@ -137,9 +137,9 @@ static sct_status try_shift(scaled *a, double alpha, double *lambda)
     return SCT_OK;
 }
 
-static sct_status search(scaled *a, const double A[], double *lambda)
+static sct_status search(scaled *a, const sct_properties sizes[], double *lambda)
 {
-    assemble(a, A);
+    assemble(a, sizes);
     double alpha = PART * estimate(a);
     sct_status status = SCT_NOT_CONVEX;
     for (int trial = 0; trial < MOST_TRIALS && status == SCT_NOT_CONVEX && alpha > 0.0 && alpha < 2.0; trial++) {
@@ -157,7 +157,7 @@ sct_status sct_eigenvalue_bound(sct_solver *solver, double s[], double *lambda)
     a.n = (size_t)a.st->n_dof;
     a.n_values = (size_t)a.pattern->column[a.n];
     if (a.n == 0 || !find_scale(a.n, K, a.pattern, s)) return SCT_OK;
-    const sct_status status = scaled_allocate(&a) ? search(&a, sct_solver_areas(solver), lambda) : SCT_NO_MEMORY;
+    const sct_status status = scaled_allocate(&a) ? search(&a, sct_solver_sizes(solver), lambda) : SCT_NO_MEMORY;
     scaled_free(&a);
     return status;
 }

@@ -1,4 +1,4 @@
-/* The elongation of a bar in long double, and how much rounding may have moved it. */
+/* The elongation of a spring in long double, and how much rounding may have moved it. */
 #ifndef SCT_ANALYSIS_ELONGATION_H
 #define SCT_ANALYSIS_ELONGATION_H
 
@@ -16,20 +16,22 @@ static inline long double sct_gamma_long(long double k)
 }
 
 /**
- * b'u of a bar for the unknowns u of one case. Where both joints are free along the same axes it is summed from
- * differences, so that a bar which is carried along loses nothing.
+ * b'u of a spring for the unknowns u of one case. Where both joints are free along the same axes the displacements are
+ * summed from differences, so that a member which is carried along loses nothing.
  *
- * *size  out: a number such that the error is at most gamma_long(7) size
+ * *size  out: a number such that the error is at most gamma_long(14) size: a difference, a product, 12 sums
  */
-static inline long double sct_elongation(const sct_bar *bar, const long double u[], long double *size)
+static inline long double sct_elongation(const sct_spring *spring, const long double u[], long double *size)
 {
-    const int half = bar->n_dof / 2;
-    bool by_differences = bar->n_dof > 0 && bar->n_dof % 2 == 0;
-    for (int i = 0; i < half; i++) by_differences = by_differences && bar->b[half + i] == -bar->b[i];
+    const int n = spring->n_pairs;
     long double sum = 0.0L, sizes = 0.0L;
-    for (int i = 0; i < (by_differences ? half : bar->n_dof); i++) {
-        const long double moved = by_differences ? u[bar->dof[half + i]] - u[bar->dof[i]] : u[bar->dof[i]];
-        const long double term = moved * bar->b[by_differences ? half + i : i];
+    for (int i = 0; i < n; i++) {
+        const long double term = (u[spring->dof[n + i]] - u[spring->dof[i]]) * spring->b[n + i];
+        sum += term;
+        sizes += fabsl(term);
+    }
+    for (int i = 2 * n; i < spring->n_dof; i++) {
+        const long double term = u[spring->dof[i]] * spring->b[i];
         sum += term;
         sizes += fabsl(term);
     }
@@ -37,9 +39,10 @@ static inline long double sct_elongation(const sct_bar *bar, const long double u
     return sum;
 }
 
-/** E A / L, three factors: error at most gamma_long(2) of it. */
-static inline long double sct_axial_stiffness(const sct_bar *bar, const double A[])
+/** E P / L, three factors: error at most gamma_long(2) of it. */
+static inline long double sct_stiffness_long(const sct_spring *spring, const sct_properties sizes[])
 {
-    return (long double)bar->E * A[bar->group] / bar->L;
+    const double P = spring->group < 0 ? 1.0 : sizes[spring->group].P[spring->property];
+    return (long double)spring->E * P / spring->L;
 }
 #endif

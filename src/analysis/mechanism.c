@@ -37,6 +37,7 @@ static const double SHOWN = 0.05; /* joints that move at least this part of the 
 typedef struct search {
     const sct_structure *st;
     const double *A;
+    sct_properties *sizes; /* n_groups */
     const sct_pattern *pattern;
     sct_factor *factor; /* the solver's, borrowed for other values */
     sct_issues *issues;
@@ -60,6 +61,7 @@ typedef struct moving {
 
 static void search_free(search *f)
 {
+    free(f->sizes);
     free(f->ground);
     free(f->values);
     free(f->s);
@@ -77,18 +79,24 @@ static bool search_allocate(search *f)
     f->X = malloc((n * BLOCK + 1) * sizeof *f->X);
     f->size = malloc((n_joints + 1) * sizeof *f->size);
     f->moving = malloc((n_joints + 1) * sizeof *f->moving);
-    return f->ground != NULL && f->values != NULL && f->s != NULL && f->X != NULL && f->size != NULL &&
-           f->moving != NULL;
+    f->sizes = malloc(((size_t)f->st->n_groups + 1) * sizeof *f->sizes);
+    for (int g = 0; g < f->st->n_groups && f->sizes != NULL; g++) {
+        f->sizes[g] = sct_properties_at_area(f->st->model, g, f->A[g]);
+        if (f->st->n_springs == f->st->n_bars) f->sizes[g].P[SCT_AREA] = f->A[g];
+    }
+    return f->sizes != NULL && f->ground != NULL && f->values != NULL && f->s != NULL && f->X != NULL &&
+           f->size != NULL && f->moving != NULL;
 }
 
-static double bar_stiffness(const search *f, const sct_bar *bar)
+/* [N/m] beside the others: moments against rotations by their span. */
+static double compared_stiffness(const search *f, const sct_spring *spring)
 {
-    return bar->E * f->A[bar->group] / bar->L;
+    return sct_spring_stiffness(spring, f->sizes) / (spring->span * spring->span);
 }
 
-static bool is_absent(const search *f, const sct_bar *bar)
+static bool is_absent(const search *f, const sct_spring *spring)
 {
-    return bar_stiffness(f, bar) < f->absent_below;
+    return compared_stiffness(f, spring) < f->absent_below;
 }
 
 /* ---- the scaled matrix ------------------------------------------------------------------------------------------ */
@@ -116,14 +124,14 @@ static int diagonal(const sct_pattern *pattern, int i)
 
 static void assemble(search *f)
 {
-    for (int e = 0; e < f->st->n_bars; e++) {
-        const sct_bar *bar = &f->st->bars[e];
-        const double k = bar_stiffness(f, bar);
-        if (is_absent(f, bar)) continue;
-        for (int a = 0; a < bar->n_dof; a++) {
+    for (int e = 0; e < f->st->n_springs; e++) {
+        const sct_spring *spring = &f->st->springs[e];
+        const double k = sct_spring_stiffness(spring, f->sizes);
+        if (is_absent(f, spring)) continue;
+        for (int a = 0; a < spring->n_dof; a++) {
             for (int b = 0; b <= a; b++) {
-                const double product = k * bar->b[a] * bar->b[b];
-                if (product != 0.0) f->values[entry(f->pattern, bar->dof[a], bar->dof[b])] += product;
+                const double product = k * spring->b[a] * spring->b[b];
+                if (product != 0.0) f->values[entry(f->pattern, spring->dof[a], spring->dof[b])] += product;
             }
         }
     }
@@ -172,10 +180,10 @@ static void orthonormalise(int n, int q, double X[])
     }
 }
 
-static double stretch(const search *f, const sct_bar *bar, const double x[])
+static double stretch(const search *f, const sct_spring *spring, const double x[])
 {
     double sum = 0.0;
-    for (int i = 0; i < bar->n_dof; i++) sum += bar->b[i] * f->s[bar->dof[i]] * x[bar->dof[i]];
+    for (int i = 0; i < spring->n_dof; i++) sum += spring->b[i] * f->s[spring->dof[i]] * x[spring->dof[i]];
     return sum;
 }
 
@@ -183,12 +191,12 @@ static double stretch(const search *f, const sct_bar *bar, const double x[])
 static void energies(const search *f, const double X[], int q, double G[BLOCK][BLOCK])
 {
     memset(G, 0, sizeof(double[BLOCK][BLOCK]));
-    for (int e = 0; e < f->st->n_bars; e++) {
-        const sct_bar *bar = &f->st->bars[e];
-        const double k = bar_stiffness(f, bar);
+    for (int e = 0; e < f->st->n_springs; e++) {
+        const sct_spring *spring = &f->st->springs[e];
+        const double k = sct_spring_stiffness(spring, f->sizes);
         double elongation[BLOCK];
-        if (is_absent(f, bar)) continue;
-        for (int a = 0; a < q; a++) elongation[a] = stretch(f, bar, X + (size_t)a * (size_t)f->n);
+        if (is_absent(f, spring)) continue;
+        for (int a = 0; a < q; a++) elongation[a] = stretch(f, spring, X + (size_t)a * (size_t)f->n);
         for (int a = 0; a < q; a++) {
             for (int b = 0; b < q; b++) G[a][b] += k * elongation[a] * elongation[b];
         }
@@ -388,11 +396,12 @@ static sct_status tell_hardly_held(search *f, const double v[])
 {
     double most = 0.0;
     int hardly = -1;
-    for (int e = 0; e < f->st->n_bars; e++) {
-        const sct_bar *bar = &f->st->bars[e];
+    for (int e = 0; e < f->st->n_springs; e++) {
+        const sct_spring *spring = &f->st->springs[e];
         double elongation = 0.0;
-        if (!is_absent(f, bar)) continue;
-        for (int i = 0; i < bar->n_dof; i++) elongation += bar->b[i] * v[bar->dof[i]];
+        if (!is_absent(f, spring)) continue;
+        for (int i = 0; i < spring->n_dof; i++) elongation += spring->b[i] * v[spring->dof[i]];
+        elongation *= spring->span;
         if (!(fabs(elongation) > most)) continue;
         most = fabs(elongation);
         hardly = e;
@@ -401,9 +410,9 @@ static sct_status tell_hardly_held(search *f, const double v[])
     sct_text text = {0};
     const int joint = describe(f, v, &text);
     sct_text_add(&text, " almost without resistance: what resists is as soft as member ");
-    sct_motion_name(&text, f->st->model->members[hardly].name);
+    sct_motion_name(&text, f->st->model->members[f->st->springs[hardly].bar < 0 ? 0 : f->st->springs[hardly].bar].name);
     sct_text_format(&text, ", with %.1g of the stiffness (E A / L) of most members; make them more alike",
-                    bar_stiffness(f, &f->st->bars[hardly]) / f->usual);
+                    compared_stiffness(f, &f->st->springs[hardly]) / f->usual);
     f->n_told++;
     return sct_motion_tell(&text, SCT_WARNING, f->st->model->joints[joint].where, f->issues) ? SCT_OK : SCT_NO_MEMORY;
 }
@@ -473,8 +482,9 @@ static void sort_motions(int n, int m, double V[])
 static double relative_stretch(const search *f, const double x[], double v[])
 {
     double most = 0.0, largest = 0.0;
-    for (int e = 0; e < f->st->n_bars; e++) {
-        if (!is_absent(f, &f->st->bars[e])) most = fmax(most, fabs(stretch(f, &f->st->bars[e], x)));
+    for (int e = 0; e < f->st->n_springs; e++) {
+        const sct_spring *spring = &f->st->springs[e];
+        if (!is_absent(f, spring)) most = fmax(most, fabs(stretch(f, spring, x)) * spring->span);
     }
     for (int i = 0; i < f->n; i++) v[i] = f->s[i] * x[i];
     for (int j = 0; j < f->st->n_joints; j++) {
@@ -568,10 +578,10 @@ static int by_size(const void *left, const void *right)
 /* Warns of what only bars hold that are hardly stiff beside the usual one. */
 static sct_status search_hardly_held(search *f)
 {
-    const size_t n = (size_t)f->st->n_bars;
+    const size_t n = (size_t)f->st->n_bars; /* axial ones tell what is usual */
     double *k = malloc((n + 1) * sizeof *k);
     if (k == NULL) return SCT_NO_MEMORY;
-    for (size_t e = 0; e < n; e++) k[e] = bar_stiffness(f, &f->st->bars[e]);
+    for (size_t e = 0; e < n; e++) k[e] = compared_stiffness(f, &f->st->springs[e]);
     qsort(k, n, sizeof *k, by_size);
     f->usual = n > 0 ? k[n / 2] : 0.0;
     const bool any = n > 0 && k[0] < HARDLY_STIFF * f->usual;
@@ -588,8 +598,9 @@ sct_status sct_mechanism_find(sct_solver *solver, const double A[], sct_issues *
     f.n = f.st->n_dof;
     f.q = f.n < BLOCK ? f.n : BLOCK;
     sct_solver_stiffness(solver, &f.pattern);
-    sct_status status =
-        search_allocate(&f) ? sct_connectivity_check(f.st, f.ground, &n_found, &f.n_told, issues) : SCT_NO_MEMORY;
+    sct_status status = search_allocate(&f) ? SCT_OK : SCT_NO_MEMORY;
+    if (status == SCT_OK && f.st->n_springs == f.st->n_bars)
+        status = sct_connectivity_check(f.st, f.ground, &n_found, &f.n_told, issues);
     if (status == SCT_OK && f.n > 0) status = search_stiffness(&f);
     if (status == SCT_OK && f.n > 0 && n_found == 0) status = search_hardly_held(&f);
     search_free(&f);

@@ -4,77 +4,117 @@
 #include <float.h>
 #include <math.h>
 
+#include "analysis/structure_parts.h"
+#include "base/vector.h"
+
 static double factor_of(const sct_structure *st, int combination, int k)
 {
     return st->model->combinations[combination].factor[k];
 }
 
-void sct_combine_forces(const sct_structure *st, const sct_response *response, int combination, double *N)
+/* The first n of the spring forces. */
+static void combine(const sct_structure *st, const sct_response *response, int combination, int n, double *S)
 {
-    for (int e = 0; e < st->n_bars; e++) N[e] = 0.0;
+    for (int e = 0; e < n; e++) S[e] = 0.0;
     for (int k = 0; k < st->n_cases; k++) {
         const double factor = factor_of(st, combination, k);
         if (factor == 0.0) continue;
-        const double *N_k = response->N + (size_t)k * (size_t)st->n_bars;
-        for (int e = 0; e < st->n_bars; e++) N[e] += factor * N_k[e];
+        const double *S_k = response->N + (size_t)k * (size_t)st->n_springs;
+        for (int e = 0; e < n; e++) S[e] += factor * S_k[e];
+    }
+}
+
+void sct_combine_forces(const sct_structure *st, const sct_response *response, int combination, double *N)
+{
+    combine(st, response, combination, st->n_bars, N);
+}
+
+void sct_combine_springs(const sct_structure *st, const sct_response *response, int combination, double *S)
+{
+    combine(st, response, combination, st->n_springs, S);
+}
+
+/* Sums what `of_joint` gives for each case; prescribed: n_cases x n_joints x 3. */
+static void combine_joints(const sct_structure *st, const sct_response *response, int combination,
+                           void (*of_joint)(const sct_structure *, const double *, const double *, int, double *),
+                           const double prescribed[], double *sum)
+{
+    for (int i = 0; i < 3 * st->n_joints; i++) sum[i] = 0.0;
+    for (int k = 0; k < st->n_cases; k++) {
+        const double factor = factor_of(st, combination, k);
+        if (factor == 0.0) continue;
+        const double *u_k = response->u + (size_t)k * (size_t)st->n_dof;
+        for (int j = 0; j < st->n_joints; j++) {
+            double d[3];
+            of_joint(st, u_k, prescribed + (size_t)k * (size_t)st->n_joints * 3, j, d);
+            for (int i = 0; i < 3; i++) sum[3 * j + i] += factor * d[i];
+        }
     }
 }
 
 void sct_combine_displacements(const sct_structure *st, const sct_response *response, int combination, double *u)
 {
-    for (int i = 0; i < 3 * st->n_joints; i++) u[i] = 0.0;
-    for (int k = 0; k < st->n_cases; k++) {
-        const double factor = factor_of(st, combination, k);
-        if (factor == 0.0) continue;
-        const double *u_k = response->u + (size_t)k * (size_t)st->n_dof;
-        const double *settled = st->settled + (size_t)k * (size_t)st->n_joints * 3;
-        for (int j = 0; j < st->n_joints; j++) {
-            double d[3];
-            sct_joint_displacement(st, u_k, settled, j, d);
-            for (int i = 0; i < 3; i++) u[3 * j + i] += factor * d[i];
-        }
-    }
+    combine_joints(st, response, combination, sct_joint_displacement, st->settled, u);
+}
+
+void sct_combine_rotations(const sct_structure *st, const sct_response *response, int combination, double *theta)
+{
+    combine_joints(st, response, combination, sct_joint_rotation, st->turned, theta);
 }
 
 void sct_combine_loads(const sct_structure *st, const double A[], int combination, double *load)
 {
     double weight_factor = 0.0;
-    for (int i = 0; i < 3 * st->n_joints; i++) load[i] = 0.0;
+    const int n = 6 * st->n_joints;
+    for (int i = 0; i < n; i++) load[i] = 0.0;
     for (int k = 0; k < st->n_cases; k++) {
-        const sct_case *c = &st->model->cases[k];
-        const double factor = factor_of(st, combination, k);
-        weight_factor += factor * c->self_weight;
-        for (int p = 0; p < c->n_loads; p++) {
-            for (int i = 0; i < 3; i++) load[3 * c->loads[p].joint + i] += factor * c->loads[p].F[i];
-        }
+        const double factor = factor_of(st, combination, k), *of_case = st->joint_load + (size_t)k * (size_t)n;
+        weight_factor += factor * st->model->cases[k].self_weight;
+        for (int i = 0; i < n && factor != 0.0; i++) load[i] += factor * of_case[i];
     }
     if (weight_factor == 0.0) return;
     for (int e = 0; e < st->n_bars; e++) {
         const sct_bar *bar = &st->bars[e];
-        const double half = weight_factor * A[bar->group] * bar->half_weight; /* [N] downwards */
-        load[3 * bar->from + st->dim - 1] -= half;
-        load[3 * bar->to + st->dim - 1] -= half;
+        const double weight = weight_factor * A[bar->group];
+        double end[2][6], on[SCT_MOST_BAR_DOF];
+        sct_bar_weight(st, e, end);
+        sct_project_ends(st, bar, end, on); /* what acts on sprung ends is not the joint's */
+        for (int i = 0; i < 6; i++) {
+            load[6 * bar->from + i] += weight * end[0][i];
+            load[6 * bar->to + i] += weight * end[1][i];
+        }
     }
 }
 
-void sct_reactions(const sct_structure *st, const double N[], const double load[], double *reaction)
+/* A support gives nothing along n free directions but rounding. */
+static void clear_along(int n, const double basis[][3], double r[3])
 {
-    for (int i = 0; i < 3 * st->n_joints; i++) reaction[i] = -load[i];
+    for (int k = 0; k < n; k++) {
+        const double along = sct_dot3(basis[k], r);
+        for (int i = 0; i < 3; i++) r[i] -= along * basis[k][i];
+    }
+}
+
+void sct_reactions(const sct_structure *st, const double S[], const double load[], double *reaction)
+{
+    for (int i = 0; i < 6 * st->n_joints; i++) reaction[i] = -load[i];
     for (int e = 0; e < st->n_bars; e++) {
         const sct_bar *bar = &st->bars[e];
-        for (int i = 0; i < 3; i++) { /* a bar in tension pulls its joints towards each other */
-            reaction[3 * bar->from + i] -= N[e] * bar->dir[i];
-            reaction[3 * bar->to + i] += N[e] * bar->dir[i];
+        double end[2][6];
+        sct_bar_pull(st, S, e, end);
+        for (int i = 0; i < 6; i++) {
+            reaction[6 * bar->from + i] -= end[0][i];
+            reaction[6 * bar->to + i] -= end[1][i];
         }
     }
     for (int j = 0; j < st->n_joints; j++) {
-        double *r = reaction + 3 * (size_t)j;
-        if (st->model->joints[j].n_held == 0) r[0] = r[1] = r[2] = 0.0;
-        for (int k = 0; k < st->n_free[j]; k++) { /* a support gives nothing in its free directions but rounding */
-            const double *v = st->basis[j][k];
-            const double along = v[0] * r[0] + v[1] * r[1] + v[2] * r[2];
-            for (int i = 0; i < 3; i++) r[i] -= along * v[i];
-        }
+        const sct_joint *joint = &st->model->joints[j];
+        double *r = reaction + 6 * (size_t)j;
+        if (joint->n_springs > 0) continue; /* they give something along free directions */
+        if (joint->n_held == 0) r[0] = r[1] = r[2] = 0.0;
+        if (joint->n_turns_held == 0) r[3] = r[4] = r[5] = 0.0;
+        clear_along(st->n_free[j], (const double(*)[3])st->basis[j], r);
+        clear_along(st->n_turns[j], (const double(*)[3])st->turn_basis[j], r + 3);
     }
 }
 
@@ -84,12 +124,12 @@ static double sum_rounding(const sct_structure *st, double terms)
     return (st->n_cases + 2) * DBL_EPSILON * terms;
 }
 
-double sct_combined_force_error(const sct_structure *st, const sct_response *response, int combination, int bar)
+double sct_combined_force_error(const sct_structure *st, const sct_response *response, int combination, int spring)
 {
     double error = 0.0, terms = 0.0;
     for (int k = 0; k < st->n_cases; k++) {
         const double factor = fabs(factor_of(st, combination, k));
-        const size_t at = (size_t)k * (size_t)st->n_bars + (size_t)bar;
+        const size_t at = (size_t)k * (size_t)st->n_springs + (size_t)spring;
         if (factor == 0.0) continue;
         error += factor * response->N_error[at];
         terms += factor * fabs(response->N[at]);

@@ -7,19 +7,26 @@
 /** N (n_bars) of one combination = sum of factor * case. */
 void sct_combine_forces(const sct_structure *st, const sct_response *response, int combination, double *N);
 
+/** S (n_springs) likewise: all spring forces. */
+void sct_combine_springs(const sct_structure *st, const sct_response *response, int combination, double *S);
+
 /** u (n_joints x 3) of one combination in the model's axes, settlements included. */
 void sct_combine_displacements(const sct_structure *st, const sct_response *response, int combination, double *u);
 
-/** load (n_joints x 3) of one combination: joint loads and self-weight with the areas A. */
+/** Likewise the rotations of the joints. */
+void sct_combine_rotations(const sct_structure *st, const sct_response *response, int combination, double *theta);
+
+/** load (n_joints x 6: forces and moments in the model's axes) of one combination: loads at joints, what loads on
+ * members put on them, and self-weight with the areas A. */
 void sct_combine_loads(const sct_structure *st, const double A[], int combination, double *load);
 
-/** reaction (n_joints x 3) that the supports give: what balances bar forces and loads at each joint with a support;
- * 0 elsewhere. */
-void sct_reactions(const sct_structure *st, const double N[], const double load[], double *reaction);
+/** reaction (n_joints x 6) that the supports give, elastic ones included: what balances spring forces S (n_springs) and
+ * loads at each joint with a support; 0 elsewhere. */
+void sct_reactions(const sct_structure *st, const double S[], const double load[], double *reaction);
 
-/** Proven bounds of the errors of sct_combine_forces for one bar, and of a joint's displacement along a direction; NAN
- * where the analysis is not certified. Only after sct_accuracy_refine. */
-double sct_combined_force_error(const sct_structure *st, const sct_response *response, int combination, int bar);
+/** Proven bounds of the errors of sct_combine_forces for one spring, and of a joint's displacement along a direction;
+ * NAN where the analysis is not certified. Only after sct_accuracy_refine. */
+double sct_combined_force_error(const sct_structure *st, const sct_response *response, int combination, int spring);
 double sct_combined_displacement_error(const sct_structure *st, const sct_response *response, int combination,
                                        int joint, const double direction[3]);
 #endif

@@ -1,14 +1,16 @@
 /**
- * Derivatives with respect to z = ln A. With k = E A / L, N = k (b'u + stretch), W the weight of unit areas, s the
- * self-weight factor of a case, and e in g meaning that bar e has the size of variable g:
+ * Derivatives with respect to z = ln A. With S = k (b'u + stretch), k1 = dk/dz and k2 = d2k/dz2 of a spring with
+ * respect to the variable of its group (k itself for E A / L; 0 for a constant spring), r1 = k1/k and r2 = k2/k, W the
+ * weight of unit areas, s the self-weight factor of a case, and m in g meaning that spring m has the size of variable
+ * g:
  *
- *   K u_g    = s A_g w_g - sum_{e in g} b N                                         (1)
- *   N_g      = [e in g] N + k b'u_g                                                 (2)
+ *   K u_g    = s A_g w_g - sum_{m in g} b r1 S                                         (1)
+ *   S_g      = [m in g] r1 S + k b'u_g                                                 (2)
  *   K u_gh   = [g = h] s A_g w_g
- *              - sum_e b ([e in g][e in h] N + [e in g] k b'u_h + [e in h] k b'u_g) (3)
- *   N_gh     = [e in g][e in h] N + [e in g] k b'u_h + [e in h] k b'u_g + k b'u_gh  (4)
+ *              - sum_m b ([m in g][m in h] r2 S + [m in g] k1 b'u_h + [m in h] k1 b'u_g) (3)
+ *   S_gh     = [m in g][m in h] r2 S + [m in g] k1 b'u_h + [m in h] k1 b'u_g + k b'u_gh  (4)
  *
- * K_g = sum_{e in g} k b b' and the load of a prescribed stretch, -b k stretch, join in the N of (1) and (3).
+ * K_g = sum_{m in g} k1 b b' and the load of a prescribed stretch, -b k1 stretch, join in the S of (1) and (3).
  */
 #include "sensitivity.h"
 
@@ -19,15 +21,29 @@
 
 enum { BATCH = 32 }; /* right-hand sides at once */
 
-static double stiffness(const sct_solver *solver, const sct_bar *bar)
+/* The variable of a spring; -1: its stiffness is constant. */
+static int variable_of(const sct_structure *st, const sct_spring *spring)
 {
-    return bar->E * sct_solver_areas(solver)[bar->group] / bar->L;
+    return spring->group < 0 ? -1 : st->var_of_group[spring->group];
 }
 
-static double elongation(const sct_bar *bar, const double u[])
+/* (dk/dz)/k and (d2k/dz2)/k of a spring that has a variable. */
+static double r1(const sct_solver *solver, const sct_spring *spring)
+{
+    const sct_properties *size = &sct_solver_sizes(solver)[spring->group];
+    return size->d1[spring->property] / size->P[spring->property];
+}
+
+static double r2(const sct_solver *solver, const sct_spring *spring)
+{
+    const sct_properties *size = &sct_solver_sizes(solver)[spring->group];
+    return size->d2[spring->property] / size->P[spring->property];
+}
+
+static double elongation(const sct_spring *spring, const double u[])
 {
     double sum = 0.0;
-    for (int i = 0; i < bar->n_dof; i++) sum += bar->b[i] * u[bar->dof[i]];
+    for (int i = 0; i < spring->n_dof; i++) sum += spring->b[i] * u[spring->dof[i]];
     return sum;
 }
 
@@ -39,24 +55,33 @@ static double weight_work(const sct_bar *bar, const double u[])
     return sum;
 }
 
-/* Right-hand sides of (1), columns first .. first + count - 1 of all cases and variables. */
+/* Right-hand sides of (1), columns first .. first + count - 1 of all cases and variables: the column of variable g in
+ * case k, or NULL when it is not among them. */
+static double *column_of(const sct_structure *st, size_t k, int g, size_t first, size_t count, double *rhs)
+{
+    const size_t c = k * (size_t)st->n_vars + (size_t)g;
+    return g < 0 || c < first || c >= first + count ? NULL : rhs + (c - first) * (size_t)st->n_dof;
+}
+
 static void fill_batch(const sct_solver *solver, const sct_response *response, size_t first, size_t count, double *rhs)
 {
     const sct_structure *st = sct_solver_structure(solver);
     const double *A = sct_solver_areas(solver);
-    const size_t n = (size_t)st->n_dof, vars = (size_t)st->n_vars;
-    memset(rhs, 0, count * n * sizeof *rhs);
-    for (size_t k = first / vars; k * vars < first + count; k++) {
+    memset(rhs, 0, count * (size_t)st->n_dof * sizeof *rhs);
+    for (size_t k = first / (size_t)st->n_vars; k * (size_t)st->n_vars < first + count; k++) {
         const double s = st->model->cases[k].self_weight;
-        const double *N = response->N + k * (size_t)st->n_bars;
-        for (int e = 0; e < st->n_bars; e++) {
+        const double *S = response->N + k * (size_t)st->n_springs;
+        for (int e = 0; e < st->n_bars && s != 0.0; e++) {
             const sct_bar *bar = &st->bars[e];
-            const int g = st->var_of_group[bar->group];
-            const size_t c = k * vars + (size_t)g;
-            if (g < 0 || c < first || c >= first + count) continue;
-            double *column = rhs + (c - first) * n;
-            for (int i = 0; i < bar->n_dof; i++)
-                column[bar->dof[i]] += s * A[bar->group] * bar->w[i] - bar->b[i] * N[e];
+            double *column = column_of(st, k, st->var_of_group[bar->group], first, count, rhs);
+            for (int i = 0; i < bar->n_dof && column != NULL; i++) column[bar->dof[i]] += s * A[bar->group] * bar->w[i];
+        }
+        for (int e = 0; e < st->n_springs; e++) {
+            const sct_spring *spring = &st->springs[e];
+            double *column = column_of(st, k, variable_of(st, spring), first, count, rhs);
+            if (column == NULL) continue;
+            const double part = r1(solver, spring) * S[e];
+            for (int i = 0; i < spring->n_dof; i++) column[spring->dof[i]] -= spring->b[i] * part;
         }
     }
 }
@@ -82,17 +107,18 @@ sct_status sct_sensitivity_direct(sct_solver *solver, const sct_response *respon
     return SCT_OK;
 }
 
-void sct_sensitivity_force(const sct_solver *solver, const sct_response *response, const double *du, int bar, int k,
-                           double dN[])
+void sct_sensitivity_force(const sct_solver *solver, const sct_response *response, const double *du, int spring, int k,
+                           double dS[])
 {
     const sct_structure *st = sct_solver_structure(solver);
-    const sct_bar *b = &st->bars[bar];
-    const int n_vars = st->n_vars, own = st->var_of_group[b->group];
-    const double *du_k = du + (size_t)k * (size_t)st->n_dof * (size_t)n_vars, k_bar = stiffness(solver, b);
-    for (int v = 0; v < n_vars; v++) dN[v] = 0.0;
-    for (int i = 0; i < b->n_dof; i++) sct_axpy(n_vars, b->b[i], du_k + (size_t)b->dof[i] * (size_t)n_vars, dN);
-    for (int v = 0; v < n_vars; v++) dN[v] *= k_bar;
-    if (own >= 0) dN[own] += response->N[(size_t)k * (size_t)st->n_bars + (size_t)bar];
+    const sct_spring *s = &st->springs[spring];
+    const int n_vars = st->n_vars, own = variable_of(st, s);
+    const double *du_k = du + (size_t)k * (size_t)st->n_dof * (size_t)n_vars;
+    const double stiffness = sct_solver_stiffnesses(solver)[spring];
+    for (int v = 0; v < n_vars; v++) dS[v] = 0.0;
+    for (int i = 0; i < s->n_dof; i++) sct_axpy(n_vars, s->b[i], du_k + (size_t)s->dof[i] * (size_t)n_vars, dS);
+    for (int v = 0; v < n_vars; v++) dS[v] *= stiffness;
+    if (own >= 0) dS[own] += r1(solver, s) * response->N[(size_t)k * (size_t)st->n_springs + (size_t)spring];
 }
 
 void sct_sensitivity_displacement(const sct_solver *solver, const double *du, int joint, const double direction[3],
@@ -108,23 +134,23 @@ void sct_sensitivity_displacement(const sct_solver *solver, const double *du, in
     }
 }
 
-/* Load of the adjoint problem of case k: sum_e wN k b + wu. False when it is zero throughout. */
+/* Load of the adjoint problem of case k: sum_m wN k b + wu. False when it is zero throughout. */
 static bool adjoint_load(const sct_solver *solver, sct_weights q, int k, double *rhs)
 {
     const sct_structure *st = sct_solver_structure(solver);
     const size_t n = (size_t)st->n_dof;
-    const double *wN = q.wN != NULL ? q.wN + (size_t)k * (size_t)st->n_bars : NULL;
+    const double *wN = q.wN != NULL ? q.wN + (size_t)k * (size_t)st->n_springs : NULL;
     const double *wu = q.wu != NULL ? q.wu + (size_t)k * n : NULL;
     bool any = false;
     for (size_t i = 0; i < n; i++) {
         rhs[i] = wu != NULL ? wu[i] : 0.0;
         any = any || rhs[i] != 0.0;
     }
-    for (int e = 0; wN != NULL && e < st->n_bars; e++) {
+    const double *stiffness = sct_solver_stiffnesses(solver);
+    for (int e = 0; wN != NULL && e < st->n_springs; e++) {
         if (wN[e] == 0.0) continue;
-        const sct_bar *bar = &st->bars[e];
-        const double k_bar = stiffness(solver, bar);
-        for (int i = 0; i < bar->n_dof; i++) rhs[bar->dof[i]] += wN[e] * k_bar * bar->b[i];
+        const sct_spring *spring = &st->springs[e];
+        for (int i = 0; i < spring->n_dof; i++) rhs[spring->dof[i]] += wN[e] * stiffness[e] * spring->b[i];
         any = true;
     }
     return any;
@@ -142,14 +168,17 @@ static void add_gradient(const sct_solver *solver, const sct_response *response,
 {
     const sct_structure *st = sct_solver_structure(solver);
     const double *A = sct_solver_areas(solver), s = st->model->cases[k].self_weight;
-    const double *N = response->N + (size_t)k * (size_t)st->n_bars;
-    const double *wN = q.wN != NULL ? q.wN + (size_t)k * (size_t)st->n_bars : NULL;
-    for (int e = 0; e < st->n_bars; e++) {
+    const double *S = response->N + (size_t)k * (size_t)st->n_springs;
+    const double *wN = q.wN != NULL ? q.wN + (size_t)k * (size_t)st->n_springs : NULL;
+    for (int e = 0; e < st->n_springs; e++) {
+        const sct_spring *spring = &st->springs[e];
+        const int g = variable_of(st, spring);
+        if (g >= 0) dq[g] += ((wN != NULL ? wN[e] : 0.0) - elongation(spring, lambda)) * r1(solver, spring) * S[e];
+    }
+    for (int e = 0; e < st->n_bars && s != 0.0; e++) {
         const sct_bar *bar = &st->bars[e];
         const int g = st->var_of_group[bar->group];
-        if (g < 0) continue;
-        dq[g] += ((wN != NULL ? wN[e] : 0.0) - elongation(bar, lambda)) * N[e];
-        if (s != 0.0) dq[g] += s * A[bar->group] * weight_work(bar, lambda);
+        if (g >= 0) dq[g] += s * A[bar->group] * weight_work(bar, lambda);
     }
 }
 
@@ -195,24 +224,28 @@ static void add_curvature(const sct_solver *solver, const sct_response *response
     const sct_structure *st = sct_solver_structure(solver);
     const size_t n = (size_t)st->n_dof, vars = (size_t)st->n_vars;
     const double *A = sct_solver_areas(solver), s = st->model->cases[k].self_weight;
-    const double *N = response->N + (size_t)k * (size_t)st->n_bars;
-    const double *wN = q.wN != NULL ? q.wN + (size_t)k * (size_t)st->n_bars : NULL;
+    const double *S = response->N + (size_t)k * (size_t)st->n_springs;
+    const double *wN = q.wN != NULL ? q.wN + (size_t)k * (size_t)st->n_springs : NULL;
     const double *du_k = du + (size_t)k * n * vars;
-    for (int e = 0; e < st->n_bars; e++) {
-        const sct_bar *bar = &st->bars[e];
-        if (st->var_of_group[bar->group] < 0) continue;
-        const size_t g = (size_t)st->var_of_group[bar->group];
-        const double weight = (wN != NULL ? wN[e] : 0.0) - elongation(bar, lambda);
-        const double k_weight = stiffness(solver, bar) * weight;
-        H[g * vars + g] += weight * N[e];
-        if (s != 0.0) H[g * vars + g] += s * A[bar->group] * weight_work(bar, lambda);
+    for (int e = 0; e < st->n_springs; e++) {
+        const sct_spring *spring = &st->springs[e];
+        if (variable_of(st, spring) < 0) continue;
+        const size_t g = (size_t)variable_of(st, spring);
+        const double weight = (wN != NULL ? wN[e] : 0.0) - elongation(spring, lambda);
+        const double k1_weight = sct_solver_stiffnesses(solver)[e] * r1(solver, spring) * weight;
+        H[g * vars + g] += weight * r2(solver, spring) * S[e];
         for (size_t h = 0; h < vars; h++) {
             double sum = 0.0; /* b'u_h */
-            for (int i = 0; i < bar->n_dof; i++) sum += bar->b[i] * du_k[(size_t)bar->dof[i] * vars + h];
-            const double part = k_weight * sum;
+            for (int i = 0; i < spring->n_dof; i++) sum += spring->b[i] * du_k[(size_t)spring->dof[i] * vars + h];
+            const double part = k1_weight * sum;
             H[g * vars + h] += part;
             H[h * vars + g] += part;
         }
+    }
+    for (int e = 0; e < st->n_bars && s != 0.0; e++) {
+        const sct_bar *bar = &st->bars[e];
+        const int g = st->var_of_group[bar->group];
+        if (g >= 0) H[(size_t)g * vars + (size_t)g] += s * A[bar->group] * weight_work(bar, lambda);
     }
 }
 

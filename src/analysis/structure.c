@@ -1,53 +1,20 @@
-/* From model to numbered structure: geometry and loads are checked here, all faults of a model in one go. */
+/* From model to numbered structure: geometry and loads are checked on the way, all faults of a model in one go. */
 #include "structure.h"
 
 #include <assert.h>
 #include <limits.h>
-#include <math.h>
 #include <stdlib.h>
 #include <string.h>
 
+#include "analysis/structure_parts.h"
 #include "base/text.h"
+#include "base/vector.h"
 
-static const double TOL_PLACE = 1e-9;     /* of the model's size: nearer joints are at one place */
-static const double TOL_DIRECTION = 1e-9; /* relative: part of a vector outside the directions it may have */
+static const double TOL_PLACE = 1e-9; /* of the model's size: nearer joints are at one place */
+static const double ALONG = 1e-6;     /* sine of an angle: nearer directions are taken for one */
 
 static const double LEAST_SIZE =
     1e-6; /* [m] of a whole model: below, lengths squared leave the range of good numbers */
-
-/* At most so many pairs of a joint and a member are looked at for members that pass through a joint: about 0.1 s. */
-static const long long MOST_PAIRS = 20 * 1000 * 1000;
-
-static double dot(const double a[3], const double b[3])
-{
-    return a[0] * b[0] + a[1] * b[1] + a[2] * b[2];
-}
-
-static double length(const double a[3])
-{
-    return hypot(hypot(a[0], a[1]), a[2]);
-}
-
-static void subtract(const double a[3], const double b[3], double d[3])
-{
-    for (int i = 0; i < 3; i++) d[i] = a[i] - b[i];
-}
-
-static bool is_zero(const double a[3])
-{
-    return a[0] == 0.0 && a[1] == 0.0 && a[2] == 0.0;
-}
-
-/* What is left of a outside the span of n orthonormal vectors. */
-static void project_off(double a[3], const double v[][3], int n)
-{
-    for (int pass = 0; pass < 2; pass++) { /* twice is enough (Kahan; Parlett) */
-        for (int k = 0; k < n; k++) {
-            const double along = dot(a, v[k]);
-            for (int i = 0; i < 3; i++) a[i] -= along * v[k][i];
-        }
-    }
-}
 
 static void *array(size_t n, size_t size)
 {
@@ -65,9 +32,16 @@ void sct_structure_free(sct_structure *st)
     free(st->first_dof);
     free(st->n_free);
     free(st->basis);
+    free(st->springs);
+    free(st->n_turns);
+    free(st->turn_basis);
+    free(st->dof_pool);
+    free(st->b_pool);
     free(st->f);
+    free(st->joint_load);
     free(st->stretch);
     free(st->settled);
+    free(st->turned);
     free(st);
 }
 
@@ -89,10 +63,12 @@ static sct_structure *structure_new(const sct_model *m)
     st->first_dof = array(joints, sizeof *st->first_dof);
     st->n_free = array(joints, sizeof *st->n_free);
     st->basis = array(joints, sizeof *st->basis);
-    st->stretch = array((size_t)m->n_cases * bars, sizeof *st->stretch);
+    st->n_turns = array(joints, sizeof *st->n_turns);
+    st->turn_basis = array(joints, sizeof *st->turn_basis);
     st->settled = array((size_t)m->n_cases * joints * 3, sizeof *st->settled);
-    if (st->var_of_group && st->group_of_var && st->bars && st->first_dof && st->n_free && st->basis && st->stretch &&
-        st->settled) {
+    st->turned = array((size_t)m->n_cases * joints * 3, sizeof *st->turned);
+    if (st->var_of_group && st->group_of_var && st->bars && st->first_dof && st->n_free && st->basis && st->n_turns &&
+        st->turn_basis && st->settled && st->turned) {
         return st;
     }
     sct_structure_free(st);
@@ -111,8 +87,8 @@ static double model_size(const sct_model *m)
             high[i] = fmax(high[i], m->joints[j].at[i]);
         }
     }
-    subtract(high, low, d);
-    return m->n_joints > 0 ? length(d) : 0.0;
+    sct_subtract3(high, low, d);
+    return m->n_joints > 0 ? sct_length3(d) : 0.0;
 }
 
 static void measure_bars(sct_structure *st, double size, sct_issues *issues)
@@ -124,8 +100,8 @@ static void measure_bars(sct_structure *st, double size, sct_issues *issues)
         const sct_material *material = &m->materials[m->groups[member->group].material];
         sct_bar *bar = &st->bars[e];
         double d[3];
-        subtract(to->at, from->at, d);
-        *bar = (sct_bar){.from = member->from, .to = member->to, .group = member->group, .L = length(d)};
+        sct_subtract3(to->at, from->at, d);
+        *bar = (sct_bar){.from = member->from, .to = member->to, .group = member->group, .L = sct_length3(d)};
         bar->E = material->E;
         bar->density = material->density;
         bar->expansion = material->expansion;
@@ -141,215 +117,54 @@ static void measure_bars(sct_structure *st, double size, sct_issues *issues)
                           "member \"%s\" has no length: joints \"%s\" and \"%s\" are at one place",
                           sct_show(member->name).text, sct_show(from->name).text, sct_show(to->name).text);
         }
-        for (int i = 0; i < 3 && bar->L > 0.0; i++) bar->dir[i] = d[i] / bar->L;
+        for (int i = 0; i < 3 && bar->L > 0.0; i++) bar->axes[0][i] = d[i] / bar->L;
+        for (int s = 0; s < 2; s++)
+            for (int r = 0; r < SCT_TURNS; r++) bar->hinges.free_turn[r][s] = member->end[s].fixity[r] == SCT_PINNED;
     }
 }
 
-/* A thing with a number to sort by; equal numbers keep the order of the indices. */
-typedef struct keyed {
-    double key;
-    int index;
-} keyed;
-
-static int by_key(const void *a, const void *b)
+/* The vector that local axis 1 leans towards: said by the member; else z, or x for a member along z. */
+static void up_of(const sct_bar *bar, const sct_member *member, double up[3])
 {
-    const keyed *p = a, *q = b;
-    if (p->key != q->key) return p->key < q->key ? -1 : 1;
-    return (p->index > q->index) - (p->index < q->index);
+    const double z[3] = {0.0, 0.0, 1.0}, x[3] = {1.0, 0.0, 0.0};
+    const bool is_vertical = hypot(bar->axes[0][0], bar->axes[0][1]) <= ALONG;
+    memcpy(up, !sct_is_zero3(member->up) ? member->up : is_vertical ? x : z, sizeof z);
 }
 
-static double distance(const sct_joint *a, const sct_joint *b)
+/* Local axes 1 and 2. */
+static void find_axes(sct_structure *st, int e, sct_issues *issues)
 {
-    double d[3];
-    subtract(a->at, b->at, d);
-    return length(d);
-}
-
-/* `sorted`: joints by their place along the longest axis of the model. */
-static void find_coincident_joints(const sct_model *m, const keyed sorted[], double tol, sct_issues *issues)
-{
-    for (int i = 0; i < m->n_joints; i++) {
-        for (int k = i + 1; k < m->n_joints && sorted[k].key - sorted[i].key <= tol; k++) {
-            const int a = sorted[i].index < sorted[k].index ? sorted[i].index : sorted[k].index;
-            const int b = sorted[i].index + sorted[k].index - a;
-            if (distance(&m->joints[a], &m->joints[b]) > tol) continue;
-            sct_issue_add(issues, SCT_WARNING, m->joints[b].where,
-                          "joints \"%s\" and \"%s\" are at the same place and not connected with each other; use one "
-                          "joint if they "
-                          "are meant to be one",
-                          sct_show(m->joints[a].name).text, sct_show(m->joints[b].name).text);
-            break; /* one message per joint is enough, and many joints at one place stay cheap */
-        }
+    sct_bar *bar = &st->bars[e];
+    const sct_member *member = &st->model->members[e];
+    double(*axes)[3] = bar->axes, up[3];
+    if (st->dim == 2) {
+        memcpy(axes[1], (double[3]){-axes[0][1], axes[0][0], 0.0}, sizeof axes[1]);
+        memcpy(axes[2], (double[3]){0.0, 0.0, 1.0}, sizeof axes[2]);
+        return;
     }
-}
-
-/* Distance of joint p from the inside of a bar; INFINITY when p lies beyond its ends. */
-static double distance_from_bar(const sct_structure *st, const sct_bar *bar, int p, double tol)
-{
-    const sct_joint *joints = st->model->joints;
-    double d[3];
-    subtract(joints[p].at, joints[bar->from].at, d);
-    const double along = dot(d, bar->dir);
-    if (!(along > tol && along < bar->L - tol)) return INFINITY;
-    for (int i = 0; i < 3; i++) d[i] -= along * bar->dir[i];
-    return length(d);
-}
-
-static int first_at_least(const keyed sorted[], int n, double key)
-{
-    int low = 0, high = n;
-    while (low < high) {
-        const int mid = low + (high - low) / 2;
-        if (sorted[mid].key < key)
-            low = mid + 1;
-        else
-            high = mid;
+    up_of(bar, member, up);
+    const double size = sct_length3(up);
+    sct_project_off3(up, 1, (const double(*)[3])axes);
+    const double length = sct_length3(up);
+    if (!(length > ALONG * size)) {
+        sct_issue_add(issues, SCT_ERROR, member->where,
+                      "\"up\" of member \"%s\" points along the member; it must point across it",
+                      sct_show(member->name).text);
+        return;
     }
-    return low;
+    for (int i = 0; i < 3; i++) axes[1][i] = up[i] / length;
+    sct_cross3(axes[0], axes[1], axes[2]);
+    if (member->roll == 0.0) return;
+    const double c = cos(member->roll), s = sin(member->roll);
+    for (int i = 0; i < 3; i++) axes[1][i] = c * axes[1][i] + s * axes[2][i];
+    sct_cross3(axes[0], axes[1], axes[2]);
 }
 
-static void find_passing_bars(const sct_structure *st, const keyed sorted[], int axis, double tol, sct_issues *issues)
+static void find_lever(sct_structure *st)
 {
-    const sct_model *m = st->model;
-    long long pairs = 0;
-    for (int e = 0; e < st->n_bars; e++) {
-        const sct_bar *bar = &st->bars[e];
-        const double a = m->joints[bar->from].at[axis], b = m->joints[bar->to].at[axis];
-        const double low = fmin(a, b) - tol, high = fmax(a, b) + tol;
-        for (int k = first_at_least(sorted, m->n_joints, low); k < m->n_joints && sorted[k].key <= high; k++) {
-            const int p = sorted[k].index;
-            if (++pairs > MOST_PAIRS) return;
-            if (p == bar->from || p == bar->to || distance_from_bar(st, bar, p, tol) > tol) continue;
-            sct_issue_add(issues, SCT_WARNING, m->members[e].where,
-                          "member \"%s\" passes through joint \"%s\" without being connected to it",
-                          sct_show(m->members[e].name).text, sct_show(m->joints[p].name).text);
-        }
-    }
-}
-
-static int longest_axis(const sct_model *m)
-{
-    double low[3], high[3];
-    int axis = 0;
-    for (int i = 0; i < 3; i++) {
-        low[i] = high[i] = m->joints[0].at[i];
-        for (int j = 1; j < m->n_joints; j++) {
-            low[i] = fmin(low[i], m->joints[j].at[i]);
-            high[i] = fmax(high[i], m->joints[j].at[i]);
-        }
-        if (high[i] - low[i] > high[axis] - low[axis]) axis = i;
-    }
-    return axis;
-}
-
-/* Members by their two joints, to find those that share both. */
-typedef struct ends {
-    int low, high, member;
-} ends;
-
-static int by_ends(const void *a, const void *b)
-{
-    const ends *p = a, *q = b;
-    if (p->low != q->low) return p->low < q->low ? -1 : 1;
-    if (p->high != q->high) return p->high < q->high ? -1 : 1;
-    return (p->member > q->member) - (p->member < q->member);
-}
-
-static bool find_parallel_members(const sct_model *m, sct_issues *issues)
-{
-    ends *list = array((size_t)m->n_members, sizeof *list);
-    if (list == NULL) return false;
-    for (int e = 0; e < m->n_members; e++) {
-        const int a = m->members[e].from, b = m->members[e].to;
-        list[e] = (ends){.low = a < b ? a : b, .high = a < b ? b : a, .member = e};
-    }
-    qsort(list, (size_t)m->n_members, sizeof *list, by_ends);
-    for (int k = 1; k < m->n_members; k++) {
-        if (list[k].low != list[k - 1].low || list[k].high != list[k - 1].high) continue;
-        const sct_member *first = &m->members[list[k - 1].member], *second = &m->members[list[k].member];
-        sct_issue_add(issues, SCT_WARNING, second->where,
-                      "members \"%s\" and \"%s\" join the same two joints; they act side by side",
-                      sct_show(first->name).text, sct_show(second->name).text);
-    }
-    free(list);
-    return true;
-}
-
-/* Things that are odd but can be analysed. False when out of memory. */
-static bool find_oddities(const sct_structure *st, double size, sct_issues *issues)
-{
-    const sct_model *m = st->model;
-    const int axis = longest_axis(m);
-    keyed *sorted = array((size_t)m->n_joints, sizeof *sorted);
-    if (sorted == NULL) return false;
-    for (int j = 0; j < m->n_joints; j++) sorted[j] = (keyed){.key = m->joints[j].at[axis], .index = j};
-    qsort(sorted, (size_t)m->n_joints, sizeof *sorted, by_key);
-    find_coincident_joints(m, sorted, TOL_PLACE * size, issues);
-    find_passing_bars(st, sorted, axis, TOL_PLACE * size, issues);
-    free(sorted);
-    return find_parallel_members(m, issues);
-}
-
-/* ---- unknowns -------------------------------------------------------------------------------------------------- */
-
-/* Orthonormal vectors of the same span as the held directions; returns how many. */
-static int held_span(const sct_joint *joint, double span[3][3])
-{
-    int n = 0;
-    for (int k = 0; k < joint->n_held; k++) {
-        memcpy(span[n], joint->held[k], sizeof span[n]);
-        project_off(span[n], (const double(*)[3])span, n);
-        const double left = length(span[n]);
-        if (!(left > TOL_DIRECTION)) continue; /* says nothing new; the reader refuses it */
-        for (int i = 0; i < 3; i++) span[n][i] /= left;
-        n++;
-    }
-    return n;
-}
-
-/* The free directions: what the axes leave outside the held span, farthest axis first, so that a support along axes
- * keeps the axes themselves. */
-static int free_directions(const sct_joint *joint, int dim, double basis[3][3])
-{
-    double all[3][3] = {{0}};
-    const int n_held = held_span(joint, all);
-    for (int n = n_held; n < dim; n++) {
-        double best[3] = {0}, best_length = 0.0;
-        for (int axis = 0; axis < dim; axis++) {
-            double e[3] = {0};
-            e[axis] = 1.0;
-            project_off(e, (const double(*)[3])all, n);
-            const double left = length(e);
-            if (!(left > best_length * (1.0 + 1e-12))) continue; /* ties go to the first axis */
-            best_length = left;
-            memcpy(best, e, sizeof best);
-        }
-        for (int i = 0; i < 3; i++) all[n][i] = best[i] / best_length;
-        memcpy(basis[n - n_held], all[n], sizeof all[n]);
-    }
-    return dim - n_held;
-}
-
-/* Numbers the unknowns in the order of the joints; `has_member` per joint. */
-static void number_unknowns(sct_structure *st, const bool has_member[])
-{
-    for (int j = 0; j < st->n_joints; j++) {
-        st->first_dof[j] = st->n_dof;
-        st->n_free[j] = has_member[j] ? free_directions(&st->model->joints[j], st->dim, st->basis[j]) : 0;
-        st->n_dof += st->n_free[j];
-    }
-}
-
-/* Adds the unknowns of one joint of a bar; sign -1 at `from`, +1 at `to`. */
-static void add_end(const sct_structure *st, sct_bar *bar, int joint, double sign)
-{
-    for (int i = 0; i < st->n_free[joint]; i++) {
-        const double *v = st->basis[joint][i];
-        bar->dof[bar->n_dof] = st->first_dof[joint] + i;
-        bar->b[bar->n_dof] = sign * dot(v, bar->dir);
-        bar->w[bar->n_dof] = -bar->half_weight * v[st->dim - 1];
-        bar->n_dof++;
-    }
+    double sum = 0.0;
+    for (int e = 0; e < st->n_bars; e++) sum += st->bars[e].L;
+    st->lever = sum / st->n_bars;
 }
 
 static void number_groups(sct_structure *st)
@@ -360,120 +175,6 @@ static void number_groups(sct_structure *st)
         st->var_of_group[g] = is_sized ? st->n_vars : -1;
         if (is_sized) st->group_of_var[st->n_vars++] = g;
     }
-}
-
-/* ---- loads ----------------------------------------------------------------------------------------------------- */
-
-static bool case_is_empty(const sct_case *c)
-{
-    bool empty = c->self_weight == 0.0;
-    for (int i = 0; i < c->n_loads && empty; i++) empty = is_zero(c->loads[i].F);
-    for (int i = 0; i < c->n_settlements && empty; i++) empty = is_zero(c->settlements[i].d);
-    for (int i = 0; i < c->n_bar_actions && empty; i++) {
-        empty = c->bar_actions[i].dT == 0.0 && c->bar_actions[i].lack == 0.0;
-    }
-    return empty;
-}
-
-static void find_empty_cases(const sct_model *m, sct_issues *issues)
-{
-    int n_empty = 0;
-    for (int k = 0; k < m->n_cases; k++) n_empty += case_is_empty(&m->cases[k]);
-    if (n_empty == m->n_cases) {
-        const sct_where where = m->n_cases > 0 ? m->cases[0].where : (sct_where){.file = m->file};
-        sct_issue_add(issues, SCT_ERROR, where, "no case has a load: there is nothing to carry");
-        return;
-    }
-    for (int k = 0; k < m->n_cases; k++) {
-        if (!case_is_empty(&m->cases[k])) continue;
-        sct_issue_add(issues, SCT_WARNING, m->cases[k].where, "the case has no load; its results are zero");
-    }
-}
-
-/* warned: per joint, that a load there goes to the support. */
-static void add_joint_load(sct_structure *st, int k, const sct_joint_load *load, const bool has_member[], bool warned[],
-                           sct_issues *issues)
-{
-    const sct_joint *joint = &st->model->joints[load->joint];
-    if (is_zero(load->F)) return;
-    if (!has_member[load->joint]) {
-        sct_issue_add(issues, SCT_ERROR, load->where, "joint \"%s\" carries a load but has no members",
-                      sct_show(joint->name).text);
-        return;
-    }
-    double *f = st->f + (size_t)k * (size_t)st->n_dof;
-    double largest = 0.0;
-    for (int i = 0; i < st->n_free[load->joint]; i++) {
-        const double along = dot(st->basis[load->joint][i], load->F);
-        f[st->first_dof[load->joint] + i] += along;
-        largest = fmax(largest, fabs(along));
-    }
-    if (largest > TOL_DIRECTION * length(load->F) || warned[load->joint]) return;
-    warned[load->joint] = true;
-    sct_issue_add(issues, SCT_WARNING, load->where, "the load at joint \"%s\" goes straight to its support",
-                  sct_show(joint->name).text);
-}
-
-static void add_settlement(sct_structure *st, int k, const sct_settlement *settlement, sct_issues *issues)
-{
-    const sct_joint *joint = &st->model->joints[settlement->joint];
-    double span[3][3], outside[3];
-    const int n = held_span(joint, span);
-    memcpy(outside, settlement->d, sizeof outside);
-    project_off(outside, (const double(*)[3])span, n);
-    if (length(outside) > TOL_DIRECTION * length(settlement->d)) {
-        sct_issue_add(issues, SCT_ERROR, settlement->where,
-                      "settlement of joint \"%s\" in a direction that is not held; only held directions can be moved",
-                      sct_show(joint->name).text);
-        return;
-    }
-    double *settled = st->settled + ((size_t)k * (size_t)st->n_joints + (size_t)settlement->joint) * 3;
-    for (int i = 0; i < 3; i++) settled[i] += settlement->d[i];
-}
-
-static void add_bar_action(sct_structure *st, int k, const sct_bar_action *action, sct_issues *issues)
-{
-    const sct_bar *bar = &st->bars[action->member];
-    double *stretch = st->stretch + (size_t)k * (size_t)st->n_bars + action->member;
-    if (action->dT != 0.0 && isnan(bar->expansion)) {
-        const sct_group *group = &st->model->groups[bar->group];
-        sct_issue_add(issues, SCT_ERROR, action->where,
-                      "member \"%s\" is warmed but its material \"%s\" has no \"expansion\"",
-                      sct_show(st->model->members[action->member].name).text,
-                      sct_show(st->model->materials[group->material].name).text);
-    } else if (action->dT != 0.0) {
-        *stretch -= bar->expansion * action->dT * bar->L;
-    }
-    *stretch -= action->lack;
-}
-
-/* Elongation that the settlements of case k force on every bar. */
-static void stretch_by_settlement(sct_structure *st, int k)
-{
-    const double *settled = st->settled + (size_t)k * (size_t)st->n_joints * 3;
-    double *stretch = st->stretch + (size_t)k * (size_t)st->n_bars;
-    for (int e = 0; e < st->n_bars; e++) {
-        const sct_bar *bar = &st->bars[e];
-        double d[3];
-        subtract(settled + 3 * (size_t)bar->to, settled + 3 * (size_t)bar->from, d);
-        stretch[e] += dot(bar->dir, d);
-    }
-}
-
-static sct_status add_loads(sct_structure *st, const bool has_member[], bool warned[], sct_issues *issues)
-{
-    const sct_model *m = st->model;
-    st->f = array((size_t)st->n_cases * (size_t)st->n_dof, sizeof *st->f);
-    if (st->f == NULL) return SCT_NO_MEMORY;
-    find_empty_cases(m, issues);
-    for (int k = 0; k < st->n_cases; k++) {
-        const sct_case *c = &m->cases[k];
-        for (int i = 0; i < c->n_loads; i++) add_joint_load(st, k, &c->loads[i], has_member, warned, issues);
-        for (int i = 0; i < c->n_settlements; i++) add_settlement(st, k, &c->settlements[i], issues);
-        for (int i = 0; i < c->n_bar_actions; i++) add_bar_action(st, k, &c->bar_actions[i], issues);
-        if (c->n_settlements > 0) stretch_by_settlement(st, k);
-    }
-    return SCT_OK;
 }
 
 /* ---- building -------------------------------------------------------------------------------------------------- */
@@ -501,23 +202,22 @@ static sct_status build(sct_structure *st, bool flags[], sct_issues *issues)
                       "all joints lie within %.3g m of each other; is \"length\" in /units the right unit?", size);
     measure_bars(st, size, issues);
     if (sct_issues_errors(issues) > errors_before) return SCT_BAD_INPUT; /* no directions to go on with */
-    if (!find_oddities(st, size, issues)) return SCT_NO_MEMORY;
+    for (int e = 0; e < st->n_bars; e++) find_axes(st, e, issues);
+    if (!sct_find_oddities(st, TOL_PLACE * size, issues)) return SCT_NO_MEMORY;
     find_lonely_joints(m, has_member, issues);
-    number_unknowns(st, has_member);
+    sct_number_freedoms(st, has_member);
     number_groups(st);
-    for (int e = 0; e < st->n_bars; e++) {
-        add_end(st, &st->bars[e], st->bars[e].from, -1.0);
-        add_end(st, &st->bars[e], st->bars[e].to, 1.0);
-    }
-    const sct_status loaded = add_loads(st, has_member, warned, issues);
-    if (loaded != SCT_OK) return loaded;
+    find_lever(st);
+    sct_status status = sct_list_springs(st, issues);
+    if (status == SCT_OK) status = sct_add_actions(st, has_member, warned, issues);
+    if (status != SCT_OK) return status;
     return sct_issues_errors(issues) > errors_before ? SCT_BAD_INPUT : SCT_OK;
 }
 
 /* SCT_TOO_LARGE when indices of the stiffness matrix or of the results would not fit an int. */
 static sct_status check_size(const sct_model *m, sct_issues *issues)
 {
-    const double entries = 21.0 * m->n_members + 3.0 * m->n_joints;
+    const double entries = (m->dimensions == 2 ? 52.0 : 411.0) * m->n_members + 6.0 * m->n_joints;
     const double results = ((double)m->n_cases + m->n_combinations) * (3.0 * m->n_joints + m->n_members);
     double checks = (double)m->n_combinations * m->n_members;
     for (int i = 0; i < m->n_deflections; i++) checks += (double)m->n_combinations * m->deflections[i].n_joints;
@@ -563,5 +263,30 @@ void sct_joint_displacement(const sct_structure *st, const double u[], const dou
     for (int i = 0; i < 3; i++) d[i] = settled != NULL ? settled[3 * (size_t)joint + (size_t)i] : 0.0;
     for (int k = 0; k < st->n_free[joint]; k++) {
         for (int i = 0; i < 3; i++) d[i] += st->basis[joint][k][i] * u[st->first_dof[joint] + k];
+    }
+}
+
+void sct_joint_rotation(const sct_structure *st, const double u[], const double *turned, int joint, double theta[3])
+{
+    const int first = st->first_dof[joint] + st->n_free[joint];
+    for (int i = 0; i < 3; i++) theta[i] = turned != NULL ? turned[3 * (size_t)joint + (size_t)i] : 0.0;
+    for (int k = 0; k < st->n_turns[joint]; k++) {
+        for (int i = 0; i < 3; i++) theta[i] += st->turn_basis[joint][k][i] * u[first + k];
+    }
+}
+
+void sct_bar_pull(const sct_structure *st, const double S[], int e, double end[2][6])
+{
+    const sct_bar *bar = &st->bars[e];
+    memset(end, 0, sizeof(double[2][6]));
+    for (int k = -1; k < bar->n; k++) {
+        const int i = k < 0 ? e : bar->first + k;
+        const sct_mode_shape shape = sct_shape_of(st, &st->springs[i]);
+        for (int s = 0; s < 2; s++) {
+            for (int x = 0; x < 3; x++) {
+                end[s][x] -= S[i] * (s == 0 ? -shape.move[x] : shape.move[x]);
+                end[s][3 + x] -= S[i] * shape.turn[s][x];
+            }
+        }
     }
 }

@@ -51,10 +51,13 @@ static sct_status fill(sct_duty *duty, sct_engine engine)
     duty->allowable = sct_arena_array(duty->arena, n_comb, sizeof(int));
     duty->rows = sct_arena_array(duty->arena, (size_t)duty->n_rows, sizeof *duty->rows);
     duty->N = sct_arena_array(duty->arena, n_comb * n_bars, sizeof(double));
+    duty->S = sct_arena_array(duty->arena, n_comb * (size_t)st->n_springs, sizeof(double));
+    duty->of_joints = sct_arena_array(duty->arena, 12 * (size_t)st->n_joints, sizeof(double));
     duty->u = sct_arena_array(duty->arena, (size_t)duty->n_rows, sizeof(double));
     duty->worst_compression = sct_arena_array(duty->arena, n_bars, sizeof(double));
     if (duty->rules == NULL || duty->length == NULL || duty->unit_mass == NULL || duty->allowable == NULL ||
-        duty->rows == NULL || duty->N == NULL || duty->u == NULL || duty->worst_compression == NULL)
+        duty->rows == NULL || duty->N == NULL || duty->S == NULL || duty->of_joints == NULL || duty->u == NULL ||
+        duty->worst_compression == NULL)
         return SCT_NO_MEMORY;
     list_rows(model, duty->rows, &duty->n_rows);
     for (int bar = 0; bar < st->n_bars; bar++) {
@@ -131,11 +134,13 @@ double sct_duty_mass(const sct_duty *duty, const sct_design *design)
 /* Forces of one combination, with what is only rounding taken for what it is: none. */
 static void gather_forces(sct_duty *duty, int c)
 {
-    double *N = duty->N + (size_t)c * (size_t)duty->st->n_bars, largest = 0.0;
-    sct_combine_forces(duty->st, &duty->response, c, N);
-    for (int bar = 0; bar < duty->st->n_bars; bar++) largest = fmax(largest, fabs(N[bar]));
-    for (int bar = 0; bar < duty->st->n_bars; bar++)
-        if (fabs(N[bar]) <= NO_FORCE * largest) N[bar] = 0.0;
+    const size_t n_bars = (size_t)duty->st->n_bars;
+    double *S = duty->S + (size_t)c * (size_t)duty->st->n_springs, largest = 0.0;
+    sct_combine_springs(duty->st, &duty->response, c, S);
+    for (size_t bar = 0; bar < n_bars; bar++) largest = fmax(largest, fabs(S[bar]));
+    for (size_t bar = 0; bar < n_bars; bar++)
+        if (fabs(S[bar]) <= NO_FORCE * largest) S[bar] = 0.0;
+    memcpy(duty->N + (size_t)c * n_bars, S, n_bars * sizeof *S);
 }
 
 static void gather_compression(sct_duty *duty)

@@ -35,6 +35,8 @@ typedef struct sct_duty {
     /* of the latest analysis */
     sct_response response;
     double *N;                 /* n_combinations x n_bars; forces below 1e-9 of the largest are given as 0 */
+    double *S;                 /* n_combinations x n_springs: spring forces, those of members as in N */
+    double *of_joints;         /* 12 n_joints: scratch */
     double *u;                 /* n_rows: displacement along the limit's direction */
     double *worst_compression; /* n_bars: [N] most compressive force in the strength combinations, <= 0 */
 } sct_duty;

@@ -185,10 +185,10 @@ static sct_status curvature(void *user, const double x[], int n_rows, const int 
     (void)x;
     sct_problem *P = user;
     const sct_structure *st = P->st;
-    const size_t n = (size_t)P->n, n_bars = (size_t)st->n_bars, n_dof = (size_t)st->n_dof,
+    const size_t n = (size_t)P->n, n_springs = (size_t)st->n_springs, n_dof = (size_t)st->n_dof,
                  n_cases = (size_t)st->n_cases;
     memset(H, 0, n * n * sizeof *H);
-    memset(P->wN, 0, n_cases * n_bars * sizeof *P->wN);
+    memset(P->wN, 0, n_cases * n_springs * sizeof *P->wN);
     memset(P->wu, 0, n_cases * n_dof * sizeof *P->wu);
     const sct_status status = need_du(P);
     if (status != SCT_OK) return status;
@@ -203,7 +203,7 @@ static sct_status curvature(void *user, const double x[], int n_rows, const int 
         const double *factor = st->model->combinations[combination_of(P, j)].factor;
         for (size_t k = 0; k < n_cases; k++) {
             if (is_bar) {
-                P->wN[k * n_bars + (size_t)bar_of(P, j)] += inner * factor[k];
+                P->wN[k * n_springs + (size_t)bar_of(P, j)] += inner * factor[k];
                 continue;
             }
             const int joint = P->duty->rows[j - P->n_bar_rows].joint;
@@ -362,14 +362,14 @@ static sct_status allocate(sct_problem *P)
 {
     const sct_structure *st = P->st;
     const size_t n = (size_t)P->n, n_groups = (size_t)st->n_groups, n_cases = (size_t)st->n_cases;
-    const size_t n_dof = (size_t)st->n_dof, n_bars = (size_t)st->n_bars, m = (size_t)P->nlp.m;
+    const size_t n_dof = (size_t)st->n_dof, n_springs = (size_t)st->n_springs, m = (size_t)P->nlp.m;
     sct_arena *a = P->arena;
 #define ARRAY(what, count) ((P->what = sct_arena_array(a, (count), sizeof *P->what)) != NULL)
     const bool ok = ARRAY(is_fixed, n_groups) && ARRAY(envelope, n_groups) && ARRAY(lower, n) && ARRAY(upper, n) &&
                     ARRAY(source, n) && ARRAY(x_lower, n) && ARRAY(x_upper, n) && ARRAY(ref, n) && ARRAY(cluster, m) &&
                     ARRAY(x, n) && ARRAY(A, n_groups) && ARRAY(need, (size_t)P->n_bar_rows) && ARRAY(g, m) &&
-                    ARRAY(du, n_cases * n_dof * n) && ARRAY(part, n) && ARRAY(row, n) && ARRAY(wN, n_cases * n_bars) &&
-                    ARRAY(wu, n_cases * n_dof) && ARRAY(work, n_cases * n_dof);
+                    ARRAY(du, n_cases * n_dof * n) && ARRAY(part, n) && ARRAY(row, n) &&
+                    ARRAY(wN, n_cases * n_springs) && ARRAY(wu, n_cases * n_dof) && ARRAY(work, n_cases * n_dof);
 #undef ARRAY
     if (!ok) return SCT_NO_MEMORY;
     return sct_design_new(a, st->n_groups, &P->fixed);

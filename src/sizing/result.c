@@ -45,22 +45,37 @@ static sct_status allocate(sct_result *r, const sct_duty *duty)
     const bool ok = ARRAY(joints, n_joints) && ARRAY(members, n_members) && ARRAY(groups, (size_t)r->n_groups) &&
                     ARRAY(combinations, n_comb) && ARRAY(is_for_strength, n_comb) && ARRAY(u, n_comb * n_joints * 3) &&
                     ARRAY(N, n_comb * n_members) && ARRAY(reaction, n_comb * n_joints * 3) &&
-                    ARRAY(load, n_comb * n_joints * 3) && ARRAY(deflections, (size_t)r->n_deflections);
+                    ARRAY(load, n_comb * n_joints * 3) && ARRAY(moment, n_comb * n_joints * 3) &&
+                    ARRAY(turn, n_comb * n_joints * 3) && ARRAY(moment_load, n_comb * n_joints * 3) &&
+                    ARRAY(deflections, (size_t)r->n_deflections);
 #undef ARRAY
     return ok ? SCT_OK : SCT_NO_MEMORY;
+}
+
+/* Forces and moments of joints apart. */
+static void part(int n_joints, const double both[], double *forces, double *moments)
+{
+    for (int i = 0; i < 3 * n_joints; i++) {
+        forces[i] = both[6 * (i / 3) + i % 3];
+        moments[i] = both[6 * (i / 3) + 3 + i % 3];
+    }
 }
 
 static void fill_responses(sct_result *r, const sct_duty *duty, const sct_design *design)
 {
     const size_t block = (size_t)r->n_joints * 3, n_members = (size_t)r->n_members;
+    double *load = duty->of_joints, *reaction = load + 6 * r->n_joints;
     memcpy(r->N, duty->N, (size_t)r->n_combinations * n_members * sizeof *r->N);
     for (int c = 0; c < r->n_combinations; c++) {
         const size_t k = (size_t)c;
         r->combinations[c] = duty->st->model->combinations[c].name;
         r->is_for_strength[c] = duty->st->model->combinations[c].basis == SCT_ALLOWABLE;
         sct_combine_displacements(duty->st, &duty->response, c, r->u + k * block);
-        sct_combine_loads(duty->st, design->A, c, r->load + k * block);
-        sct_reactions(duty->st, r->N + k * n_members, r->load + k * block, r->reaction + k * block);
+        sct_combine_rotations(duty->st, &duty->response, c, r->turn + k * block);
+        sct_combine_loads(duty->st, design->A, c, load);
+        sct_reactions(duty->st, duty->S + k * (size_t)duty->st->n_springs, load, reaction);
+        part(r->n_joints, load, r->load + k * block, r->moment_load + k * block);
+        part(r->n_joints, reaction, r->reaction + k * block, r->moment + k * block);
     }
 }
 
