@@ -64,6 +64,13 @@ $(BUILD)/tests/test_faults: tests/test_faults.c $(CLI_OBJ) $(BUILD)/libscantling
 	$(CC) $(CPPFLAGS) $(CFLAGS) -MMD -MP -Itests -o $@ $< $(CLI_OBJ) $(BUILD)/libscantling.a $(LDFLAGS) \
 	  $(FAULTS:%=-Wl$(comma)--wrap=%) -lcheck -lsubunit -lrt -lpthread -lsuitesparseconfig $(LDLIBS)
 
+# Mistakes of the program's own are made there, between its parts.
+MISTAKES := main sct_duty_analyse sct_accuracy_refine sct_model_parse sct_skyline_factor sct_sparse_update
+$(BUILD)/tests/test_self_check: tests/test_self_check.c $(CLI_OBJ) $(BUILD)/libscantling.a
+	@mkdir -p $(@D)
+	$(CC) $(CPPFLAGS) $(CFLAGS) -MMD -MP -Itests -o $@ $< $(CLI_OBJ) $(BUILD)/libscantling.a $(LDFLAGS) \
+	  $(MISTAKES:%=-Wl$(comma)--wrap=%) -lcheck -lsubunit -lrt -lpthread $(LDLIBS)
+
 # Fuzzers (tests/fuzz): kept inputs are replayed by the tests; `make fuzz` runs libFuzzer for FUZZ_SECONDS each (clang,
 # libclang-rt-14-dev); FUZZ=1 CC=afl-clang-fast builds the replay programs for AFL++.
 FUZZERS      := gate reader analysis

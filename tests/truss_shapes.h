@@ -118,4 +118,29 @@ static inline sct_model *ts_random(int dimensions, int n_joints, int extra, uint
     }
     return m;
 }
+
+/* Joints in a random order: each member then ties joints far apart in number. */
+static inline void ts_shuffle_joints(sct_model *m, uint64_t seed)
+{
+    sct_random r = {seed};
+    int *place = malloc((size_t)m->n_joints * sizeof *place);
+    sct_joint *joints = malloc((size_t)m->n_joints * sizeof *joints);
+    for (int j = 0; j < m->n_joints; j++) place[j] = j;
+    for (int j = m->n_joints - 1; j > 0; j--) {
+        const int k = ts_pick(&r, j + 1), swap = place[j];
+        place[j] = place[k];
+        place[k] = swap;
+    }
+    memcpy(joints, m->joints, (size_t)m->n_joints * sizeof *joints);
+    for (int j = 0; j < m->n_joints; j++) m->joints[place[j]] = joints[j];
+    for (int e = 0; e < m->n_members; e++) {
+        m->members[e].from = place[m->members[e].from];
+        m->members[e].to = place[m->members[e].to];
+    }
+    for (int k = 0; k < m->n_cases; k++) {
+        for (int i = 0; i < m->cases[k].n_loads; i++) m->cases[k].loads[i].joint = place[m->cases[k].loads[i].joint];
+    }
+    free(place);
+    free(joints);
+}
 #endif
