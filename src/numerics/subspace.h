@@ -13,8 +13,9 @@
  *
  * What is guaranteed. Up to rounding, an eigenvalue lies in each interval of `error` (below). That none lies between
  * is not proven: it is made likely by random start vectors, a block of `wanted` + 2 and by going on until one pair
- * more than wanted stands still, or until nothing positive is left above it. A warm start has one random vector only:
- * use a cold one for what is to be reported.
+ * more than wanted stands still, or until nothing positive is left above it. A warm start has one random vector only
+ * (and takes three blocks at least, for it to show what the old vectors do not hold): use a cold one for what is to be
+ * reported.
  *
  * A shift proves, and helps. When K - sigma B with sigma > 0 has a Cholesky factor, then K - t B is positive definite
  * for all t in [0, sigma] and no eigenvalue lies in (0, sigma]. So one factorization with sigma = the load factor that
@@ -39,7 +40,7 @@
 typedef void sct_multiply(void *user, int count, const double X[], double Y[]);
 
 typedef struct sct_subspace_settings {
-    double tolerance;   /* on `error`, and on the error of the vectors times the gap to the next mu; default 1e-8 */
+    double tolerance;   /* on `error`; lambda itself is better as a rule: about error^2 / relative gap; default 1e-8 */
     int most_blocks;    /* multiplications of a block, >= 1; default 200 */
     double largest;     /* eigenvalues above are of no interest, > 0; default INFINITY */
     bool is_warm_start; /* start with the vectors of the run before (K and B may be new); default false */
@@ -73,7 +74,8 @@ sct_subspace_settings sct_subspace_defaults(void);
  * SCT_OK: all found pairs, and the one after them, are within the tolerance (or where rounding stops them: 1e-14 of the
  * largest |mu|). A mu below 1e-12 of the largest |mu| counts as zero, and where `largest` is infinite
  * the search for more ends once it has come down to 1e-6 of the largest |mu|. SCT_NOT_CONVERGED: `most_blocks` was
- * reached; the pairs are estimates, their `error` holds. SCT_NOT_ACCURATE: a number was not finite; found = 0.
+ * reached (the next mu are too near for the tolerance, or K too ill-conditioned); the pairs are estimates, their
+ * `error` holds. SCT_NOT_ACCURATE: a number was not finite; found = 0.
  */
 sct_status sct_subspace_run(sct_subspace *subspace, sct_factor *factor, sct_multiply *multiply, void *user,
                             const sct_subspace_settings *settings, sct_eigenpairs *pairs);
