@@ -42,10 +42,10 @@ void sct_number_write(double value, char out[SCT_NUMBER_ROOM])
         memcpy(out, "null", 5);
         return;
     }
-    for (int digits = 15; digits <= 17; digits++) {
-        sct_number_format(out, SCT_NUMBER_ROOM, "%.*g", digits, value);
-        if (read_double(out) == value) return; /* exact comparison is the point here */
-    }
+    int digits = 14; /* 17 always read back */
+    do {
+        sct_number_format(out, SCT_NUMBER_ROOM, "%.*g", ++digits, value);
+    } while (digits < 17 && read_double(out) != value); /* exact comparison is the point here */
 }
 
 static size_t digits_at(const char *text, size_t length, size_t at)
