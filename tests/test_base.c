@@ -220,7 +220,7 @@ START_TEST(an_arena_refuses_sizes_that_overflow_and_gives_nothing_a_place)
     int n_set = 0;
     for (int i = 0; i < 1 << 20; i++) n_set += large[i] != 0;
     ck_assert_int_eq(n_set, 0);
-    ck_assert_uint_eq((uintptr_t)sct_arena_array(arena, 1, 1) % sizeof(max_align_t), 0);
+    ck_assert_uint_eq((uintptr_t)sct_arena_array(arena, 1, 1) % _Alignof(max_align_t), 0);
     ck_assert_str_eq(sct_arena_string(arena, "abcdef", 3), "abc");
     sct_arena_free(arena);
     sct_arena_free(NULL);

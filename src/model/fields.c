@@ -107,19 +107,26 @@ bool sct_fields_is(sct_fields *f, const sct_node *node, sct_node_kind kind, cons
     return false;
 }
 
+/* Adds `"word"` to a list; false when the list is full. */
+static bool add_word(char *list, size_t room, const char *word)
+{
+    const size_t used = strlen(list);
+    const int more = snprintf(list + used, room - used, "%s\"%s\"", used == 0 ? "" : ", ", word);
+    return (size_t)more < room - used;
+}
+
 static void unknown_key(sct_fields *f, const sct_node *entry, const char *what, const sct_key keys[], int n)
 {
-    const char *list[32], *key = sct_node_key(entry);
+    enum { MOST_KEYS = 32 }; /* of an object: the tables of keys are ours */
+    const char *list[MOST_KEYS], *key = sct_node_key(entry);
     if (sct_fields_enough(f)) { /* only counted */
         sct_fields_key_error(f, entry, "unknown key");
         return;
     }
     char known[512] = "";
-    size_t used = 0;
-    for (int i = 0; i < n && i < 32; i++) {
+    for (int i = 0; i < n; i++) {
         list[i] = keys[i].name;
-        const int more = snprintf(known + used, sizeof known - used, "%s\"%s\"", i == 0 ? "" : ", ", keys[i].name);
-        if (more > 0 && used + (size_t)more < sizeof known) used += (size_t)more;
+        add_word(known, sizeof known, keys[i].name);
     }
     const char *near = sct_nearest(list, n, key);
     if (near != NULL)
@@ -216,11 +223,7 @@ bool sct_fields_word(sct_fields *f, const sct_node *node, const char *what, cons
         return false;
     }
     char list[256] = "";
-    size_t used = 0;
-    for (int i = 0; i < n; i++) {
-        const int more = snprintf(list + used, sizeof list - used, "%s\"%s\"", i == 0 ? "" : ", ", words[i]);
-        if (more > 0 && used + (size_t)more < sizeof list) used += (size_t)more;
-    }
+    for (int i = 0; i < n; i++) add_word(list, sizeof list, words[i]);
     sct_fields_error(f, node, "found \"%s\"; expected %s: one of %s", sct_show(text).text, what, list);
     return false;
 }
@@ -229,14 +232,12 @@ bool sct_fields_word(sct_fields *f, const sct_node *node, const char *what, cons
 static bool list_names(const sct_names *names, char *list, size_t room)
 {
     enum { FEW = 12 };
-    size_t used = 0;
-    for (int i = 0; i < sct_names_count(names); i++) {
-        const int more =
-            snprintf(list + used, room - used, "%s\"%s\"", i == 0 ? "" : ", ", sct_show(sct_names_at(names, i)).text);
-        if (i >= FEW || more < 0 || (size_t)more >= room - used) return false;
-        used += (size_t)more;
+    const int n = sct_names_count(names);
+    list[0] = '\0';
+    for (int i = 0; i < n && i < FEW; i++) {
+        if (!add_word(list, room, sct_show(sct_names_at(names, i)).text)) return false;
     }
-    return true;
+    return n <= FEW;
 }
 
 /* What to say of a name that is not known. The nearest known one is looked for only where it will be shown. */
