@@ -242,7 +242,14 @@ START_TEST(bar_under_its_weight)
         ck_assert_double_eq_tol(value_at(&b, &AT_REST, SCT_BEAM_N, x, -1), w * (L / 2 - x), 1e-14);
         ck_assert_double_eq_tol(sct_beam_held_EAu(&b.line, x), w * x * (L - x) / 2, 1e-13);
     }
-    const sct_beam_state pulled = {.N = 5};
+    make_one(&b, false, false, (sct_beam_load){.b = L, .qb = {w, 0, 0}});
+    for (int i = 0; i <= 12; ++i) { /* q = w x/L: N = w L/6 - w x2/(2L) */
+        const double x = L * i / 12;
+        ck_assert_double_eq_tol(sct_beam_held_EAu(&b.line, x), w * x * (L * L - x * x) / (6 * L), 1e-13);
+    }
+    make_one(&b, false, false, (sct_beam_load){.b = L, .qa = {w, 0, 0}, .qb = {w, 0, 0}});
+    const sct_beam_state pulled = {.N = 5, .T = 3};
+    ck_assert(value_at(&b, &pulled, SCT_BEAM_T, 1, 1) == 3);
     ck_close(value_at(&b, &pulled, SCT_BEAM_N, 1, 1), 5 + w * 2, 1e-15);
     extreme_is(largest(&b, SCT_BEAM_N, 1), w * L / 2, 0, false);
 }
@@ -278,6 +285,7 @@ START_TEST(pieces_cover_the_member_without_gaps)
             ck_assert(b.piece[k].h > 0);
             ck_assert_double_eq_tol(b.piece[k].x, x, 1e-15 * L);
             ck_assert_int_eq(sct_beam_piece_at(&b.line, b.piece[k].x, 1), k);
+            ck_assert_int_eq(sct_beam_piece_at(&b.line, b.piece[k].x, 0), k);
             ck_assert_int_eq(sct_beam_piece_at(&b.line, b.piece[k].x, -1), k > 0 ? k - 1 : 0);
             x = b.piece[k].x + b.piece[k].h;
         }
@@ -458,6 +466,15 @@ static double weighted(const member *b, const sct_beam_state *s, const double c[
     return sum;
 }
 
+/* An end of the member or of a piece, to the bit. */
+static bool is_break(const member *b, double x)
+{
+    for (int k = 0; k < b->line.n; ++k) {
+        if (b->piece[k].x == x) return true;
+    }
+    return x == L;
+}
+
 START_TEST(largest_is_never_below_a_sample_and_is_met_at_its_place)
 {
     unsigned long long seed = 16;
@@ -474,6 +491,7 @@ START_TEST(largest_is_never_below_a_sample_and_is_met_at_its_place)
         }
         const sct_beam_extreme e = sct_beam_largest(&b.line, &s, c);
         ck_assert_double_eq_tol(weighted(&b, &s, c, e.piece, e.x), e.value, 1e-13);
+        ck_assert(e.is_inside || is_break(&b, e.x));
         for (int k = 0; k < b.line.n; ++k) {
             for (int j = 0; j <= 300; ++j) {
                 const double x = b.piece[k].x + b.piece[k].h * j / 300;
@@ -496,6 +514,7 @@ START_TEST(largest_bow_is_never_below_a_sample_and_is_met_at_its_place)
         if (i % 5 == 0) bend.offset[1] = random_unit(&seed);
         const sct_beam_extreme e = sct_beam_largest_bow(&b.line, &s, &bend);
         ck_assert_double_eq_tol(sct_beam_deflection(&b.line, &s, &bend, e.x), e.value, 1e-14);
+        ck_assert(e.is_inside || is_break(&b, e.x));
         for (int j = 0; j <= 1000; ++j) {
             ck_assert_double_le(fabs(sct_beam_deflection(&b.line, &s, &bend, L * j / 1000)), fabs(e.value) + 1e-15);
         }
@@ -545,6 +564,13 @@ START_TEST(of_equal_places_the_first_is_told)
     extreme_is(largest(&b, SCT_BEAM_M, -1), 2 * P, 2, false);
     make(&b, false, false, 0, NULL);
     extreme_is(largest(&b, SCT_BEAM_T, 1), 0, 0, false);
+    unsigned long long seed = 19;
+    for (int i = 0; i < 100; ++i) { /* symmetric loads, equal moments at both ends but for rounding */
+        const double a = 1 + random_unit(&seed), q = 2 + random_unit(&seed);
+        const sct_beam_load both[3] = {across(0, L, q, q), force_at(a, q), force_at(L - a, q)};
+        make(&b, false, false, 3, both);
+        ck_assert(largest(&b, SCT_BEAM_M, 1).x == 0);
+    }
 }
 END_TEST
 
@@ -558,6 +584,9 @@ START_TEST(a_number_that_is_none_comes_back)
     ck_assert(isnan(sct_beam_largest_bow(&b.line, &bad, &IN_PLANE).value));
     make_one(&b, true, true, (sct_beam_load){.is_point = true, .a = 3, .b = 3, .F = {NAN, 0, 0}});
     ck_assert(isnan(largest(&b, SCT_BEAM_N, 1).value));
+    const sct_beam_piece half[2] = {{.x = 0, .h = L / 2, .N = NAN}, {.x = L / 2, .h = L / 2, .N = 1}};
+    const sct_beam_line line = {.L = L, .n = 2, .piece = half};
+    ck_assert(isnan(sct_beam_largest(&line, &AT_REST, c).value));
 }
 END_TEST
 

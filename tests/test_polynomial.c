@@ -1,6 +1,7 @@
 /* Roots of low polynomials on the unit interval. */
 #include "support.h"
 
+#include "beam_loads.h"
 #include "numerics/polynomial.h"
 
 /* p = lead * product of (s - root[i]) */
@@ -37,6 +38,20 @@ START_TEST(roots_inside_come_back_in_order)
             ck_assert_int_eq(n, inside);
             for (int j = 1; j < n; ++j) ck_assert_double_lt(found[j - 1], found[j]);
         }
+    }
+}
+END_TEST
+
+/* Many steep and flat ways between the turns: each bracket keeps its own root. */
+START_TEST(five_roots_anywhere_stay_in_their_brackets)
+{
+    unsigned long long seed = 1;
+    for (int c = 0; c < 300; ++c) {
+        double root[5], p[6], found[5];
+        for (int i = 0; i < 5; ++i) root[i] = (i + 0.5 + 0.45 * random_unit(&seed)) / 5;
+        from_roots(5, root, 1, p);
+        ck_assert_int_eq(sct_polynomial_roots(5, p, found), 5);
+        for (int i = 0; i < 5; ++i) ck_assert_double_eq_tol(found[i], root[i], 1e-9);
     }
 }
 END_TEST
@@ -81,6 +96,18 @@ START_TEST(changes_of_sign_are_found_over_a_flat_place)
 }
 END_TEST
 
+/* (s - 1/2)^3 and (s - 1/2)^2, exact in binary: the turn itself is the root. */
+START_TEST(root_just_at_a_turn)
+{
+    const double cube[4] = {-0.125, 0.75, -1.5, 1}, square[3] = {0.25, -1, 1};
+    double root[3];
+    ck_assert_int_eq(sct_polynomial_roots(3, cube, root), 1);
+    ck_assert(root[0] == 0.5);
+    ck_assert_int_eq(sct_polynomial_roots(2, square, root), 1);
+    ck_assert(root[0] == 0.5);
+}
+END_TEST
+
 START_TEST(numbers_that_are_none_have_no_roots)
 {
     const double p[3] = {NAN, 1, 1}, q[3] = {-1, INFINITY, 1}, r[2] = {NAN, 1};
@@ -96,9 +123,11 @@ int main(void)
     Suite *suite = suite_create("polynomial");
     TCase *tc = tcase_create("polynomial");
     tcase_add_test(tc, roots_inside_come_back_in_order);
+    tcase_add_test(tc, five_roots_anywhere_stay_in_their_brackets);
     tcase_add_test(tc, small_root_of_a_quadratic_keeps_its_digits);
     tcase_add_test(tc, lower_polynomials_in_higher_clothes);
     tcase_add_test(tc, changes_of_sign_are_found_over_a_flat_place);
+    tcase_add_test(tc, root_just_at_a_turn);
     tcase_add_test(tc, numbers_that_are_none_have_no_roots);
     suite_add_tcase(suite, tc);
     return run_suite(suite);

@@ -29,7 +29,7 @@ static int add_ratio(double num, double den, int n, double roots[])
 static int quadratic(const double p[3], double roots[])
 {
     const double scale = fmax(fabs(p[0]), fmax(fabs(p[1]), fabs(p[2])));
-    if (!(scale > 0) || !(scale <= DBL_MAX)) return 0;
+    if (!(scale > 0)) return 0;
     const double c = p[0] / scale, b = p[1] / scale, a = p[2] / scale, D = b * b - 4 * a * c;
     if (D < 0) return 0;
     const double r = -(b + copysign(sqrt(D), b)) / 2;
@@ -45,12 +45,12 @@ static int quadratic(const double p[3], double roots[])
     return 2;
 }
 
-/* The root of p in [lo, hi], where it goes monotonically from one sign to the other: Newton, and bisection where Newton
- * leaves the bracket or does not halve it (after Dekker). */
+/* The root of p in [lo, hi], where it goes monotonically from one sign to the other: Newton, and bisection where that
+ * would leave the bracket. */
 static double bracketed(int degree, const double p[], const double dp[], double lo, double hi)
 {
     const bool rises = sct_polynomial_value(degree, p, lo) < 0;
-    double s = 0.5 * (lo + hi), before = hi - lo;
+    double s = 0.5 * (lo + hi);
     for (int i = 0; i < 200; ++i) {
         const double f = sct_polynomial_value(degree, p, s), df = sct_polynomial_value(degree - 1, dp, s);
         if (f == 0) return s;
@@ -58,10 +58,8 @@ static double bracketed(int degree, const double p[], const double dp[], double 
             lo = s;
         else
             hi = s;
-        const bool newton = df != 0 && fabs(f) < 0.5 * before * fabs(df);
-        const double to = newton ? s - f / df : NAN, next = to > lo && to < hi ? to : 0.5 * (lo + hi);
-        before = fabs(next - s);
-        if (before <= 0.5 * DBL_EPSILON * fabs(next)) return next;
+        const double to = df != 0 ? s - f / df : NAN, next = to > lo && to < hi ? to : 0.5 * (lo + hi);
+        if (fabs(next - s) <= 0.5 * DBL_EPSILON * fabs(next)) return next;
         s = next;
     }
     return s;
