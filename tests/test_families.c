@@ -1,9 +1,10 @@
-/* The shipped section families, and the CSV reader that reads them. */
+/* The shipped section families, the CSV reader that reads them, and shapes that grow in proportion. */
 #include "model/families.h"
 
 #include <string.h>
 
 #include "model/csv.h"
+#include "model/shapes.h"
 #include "support.h"
 
 static sct_family load(sct_arena *arena, const char *name)
@@ -44,6 +45,8 @@ START_TEST(every_family_is_sorted_and_has_each_name_once)
             const sct_section *s = &family.sections[i];
             ck_assert(s->A > 0 && s->I[0] > 0 && s->I[1] > 0 && s->depth > 0);
             ck_assert(s->I[0] < s->A * s->depth * s->depth / 4);
+            ck_assert(s->W[0] > 0 && s->W[1] > 0 && s->J > 0);
+            ck_assert(s->W[0] <= 1.02 * s->I[0] / (s->depth / 2)); /* no fibre is nearer than half of the depth */
             if (i > 0) ck_assert(family.sections[i - 1].A <= s->A);
             for (int k = 0; k < i; k++) ck_assert_str_ne(family.sections[k].name, s->name);
         }
@@ -66,12 +69,15 @@ START_TEST(tubes_have_the_properties_of_a_ring)
         ck_close(family.sections[i].A, pi / 4 * (D * D - d * d), 5e-4);
         ck_close(family.sections[i].I[0], pi / 64 * (pow(D, 4) - pow(d, 4)), 5e-4);
         ck_close(family.sections[i].depth, D, 1e-12);
+        ck_close(family.sections[i].W[1], pi / 32 * (pow(D, 4) - pow(d, 4)) / D, 5e-4);
+        ck_close(family.sections[i].J, pi / 32 * (pow(D, 4) - pow(d, 4)), 5e-4);
     }
     sct_arena_free(arena);
 }
 END_TEST
 
-/* IPE 330: A = 62.6 cm2, Iy = 11770 cm4, Iz = 788 cm4, as in the tables to EN 10365. Pair of L 150x150x15 at a gap of
+/* IPE 330: A = 62.6 cm2, Iy = 11770 cm4, Iz = 788 cm4, Wy = 713 cm3, Wz = 98.5 cm3, It = 28.15 cm4, as in the tables to
+ * EN 10365. Pair of L 150x150x15 at a gap of
  * 10 mm: Steel Buildings in Europe, Single-Storey, Part 5 (2010), 4.1.3: 1796 cm4 in plane, 3737 cm4 out of plane. */
 START_TEST(known_sections_have_their_tabulated_values)
 {
@@ -81,12 +87,52 @@ START_TEST(known_sections_have_their_tabulated_values)
     ck_close(s->A, 62.6e-4, 2e-3);
     ck_close(s->I[SCT_IN_PLANE], 11770e-8, 2e-3);
     ck_close(s->I[SCT_OUT_OF_PLANE], 788e-8, 2e-3);
+    ck_close(s->W[SCT_IN_PLANE], 713e-6, 2e-3);
+    ck_close(s->W[SCT_OUT_OF_PLANE], 98.5e-6, 2e-3);
+    ck_close(s->J, 28.15e-8, 2e-3);
     ck_close(s->depth, 0.330, 1e-12);
     s = find(&pair, "2L 150x150x15 gap 10");
     ck_close(s->A, 86e-4, 2e-3);
     ck_close(s->I[SCT_IN_PLANE], 1796e-8, 1e-3);
     ck_close(s->I[SCT_OUT_OF_PLANE], 3737e-8, 1e-3);
     sct_arena_free(arena);
+}
+END_TEST
+
+/* Torsion: k1 of J = k1 a b^3 by Timoshenko and Goodier, Theory of Elasticity, 3rd ed., section 109: 0.1406, 0.229 and
+ * 0.312 for sides as 1, 2 and 10 to 1. */
+START_TEST(similar_rectangles_have_the_properties_of_one)
+{
+    static const double RATIO[] = {1, 2, 10, 0.5}, K1[] = {0.1406, 0.229, 0.312, 0.229};
+    for (int i = 0; i < 4; i++) {
+        const sct_shape shape = sct_shape_of(SCT_SHAPE_RECTANGLE, RATIO[i]);
+        const double b = 0.03, h = b * RATIO[i], A = b * h, a = fmax(b, h), thin = fmin(b, h);
+        ck_close(shape.c_I[SCT_IN_PLANE] * A * A, b * h * h * h / 12, 1e-14);
+        ck_close(shape.c_I[SCT_OUT_OF_PLANE] * A * A, h * b * b * b / 12, 1e-14);
+        ck_close(shape.c_W[SCT_IN_PLANE] * pow(A, 1.5), b * h * h / 6, 1e-14);
+        ck_close(shape.c_W[SCT_OUT_OF_PLANE] * pow(A, 1.5), h * b * b / 6, 1e-14);
+        ck_close(shape.c_J * A * A, K1[i] * a * thin * thin * thin, 2.5e-3);
+    }
+    const sct_shape bar = sct_shape_of(SCT_SHAPE_SQUARE_BAR, 1), square = sct_shape_of(SCT_SHAPE_RECTANGLE, 1);
+    ck_assert(bar.c_I[0] == square.c_I[0] && bar.c_J == square.c_J);
+}
+END_TEST
+
+/* Rings by their formulas; a thin one is the limit r^3 t of both; the square by Bredt's formula. */
+START_TEST(similar_tubes_have_the_properties_of_one)
+{
+    const double pi = acos(-1.0), D = 0.2, t = 0.01, d = D - 2 * t, A = pi / 4 * (D * D - d * d);
+    const sct_shape tube = sct_shape_of(SCT_SHAPE_ROUND_TUBE, D / t), bar = sct_shape_of(SCT_SHAPE_ROUND_BAR, 1);
+    ck_close(tube.c_I[0] * A * A, pi / 64 * (pow(D, 4) - pow(d, 4)), 1e-14);
+    ck_close(tube.c_W[1] * pow(A, 1.5), pi / 32 * (pow(D, 4) - pow(d, 4)) / D, 1e-14);
+    ck_close(tube.c_J, 2 * tube.c_I[0], 1e-14);
+    ck_close(bar.c_I[1], 1 / (4 * pi), 1e-14);
+    ck_close(bar.c_W[0], 1 / (4 * sqrt(pi)), 1e-14);
+    const double B = 0.1, w = 0.005, inner = B - 2 * w, A_square = B * B - inner * inner;
+    const sct_shape square = sct_shape_of(SCT_SHAPE_SQUARE_TUBE, B / w);
+    ck_close(square.c_I[0] * A_square * A_square, (pow(B, 4) - pow(inner, 4)) / 12, 1e-14);
+    ck_close(square.c_W[0] * pow(A_square, 1.5), (pow(B, 4) - pow(inner, 4)) / 6 / B, 1e-14);
+    ck_close(square.c_J * A_square * A_square, pow(B - w, 3) * w, 1e-13);
 }
 END_TEST
 
@@ -158,6 +204,8 @@ int main(void)
     tcase_add_test(c, every_family_is_sorted_and_has_each_name_once);
     tcase_add_test(c, tubes_have_the_properties_of_a_ring);
     tcase_add_test(c, known_sections_have_their_tabulated_values);
+    tcase_add_test(c, similar_rectangles_have_the_properties_of_one);
+    tcase_add_test(c, similar_tubes_have_the_properties_of_one);
     tcase_add_test(c, equal_areas_stay_in_their_order);
     tcase_add_test(c, csv_follows_rfc_4180);
     tcase_add_test(c, csv_stops_at_a_fault);

@@ -47,6 +47,38 @@ START_TEST(customary_units_follow_from_their_definitions)
 }
 END_TEST
 
+START_TEST(units_of_frames_follow_from_those_of_length_and_force)
+{
+    const double in = 0.0254, lbf = 0.45359237 * 9.80665, pi = acos(-1.0);
+    ck_assert(in_SI("12 kN m", SCT_MOMENT) == 12e3);
+    ck_assert(in_SI("250 N mm", SCT_MOMENT) == 0.25);
+    ck_assert(in_SI("3 kN cm", SCT_MOMENT) == 30);
+    ck_close(in_SI("1 lbf in", SCT_MOMENT), lbf * in, 1e-15);
+    ck_close(in_SI("1 lbf ft", SCT_MOMENT), lbf * 12 * in, 1e-15);
+    ck_close(in_SI("1 kip in", SCT_MOMENT), 1000 * lbf * in, 1e-15);
+    ck_close(in_SI("1 kip ft", SCT_MOMENT), 12000 * lbf * in, 1e-15);
+    ck_assert(in_SI("-5 kN/m", SCT_FORCE_PER_LENGTH) == -5e3 && in_SI("5 N/mm", SCT_FORCE_PER_LENGTH) == 5e3);
+    ck_assert(in_SI("5 kN/mm", SCT_FORCE_PER_LENGTH) == 5e6 && in_SI("5 kN/cm", SCT_FORCE_PER_LENGTH) == 5e5);
+    ck_close(in_SI("1 lbf/in", SCT_FORCE_PER_LENGTH), lbf / in, 1e-15);
+    ck_close(in_SI("1 lbf/ft", SCT_FORCE_PER_LENGTH), lbf / (12 * in), 1e-15);
+    ck_close(in_SI("1 kip/in", SCT_FORCE_PER_LENGTH), 1000 * lbf / in, 1e-15);
+    ck_close(in_SI("1 kip/ft", SCT_FORCE_PER_LENGTH), 1000 * lbf / (12 * in), 1e-15);
+    ck_assert(in_SI("200 kN m/rad", SCT_TURN_STIFFNESS) == 200e3);
+    ck_close(in_SI("1 kN m/deg", SCT_TURN_STIFFNESS), 1e3 * 180 / pi, 1e-15);
+    ck_close(in_SI("1 kip ft/rad", SCT_TURN_STIFFNESS), 12000 * lbf * in, 1e-15);
+    ck_close(in_SI("1 kip in/rad", SCT_TURN_STIFFNESS), 1000 * lbf * in, 1e-15);
+    ck_close(in_SI("1 lbf in/rad", SCT_TURN_STIFFNESS), lbf * in, 1e-15);
+    ck_close(in_SI("30 deg", SCT_ANGLE), pi / 6, 1e-15);
+    ck_assert(in_SI("2 mrad", SCT_ANGLE) == 0.002);
+    ck_assert(in_SI("713 cm3", SCT_SECTION_MODULUS) == 713e-6 && in_SI("5 mm3", SCT_SECTION_MODULUS) == 5e-9);
+    ck_close(in_SI("1 in3", SCT_SECTION_MODULUS), in * in * in, 1e-15);
+    ck_assert(in_SI("10 K/m", SCT_GRADIENT) == 10 && in_SI("1 K/mm", SCT_GRADIENT) == 1000);
+    ck_close(in_SI("9 F/in", SCT_GRADIENT), 5 / in, 1e-15);
+    ck_close(in_SI("9 F/ft", SCT_GRADIENT), 5 / (12 * in), 1e-15);
+    ck_assert(in_SI("3 Hz", SCT_FREQUENCY) == 3);
+}
+END_TEST
+
 START_TEST(a_temperature_is_a_difference)
 {
     ck_assert(in_SI("30 K", SCT_TEMPERATURE) == 30.0);
@@ -79,6 +111,13 @@ static const refused REFUSED[] = {
     {"5 kg", SCT_FORCE, "kg is a mass, not a force; expected one of N, kN, MN, lbf, kip"},
     {"77 kN/m3", SCT_DENSITY,
      "kN/m3 is a weight per volume, not a density; expected one of kg/m3, t/m3, g/cm3, lb/in3, lb/ft3"},
+    {"12 kNm", SCT_MOMENT, "no unit \"kNm\"; did you mean \"kN m\"?"},
+    {"12 kNm", SCT_TURN_STIFFNESS, "no unit \"kNm\"; did you mean \"kN m/rad\"?"},
+    {"12 kN", SCT_MOMENT,
+     "kN is the unit of a force; expected a moment in one of N m, kN m, MN m, N mm, kN cm, lbf in, lbf ft, kip in, "
+     "kip ft"},
+    {"30 degrees", SCT_ANGLE, "no unit \"degrees\"; did you mean \"deg\"?"},
+    {"5 plf", SCT_FORCE_PER_LENGTH, "no unit \"plf\"; did you mean \"lbf/ft\"?"},
     {"0.01", SCT_AREA,
      "found the string \"0.01\" without a unit; expected an area such as \"700 mm2\", or a number without quotes"},
     {"", SCT_LENGTH, "found \"\"; expected a length: a number and its unit, such as \"3 m\""},
@@ -127,6 +166,7 @@ int main(void)
     TCase *c = tcase_create("units");
     tcase_add_test(c, metric_quantities_are_the_nearest_double);
     tcase_add_test(c, customary_units_follow_from_their_definitions);
+    tcase_add_test(c, units_of_frames_follow_from_those_of_length_and_force);
     tcase_add_test(c, a_temperature_is_a_difference);
     tcase_add_loop_test(c, what_is_no_quantity_is_told_with_the_likely_slip, 0,
                         (int)(sizeof REFUSED / sizeof *REFUSED));

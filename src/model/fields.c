@@ -62,6 +62,17 @@ void sct_fields_key_error(sct_fields *f, const sct_node *node, const char *forma
     va_end(args);
 }
 
+void sct_fields_error_at(sct_fields *f, sct_where where, const char *format, ...)
+{
+    char message[1024];
+    if (!count_error(f)) return;
+    va_list args;
+    va_start(args, format);
+    sct_number_vformat(message, sizeof message, format, args);
+    va_end(args);
+    sct_issue_add(f->issues, SCT_ERROR, where, "%s", message);
+}
+
 void sct_fields_remark(sct_fields *f, sct_severity severity, const sct_node *node, const char *format, ...)
 {
     va_list args;

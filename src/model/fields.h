@@ -41,6 +41,8 @@ __attribute__((format(printf, 3, 4))) void sct_fields_key_error(sct_fields *f, c
                                                                 ...);
 __attribute__((format(printf, 4, 5))) void sct_fields_remark(sct_fields *f, sct_severity severity, const sct_node *node,
                                                              const char *format, ...);
+/** An error at a place that was kept: for what shows only when all has been read. */
+__attribute__((format(printf, 3, 4))) void sct_fields_error_at(sct_fields *f, sct_where where, const char *format, ...);
 /** So many errors that no more will be shown: hints that cost time can be left out. */
 bool sct_fields_enough(const sct_fields *f);
 /** The place of a value with its pointer, both kept in the arena. */

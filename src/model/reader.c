@@ -298,6 +298,7 @@ static void read_root(sct_reader *r, const sct_node *root)
     if (!failed(r)) sct_read_combinations(r, found[K_COMBINATIONS]);
     if (!failed(r)) sct_read_limits(r, limit);
     if (!failed(r)) check_groups_used(r, found[K_GROUPS]);
+    if (!failed(r) && r->f.n_errors == 0) sct_check_needs(r);
 }
 
 static void release(sct_reader *r)

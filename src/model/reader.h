@@ -111,4 +111,7 @@ enum {
 };
 /** All but buckling and slenderness, which groups need before. */
 void sct_read_limits(sct_reader *r, const sct_node *const limit[SCT_LIMITS]);
+/** What members that bend and twist need of their groups, their material and their joints; of a model without errors.
+ */
+void sct_check_needs(sct_reader *r);
 #endif

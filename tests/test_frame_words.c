@@ -1,0 +1,447 @@
+/* What a model file says of frames: ends, runs, axes, springs, loads on members, limits. */
+#include "model/reader.h"
+
+#include <string.h>
+
+#include "base/text.h"
+#include "model/axes.h"
+#include "support.h"
+
+/* Written with ' for ": a plane frame of one storey. */
+static const char PLANE[] =
+    "{'scantling': 1, 'dimensions': 2, 'units': {'length': 'm', 'force': 'kN', 'stress': 'MPa', 'temperature': 'K'},\n"
+    " 'materials': {'S': {'E': 210000, 'G': '81 GPa', 'density': '7850 kg/m3', 'expansion': '12e-6 1/K',\n"
+    "  'allowable': {'tension': 140, 'compression': 140}}},\n"
+    " 'families': {'own': {'sections': {\n"
+    "  'H': {'A': '2000 mm2', 'I': '3e6 mm4', 'W': {'in_plane': '6e4 mm3', 'out_of_plane': 5e-5}, 'J': '4e4 mm4'}}}},\n"
+    " 'joints': {'A': {'at': [0, 0], 'support': 'fixed'}, 'B': {'at': [6, 0], 'support': ['x', 'y', 'rotation']},\n"
+    "  'C': {'at': [0, 4], 'springs': {'y': '5000 kN/m', 'rotation': 200}}, 'M': {'at': [2, 4]}, 'D': {'at': [6, "
+    "4]}},\n"
+    " 'groups': {'post': {'material': 'S', 'area': '4000 mm2', 'shape': {'kind': 'square tube', 'width_to_wall': "
+    "20}},\n"
+    "  'beam': {'material': 'S', 'family': 'IPE'}, 'own': {'material': 'S', 'family': 'own'},\n"
+    "  'said': {'material': 'S', 'area': '5000 mm2', 'second_moment': {'c': 2}, 'section_modulus': {'c': {'in_plane': "
+    "0.1,\n"
+    "   'out_of_plane': 0.2}}, 'torsion_constant': {'at': '5000 mm2', 'value': '7.1e6 mm4', 'power': 1.8}}},\n"
+    " 'members': {'L': {'from': 'A', 'to': 'C', 'group': 'post', 'ends': 'fixed'},\n"
+    "  'R': {'from': 'B', 'to': 'D', 'group': 'own', 'ends': [{'in_plane': '200 kN m/rad'}, 'pinned']},\n"
+    "  'top': {'through': ['C', 'M', 'D'], 'group': 'beam', 'length_factor': {'in_plane': 0.8}, 'ends': ['fixed', "
+    "'pinned']},\n"
+    "  'tie': {'from': 'A', 'to': 'D', 'group': 'said', 'tension_only': true}},\n"
+    " 'cases': {\n"
+    "  'G': {'joints': {'D': [0, -4]}, 'moments': {'C': '12 kN m'}, 'loads': [\n"
+    "   {'on': 'top', 'line': [0, -5], 'axes': 'projected'},\n"
+    "   {'on': ['L', 'top'], 'from': 1, 'to': '4 m', 'line': [[0, -6], [0, '-12 kN/m']]},\n"
+    "   {'on': 'top', 'at': '0.5 L', 'force': [0, -10], 'moment': 3, 'axes': 'member'},\n"
+    "   {'on': 'top 2', 'at': 4, 'force': [0, -1]}]},\n"
+    "  'T': {'settlements': {'A': [0, '-5 mm']}, 'rotations': {'A': '2 mrad'},\n"
+    "   'members': {'L': {'gradient': '10 K/m'}, 'top': {'lack_of_fit': '3 mm', 'temperature': 20}}},\n"
+    "  'N': {'notional': {'of': 'G', 'part': '1/200', 'direction': 'x'}}},\n"
+    " 'combinations': {'all': {'for': 'allowable', 'sum': {'G': 1, 'T': 1, 'N': 1}}},\n"
+    " 'limits': {'buckling': {'by': 'Euler', 'safety': 2},\n"
+    "  'deflection': [{'joints': ['D', 'M'], 'relative_to': 'C', 'direction': 'y', 'at_most': '20 mm'},\n"
+    "   {'between': [['C', 'A'], ['D', 'B']], 'direction': 'x', 'at_most': 'L/200', 'span': 4}],\n"
+    "  'drift': [{'along': ['B', 'D'], 'direction': 'x', 'at_most': 'h/400'}],\n"
+    "  'bow': [{'members': ['top', 'L'], 'axis': 'in_plane', 'at_most': 'L/300'}],\n"
+    "  'critical_factor': {'at_least': 10}, 'amplify_sway': true,\n"
+    "  'frequency': {'at_least': '3 Hz', 'mass': {'G': 1}}}}\n";
+
+/* A bent and two straight runs in space, with `ENDS` and `MORE` for the first. */
+static const char SPACE[] =
+    "{'scantling': 1, 'dimensions': 3, 'units': {'length': 'm', 'force': 'kN', 'stress': 'MPa'},\n"
+    " 'materials': {'S': {'E': 210000, 'G': 81000, 'density': '7850 kg/m3',\n"
+    "  'allowable': {'tension': 140, 'compression': 140}}},\n"
+    " 'joints': {'A': {'at': [0, 0, 0], 'support': 'fixed'}, 'B': {'at': [3, 0, 0]}, 'C': {'at': [6, 0, 0], 'support': "
+    "['x', 'y', 'z', 'rotation x']},\n"
+    "  'D': {'at': [3, 0, 4], 'springs': {'z': 7, 'rotation y': '3 kN m/rad'}}, 'E': {'at': [3, 4, 0]}},\n"
+    " 'groups': {'g': {'material': 'S', 'area': '4000 mm2', 'shape': {'kind': 'round tube', 'diameter_to_wall': "
+    "20}}},\n"
+    " 'members': {'straight': {'through': ['A', 'B', 'C'], 'group': 'g'},\n"
+    "  'bent': {'through': ['A', 'D', 'C'], 'group': 'g', 'ends': {'torsion': 'pinned'}},\n"
+    "  'post': {'from': 'B', 'to': 'D', 'group': 'g', 'ends': [{'out_of_plane': 'pinned'}, 'pinned']},\n"
+    "  'side': {'from': 'B', 'to': 'E', 'group': 'g', 'ends': 'fixed', 'up': [1, 0, 1], 'roll': '90 deg'}},\n"
+    " 'cases': {'G': {'moments': {'B': [1, 2, 3]}, 'loads': [{'on': 'side', 'line': [0, 0, -5]}]}},\n"
+    " 'combinations': {'all': {'for': 'allowable', 'sum': {'G': 1}}},\n"
+    " 'limits': {'buckling': {'by': 'Euler', 'safety': 2}, 'bow': [{'members': ['side'], 'axis': 'out_of_plane', "
+    "'at_most': '9 mm'}]}}\n";
+
+/* A model text with `from` replaced by `to`, its quotes set right. */
+static char *edited(const char *model, const char *from, const char *to)
+{
+    const char *at = strstr(model, from);
+    ck_assert_msg(at != NULL, "the model has no %s", from);
+    sct_text text = {0};
+    sct_text_bytes(&text, model, (size_t)(at - model));
+    sct_text_add(&text, to);
+    sct_text_add(&text, at + strlen(from));
+    for (char *p = text.data; *p != '\0'; p++)
+        if (*p == '\'') *p = '"';
+    return sct_text_take(&text, NULL);
+}
+
+static sct_model *read_edited(const char *model, const char *from, const char *to)
+{
+    sct_model *m;
+    sct_issues *issues = sct_issues_new();
+    char *text = edited(model, from, to);
+    const sct_status status = sct_reader_parse("f", text, strlen(text), &m, issues);
+    ck_assert_msg(status == SCT_OK, "%s", sct_issues_get(issues, 0) ? sct_issues_get(issues, 0)->message : "");
+    ck_assert_int_eq(sct_issues_count(issues), 0);
+    sct_issues_free(issues);
+    free(text);
+    return m;
+}
+
+static sct_model *read_model(const char *model)
+{
+    return read_edited(model, "", "");
+}
+
+static const sct_member *member(const sct_model *m, const char *name)
+{
+    for (int i = 0; i < m->n_members; i++)
+        if (strcmp(m->members[i].name, name) == 0) return &m->members[i];
+    ck_abort_msg("no member %s", name);
+}
+
+static void check_end(const sct_member_end *end, sct_fixity in_plane, sct_fixity out_of_plane, sct_fixity twist)
+{
+    ck_assert_int_eq(end->fixity[SCT_IN_PLANE], in_plane);
+    ck_assert_int_eq(end->fixity[SCT_OUT_OF_PLANE], out_of_plane);
+    ck_assert_int_eq(end->fixity[SCT_TWIST], twist);
+}
+
+/* ---- members --------------------------------------------------------------------------------------------------------
+ */
+
+START_TEST(ends_of_a_plane_frame_turn_in_plane_only)
+{
+    sct_model *m = read_model(PLANE);
+    const sct_member *L = member(m, "L"), *R = member(m, "R"), *tie = member(m, "tie");
+    check_end(&L->end[0], SCT_FIXED, SCT_PINNED, SCT_PINNED);
+    check_end(&L->end[1], SCT_FIXED, SCT_PINNED, SCT_PINNED);
+    check_end(&R->end[0], SCT_SPRUNG, SCT_PINNED, SCT_PINNED);
+    check_end(&R->end[1], SCT_PINNED, SCT_PINNED, SCT_PINNED);
+    ck_assert(R->end[0].stiffness[SCT_IN_PLANE] == 200e3);
+    check_end(&tie->end[0], SCT_PINNED, SCT_PINNED, SCT_PINNED);
+    ck_assert(tie->tension_only && !L->tension_only);
+    sct_model_free(m);
+}
+END_TEST
+
+START_TEST(ends_in_space_are_fixed_where_an_object_is_silent)
+{
+    sct_model *m = read_model(SPACE);
+    check_end(&member(m, "post")->end[0], SCT_FIXED, SCT_PINNED, SCT_FIXED);
+    check_end(&member(m, "post")->end[1], SCT_PINNED, SCT_PINNED, SCT_PINNED);
+    check_end(&member(m, "side")->end[0], SCT_FIXED, SCT_FIXED, SCT_FIXED);
+    sct_model_free(m);
+}
+END_TEST
+
+START_TEST(a_run_becomes_pieces_that_go_on_over_its_inner_joints)
+{
+    sct_model *m = read_model(PLANE);
+    ck_assert_int_eq(m->n_runs, 1);
+    ck_assert_str_eq(m->runs[0].name, "top");
+    ck_assert(m->runs[0].first == 2 && m->runs[0].n == 2);
+    ck_assert_int_eq(m->n_members, 5);
+    const sct_member *first = member(m, "top 1"), *second = member(m, "top 2");
+    ck_assert(first->from == 2 && first->to == 3 && second->from == 3 && second->to == 4);
+    ck_assert(first->run == 0 && second->run == 0 && member(m, "L")->run == -1);
+    check_end(&first->end[0], SCT_FIXED, SCT_PINNED, SCT_PINNED);
+    check_end(&first->end[1], SCT_FIXED, SCT_PINNED, SCT_PINNED);
+    check_end(&second->end[0], SCT_FIXED, SCT_PINNED, SCT_PINNED);
+    check_end(&second->end[1], SCT_PINNED, SCT_PINNED, SCT_PINNED);
+    ck_assert(first->length[0] == 0.8 && second->length[0] == 0.8);
+    ck_assert_str_eq(second->where.pointer, "/members/top");
+    sct_model_free(m);
+}
+END_TEST
+
+START_TEST(a_straight_run_that_may_spin_has_no_torsion)
+{
+    sct_model *m = read_model(SPACE);
+    check_end(&member(m, "straight 1")->end[0], SCT_PINNED, SCT_PINNED, SCT_PINNED);
+    check_end(&member(m, "straight 1")->end[1], SCT_FIXED, SCT_FIXED, SCT_PINNED);
+    check_end(&member(m, "straight 2")->end[0], SCT_FIXED, SCT_FIXED, SCT_PINNED);
+    check_end(&member(m, "bent 1")->end[0], SCT_FIXED, SCT_FIXED, SCT_PINNED);
+    check_end(&member(m, "bent 1")->end[1], SCT_FIXED, SCT_FIXED, SCT_FIXED);
+    sct_model_free(m);
+    m = read_edited(SPACE, "['A', 'B', 'C'], 'group': 'g'",
+                    "['A', 'B', 'C'], 'group': 'g', 'ends': ['fixed', 'pinned']");
+    check_end(&member(m, "straight 2")->end[0], SCT_FIXED, SCT_FIXED, SCT_FIXED);
+    sct_model_free(m);
+}
+END_TEST
+
+START_TEST(local_axes_follow_up_and_roll)
+{
+    sct_model *m = read_model(SPACE);
+    double e[3][3];
+    ck_assert(sct_member_axes(m, member(m, "straight 1"), e)); /* level: bends in the vertical plane */
+    ck_assert(e[0][0] == 1 && e[1][2] == 1 && e[2][1] == -1);
+    ck_assert(sct_member_axes(m, member(m, "post"), e)); /* vertical: towards x */
+    ck_assert(e[0][2] == 1 && e[1][0] == 1 && e[2][1] == 1);
+    ck_assert(sct_member_axes(m, member(m, "side"), e)); /* along y; (1, 0, 1) turned by 90 degrees about y */
+    ck_close(e[1][0], sqrt(0.5), 1e-15);
+    ck_close(e[1][2], -sqrt(0.5), 1e-15);
+    ck_close(e[2][0], -sqrt(0.5), 1e-15);
+    sct_model_free(m);
+    m = read_model(PLANE);
+    ck_assert(sct_member_axes(m, member(m, "L"), e)); /* upwards: +90 degrees is to the left */
+    ck_assert(e[0][1] == 1 && e[1][0] == -1 && e[2][2] == 1);
+    sct_model_free(m);
+}
+END_TEST
+
+/* ---- joints ---------------------------------------------------------------------------------------------------------
+ */
+
+START_TEST(supports_hold_rotations_and_springs_stand_beside_them)
+{
+    sct_model *m = read_model(PLANE);
+    ck_assert(m->joints[0].n_held == 2 && m->joints[0].n_turns_held == 1 && m->joints[0].turns_held[0][2] == 1);
+    ck_assert(m->joints[1].n_held == 2 && m->joints[1].n_turns_held == 1);
+    const sct_joint *C = &m->joints[2];
+    ck_assert_int_eq(C->n_springs, 2);
+    ck_assert(!C->springs[0].is_turn && C->springs[0].dir[1] == 1 && C->springs[0].stiffness == 5e6);
+    ck_assert(C->springs[1].is_turn && C->springs[1].dir[2] == 1 && C->springs[1].stiffness == 200e3);
+    sct_model_free(m);
+    m = read_model(SPACE);
+    ck_assert(m->joints[0].n_held == 3 && m->joints[0].n_turns_held == 3 && m->joints[0].turns_held[1][1] == 1);
+    ck_assert(m->joints[2].n_held == 3 && m->joints[2].n_turns_held == 1 && m->joints[2].turns_held[0][0] == 1);
+    const sct_joint *D = &m->joints[3];
+    ck_assert(D->springs[0].dir[2] == 1 && D->springs[0].stiffness == 7e3);
+    ck_assert(D->springs[1].is_turn && D->springs[1].dir[1] == 1 && D->springs[1].stiffness == 3e3);
+    sct_model_free(m);
+}
+END_TEST
+
+/* ---- sections -------------------------------------------------------------------------------------------------------
+ */
+
+START_TEST(sections_bring_moduli_and_torsion_constants)
+{
+    sct_model *m = read_model(PLANE);
+    ck_assert(m->materials[0].G == 81e9);
+    const sct_section *H = &m->families[m->groups[2].family].sections[0];
+    ck_assert(H->W[0] == 6e4 / 1e9 && H->W[1] == 5e-5 && H->J == 4e4 / 1e12);
+    const sct_group *post = &m->groups[0], *said = &m->groups[3];
+    ck_assert(post->W[0].p == 1.5 && post->J.p == 2 && post->c[0] > 0 && post->c[0] == post->c[1]);
+    ck_assert(said->W[0].c == 0.1 && said->W[1].c == 0.2 && said->W[1].p == 1.5 && said->c[1] == 2);
+    ck_assert(said->J.p == 1.8);
+    ck_close(said->J.c * pow(5000e-6, 1.8), 7.1e-6, 1e-14);
+    sct_model_free(m);
+}
+END_TEST
+
+/* ---- actions --------------------------------------------------------------------------------------------------------
+ */
+
+START_TEST(loads_on_a_run_are_split_at_its_joints)
+{
+    sct_model *m = read_model(PLANE);
+    const sct_case *G = &m->cases[0];
+    const sct_member_load *q = G->member_loads;
+    ck_assert_int_eq(G->n_member_loads, 7);
+    ck_assert(q[0].member == 2 && q[0].a == 0 && q[0].b == 2 && q[0].qa[1] == -5e3 && q[0].qb[1] == -5e3);
+    ck_assert(q[0].axes == SCT_AXES_PROJECTED && !q[0].is_point);
+    ck_assert(q[1].member == 3 && q[1].a == 0 && q[1].b == 4);
+    ck_assert(q[2].member == 0 && q[2].a == 1 && q[2].b == 4 && q[2].qa[1] == -6e3 && q[2].qb[1] == -12e3);
+    ck_assert(q[3].member == 2 && q[3].a == 1 && q[3].b == 2 && q[3].qa[1] == -6e3);
+    ck_close(q[3].qb[1], -8e3, 1e-14);
+    ck_assert(q[4].member == 3 && q[4].a == 0 && q[4].b == 2 && q[4].qb[1] == -12e3);
+    ck_close(q[4].qa[1], -8e3, 1e-14);
+    ck_assert(q[5].is_point && q[5].member == 3 && q[5].a == 1 && q[5].b == 1); /* half of 6 m, behind the first 2 m */
+    ck_assert(q[5].F[1] == -10e3 && q[5].M[2] == 3e3 && q[5].axes == SCT_AXES_MEMBER);
+    ck_assert(q[6].member == 3 && q[6].a == 4 && q[6].axes == SCT_AXES_MODEL);
+    sct_model_free(m);
+}
+END_TEST
+
+START_TEST(moments_and_rotations_stand_beside_forces_and_settlements)
+{
+    sct_model *m = read_model(PLANE);
+    ck_assert_int_eq(m->cases[0].n_loads, 2);
+    ck_assert(m->cases[0].loads[0].F[1] == -4e3 && m->cases[0].loads[0].M[2] == 0);
+    ck_assert(m->cases[0].loads[1].joint == 2 && m->cases[0].loads[1].M[2] == 12e3);
+    ck_assert_int_eq(m->cases[1].n_settlements, 2);
+    ck_assert(m->cases[1].settlements[0].d[1] == -5e-3 && m->cases[1].settlements[1].turn[2] == 2e-3);
+    sct_model_free(m);
+    m = read_model(SPACE);
+    ck_assert(m->cases[0].loads[0].M[0] == 1e3 && m->cases[0].loads[0].M[2] == 3e3);
+    sct_model_free(m);
+}
+END_TEST
+
+START_TEST(the_lack_of_fit_of_a_run_is_shared_by_length)
+{
+    sct_model *m = read_model(PLANE);
+    const sct_bar_action *a = m->cases[1].bar_actions;
+    ck_assert_int_eq(m->cases[1].n_bar_actions, 3);
+    ck_assert(a[0].member == 0 && a[0].gradient[0] == 10 && a[0].gradient[1] == 0 && a[0].dT == 0);
+    ck_assert(a[1].member == 2 && a[1].dT == 20 && a[2].member == 3 && a[2].dT == 20);
+    ck_close(a[1].lack, 1e-3, 1e-14);
+    ck_close(a[2].lack, 2e-3, 1e-14);
+    sct_model_free(m);
+}
+END_TEST
+
+/* By hand: 30 kN uniform on the beam, 27 kN on its middle and 27 kN up the post, the forces of 10 kN across the beam
+ * at 3 m, 1 kN at D and 4 kN on D; simple beams of 2 and 4 m between the joints. */
+START_TEST(notional_loads_are_a_part_of_what_comes_down_at_each_joint)
+{
+    sct_model *m = read_model(PLANE);
+    const sct_case *N = &m->cases[2];
+    /* the post from 1 to 4 m: 6 and 12 kN/m, moment about its foot 3/6 (6 (2 + 4) + 12 (1 + 8)) = 72 kNm */
+    const double at_C = 72.0 / 4, at_A = 27 - at_C;
+    /* the beam, first piece: 6 to 8 kN/m from 1 to 2 m, about C 1/6 (6 (2 + 2) + 8 (1 + 4)) = 32/3 kNm */
+    const double first = 7.0, first_at_M = 32.0 / 3 / 2;
+    /* second: 8 to 12 kN/m from 0 to 2 m, about M 2/6 (8 x 2 + 12 x 4) = 64/3 kNm */
+    const double second = 20.0, second_at_D = 64.0 / 3 / 4;
+    const double down[5] = {at_A, 0, at_C + 5 + first - first_at_M,
+                            5 + 10 + first_at_M + second - second_at_D + 10 * 3.0 / 4,
+                            4 + 10 + second_at_D + 10 * 1.0 / 4 + 1};
+    ck_assert_int_eq(N->n_loads, 4);
+    for (int i = 0; i < 4; i++) {
+        ck_close(N->loads[i].F[0], down[N->loads[i].joint] * 1e3 / 200, 1e-13);
+        ck_assert(N->loads[i].F[1] == 0);
+        ck_assert_str_eq(N->loads[i].where.pointer, "/cases/N/notional");
+    }
+    sct_model_free(m);
+}
+END_TEST
+
+/* ---- limits ---------------------------------------------------------------------------------------------------------
+ */
+
+START_TEST(movements_between_joints_are_limited)
+{
+    sct_model *m = read_model(PLANE);
+    ck_assert_int_eq(m->n_deflections, 3);
+    const sct_deflection_limit *relative = &m->deflections[0], *between = &m->deflections[1],
+                               *drift = &m->deflections[2];
+    ck_assert(relative->n_joints == 2 && relative->joints[0] == 4 && relative->from[0] == 2 && relative->from[1] == 2);
+    ck_assert(between->n_joints == 2 && between->joints[1] == 4 && between->from[1] == 1 && between->at_most == 0.02);
+    ck_assert(drift->n_joints == 1 && drift->joints[0] == 4 && drift->from[0] == 1 && drift->at_most == 0.01);
+    ck_assert_str_eq(drift->label, "h/400");
+    ck_assert(drift->direction[0] == 1 && drift->in[0]);
+    sct_model_free(m);
+}
+END_TEST
+
+START_TEST(bow_sway_and_frequency_are_limited)
+{
+    sct_model *m = read_model(PLANE);
+    ck_assert_int_eq(m->n_bows, 1);
+    const sct_bow_limit *bow = &m->bows[0];
+    ck_assert(bow->n_members == 1 && bow->members[0] == 0 && bow->n_runs == 1 && bow->runs[0] == 0);
+    ck_assert(bow->axis == SCT_IN_PLANE && isnan(bow->at_most) && bow->part == 1.0 / 300 && bow->in[0]);
+    ck_assert(m->least_factor == 10 && m->amplifies && m->least_frequency == 3);
+    ck_assert(m->mass_factor[0] == 1 && m->mass_factor[1] == 0);
+    sct_model_free(m);
+    m = read_model(SPACE);
+    ck_assert(m->bows[0].axis == SCT_OUT_OF_PLANE && m->bows[0].at_most == 0.009 && isnan(m->bows[0].part));
+    ck_assert(isnan(m->least_factor) && !m->amplifies && isnan(m->least_frequency) && m->mass_factor == NULL);
+    sct_model_free(m);
+}
+END_TEST
+
+/* ---- the rest -------------------------------------------------------------------------------------------------------
+ */
+
+START_TEST(bare_numbers_of_derived_kinds_follow_length_force_and_temperature)
+{
+    char *bare = edited(PLANE, "'4 m'", "4");
+    char *text = edited(bare, "\"length\": \"m\", \"force\": \"kN\"", "'length': 'ft', 'force': 'kip'");
+    const double ft = 0.3048, kip = 4448.2216152605;
+    sct_model *m;
+    ck_assert_int_eq(sct_reader_parse("f", text, strlen(text), &m, NULL), SCT_OK);
+    ck_close(m->joints[2].springs[1].stiffness, 200 * kip * ft, 1e-15);
+    ck_close(m->families[m->groups[2].family].sections[0].W[1], 5e-5 * ft * ft * ft, 1e-15);
+    ck_close(m->cases[0].member_loads[0].qa[1], -5 * kip / ft, 1e-15);
+    ck_close(m->cases[0].member_loads[5].M[2], 3 * kip * ft, 1e-15);
+    sct_model_free(m);
+    free(text);
+    free(bare);
+}
+END_TEST
+
+/* Until the analysis carries them; the error stands at the first thing that makes the model a frame. */
+START_TEST(frames_are_refused_where_they_are_said)
+{
+    sct_model *m;
+    sct_issues *issues = sct_issues_new();
+    char *text = edited(PLANE, "", "");
+    ck_assert_int_eq(sct_model_parse("f", text, strlen(text), &m, issues), SCT_BAD_INPUT);
+    ck_assert_ptr_null(m);
+    ck_assert_int_eq(sct_issues_errors(issues), 1);
+    ck_assert_str_eq(sct_issues_get(issues, 0)->pointer, "/joints/A");
+    sct_issues_free(issues);
+    free(text);
+}
+END_TEST
+
+/* Every value of a frame, replaced in turn by one of every other kind: read or refused, never a fault. */
+START_TEST(every_value_of_another_kind_is_met)
+{
+    static const char *const MODELS[] = {PLANE, SPACE}, *const OTHERS[] = {
+                                                            "null",     "[]",    "{}",         "[{}]",
+                                                            "[[], []]", "true",  "'zzzzzzzz'", "'fixed'",
+                                                            "-7e7",     "1e300", "['A']",      "['A', 'A', 'A', 'A']"};
+    const char *model = MODELS[_i];
+    int n_refused = 0;
+    for (const char *p = model; (p = strchr(p, ':')) != NULL;) {
+        const char *begin = ++p + 1, *end = begin;
+        int depth = 0;
+        bool in_string = false;
+        do { /* one value: to the comma or bracket behind it */
+            if (*end == '\'') in_string = !in_string;
+            if (!in_string && (*end == '{' || *end == '[')) depth++;
+            if (!in_string && (*end == '}' || *end == ']')) depth--;
+            end++;
+        } while (in_string || depth > 0 || strchr(",}]\n", *end) == NULL);
+        for (size_t i = 0; i < sizeof OTHERS / sizeof *OTHERS; i++) {
+            sct_text start = {0};
+            sct_text_bytes(&start, model, (size_t)(begin - model));
+            sct_text_add(&start, OTHERS[i]);
+            sct_text_add(&start, end);
+            char *text = edited(start.data, "", "");
+            sct_model *m;
+            const sct_status status = sct_reader_parse("f", text, strlen(text), &m, NULL);
+            ck_assert(status == SCT_OK || status == SCT_BAD_INPUT);
+            n_refused += status == SCT_BAD_INPUT;
+            sct_model_free(m);
+            sct_text_free(&start);
+            free(text);
+        }
+    }
+    ck_assert_int_gt(n_refused, 100);
+}
+END_TEST
+
+int main(void)
+{
+    Suite *suite = suite_create("frame words");
+    TCase *c = tcase_create("frame words");
+    tcase_set_timeout(c, 60);
+    tcase_add_test(c, ends_of_a_plane_frame_turn_in_plane_only);
+    tcase_add_test(c, ends_in_space_are_fixed_where_an_object_is_silent);
+    tcase_add_test(c, a_run_becomes_pieces_that_go_on_over_its_inner_joints);
+    tcase_add_test(c, a_straight_run_that_may_spin_has_no_torsion);
+    tcase_add_test(c, local_axes_follow_up_and_roll);
+    tcase_add_test(c, supports_hold_rotations_and_springs_stand_beside_them);
+    tcase_add_test(c, sections_bring_moduli_and_torsion_constants);
+    tcase_add_test(c, loads_on_a_run_are_split_at_its_joints);
+    tcase_add_test(c, moments_and_rotations_stand_beside_forces_and_settlements);
+    tcase_add_test(c, the_lack_of_fit_of_a_run_is_shared_by_length);
+    tcase_add_test(c, notional_loads_are_a_part_of_what_comes_down_at_each_joint);
+    tcase_add_test(c, movements_between_joints_are_limited);
+    tcase_add_test(c, bow_sway_and_frequency_are_limited);
+    tcase_add_test(c, bare_numbers_of_derived_kinds_follow_length_force_and_temperature);
+    tcase_add_test(c, frames_are_refused_where_they_are_said);
+    tcase_add_loop_test(c, every_value_of_another_kind_is_met, 0, 2);
+    suite_add_tcase(suite, c);
+    return run_suite(suite);
+}
