@@ -211,8 +211,9 @@ static void to_model(const sct_bar *bar, const double local[2][6], double end[2]
 
 static void add_member_load(sct_structure *st, int k, const sct_member_load *load, sct_issues *issues)
 {
-    const sct_bar *bar = &st->bars[load->member];
+    sct_bar *bar = &st->bars[load->member];
     const sct_beam_load local = sct_local_load(bar, load);
+    bar->is_bent = true;
     if (local.M[0] != 0.0 && bar->hinges.free_turn[SCT_TWIST][0] && bar->hinges.free_turn[SCT_TWIST][1]) {
         sct_issue_add(issues, SCT_ERROR, load->where,
                       "member \"%s\" is loaded by a twist that neither of its ends takes",
@@ -259,7 +260,7 @@ static void stretch_by_settlement(sct_structure *st, int k)
         const sct_spring *s = &st->springs[i];
         if (s->bar < 0) continue; /* a support's spring counts what is free */
         const size_t from = 3 * (size_t)st->bars[s->bar].from, to = 3 * (size_t)st->bars[s->bar].to;
-        const sct_mode_shape shape = sct_shape_of(st, s);
+        const sct_mode_shape shape = sct_mode_shape_of(st, s);
         double d[3];
         sct_subtract3(settled + to, settled + from, d);
         stretch[i] +=

@@ -30,7 +30,7 @@ static void add_chord(const sct_bar *bar, int plane, double factor, sct_mode_sha
     for (int i = 0; i < 3; i++) shape->move[i] = factor * bar->axes[1 + plane][i] / bar->L;
 }
 
-sct_mode_shape sct_shape_of(const sct_structure *st, const sct_spring *spring)
+sct_mode_shape sct_mode_shape_of(const sct_structure *st, const sct_spring *spring)
 {
     sct_mode_shape shape = {.end_dof = {-1, -1}};
     const sct_bar *bar = &st->bars[spring->bar];
@@ -108,7 +108,7 @@ static void add_terms(builder *to, sct_spring *s)
 {
     const sct_structure *st = to->st;
     const sct_bar *bar = &st->bars[s->bar];
-    const sct_mode_shape shape = sct_shape_of(st, s);
+    const sct_mode_shape shape = sct_mode_shape_of(st, s);
     const int joint[2] = {bar->from, bar->to};
     s->dof = to->dof;
     s->b = to->b;
@@ -324,6 +324,7 @@ sct_status sct_list_springs(sct_structure *st, sct_issues *issues)
     for (int e = 0; e < st->n_bars; e++) add_terms(&to, new_spring(st, e, SCT_MODE_AXIAL, SCT_AREA));
     for (int e = 0; e < st->n_bars; e++) {
         if (is_beam(st, e)) add_beam(st, e, issues);
+        st->bars[e].is_bent = st->bars[e].n > 0;
         for (int i = 0; i < st->bars[e].n; i++) add_terms(&to, &st->springs[st->bars[e].first + i]);
         weigh_bar(&to, e);
     }

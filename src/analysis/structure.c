@@ -281,7 +281,7 @@ void sct_bar_pull(const sct_structure *st, const double S[], int e, double end[2
     memset(end, 0, sizeof(double[2][6]));
     for (int k = -1; k < bar->n; k++) {
         const int i = k < 0 ? e : bar->first + k;
-        const sct_mode_shape shape = sct_shape_of(st, &st->springs[i]);
+        const sct_mode_shape shape = sct_mode_shape_of(st, &st->springs[i]);
         for (int s = 0; s < 2; s++) {
             for (int x = 0; x < 3; x++) {
                 end[s][x] -= S[i] * (s == 0 ? -shape.move[x] : shape.move[x]);

@@ -83,6 +83,7 @@ typedef struct sct_bar {
     double E, density, expansion;
     sct_beam_hinges hinges;    /* where nothing passes between member and joint */
     int end_dof[2][SCT_TURNS]; /* the unknown of a sprung end; -1: the joint's own rotation counts */
+    bool is_bent; /* carries moments: a beam, or a bar loaded between its joints */
     int first, n;              /* its springs beyond the axial one: first .. first + n - 1; n = 0: a bar */
     double half_weight;        /* [N/m2] weight per unit area that goes to each of its joints: density g L / 2 */
     /* own weight per unit area on unknowns: w[i] on dof[i], downwards (unit factor), [N/m2] or [N m/m2] */

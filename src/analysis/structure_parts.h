@@ -15,7 +15,7 @@ typedef struct sct_mode_shape {
     int end_dof[2]; /* -1: none */
     double end_b[2];
 } sct_mode_shape;
-sct_mode_shape sct_shape_of(const sct_structure *st, const sct_spring *spring);
+sct_mode_shape sct_mode_shape_of(const sct_structure *st, const sct_spring *spring);
 
 /** The axis of rotation r (SCT_IN_PLANE, SCT_OUT_OF_PLANE, SCT_TWIST) of a member's ends. */
 void sct_turn_axis(const sct_bar *bar, int r, double axis[3]);
