@@ -288,6 +288,41 @@ START_TEST(an_error_between_the_limits_is_a_warning_with_both_members)
 }
 END_TEST
 
+static sct_result *check_with_stress(bench *b, double most)
+{
+    sct_result *result = NULL;
+    for (int g = 0; g < b->m->n_groups; g++) {
+        sct_group *group = &b->m->groups[g];
+        group->allowable[0] = group->allowable[1] = g > 0 ? most : 1e30; /* the odd one governs */
+    }
+    ck_assert_int_eq(sct_check(b->m, NULL, &result, b->issues), SCT_OK);
+    return result;
+}
+
+/* A stress limit that the analysis reaches to the last digit: kept where the bound is below the tolerance on limits,
+ * and left open where it is above. */
+START_TEST(a_limit_within_the_proven_error_is_not_decided)
+{
+    static const double RATIO[] = {1.0, 1e10};
+    for (int k = 0; k < 2; k++) {
+        bench b = strip_with_odd_member(19, RATIO[k], false);
+        mb_each_case(b.m);
+        sct_result *result = check_with_stress(&b, 1e12);
+        const double most = 1e12 * result->utilisation;
+        sct_result_free(result);
+        result = check_with_stress(&b, most);
+        ck_assert_double_eq_tol(result->utilisation, 1.0, 1e-12);
+        ck_assert_double_gt(result->utilisation_at_most, result->utilisation);
+        ck_assert_int_eq(result->kept, k == 0);
+        ck_assert_int_eq(strncmp(result->verdict, "Not decided: ", 13) == 0, k == 1);
+        if (k == 1) ck_assert_ptr_nonnull(strstr(result->verdict, "is at its limit, within the error of the analysis"));
+        ck_assert_int_eq(sct_verify(b.m, result, b.issues), SCT_OK);
+        sct_result_free(result);
+        tear_down(&b);
+    }
+}
+END_TEST
+
 START_TEST(a_printed_bound_is_never_below_the_bound)
 {
     sct_random r = {1};
@@ -413,6 +448,7 @@ int main(void)
     tcase_add_test(tests, ratios_of_the_catalogue_get_their_verdict);
     tcase_add_test(tests, a_bar_of_1e_14_of_the_rest_is_refused_with_its_name);
     tcase_add_test(tests, an_error_between_the_limits_is_a_warning_with_both_members);
+    tcase_add_test(tests, a_limit_within_the_proven_error_is_not_decided);
     tcase_add_test(tests, a_printed_bound_is_never_below_the_bound);
     tcase_add_test(tests, heat_in_a_determinate_truss_gives_no_force_and_no_refusal);
     tcase_add_test(tests, joints_that_stand_still_by_symmetry_are_no_error);
