@@ -12,7 +12,7 @@ static sct_family load(sct_arena *arena, const char *name)
     sct_family family;
     const int i = sct_family_find(name);
     ck_assert_int_ge(i, 0);
-    ck_assert_int_eq(sct_family_load(i, arena, &family), SCT_OK);
+    ck_assert_int_eq(sct_family_load(&sct_shipped_families[i], arena, &family), SCT_OK);
     return family;
 }
 
@@ -196,6 +196,53 @@ START_TEST(csv_stops_at_a_fault)
 }
 END_TEST
 
+START_TEST(a_quoted_field_has_no_more_room_and_nothing_follows_a_fault)
+{
+    char longest[2 * SCT_CSV_MOST_BYTES];
+    sct_csv csv;
+    memset(longest, 'x', sizeof longest);
+    longest[0] = '"';
+    sct_csv_start(&csv, longest, sizeof longest);
+    ck_assert(!sct_csv_next(&csv) && csv.fault != NULL);
+    ck_assert(!sct_csv_next(&csv));
+}
+END_TEST
+
+#define HEAD "name,A_mm2,Iy_mm4,Iz_mm4,h_mm,It_mm4\n"
+
+START_TEST(a_damaged_family_is_told_and_a_sound_one_read)
+{
+    static const char *const DAMAGED[] = {
+        "",
+        HEAD,
+        "name,A_mm2,Iy_mm4,Iz_mm4\na,1,2,3\n",
+        HEAD "a,1,2,3,4\n",
+        HEAD ",1,2,3,4,5\n",
+        HEAD "a,x,2,3,4,5\n",
+        HEAD "a,0,2,3,4,5\n",
+        HEAD "a,1,-2,3,4,5\n",
+        HEAD "a,1,2,,4,5\n",
+        HEAD "a,1,2,3,h,5\n",
+        HEAD "a,1,2,3,4,0\n",
+        HEAD "a,1,2,3,4,5\n\"b,1,2,3,4,5\n",
+    };
+    sct_arena *arena = sct_arena_new();
+    sct_family family;
+    for (size_t i = 0; i < sizeof DAMAGED / sizeof *DAMAGED; i++) {
+        const sct_shipped_family shipped = {"damaged", DAMAGED[i], strlen(DAMAGED[i])};
+        ck_assert_msg(sct_family_load(&shipped, arena, &family) == SCT_SELF_CHECK, "%s", DAMAGED[i]);
+    }
+    const sct_shipped_family sound = {"sound", HEAD "b,20,2,3,4,5\na,10,2,3,4,5",
+                                      strlen(HEAD "b,20,2,3,4,5\na,10,2,3,4,5")};
+    ck_assert_int_eq(sct_family_load(&sound, arena, &family), SCT_OK);
+    ck_assert(family.n == 2 && strcmp(family.sections[0].name, "a") == 0);
+    ck_close(family.sections[0].A, 10e-6, 1e-15);
+    ck_close(family.sections[1].J, 5e-12, 1e-15);
+    ck_assert(isnan(family.sections[0].W[0]));
+    sct_arena_free(arena);
+}
+END_TEST
+
 int main(void)
 {
     Suite *suite = suite_create("families");
@@ -209,6 +256,8 @@ int main(void)
     tcase_add_test(c, equal_areas_stay_in_their_order);
     tcase_add_test(c, csv_follows_rfc_4180);
     tcase_add_test(c, csv_stops_at_a_fault);
+    tcase_add_test(c, a_quoted_field_has_no_more_room_and_nothing_follows_a_fault);
+    tcase_add_test(c, a_damaged_family_is_told_and_a_sound_one_read);
     suite_add_tcase(suite, c);
     return run_suite(suite);
 }

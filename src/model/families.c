@@ -2,7 +2,6 @@
 #include "families.h"
 
 #include <math.h>
-#include <stdint.h>
 #include <stdlib.h>
 #include <string.h>
 
@@ -34,8 +33,7 @@ static int compare(const void *a, const void *b)
 bool sct_sections_sort(sct_section sections[], int n)
 {
     if (n < 2) return true;
-    if ((size_t)n > SIZE_MAX / sizeof(ranked)) return false;
-    ranked *list = malloc((size_t)n * sizeof *list);
+    ranked *list = calloc((size_t)n, sizeof *list);
     if (list == NULL) return false;
     for (int i = 0; i < n; i++) list[i] = (ranked){sections[i], i};
     qsort(list, (size_t)n, sizeof *list, compare);
@@ -105,32 +103,34 @@ static bool read_section(const sct_csv *csv, const int column[N_COLUMNS], sct_se
            read_optional(csv, column[TORSION], 1e12, &section->J);
 }
 
+/* 0: damaged. */
 static int count_records(sct_csv *csv, const sct_shipped_family *shipped)
 {
     int n = 0;
     sct_csv_start(csv, shipped->text, shipped->size);
     while (sct_csv_next(csv)) n++;
-    return n;
+    return csv->fault == NULL ? n : 0;
 }
 
-sct_status sct_family_load(int index, sct_arena *arena, sct_family *family)
+sct_status sct_family_load(const sct_shipped_family *shipped, sct_arena *arena, sct_family *family)
 {
-    const sct_shipped_family *shipped = &sct_shipped_families[index];
     sct_csv csv;
     int column[N_COLUMNS];
     const int n = count_records(&csv, shipped) - 1; /* the first holds the headings */
     sct_csv_start(&csv, shipped->text, shipped->size);
-    if (n < 1 || !sct_csv_next(&csv) || !find_columns(&csv, column)) return SCT_SELF_CHECK;
+    if (n < 1) return SCT_SELF_CHECK;
+    sct_csv_next(&csv);
+    if (!find_columns(&csv, column)) return SCT_SELF_CHECK;
     *family = (sct_family){.name = shipped->name, .n = n};
     family->sections = sct_arena_array(arena, (size_t)n, sizeof *family->sections);
     if (family->sections == NULL) return SCT_NO_MEMORY;
     for (int i = 0; i < n; i++) {
         sct_section *section = &family->sections[i];
-        if (!sct_csv_next(&csv) || !read_section(&csv, column, section)) return SCT_SELF_CHECK;
+        sct_csv_next(&csv);
+        if (!read_section(&csv, column, section)) return SCT_SELF_CHECK;
         const char *name = csv.field[column[NAME]];
         section->name = sct_arena_string(arena, name, strlen(name));
         if (section->name == NULL) return SCT_NO_MEMORY;
     }
-    if (csv.fault != NULL) return SCT_SELF_CHECK;
     return sct_sections_sort(family->sections, n) ? SCT_OK : SCT_NO_MEMORY;
 }

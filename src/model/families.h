@@ -25,7 +25,7 @@ int sct_family_find(const char *name);
  * a_mm, the depth; where there are such columns, Wel_y_mm3 and Wel_z_mm3, the section moduli, and It_mm4 (or
  * It_thin_mm4), the torsion constant. SCT_OK, SCT_NO_MEMORY; SCT_SELF_CHECK: the built-in text is damaged.
  */
-sct_status sct_family_load(int index, sct_arena *arena, sct_family *family);
+sct_status sct_family_load(const sct_shipped_family *shipped, sct_arena *arena, sct_family *family);
 
 /** Sorts sections by area, lightest first; equal ones stay in their order. False when out of memory. */
 bool sct_sections_sort(sct_section sections[], int n);

@@ -147,7 +147,7 @@ int sct_reader_family(sct_reader *r, const sct_node *node)
         return -1;
     }
     sct_family family;
-    const sct_status status = sct_family_load(shipped, r->f.arena, &family);
+    const sct_status status = sct_family_load(&sct_shipped_families[shipped], r->f.arena, &family);
     if (status != SCT_OK) {
         r->f.failure = status;
         return -1;
