@@ -63,7 +63,7 @@ static bool find_columns(const sct_csv *csv, int column[N_COLUMNS])
         column[i] = -1;
         for (int k = 0; k < 3 && column[i] < 0 && HEADINGS[i][k] != NULL; k++)
             column[i] = sct_csv_column(csv, HEADINGS[i][k]);
-        if (column[i] < 0 && i < N_NEEDED) return false;
+        if (i < N_NEEDED && column[i] < 0) return false;
     }
     return true;
 }
