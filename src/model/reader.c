@@ -200,7 +200,7 @@ static void read_material(sct_reader *r, const sct_node *node, sct_material *m)
     sct_fields_value(&r->f, found[K_YIELD], &YIELD, &m->yield);
     sct_fields_value(&r->f, found[K_EXPANSION], &EXPANSION, &m->expansion);
     sct_read_allowable(r, found[K_ALLOWABLE], m->allowable);
-    if (sct_fields_value(&r->f, found[K_G], &G, &m->G) && m->G > m->E / 2)
+    if (sct_fields_value(&r->f, found[K_G], &G, &m->G) && m->E > 0 && m->G > m->E / 2)
         sct_fields_remark(&r->f, SCT_WARNING, found[K_G],
                           "G is %.3g times E; expected at most E/2, as of metals and wood", m->G / m->E);
 }
