@@ -202,6 +202,12 @@ SCT_API const char *sct_outcome_text(sct_outcome outcome);
     X(SCT_CHECK_BUCKLING_OUT, "buckling out of plane")                                                                 \
     X(SCT_CHECK_SLENDERNESS, "slenderness")                                                                            \
     X(SCT_CHECK_DEFLECTION, "deflection")                                                                              \
+    X(SCT_CHECK_BENT_TENSION, "tension with bending")                                                                  \
+    X(SCT_CHECK_BENT_COMPRESSION, "compression with bending")                                                          \
+    X(SCT_CHECK_BENT_BUCKLING, "buckling with bending")                                                                \
+    X(SCT_CHECK_BOW, "bow")                                                                                            \
+    X(SCT_CHECK_CRITICAL, "critical load")                                                                             \
+    X(SCT_CHECK_FREQUENCY, "frequency")                                                                                \
     X(SCT_CHECK_SMALLEST, "smallest size")                                                                             \
     X(SCT_CHECK_LARGEST, "largest size")
 #define SCT_CHECK_NAME(name, text) name,
@@ -217,6 +223,7 @@ typedef struct sct_group_result {
     int n_members;
     double A;            /* [m2] */
     double I[2];         /* [m4] about the axis of in-plane and of out-of-plane bending; NAN when not stated */
+    double W[2], J;      /* [m3], [m4]; NAN when not stated */
     double depth;        /* [m] for drawing; from I and A where the section does not say; 0 when unknown */
     double length;       /* [m] of all its members */
     double unit_mass;    /* [kg/m] */
@@ -239,7 +246,28 @@ typedef struct sct_member_result {
     double N_max, N_min;    /* [N] over all combinations */
     int N_max_in, N_min_in; /* their combinations */
     bool compressed;        /* in compression in some combination in which strength is checked */
+    /* members that carry moments: beams, and bars loaded between their joints */
+    bool is_bent;
+    double x;            /* [m] from its start, where the governing check holds */
+    double M[2];         /* [N m] there: bending in plane, out of plane */
+    double M_most[2];    /* [N m] of largest size over all combinations and along the member */
+    double M_most_at[2]; /* [m] */
+    int M_most_in[2];    /* their combinations */
+    double bow[2];       /* [m] largest distance from its chord over all combinations, along local axes 1, 2 */
+    int bow_in[2];       /* their combinations */
+    double axes[3][3];   /* local axes: along, bending in plane, out of plane */
+    bool hinged[2][3];   /* ends: bending in plane, out of plane, twist; true: pinned */
+    bool sprung[2][3];   /* ends held by springs */
 } sct_member_result;
+
+/* The inside of a member at one place, in its local axes. M > 0 in plane bends it towards +axis 1 (tension on the side
+ * of -axis 1), out of plane towards +axis 2; V = dM/dx. */
+typedef struct sct_station {
+    double x;                /* [m] from its start */
+    double N, V[2], M[2], T; /* [N], [N m] */
+    double bow[2];           /* [m] from its chord, along local axes 1 and 2 */
+    double d[3];             /* [m] displacement, in the model's axes */
+} sct_station;
 
 typedef struct sct_joint_result {
     const char *name;
@@ -252,12 +280,27 @@ typedef struct sct_joint_result {
 typedef struct sct_deflection_result {
     int limit; /* index in the model's list */
     int joint, combination;
+    int from; /* relative to this joint; -1: absolute */
     double direction[3];
     double u;       /* [m] along the direction */
     double at_most; /* [m] */
     double utilisation;
     const char *label; /* "L/300" or "20 mm", as written */
 } sct_deflection_result;
+
+/* One limit on the bow of one member: its worst combination. A piece of a run counts against the run's chord where the
+ * limit names the run. */
+typedef struct sct_bow_result {
+    int limit; /* index in the model's list */
+    int member, combination;
+    int axis;       /* 0 in plane, 1 out of plane */
+    double x;       /* [m] from the member's start */
+    double v;       /* [m] along the local axis */
+    double at_most; /* [m] */
+    double utilisation;
+    const char *label; /* "L/300" or "20 mm", as written */
+    const char *run;   /* its name, or NULL */
+} sct_bow_result;
 
 /* The price of a limit that holds the mass up, at the continuous optimum: what the next small relief would save. */
 typedef struct sct_price {
@@ -309,6 +352,11 @@ typedef struct sct_result {
     double *turn;        /* [rad] rotations; 0 where no member's end takes part */
     double *moment;      /* [N m] that supports give */
     double *moment_load; /* [N m] as `load` */
+    bool has_bent;       /* some member carries moments */
+    double *ends; /* n_combinations x n_members x 2 x 6: N, V in plane, V out of plane, M in plane, M out of plane, T
+                   * just inside both ends of a member */
+    int n_bows;
+    sct_bow_result *bows;
 
     int n_deflections;
     sct_deflection_result *deflections;
@@ -350,6 +398,15 @@ SCT_API sct_status sct_check(const sct_model *model, const sct_settings *setting
  */
 SCT_API sct_status sct_size(const sct_model *model, const sct_settings *settings, sct_result **result,
                             sct_issues *issues);
+/**
+ * The diagrams of a member in a combination: its ends, every place where a load begins, ends or acts (both sides of a
+ * jump), every extreme of M, V and the bow, and `between` places evenly between neighbours; in order of x. For free().
+ *
+ * SCT_OK, SCT_NO_MEMORY.
+ */
+SCT_API sct_status sct_result_stations(const sct_result *result, int combination, int member, int between,
+                                       sct_station **stations, int *n);
+
 SCT_API void sct_result_free(sct_result *result);
 
 /**

@@ -222,6 +222,7 @@ static const double TIE = 16 * 0x1p-52;
 typedef struct search {
     const sct_beam_line *line;
     bool is_magnitude;   /* |value| counts */
+    bool leaves_ends;    /* the ends of the member do not count */
     double top;          /* the largest so far; NAN stays */
     double top_at_place; /* at the place kept, less than top by rounding at most */
     sct_beam_extreme best;
@@ -261,15 +262,16 @@ static void search_piece(search *f, int k, int degree, const double p[])
     for (int i = 0; i <= degree; ++i) terms += fabs(p[i]);
     sct_polynomial_derivative(degree, p, dp);
     const int n = sct_polynomial_roots(degree - 1, dp, roots);
-    consider(f, k, degree, p, 0, false, TIE * terms);
+    if (k > 0 || !f->leaves_ends) consider(f, k, degree, p, 0, false, TIE * terms);
     for (int i = 0; i < n; ++i) consider(f, k, degree, p, roots[i], true, TIE * terms);
-    consider(f, k, degree, p, 1, false, TIE * terms);
+    if (k + 1 < f->line->n || !f->leaves_ends) consider(f, k, degree, p, 1, false, TIE * terms);
 }
 
-sct_beam_extreme sct_beam_largest(const sct_beam_line *line, const sct_beam_state *state,
-                                  const double c[SCT_BEAM_QUANTITIES])
+static sct_beam_extreme largest(const sct_beam_line *line, const sct_beam_state *state,
+                                const double c[SCT_BEAM_QUANTITIES], bool leaves_ends)
 {
     search f = search_new(line, false);
+    f.leaves_ends = leaves_ends;
     for (int k = 0; k < line->n; ++k) {
         double sum[4] = {0};
         for (int what = 0; what < SCT_BEAM_QUANTITIES; ++what) {
@@ -280,7 +282,20 @@ sct_beam_extreme sct_beam_largest(const sct_beam_line *line, const sct_beam_stat
         }
         search_piece(&f, k, 3, sum);
     }
+    if (!(f.top > -INFINITY) && !isnan(f.top)) f.best.value = -INFINITY;
     return f.best;
+}
+
+sct_beam_extreme sct_beam_largest(const sct_beam_line *line, const sct_beam_state *state,
+                                  const double c[SCT_BEAM_QUANTITIES])
+{
+    return largest(line, state, c, false);
+}
+
+sct_beam_extreme sct_beam_largest_inside(const sct_beam_line *line, const sct_beam_state *state,
+                                         const double c[SCT_BEAM_QUANTITIES])
+{
+    return largest(line, state, c, true);
 }
 
 sct_beam_extreme sct_beam_largest_bow(const sct_beam_line *line, const sct_beam_state *state,

@@ -83,6 +83,11 @@ typedef struct sct_beam_extreme {
 sct_beam_extreme sct_beam_largest(const sct_beam_line *line, const sct_beam_state *state,
                                   const double c[SCT_BEAM_QUANTITIES]);
 
+/** The same over 0 < x < L: the largest of the places of slope 0 and of the breaks between the ends; value -INFINITY
+ * where there is none. */
+sct_beam_extreme sct_beam_largest_inside(const sct_beam_line *line, const sct_beam_state *state,
+                                         const double c[SCT_BEAM_QUANTITIES]);
+
 /** The v(x) of largest |v|, with its sign. */
 sct_beam_extreme sct_beam_largest_bow(const sct_beam_line *line, const sct_beam_state *state,
                                       const sct_beam_bending *bending);
