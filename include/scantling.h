@@ -223,13 +223,13 @@ typedef struct sct_group_result {
     int n_members;
     double A;            /* [m2] */
     double I[2];         /* [m4] about the axis of in-plane and of out-of-plane bending; NAN when not stated */
-    double W[2], J;      /* [m3], [m4]; NAN when not stated */
     double depth;        /* [m] for drawing; from I and A where the section does not say; 0 when unknown */
     double length;       /* [m] of all its members */
     double unit_mass;    /* [kg/m] */
     double mass;         /* [kg] */
     double A_continuous; /* [m2] where the descent ended, before sections were picked; NAN without a descent */
     int worst_member;    /* member of the largest utilisation */
+    double W[2], J;      /* [m3], [m4]; NAN when not stated */
 } sct_group_result;
 
 typedef struct sct_member_result {
@@ -280,12 +280,12 @@ typedef struct sct_joint_result {
 typedef struct sct_deflection_result {
     int limit; /* index in the model's list */
     int joint, combination;
-    int from; /* relative to this joint; -1: absolute */
     double direction[3];
     double u;       /* [m] along the direction */
     double at_most; /* [m] */
     double utilisation;
     const char *label; /* "L/300" or "20 mm", as written */
+    int from;          /* relative to this joint; -1: absolute */
 } sct_deflection_result;
 
 /* One limit on the bow of one member: its worst combination. A piece of a run counts against the run's chord where the

@@ -27,14 +27,16 @@ static inline sct_result *synthetic_result(synthetic *s)
     s->joints[0] = (sct_joint_result){"A", {0, 0, 0}, 2, {{1, 0, 0}, {0, 1, 0}}};
     s->joints[1] = (sct_joint_result){"B", {6, 0, 0}, 1, {{0, 1, 0}}};
     s->joints[2] = (sct_joint_result){"C", {3, 1.5, 0}, 0, {{0}}};
-    s->groups[0] = (sct_group_result){"rafter", "S355H", "CHS 60.3x4", false, 1,    707.5e-6, {2.8e-7, 2.8e-7},
-                                      0.0603,   3.25,    5.554,        18.05, 6e-4, 0};
-    s->groups[1] = (sct_group_result){"strut", "S355H", NULL, true, 1, 0.001, {NAN, NAN}, 0, 3.0, 7.85, 23.55, NAN, 1};
+    s->groups[0] =
+        (sct_group_result){"rafter", "S355H", "CHS 60.3x4", false, 1, 707.5e-6,        {2.8e-7, 2.8e-7}, 0.0603,
+                           3.25,     5.554,   18.05,        6e-4,  0, .W = {NAN, NAN}, .J = NAN};
+    s->groups[1] = (sct_group_result){"strut", "S355H", NULL,  true, 1, 0.001,           {NAN, NAN}, 0,
+                                      3.0,     7.85,    23.55, NAN,  1, .W = {NAN, NAN}, .J = NAN};
     s->members[0] = (sct_member_result){
-        "R1",   0,       0,        2, 3.25, {3.25, 1.5}, {163.25, 75.1}, 18.05, SCT_CHECK_BUCKLING_IN, 1, -45.26e3,
-        0.9301, 12.04e3, -45.26e3, 0, 1,    true};
+        "R1",   0,       0,        2, 3.25, {3.25, 1.5}, {163.25, 75.1},  18.05, SCT_CHECK_BUCKLING_IN, 1, -45.26e3,
+        0.9301, 12.04e3, -45.26e3, 0, 1,    true,        .is_bent = false};
     s->members[1] = (sct_member_result){"R2", 1,   2,    1,   3.0, {3.0, 3.0}, {NAN, NAN}, 23.55, SCT_CHECK_TENSION,
-                                        0,    8e3, 0.25, 8e3, 1e3, 0,          1,          false};
+                                        0,    8e3, 0.25, 8e3, 1e3, 0,          1,          false, .is_bent = false};
     s->combinations[0] = "S1";
     s->combinations[1] = "W";
     s->is_for_strength[0] = s->is_for_strength[1] = true;
@@ -43,7 +45,7 @@ static inline sct_result *synthetic_result(synthetic *s)
     s->u[7] = -0.0183, s->u[16] = 0.001;
     s->reaction[0] = -3e3, s->reaction[1] = 20e3, s->reaction[4] = 20e3, s->reaction[9] = 0.01, s->reaction[10] = -5e3;
     s->load[7] = -40e3;
-    s->deflections[0] = (sct_deflection_result){0, 2, 0, {0, 1, 0}, -0.0183, 0.02, 0.915, "L/300"};
+    s->deflections[0] = (sct_deflection_result){0, 2, 0, {0, 1, 0}, -0.0183, 0.02, 0.915, "L/300", .from = -1};
     s->starts[0] = (sct_start_result){41.60, 0, 1e-9, 9, 8, SCT_OPTIMUM};
     s->starts[1] = (sct_start_result){41.6000001, 0, 1e-9, 9, 8, SCT_OPTIMUM};
     s->starts[2] = (sct_start_result){45.0, 0.1, 1e-2, 100, 99, SCT_STALLED};
