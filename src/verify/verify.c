@@ -22,8 +22,10 @@ typedef struct verifier {
     sct_issues *issues;
     sct_statics s;
     double *A;       /* n_groups */
+    double *L;       /* n_groups: of all its members, [m] */
     double *N;       /* n_combinations x n_members */
     double *N_open;  /* n_combinations: what is left open of any force, [N] */
+    double *N_none;  /* n_combinations: forces below about this are given as 0, [N] */
     double *u;       /* n_combinations x n_joints x 3 */
     double *u_open;  /* n_combinations [m] */
     double accuracy; /* relative, of the first analysis and of this one */
@@ -83,6 +85,7 @@ static void combine_all(verifier *v)
         double *N = v->N + (size_t)c * members, *u = v->u + (size_t)c * n3, shaky_N = 0.0, shaky_u = 0.0;
         double N_scale = 0.0, u_scale = 0.0; /* of the cases: what is relative to them stays when they cancel */
         combine(v, c, members, v->s.N, N);
+        v->N_none[c] = NO_FORCE * largest(members, N);
         combine(v, c, n3, v->s.u, u);
         for (int k = 0; k < v->m->n_cases; k++) {
             const double factor = fabs(v->m->combinations[c].factor[k]);
@@ -104,19 +107,19 @@ static void compare_groups(verifier *v)
 {
     const sct_result *r = v->r;
     double mass = 0.0;
+    for (int e = 0; e < r->n_members; e++) v->L[v->m->members[e].group] += length(v->m, e);
     for (int g = 0; g < r->n_groups; g++) {
         const sct_group_result *group = &r->groups[g];
-        double I[2], A, all = 0.0;
+        double I[2], A;
         sct_verify_size(v->m, g, &A, I);
-        for (int e = 0; e < r->n_members; e++) all += v->m->members[e].group == g ? length(v->m, e) : 0.0;
         const double unit_mass = v->m->materials[v->m->groups[g].material].density * A;
         compare(v, "area", group->name, NULL, group->A, A, 0.0);
         for (int axis = 0; axis < 2; axis++) {
             if (isnan(I[axis]) && isnan(group->I[axis])) continue; /* not stated */
             compare(v, "second moment of area", group->name, NULL, group->I[axis], I[axis], 0.0);
         }
-        compare(v, "mass", group->name, NULL, group->mass, unit_mass * all, 0.0);
-        mass += unit_mass * all;
+        compare(v, "mass", group->name, NULL, group->mass, unit_mass * v->L[g], 0.0);
+        mass += unit_mass * v->L[g];
     }
     compare(v, "mass", NULL, NULL, r->mass, mass, 0.0);
 }
@@ -125,9 +128,8 @@ static void compare_forces(verifier *v, int c)
 {
     const sct_result *r = v->r;
     const double *N = v->N + (size_t)c * (size_t)r->n_members, *said = r->N + (size_t)c * (size_t)r->n_members;
-    const double none = 1.5 * NO_FORCE * largest((size_t)r->n_members, N);
     for (int e = 0; e < r->n_members; e++) {
-        const double open = v->N_open[c] + (said[e] == 0.0 ? none : 0.0);
+        const double open = v->N_open[c] + (said[e] == 0.0 ? 1.5 * v->N_none[c] : 0.0);
         compare(v, "force", r->members[e].name, r->combinations[c], said[e], N[e], open);
     }
 }
@@ -173,11 +175,10 @@ static int is_compressed(const verifier *v, int e)
 {
     int answer = 0;
     for (int c = 0; c < v->m->n_combinations; c++) {
-        const double *N = v->N + (size_t)c * (size_t)v->m->n_members;
-        const double none = NO_FORCE * largest((size_t)v->m->n_members, N);
+        const double N = v->N[(size_t)c * (size_t)v->m->n_members + (size_t)e], none = v->N_none[c];
         if (v->m->combinations[c].basis != SCT_ALLOWABLE) continue;
-        if (N[e] < -1.5 * none - v->N_open[c]) return 1;
-        if (N[e] < -0.5 * none + v->N_open[c] && N[e] != 0.0) answer = -1;
+        if (N < -1.5 * none - v->N_open[c]) return 1;
+        if (N < -0.5 * none + v->N_open[c] && N != 0.0) answer = -1;
     }
     return answer;
 }
@@ -190,8 +191,7 @@ static double compare_member(verifier *v, int e)
     const double L = length(v->m, e);
     double most = 0.0, open = 0.0, N_max = -INFINITY, N_min = INFINITY, N_open = 0.0;
     for (int c = 0; c < r->n_combinations; c++) {
-        const double *all = v->N + (size_t)c * (size_t)r->n_members, N = all[e];
-        const double none = 1.5 * NO_FORCE * largest((size_t)r->n_members, all);
+        const double N = v->N[(size_t)c * (size_t)r->n_members + (size_t)e], none = 1.5 * v->N_none[c];
         N_max = fmax(N_max, N);
         N_min = fmin(N_min, N);
         N_open = fmax(N_open, v->N_open[c] + none);
@@ -291,11 +291,13 @@ static sct_status run(verifier *v, sct_arena *arena)
     const size_t members = (size_t)v->m->n_members, n3 = 3 * (size_t)v->m->n_joints, n = (size_t)v->m->n_combinations;
     double *R = sct_arena_array(arena, n3, sizeof *R);
     v->A = sct_arena_array(arena, (size_t)v->m->n_groups, sizeof *v->A);
+    v->L = sct_arena_array(arena, (size_t)v->m->n_groups, sizeof *v->L);
     v->N = sct_arena_array(arena, n * members, sizeof *v->N);
     v->N_open = sct_arena_array(arena, n, sizeof *v->N_open);
+    v->N_none = sct_arena_array(arena, n, sizeof *v->N_none);
     v->u = sct_arena_array(arena, n * n3, sizeof *v->u);
     v->u_open = sct_arena_array(arena, n, sizeof *v->u_open);
-    if (!R || !v->A || !v->N || !v->N_open || !v->u || !v->u_open) return SCT_NO_MEMORY;
+    if (!R || !v->A || !v->L || !v->N || !v->N_open || !v->N_none || !v->u || !v->u_open) return SCT_NO_MEMORY;
     for (int g = 0; g < v->m->n_groups; g++) {
         double I[2];
         sct_verify_size(v->m, g, &v->A[g], I);
