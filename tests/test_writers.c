@@ -475,6 +475,51 @@ START_TEST(a_summary_of_eight_groups_fits_sixty_lines)
 }
 END_TEST
 
+START_TEST(a_group_without_members_and_a_result_without_combinations_leave_cells_empty)
+{
+    sct_result *r = synthetic_result(&made);
+    made.groups[1].n_members = 0;
+    made.groups[1].worst_member = -1;
+    made.deflections[0].label = NULL;
+    r->n_combinations = 0;
+    r->n_deflections = 0;
+    r->accuracy.equilibrium = NAN;
+    char *text = summary(r, false), *csv = schedule(r);
+    ck_assert_ptr_nonnull(strstr(text, "\n  strut   1000 mm2 held        0     3.000  7.85     23.6 "));
+    ck_assert_ptr_null(strstr(text, "Accuracy"));
+    ck_assert_ptr_nonnull(strstr(csv, "section,,,,,CHS 60.3x4,707.5,"));
+    ck_assert_ptr_null(strstr(csv, "section,,,,,,1000,"));
+    free(text);
+    free(csv);
+}
+END_TEST
+
+START_TEST(a_slanted_deflection_shows_its_direction_and_a_failing_group_fails)
+{
+    sct_result *r = synthetic_result(&made);
+    made.deflections[0].label = NULL;
+    memcpy(made.deflections[0].direction, (double[3]){0.6, -0.8, 0.0}, sizeof made.deflections[0].direction);
+    made.members[0].utilisation = 1.2;
+    char *text = summary(r, false);
+    ck_assert_ptr_nonnull(strstr(text, "  C      (0.6, -0.8) "));
+    ck_assert_ptr_nonnull(strstr(text, "FAILS buckling in plane"));
+    free(text);
+}
+END_TEST
+
+START_TEST(names_with_blanks_at_their_ends_are_quoted_and_formulas_guarded)
+{
+    static const char *const NAMES[][2] = {{" x", "\" x\""},      {"x ", "\"x \""}, {"x y", "x y"}, {"'x", "''x"},
+                                           {"  =x", "\"'  =x\""}, {"-x", "'-x"},    {"", ""},       {"a;b", "\"a;b\""}};
+    for (size_t i = 0; i < sizeof NAMES / sizeof *NAMES; i++) {
+        char expected[80], *csv = schedule(with_name(NAMES[i][0]));
+        snprintf(expected, sizeof expected, "\r\nmember,%s,", NAMES[i][1]);
+        ck_assert_msg(strstr(csv, expected) != NULL, "%s in\n%s", expected, csv);
+        free(csv);
+    }
+}
+END_TEST
+
 int main(void)
 {
     Suite *suite = suite_create("writers");
@@ -496,6 +541,9 @@ int main(void)
     tcase_add_test(t, summary_says_fails_without_colour);
     tcase_add_test(t, colour_changes_nothing_but_colour);
     tcase_add_loop_test(t, biting_names_reach_the_terminal_escaped, 0, N_BITING);
+    tcase_add_test(t, a_group_without_members_and_a_result_without_combinations_leave_cells_empty);
+    tcase_add_test(t, a_slanted_deflection_shows_its_direction_and_a_failing_group_fails);
+    tcase_add_test(t, names_with_blanks_at_their_ends_are_quoted_and_formulas_guarded);
     tcase_add_test(t, a_summary_of_eight_groups_fits_sixty_lines);
     suite_add_tcase(suite, t);
     return run_suite(suite);
