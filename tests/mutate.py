@@ -113,7 +113,8 @@ class Copy:
             sys.exit("mutate: the sources do not build")
         here, programs = os.path.join(self.root, folder), {}
         for name in sorted(os.listdir(os.path.join(self.root, "tests"))):
-            if name.startswith("test_") and name.endswith(".c") and name not in ("test_faults.c", "test_memory.c"):  # which look at no number
+            source = os.path.join(self.root, "tests", name)
+            if name.startswith("test_") and name.endswith(".c") and "__wrap_" not in open(source).read(): # not by the linker
                 out = os.path.join(here, name[:-2])
                 subprocess.run(["cc", "-std=c11", "-O1", "-DNGPL", "-Iinclude", "-Isrc", "-Itests", "-I/usr/include/suitesparse",
                                 "-I/usr/include/cjson", "-o", out, "tests/" + name, "-L" + folder, "-Wl,-rpath," + here]
