@@ -91,7 +91,7 @@ END_TEST
 START_TEST(words_that_do_not_fit_end_in_an_ellipsis)
 {
     char out[64];
-    sct_words_fit("abcdef", 4.2, 1.0, false, out, sizeof out);
+    sct_words_fit("abcdef", 3.7, 1.0, false, out, sizeof out);
     ck_assert_str_eq(out, "abcd\xE2\x80\xA6");
     sct_words_fit("abcdef", 0.1, 1.0, true, out, sizeof out);
     ck_assert_str_eq(out, "\xE2\x80\xA6");
