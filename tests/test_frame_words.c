@@ -5,6 +5,7 @@
 
 #include "base/text.h"
 #include "model/axes.h"
+#include "model/rewrite.h"
 #include "support.h"
 
 /* Written with ' for ": a plane frame of one storey. */
@@ -368,6 +369,63 @@ START_TEST(bare_numbers_of_derived_kinds_follow_length_force_and_temperature)
 }
 END_TEST
 
+START_TEST(the_sized_model_keeps_runs_as_they_are_written)
+{
+    sct_model *m = read_edited(PLANE, "'area': '4000 mm2'", "'area': {'at_least': '100 mm2', 'at_most': '9000 mm2'}");
+    const sct_size_choice choice[4] = {[0] = {.A = 2e-3}, [1] = {.section = "IPE 200"}, [2] = {.section = "H"}};
+    sct_text text = {0};
+    ck_assert_int_eq(sct_model_rewrite(m, choice, &text), SCT_OK);
+    ck_assert_ptr_nonnull(strstr(text.data, "\"through\": [\"C\", \"M\", \"D\"]"));
+    ck_assert_ptr_nonnull(strstr(text.data, "\"shape\": {\"kind\": \"square tube\", \"width_to_wall\": 20}"));
+    sct_model *again;
+    ck_assert_int_eq(sct_reader_parse("again", text.data, text.size, &again, NULL), SCT_OK);
+    ck_assert(again->groups[0].kind == SCT_HELD_AREA && again->groups[0].A_held == 2e-3);
+    ck_assert(again->groups[0].W[0].c == m->groups[0].W[0].c && again->groups[3].J.c == m->groups[3].J.c);
+    ck_assert_int_eq(again->groups[1].kind, SCT_HELD_SECTION);
+    ck_assert(again->n_members == m->n_members && again->n_runs == 1 && again->runs[0].n == 2);
+    for (int i = 0; i < m->n_members; i++) {
+        ck_assert_str_eq(again->members[i].name, m->members[i].name);
+        ck_assert_mem_eq(again->members[i].end, m->members[i].end, sizeof m->members[i].end);
+    }
+    sct_model_free(again);
+    sct_model_free(m);
+    sct_text_free(&text);
+}
+END_TEST
+
+typedef struct remark {
+    const char *from, *to, *pointer, *words;
+} remark;
+static const remark REMARKS[] = {
+    {"'in_plane': '200 kN m/rad'", "'in_plane': 'pinned'", "/joints/B",
+     "the rotation is held or sprung, but every member is pinned here: it holds nothing; a member that shall feel it "
+     "needs \"ends\""},
+    {"'J': '4e4 mm4'", "'J': '4e4 mm4', 'depth': '200 mm'", "/families/own/sections/H/W",
+     "W = 6e-05 m3 in plane is more than 2 I / depth = 3e-05 m3, the most that a section of this second moment and "
+     "depth can have"},
+    {"'G': '81 GPa'", "'G': '106 GPa'", "/materials/S/G",
+     "G is 0.505 times E; expected at most E/2, as of metals and wood"},
+    {"'joints': {'D'", "'self_weight': true, 'joints': {'D'", "/cases/N/notional",
+     "the self-weight of case \"G\" is not known before the sizes are: these loads are a part of its other loads only"},
+};
+
+START_TEST(what_is_likely_a_slip_is_warned_of)
+{
+    const remark *x = &REMARKS[_i];
+    sct_model *m;
+    sct_issues *issues = sct_issues_new();
+    char *text = edited(PLANE, x->from, x->to);
+    ck_assert_int_eq(sct_reader_parse("f", text, strlen(text), &m, issues), SCT_OK);
+    ck_assert_int_eq(sct_issues_count(issues), 1);
+    ck_assert_int_eq(sct_issues_get(issues, 0)->severity, SCT_WARNING);
+    ck_assert_str_eq(sct_issues_get(issues, 0)->pointer, x->pointer);
+    ck_assert_str_eq(sct_issues_get(issues, 0)->message, x->words);
+    sct_model_free(m);
+    sct_issues_free(issues);
+    free(text);
+}
+END_TEST
+
 /* Until the analysis carries them; the error stands at the first thing that makes the model a frame. */
 START_TEST(frames_are_refused_where_they_are_said)
 {
@@ -440,6 +498,8 @@ int main(void)
     tcase_add_test(c, movements_between_joints_are_limited);
     tcase_add_test(c, bow_sway_and_frequency_are_limited);
     tcase_add_test(c, bare_numbers_of_derived_kinds_follow_length_force_and_temperature);
+    tcase_add_test(c, the_sized_model_keeps_runs_as_they_are_written);
+    tcase_add_loop_test(c, what_is_likely_a_slip_is_warned_of, 0, (int)(sizeof REMARKS / sizeof *REMARKS));
     tcase_add_test(c, frames_are_refused_where_they_are_said);
     tcase_add_loop_test(c, every_value_of_another_kind_is_met, 0, 2);
     suite_add_tcase(suite, c);

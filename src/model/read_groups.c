@@ -243,7 +243,8 @@ static void read_stability(sct_reader *r, const sct_node *node, const sct_node *
     const bool has_area = found[K_AREA] != NULL;
     if (has_area && found[K_SECOND_MOMENT] == NULL && found[K_SHAPE] == NULL &&
         (g->buckling != SCT_BUCKLING_NONE || is_slender))
-        sct_fields_error(&r->f, node, "no \"second_moment\"; %s needs it: expected {\"c\": ...} for I = c A^2",
+        sct_fields_error(&r->f, node,
+                         "no \"second_moment\"; %s needs it: expected {\"c\": ...} for I = c A^2, or a \"shape\"",
                          g->buckling != SCT_BUCKLING_NONE ? "the buckling rule" : "the slenderness limit");
 }
 

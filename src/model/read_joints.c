@@ -4,6 +4,7 @@
 
 #include "reader.h"
 
+static const char ROTATION[] = "rotation";
 static const double APART = 1e-6; /* sine of the least angle between a direction and those before it */
 
 double sct_length_apart(const double d[3], const double basis[][3], int n, double apart[3])
@@ -42,11 +43,11 @@ static bool hold(held_set *set, const double d[3])
 /* Is the text "rotation" in a plane model, "rotation x", "rotation y" or "rotation z" in space? */
 static bool turn_axis(int dimensions, const char *text, double axis[3])
 {
-    static const char WORD[] = "rotation", AXES[] = "xyz";
-    const size_t length = sizeof WORD - 1;
+    static const char AXES[] = "xyz";
+    const size_t length = sizeof ROTATION - 1;
     memset(axis, 0, 3 * sizeof *axis);
     axis[2] = 1.0;
-    if (strncmp(text, WORD, length) != 0) return false;
+    if (strncmp(text, ROTATION, length) != 0) return false;
     if (text[length] == '\0') return dimensions != 3;
     if (dimensions == 2 || text[length] != ' ' || text[length + 1] == '\0' || text[length + 2] != '\0') return false;
     const char *at = strchr(AXES, text[length + 1]);
@@ -78,14 +79,13 @@ static bool read_held(sct_reader *r, const sct_node *node, double d[3], bool *is
 
 static bool too_many_held(sct_reader *r, const sct_node *node)
 {
-    double axis[3];
-    int n[2] = {0, 0};
+    int n = 0;
     for (const sct_node *c = sct_node_first(node); c != NULL; c = sct_node_next(c)) {
         const char *text = sct_node_string(c);
-        n[text != NULL && turn_axis(r->f.dimensions, text, axis)]++;
+        n += text == NULL || strncmp(text, ROTATION, sizeof ROTATION - 1) != 0;
     }
-    if (r->f.dimensions == 0 || n[0] <= r->f.dimensions) return false;
-    sct_fields_error(&r->f, node, "found %d directions; at most %d can be held", n[0], r->f.dimensions);
+    if (r->f.dimensions == 0 || n <= r->f.dimensions) return false;
+    sct_fields_error(&r->f, node, "found %d directions; at most %d can be held", n, r->f.dimensions);
     return true;
 }
 

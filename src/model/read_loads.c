@@ -38,8 +38,9 @@ static bool station_at(sct_reader *r, const station *at, double otherwise, doubl
     *s = at->node == NULL ? otherwise : at->is_part ? at->s * L : at->s;
     if (*s > L * (1 + ROUNDED)) {
         const sct_unit *unit = r->f.unit[SCT_LENGTH];
-        sct_fields_error(&r->f, at->node, "lies beyond the end of \"%s\", which is %.6g %s long", sct_show(name).text,
-                         sct_unit_from_SI(unit, L), unit->name);
+        sct_fields_error(&r->f, at->node, "found %.10g %s; expected a distance on \"%s\", which is %.10g %s long",
+                         sct_unit_from_SI(unit, *s), unit->name, sct_show(name).text, sct_unit_from_SI(unit, L),
+                         unit->name);
         return false;
     }
     *s = fmin(*s, L);

@@ -62,7 +62,7 @@ static void read_fixity(sct_reader *r, const sct_node *node, sct_fixity *fixity,
     const char *text = sct_node_string(node);
     int word = SCT_FIXED;
     if (text != NULL && strspn(text, "0123456789+-.") == 0) {
-        if (sct_fields_word(&r->f, node, "an end, or a stiffness such as \"200 kN m/rad\"", FIXITIES, 2, &word))
+        if (sct_fields_word(&r->f, node, "a kind of end (or a stiffness such as \"200 kN m/rad\")", FIXITIES, 2, &word))
             *fixity = (sct_fixity)word;
     } else if (sct_fields_value(&r->f, node, &STIFFNESS, stiffness)) {
         *fixity = SCT_SPRUNG;
@@ -76,8 +76,8 @@ static void read_end(sct_reader *r, const sct_node *node, sct_member_end *end)
     const sct_node *found[SCT_TURNS];
     int word = SCT_PINNED;
     if (sct_node_kind_of(node) == SCT_STRING) {
-        if (sct_fields_word(&r->f, node, "an end, or an object such as {\"in_plane\": \"200 kN m/rad\"}", FIXITIES, 2,
-                            &word))
+        if (sct_fields_word(&r->f, node, "a kind of end (or an object such as {\"in_plane\": \"200 kN m/rad\"})",
+                            FIXITIES, 2, &word))
             set_end(r, (sct_fixity)word, end);
         return;
     }

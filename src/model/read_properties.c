@@ -39,7 +39,10 @@ static void read_relation(sct_reader *r, const sct_node *node, const relation *o
     double p = of->p, A, v[2];
     if (!sct_fields_keys(&r->f, node, of->what, KEYS, N, found)) return;
     if (found[K_C] == NULL && (found[K_AT] == NULL || found[K_VALUE] == NULL)) {
-        sct_fields_error(&r->f, node, "%s; expected %s", found[K_AT] == NULL ? "found no \"c\"" : "found no \"value\"",
+        sct_fields_error(&r->f, node, "found no \"%s\"; expected %s",
+                         found[K_AT] != NULL      ? "value"
+                         : found[K_VALUE] != NULL ? "at"
+                                                  : "c",
                          of->example);
         return;
     }

@@ -10,6 +10,10 @@ edits.txt  cases one by one: the name, lines that change the base, the exit code
                args ...         the command line
 missing.txt  what is said when a key is left out, for every key of the base
 types.txt    what is said of a value of each wrong type, for every value of the base
+frame.json, frame_edits.txt, frame_missing.txt, frame_types.txt
+             the same for a plane frame: the tables hold what base.json has not
+space.json, space_edits.txt
+             the same for a frame in space: edits alone
 """
 import os
 import re
@@ -93,12 +97,13 @@ def make(folder, name, model, code, messages, args=None):
 def pattern(pointer):
     """The pointer with names and numbers of entries as *: entries of one kind have one pattern."""
     pointer = re.sub(r"^/(materials|families|joints|groups|members|cases|combinations)/[^/]+", r"/\1/*", pointer)
-    pointer = re.sub(r"/(sections|joints|settlements|members|sum)/[^/]+", r"/\1/*", pointer)
+    pointer = re.sub(r"/(sections|joints|settlements|members|sum|moments|rotations|mass)/[^/]+", r"/\1/*", pointer)
     return re.sub(r"/\d+", "/*", pointer)
 
 
-def first_of_each_pattern(base):
-    seen = set()
+def first_of_each_pattern(base, known=None):
+    """One pointer of each kind; those of the base `known` are left out."""
+    seen = {pattern(pointer) for pointer in known.spans} if known else set()
     for pointer in base.spans:
         if pattern(pointer) not in seen:
             seen.add(pattern(pointer))
@@ -128,31 +133,31 @@ def slug(pointer):
     return re.sub(r"\W+", "-", pointer).strip("-") or "whole"
 
 
-def make_missing(folder, base):
-    table = rows("missing.txt", 1)
-    for pointer in first_of_each_pattern(base):
+def make_missing(folder, base, prefix="", known=None):
+    table = rows(prefix + "missing.txt", 1)
+    for pointer in first_of_each_pattern(base, known):
         if base.spans[pointer][2] is None:
             continue  # not the value of a key
         messages = table.pop((pointer,), None)
         if messages is None:
-            raise SystemExit("missing.txt has no row for " + pointer)
+            raise SystemExit(prefix + "missing.txt has no row for " + pointer)
         if messages != ["right"]:
-            make(folder, "S01-no-" + slug(pointer), base.changed([(pointer, "-", "")]), *expected(messages))
-    assert not table, "missing.txt has rows for nothing: %s" % list(table)
+            make(folder, "S01-" + prefix + "no-" + slug(pointer), base.changed([(pointer, "-", "")]), *expected(messages))
+    assert not table, prefix + "missing.txt has rows for nothing: %s" % list(table)
 
 
 TYPES = {"number": ("7", "a number"), "string": ('"?"', "a string"), "array": ("[]", "an array"),
          "object": ("{}", "an object"), "true": ("true", "true"), "null": ("null", "null")}
 
 
-def make_types(folder, base):
+def make_types(folder, base, prefix="", known=None):
     """Types without a row of their own are told in the words of the row `*`: found WHAT; expected the rest. Of these only
     null is tried, and all where SCT_TEST_FULL is set."""
-    table = rows("types.txt", 2)
-    for pointer in first_of_each_pattern(base):
+    table = rows(prefix + "types.txt", 2)
+    for pointer in first_of_each_pattern(base, known):
         general = table.pop((pointer, "*"), None)
         if general is None:
-            raise SystemExit("types.txt has no row for " + pointer)
+            raise SystemExit(prefix + "types.txt has no row for " + pointer)
         begin = base.spans[pointer][0]
         line, column = base.text.count("\n", 0, begin) + 1, begin - base.text.rfind("\n", 0, begin)
         for name, (text, words) in TYPES.items():
@@ -162,13 +167,13 @@ def make_types(folder, base):
             if messages is None:
                 messages = ["%d:%d: error: %sfound %s; %s" % (line, column, pointer and pointer + ": ", words, general[0])]
             if messages != ["right"]:
-                make(folder, "S03-%s-for-%s" % (name, slug(pointer)), base.changed([(pointer, "=", text)]),
+                make(folder, "S03-%s%s-for-%s" % (prefix, name, slug(pointer)), base.changed([(pointer, "=", text)]),
                      *expected(messages))
-    assert not table, "types.txt has rows for nothing: %s" % list(table)
+    assert not table, prefix + "types.txt has rows for nothing: %s" % list(table)
 
 
-def make_edits(folder, base):
-    for block in read("edits.txt").split("\n\n"):
+def make_edits(folder, base, prefix=""):
+    for block in read(prefix + "edits.txt").split("\n\n"):
         lines = [line for line in block.strip("\n").split("\n") if line and not line.startswith("#")]
         if not lines:
             continue
@@ -238,6 +243,11 @@ def main():
     make_missing(sys.argv[1], base)
     make_types(sys.argv[1], base)
     make_edits(sys.argv[1], base)
+    frame = Base(read("frame.json"))
+    make_missing(sys.argv[1], frame, "frame_", base)
+    make_types(sys.argv[1], frame, "frame_", base)
+    make_edits(sys.argv[1], frame, "frame_")
+    make_edits(sys.argv[1], Base(read("space.json")), "space_")
 
 
 if __name__ == "__main__":
