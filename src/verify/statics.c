@@ -1,7 +1,7 @@
 /* A second analysis of a model.
  *
- * With P the projection of a joint onto the directions its support leaves free, the displacements are u = settlement +
- * P x, and x solves (P K P + c (I - P)) x = P (load - forces of the settlement). */
+ * With P the projection of a joint onto what its support leaves free, the displacements (and rotations) are u =
+ * settlement + P x, and x solves (P K P + c (I - P)) x = P (load - forces of the settlement). */
 #include "verify/statics.h"
 
 #include <math.h>
@@ -9,29 +9,28 @@
 #include <string.h>
 
 #include "base/random.h"
-#include "numerics/skyline.h"
-#include "numerics/sparse.h"
+#include "verify/matrix.h"
 
 static const long double GRAVITY = 9.80665L; /* [m/s2] standard value, ISO 80000-3 */
-/* The skyline is used up to about a second and 160 MB; above, CHOLMOD. */
-static const double MOST_MULTIPLICATIONS = 1e9, MOST_ENTRIES = 2e7;
-static const double COSINE = 4e-16; /* rounding of a direction cosine: four units */
+static const double COSINE = 4e-16;          /* rounding of a direction cosine: four units */
 
 typedef struct work {
     const sct_model *m;
-    const double *A;
-    int d, n;                      /* dimensions, unknowns: d per joint */
-    size_t n3;                     /* 3 n_joints */
+    const sct_verify_section *sections;
+    sct_statics *out;
+    int d;                         /* dimensions */
+    int stride;                    /* 3 displacements per joint and, in frames, 3 rotations */
+    int size, at[6];               /* unknowns per joint, and which of the six they are */
+    size_t n;                      /* stride * n_joints */
+    double lever;                  /* [m] mean length of a member: a rotation times this is beside a displacement */
     long double (*dir)[3], *L, *k; /* n_members */
-    double (*P)[3][3];             /* n_joints */
-    double *c;                     /* n_joints: stiffness that stands for a support */
-    int *first;                    /* n */
-    sct_skyline *skyline;
-    sct_sparse *sparse; /* one of the two */
-    int *column, *row;
-    double *values;
-    double *b;                      /* n */
-    long double *u, *r, *free_part; /* n3, n3, n_members: prescribed free elongation */
+    double *c[2];                  /* n_joints: stiffness that stands for a support, of displacements and rotations */
+    sct_matrix *matrix;
+    double *b;                           /* size * n_joints */
+    double *step;                        /* n */
+    long double *u, *settled, *load, *r; /* n each */
+    long double *free_part;              /* n_members: prescribed free elongation */
+    long double (*held)[12];             /* n_elements: what loads put on the joints */
 } work;
 
 static void work_free(work *w)
@@ -39,38 +38,32 @@ static void work_free(work *w)
     free(w->dir);
     free(w->L);
     free(w->k);
-    free(w->P);
-    free(w->c);
-    free(w->first);
-    sct_skyline_free(w->skyline);
-    sct_sparse_free(w->sparse);
-    free(w->column);
-    free(w->row);
-    free(w->values);
+    free(w->c[0]);
+    free(w->c[1]);
+    sct_matrix_free(w->matrix);
     free(w->b);
+    free(w->step);
     free(w->u);
+    free(w->settled);
+    free(w->load);
     free(w->r);
     free(w->free_part);
-}
-
-static bool work_allocate(work *w)
-{
-    const size_t joints = (size_t)w->m->n_joints, members = (size_t)w->m->n_members;
-    w->dir = calloc(members + 1, sizeof *w->dir);
-    w->L = calloc(members + 1, sizeof *w->L);
-    w->k = calloc(members + 1, sizeof *w->k);
-    w->P = calloc(joints + 1, sizeof *w->P);
-    w->c = calloc(joints + 1, sizeof *w->c);
-    w->first = calloc(3 * joints + 1, sizeof *w->first);
-    w->b = calloc(3 * joints + 1, sizeof *w->b);
-    w->u = calloc(3 * joints + 1, sizeof *w->u);
-    w->r = calloc(3 * joints + 1, sizeof *w->r);
-    w->free_part = calloc(members + 1, sizeof *w->free_part);
-    return w->dir && w->L && w->k && w->P && w->c && w->first && w->b && w->u && w->r && w->free_part;
+    free(w->held);
 }
 
 /* ---- geometry -----------------------------------------------------------------------------------------------------
  */
+
+static bool allocate_members(work *w)
+{
+    const size_t members = (size_t)w->m->n_members + 1;
+    w->dir = calloc(members, sizeof *w->dir);
+    w->L = calloc(members, sizeof *w->L);
+    w->k = calloc(members, sizeof *w->k);
+    w->free_part = calloc(members, sizeof *w->free_part);
+    w->out->element_of = calloc(members, sizeof *w->out->element_of);
+    return w->dir && w->L && w->k && w->free_part && w->out->element_of;
+}
 
 static void measure_members(work *w)
 {
@@ -85,171 +78,193 @@ static void measure_members(work *w)
         w->L[e] = sqrtl(square);
         for (int i = 0; i < 3; i++) w->dir[e][i] /= w->L[e];
         const int g = member->group;
-        w->k[e] = (long double)w->m->materials[w->m->groups[g].material].E * w->A[g] / w->L[e];
-        w->c[member->from] += (double)w->k[e];
-        w->c[member->to] += (double)w->k[e];
+        w->k[e] = (long double)w->m->materials[w->m->groups[g].material].E * w->sections[g].A / w->L[e];
+        w->lever += (double)w->L[e] / w->m->n_members;
     }
 }
 
-/* H = sum of h h' / h'h for one held direction; in space the normal of two held ones is what is left free. */
-static void project(const sct_joint *joint, int d, double held[3][3])
+/* Which members are elements, and how many loads they carry; true: some joint turns. */
+static bool count_elements(work *w, size_t *n_loads)
 {
-    memset(held, 0, sizeof(double[3][3]));
-    const double *p = joint->held[0], *q = joint->held[1];
-    double v[3] = {p[0], p[1], p[2]};
-    if (joint->n_held == 0) return;
-    if (joint->n_held == 2 && d == 3) {
-        for (int i = 0; i < 3; i++) v[i] = p[(i + 1) % 3] * q[(i + 2) % 3] - p[(i + 2) % 3] * q[(i + 1) % 3];
+    sct_statics *out = w->out;
+    bool has_turns = false;
+    for (int e = 0; e < w->m->n_members; e++) {
+        out->element_of[e] = sct_element_is_beam(w->m, e) ? 0 : -1;
+        has_turns = has_turns || out->element_of[e] == 0;
     }
-    const double square = v[0] * v[0] + v[1] * v[1] + v[2] * v[2];
-    for (int i = 0; i < d; i++) {
-        for (int j = 0; j < d; j++) {
-            const double along = v[i] * v[j] / square, one = i == j;
-            held[i][j] = joint->n_held == d ? one : joint->n_held == 2 ? one - along : along;
+    for (int k = 0; k < w->m->n_cases; k++) {
+        const sct_case *c = &w->m->cases[k];
+        *n_loads += (size_t)c->n_member_loads;
+        for (int i = 0; i < c->n_member_loads; i++) out->element_of[c->member_loads[i].member] = 0;
+    }
+    for (int e = 0; e < w->m->n_members; e++)
+        if (out->element_of[e] == 0) out->element_of[e] = out->n_elements++;
+    return has_turns;
+}
+
+/* The loads of each element, one behind the other: first counted, then put in. */
+static void list_loads(work *w)
+{
+    sct_element *elements = w->out->elements;
+    sct_element_load *next = w->out->element_loads;
+    for (int pass = 0; pass < 2; pass++) {
+        for (int k = 0; k < w->m->n_cases; k++) {
+            const sct_case *c = &w->m->cases[k];
+            for (int i = 0; i < c->n_member_loads; i++) {
+                sct_element *x = &elements[w->out->element_of[c->member_loads[i].member]];
+                if (pass == 1) x->loads[x->n_loads] = sct_element_load_of(x, k, &c->member_loads[i]);
+                x->n_loads++;
+            }
+        }
+        for (int b = 0; b < w->out->n_elements && pass == 0; b++) {
+            elements[b].loads = next;
+            next += elements[b].n_loads;
+            elements[b].n_loads = 0;
         }
     }
 }
 
-static void project_joints(work *w, sct_statics *out)
+static bool make_elements(work *w)
 {
-    for (int j = 0; j < w->m->n_joints; j++) {
-        project(&w->m->joints[j], w->d, out->held[j]);
-        const bool is_free = w->c[j] > 0.0; /* some member ends here */
-        for (int i = 0; i < w->d; i++) {
-            for (int k = 0; k < w->d; k++) w->P[j][i][k] = is_free ? (i == k) - out->held[j][i][k] : 0.0;
-        }
-        if (!is_free) w->c[j] = 1.0;
+    sct_statics *out = w->out;
+    size_t n_loads = 0;
+    out->has_turns = count_elements(w, &n_loads);
+    out->elements = calloc((size_t)out->n_elements + 1, sizeof *out->elements);
+    out->element_loads = calloc(n_loads + 1, sizeof *out->element_loads);
+    w->held = calloc((size_t)out->n_elements + 1, sizeof *w->held);
+    if (out->elements == NULL || out->element_loads == NULL || w->held == NULL) return false;
+    for (int e = 0; e < w->m->n_members; e++) {
+        if (out->element_of[e] < 0) continue;
+        out->elements[out->element_of[e]] = sct_element_make(w->m, e, &w->sections[w->m->members[e].group]);
     }
+    list_loads(w);
+    return true;
+}
+
+static void choose_unknowns(work *w)
+{
+    w->stride = w->out->has_turns ? 6 : 3;
+    w->n = (size_t)w->stride * (size_t)w->m->n_joints;
+    for (int i = 0; i < w->d; i++) w->at[w->size++] = i;
+    for (int i = w->d == 2 ? 5 : 3; i < w->stride; i++) w->at[w->size++] = i;
 }
 
 /* ---- the matrix ---------------------------------------------------------------------------------------------------
  */
 
-static int compare_pairs(const void *a, const void *b)
+/* v (stride) = P v of one joint */
+static void leave_free(const work *w, int joint, double v[])
 {
-    const int *p = a, *q = b;
-    return p[1] != q[1] ? (p[1] > q[1]) - (p[1] < q[1]) : (p[0] > q[0]) - (p[0] < q[0]);
+    for (int kind = 0; 3 * kind < w->stride; kind++) {
+        const double(*P)[3] = (const double(*)[3])w->out->supports.free[kind][joint];
+        const double x[3] = {v[3 * kind], v[3 * kind + 1], v[3 * kind + 2]};
+        for (int i = 0; i < 3; i++) v[3 * kind + i] = P[i][0] * x[0] + P[i][1] * x[1] + P[i][2] * x[2];
+    }
 }
 
-/* The pattern of CHOLMOD's upper triangle: blocks of joints that a member ties, and the diagonal. */
-static sct_status build_sparse(work *w)
+/* Adds the block value * g h' of two joints' projected rows to the lower triangle. */
+static void add_block(work *w, const int joint[2], const double g[], const double h[], double value)
 {
-    const int n_pairs = w->m->n_members + w->m->n_joints, d = w->d;
-    int(*pair)[2] = calloc((size_t)n_pairs, sizeof *pair);
-    sct_status status = SCT_NO_MEMORY;
-    w->column = calloc((size_t)w->n + 2, sizeof *w->column);
-    w->row = calloc((size_t)n_pairs * (size_t)(d * d), sizeof *w->row);
-    w->values = calloc((size_t)n_pairs * (size_t)(d * d), sizeof *w->values);
-    if (pair != NULL && w->column != NULL && w->row != NULL && w->values != NULL) {
-        for (int e = 0; e < w->m->n_members; e++) {
-            const int a = w->m->members[e].from, b = w->m->members[e].to;
-            pair[e][0] = a < b ? a : b;
-            pair[e][1] = a < b ? b : a;
+    for (int p = 0; p < w->size; p++) {
+        for (int q = 0; q < w->size; q++) {
+            const int i = joint[0] * w->size + p, j = joint[1] * w->size + q;
+            if (i >= j) sct_matrix_add(w->matrix, i, j, value * g[w->at[p]] * h[w->at[q]]);
         }
-        for (int j = 0; j < w->m->n_joints; j++) pair[w->m->n_members + j][0] = pair[w->m->n_members + j][1] = j;
-        qsort(pair, (size_t)n_pairs, sizeof *pair, compare_pairs);
-        int size = 0;
-        for (int begin = 0, end; begin < n_pairs; begin = end) { /* the pairs of one column of blocks */
-            for (end = begin; end < n_pairs && pair[end][1] == pair[begin][1]; end++) continue;
-            for (int c = 0; c < d; c++) {
-                for (int p = begin; p < end; p++) {
-                    if (p > begin && pair[p][0] == pair[p - 1][0]) continue;
-                    const int rows = pair[p][0] == pair[p][1] ? c + 1 : d;
-                    for (int i = 0; i < rows; i++) w->row[size++] = pair[p][0] * d + i;
-                }
-                w->column[pair[begin][1] * d + c + 1] = size;
+    }
+}
+
+/* Adds sum_ij K_ij row_i row_j' of a member; rows: [unknown][end][six], projected here. */
+static void add_member(work *w, int e, int n, double row[][2][6], const long double K[4][4])
+{
+    const int end[2] = {w->m->members[e].from, w->m->members[e].to};
+    for (int i = 0; i < n; i++) {
+        for (int s = 0; s < 2; s++) leave_free(w, end[s], row[i][s]);
+    }
+    for (int s = 0; s < 2; s++) {
+        for (int t = 0; t < 2; t++) {
+            for (int i = 0; i < n; i++) {
+                for (int j = 0; j < n; j++)
+                    add_block(w, (int[2]){end[s], end[t]}, row[i][s], row[j][t], (double)K[i][j]);
             }
         }
-        const sct_pattern pattern = {.n = w->n, .column = w->column, .row = w->row};
-        w->sparse = sct_sparse_new(&pattern, &status);
     }
-    free(pair);
-    return status;
 }
 
-static sct_status choose_solver(work *w)
+static void add_axial(work *w, int e)
 {
-    double multiplications, entries;
-    for (int i = 0; i < w->n; i++) w->first[i] = i - i % w->d;
-    for (int e = 0; e < w->m->n_members; e++) {
-        const int a = w->m->members[e].from, b = w->m->members[e].to, low = a < b ? a : b, high = a < b ? b : a;
-        for (int i = 0; i < w->d; i++) {
-            if (low * w->d < w->first[high * w->d + i]) w->first[high * w->d + i] = low * w->d;
+    const long double K[4][4] = {{w->k[e]}};
+    double row[1][2][6] = {{{0}}};
+    for (int i = 0; i < w->d; i++) {
+        row[0][0][i] = -(double)w->dir[e][i];
+        row[0][1][i] = (double)w->dir[e][i];
+    }
+    w->c[0][w->m->members[e].from] += (double)w->k[e];
+    w->c[0][w->m->members[e].to] += (double)w->k[e];
+    add_member(w, e, 1, row, K);
+}
+
+static void add_element(work *w, const sct_element *x)
+{
+    const sct_member *member = &w->m->members[x->member];
+    for (int part = 0; part < SCT_TURNS; part++) {
+        double row[4][2][6];
+        const int n = sct_element_rows(x, part, row), turn = part == SCT_TWIST ? 0 : 1;
+        w->c[1][member->from] += (double)x->part[part].K[turn][turn];
+        w->c[1][member->to] += (double)x->part[part].K[n - 1][n - 1];
+        if (part == SCT_IN_PLANE || w->d == 3) add_member(w, x->member, n, row, x->part[part].K);
+    }
+}
+
+/* Elastic supports, and c (I - P). */
+static void add_supports(work *w, int joint)
+{
+    const sct_joint *j = &w->m->joints[joint];
+    for (int k = 0; k < j->n_springs; k++) {
+        const int kind = j->springs[k].is_turn;
+        double row[6] = {0};
+        if (3 * kind >= w->stride) continue;
+        memcpy(row + 3 * kind, j->springs[k].dir, sizeof j->springs[k].dir);
+        leave_free(w, joint, row);
+        add_block(w, (int[2]){joint, joint}, row, row, j->springs[k].stiffness);
+        w->c[kind][joint] += j->springs[k].stiffness;
+    }
+    for (int p = 0; p < w->size; p++) {
+        for (int q = 0; q <= p; q++) {
+            const int kind = w->at[p] / 3, i = w->at[p] % 3, k = w->at[q] % 3;
+            if (w->at[q] / 3 != kind) continue;
+            const double c = w->c[kind][joint] > 0.0 ? w->c[kind][joint] : 1.0;
+            const double away = (i == k) - w->out->supports.free[kind][joint][i][k];
+            sct_matrix_add(w->matrix, joint * w->size + p, joint * w->size + q, c * away);
         }
     }
-    sct_skyline_cost(w->n, w->first, &multiplications, &entries);
-    if (multiplications > MOST_MULTIPLICATIONS || entries > MOST_ENTRIES) return build_sparse(w);
-    w->skyline = sct_skyline_new(w->n, w->first);
-    return w->skyline != NULL ? SCT_OK : SCT_NO_MEMORY;
-}
-
-/* Adds to entry (i, j), i >= j. */
-static void add(work *w, int i, int j, double value)
-{
-    if (w->skyline != NULL) {
-        *sct_skyline_at(w->skyline, i, j) += value;
-        return;
-    }
-    int low = w->column[i], high = w->column[i + 1] - 1; /* the upper triangle: column i, row j */
-    while (low < high) {
-        const int middle = low + (high - low) / 2;
-        if (w->row[middle] < j)
-            low = middle + 1;
-        else
-            high = middle;
-    }
-    w->values[low] += value;
 }
 
 static sct_status factor(work *w)
 {
-    for (int e = 0; e < w->m->n_members; e++) {
-        const int end[2] = {w->m->members[e].from, w->m->members[e].to};
-        double g[6];
-        int at[6];
-        for (int s = 0; s < 2; s++) {
-            for (int i = 0; i < w->d; i++) {
-                double along = 0.0;
-                for (int k = 0; k < w->d; k++) along += w->P[end[s]][i][k] * (double)w->dir[e][k];
-                g[s * w->d + i] = s == 0 ? -along : along;
-                at[s * w->d + i] = end[s] * w->d + i;
-            }
-        }
-        for (int p = 0; p < 2 * w->d; p++) {
-            for (int q = 0; q < 2 * w->d; q++) {
-                if (at[p] >= at[q]) add(w, at[p], at[q], (double)w->k[e] * g[p] * g[q]);
-            }
-        }
-    }
-    for (int j = 0; j < w->m->n_joints; j++) {
-        for (int i = 0; i < w->d; i++) {
-            for (int k = 0; k <= i; k++) add(w, j * w->d + i, j * w->d + k, w->c[j] * ((i == k) - w->P[j][i][k]));
-        }
-    }
-    if (w->skyline != NULL) return sct_skyline_factor(w->skyline) ? SCT_OK : SCT_SELF_CHECK;
-    const sct_status status = sct_sparse_update(w->sparse, w->values, NULL);
-    return status == SCT_NOT_CONVEX ? SCT_SELF_CHECK : status;
+    sct_status status;
+    w->matrix = sct_matrix_new(w->m, w->size, &status);
+    if (status != SCT_OK) return status;
+    for (int e = 0; e < w->m->n_members; e++) add_axial(w, e);
+    for (int b = 0; b < w->out->n_elements && w->stride == 6; b++) add_element(w, &w->out->elements[b]);
+    for (int j = 0; j < w->m->n_joints; j++) add_supports(w, j);
+    return sct_matrix_factor(w->matrix);
 }
 
-/* b = P M^-1 P r; r (n3) */
-static void solve(work *w, const long double r[], double step[])
+/* step = P M^-1 P r */
+static void solve(work *w, const long double r[])
 {
     for (int j = 0; j < w->m->n_joints; j++) {
-        for (int i = 0; i < w->d; i++) {
-            long double sum = 0.0L;
-            for (int k = 0; k < w->d; k++) sum += w->P[j][i][k] * r[3 * j + k];
-            w->b[j * w->d + i] = (double)sum;
-        }
+        double v[6];
+        for (int i = 0; i < w->stride; i++) v[i] = (double)r[w->stride * j + i];
+        leave_free(w, j, v);
+        for (int p = 0; p < w->size; p++) w->b[j * w->size + p] = v[w->at[p]];
     }
-    if (w->skyline != NULL)
-        sct_skyline_solve(w->skyline, w->b);
-    else
-        sct_sparse_solve(w->sparse, 1, w->b);
+    sct_matrix_solve(w->matrix, w->b);
     for (int j = 0; j < w->m->n_joints; j++) {
-        for (int i = 0; i < 3; i++) {
-            step[3 * j + i] = 0.0;
-            for (int k = 0; k < w->d && i < w->d; k++) step[3 * j + i] += w->P[j][i][k] * w->b[j * w->d + k];
-        }
+        double *v = w->step + w->stride * j;
+        for (int i = 0; i < w->stride; i++) v[i] = 0.0;
+        for (int p = 0; p < w->size; p++) v[w->at[p]] = w->b[j * w->size + p];
+        leave_free(w, j, v);
     }
 }
 
@@ -260,29 +275,67 @@ static long double along(const work *w, int e, const long double u[])
 {
     const sct_member *member = &w->m->members[e];
     long double sum = 0.0L;
-    for (int i = 0; i < 3; i++) sum += w->dir[e][i] * (u[3 * member->to + i] - u[3 * member->from + i]);
+    for (int i = 0; i < 3; i++) sum += w->dir[e][i] * (u[w->stride * member->to + i] - u[w->stride * member->from + i]);
     return sum;
 }
 
-/* Settlements into u, loads into load, free elongations of the members. */
-static void begin_case(work *w, const sct_case *c, double load[])
+/* Adds sign * v (3 forces, 3 moments at each end of a member) to r. */
+static void push(const work *w, int e, long double sign, const long double v[2][6], long double r[])
 {
-    memset(w->u, 0, w->n3 * sizeof *w->u);
+    const int end[2] = {w->m->members[e].from, w->m->members[e].to};
+    for (int s = 0; s < 2; s++) {
+        for (int i = 0; i < w->stride; i++) r[w->stride * end[s] + i] += sign * v[s][i];
+    }
+}
+
+/* The force along the member and, of elements, the twelve forces at its ends, when the joints are at u. */
+static void pull(const work *w, int e, const long double u[], long double v[2][6])
+{
+    const int b = w->out->element_of[e], end[2] = {w->m->members[e].from, w->m->members[e].to};
+    memset(v, 0, sizeof(long double[2][6]));
+    if (b >= 0 && w->stride == 6) {
+        long double at[2][6], f[12];
+        for (int s = 0; s < 2; s++) memcpy(at[s], u + w->stride * end[s], sizeof at[s]);
+        sct_element_pull(&w->out->elements[b], (const long double(*)[6])at, f);
+        sct_element_to_model(&w->out->elements[b], f, v);
+    }
+    const long double N = w->k[e] * (along(w, e, u) - w->free_part[e]);
+    for (int i = 0; i < 3; i++) {
+        v[0][i] -= N * w->dir[e][i];
+        v[1][i] += N * w->dir[e][i];
+    }
+}
+
+/* A bar's own weight goes to its joints; a beam's acts along it. */
+static void add_weight(work *w, const sct_case *c, int e)
+{
+    const sct_member *member = &w->m->members[e];
+    if (sct_element_is_beam(w->m, e)) return;
+    const double density = w->m->materials[w->m->groups[member->group].material].density;
+    const long double half = 0.5L * c->self_weight * density * GRAVITY * w->sections[member->group].A * w->L[e];
+    w->load[w->stride * member->from + w->d - 1] -= half;
+    w->load[w->stride * member->to + w->d - 1] -= half;
+}
+
+/* Settlements, loads at joints. */
+static void load_joints(work *w, const sct_case *c)
+{
+    memset(w->settled, 0, w->n * sizeof *w->settled);
+    memset(w->load, 0, w->n * sizeof *w->load);
     for (int i = 0; i < c->n_settlements; i++) {
-        for (int k = 0; k < 3; k++) w->u[3 * c->settlements[i].joint + k] += c->settlements[i].d[k];
+        const sct_settlement *s = &c->settlements[i];
+        for (int k = 0; k < w->stride; k++) w->settled[w->stride * s->joint + k] += k < 3 ? s->d[k] : s->turn[k - 3];
     }
     for (int i = 0; i < c->n_loads; i++) {
-        for (int k = 0; k < 3; k++) load[3 * c->loads[i].joint + k] += c->loads[i].F[k];
+        const sct_joint_load *l = &c->loads[i];
+        for (int k = 0; k < w->stride; k++) w->load[w->stride * l->joint + k] += k < 3 ? l->F[k] : l->M[k - 3];
     }
-    for (int e = 0; e < w->m->n_members; e++) {
-        const sct_member *member = &w->m->members[e];
-        const sct_group *g = &w->m->groups[member->group];
-        const long double half =
-            0.5L * c->self_weight * w->m->materials[g->material].density * GRAVITY * w->A[member->group] * w->L[e];
-        load[3 * member->from + w->d - 1] -= (double)half;
-        load[3 * member->to + w->d - 1] -= (double)half;
-        w->free_part[e] = 0.0L;
-    }
+    memcpy(w->u, w->settled, w->n * sizeof *w->u);
+}
+
+static void stretch_members(work *w, const sct_case *c)
+{
+    memset(w->free_part, 0, (size_t)w->m->n_members * sizeof *w->free_part);
     for (int i = 0; i < c->n_bar_actions; i++) {
         const sct_bar_action *action = &c->bar_actions[i];
         const sct_material *material = &w->m->materials[w->m->groups[w->m->members[action->member].group].material];
@@ -292,101 +345,218 @@ static void begin_case(work *w, const sct_case *c, double load[])
     }
 }
 
-static void push(const work *w, int e, long double N, long double r[])
+/* Copies a joint's first or last three numbers of each stride. */
+static void copy_joints(const work *w, int kind, const long double from[], double to[])
 {
-    const sct_member *member = &w->m->members[e];
-    for (int i = 0; i < 3; i++) {
-        r[3 * member->from + i] += N * w->dir[e][i];
-        r[3 * member->to + i] -= N * w->dir[e][i];
+    for (size_t i = 0; i < 3 * (size_t)w->m->n_joints; i++)
+        to[i] = (double)from[i / 3 * (size_t)w->stride + 3 * (size_t)kind + i % 3];
+}
+
+/* Everything that acts; reports see what acts on sprung ends apart from the loads at the joints. */
+static void begin_case(work *w, int k)
+{
+    const sct_case *c = &w->m->cases[k];
+    const size_t n3 = 3 * (size_t)w->m->n_joints;
+    sct_statics *out = w->out;
+    load_joints(w, c);
+    stretch_members(w, c);
+    for (int e = 0; e < w->m->n_members; e++) add_weight(w, c, e);
+    memcpy(w->r, w->load, w->n * sizeof *w->r);
+    for (int b = 0; b < out->n_elements; b++) {
+        const sct_element *x = &out->elements[b];
+        long double at[12], end[2][6];
+        sct_element_held(w->m, x, k, w->held[b], at);
+        sct_element_to_model(x, at, end);
+        push(w, x->member, 1.0L, (const long double(*)[6])end, w->r);
+        sct_element_to_model(x, w->held[b], end);
+        push(w, x->member, 1.0L, (const long double(*)[6])end, w->load);
+    }
+    copy_joints(w, 0, w->r, out->load + (size_t)k * n3);
+    if (out->has_turns) copy_joints(w, 1, w->r, out->moment_load + (size_t)k * n3);
+}
+
+/* r = load - what members and springs take at u */
+static void find_residual(work *w)
+{
+    memcpy(w->r, w->load, w->n * sizeof *w->r);
+    for (int e = 0; e < w->m->n_members; e++) {
+        long double v[2][6];
+        pull(w, e, w->u, v);
+        push(w, e, -1.0L, (const long double(*)[6])v, w->r);
+    }
+    for (int j = 0; j < w->m->n_joints; j++) {
+        const sct_joint *joint = &w->m->joints[j];
+        for (int k = 0; k < joint->n_springs; k++) {
+            const sct_joint_spring *s = &joint->springs[k];
+            const int at = w->stride * j + 3 * s->is_turn;
+            long double moved = 0.0L;
+            if (3 * s->is_turn >= w->stride) continue;
+            for (int i = 0; i < 3; i++) moved += s->dir[i] * (w->u[at + i] - w->settled[at + i]);
+            for (int i = 0; i < 3; i++) w->r[at + i] -= s->stiffness * moved * s->dir[i];
+        }
     }
 }
 
-static double largest(size_t n, const double a[])
+/* The ends of an element hold what joints pull less what loads put on them. */
+static void find_end(const work *w, int b, const long double N, double end[12])
+{
+    const sct_element *x = &w->out->elements[b];
+    const int joint[2] = {w->m->members[x->member].from, w->m->members[x->member].to};
+    long double f[12] = {0}, moved[12], at[2][6];
+    for (int pass = 0; pass < 2 && w->stride == 6; pass++) {
+        for (int i = 0; i < 12; i++) {
+            const int p = w->stride * joint[i / 6] + i % 6;
+            at[i / 6][i % 6] = pass == 0 ? w->u[p] : w->step[p];
+        }
+        sct_element_pull(x, (const long double(*)[6])at, moved);
+        for (int i = 0; i < 12; i++) f[i] += moved[i];
+    }
+    f[0] = -N;
+    f[6] = N;
+    for (int i = 0; i < 12; i++) end[i] = (double)(f[i] - w->held[b][i]);
+}
+
+/* Forces from the displacements and the step that is about to be added to them: before the sum is rounded, as a stiff
+ * member hardly stretches. */
+static void find_forces(work *w, int k)
+{
+    sct_statics *out = w->out;
+    double *N = out->N + (size_t)k * (size_t)w->m->n_members;
+    for (size_t i = 0; i < w->n; i++) w->r[i] = w->step[i];
+    for (int e = 0; e < w->m->n_members; e++) {
+        const long double force = w->k[e] * (along(w, e, w->u) - w->free_part[e]) + w->k[e] * along(w, e, w->r);
+        const int b = out->element_of[e];
+        N[e] = (double)force;
+        if (b >= 0) find_end(w, b, force, out->end[(size_t)k * (size_t)out->n_elements + (size_t)b]);
+    }
+}
+
+/* The largest displacement, or rotation times the lever. */
+static double largest(const work *w, const long double v[])
+{
+    double most = 0.0;
+    for (size_t i = 0; i < w->n; i++)
+        most = fmax(most, fabs((double)v[i]) * (i % (size_t)w->stride < 3 ? 1.0 : w->lever));
+    return most;
+}
+
+static double largest_of(size_t n, const double a[])
 {
     double most = 0.0;
     for (size_t i = 0; i < n; i++) most = fmax(most, fabs(a[i]));
     return most;
 }
 
-/* What errors of COSINE in the directions do: forces push joints sideways a little, one way or the other. */
-static void shake(work *w, const double N[], double step[], double *u_shaky, double *N_shaky)
+/* What errors of COSINE in the directions do: forces push joints sideways a little, one way or the other, and turn
+ * them. */
+static sct_shaky shake(work *w, int k)
 {
     sct_random random = {1};
-    memset(w->r, 0, w->n3 * sizeof *w->r);
+    sct_shaky shaky = {0};
+    const double *N = w->out->N + (size_t)k * (size_t)w->m->n_members;
+    const size_t at = (size_t)k * (size_t)w->out->n_elements;
+    memset(w->r, 0, w->n * sizeof *w->r);
     for (int e = 0; e < w->m->n_members; e++) {
-        const int end[2] = {w->m->members[e].from, w->m->members[e].to};
-        for (int s = 0; s < 2; s++) {
-            for (int i = 0; i < w->d; i++) {
-                w->r[3 * end[s] + i] += COSINE * N[e] * (sct_random_unit(&random) < 0.5 ? -1.0 : 1.0);
-            }
+        const int joint[2] = {w->m->members[e].from, w->m->members[e].to}, b = w->out->element_of[e];
+        for (int i = 0; i < 2 * w->size; i++) {
+            const int s = i / w->size, kind = w->at[i % w->size] / 3;
+            const double *end = b >= 0 ? w->out->end[at + (size_t)b] + 6 * s + 3 * kind : NULL;
+            const double size = end != NULL ? largest_of(3, end) : kind == 0 ? fabs(N[e]) : 0.0;
+            w->r[w->stride * joint[s] + w->at[i % w->size]] +=
+                COSINE * size * (sct_random_unit(&random) < 0.5 ? -1.0 : 1.0);
         }
     }
-    solve(w, w->r, step);
-    for (size_t i = 0; i < w->n3; i++) w->r[i] = step[i];
-    *u_shaky = largest(w->n3, step);
-    *N_shaky = 0.0;
-    for (int e = 0; e < w->m->n_members; e++) *N_shaky = fmax(*N_shaky, fabs((double)(w->k[e] * along(w, e, w->r))));
+    solve(w, w->r);
+    for (size_t i = 0; i < w->n; i++) {
+        double *most = i % (size_t)w->stride < 3 ? &shaky.u : &shaky.turn;
+        w->r[i] = w->step[i];
+        *most = fmax(*most, fabs(w->step[i]));
+    }
+    memset(w->free_part, 0, (size_t)w->m->n_members * sizeof *w->free_part);
+    for (int e = 0; e < w->m->n_members; e++) {
+        long double v[2][6];
+        shaky.N = fmax(shaky.N, fabs((double)(w->k[e] * along(w, e, w->r))));
+        if (w->out->element_of[e] < 0) continue;
+        pull(w, e, w->r, v);
+        for (int i = 0; i < 12; i++) shaky.end[i % 6 / 3] = fmax(shaky.end[i % 6 / 3], fabs((double)v[i / 6][i % 6]));
+    }
+    return shaky;
 }
 
-static void solve_case(work *w, int k, double step[], sct_statics *out)
+static void solve_case(work *w, int k)
 {
     enum { MOST_STEPS = 12 };
     static const double SMALL = 1e-14;
-    const size_t members = (size_t)w->m->n_members;
-    double *load = out->load + (size_t)k * w->n3, *u = out->u + (size_t)k * w->n3, *N = out->N + (size_t)k * members;
-    begin_case(w, &w->m->cases[k], load);
+    const size_t n3 = 3 * (size_t)w->m->n_joints;
     double size = INFINITY;
+    begin_case(w, k);
     for (int s = 0; s < MOST_STEPS && size > SMALL; s++) {
-        for (size_t i = 0; i < w->n3; i++) w->r[i] = load[i];
-        for (int e = 0; e < w->m->n_members; e++) push(w, e, w->k[e] * (along(w, e, w->u) - w->free_part[e]), w->r);
-        solve(w, w->r, step);
-        for (size_t i = 0; i < w->n3; i++) w->r[i] = step[i];
-        for (int e = 0; e < w->m->n_members; e++) { /* before the sum is rounded: a stiff member hardly stretches */
-            N[e] = (double)(w->k[e] * (along(w, e, w->u) - w->free_part[e]) + w->k[e] * along(w, e, w->r));
-        }
-        for (size_t i = 0; i < w->n3; i++) {
-            w->u[i] += step[i];
-            u[i] = (double)w->u[i];
-        }
-        const double moved = largest(w->n3, step), all = largest(w->n3, u), before = size;
-        size = moved > 0.0 ? moved / all : 0.0;
+        find_residual(w);
+        solve(w, w->r);
+        find_forces(w, k); /* leaves the step in r */
+        const double moved = largest(w, w->r), before = size;
+        for (size_t i = 0; i < w->n; i++) w->u[i] += w->r[i];
+        size = moved > 0.0 ? moved / largest(w, w->u) : 0.0;
         if (s > 1 && !(size < 0.5 * before)) break;
     }
-    out->error = size <= out->error ? out->error : size; /* keeps a NAN */
-    shake(w, N, step, &out->u_shaky[k], &out->N_shaky[k]);
+    copy_joints(w, 0, w->u, w->out->u + (size_t)k * n3);
+    if (w->out->has_turns) copy_joints(w, 1, w->u, w->out->turn + (size_t)k * n3);
+    w->out->error = size <= w->out->error ? w->out->error : size; /* keeps a NAN */
+    w->out->shaky[k] = shake(w, k);
 }
 
-static sct_status run(work *w, sct_statics *out)
+/* ---- all ----------------------------------------------------------------------------------------------------------
+ */
+
+static bool allocate_joints(work *w)
 {
-    const size_t cases = (size_t)w->m->n_cases, members = (size_t)w->m->n_members;
-    double *step = calloc(w->n3 + 1, sizeof *step);
-    out->u = calloc(cases * w->n3 + 1, sizeof *out->u);
+    const size_t joints = (size_t)w->m->n_joints + 1;
+    w->c[0] = calloc(joints, sizeof *w->c[0]);
+    w->c[1] = calloc(joints, sizeof *w->c[1]);
+    w->b = calloc((size_t)w->size * joints, sizeof *w->b);
+    w->step = calloc(w->n + 1, sizeof *w->step);
+    w->u = calloc(w->n + 1, sizeof *w->u);
+    w->settled = calloc(w->n + 1, sizeof *w->settled);
+    w->load = calloc(w->n + 1, sizeof *w->load);
+    w->r = calloc(w->n + 1, sizeof *w->r);
+    return w->c[0] && w->c[1] && w->b && w->step && w->u && w->settled && w->load && w->r;
+}
+
+static bool allocate_results(const work *w)
+{
+    sct_statics *out = w->out;
+    const size_t cases = (size_t)w->m->n_cases, members = (size_t)w->m->n_members, n3 = 3 * (size_t)w->m->n_joints;
+    out->u = calloc(cases * n3 + 1, sizeof *out->u);
     out->N = calloc(cases * members + 1, sizeof *out->N);
-    out->load = calloc(cases * w->n3 + 1, sizeof *out->load);
-    out->u_shaky = calloc(cases + 1, sizeof *out->u_shaky);
-    out->N_shaky = calloc(cases + 1, sizeof *out->N_shaky);
-    out->held = calloc((size_t)w->m->n_joints + 1, sizeof *out->held);
-    sct_status status = SCT_NO_MEMORY;
-    if (step && out->u && out->N && out->load && out->u_shaky && out->N_shaky && out->held && work_allocate(w)) {
-        measure_members(w);
-        project_joints(w, out);
-        status = choose_solver(w);
-        if (status == SCT_OK) status = factor(w);
-        for (int k = 0; k < w->m->n_cases && status == SCT_OK; k++) solve_case(w, k, step, out);
-    }
-    free(step);
+    out->load = calloc(cases * n3 + 1, sizeof *out->load);
+    out->shaky = calloc(cases + 1, sizeof *out->shaky);
+    out->end = calloc(cases * (size_t)out->n_elements + 1, sizeof *out->end);
+    if (!out->u || !out->N || !out->load || !out->shaky || !out->end) return false;
+    if (!out->has_turns) return true;
+    out->turn = calloc(cases * n3 + 1, sizeof *out->turn);
+    out->moment_load = calloc(cases * n3 + 1, sizeof *out->moment_load);
+    return out->turn != NULL && out->moment_load != NULL;
+}
+
+static sct_status run(work *w)
+{
+    sct_statics *out = w->out;
+    if (!allocate_members(w)) return SCT_NO_MEMORY;
+    measure_members(w);
+    if (!make_elements(w)) return SCT_NO_MEMORY;
+    choose_unknowns(w);
+    if (!allocate_joints(w) || !allocate_results(w)) return SCT_NO_MEMORY;
+    sct_status status = sct_supports_find(w->m, out->n_elements, out->elements, out->has_turns, &out->supports);
+    if (status == SCT_OK) status = factor(w);
+    for (int k = 0; k < w->m->n_cases && status == SCT_OK; k++) solve_case(w, k);
     return status;
 }
 
-sct_status sct_statics_solve(const sct_model *model, const double A[], sct_statics *statics)
+sct_status sct_statics_solve(const sct_model *model, const sct_verify_section sections[], sct_statics *statics)
 {
-    work w = {.m = model,
-              .A = A,
-              .d = model->dimensions,
-              .n = model->n_joints * model->dimensions,
-              .n3 = 3 * (size_t)model->n_joints};
+    work w = {.m = model, .sections = sections, .out = statics, .d = model->dimensions};
     *statics = (sct_statics){0};
-    const sct_status status = run(&w, statics);
+    const sct_status status = run(&w);
     work_free(&w);
     return status;
 }
@@ -394,10 +564,15 @@ sct_status sct_statics_solve(const sct_model *model, const double A[], sct_stati
 void sct_statics_free(sct_statics *s)
 {
     free(s->u);
+    free(s->turn);
     free(s->N);
     free(s->load);
-    free(s->u_shaky);
-    free(s->N_shaky);
-    free(s->held);
+    free(s->moment_load);
+    free(s->shaky);
+    free(s->element_of);
+    free(s->elements);
+    free(s->element_loads);
+    free(s->end);
+    sct_supports_free(&s->supports);
     *s = (sct_statics){0};
 }

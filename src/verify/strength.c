@@ -5,22 +5,6 @@
 
 static const double PI_SQUARE = 9.86960440108935861883;
 
-void sct_verify_size(const sct_model *model, int group, double *A, double I[2])
-{
-    const sct_group *g = &model->groups[group];
-    *A = NAN;
-    I[0] = I[1] = NAN;
-    if (g->kind == SCT_HELD_SECTION) {
-        const sct_section *s = &model->families[g->family].sections[g->held];
-        *A = s->A;
-        I[0] = s->I[0];
-        I[1] = s->I[1];
-    } else if (g->kind == SCT_HELD_AREA) {
-        *A = g->A_held;
-        for (int axis = 0; axis < 2; axis++) I[axis] = g->c[axis] * *A * *A;
-    }
-}
-
 static double effective_length(const sct_member *m, int axis, double L)
 {
     if (m->source[axis] == SCT_LENGTH_RESTRAINT) return m->length[axis];
@@ -40,14 +24,13 @@ double sct_verify_capacity(const sct_model *model, int member, double L, bool te
 {
     const sct_member *m = &model->members[member];
     const sct_group *g = &model->groups[m->group];
-    double A, I[2];
-    sct_verify_size(model, m->group, &A, I);
-    if (tension) return g->allowable[0] * A;
-    double least = g->allowable[1] * A;
+    const sct_verify_section s = sct_verify_section_of(model, m->group);
+    if (tension) return g->allowable[0] * s.A;
+    double least = g->allowable[1] * s.A;
     for (int axis = 0; axis < 2 && g->buckling != SCT_BUCKLING_NONE; axis++) {
-        if (isnan(I[axis])) continue;
+        if (isnan(s.I[axis])) continue;
         const double Lcr = effective_length(m, axis, L);
-        least = fmin(least, column_strength(g, &model->materials[g->material], A, I[axis], Lcr) / g->safety);
+        least = fmin(least, column_strength(g, &model->materials[g->material], s.A, s.I[axis], Lcr) / g->safety);
     }
     return least;
 }
@@ -56,11 +39,11 @@ double sct_verify_slenderness(const sct_model *model, int member, double L, bool
 {
     const sct_member *m = &model->members[member];
     const sct_group *g = &model->groups[m->group];
-    double A, I[2], most = 0.0, limit = g->slenderness_any;
-    sct_verify_size(model, m->group, &A, I);
+    const sct_verify_section s = sct_verify_section_of(model, m->group);
+    double most = 0.0, limit = g->slenderness_any;
     if (compressed) limit = fmin(limit, g->slenderness_compression);
     for (int axis = 0; axis < 2 && isfinite(limit); axis++) {
-        if (!isnan(I[axis])) most = fmax(most, effective_length(m, axis, L) / sqrt(I[axis] / A) / limit);
+        if (!isnan(s.I[axis])) most = fmax(most, effective_length(m, axis, L) / sqrt(s.I[axis] / s.A) / limit);
     }
     return most;
 }

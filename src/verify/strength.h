@@ -2,10 +2,7 @@
 #ifndef SCT_VERIFY_STRENGTH_H
 #define SCT_VERIFY_STRENGTH_H
 
-#include "model/model.h"
-
-/** The size of a group that holds a section or an area: A [m2], I [m4] in and out of plane (NAN: not stated). */
-void sct_verify_size(const sct_model *model, int group, double *A, double I[2]);
+#include "verify/section.h"
 
 /** What the member carries [N] in tension, or in compression (the least of stress and column strength about both axes).
  */

@@ -21,15 +21,15 @@ typedef struct verifier {
     const sct_result *r;
     sct_issues *issues;
     sct_statics s;
-    double *A;       /* n_groups */
-    double *L;       /* n_groups: of all its members, [m] */
-    double *N;       /* n_combinations x n_members */
-    double *N_open;  /* n_combinations: what is left open of any force, [N] */
-    double *N_none;  /* n_combinations: forces below about this are given as 0, [N] */
-    double *u;       /* n_combinations x n_joints x 3 */
-    double *u_open;  /* n_combinations [m] */
-    double accuracy; /* relative, of the first analysis and of this one */
-    double open;     /* of any utilisation */
+    sct_verify_section *sections; /* n_groups */
+    double *L;                    /* n_groups: of all its members, [m] */
+    double *N;                    /* n_combinations x n_members */
+    double *N_open;               /* n_combinations: what is left open of any force, [N] */
+    double *N_none;               /* n_combinations: forces below about this are given as 0, [N] */
+    double *u;                    /* n_combinations x n_joints x 3 */
+    double *u_open;               /* n_combinations [m] */
+    double accuracy;              /* relative, of the first analysis and of this one */
+    double open;                  /* of any utilisation */
     int n_wrong;
 } verifier;
 
@@ -92,8 +92,8 @@ static void combine_all(verifier *v)
             if (factor == 0.0) continue;
             N_scale += factor * largest(members, v->s.N + (size_t)k * members);
             u_scale += factor * largest(n3, v->s.u + (size_t)k * n3);
-            shaky_N += factor * v->s.N_shaky[k];
-            shaky_u += factor * v->s.u_shaky[k];
+            shaky_N += factor * v->s.shaky[k].N;
+            shaky_u += factor * v->s.shaky[k].u;
         }
         v->N_open[c] = (ABSOLUTE + SMALL_PART * v->accuracy) * N_scale + SHAKES * shaky_N;
         v->u_open[c] = (ABSOLUTE + SMALL_PART * v->accuracy) * u_scale + SHAKES * shaky_u;
@@ -110,8 +110,7 @@ static void compare_groups(verifier *v)
     for (int e = 0; e < r->n_members; e++) v->L[v->m->members[e].group] += length(v->m, e);
     for (int g = 0; g < r->n_groups; g++) {
         const sct_group_result *group = &r->groups[g];
-        double I[2], A;
-        sct_verify_size(v->m, g, &A, I);
+        const double A = v->sections[g].A, *I = v->sections[g].I;
         const double unit_mass = v->m->materials[v->m->groups[g].material].density * A;
         compare(v, "area", group->name, NULL, group->A, A, 0.0);
         for (int axis = 0; axis < 2; axis++) {
@@ -162,7 +161,7 @@ static void compare_joints(verifier *v, int c, double R[])
     for (int j = 0; j < r->n_joints; j++) {
         for (int i = 0; i < 3; i++) {
             double held = 0.0;
-            for (int k = 0; k < 3; k++) held += v->s.held[j][i][k] * R[3 * j + k];
+            for (int k = 0; k < 3; k++) held += v->s.supports.held[0][j][i][k] * R[3 * j + k];
             const size_t p = at + 3 * (size_t)j + (size_t)i;
             compare(v, HELD[i], r->joints[j].name, r->combinations[c], r->reaction[p], held, open);
             compare(v, MOVED[i], r->joints[j].name, r->combinations[c], r->u[p], v->u[p], v->u_open[c]);
@@ -290,19 +289,16 @@ static sct_status run(verifier *v, sct_arena *arena)
 {
     const size_t members = (size_t)v->m->n_members, n3 = 3 * (size_t)v->m->n_joints, n = (size_t)v->m->n_combinations;
     double *R = sct_arena_array(arena, n3, sizeof *R);
-    v->A = sct_arena_array(arena, (size_t)v->m->n_groups, sizeof *v->A);
+    v->sections = sct_arena_array(arena, (size_t)v->m->n_groups, sizeof *v->sections);
     v->L = sct_arena_array(arena, (size_t)v->m->n_groups, sizeof *v->L);
     v->N = sct_arena_array(arena, n * members, sizeof *v->N);
     v->N_open = sct_arena_array(arena, n, sizeof *v->N_open);
     v->N_none = sct_arena_array(arena, n, sizeof *v->N_none);
     v->u = sct_arena_array(arena, n * n3, sizeof *v->u);
     v->u_open = sct_arena_array(arena, n, sizeof *v->u_open);
-    if (!R || !v->A || !v->L || !v->N || !v->N_open || !v->N_none || !v->u || !v->u_open) return SCT_NO_MEMORY;
-    for (int g = 0; g < v->m->n_groups; g++) {
-        double I[2];
-        sct_verify_size(v->m, g, &v->A[g], I);
-    }
-    const sct_status status = sct_statics_solve(v->m, v->A, &v->s);
+    if (!R || !v->sections || !v->L || !v->N || !v->N_open || !v->N_none || !v->u || !v->u_open) return SCT_NO_MEMORY;
+    for (int g = 0; g < v->m->n_groups; g++) v->sections[g] = sct_verify_section_of(v->m, g);
+    const sct_status status = sct_statics_solve(v->m, v->sections, &v->s);
     if (status != SCT_OK) {
         if (status == SCT_SELF_CHECK)
             sct_issue_add(
