@@ -159,6 +159,65 @@ static inline void mb_act(sct_model *m, int k, int member, double dT, double lac
     c->n_bar_actions++;
 }
 
+/* ---- frames ------------------------------------------------------------------------------------------------------ */
+
+/* A group with held area, I about both axes and J, which are c A^2. */
+static inline int mb_frame_group(sct_model *m, double A, double I, double J)
+{
+    const int g = mb_group(m, 0, A, false);
+    m->groups[g].c[0] = m->groups[g].c[1] = I / (A * A);
+    m->groups[g].J = (sct_power){J / (A * A), 2.0};
+    return g;
+}
+
+/* Holds all displacements and rotations of a joint. */
+static inline void mb_fix(sct_model *m, int joint)
+{
+    mb_pin(m, joint);
+    sct_joint *j = &m->joints[joint];
+    const int turns = m->dimensions == 2 ? 1 : 3;
+    for (int i = 0; i < turns; i++) j->turns_held[j->n_turns_held++][m->dimensions == 2 ? 2 : i] = 1.0;
+}
+
+/* A beam, fixed to both joints until its ends are pinned. */
+static inline int mb_beam(sct_model *m, int from, int to, int group)
+{
+    const int e = mb_bar(m, from, to, group);
+    for (int s = 0; s < 2; s++)
+        for (int r = 0; r < SCT_TURNS; r++) m->members[e].end[s].fixity[r] = SCT_FIXED;
+    return e;
+}
+
+static inline void mb_pin_end(sct_model *m, int member, int end)
+{
+    for (int r = 0; r < SCT_TURNS; r++) m->members[member].end[end].fixity[r] = SCT_PINNED;
+}
+
+static inline sct_member_load *mb_member_load(sct_model *m, int k, int member)
+{
+    sct_case *c = &m->cases[k];
+    c->member_loads = mb_grow(m->arena, c->member_loads, c->n_member_loads, sizeof *c->member_loads);
+    sct_member_load *load = &c->member_loads[c->n_member_loads++];
+    *load = (sct_member_load){.member = member};
+    return load;
+}
+
+/* A uniform load along y of the model over a whole member. */
+static inline void mb_uniform(sct_model *m, int k, int member, double q, double L)
+{
+    sct_member_load *load = mb_member_load(m, k, member);
+    load->b = L;
+    load->qa[1] = load->qb[1] = q;
+}
+
+static inline void mb_spring(sct_model *m, int joint, bool is_turn, const double dir[3], double stiffness)
+{
+    sct_joint *j = &m->joints[joint];
+    j->springs = mb_grow(m->arena, j->springs, j->n_springs, sizeof *j->springs);
+    j->springs[j->n_springs++] =
+        (sct_joint_spring){.is_turn = is_turn, .dir = {dir[0], dir[1], dir[2]}, .stiffness = stiffness};
+}
+
 /* A combination with the factors of the cases (at most 64; one for each case that the model will have). */
 static inline int mb_combination(sct_model *m, int n_factors, const double factor[])
 {

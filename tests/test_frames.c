@@ -11,54 +11,6 @@ static const double E = 210e6, RIGID = 1e4; /* areas so large that members keep 
 /* ---- building blocks ----------------------------------------------------------------------------------------------
  */
 
-/* A group with held area and stated I (both axes) and J. */
-static int group(sct_model *m, double A, double I, double J)
-{
-    const int g = mb_group(m, 0, A, false);
-    m->groups[g].c[0] = m->groups[g].c[1] = I / (A * A);
-    m->groups[g].J = (sct_power){J / (A * A), 2.0};
-    return g;
-}
-
-static void fix(sct_model *m, int joint)
-{
-    mb_pin(m, joint);
-    sct_joint *j = &m->joints[joint];
-    const int turns = m->dimensions == 2 ? 1 : 3;
-    for (int i = 0; i < turns; i++) j->turns_held[j->n_turns_held++][m->dimensions == 2 ? 2 : i] = 1.0;
-}
-
-/* A beam, fixed to both joints unless pinned below. */
-static int beam(sct_model *m, int from, int to, int g)
-{
-    const int e = mb_bar(m, from, to, g);
-    for (int s = 0; s < 2; s++)
-        for (int r = 0; r < SCT_TURNS; r++) m->members[e].end[s].fixity[r] = SCT_FIXED;
-    return e;
-}
-
-static void pin_end(sct_model *m, int member, int end)
-{
-    for (int r = 0; r < SCT_TURNS; r++) m->members[member].end[end].fixity[r] = SCT_PINNED;
-}
-
-static sct_member_load *member_load(sct_model *m, int k, int member)
-{
-    sct_case *c = &m->cases[k];
-    c->member_loads = mb_grow(m->arena, c->member_loads, c->n_member_loads, sizeof *c->member_loads);
-    sct_member_load *load = &c->member_loads[c->n_member_loads++];
-    *load = (sct_member_load){.member = member};
-    return load;
-}
-
-/* A uniform load along y of the model over a whole member. */
-static void uniform(sct_model *m, int k, int member, double q, double L)
-{
-    sct_member_load *load = member_load(m, k, member);
-    load->b = L;
-    load->qa[1] = load->qb[1] = q;
-}
-
 static sct_model *plane(void)
 {
     sct_model *m = mb_new(2);
@@ -86,16 +38,16 @@ static double moment(const solved *s, int member, double x)
 START_TEST(a_cantilever_with_a_tip_load)
 {
     sct_model *m = plane();
-    group(m, 1e-2, 1e-4, 1e-4);
+    mb_frame_group(m, 1e-2, 1e-4, 1e-4);
     mb_joint(m, 0, 0, 0);
     mb_joint(m, 6, 0, 0);
-    fix(m, 0);
-    beam(m, 0, 1, 0);
+    mb_fix(m, 0);
+    mb_beam(m, 0, 1, 0);
     mb_load(m, 0, 1, 0, -20, 0);
     solved s = solve(m);
     ck_assert_int_eq(s.st->n_dof, 3);
     ck_close(moved(&s, 0, 1, 1), -20 * 216.0 / (3 * 21000), 1e-12);
-    ck_close(moment(&s, 0, 0.0), -120, 1e-12);
+    ck_close(moment(&s, 0, 0.0), -120.0, 1e-12);
     solved_free(&s);
 }
 END_TEST
@@ -107,22 +59,22 @@ END_TEST
 static sct_model *portal(bool has_fixed_feet)
 {
     sct_model *m = plane();
-    group(m, RIGID, 1e-4, 1e-4);
-    group(m, RIGID, 2e-4, 1e-4);
+    mb_frame_group(m, RIGID, 1e-4, 1e-4);
+    mb_frame_group(m, RIGID, 2e-4, 1e-4);
     mb_joint(m, 0, 0, 0);
     mb_joint(m, 0, 4, 0);
     mb_joint(m, 8, 4, 0);
     mb_joint(m, 8, 0, 0);
     for (int foot = 0; foot <= 3; foot += 3) {
         if (has_fixed_feet)
-            fix(m, foot);
+            mb_fix(m, foot);
         else
             mb_pin(m, foot);
     }
-    beam(m, 0, 1, 0);
-    beam(m, 3, 2, 0);
-    beam(m, 1, 2, 1);
-    for (int e = 0; e < 2 && !has_fixed_feet; e++) pin_end(m, e, 0);
+    mb_beam(m, 0, 1, 0);
+    mb_beam(m, 3, 2, 0);
+    mb_beam(m, 1, 2, 1);
+    for (int e = 0; e < 2 && !has_fixed_feet; e++) mb_pin_end(m, e, 0);
     return m;
 }
 
@@ -131,11 +83,11 @@ START_TEST(portals_under_a_uniform_load)
 {
     for (int is_fixed = 0; is_fixed < 2; is_fixed++) {
         sct_model *m = portal(is_fixed);
-        uniform(m, 0, 2, -10, 8);
+        mb_uniform(m, 0, 2, -10, 8);
         solved s = solve(m);
         double *reaction = reactions_of(&s, 0);
         ck_close(reaction[0], is_fixed ? 640 / 48.0 : 640 / 80.0, 1e-6);
-        ck_close(reaction[1], 40, 1e-9);
+        ck_close(reaction[1], 40.0, 1e-9);
         ck_close(moment(&s, 2, 0.0), is_fixed ? -640 / 18.0 : -640 / 20.0, 1e-6);
         ck_close(moment(&s, 2, 4.0), is_fixed ? 80 - 640 / 18.0 : 80 - 32.0, 1e-6);
         free(reaction);
@@ -169,14 +121,14 @@ START_TEST(a_cantilever_round_a_corner_twists)
     const double I = 2.569202e6;
     mb_material(m, 210000, 1e-9, NAN);
     m->materials[0].G = 81000;
-    group(m, 1e4, I, 2 * I);
+    mb_frame_group(m, 1e4, I, 2 * I);
     mb_case(m, 0.0);
     mb_joint(m, 0, 0, 0);
     mb_joint(m, 3000, 0, 0);
     mb_joint(m, 3000, 2000, 0);
-    fix(m, 0);
-    beam(m, 0, 1, 0);
-    beam(m, 1, 2, 0);
+    mb_fix(m, 0);
+    mb_beam(m, 0, 1, 0);
+    mb_beam(m, 1, 2, 0);
     mb_load(m, 0, 2, 0, 0, -5000);
     solved s = solve(m);
     ck_assert_int_eq(s.st->n_dof, 12);
