@@ -310,11 +310,17 @@ void sct_result_judge(sct_result *r, bool at_smallest)
     else if (sct_keeps(r->utilisation) && !sct_keeps(r->utilisation_at_most))
         sct_number_format(r->verdict, sizeof r->verdict,
                           "Not decided: %s is at its limit, within the error of the analysis (%.0e of it).", what,
-                          r->utilisation_at_most - r->utilisation);
+                          sct_number_rounded_up(r->utilisation_at_most - r->utilisation));
     else if (r->outcome == SCT_NO_FEASIBLE_DESIGN)
         sct_number_format(r->verdict, sizeof r->verdict,
                           "No design found that keeps every limit; the least violation found leaves %s at %.2f.", what,
                           shown(most));
     else
         sct_number_format(r->verdict, sizeof r->verdict, "Not every limit is kept: %s is at %.2f.", what, shown(most));
+    if (r->outcome == SCT_STALLED && r->n_starts > 0) {
+        const size_t used = strlen(r->verdict);
+        sct_number_format(r->verdict + used, sizeof r->verdict - used,
+                          " The search ended short of an optimum (KKT residual %.0e after %d iterations).", r->kkt,
+                          r->starts[r->best_start].iterations);
+    }
 }

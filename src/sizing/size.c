@@ -122,19 +122,24 @@ static sct_status open_job(job *J, const sct_model *model, const sct_settings *s
     return SCT_OK;
 }
 
+/* Looks for mechanisms, then analyses: where none is found the solver must succeed. */
+static sct_status analyse_sound(job *J, const double A[])
+{
+    sct_status status = sct_mechanism_find(J->duty->solver, A, J->issues);
+    if (status != SCT_OK) return status;
+    status = sct_duty_analyse(J->duty, A);
+    if (status != SCT_MECHANISM && status != SCT_NOT_ACCURATE) return status;
+    sct_issue_add(J->issues, SCT_ERROR, (sct_where){.file = J->model->file},
+                  "internal check failed: the stiffness matrix of a sound structure has no factor (%s)",
+                  sct_status_text(status));
+    return SCT_SELF_CHECK;
+}
+
 /* Analyses the design afresh, vouches for the numbers, and makes the result. */
 static sct_status show(job *J, sct_result **result)
 {
     sct_accuracy accuracy;
-    sct_status status = sct_mechanism_find(J->duty->solver, J->design.A, J->issues);
-    if (status != SCT_OK) return status;
-    status = sct_duty_analyse(J->duty, J->design.A);
-    if (status == SCT_MECHANISM || status == SCT_NOT_ACCURATE) { /* no mechanism was found: the solver is at fault */
-        sct_issue_add(J->issues, SCT_ERROR, (sct_where){.file = J->model->file},
-                      "internal check failed: the stiffness matrix of a sound structure has no factor (%s)",
-                      sct_status_text(status));
-        return SCT_SELF_CHECK;
-    }
+    sct_status status = analyse_sound(J, J->design.A);
     if (status == SCT_OK) status = sct_accuracy_refine(J->duty->solver, &J->duty->response, &accuracy, J->issues);
     if (status != SCT_OK) return status;
     sct_duty_gather(J->duty);
@@ -588,8 +593,7 @@ static sct_status search(job *J, sct_result **result)
     double *A = sct_arena_array(J->arena, (size_t)J->model->n_groups, sizeof *A);
     if (A == NULL) return SCT_NO_MEMORY;
     middle_areas(J, A);
-    sct_status status = sct_mechanism_find(J->duty->solver, A, J->issues);
-    if (status == SCT_OK) status = sct_duty_analyse(J->duty, A);
+    sct_status status = analyse_sound(J, A);
     if (status != SCT_OK) return status;
     mark_compressed(J);
     status = find_optimum(J, why);
