@@ -115,7 +115,7 @@ typedef struct sct_member {
     sct_where where;
     int from, to, group;
     int run;               /* the run that it is a piece of, or -1 */
-    sct_member_end end[2]; /* at `from`, at `to`; all pinned: a bar */
+    sct_member_end end[2]; /* at `from`, at `to`; all pinned: a bar. In a plane model what is not in plane is pinned. */
     bool tension_only;     /* slack when it would be compressed */
     /* Local axes: 0 along the member; 1 the direction of bending in plane; 2 = 0 x 1. In a plane model 1 is 0 turned
      * by +90 degrees. In space 1 lies in the plane of 0 and `up`, towards it, turned by `roll` about 0. up = 0: z, and
@@ -157,7 +157,8 @@ typedef struct sct_bar_action {
 typedef enum sct_load_axes {
     SCT_AXES_MODEL,     /* components along x, y, z of the model, per metre of member */
     SCT_AXES_MEMBER,    /* along local axes 0, 1, 2 */
-    SCT_AXES_PROJECTED, /* as MODEL, per metre of the member's projection square to the load (per metre of plan) */
+    SCT_AXES_PROJECTED, /* as MODEL, per metre of the member's projection square to the load (per metre of plan); the
+                         * reader lets one component pass */
 } sct_load_axes;
 
 typedef struct sct_member_load {
@@ -238,4 +239,7 @@ typedef struct sct_model {
     double *mass_factor;    /* n_cases: part of each case's downward loads that vibrates as mass; NULL: none stated */
     sct_family *families;   /* the shipped ones that the model names, and its own */
 } sct_model;
+
+/** Reads any model, also one that the analysis does not carry yet: else as sct_model_parse. */
+sct_status sct_reader_parse(const char *name, const char *bytes, size_t size, sct_model **model, sct_issues *issues);
 #endif

@@ -69,7 +69,7 @@ enum {
     K_FAMILY,
     K_SECTIONS,
     K_SECTION,
-    K_SECOND_MOMENT, /* and the three behind it, in the order of sct_property */
+    K_SECOND_MOMENT, /* and the three behind it, in the order of sct_saying */
     K_SECTION_MODULUS,
     K_TORSION_CONSTANT,
     K_SHAPE,

@@ -258,6 +258,9 @@ static void add_storeys(sct_reader *r, const sct_node *along, const sct_reach *r
         if (known && upper == lower)
             sct_fields_error(&r->f, c, "joint \"%s\" stands here twice in a row; expected the next joint",
                              sct_show(sct_node_string(c)).text);
+        else if (known && lower >= 0 && !(h > 0) && !r->joint_is_wrong[lower] && !r->joint_is_wrong[upper])
+            sct_fields_error(&r->f, c,
+                             "stands at the place of the joint before it; expected joints one above the other");
         if (known && lower >= 0) {
             sct_deflection_limit *limit = &m->deflections[m->n_deflections++];
             int *pair = sct_fields_array(&r->f, 2, sizeof *pair);

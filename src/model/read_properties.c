@@ -115,7 +115,7 @@ static void read_shape(sct_reader *r, const sct_node *node, sct_group *g)
     g->J = (sct_power){shape.c_J, 2.0};
 }
 
-void sct_read_properties(sct_reader *r, const sct_node *const said[SCT_PROPERTIES], sct_group *group)
+void sct_read_properties(sct_reader *r, const sct_node *const said[SCT_SAYINGS], sct_group *group)
 {
     bool is_contradicted = false;
     for (int i = 0; i < SCT_SAYS_SHAPE; i++) {

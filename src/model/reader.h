@@ -50,9 +50,6 @@ typedef struct sct_reader {
     double slenderness_any, slenderness_compression; /* of /limits; INFINITY: none */
 } sct_reader;
 
-/** Reads any model, also one that the analysis does not carry yet: else as sct_model_parse. */
-sct_status sct_reader_parse(const char *name, const char *bytes, size_t size, sct_model **model, sct_issues *issues);
-
 /* A table of the names in an object (NULL is an empty one); NULL: out of memory, r->f.failure is set. */
 sct_names *sct_reader_names(sct_reader *r, const sct_node *object);
 /* How many things a needed section holds; 0 with an error where it is no object, empty, or longer than `most`. */
@@ -66,14 +63,14 @@ extern const sct_range SCT_AREAS;
 /** One number for both axes, or an object with one for each. */
 bool sct_read_both_axes(sct_reader *r, const sct_node *node, const sct_range *range, double v[2]);
 /* What a group with an area says of the other properties of its sections. */
-typedef enum sct_property {
+typedef enum sct_saying {
     SCT_SAYS_SECOND_MOMENT,
     SCT_SAYS_SECTION_MODULUS,
     SCT_SAYS_TORSION,
     SCT_SAYS_SHAPE,
-    SCT_PROPERTIES
-} sct_property;
-void sct_read_properties(sct_reader *r, const sct_node *const said[SCT_PROPERTIES], sct_group *group);
+    SCT_SAYINGS
+} sct_saying;
+void sct_read_properties(sct_reader *r, const sct_node *const said[SCT_SAYINGS], sct_group *group);
 void sct_read_families(sct_reader *r, const sct_node *node);
 /** The index of a family by name, taken from the shipped ones where the file has none; -1 with an error. */
 int sct_reader_family(sct_reader *r, const sct_node *node);
