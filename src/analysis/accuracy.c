@@ -152,7 +152,8 @@ static double joint_step(const sct_structure *st, size_t joint, part which, cons
 
 /* The size of changes du (n) of the displacements and dN of the forces N of case k, relative to them. Prescribed
  * elongations count as sizes too: heat may strain a truss that hardly moves, or move one without force. Moments count
- * beside forces by their span, rotations beside displacements by the mean length of a member. */
+ * beside forces by their span, rotations beside displacements by the mean length of a member. A sprung end may be all
+ * that moves. */
 static double relative_size(refinement *w, size_t k, const double N[], const double du[], const double dN[])
 {
     const sct_structure *st = w->st;
@@ -166,6 +167,7 @@ static double relative_size(refinement *w, size_t k, const double N[], const dou
         u_scale = fmax(u_scale, fabs(stretch(w, k, e)) * spring->span);
         N_scale = fmax(N_scale, fabs((double)(stiffness * stretch(w, k, e))) / spring->span);
         N_scale = fmax(N_scale, fabs(N[e]) / spring->span);
+        if (spring->mode == SCT_MODE_END) u_scale = fmax(u_scale, fabs(N[e]) / (double)stiffness * spring->span);
     }
     for (size_t j = 0; j < w->n_joints; j++)
         for (part p = MOVES; p < PARTS; p++) u_scale = fmax(u_scale, lever[p] * joint_size(st, j, p, u));
