@@ -1,11 +1,11 @@
 /* Ways in which a structure can move without resistance: what geometry shows, then what the stiffness hides.
  *
  * The stiffness is scaled to a unit diagonal by powers of two (exact), shifted a little so that a factor exists,
- * and its smallest eigenvectors are found by block inverse iteration. How stiff a vector is, is measured on the bars
- * themselves: the sum of (E A / L) (b'v)^2 has no cancellation, so a mechanism shows 1e-30 where the matrix shows
- * rounding. The stretch of the bars tells a mechanism from a soft structure.
- * Where the numbers are good, the search is done once more without the bars that are hardly stiff beside the others:
- * what they alone hold is warned about, for the answer hangs on them. */
+ * and its smallest eigenvectors are found by block inverse iteration. How stiff a vector is, is measured on the
+ * springs themselves: the sum of k (b'v)^2 has no cancellation, so a mechanism shows 1e-30 where the matrix shows
+ * rounding. The stretch of the springs tells a mechanism from a soft structure. Where the numbers are good, the search
+ * is done once more without the springs that are hardly stiff beside the others: what they alone hold is warned about,
+ * for the answer hangs on them. */
 #include "analysis/mechanism.h"
 
 #include <float.h>
@@ -13,10 +13,12 @@
 #include <stdlib.h>
 #include <string.h>
 
-#include "analysis/connectivity.h"
-#include "analysis/motion.h"
 #include "analysis/accuracy.h"
+#include "analysis/connectivity.h"
+#include "analysis/joint_motion.h"
+#include "analysis/motion.h"
 #include "base/random.h"
+#include "numerics/local_basis.h"
 #include "numerics/span.h"
 
 /* Twice as many vectors as motions are told: a model has no more mechanisms than that, as a rule, and only a whole null
@@ -26,13 +28,17 @@ enum { BLOCK = 2 * SCT_MOTIONS_TOLD, ITERATIONS = 6 };
 /* On the scaled matrix, the smallest first: with 1e-14 slender trusses keep their modes apart, with 1e-10 a factor
  * always exists. */
 static const double SHIFTS[] = {1e-14, 1e-12, 1e-10};
-static const double NO_STRETCH = 1e-8; /* largest stretch of a bar / largest displacement: below, a mechanism */
+static const double NO_STRETCH = 1e-8; /* largest stretch of a spring / largest displacement: below, a mechanism */
 /* Scaled stiffness of a mode below which it is lost in the rounding of the matrix. Above, accuracy.c judges by results.
  */
 static const double TOO_SOFT = DBL_EPSILON / 2.0;
-/* [1] of the stiffness E A / L of half of all bars: what is softer hardly holds anything. */
+/* [1] of the stiffness of half of all members: what is softer hardly holds anything. */
 static const double HARDLY_STIFF = 1e-10;
-static const double SHOWN = 0.05; /* joints that move at least this part of the largest displacement are named */
+/* [1] of E A / L: what bending is compared with at least, E I / L^3 at a slenderness of 30. */
+static const double USUAL_BENDING = 1e-3;
+
+/* What stiffnesses are comparable: against displacements; against rotations, by their span. */
+typedef enum kind { FORCE, MOMENT, KINDS } kind;
 
 typedef struct search {
     const sct_structure *st;
@@ -41,23 +47,19 @@ typedef struct search {
     const sct_pattern *pattern;
     sct_factor *factor; /* the solver's, borrowed for other values */
     sct_issues *issues;
-    int n, q;              /* unknowns, vectors */
-    bool *ground;          /* n: unknowns held because geometry has told their motion */
-    double held;           /* [N/m] stiffness that holds them */
-    double usual;          /* [N/m] half of the bars are at least this stiff */
-    double absent_below;   /* [N/m] softer bars count as absent; 0: all are there */
-    double *values;        /* of the pattern */
-    double *s;             /* n: scale, powers of two */
-    double *X;             /* n x q, column-major: orthonormal, in scaled unknowns */
-    double *size;          /* n_joints: displacement of each joint in one motion */
-    struct moving *moving; /* n_joints: the joints of one motion, largest first */
+    int n, q;            /* unknowns, vectors */
+    bool *ground;        /* n: unknowns held because geometry has told their motion */
+    double held;         /* [N/m] stiffness that holds them */
+    bool *is_rotation;   /* n */
+    double usual[KINDS]; /* [N/m] half of the members are at least this stiff */
+    bool *is_absent;     /* n_springs: hardly stiff ones, in the second search */
+    bool some_absent;
+    double *values; /* of the pattern */
+    double *s;      /* n: scale, powers of two */
+    double *X;      /* n x q, column-major: orthonormal, in scaled unknowns */
+    sct_joint_motion motion;
     int n_told;
 } search;
-
-typedef struct moving {
-    int joint;
-    long key; /* size in millionths of the largest: equal sizes stay equal, whatever the rounding */
-} moving;
 
 static void search_free(search *f)
 {
@@ -66,26 +68,35 @@ static void search_free(search *f)
     free(f->values);
     free(f->s);
     free(f->X);
-    free(f->size);
-    free(f->moving);
+    free(f->is_rotation);
+    free(f->is_absent);
+    sct_joint_motion_free(&f->motion);
 }
 
 static bool search_allocate(search *f)
 {
-    const size_t n = (size_t)f->n, n_joints = (size_t)f->st->n_joints;
+    const size_t n = (size_t)f->n;
     f->ground = calloc(n + 1, sizeof *f->ground);
     f->values = calloc((size_t)f->pattern->column[f->n] + 1, sizeof *f->values);
     f->s = malloc((n + 1) * sizeof *f->s);
     f->X = malloc((n * BLOCK + 1) * sizeof *f->X);
-    f->size = malloc((n_joints + 1) * sizeof *f->size);
-    f->moving = malloc((n_joints + 1) * sizeof *f->moving);
+    f->is_rotation = malloc((n + 1) * sizeof *f->is_rotation);
+    f->is_absent = calloc((size_t)f->st->n_springs + 1, sizeof *f->is_absent);
     f->sizes = malloc(((size_t)f->st->n_groups + 1) * sizeof *f->sizes);
     for (int g = 0; g < f->st->n_groups && f->sizes != NULL; g++) {
         f->sizes[g] = sct_properties_at_area(f->st->model, g, f->A[g]);
         if (f->st->n_springs == f->st->n_bars) f->sizes[g].P[SCT_AREA] = f->A[g];
     }
     return f->sizes != NULL && f->ground != NULL && f->values != NULL && f->s != NULL && f->X != NULL &&
-           f->size != NULL && f->moving != NULL;
+           f->is_rotation != NULL && f->is_absent != NULL && sct_joint_motion_allocate(&f->motion, f->st);
+}
+
+static void mark_rotations(search *f)
+{
+    for (int i = 0; i < f->n; i++) f->is_rotation[i] = true; /* of joints and of sprung ends */
+    for (int j = 0; j < f->st->n_joints; j++) {
+        for (int k = 0; k < f->st->n_free[j]; k++) f->is_rotation[f->st->first_dof[j] + k] = false;
+    }
 }
 
 /* [N/m] beside the others: moments against rotations by their span. */
@@ -94,9 +105,10 @@ static double compared_stiffness(const search *f, const sct_spring *spring)
     return sct_spring_stiffness(spring, f->sizes) / (spring->span * spring->span);
 }
 
-static bool is_absent(const search *f, const sct_spring *spring)
+static kind kind_of(const search *f, const sct_spring *spring)
 {
-    return compared_stiffness(f, spring) < f->absent_below;
+    if (spring->mode == SCT_MODE_SUPPORT) return spring->n_dof > 0 && f->is_rotation[spring->dof[0]] ? MOMENT : FORCE;
+    return spring->mode == SCT_MODE_AXIAL ? FORCE : MOMENT;
 }
 
 /* ---- the scaled matrix ------------------------------------------------------------------------------------------ */
@@ -127,7 +139,7 @@ static void assemble(search *f)
     for (int e = 0; e < f->st->n_springs; e++) {
         const sct_spring *spring = &f->st->springs[e];
         const double k = sct_spring_stiffness(spring, f->sizes);
-        if (is_absent(f, spring)) continue;
+        if (f->is_absent[e]) continue;
         for (int a = 0; a < spring->n_dof; a++) {
             for (int b = 0; b <= a; b++) {
                 const double product = k * spring->b[a] * spring->b[b];
@@ -144,14 +156,14 @@ static void assemble(search *f)
 
 enum { SCALED = -1, NOT_FINITE = -2 };
 
-/* Scales to a diagonal within [0.5, 2]: SCALED, NOT_FINITE, or the first unknown without stiffness. With bars absent
+/* Scales to a diagonal within [0.5, 2]: SCALED, NOT_FINITE, or the first unknown without stiffness. With springs absent
  * such unknowns are nothing new: they keep their scale. */
 static int scale(search *f)
 {
     for (int i = 0; i < f->n; i++) {
         const double K_ii = f->values[diagonal(f->pattern, i)];
         if (!(K_ii <= DBL_MAX)) return NOT_FINITE;
-        if (!(K_ii > 0.0) && !(f->absent_below > 0.0)) return i;
+        if (!(K_ii > 0.0) && !f->some_absent) return i;
         f->s[i] = K_ii > 0.0 ? ldexp(1.0, -(int)lround(0.5 * log2(K_ii))) : 1.0;
     }
     for (int j = 0; j < f->n; j++) {
@@ -187,7 +199,7 @@ static double stretch(const search *f, const sct_spring *spring, const double x[
     return sum;
 }
 
-/* G (q x q) = X' S (K + held) S X, summed bar by bar. */
+/* G (q x q) = X' S (K + held) S X, summed spring by spring. */
 static void energies(const search *f, const double X[], int q, double G[BLOCK][BLOCK])
 {
     memset(G, 0, sizeof(double[BLOCK][BLOCK]));
@@ -195,7 +207,7 @@ static void energies(const search *f, const double X[], int q, double G[BLOCK][B
         const sct_spring *spring = &f->st->springs[e];
         const double k = sct_spring_stiffness(spring, f->sizes);
         double elongation[BLOCK];
-        if (is_absent(f, spring)) continue;
+        if (f->is_absent[e]) continue;
         for (int a = 0; a < q; a++) elongation[a] = stretch(f, spring, X + (size_t)a * (size_t)f->n);
         for (int a = 0; a < q; a++) {
             for (int b = 0; b < q; b++) G[a][b] += k * elongation[a] * elongation[b];
@@ -270,109 +282,39 @@ static sct_status inverse_iteration(search *f, bool *definite)
     return status;
 }
 
-/* ---- motions in words ------------------------------------------------------------------------------------------- */
+/* ---- what is told -------------------------------------------------------------------------------------------------
+ */
 
-/* d: how a joint moves in v; returns its length. */
-static double joint_motion(const search *f, const double v[], int joint, double d[3])
+static const char *remedy(const search *f)
 {
-    sct_joint_displacement(f->st, v, NULL, joint, d);
-    return hypot(hypot(d[0], d[1]), d[2]);
+    const bool is_one = f->motion.n == 1, is_frame = sct_motion_is_frame(f->st->model);
+    if (f->motion.is_turn)
+        return ": nothing holds this rotation; hold it by a support, fix another member to the joint or let the "
+               "turning "
+               "member's end turn freely";
+    if (is_one && is_frame) return ": nothing holds it there; fix a pinned end, add a member or a support";
+    if (is_one) return ": nothing holds it there; add a member or a support";
+    return is_frame ? ": no member resists this; fix a pinned end, add a member (a diagonal) or a support"
+                    : ": no member resists this; add a member (a diagonal) or a support";
 }
 
-static int larger_first(const void *left, const void *right)
+/* Begins a message on the motion v: which joints move and how. Returns the place of the first. */
+static sct_where begin(search *f, const double v[], sct_text *text)
 {
-    const moving *a = left, *b = right;
-    if (a->key != b->key) return a->key < b->key ? 1 : -1;
-    return (a->joint > b->joint) - (a->joint < b->joint);
-}
-
-/* Lists the joints that move in v, largest first; returns how many. */
-static int list_moving(search *f, const double v[])
-{
-    double largest = 0.0;
-    int n = 0;
-    for (int j = 0; j < f->st->n_joints; j++) {
-        double d[3];
-        f->size[j] = joint_motion(f, v, j, d);
-        largest = fmax(largest, f->size[j]);
-    }
-    for (int j = 0; j < f->st->n_joints; j++) {
-        if (!(f->size[j] >= SHOWN * largest) || largest <= 0.0) continue;
-        f->moving[n++] = (moving){.joint = j, .key = lround(1e6 * f->size[j] / largest)};
-    }
-    qsort(f->moving, (size_t)n, sizeof *f->moving, larger_first);
-    return n;
-}
-
-/* Do all n listed joints move along one line? */
-static bool moves_in_one_direction(const search *f, const double v[], int n)
-{
-    double first[3];
-    joint_motion(f, v, f->moving[0].joint, first);
-    for (int i = 1; i < n; i++) {
-        const int j = f->moving[i].joint;
-        double d[3];
-        joint_motion(f, v, j, d);
-        const double along = fabs(sct_dot(3, d, first)) / (f->size[j] * f->size[f->moving[0].joint]);
-        if (along < 1.0 - 1e-9) return false; /* cosine: an angle of 4e-5 */
-    }
-    return true;
-}
-
-/* +1 or -1: the sense in which the first joint listed moves along its first component. */
-static double sense(const search *f, const double v[])
-{
-    double d[3];
-    joint_motion(f, v, f->moving[0].joint, d);
-    for (int i = 0; i < 3; i++) {
-        if (fabs(d[i]) > 1e-6 * f->size[f->moving[0].joint]) return d[i] < 0.0 ? -1.0 : 1.0;
-    }
-    return 1.0;
-}
-
-/* `joints "A", "B" and 3 more can move together in y` for the motion v; returns the first joint named. */
-static int describe(search *f, const double v[], sct_text *text)
-{
-    const int n = list_moving(f, v), shown = n < 10 ? n : 10;
-    if (n == 0) {
-        sct_text_add(text, "the structure can move");
-        return 0;
-    }
-    const bool one_direction = moves_in_one_direction(f, v, n);
-    const double sign = sense(f, v);
-    double d[3];
-    sct_text_add(text, n == 1 ? "joint " : "joints ");
-    for (int i = 0; i < shown; i++) {
-        if (i > 0) sct_text_add(text, i == n - 1 ? " and " : ", ");
-        sct_motion_name(text, f->st->model->joints[f->moving[i].joint].name);
-        if (one_direction) continue;
-        joint_motion(f, v, f->moving[i].joint, d);
-        for (int c = 0; c < 3; c++) d[c] *= sign;
-        sct_text_add(text, " in ");
-        sct_motion_direction(text, f->st->dim, d, true);
-    }
-    if (n > shown) sct_text_format(text, " and %d more", n - shown);
-    sct_text_add(text, n == 1 ? " can move" : " can move together");
-    if (one_direction) {
-        joint_motion(f, v, f->moving[0].joint, d);
-        sct_text_add(text, " in ");
-        sct_motion_direction(text, f->st->dim, d, false);
-    }
-    return f->moving[0].joint;
+    sct_joint_motion_set(&f->motion, v);
+    return f->st->model->joints[sct_joint_motion_words(&f->motion, text)].where;
 }
 
 static sct_status tell_mechanism(search *f, const double v[])
 {
     sct_text text = {0};
-    const int joint = describe(f, v, &text);
-    sct_text_add(&text, list_moving(f, v) == 1 ? ": nothing holds it there; add a member or a support"
-                                               : ": no member resists this; add a member (a diagonal) or a support");
+    const sct_where where = begin(f, v, &text);
+    sct_text_add(&text, remedy(f));
     f->n_told++;
-    return sct_motion_tell(&text, SCT_ERROR, f->st->model->joints[joint].where, f->issues) ? SCT_MECHANISM
-                                                                                           : SCT_NO_MEMORY;
+    return sct_motion_tell(&text, SCT_ERROR, where, f->issues) ? SCT_MECHANISM : SCT_NO_MEMORY;
 }
 
-/* An unknown that no bar gives any stiffness (a bar area so small that it vanishes, say). */
+/* An unknown that no spring gives any stiffness (a bar area so small that it vanishes, say). */
 static sct_status tell_no_stiffness(search *f, int dof)
 {
     memset(f->X, 0, (size_t)f->n * sizeof *f->X);
@@ -383,115 +325,86 @@ static sct_status tell_no_stiffness(search *f, int dof)
 static sct_status tell_too_soft(search *f, const double v[], double stiffness)
 {
     sct_text text = {0};
-    const int joint = describe(f, v, &text);
+    const sct_where where = begin(f, v, &text);
     sct_text_format(&text, " almost without resistance (%.1g of the stiffness of a joint): no answer can be trusted; ",
                     stiffness);
     sct_stiffness_words(f->st, f->A, &text);
-    return sct_motion_tell(&text, SCT_ERROR, f->st->model->joints[joint].where, f->issues) ? SCT_NOT_ACCURATE
-                                                                                           : SCT_NO_MEMORY;
+    return sct_motion_tell(&text, SCT_ERROR, where, f->issues) ? SCT_NOT_ACCURATE : SCT_NO_MEMORY;
 }
 
-/* A motion v (in unknowns) that only absent bars resist: the one that stretches most is named. */
+static int joint_of(const sct_structure *st, int dof)
+{
+    int j = 0;
+    while (j < st->n_joints - 1 && st->first_dof[j] + st->n_free[j] + st->n_turns[j] <= dof) j++;
+    return j;
+}
+
+/* `member "A" in bending`, `the spring support of joint "B"`, ... */
+static void add_spring(const search *f, const sct_spring *spring, sct_text *text)
+{
+    const sct_model *model = f->st->model;
+    if (spring->mode == SCT_MODE_SUPPORT) {
+        sct_text_add(text, "the spring support of joint ");
+        sct_motion_name(text, model->joints[joint_of(f->st, spring->dof[0])].name);
+        return;
+    }
+    const sct_bar *bar = &f->st->bars[spring->bar];
+    sct_text_add(text, spring->mode == SCT_MODE_END ? "the sprung end of member " : "member ");
+    sct_motion_name(text, model->members[spring->bar].name);
+    if (spring->mode == SCT_MODE_END) {
+        sct_text_add(text, " at joint ");
+        sct_motion_name(text, model->joints[spring->end == 0 ? bar->from : bar->to].name);
+    } else if (spring->mode != SCT_MODE_AXIAL) {
+        sct_text_add(text, spring->mode == SCT_MODE_TWIST ? " in twist" : " in bending");
+    }
+}
+
+/* A motion v (in unknowns) that only absent springs resist: the one that stretches most is named. */
 static sct_status tell_hardly_held(search *f, const double v[])
 {
     double most = 0.0;
-    int hardly = -1;
+    const sct_spring *hardly = NULL;
     for (int e = 0; e < f->st->n_springs; e++) {
         const sct_spring *spring = &f->st->springs[e];
         double elongation = 0.0;
-        if (!is_absent(f, spring)) continue;
+        if (!f->is_absent[e]) continue;
         for (int i = 0; i < spring->n_dof; i++) elongation += spring->b[i] * v[spring->dof[i]];
         elongation *= spring->span;
         if (!(fabs(elongation) > most)) continue;
         most = fabs(elongation);
-        hardly = e;
+        hardly = spring;
     }
-    if (hardly < 0) return SCT_OK;
+    if (hardly == NULL) return SCT_OK;
     sct_text text = {0};
-    const int joint = describe(f, v, &text);
-    sct_text_add(&text, " almost without resistance: what resists is as soft as member ");
-    sct_motion_name(&text, f->st->model->members[f->st->springs[hardly].bar < 0 ? 0 : f->st->springs[hardly].bar].name);
-    sct_text_format(&text, ", with %.1g of the stiffness (E A / L) of most members; make them more alike",
-                    compared_stiffness(f, &f->st->springs[hardly]) / f->usual);
+    const kind k = kind_of(f, hardly);
+    const sct_where where = begin(f, v, &text);
+    sct_text_add(&text, " almost without resistance: what resists is as soft as ");
+    add_spring(f, hardly, &text);
+    sct_text_format(&text, ", with %.1g of the stiffness (%s) of most members; make them more alike",
+                    compared_stiffness(f, hardly) / f->usual[k], k == FORCE ? "E A / L" : "E I / L^3");
     f->n_told++;
-    return sct_motion_tell(&text, SCT_WARNING, f->st->model->joints[joint].where, f->issues) ? SCT_OK : SCT_NO_MEMORY;
+    return sct_motion_tell(&text, SCT_WARNING, where, f->issues) ? SCT_OK : SCT_NO_MEMORY;
 }
 
 /* ---- the verdict ------------------------------------------------------------------------------------------------- */
 
-/* Gauss-Jordan with full pivoting over m vectors of n entries: the same motions, each as local as it can be, so that
- * independent mechanisms are told apart. */
-static void localise(int n, int m, double V[])
+/* Largest stretch of a spring over largest displacement of a joint, of a vector in scaled unknowns. */
+static double relative_stretch(search *f, const double x[], double v[])
 {
-    for (int done = 0; done < m; done++) {
-        double best = 0.0;
-        int r = done, c = 0;
-        for (int k = done; k < m; k++) {
-            for (int i = 0; i < n; i++) {
-                const double value = fabs(V[(size_t)k * (size_t)n + (size_t)i]);
-                if (!(value > best * (1.0 + 1e-9))) continue; /* ties: the first unknown */
-                best = value;
-                r = k;
-                c = i;
-            }
-        }
-        if (!(best > 0.0)) return;
-        double *top = V + (size_t)done * (size_t)n, *pivot = V + (size_t)r * (size_t)n;
-        for (int i = 0; i < n; i++) {
-            const double swap = top[i];
-            top[i] = pivot[i];
-            pivot[i] = swap;
-        }
-        const double scale_by = 1.0 / top[c];
-        for (int i = 0; i < n; i++) top[i] *= scale_by;
-        for (int k = 0; k < m; k++) {
-            double *v = V + (size_t)k * (size_t)n;
-            const double factor = v[c];
-            if (k == done) continue;
-            for (int i = 0; i < n; i++) v[i] -= factor * top[i];
-        }
-    }
-}
-
-/* The first unknown that moves in v, where pivots are 1. */
-static int first_moving(int n, const double v[])
-{
-    int i = 0;
-    while (i < n - 1 && !(fabs(v[i]) >= SHOWN)) i++;
-    return i;
-}
-
-/* Brings m localised vectors into the order of their first unknowns: that of the joints in the file. */
-static void sort_motions(int n, int m, double V[])
-{
-    for (int done = 0; done < m; done++) {
-        int best = done;
-        for (int k = done + 1; k < m; k++) {
-            if (first_moving(n, V + (size_t)k * (size_t)n) < first_moving(n, V + (size_t)best * (size_t)n)) best = k;
-        }
-        double *a = V + (size_t)done * (size_t)n, *b = V + (size_t)best * (size_t)n;
-        for (int i = 0; i < n && best != done; i++) {
-            const double swap = a[i];
-            a[i] = b[i];
-            b[i] = swap;
-        }
-    }
-}
-
-/* Largest stretch of a bar over largest displacement of a joint, of a vector in scaled unknowns. */
-static double relative_stretch(const search *f, const double x[], double v[])
-{
-    double most = 0.0, largest = 0.0;
+    double most = 0.0;
     for (int e = 0; e < f->st->n_springs; e++) {
         const sct_spring *spring = &f->st->springs[e];
-        if (!is_absent(f, spring)) most = fmax(most, fabs(stretch(f, spring, x)) * spring->span);
+        if (!f->is_absent[e]) most = fmax(most, fabs(stretch(f, spring, x)) * spring->span);
     }
     for (int i = 0; i < f->n; i++) v[i] = f->s[i] * x[i];
-    for (int j = 0; j < f->st->n_joints; j++) {
-        double d[3];
-        largest = fmax(largest, joint_motion(f, v, j, d));
-    }
-    return largest > 0.0 ? most / largest : 1.0;
+    sct_joint_motion_set(&f->motion, v);
+    return f->motion.largest > 0.0 ? most / f->motion.largest : 1.0;
+}
+
+/* What makes an unknown comparable: a rotation is beside displacements by the lever. */
+static double beside(const search *f, int i)
+{
+    return f->is_rotation[i] ? f->st->lever : 1.0;
 }
 
 /* Moves the vectors of X that are mechanisms to its front, in unknowns, each as local as it can be, in the order of the
@@ -502,16 +415,18 @@ static int gather_mechanisms(search *f, const bool is_mechanism[])
     for (int k = 0; k < f->q; k++) {
         double *to = f->X + (size_t)n_free * (size_t)f->n;
         if (!is_mechanism[k]) continue;
-        for (int i = 0; i < f->n; i++) to[i] = f->s[i] * f->X[(size_t)k * (size_t)f->n + (size_t)i];
+        for (int i = 0; i < f->n; i++) to[i] = beside(f, i) * (f->s[i] * f->X[(size_t)k * (size_t)f->n + (size_t)i]);
         n_free++;
     }
-    localise(f->n, n_free, f->X);
-    sort_motions(f->n, n_free, f->X);
+    sct_local_basis(f->n, n_free, f->X, SCT_MOTION_SHOWN);
+    for (int k = 0; k < n_free; k++) {
+        for (int i = 0; i < f->n; i++) f->X[(size_t)k * (size_t)f->n + (size_t)i] /= beside(f, i);
+    }
     return n_free;
 }
 
 /* Judges the q vectors of X: tells the mechanisms; else the softest mode, when it is too soft or the matrix has no
- * factor. With bars absent only mechanisms count, as warnings. */
+ * factor. With springs absent only mechanisms count, as warnings. */
 static sct_status judge(search *f, bool definite, double v[])
 {
     double G[BLOCK][BLOCK];
@@ -532,7 +447,7 @@ static sct_status judge(search *f, bool definite, double v[])
     }
     if (soft >= 0) relative_stretch(f, f->X + (size_t)soft * (size_t)f->n, v); /* kept in v: X is overwritten now */
     const int n_free = gather_mechanisms(f, is_mechanism);
-    const bool hardly = f->absent_below > 0.0;
+    const bool hardly = f->some_absent;
     sct_status status = SCT_OK;
     for (int k = 0; k < n_free && f->n_told < SCT_MOTIONS_TOLD && status != SCT_NO_MEMORY; k++) {
         const double *motion = f->X + (size_t)k * (size_t)f->n;
@@ -575,20 +490,32 @@ static int by_size(const void *left, const void *right)
     return (*a > *b) - (*a < *b);
 }
 
-/* Warns of what only bars hold that are hardly stiff beside the usual one. */
+/* What half of the springs of a kind that members have is at least; k: scratch, n_springs. */
+static double median(const search *f, kind which, double k[])
+{
+    size_t n = 0;
+    for (int e = 0; e < f->st->n_springs; e++) {
+        const sct_spring *spring = &f->st->springs[e];
+        if (spring->group >= 0 && kind_of(f, spring) == which) k[n++] = compared_stiffness(f, spring);
+    }
+    qsort(k, n, sizeof *k, by_size);
+    return n > 0 ? k[n / 2] : 0.0;
+}
+
+/* Warns of what only springs hold that are hardly stiff beside the usual one. */
 static sct_status search_hardly_held(search *f)
 {
-    const size_t n = (size_t)f->st->n_bars; /* axial ones tell what is usual */
-    double *k = malloc((n + 1) * sizeof *k);
+    double *k = malloc(((size_t)f->st->n_springs + 1) * sizeof *k);
     if (k == NULL) return SCT_NO_MEMORY;
-    for (size_t e = 0; e < n; e++) k[e] = compared_stiffness(f, &f->st->springs[e]);
-    qsort(k, n, sizeof *k, by_size);
-    f->usual = n > 0 ? k[n / 2] : 0.0;
-    const bool any = n > 0 && k[0] < HARDLY_STIFF * f->usual;
+    f->usual[FORCE] = median(f, FORCE, k);
+    f->usual[MOMENT] = fmax(median(f, MOMENT, k), USUAL_BENDING * f->usual[FORCE]);
     free(k);
-    if (!any) return SCT_OK;
-    f->absent_below = HARDLY_STIFF * f->usual;
-    return search_stiffness(f);
+    for (int e = 0; e < f->st->n_springs; e++) {
+        const sct_spring *spring = &f->st->springs[e];
+        f->is_absent[e] = compared_stiffness(f, spring) < HARDLY_STIFF * f->usual[kind_of(f, spring)];
+        f->some_absent = f->some_absent || f->is_absent[e];
+    }
+    return f->some_absent ? search_stiffness(f) : SCT_OK;
 }
 
 sct_status sct_mechanism_find(sct_solver *solver, const double A[], sct_issues *issues)
@@ -599,8 +526,8 @@ sct_status sct_mechanism_find(sct_solver *solver, const double A[], sct_issues *
     f.q = f.n < BLOCK ? f.n : BLOCK;
     sct_solver_stiffness(solver, &f.pattern);
     sct_status status = search_allocate(&f) ? SCT_OK : SCT_NO_MEMORY;
-    if (status == SCT_OK && f.st->n_springs == f.st->n_bars)
-        status = sct_connectivity_check(f.st, f.ground, &n_found, &f.n_told, issues);
+    if (status == SCT_OK) mark_rotations(&f);
+    if (status == SCT_OK) status = sct_connectivity_check(f.st, f.ground, &n_found, &f.n_told, issues);
     if (status == SCT_OK && f.n > 0) status = search_stiffness(&f);
     if (status == SCT_OK && f.n > 0 && n_found == 0) status = search_hardly_held(&f);
     search_free(&f);

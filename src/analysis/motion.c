@@ -45,6 +45,18 @@ void sct_motion_name(sct_text *text, const char *name)
     sct_text_add(text, "\"");
 }
 
+bool sct_motion_is_frame(const sct_model *model)
+{
+    const int n_turns = model->dimensions == 2 ? 1 : SCT_TURNS;
+    for (int e = 0; e < model->n_members; e++) {
+        for (int r = 0; r < n_turns; r++) {
+            const sct_member_end *end = model->members[e].end;
+            if (end[0].fixity[r] != SCT_PINNED || end[1].fixity[r] != SCT_PINNED) return true;
+        }
+    }
+    return false;
+}
+
 bool sct_motion_tell(sct_text *text, sct_severity severity, sct_where where, sct_issues *issues)
 {
     const bool whole = !text->failed && text->data != NULL;

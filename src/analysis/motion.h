@@ -17,6 +17,10 @@ void sct_motion_point(sct_text *text, const sct_model *model, const double at[3]
 /** The name in quotes, control characters escaped, cut at 64 characters. */
 void sct_motion_name(sct_text *text, const char *name);
 
+/** Has the model members whose ends are not all pinned (in a plane model: for bending in plane)? Then it is called a
+ * frame. */
+bool sct_motion_is_frame(const sct_model *model);
+
 /** Adds the text as one issue at `where` and frees it; false when memory ran out while it was written. */
 bool sct_motion_tell(sct_text *text, sct_severity severity, sct_where where, sct_issues *issues);
 #endif
