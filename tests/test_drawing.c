@@ -184,6 +184,7 @@ static truss *howe(double peak)
     sag(t, 24, 0.0312);
     t->deflections[0] = (sct_deflection_result){.limit = 0,
                                                 .joint = 4,
+                                                .from = -1,
                                                 .combination = 3,
                                                 .direction = {0, 1, 0},
                                                 .u = -0.0312,

@@ -6,6 +6,7 @@
 
 #include "base/arena.h"
 #include "base/names.h"
+#include "report/csv_bent.h"
 #include "report/shown.h"
 
 /* What a record is about: a member, or a total over groups. */
@@ -18,7 +19,7 @@ typedef struct record {
     double length, mass;
 } record;
 
-static void add_text(sct_text *out, const char *raw)
+void sct_csv_text(sct_text *out, const char *raw)
 {
     const char c = raw[strspn(raw, " ")];
     const bool is_guarded = raw[0] == '\'' || (c != '\0' && strchr("=+-@\t\r\n", c) != NULL);
@@ -41,7 +42,7 @@ static void add_shown(sct_text *out, const record *rec, double value, sct_displa
 
 static void add_combination(sct_text *out, const record *rec, int combination)
 {
-    if (combination >= 0) add_text(out, rec->r->combinations[combination]);
+    if (combination >= 0) sct_csv_text(out, rec->r->combinations[combination]);
 }
 
 /* One function per column; `unit` is SCT_SHOWN_COUNT where the column has none. Columns that make sense for single
@@ -50,23 +51,23 @@ typedef void write_field(sct_text *out, const record *rec);
 
 static void field_record(sct_text *out, const record *rec)
 {
-    add_text(out, rec->kind);
+    sct_csv_text(out, rec->kind);
 }
 static void field_mark(sct_text *out, const record *rec)
 {
-    if (rec->member != NULL) add_text(out, rec->member->name);
+    if (rec->member != NULL) sct_csv_text(out, rec->member->name);
 }
 static void field_group(sct_text *out, const record *rec)
 {
-    if (rec->member != NULL) add_text(out, rec->group->name);
+    if (rec->member != NULL) sct_csv_text(out, rec->group->name);
 }
 static void field_from(sct_text *out, const record *rec)
 {
-    if (rec->member != NULL) add_text(out, rec->r->joints[rec->member->from].name);
+    if (rec->member != NULL) sct_csv_text(out, rec->r->joints[rec->member->from].name);
 }
 static void field_to(sct_text *out, const record *rec)
 {
-    if (rec->member != NULL) add_text(out, rec->r->joints[rec->member->to].name);
+    if (rec->member != NULL) sct_csv_text(out, rec->r->joints[rec->member->to].name);
 }
 static bool is_total_of_material(const record *rec)
 {
@@ -75,7 +76,7 @@ static bool is_total_of_material(const record *rec)
 static void field_section(sct_text *out, const record *rec)
 {
     if (rec->group != NULL && rec->group->section != NULL && !is_total_of_material(rec))
-        add_text(out, rec->group->section);
+        sct_csv_text(out, rec->group->section);
 }
 static void field_area(sct_text *out, const record *rec)
 {
@@ -83,7 +84,7 @@ static void field_area(sct_text *out, const record *rec)
 }
 static void field_material(sct_text *out, const record *rec)
 {
-    if (rec->group != NULL) add_text(out, rec->group->material);
+    if (rec->group != NULL) sct_csv_text(out, rec->group->material);
 }
 static void field_length(sct_text *out, const record *rec)
 {
@@ -108,7 +109,7 @@ static void field_combination(sct_text *out, const record *rec)
 }
 static void field_check(sct_text *out, const record *rec)
 {
-    if (rec->member != NULL) add_text(out, sct_check_text(rec->member->check));
+    if (rec->member != NULL) sct_csv_text(out, sct_check_text(rec->member->check));
 }
 static void field_force(sct_text *out, const record *rec)
 {
@@ -178,15 +179,15 @@ static const struct {
 };
 enum { N_COLUMNS = (int)(sizeof COLUMNS / sizeof COLUMNS[0]) };
 
-static void add_head(sct_text *out, bool us_customary)
+static void add_head(sct_text *out, const sct_result *r)
 {
     for (int i = 0; i < N_COLUMNS; i++) {
         if (i > 0) sct_text_add(out, ",");
         sct_text_add(out, COLUMNS[i].head);
-        if (COLUMNS[i].unit != SCT_SHOWN_COUNT) {
-            sct_text_format(out, " [%s]", sct_shown_unit(COLUMNS[i].unit, us_customary));
-        }
+        if (COLUMNS[i].unit != SCT_SHOWN_COUNT)
+            sct_text_format(out, " [%s]", sct_shown_unit(COLUMNS[i].unit, r->us_customary));
     }
+    sct_csv_bent_head(out, r);
     sct_text_add(out, "\r\n");
 }
 
@@ -196,6 +197,7 @@ static void add_record(sct_text *out, const record *rec)
         if (i > 0) sct_text_add(out, ",");
         COLUMNS[i].write(out, rec);
     }
+    sct_csv_bent_member(out, rec->r, rec->member);
     sct_text_add(out, "\r\n");
 }
 
@@ -203,8 +205,29 @@ static void add_members(sct_text *out, const sct_result *r)
 {
     for (int m = 0; m < r->n_members; m++) {
         const sct_member_result *member = &r->members[m];
-        add_record(out, &(record){r, "member", member, &r->groups[member->group], 1, member->L, member->mass});
+        add_record(out, &(record){.r = r,
+                                  .kind = "member",
+                                  .member = member,
+                                  .group = &r->groups[member->group],
+                                  .count = 1,
+                                  .length = member->L,
+                                  .mass = member->mass});
     }
+}
+
+/* Two records for each member and combination: in the first columns which member, in the last ones the numbers. */
+static void add_ends(sct_text *out, const sct_result *r)
+{
+    for (int m = 0; m < r->n_members; m++)
+        for (int end = 0; end < 2 * r->n_combinations; end++) {
+            sct_text_add(out, "end,");
+            sct_csv_text(out, r->members[m].name);
+            sct_text_add(out, ",");
+            sct_csv_text(out, r->groups[r->members[m].group].name);
+            for (int i = 3; i < N_COLUMNS; i++) sct_text_add(out, ",");
+            sct_csv_bent_end(out, r, end / 2, m, end % 2);
+            sct_text_add(out, "\r\n");
+        }
 }
 
 /* What a total is over, as one string: the material, or the section with its material. NULL: a free area, which is
@@ -233,7 +256,7 @@ static bool sum_totals(const sct_result *r, bool by_material, sct_arena *arena, 
         int at = key != NULL ? sct_names_find(names, key) : -1;
         if (at < 0) {
             at = (*n)++;
-            totals[at] = (record){r, by_material ? "material" : "section", NULL, group, 0, 0, 0};
+            totals[at] = (record){.r = r, .kind = by_material ? "material" : "section", .group = group};
             if (key != NULL && !sct_names_put(names, key, at)) return false;
         }
         totals[at].count += group->n_members;
@@ -261,28 +284,30 @@ static bool add_totals(sct_text *out, const sct_result *r, bool by_material)
 
 static void add_grand_total(sct_text *out, const sct_result *r)
 {
-    record rec = {r, "total", NULL, NULL, r->n_members, 0, r->mass};
+    record rec = {.r = r, .kind = "total", .count = r->n_members, .mass = r->mass};
     for (int g = 0; g < r->n_groups; g++) rec.length += r->groups[g].length;
     add_record(out, &rec);
 }
 
 /* A record of words: they stand in the second column. */
-static void add_words(sct_text *out, const char *kind, const char *words)
+static void add_words(sct_text *out, const sct_result *r, const char *kind, const char *words)
 {
     sct_text_add(out, kind);
     sct_text_add(out, ",");
-    add_text(out, words);
+    sct_csv_text(out, words);
     for (int i = 2; i < N_COLUMNS; i++) sct_text_add(out, ",");
+    sct_csv_bent_member(out, r, NULL);
     sct_text_add(out, "\r\n");
 }
 
 sct_status sct_schedule_csv(const sct_result *result, sct_text *out)
 {
-    add_head(out, result->us_customary);
+    add_head(out, result);
     add_members(out, result);
     const bool done = add_totals(out, result, false) && add_totals(out, result, true);
     add_grand_total(out, result);
-    for (int i = 0; i < result->n_warnings; i++) add_words(out, "warning", result->warnings[i]);
-    add_words(out, "caution", SCT_CAUTION);
+    if (result->has_bent && result->ends != NULL) add_ends(out, result);
+    for (int i = 0; i < result->n_warnings; i++) add_words(out, result, "warning", result->warnings[i]);
+    add_words(out, result, "caution", SCT_CAUTION);
     return !done || out->failed ? SCT_NO_MEMORY : SCT_OK;
 }

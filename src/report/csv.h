@@ -7,7 +7,8 @@
 
 /**
  * Appends the schedule: a head, one record per member, totals by section and by material, the grand total, and the
- * caution as last record. The column `record` tells which: member, section, material, total, caution.
+ * caution as last record. The column `record` tells which: member, section, material, total, warning, caution. Frames
+ * have more columns and, behind the total, a record `end` for each end of each member in each combination.
  *
  * RFC 4180: lines end in CR LF, every record has as many fields as the head, UTF-8, '.' as decimal mark. Units stand in
  * the head and follow result->us_customary. Tension is positive. A field without value is empty.

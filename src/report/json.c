@@ -1,23 +1,37 @@
 /* The whole result as JSON: one line for each thing in a list. */
 #include "json.h"
 
+#include "report/json_bent.h"
 #include "report/json_text.h"
+#include "report/supports.h"
 
 static const char *combination_name(const sct_result *r, int combination)
 {
     return combination >= 0 ? r->combinations[combination] : NULL;
 }
 
-/* The vectors of one joint from a table n_combinations x n_joints x 3. */
-static void vectors_by_combination(sct_json *w, const char *name, const sct_result *r, const double *table, int joint)
+/* The vectors of one joint from a table n_combinations x n_joints x 3, of which `n` components count. */
+static void components_by_combination(sct_json *w, const char *name, const sct_result *r, const double *table,
+                                      int joint, int n)
 {
     sct_json_key(w, name);
     sct_json_begin(w, "[");
     for (int c = 0; c < r->n_combinations; c++) {
         sct_json_entry(w);
-        sct_json_vector(w, &table[((size_t)c * (size_t)r->n_joints + (size_t)joint) * 3], r->dimensions);
+        sct_json_vector(w, &table[((size_t)c * (size_t)r->n_joints + (size_t)joint) * 3], n);
     }
     sct_json_end(w, "]");
+}
+
+static void vectors_by_combination(sct_json *w, const char *name, const sct_result *r, const double *table, int joint)
+{
+    components_by_combination(w, name, r, table, joint, r->dimensions);
+}
+
+/* About all three axes, in a plane model too: it turns about z. */
+static void moments_by_combination(sct_json *w, const char *name, const sct_result *r, const double *table, int joint)
+{
+    if (r->has_bent) components_by_combination(w, name, r, table, joint, 3);
 }
 
 static void add_evidence(sct_json *w, const sct_result *r)
@@ -113,6 +127,10 @@ static void add_groups(sct_json *w, const sct_result *r)
         sct_json_whole(w, "members", group->n_members);
         sct_json_number(w, "area_m2", group->A);
         sct_json_both_axes(w, "second_moment_m4", group->I);
+        if (r->has_bent) {
+            sct_json_both_axes(w, "section_modulus_m3", group->W);
+            sct_json_number(w, "torsion_constant_m4", group->J);
+        }
         sct_json_number(w, "length_m", group->length);
         sct_json_number(w, "unit_mass_kg_per_m", group->unit_mass);
         sct_json_number(w, "mass_kg", group->mass);
@@ -160,6 +178,7 @@ static void add_members(sct_json *w, const sct_result *r)
         sct_json_number(w, "smallest_force_N", member->N_min);
         sct_json_string(w, "smallest_force_in", combination_name(r, member->N_min_in));
         add_member_forces(w, r, m);
+        if (r->has_bent) sct_json_bent_member(w, r, m);
         sct_json_end(w, "}");
     }
     sct_json_end(w, "]");
@@ -177,6 +196,8 @@ static void add_joints(sct_json *w, const sct_result *r)
         sct_json_vector(w, r->joints[j].at, r->dimensions);
         vectors_by_combination(w, "displacements_m", r, r->u, j);
         vectors_by_combination(w, "loads_N", r, r->load, j);
+        moments_by_combination(w, "rotations_rad", r, r->turn, j);
+        moments_by_combination(w, "moment_loads_Nm", r, r->moment_load, j);
         sct_json_end(w, "}");
     }
     sct_json_end(w, "]");
@@ -188,7 +209,7 @@ static void add_reactions(sct_json *w, const sct_result *r)
     sct_json_begin(w, "[");
     for (int j = 0; j < r->n_joints; j++) {
         const sct_joint_result *joint = &r->joints[j];
-        if (joint->n_held == 0) continue;
+        if (!sct_support_gives_any(r, j)) continue;
         sct_json_entry(w);
         sct_json_begin(w, "{");
         sct_json_string(w, "joint", joint->name);
@@ -200,6 +221,7 @@ static void add_reactions(sct_json *w, const sct_result *r)
         }
         sct_json_end(w, "]");
         vectors_by_combination(w, "forces_N", r, r->reaction, j);
+        moments_by_combination(w, "moments_Nm", r, r->moment, j);
         sct_json_end(w, "}");
     }
     sct_json_end(w, "]");
@@ -215,6 +237,7 @@ static void add_deflections(sct_json *w, const sct_result *r)
         sct_json_begin(w, "{");
         sct_json_whole(w, "limit", d->limit);
         sct_json_string(w, "joint", r->joints[d->joint].name);
+        if (r->has_bent && d->from >= 0) sct_json_string(w, "relative_to", r->joints[d->from].name);
         sct_json_string(w, "combination", combination_name(r, d->combination));
         sct_json_key(w, "direction");
         sct_json_vector(w, d->direction, r->dimensions);
@@ -273,6 +296,7 @@ sct_status sct_result_json(const sct_result *result, sct_text *out)
     add_groups(&w, result);
     add_members(&w, result);
     add_deflections(&w, result);
+    if (result->has_bent) sct_json_bows(&w, result);
     add_reactions(&w, result);
     add_joints(&w, result);
     sct_json_end(&w, "}");

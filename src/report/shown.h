@@ -14,7 +14,9 @@
     X(SCT_SHOWN_AREA, "mm2", 1e-6, 0, "in2", 6.4516e-4, 2, 4)                                                          \
     X(SCT_SHOWN_SECOND_MOMENT, "mm4", 1e-12, 0, "in4", 4.162314256e-7, 2, 4)                                           \
     X(SCT_SHOWN_MASS, "kg", 1, 1, "lb", 0.45359237, 1, 3)                                                              \
-    X(SCT_SHOWN_UNIT_MASS, "kg/m", 1, 2, "lb/ft", 1.4881639435695538, 2, 3)
+    X(SCT_SHOWN_UNIT_MASS, "kg/m", 1, 2, "lb/ft", 1.4881639435695538, 2, 3)                                            \
+    X(SCT_SHOWN_MOMENT, "kNm", 1e3, 1, "kip ft", 1355.8179483314004, 2, 0)                                             \
+    X(SCT_SHOWN_SECTION_MODULUS, "mm3", 1e-9, 0, "in3", 1.6387064e-5, 2, 4)
 
 #define SCT_SHOWN_NAME(name, ...) name,
 typedef enum sct_display { SCT_SHOWN_LIST(SCT_SHOWN_NAME) SCT_SHOWN_COUNT } sct_display;

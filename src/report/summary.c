@@ -5,12 +5,11 @@
 #include <string.h>
 
 #include "base/number.h"
-#include "report/shown.h"
-#include "report/table.h"
+#include "report/page.h"
+#include "report/summary_bent.h"
+#include "report/supports.h"
 
 enum {
-    PAGE_COLUMNS = 96,
-    NAME_COLUMNS = 24,
     MOST_GROUPS = 40,
     MOST_DEFLECTIONS = 6,
     MOST_PRICES = 8,
@@ -19,143 +18,38 @@ enum {
 };
 static const double SAME_MASS = 1e-5; /* relative: starts this near ended at the same optimum */
 
-typedef struct page {
-    const sct_result *r;
-    bool colour, us;
-    sct_text *out;
-} page;
-
-static void heading(const page *p, const char *words)
-{
-    sct_text_add(p->out, "\n");
-    sct_text_ink(p->out, words, SCT_INK_HEAD, p->colour);
-    sct_text_add(p->out, "\n");
-}
-
-static void name_cell(sct_table *t, const char *name)
-{
-    sct_text_plain(&t->cells, name, NAME_COLUMNS);
-    sct_table_cell(t);
-}
-
-static void combination_cell(const page *p, sct_table *t, int combination)
-{
-    name_cell(t, combination >= 0 ? p->r->combinations[combination] : "");
-}
-
-static void shown_cell(const page *p, sct_table *t, double value, sct_display quantity)
-{
-    sct_text_shown(&t->cells, value, quantity, p->us);
-    sct_table_cell(t);
-}
-
-/* Forces carry their sign, + too; a rounded zero has none. */
-static void signed_cell(const page *p, sct_table *t, double value, sct_display quantity)
-{
-    sct_text shown = {0};
-    sct_text_shown(&shown, value, quantity, p->us);
-    if (!shown.failed && shown.data != NULL) {
-        if (value > 0 && shown.data[strspn(shown.data, "0.")] != '\0') sct_text_add(&t->cells, "+");
-        sct_text_add(&t->cells, shown.data);
-    }
-    t->cells.failed = t->cells.failed || shown.failed;
-    sct_text_free(&shown);
-    sct_table_cell(t);
-}
-
-static void utilisation_cell(sct_table *t, double utilisation)
-{
-    sct_text_utilisation(&t->cells, utilisation);
-    sct_table_cell(t);
-}
-
-static void unit_head(const page *p, sct_table *t, const char *words, sct_display quantity)
-{
-    sct_text_format(&t->cells, "%s%s%s", words, *words != '\0' ? " " : "", sct_shown_unit(quantity, p->us));
-    sct_table_cell(t);
-}
-
-static void finish_table(const page *p, sct_table *t)
-{
-    sct_table_write(t, p->colour, p->out);
-    sct_text_free(&t->cells);
-}
-
-static void say_left_out(const page *p, int n, const char *where)
-{
-    if (n > 0) sct_text_format(p->out, "  ... and %d more in %s\n", n, where);
-}
-
-/* Words broken between blanks to lines of PAGE_COLUMNS, each after `indent` blanks. */
-static void wrapped(sct_text *out, const char *words, int indent)
-{
-    int column = 0;
-    while (*words != '\0') {
-        const size_t length = strcspn(words, " ");
-        int width = 0;
-        for (size_t i = 0; i < length; i++) width += ((unsigned char)words[i] & 0xC0) != 0x80;
-        if (column > 0 && column + 1 + width > PAGE_COLUMNS) {
-            sct_text_add(out, "\n");
-            column = 0;
-        }
-        if (column == 0)
-            sct_text_format(out, "%*s", indent, "");
-        else
-            sct_text_add(out, " ");
-        sct_text_bytes(out, words, length);
-        column = (column == 0 ? indent : column + 1) + width;
-        words += length + strspn(words + length, " ");
-    }
-    sct_text_add(out, "\n");
-}
-
-/* The same for words that may hold names and may have been cut in a character. */
-static void wrapped_plain(sct_text *out, const char *words, int indent)
-{
-    sct_text whole = {0}, plain = {0};
-    sct_text_bytes(&whole, words, sct_whole_characters(words));
-    if (!whole.failed) sct_text_plain(&plain, whole.data, 0);
-    sct_text_add(&plain, "");
-    if (whole.failed || plain.failed)
-        out->failed = true;
-    else
-        wrapped(out, plain.data, indent);
-    sct_text_free(&whole);
-    sct_text_free(&plain);
-}
-
-static void add_verdict(const page *p)
+static void add_verdict(const sct_page *p)
 {
     const sct_result *r = p->r;
     sct_text verdict = {0};
-    wrapped_plain(&verdict, r->verdict[0] != '\0' ? r->verdict : sct_outcome_text(r->outcome), 0);
+    sct_page_wrapped_plain(&verdict, r->verdict[0] != '\0' ? r->verdict : sct_outcome_text(r->outcome), 0);
     if (verdict.failed)
         p->out->failed = true;
     else
         sct_text_ink(p->out, verdict.data, r->kept ? SCT_INK_GOOD : SCT_INK_BAD, p->colour);
     sct_text_free(&verdict);
     if (r->title[0] == '\0') return;
-    sct_text_plain(p->out, r->title, PAGE_COLUMNS);
+    sct_text_plain(p->out, r->title, SCT_PAGE_COLUMNS);
     sct_text_add(p->out, "\n");
 }
 
 /* Three cells: the check, its member, its combination. */
-static void governed_by(const page *p, sct_table *t, const sct_group_result *group)
+static void governed_by(const sct_page *p, sct_table *t, const sct_group_result *group)
 {
     const sct_member_result *worst = group->worst_member >= 0 ? &p->r->members[group->worst_member] : NULL;
     if (worst != NULL && worst->utilisation > 1) sct_text_add(&t->cells, "FAILS ");
     sct_table_words(t, worst != NULL ? sct_check_text(worst->check) : "");
-    name_cell(t, worst != NULL && worst->check != SCT_CHECK_NONE ? worst->name : "");
-    combination_cell(p, t, worst != NULL ? worst->combination : -1);
+    sct_page_name_cell(t, worst != NULL && worst->check != SCT_CHECK_NONE ? worst->name : "");
+    sct_page_combination_cell(p, t, worst != NULL ? worst->combination : -1);
 }
 
-static void group_row(const page *p, sct_table *t, const sct_group_result *group)
+static void group_row(const sct_page *p, sct_table *t, const sct_group_result *group)
 {
     const double utilisation = group->worst_member >= 0 ? p->r->members[group->worst_member].utilisation : NAN;
     sct_table_row(t, utilisation > 1 ? SCT_ROW_FAILS : SCT_ROW_PLAIN);
-    name_cell(t, group->name);
+    sct_page_name_cell(t, group->name);
     if (group->section != NULL) {
-        sct_text_plain(&t->cells, group->section, NAME_COLUMNS);
+        sct_text_plain(&t->cells, group->section, SCT_NAME_COLUMNS);
     } else {
         sct_text_shown(&t->cells, group->A, SCT_SHOWN_AREA, p->us);
         sct_text_format(&t->cells, " %s", sct_shown_unit(SCT_SHOWN_AREA, p->us));
@@ -163,14 +57,14 @@ static void group_row(const page *p, sct_table *t, const sct_group_result *group
     sct_table_words(t, group->is_held ? " held" : "");
     sct_text_format(&t->cells, "%d", group->n_members);
     sct_table_cell(t);
-    shown_cell(p, t, group->length, SCT_SHOWN_LENGTH);
-    shown_cell(p, t, group->unit_mass, SCT_SHOWN_UNIT_MASS);
-    shown_cell(p, t, group->mass, SCT_SHOWN_MASS);
-    utilisation_cell(t, utilisation);
+    sct_page_shown_cell(p, t, group->length, SCT_SHOWN_LENGTH);
+    sct_page_shown_cell(p, t, group->unit_mass, SCT_SHOWN_UNIT_MASS);
+    sct_page_shown_cell(p, t, group->mass, SCT_SHOWN_MASS);
+    sct_page_utilisation_cell(t, utilisation);
     governed_by(p, t, group);
 }
 
-static void groups_total_row(const page *p, sct_table *t)
+static void groups_total_row(const sct_page *p, sct_table *t)
 {
     double length = 0;
     for (int g = 0; g < p->r->n_groups; g++) length += p->r->groups[g].length;
@@ -179,48 +73,33 @@ static void groups_total_row(const page *p, sct_table *t)
     sct_table_words(t, "");
     sct_text_format(&t->cells, "%d", p->r->n_members);
     sct_table_cell(t);
-    shown_cell(p, t, length, SCT_SHOWN_LENGTH);
+    sct_page_shown_cell(p, t, length, SCT_SHOWN_LENGTH);
     sct_table_words(t, "");
-    shown_cell(p, t, p->r->mass, SCT_SHOWN_MASS);
-    utilisation_cell(t, p->r->utilisation);
+    sct_page_shown_cell(p, t, p->r->mass, SCT_SHOWN_MASS);
+    sct_page_utilisation_cell(t, p->r->utilisation);
     sct_table_words(t, "largest of all checks");
 }
 
-static void add_groups(const page *p)
+static void add_groups(const sct_page *p)
 {
     const int n = p->r->n_groups < MOST_GROUPS ? p->r->n_groups : MOST_GROUPS;
     sct_table t = {.align = "llrrrrrlll"};
-    heading(p, "Groups");
+    sct_page_heading(p, "Groups");
     sct_table_row(&t, SCT_ROW_HEAD);
     sct_table_words(&t, "group");
     sct_table_words(&t, "size");
     sct_table_words(&t, "members");
-    unit_head(p, &t, "length", SCT_SHOWN_LENGTH);
-    unit_head(p, &t, "", SCT_SHOWN_UNIT_MASS);
-    unit_head(p, &t, "mass", SCT_SHOWN_MASS);
+    sct_page_unit_head(p, &t, "length", SCT_SHOWN_LENGTH);
+    sct_page_unit_head(p, &t, "", SCT_SHOWN_UNIT_MASS);
+    sct_page_unit_head(p, &t, "mass", SCT_SHOWN_MASS);
     sct_table_words(&t, "used");
     sct_table_words(&t, "governed by");
     sct_table_words(&t, "member");
     sct_table_words(&t, "in");
     for (int g = 0; g < n; g++) group_row(p, &t, &p->r->groups[g]);
     groups_total_row(p, &t);
-    finish_table(p, &t);
-    say_left_out(p, p->r->n_groups - n, "schedule.csv");
-}
-
-/* Indices of the `most` largest values, largest first, first of equals first; returns how many. */
-static int largest(const sct_result *r, double value(const sct_result *, int), int n, int most, int index[])
-{
-    int found = 0;
-    for (int i = 0; i < n; i++) {
-        int at = found;
-        while (at > 0 && value(r, i) > value(r, index[at - 1])) at--;
-        if (at >= most) continue;
-        if (found < most) found++;
-        for (int k = found - 1; k > at; k--) index[k] = index[k - 1];
-        index[at] = i;
-    }
-    return found;
+    sct_page_finish_table(p, &t);
+    sct_page_say_left_out(p, p->r->n_groups - n, "schedule.csv");
 }
 
 static double deflection_utilisation(const sct_result *r, int i)
@@ -228,7 +107,7 @@ static double deflection_utilisation(const sct_result *r, int i)
     return r->deflections[i].utilisation;
 }
 
-static void direction_cell(const page *p, sct_table *t, const double d[3])
+static void direction_cell(const sct_page *p, sct_table *t, const double d[3])
 {
     int n_parts = 0, axis = 0;
     for (int k = 0; k < 3; k++) {
@@ -245,18 +124,29 @@ static void direction_cell(const page *p, sct_table *t, const double d[3])
     sct_table_cell(t);
 }
 
-static void add_deflections(const page *p)
+/* "R3", or "R3 relative to A0". */
+static void deflection_joint_cell(const sct_page *p, sct_table *t, const sct_deflection_result *d)
+{
+    sct_text_plain(&t->cells, p->r->joints[d->joint].name, SCT_NAME_COLUMNS);
+    if (p->r->has_bent && d->from >= 0) {
+        sct_text_add(&t->cells, " relative to ");
+        sct_text_plain(&t->cells, p->r->joints[d->from].name, SCT_NAME_COLUMNS);
+    }
+    sct_table_cell(t);
+}
+
+static void add_deflections(const sct_page *p)
 {
     int worst[MOST_DEFLECTIONS];
-    const int n = largest(p->r, deflection_utilisation, p->r->n_deflections, MOST_DEFLECTIONS, worst);
+    const int n = sct_page_largest(p->r, deflection_utilisation, p->r->n_deflections, MOST_DEFLECTIONS, worst);
     if (n == 0) return;
     sct_table t = {.align = "llrrllr"};
-    heading(p, "Deflections");
+    sct_page_heading(p, "Deflections");
     sct_table_row(&t, SCT_ROW_HEAD);
     sct_table_words(&t, "joint");
     sct_table_words(&t, "along");
-    unit_head(p, &t, "moves", SCT_SHOWN_DEFLECTION);
-    unit_head(p, &t, "at most", SCT_SHOWN_DEFLECTION);
+    sct_page_unit_head(p, &t, "moves", SCT_SHOWN_DEFLECTION);
+    sct_page_unit_head(p, &t, "at most", SCT_SHOWN_DEFLECTION);
     sct_table_words(&t, "limit");
     sct_table_words(&t, "in");
     sct_table_words(&t, "used");
@@ -264,29 +154,29 @@ static void add_deflections(const page *p)
         const sct_deflection_result *d = &p->r->deflections[worst[i]];
         const bool fails = d->utilisation > 1;
         sct_table_row(&t, fails ? SCT_ROW_FAILS : SCT_ROW_PLAIN);
-        name_cell(&t, p->r->joints[d->joint].name);
+        deflection_joint_cell(p, &t, d);
         direction_cell(p, &t, d->direction);
-        signed_cell(p, &t, d->u, SCT_SHOWN_DEFLECTION);
-        shown_cell(p, &t, d->at_most, SCT_SHOWN_DEFLECTION);
-        name_cell(&t, d->label != NULL ? d->label : "");
-        combination_cell(p, &t, d->combination);
+        sct_page_signed_cell(p, &t, d->u, SCT_SHOWN_DEFLECTION);
+        sct_page_shown_cell(p, &t, d->at_most, SCT_SHOWN_DEFLECTION);
+        sct_page_name_cell(&t, d->label != NULL ? d->label : "");
+        sct_page_combination_cell(p, &t, d->combination);
         sct_text_utilisation(&t.cells, d->utilisation);
         sct_table_words(&t, fails ? " FAILS" : "");
     }
-    finish_table(p, &t);
-    say_left_out(p, p->r->n_deflections - n, "result.json, none used more than these");
+    sct_page_finish_table(p, &t);
+    sct_page_say_left_out(p, p->r->n_deflections - n, "result.json, none used more than these");
 }
 
-static void add_prices(const page *p)
+static void add_prices(const sct_page *p)
 {
     const int n = p->r->n_prices < MOST_PRICES ? p->r->n_prices : MOST_PRICES; /* the dearest come first */
     if (n == 0) return;
-    heading(p, "What the limits cost (at the continuous sizes)");
-    for (int i = 0; i < n; i++) wrapped_plain(p->out, p->r->prices[i].words, 2);
-    say_left_out(p, p->r->n_prices - n, "result.json");
+    sct_page_heading(p, "What the limits cost (at the continuous sizes)");
+    for (int i = 0; i < n; i++) sct_page_wrapped_plain(p->out, p->r->prices[i].words, 2);
+    sct_page_say_left_out(p, p->r->n_prices - n, "result.json");
 }
 
-static void add_mass(const page *p, sct_text *out, double mass)
+static void add_mass(const sct_page *p, sct_text *out, double mass)
 {
     sct_text_shown(out, mass, SCT_SHOWN_MASS, p->us);
     sct_text_format(out, " %s", sct_shown_unit(SCT_SHOWN_MASS, p->us));
@@ -309,7 +199,7 @@ static int next_end(const sct_result *r, double after, double *mass)
 }
 
 /* "8 starts over continuous sizes: 5 ended at the best, 2296 kg; 2 at 2303 kg; 1 without convergence." */
-static void add_ends(const page *p, sct_text *line)
+static void add_ends(const sct_page *p, sct_text *line)
 {
     const sct_result *r = p->r;
     int told = 0, converged = 0, listed = 0;
@@ -340,7 +230,7 @@ static void add_ends(const page *p, sct_text *line)
     sct_text_format(line, ". %d analyses in all.", r->analyses);
 }
 
-static void add_evidence(const page *p, sct_text *line)
+static void add_evidence(const sct_page *p, sct_text *line)
 {
     const sct_result *r = p->r;
     if (isfinite(r->kkt)) {
@@ -360,11 +250,11 @@ static void add_evidence(const page *p, sct_text *line)
     sct_text_add(line, " is where the continuous search ended, not a bound.");
 }
 
-static void add_search(const page *p)
+static void add_search(const sct_page *p)
 {
     const sct_result *r = p->r;
     sct_text line = {0};
-    heading(p, "How it was found");
+    sct_page_heading(p, "How it was found");
     if (r->n_starts > 0) {
         add_ends(p, &line);
         add_evidence(p, &line);
@@ -377,67 +267,27 @@ static void add_search(const page *p)
     if (line.failed)
         p->out->failed = true;
     else
-        wrapped(p->out, line.data, 2);
+        sct_page_wrapped(p->out, line.data, 2);
     sct_text_free(&line);
 }
 
-static bool is_held_along(const sct_joint_result *joint, int axis)
-{
-    for (int i = 0; i < joint->n_held; i++) {
-        if (joint->held[i][axis] != 0) return true;
-    }
-    return false;
-}
-
-static void reaction_row(const page *p, sct_table *t, int joint, int axis)
-{
-    const sct_result *r = p->r;
-    int low = 0, high = 0;
-    double min = NAN, max = NAN;
-    for (int c = 0; c < r->n_combinations; c++) {
-        const double R = r->reaction[((size_t)c * (size_t)r->n_joints + (size_t)joint) * 3 + (size_t)axis];
-        if (!(R >= min)) {
-            min = R;
-            low = c;
-        }
-        if (!(R <= max)) {
-            max = R;
-            high = c;
-        }
-    }
-    sct_table_row(t, SCT_ROW_PLAIN);
-    name_cell(t, r->joints[joint].name);
-    sct_text_bytes(&t->cells, &"xyz"[axis], 1);
-    sct_table_cell(t);
-    signed_cell(p, t, min, SCT_SHOWN_FORCE);
-    combination_cell(p, t, r->n_combinations > 0 ? low : -1);
-    signed_cell(p, t, max, SCT_SHOWN_FORCE);
-    combination_cell(p, t, r->n_combinations > 0 ? high : -1);
-}
-
-static void add_reactions(const page *p)
+static void add_reactions(const sct_page *p)
 {
     int n = 0;
     sct_table t = {.align = "llrlrl"};
-    heading(p, "Reactions");
-    sct_table_row(&t, SCT_ROW_HEAD);
-    sct_table_words(&t, "support");
-    sct_table_words(&t, "along");
-    unit_head(p, &t, "smallest", SCT_SHOWN_FORCE);
-    sct_table_words(&t, "in");
-    unit_head(p, &t, "largest", SCT_SHOWN_FORCE);
-    sct_table_words(&t, "in");
+    sct_page_heading(p, "Reactions");
+    sct_page_reaction_head(p, &t, "along", SCT_SHOWN_FORCE);
     for (int j = 0; j < p->r->n_joints; j++) {
         for (int axis = 0; axis < p->r->dimensions; axis++) {
-            if (!is_held_along(&p->r->joints[j], axis)) continue;
-            if (n++ < MOST_REACTIONS) reaction_row(p, &t, j, axis);
+            if (!sct_support_gives_force(p->r, j, axis)) continue;
+            if (n++ < MOST_REACTIONS) sct_page_reaction_row(p, &t, p->r->reaction, j, axis, SCT_SHOWN_FORCE);
         }
     }
-    finish_table(p, &t);
-    say_left_out(p, n - MOST_REACTIONS, "result.json");
+    sct_page_finish_table(p, &t);
+    sct_page_say_left_out(p, n - MOST_REACTIONS, "result.json");
 }
 
-static void add_accuracy(const page *p)
+static void add_accuracy(const sct_page *p)
 {
     const sct_accuracy *a = &p->r->accuracy;
     if (!isfinite(a->equilibrium) || !isfinite(a->error) || !isfinite(a->bound)) return;
@@ -449,26 +299,29 @@ static void add_accuracy(const page *p)
                     a->error, sct_number_rounded_up(a->bound));
     if (line.failed) p->out->failed = true;
     sct_text_add(p->out, "\n");
-    if (!line.failed) wrapped(p->out, line.data, 0);
+    if (!line.failed) sct_page_wrapped(p->out, line.data, 0);
     sct_text_free(&line);
 }
 
-static void add_warnings(const page *p)
+static void add_warnings(const sct_page *p)
 {
     if (p->r->n_warnings == 0) return;
-    heading(p, "Warnings");
-    for (int i = 0; i < p->r->n_warnings; i++) wrapped_plain(p->out, p->r->warnings[i], 2);
+    sct_page_heading(p, "Warnings");
+    for (int i = 0; i < p->r->n_warnings; i++) sct_page_wrapped_plain(p->out, p->r->warnings[i], 2);
 }
 
 sct_status sct_summary(const sct_result *result, bool colour, sct_text *out)
 {
-    const page p = {result, colour, result->us_customary, out};
+    const sct_page p = {result, colour, result->us_customary, out};
     add_verdict(&p);
     add_groups(&p);
+    sct_summary_bending(&p);
     add_deflections(&p);
+    sct_summary_bows(&p);
     add_prices(&p);
     add_search(&p);
     add_reactions(&p);
+    sct_summary_moments(&p);
     add_accuracy(&p);
     add_warnings(&p);
     sct_text_add(out, "\n");
