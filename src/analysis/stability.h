@@ -1,0 +1,68 @@
+/**
+ * Elastic critical load factors: the loads of a combination times alpha make the structure buckle, by K + alpha K_geo
+ * with the first-order forces of the combination. K_geo of the forces along the members (own weight and loads along
+ * them included, straight on each piece). Bending in both planes; torsional, lateral-torsional and local buckling are
+ * not in it, nor is the buckling of pin-ended bars between their joints (fine.h).
+ *
+ * One object serves all combinations and designs: per design sct_solver_analyse_sizes of the structure's own solver and
+ * sct_fine_update with the same sizes, then per combination sct_stability_find.
+ */
+#ifndef SCT_ANALYSIS_STABILITY_H
+#define SCT_ANALYSIS_STABILITY_H
+
+#include <math.h>
+
+#include "analysis/modes.h"
+#include "analysis/sensitivity.h"
+
+typedef struct sct_stability sct_stability;
+
+/** Borrows the divided structure. `wanted` modes, >= 1. *status: SCT_OK, SCT_NO_MEMORY. */
+sct_stability *sct_stability_new(sct_fine *fine, int wanted, sct_status *status);
+void sct_stability_free(sct_stability *stability);
+
+/**
+ * The lowest modes of a combination; *modes lives until the next call (modes.h). Nothing is compressed, or nothing
+ * buckles: SCT_OK with n = 0.
+ *
+ * response  of the structure's own solver with the sizes of the latest sct_fine_update
+ * proves    see sct_mode_finder_run
+ *
+ * Statuses of sct_mode_finder_run.
+ */
+sct_status sct_stability_find(sct_stability *stability, const sct_response *response, int combination, bool proves,
+                              sct_modes *modes);
+
+/** The lowest factor of what was found: INFINITY where n = 0. */
+static inline double sct_critical_factor(const sct_modes *modes)
+{
+    return modes->n > 0 ? modes->lambda[0] : (double)INFINITY;
+}
+
+/**
+ * D (n_vars) = d ln alpha / dz of mode i in the combination found last, z = ln A, when j = i: the forces change with
+ * the sizes, too. For i, j in a cluster: entry (i, j) of its matrix of derivatives; to first order the values of ln
+ * alpha are the eigenvalues of diag(ln alpha_i) + sum_v dz_v D_ij[v], so ln alpha >= c asks that this matrix minus c I
+ * has no negative eigenvalue. The rows (i, i) alone are necessary, and enough away from clusters.
+ *
+ * solver, response  of the structure, as they were for sct_stability_find (n_cases solves)
+ *
+ * With x'K x = 1:  dalpha/alpha = x'(dK + alpha dK_geo) x, dK_geo from dN by the adjoint method.
+ * Source: Haug, Choi and Komkov, Design Sensitivity Analysis of Structural Systems, 1986, chapter 1.
+ * SCT_OK, SCT_NO_MEMORY.
+ */
+sct_status sct_stability_derivative(sct_stability *stability, sct_solver *solver, const sct_response *response,
+                                    const sct_modes *modes, int i, int j, double D[]);
+
+/* What a mode says about one member in one plane of bending. */
+typedef struct sct_member_mode {
+    double share; /* of the energy of bending of the mode in all members, 0 .. 1 */
+    double Lcr;   /* [m] effective length pi sqrt(E I / (alpha |N|)), |N| the greatest compression along the member;
+                   * INFINITY where it is not compressed. It means something only where the member takes part in the
+                   * mode: a member that carries little or hardly bends gets a length that is no property of it */
+} sct_member_mode;
+
+/** For the combination found last. */
+sct_member_mode sct_stability_member(const sct_stability *stability, const sct_modes *modes, int mode, int member,
+                                     int plane);
+#endif
