@@ -33,8 +33,7 @@ static inline sct_where mb_where(sct_model *m, int line, const char *prefix, int
 }
 
 /* An empty model of 2 or 3 dimensions. Joint i is "J<i>" on line 1000 + i, member i "M<i>" on line 2000 + i, group
- * "G<i>" on 3000 + i, case "C<i>" on 4000 + i; loads, settlements, bar actions, loads on members stand on 5000, 6000,
- * 7000, 8000 + i. */
+ * "G<i>" on 3000 + i, case "C<i>" on 4000 + i; loads, settlements, bar actions stand on 5000, 6000, 7000 + i. */
 static inline sct_model *mb_new(int dimensions)
 {
     sct_arena *arena = sct_arena_new();
@@ -220,6 +219,44 @@ static inline void mb_spring(sct_model *m, int joint, bool is_turn, const double
         (sct_joint_spring){.is_turn = is_turn, .dir = {dir[0], dir[1], dir[2]}, .stiffness = stiffness};
 }
 
+/* States a group's second moments (in plane, out of plane) and its torsion constant [m4] at its area A_held. */
+static inline void mb_stiffen(sct_model *m, int group, double I_in, double I_out, double J)
+{
+    sct_group *g = &m->groups[group];
+    const double A2 = g->A_held * g->A_held;
+    g->c[0] = I_in / A2;
+    g->c[1] = I_out / A2;
+    g->J = (sct_power){J / A2, 2.0};
+}
+
+/* Holds one more rotation of a joint. */
+static inline void mb_hold_turn(sct_model *m, int joint, double x, double y, double z)
+{
+    sct_joint *j = &m->joints[joint];
+    const double length = sqrt(x * x + y * y + z * z);
+    memcpy(j->turns_held[j->n_turns_held++], (double[3]){x / length, y / length, z / length}, sizeof j->turns_held[0]);
+}
+
+static inline void mb_fixity(sct_model *m, int member, int end, sct_fixity fixity)
+{
+    for (int r = 0; r < SCT_TURNS; r++) m->members[member].end[end].fixity[r] = fixity;
+}
+
+static inline void mb_moment(sct_model *m, int k, int joint, double Mx, double My, double Mz)
+{
+    mb_load(m, k, joint, 0.0, 0.0, 0.0);
+    memcpy(m->cases[k].loads[m->cases[k].n_loads - 1].M, (double[3]){Mx, My, Mz}, sizeof(double[3]));
+}
+
+/* A force along y of the model on a member at `a` from its start. */
+static inline void mb_point(sct_model *m, int k, int member, double F, double a)
+{
+    sct_member_load *load = mb_member_load(m, k, member);
+    load->is_point = true;
+    load->a = load->b = a;
+    load->F[1] = F;
+}
+
 /* A combination with the factors of the cases (at most 64; one for each case that the model will have). */
 static inline int mb_combination(sct_model *m, int n_factors, const double factor[])
 {
@@ -239,99 +276,5 @@ static inline void mb_each_case(sct_model *m)
         factor[k] = 1.0;
         mb_combination(m, 64, factor);
     }
-}
-
-/* ---- frames ---------------------------------------------------------------------------------------------------- */
-
-/* States a group's second moments (in plane, out of plane) and its torsion constant [m4] at its area A_held. */
-static inline void mb_stiffen(sct_model *m, int group, double I_in, double I_out, double J)
-{
-    sct_group *g = &m->groups[group];
-    const double A2 = g->A_held * g->A_held;
-    g->c[0] = I_in / A2;
-    g->c[1] = I_out / A2;
-    g->J = (sct_power){J / A2, 2.0};
-}
-
-/* Holds one more rotation of a joint. */
-static inline void mb_hold_turn(sct_model *m, int joint, double x, double y, double z)
-{
-    sct_joint *j = &m->joints[joint];
-    const double length = sqrt(x * x + y * y + z * z);
-    memcpy(j->turns_held[j->n_turns_held++], (double[3]){x / length, y / length, z / length}, sizeof j->turns_held[0]);
-}
-
-/* Holds all directions and rotations of a joint. */
-static inline void mb_fix(sct_model *m, int joint)
-{
-    mb_pin(m, joint);
-    if (m->dimensions == 3) {
-        mb_hold_turn(m, joint, 1.0, 0.0, 0.0);
-        mb_hold_turn(m, joint, 0.0, 1.0, 0.0);
-    }
-    mb_hold_turn(m, joint, 0.0, 0.0, 1.0);
-}
-
-/* An elastic support along (about: is_turn) a unit vector. */
-static inline void mb_spring(sct_model *m, int joint, bool is_turn, const double dir[3], double stiffness)
-{
-    sct_joint *j = &m->joints[joint];
-    j->springs = mb_grow(m->arena, j->springs, j->n_springs, sizeof *j->springs);
-    sct_joint_spring *s = &j->springs[j->n_springs++];
-    *s = (sct_joint_spring){.is_turn = is_turn, .stiffness = stiffness, .where = j->where};
-    memcpy(s->dir, dir, sizeof s->dir);
-}
-
-static inline void mb_fixity(sct_model *m, int member, int end, sct_fixity fixity)
-{
-    for (int r = 0; r < SCT_TURNS; r++) m->members[member].end[end].fixity[r] = fixity;
-}
-
-/* A member that is fixed to both joints. */
-static inline int mb_beam(sct_model *m, int from, int to, int group)
-{
-    const int e = mb_bar(m, from, to, group);
-    for (int end = 0; end < 2; end++) mb_fixity(m, e, end, SCT_FIXED);
-    return e;
-}
-
-static inline void mb_pin_end(sct_model *m, int member, int end)
-{
-    mb_fixity(m, member, end, SCT_PINNED);
-}
-
-static inline void mb_moment(sct_model *m, int k, int joint, double Mx, double My, double Mz)
-{
-    mb_load(m, k, joint, 0.0, 0.0, 0.0);
-    memcpy(m->cases[k].loads[m->cases[k].n_loads - 1].M, (double[3]){Mx, My, Mz}, sizeof(double[3]));
-}
-
-/* A new load on a member, of nothing yet. */
-static inline sct_member_load *mb_member_load(sct_model *m, int k, int member)
-{
-    sct_case *c = &m->cases[k];
-    c->member_loads = mb_grow(m->arena, c->member_loads, c->n_member_loads, sizeof *c->member_loads);
-    sct_member_load *load = &c->member_loads[c->n_member_loads];
-    *load = (sct_member_load){.member = member, .where = mb_where(m, 8000, "/member_loads/", c->n_member_loads)};
-    c->n_member_loads++;
-    return load;
-}
-
-/* A uniform load per metre of a member of length L, in the model's axes. */
-static inline void mb_uniform(sct_model *m, int k, int member, double L, double qx, double qy, double qz)
-{
-    sct_member_load *load = mb_member_load(m, k, member);
-    load->b = L;
-    memcpy(load->qa, (double[3]){qx, qy, qz}, sizeof load->qa);
-    memcpy(load->qb, load->qa, sizeof load->qb);
-}
-
-/* A force on a member at `a` from its start, in the model's axes. */
-static inline void mb_point(sct_model *m, int k, int member, double a, double Fx, double Fy, double Fz)
-{
-    sct_member_load *load = mb_member_load(m, k, member);
-    load->is_point = true;
-    load->a = load->b = a;
-    memcpy(load->F, (double[3]){Fx, Fy, Fz}, sizeof load->F);
 }
 #endif
