@@ -34,32 +34,38 @@ void sct_combine_springs(const sct_structure *st, const sct_response *response, 
     combine(st, response, combination, st->n_springs, S);
 }
 
-/* Sums what `of_joint` gives for each case; prescribed: n_cases x n_joints x 3. */
-static void combine_joints(const sct_structure *st, const sct_response *response, int combination,
-                           void (*of_joint)(const sct_structure *, const double *, const double *, int, double *),
-                           const double prescribed[], double *sum)
+typedef void of_joint(const sct_structure *st, const double u[], const double *prescribed, int joint, double d[3]);
+
+/* Sums what `of` gives of a joint for each case; prescribed: n_cases x n_joints x 3. */
+static void combine_joint(const sct_structure *st, const sct_response *response, int combination, of_joint *of,
+                          const double prescribed[], int joint, double sum[3])
 {
-    for (int i = 0; i < 3 * st->n_joints; i++) sum[i] = 0.0;
+    sum[0] = sum[1] = sum[2] = 0.0;
     for (int k = 0; k < st->n_cases; k++) {
         const double factor = factor_of(st, combination, k);
+        double d[3];
         if (factor == 0.0) continue;
-        const double *u_k = response->u + (size_t)k * (size_t)st->n_dof;
-        for (int j = 0; j < st->n_joints; j++) {
-            double d[3];
-            of_joint(st, u_k, prescribed + (size_t)k * (size_t)st->n_joints * 3, j, d);
-            for (int i = 0; i < 3; i++) sum[3 * j + i] += factor * d[i];
-        }
+        of(st, response->u + (size_t)k * (size_t)st->n_dof, prescribed + (size_t)k * (size_t)st->n_joints * 3, joint,
+           d);
+        for (int i = 0; i < 3; i++) sum[i] += factor * d[i];
     }
+}
+
+void sct_joint_moved(const sct_structure *st, const sct_response *response, int combination, int joint, double d[3])
+{
+    combine_joint(st, response, combination, sct_joint_displacement, st->settled, joint, d);
 }
 
 void sct_combine_displacements(const sct_structure *st, const sct_response *response, int combination, double *u)
 {
-    combine_joints(st, response, combination, sct_joint_displacement, st->settled, u);
+    for (int j = 0; j < st->n_joints; j++)
+        combine_joint(st, response, combination, sct_joint_displacement, st->settled, j, u + 3 * (size_t)j);
 }
 
 void sct_combine_rotations(const sct_structure *st, const sct_response *response, int combination, double *theta)
 {
-    combine_joints(st, response, combination, sct_joint_rotation, st->turned, theta);
+    for (int j = 0; j < st->n_joints; j++)
+        combine_joint(st, response, combination, sct_joint_rotation, st->turned, j, theta + 3 * (size_t)j);
 }
 
 void sct_combine_loads(const sct_structure *st, const double A[], int combination, double *load)

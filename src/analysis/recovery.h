@@ -13,6 +13,9 @@ void sct_combine_springs(const sct_structure *st, const sct_response *response, 
 /** u (n_joints x 3) of one combination in the model's axes, settlements included. */
 void sct_combine_displacements(const sct_structure *st, const sct_response *response, int combination, double *u);
 
+/** Displacement of one joint in one combination. */
+void sct_joint_moved(const sct_structure *st, const sct_response *response, int combination, int joint, double d[3]);
+
 /** Likewise the rotations of the joints. */
 void sct_combine_rotations(const sct_structure *st, const sct_response *response, int combination, double *theta);
 

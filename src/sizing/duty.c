@@ -26,7 +26,8 @@ static void list_rows(const sct_model *model, sct_deflection_row *rows, int *n)
         const sct_deflection_limit *d = &model->deflections[limit];
         for (int c = 0; c < model->n_combinations; c++)
             for (int k = 0; d->in[c] && k < d->n_joints; k++) {
-                if (rows != NULL) rows[*n] = (sct_deflection_row){limit, d->joints[k], c};
+                if (rows != NULL)
+                    rows[*n] = (sct_deflection_row){limit, d->joints[k], c, d->from != NULL ? d->from[k] : -1};
                 (*n)++;
             }
     }
@@ -55,11 +56,20 @@ static sct_status fill(sct_duty *duty, sct_engine engine)
     duty->of_joints = sct_arena_array(duty->arena, 12 * (size_t)st->n_joints, sizeof(double));
     duty->u = sct_arena_array(duty->arena, (size_t)duty->n_rows, sizeof(double));
     duty->worst_compression = sct_arena_array(duty->arena, n_bars, sizeof(double));
+    duty->n_bows = sct_bow_rows(st, NULL);
+    duty->bows = sct_arena_array(duty->arena, (size_t)duty->n_bows, sizeof *duty->bows);
+    duty->bent = sct_arena_array(duty->arena, n_bars, sizeof *duty->bent);
+    duty->sizes = sct_arena_array(duty->arena, n_groups, sizeof *duty->sizes);
+    duty->lines = sct_member_lines_new(st);
+    if (duty->bows == NULL || duty->bent == NULL || duty->sizes == NULL || duty->lines == NULL) return SCT_NO_MEMORY;
     if (duty->rules == NULL || duty->length == NULL || duty->unit_mass == NULL || duty->allowable == NULL ||
         duty->rows == NULL || duty->N == NULL || duty->S == NULL || duty->of_joints == NULL || duty->u == NULL ||
         duty->worst_compression == NULL)
         return SCT_NO_MEMORY;
     list_rows(model, duty->rows, &duty->n_rows);
+    sct_bow_rows(st, duty->bows);
+    for (int bar = 0; bar < st->n_bars; bar++)
+        if (st->bars[bar].is_bent) duty->bent[duty->n_bent++] = bar;
     for (int bar = 0; bar < st->n_bars; bar++) {
         duty->rules[bar] = sct_bar_rule_of(model, bar, st->bars[bar].L);
         if (!is_sound(&duty->rules[bar])) return SCT_SELF_CHECK;
@@ -86,6 +96,7 @@ sct_duty *sct_duty_new(const sct_structure *st, sct_engine engine, sct_status *s
 void sct_duty_free(sct_duty *duty)
 {
     if (duty == NULL) return;
+    sct_member_lines_free(duty->lines);
     sct_solver_free(duty->solver);
     sct_response_free(&duty->response);
     sct_arena_free(duty->arena);
@@ -96,8 +107,11 @@ sct_status sct_design_new(sct_arena *arena, int n_groups, sct_design *design)
 {
     design->A = sct_arena_array(arena, (size_t)n_groups, sizeof *design->A);
     design->i = sct_arena_array(arena, (size_t)n_groups, sizeof *design->i);
+    design->W = sct_arena_array(arena, (size_t)n_groups, sizeof *design->W);
+    design->J = sct_arena_array(arena, (size_t)n_groups, sizeof *design->J);
     design->section = sct_arena_array(arena, (size_t)n_groups, sizeof *design->section);
-    if (design->A == NULL || design->i == NULL || design->section == NULL) return SCT_NO_MEMORY;
+    if (design->A == NULL || design->i == NULL || design->W == NULL || design->J == NULL || design->section == NULL)
+        return SCT_NO_MEMORY;
     for (int g = 0; g < n_groups; g++) design->section[g] = -1;
     return SCT_OK;
 }
@@ -106,6 +120,8 @@ void sct_design_copy(int n_groups, const sct_design *from, sct_design *to)
 {
     memcpy(to->A, from->A, (size_t)n_groups * sizeof *to->A);
     memcpy(to->i, from->i, (size_t)n_groups * sizeof *to->i);
+    memcpy(to->W, from->W, (size_t)n_groups * sizeof *to->W);
+    memcpy(to->J, from->J, (size_t)n_groups * sizeof *to->J);
     memcpy(to->section, from->section, (size_t)n_groups * sizeof *to->section);
 }
 
@@ -114,14 +130,38 @@ void sct_design_section(const sct_model *model, int group, int section, sct_desi
     const sct_section *x = &model->families[model->groups[group].family].sections[section];
     design->section[group] = section;
     design->A[group] = x->A;
-    for (int axis = 0; axis < 2; axis++) design->i[group][axis] = sqrt(x->I[axis] / x->A);
+    design->J[group] = x->J;
+    for (int axis = 0; axis < 2; axis++) {
+        design->i[group][axis] = sqrt(x->I[axis] / x->A);
+        design->W[group][axis] = x->W[axis];
+    }
+}
+
+sct_shape sct_design_shape(const sct_design *design, int g)
+{
+    return (sct_shape){
+        .A = design->A[g], .i = {design->i[g][0], design->i[g][1]}, .W = {design->W[g][0], design->W[g][1]}};
+}
+
+sct_properties sct_design_properties(const sct_design *design, int g)
+{
+    const double A = design->A[g], *i = design->i[g];
+    sct_properties p = {.P = {A, i[0] * i[0] * A, i[1] * i[1] * A, design->J[g]}};
+    memcpy(p.d1, p.P, sizeof p.P);
+    memcpy(p.d2, p.P, sizeof p.P);
+    return p;
 }
 
 void sct_design_area(const sct_model *model, int group, double A, sct_design *design)
 {
     design->section[group] = -1;
     design->A[group] = A;
-    for (int axis = 0; axis < 2; axis++) design->i[group][axis] = sqrt(model->groups[group].c[axis] * A);
+    const sct_group *g = &model->groups[group];
+    design->J[group] = g->J.c * pow(A, g->J.p);
+    for (int axis = 0; axis < 2; axis++) {
+        design->i[group][axis] = sqrt(g->c[axis] * A);
+        design->W[group][axis] = g->W[axis].c * pow(A, g->W[axis].p);
+    }
 }
 
 double sct_duty_mass(const sct_duty *duty, const sct_design *design)
@@ -161,11 +201,13 @@ static double row_displacement(const sct_duty *duty, const sct_deflection_row *r
     const double *dir = st->model->deflections[row->limit].direction;
     double u = 0.0;
     for (int k = 0; k < st->n_cases; k++) {
-        double d[3];
+        const double *u_k = duty->response.u + (size_t)k * (size_t)st->n_dof;
+        const double *settled = st->settled + (size_t)k * (size_t)st->n_joints * 3;
+        double d[3], from[3] = {0.0};
         if (c->factor[k] == 0.0) continue;
-        sct_joint_displacement(st, duty->response.u + (size_t)k * (size_t)st->n_dof,
-                               st->settled + (size_t)k * (size_t)st->n_joints * 3, row->joint, d);
-        u += c->factor[k] * (d[0] * dir[0] + d[1] * dir[1] + d[2] * dir[2]);
+        sct_joint_displacement(st, u_k, settled, row->joint, d);
+        if (row->from >= 0) sct_joint_displacement(st, u_k, settled, row->from, from);
+        u += c->factor[k] * ((d[0] - from[0]) * dir[0] + (d[1] - from[1]) * dir[1] + (d[2] - from[2]) * dir[2]);
     }
     return u;
 }
@@ -178,11 +220,25 @@ void sct_duty_gather(sct_duty *duty)
     gather_compression(duty);
 }
 
-sct_status sct_duty_analyse(sct_duty *duty, const double A[])
+sct_status sct_duty_analyse_areas(sct_duty *duty, const double A[])
 {
     const sct_status status = sct_solver_analyse(duty->solver, A, &duty->response);
     if (status == SCT_OK) sct_duty_gather(duty);
     return status;
+}
+
+sct_status sct_duty_analyse_sizes(sct_duty *duty, const sct_properties sizes[])
+{
+    const sct_status status = sct_solver_analyse_sizes(duty->solver, sizes, &duty->response);
+    if (status == SCT_OK) sct_duty_gather(duty);
+    return status;
+}
+
+sct_status sct_duty_analyse(sct_duty *duty, const sct_design *design)
+{
+    if (duty->st->n_springs == duty->st->n_bars) return sct_duty_analyse_areas(duty, design->A);
+    for (int g = 0; g < duty->st->n_groups; g++) duty->sizes[g] = sct_design_properties(design, g);
+    return sct_duty_analyse_sizes(duty, duty->sizes);
 }
 
 bool sct_duty_is_compressed(const sct_duty *duty, int bar)
@@ -190,17 +246,50 @@ bool sct_duty_is_compressed(const sct_duty *duty, int bar)
     return duty->worst_compression[bar] < 0.0;
 }
 
-double sct_duty_bar_utilisation(const sct_duty *duty, int bar, double A, const double i[2])
+sct_bent_member sct_duty_bent_member(const sct_duty *duty, int bar, int combination)
+{
+    return (sct_bent_member){.lines = duty->lines,
+                             .st = duty->st,
+                             .bar = bar,
+                             .combination = combination,
+                             .S = duty->S + (size_t)combination * (size_t)duty->st->n_springs,
+                             .A = sct_solver_areas(duty->solver)[duty->st->bars[bar].group]};
+}
+
+static double bent_utilisation(const sct_duty *duty, int bar, int combination, const sct_shape *shape)
+{
+    const sct_bent_member member = sct_duty_bent_member(duty, bar, combination);
+    sct_bent_place places[SCT_BENT_PLACES];
+    double most = 0.0;
+    sct_bent_places(&member, &duty->rules[bar], shape, places);
+    for (int p = 0; p < SCT_BENT_PLACES; p++) most = sct_worse(most, places[p].utilisation);
+    return most;
+}
+
+double sct_duty_bar_utilisation(const sct_duty *duty, int bar, const sct_shape *shape)
 {
     const sct_bar_rule *rule = &duty->rules[bar];
-    double most = sct_bar_slenderness(rule, i, sct_duty_is_compressed(duty, bar), NULL).utilisation;
+    double most = sct_bar_slenderness(rule, shape->i, sct_duty_is_compressed(duty, bar), NULL).utilisation;
     for (int k = 0; k < duty->n_allowable; k++) {
         const double N = duty->N[(size_t)duty->allowable[k] * (size_t)duty->st->n_bars + (size_t)bar];
         sct_bar_check checks[SCT_MOST_BAR_CHECKS];
-        const int n = sct_bar_checks(rule, N, A, i, checks);
+        if (duty->st->bars[bar].is_bent) {
+            most = sct_worse(most, bent_utilisation(duty, bar, duty->allowable[k], shape));
+            continue;
+        }
+        const int n = sct_bar_checks(rule, N, shape->A, shape->i, checks);
         for (int j = 0; j < n; j++) most = sct_worse(most, checks[j].utilisation);
     }
     return most;
+}
+
+double sct_duty_bow_utilisation(const sct_duty *duty, int row, const sct_shape *shape)
+{
+    const sct_bow_row *r = &duty->bows[row];
+    const sct_bent_member member = sct_duty_bent_member(duty, r->bar, r->combination);
+    const double i = shape->i[duty->st->model->bows[r->limit].axis];
+    const double EI = duty->rules[r->bar].E * i * i * shape->A;
+    return fabs(sct_bow_farthest(&member, &duty->response, r, EI).v) / r->at_most;
 }
 
 double sct_duty_row_utilisation(const sct_duty *duty, int row)
@@ -213,8 +302,13 @@ double sct_duty_utilisation(const sct_duty *duty, const sct_design *design)
     double most = 0.0;
     for (int bar = 0; bar < duty->st->n_bars; bar++) {
         const int g = duty->st->bars[bar].group;
-        most = sct_worse(most, sct_duty_bar_utilisation(duty, bar, design->A[g], design->i[g]));
+        const sct_shape shape = sct_design_shape(design, g);
+        most = sct_worse(most, sct_duty_bar_utilisation(duty, bar, &shape));
     }
     for (int r = 0; r < duty->n_rows; r++) most = sct_worse(most, sct_duty_row_utilisation(duty, r));
+    for (int r = 0; r < duty->n_bows; r++) {
+        const sct_shape shape = sct_design_shape(design, duty->st->bars[duty->bows[r].bar].group);
+        most = sct_worse(most, sct_duty_bow_utilisation(duty, r, &shape));
+    }
     return most;
 }

@@ -12,15 +12,22 @@ static sct_status allocate(sct_arena *arena, int n, sct_envelope *e)
     return e->s == NULL || e->h == NULL || e->slope == NULL ? SCT_NO_MEMORY : SCT_OK;
 }
 
-sct_status sct_envelope_relation(sct_arena *arena, double c, sct_envelope *e)
+sct_status sct_envelope_power(sct_arena *arena, double c, double p, sct_envelope *e)
 {
     *e = (sct_envelope){0};
     if (!(c > 0.0)) return SCT_OK;
     const sct_status status = allocate(arena, 1, e);
     if (status != SCT_OK) return status;
-    e->h[0] = 0.5 * log(c); /* i = sqrt(c A): through (0, ln sqrt c) with slope 1/2 */
-    e->slope[0] = 0.5;
+    e->h[0] = log(c); /* a straight line through (0, ln c) */
+    e->slope[0] = p;
     return SCT_OK;
+}
+
+sct_status sct_envelope_relation(sct_arena *arena, double c, sct_envelope *e)
+{
+    const sct_status status = sct_envelope_power(arena, c, 0.5, e); /* i = sqrt(c A) */
+    if (e->n > 0) e->h[0] *= 0.5;
+    return status;
 }
 
 static double secant(const sct_envelope *e, int k)
@@ -42,16 +49,15 @@ static void push(sct_envelope *e, double s, double h)
     e->h[e->n++] = h;
 }
 
-sct_status sct_envelope_ladder(sct_arena *arena, const sct_family *family, int n, const int sections[], int axis,
-                               sct_envelope *e)
+sct_status sct_envelope_points(sct_arena *arena, int n, const double s[], const double h[], sct_envelope *e)
 {
+    *e = (sct_envelope){0};
+    for (int k = 0; k < n; k++)
+        if (isnan(h[k])) return SCT_OK;
     const sct_status status = allocate(arena, n, e);
     if (status != SCT_OK) return status;
     e->n = 0;
-    for (int k = 0; k < n; k++) { /* lightest first */
-        const sct_section *x = &family->sections[sections[k]];
-        push(e, log(x->A), 0.5 * log(x->I[axis] / x->A));
-    }
+    for (int k = 0; k < n; k++) push(e, s[k], h[k]);
     /* Slopes between the two secants keep the cubic on or above each chord: weighted harmonic mean (Fritsch and
      * Butland, SIAM J. Sci. Stat. Comput. 5, 1984). First: its secant. Last: flat, as what follows. */
     const int last = e->n - 1;
@@ -63,6 +69,19 @@ sct_status sct_envelope_ladder(sct_arena *arena, const sct_family *family, int n
     }
     if (last > 0) e->slope[last] = 0.0;
     return SCT_OK;
+}
+
+sct_status sct_envelope_ladder(sct_arena *arena, const sct_family *family, int n, const int sections[], int axis,
+                               sct_envelope *e)
+{
+    double *s = sct_arena_array(arena, (size_t)n, sizeof *s), *h = sct_arena_array(arena, (size_t)n, sizeof *h);
+    if (s == NULL || h == NULL) return SCT_NO_MEMORY;
+    for (int k = 0; k < n; k++) { /* lightest first */
+        const sct_section *x = &family->sections[sections[k]];
+        s[k] = log(x->A);
+        h[k] = 0.5 * log(x->I[axis] / x->A);
+    }
+    return sct_envelope_points(arena, n, s, h, e);
 }
 
 sct_curve sct_envelope_at(const sct_envelope *e, double s)

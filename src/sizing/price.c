@@ -17,7 +17,7 @@ static const double POUND = 0.45359237, INCH = 0.0254; /* exact by definition (i
 /* The multipliers of one limit, added up. */
 typedef struct tally {
     double sum, length; /* of ln(limit); of ln(effective length) for columns */
-    double most;        /* largest single multiplier, and the joint it belongs to */
+    double most;        /* largest single multiplier, and the joint (of a bow: the member) it belongs to */
     int joint;
 } tally;
 
@@ -75,12 +75,29 @@ static void price_group(sct_result *r, int group, sct_check_kind kind, const tal
                        .multiplier = t->sum,
                        .per_unit = NAN,
                        .saving = PERCENT * (column ? t->length : t->sum)};
-    const char *what = kind == SCT_CHECK_TENSION       ? "higher allowable stress in tension"
-                       : kind == SCT_CHECK_COMPRESSION ? "higher allowable stress in compression"
-                       : kind == SCT_CHECK_BUCKLING_IN ? "shorter effective length in plane"
-                                                       : "shorter effective length out of plane";
+    const char *what = kind == SCT_CHECK_TENSION            ? "higher allowable stress in tension"
+                       : kind == SCT_CHECK_COMPRESSION      ? "higher allowable stress in compression"
+                       : kind == SCT_CHECK_BUCKLING_IN      ? "shorter effective length in plane"
+                       : kind == SCT_CHECK_BUCKLING_OUT     ? "shorter effective length out of plane"
+                       : kind == SCT_CHECK_BENT_TENSION     ? "higher allowable stress in tension, with bending,"
+                       : kind == SCT_CHECK_BENT_COMPRESSION ? "higher allowable stress in compression, with bending,"
+                                                            : "more strength in buckling with bending";
     sct_number_format(price.words, sizeof price.words, "1 %% %s of %s saves %s", what,
                       sct_show(r->groups[group].name).text, shown_mass(r, price.saving).text);
+    r->prices[r->n_prices++] = price;
+}
+
+static void price_bow(sct_result *r, const sct_duty *duty, int limit, const tally *t)
+{
+    const sct_bow_limit *b = &duty->st->model->bows[limit];
+    sct_price price = {.kind = SCT_CHECK_BOW,
+                       .group = -1,
+                       .limit = limit,
+                       .multiplier = t->sum,
+                       .per_unit = NAN,
+                       .saving = PERCENT * t->sum};
+    sct_number_format(price.words, sizeof price.words, "1 %% more bow (%s, %s) saves %s", sct_show(b->label).text,
+                      sct_show(r->members[t->joint].name).text, shown_mass(r, price.saving).text);
     r->prices[r->n_prices++] = price;
 }
 
@@ -135,25 +152,30 @@ sct_status sct_prices(const sct_problem *P, const sct_duty *duty, const double m
     const int kinds = SCT_CHECK_COUNT, n_groups = r->n_groups;
     const size_t n_pairs = (size_t)n_groups * (size_t)kinds;
     tally *group = calloc(n_pairs + 1, sizeof *group);
-    tally *limit = calloc((size_t)model->n_deflections + 1, sizeof *limit);
-    /* of each group: tension, compression, two columns, one bound */
-    r->prices = sct_result_array(r, (size_t)n_groups * 5 + (size_t)model->n_deflections, sizeof *r->prices);
+    tally *limit = calloc((size_t)model->n_deflections + (size_t)model->n_bows + 1, sizeof *limit);
+    tally *bow = limit + model->n_deflections;
+    /* of each group: tension, compression, two columns, three with bending, one bound */
+    const size_t most = (size_t)n_groups * 8 + (size_t)model->n_deflections + (size_t)model->n_bows;
+    r->prices = sct_result_array(r, most, sizeof *r->prices);
     sct_status status = group == NULL || limit == NULL || r->prices == NULL ? SCT_NO_MEMORY : SCT_OK;
     const int m = sct_problem_nlp(P)->m;
     for (int j = 0; status == SCT_OK && j < m; j++) {
         if (!(mu[j] > 0.0)) continue;
         const sct_constraint c = sct_problem_constraint(P, j);
-        tally *t = c.bar >= 0 ? &group[(size_t)duty->st->bars[c.bar].group * (size_t)kinds + (size_t)c.need.kind]
-                              : &limit[duty->rows[c.row].limit];
+        tally *t = c.bar >= 0   ? &group[(size_t)duty->st->bars[c.bar].group * (size_t)kinds + (size_t)c.need.kind]
+                   : c.row >= 0 ? &limit[duty->rows[c.row].limit]
+                                : &bow[duty->bows[c.bow].limit];
         t->sum += mu[j];
         t->length += mu[j] * c.need.sL;
-        if (c.row >= 0 && mu[j] > t->most) {
+        if (c.bar < 0 && mu[j] > t->most) {
             t->most = mu[j];
-            t->joint = duty->rows[c.row].joint;
+            t->joint = c.row >= 0 ? duty->rows[c.row].joint : duty->bows[c.bow].bar;
         }
     }
     for (int k = 0; status == SCT_OK && k < model->n_deflections; k++)
         if (limit[k].sum >= LEAST * r->mass_continuous) price_deflection(r, duty, k, &limit[k]);
+    for (int k = 0; status == SCT_OK && k < model->n_bows; k++)
+        if (bow[k].sum >= LEAST * r->mass_continuous) price_bow(r, duty, k, &bow[k]);
     for (size_t k = 0; status == SCT_OK && k < n_pairs; k++)
         if (group[k].sum >= LEAST * r->mass_continuous)
             price_group(r, (int)(k / (size_t)kinds), (sct_check_kind)(k % (size_t)kinds), &group[k]);

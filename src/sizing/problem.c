@@ -5,10 +5,10 @@
 #include <stdlib.h>
 #include <string.h>
 
-#include "analysis/sensitivity.h"
 #include "base/number.h"
 #include "base/text.h"
 #include "numerics/dense.h"
+#include "sizing/shapes.h"
 
 static const double INACTIVE = -9.0; /* ln: a limit this far away is left alone, with zero gradient */
 
@@ -17,11 +17,14 @@ struct sct_problem {
     const sct_structure *st;
     sct_arena *arena;
     bool plain;
-    int n, n_bar_rows; /* variables; constraints on bars come first */
-    bool *is_fixed;    /* n_groups: true properties below, no envelope */
+    /* variables; constraints: bars, deflections, members that carry moments (three places each), bows; where each
+     * begins
+     */
+    int n, n_bar_rows, first_bent, first_bow;
+    bool *is_fixed; /* n_groups: true properties below, no envelope */
     sct_design fixed;
-    sct_envelope (*envelope)[2]; /* n_groups */
-    double *lower, *upper;       /* ln A */
+    sct_group_curves *curves; /* n_groups */
+    double *lower, *upper;    /* ln A */
     sct_bound_source *source;
     double *x_lower, *x_upper; /* the same in the form of x */
     double *ref, mass_unit;    /* plain form: areas and mass are relative to the middle of the ranges; else 1 kg */
@@ -31,26 +34,68 @@ struct sct_problem {
     /* at the latest value call */
     bool have_value;
     double *x, f;
-    double *A;      /* n_groups */
-    sct_need *need; /* n_bar_rows */
-    double *g;      /* all constraints, log form */
+    double *A;             /* n_groups */
+    sct_need *need;        /* n_bar_rows */
+    sct_bent_place *place; /* of every row of a member that carries moments */
+    sct_shape *shape;      /* n_groups */
+    sct_properties *sizes; /* n_groups */
+    bool needs_shapes;     /* some member is a beam or carries moments */
+    double *g;             /* all constraints, log form */
     bool have_du;
-    double *du, *part, *row; /* n_cases x n_dof x n; n; n */
-    double *wN, *wu, *work;  /* weights for the curvature */
+    double *du, *part, *row, *cross, *moving; /* n_cases x n_dof x n; n; n; n; n */
+    double *wN, *wu, *work;                   /* weights for the curvature */
 };
+
+typedef enum row_kind { BAR_ROW, DEFLECTION_ROW, BENT_ROW, BOW_ROW } row_kind;
+
+static row_kind kind_of(const sct_problem *P, int j)
+{
+    return j < P->n_bar_rows ? BAR_ROW : j < P->first_bent ? DEFLECTION_ROW : j < P->first_bow ? BENT_ROW : BOW_ROW;
+}
+
+static const sct_deflection_row *deflection_of(const sct_problem *P, int j)
+{
+    return &P->duty->rows[j - P->n_bar_rows];
+}
+
+static const sct_bow_row *bow_of(const sct_problem *P, int j)
+{
+    return &P->duty->bows[j - P->first_bow];
+}
+
+/* Rows of bent members come by combination, member, place. */
+static int bent_index(const sct_problem *P, int j)
+{
+    return (j - P->first_bent) / SCT_BENT_PLACES;
+}
 
 static int bar_of(const sct_problem *P, int j)
 {
-    return j % P->st->n_bars;
+    const row_kind kind = kind_of(P, j);
+    if (kind == BENT_ROW) return P->duty->bent[bent_index(P, j) % P->duty->n_bent];
+    return kind == BAR_ROW ? j % P->st->n_bars : kind == BOW_ROW ? bow_of(P, j)->bar : -1;
 }
+
 static int combination_of(const sct_problem *P, int j)
 {
-    return j < P->n_bar_rows ? P->duty->allowable[j / P->st->n_bars] : P->duty->rows[j - P->n_bar_rows].combination;
+    switch (kind_of(P, j)) {
+    case BAR_ROW: return P->duty->allowable[j / P->st->n_bars];
+    case DEFLECTION_ROW: return deflection_of(P, j)->combination;
+    case BENT_ROW: return P->duty->allowable[bent_index(P, j) / P->duty->n_bent];
+    default: return bow_of(P, j)->combination;
+    }
 }
 
 static double force(const sct_problem *P, int j)
 {
     return P->duty->N[(size_t)combination_of(P, j) * (size_t)P->st->n_bars + (size_t)bar_of(P, j)];
+}
+
+static double EI_of(const sct_problem *P, int j)
+{
+    const int group = P->st->bars[bar_of(P, j)].group;
+    const double i = P->shape[group].i[P->st->model->bows[bow_of(P, j)->limit].axis];
+    return P->st->bars[bar_of(P, j)].E * i * i * P->shape[group].A;
 }
 
 /* d ln sigma_cr / d ln lambda */
@@ -82,12 +127,50 @@ static double bar_constraint(sct_problem *P, int j)
     const int bar = bar_of(P, j), group = P->st->bars[bar].group;
     const double N = force(P, j);
     sct_need *need = &P->need[j];
-    if (!(fabs(N) > 0.0)) return INACTIVE;
+    if (!(fabs(N) > 0.0) || P->st->bars[bar].is_bent) return INACTIVE; /* bent members have rows of their own */
     if (P->is_fixed[group])
         *need = fixed_need(P, bar, N);
     else
-        *need = sct_area_needed(&P->duty->rules[bar], P->envelope[group], N > 0.0, log(fabs(N)), log(P->A[group]));
+        *need = sct_area_needed(&P->duty->rules[bar], P->curves[group].i, N > 0.0, log(fabs(N)), log(P->A[group]));
     return need->s - log(P->A[group]);
+}
+
+static double bent_constraint(sct_problem *P, int j)
+{
+    const int k = j - P->first_bent, bar = bar_of(P, j);
+    if (k % SCT_BENT_PLACES == 0) { /* all places of a member in a combination at once */
+        const sct_bent_member member = sct_duty_bent_member(P->duty, bar, combination_of(P, j));
+        sct_bent_places(&member, &P->duty->rules[bar], &P->shape[P->st->bars[bar].group], P->place + k);
+    }
+    return log(P->place[k].utilisation);
+}
+
+static double constraint(sct_problem *P, int j)
+{
+    switch (kind_of(P, j)) {
+    case BAR_ROW: return bar_constraint(P, j);
+    case DEFLECTION_ROW: return log(sct_duty_row_utilisation(P->duty, j - P->n_bar_rows));
+    case BENT_ROW: return bent_constraint(P, j);
+    default:
+        return log(sct_duty_bow_utilisation(P->duty, j - P->first_bow, &P->shape[P->st->bars[bar_of(P, j)].group]));
+    }
+}
+
+/* Areas, and where they are needed all properties, of every group at x. */
+static void find_sizes(sct_problem *P, const double x[])
+{
+    sct_problem_areas(P, x, P->A);
+    for (int g = 0; g < P->st->n_groups && P->needs_shapes; g++) {
+        if (P->is_fixed[g]) continue; /* set once */
+        P->shape[g] = sct_curves_shape(&P->curves[g], P->A[g]);
+        P->sizes[g] = sct_curves_properties(&P->curves[g], P->A[g]);
+    }
+}
+
+sct_status sct_problem_analyse(sct_problem *P, const double x[])
+{
+    find_sizes(P, x);
+    return P->needs_shapes ? sct_duty_analyse_sizes(P->duty, P->sizes) : sct_duty_analyse_areas(P->duty, P->A);
 }
 
 /* One analysis and all constraints in log form; a point judged twice in a row is analysed once. */
@@ -95,14 +178,12 @@ static sct_status judge(sct_problem *P, const double x[])
 {
     const sct_structure *st = P->st;
     P->have_value = P->have_du = false;
-    sct_problem_areas(P, x, P->A);
-    const sct_status status = sct_duty_analyse(P->duty, P->A);
+    const sct_status status = sct_problem_analyse(P, x);
     if (status != SCT_OK) return status;
     P->f = 0.0;
     for (int v = 0; v < P->n; v++) P->f += P->duty->unit_mass[st->group_of_var[v]] * P->A[st->group_of_var[v]];
     for (int j = 0; j < P->nlp.m; j++) {
-        const double g =
-            j < P->n_bar_rows ? bar_constraint(P, j) : log(sct_duty_row_utilisation(P->duty, j - P->n_bar_rows));
+        const double g = constraint(P, j);
         if (isnan(g)) return SCT_NOT_ACCURATE;
         P->g[j] = fmax(g + P->margin, INACTIVE);
     }
@@ -122,24 +203,52 @@ static sct_status value(void *user, const double x[], double *f, double g[])
     return SCT_OK;
 }
 
-/* Derivative of the force or of the displacement behind constraint j with respect to z; returns the quantity itself. */
-static double quantity(sct_problem *P, int j, double row[])
+static sct_form force_form(const sct_problem *P, int j)
 {
-    const bool is_bar = j < P->n_bar_rows;
-    const double *factor = P->st->model->combinations[combination_of(P, j)].factor;
-    for (int v = 0; v < P->n; v++) row[v] = 0.0;
-    for (int k = 0; k < P->st->n_cases; k++) {
-        if (factor[k] == 0.0) continue;
-        if (is_bar) {
-            sct_sensitivity_force(P->duty->solver, &P->duty->response, P->du, bar_of(P, j), k, P->part);
-        } else {
-            const sct_deflection_row *r = &P->duty->rows[j - P->n_bar_rows];
-            sct_sensitivity_displacement(P->duty->solver, P->du, r->joint,
-                                         P->st->model->deflections[r->limit].direction, k, P->part);
-        }
-        sct_axpy(P->n, factor[k], P->part, row);
-    }
-    return is_bar ? force(P, j) : P->duty->u[j - P->n_bar_rows];
+    return (sct_form){.combination = combination_of(P, j),
+                      .value = force(P, j),
+                      .n_springs = 1,
+                      .spring = {bar_of(P, j)},
+                      .w = {1.0},
+                      .own = -1};
+}
+
+static sct_form deflection_form(const sct_problem *P, int j)
+{
+    const sct_deflection_row *row = deflection_of(P, j);
+    const double *dir = P->st->model->deflections[row->limit].direction;
+    sct_form form = {.combination = row->combination, .value = P->duty->u[j - P->n_bar_rows], .n_joints = 1, .own = -1};
+    form.joint[0] = row->joint;
+    memcpy(form.dir[0], dir, sizeof form.dir[0]);
+    if (row->from < 0) return form;
+    form.n_joints = 2;
+    form.joint[1] = row->from;
+    for (int i = 0; i < 3; i++) form.dir[1][i] = -dir[i];
+    return form;
+}
+
+/* The quantity behind constraint j: force, displacement, utilisation, bow. */
+static sct_form form_of(sct_problem *P, int j)
+{
+    const row_kind kind = kind_of(P, j);
+    if (kind == BAR_ROW) return force_form(P, j);
+    if (kind == DEFLECTION_ROW) return deflection_form(P, j);
+    const int bar = bar_of(P, j), group = P->st->bars[bar].group,
+              own = P->is_fixed[group] ? -1 : P->st->var_of_group[group];
+    const sct_bent_member member = sct_duty_bent_member(P->duty, bar, combination_of(P, j));
+    sct_shape_slopes slopes = {0};
+    if (own >= 0) slopes = sct_curves_slopes(&P->curves[group], P->A[group]);
+    if (kind == BENT_ROW) return sct_bent_form(&member, &P->place[j - P->first_bent], own, &slopes);
+    const sct_bow_row *row = bow_of(P, j);
+    const double EI = EI_of(P, j);
+    const sct_curve I = sct_curve_of_I(slopes.i[P->st->model->bows[row->limit].axis], P->A[group]);
+    const sct_bow_place place = sct_bow_farthest(&member, &P->duty->response, row, EI);
+    return sct_bow_form(&member, row, &place, EI, own, &I);
+}
+
+static sct_form_source source_of(sct_problem *P)
+{
+    return (sct_form_source){P->duty->solver, &P->duty->response, P->du, P->part};
 }
 
 static sct_status need_du(sct_problem *P)
@@ -160,6 +269,7 @@ static sct_status gradient(void *user, const double x[], int n_rows, const int r
     }
     const sct_status status = n_rows > 0 ? need_du(P) : SCT_OK;
     if (status != SCT_OK) return status;
+    const sct_form_source source = source_of(P);
     for (int r = 0; r < n_rows; r++) {
         const int j = rows[r];
         double *row = dg + (size_t)r * (size_t)P->n;
@@ -167,7 +277,9 @@ static sct_status gradient(void *user, const double x[], int n_rows, const int r
             memset(row, 0, (size_t)P->n * sizeof *row);
             continue;
         }
-        const double q = quantity(P, j, row), slope = (j < P->n_bar_rows ? P->need[j].s1 : 1.0) / q;
+        const sct_form form = form_of(P, j);
+        const double slope = (j < P->n_bar_rows ? P->need[j].s1 : 1.0) / form.value;
+        sct_form_gradient(&form, &source, row);
         for (int v = 0; v < P->n; v++) row[v] *= slope;
         if (j < P->n_bar_rows) {
             const int own = st->var_of_group[st->bars[bar_of(P, j)].group];
@@ -192,28 +304,18 @@ static sct_status curvature(void *user, const double x[], int n_rows, const int 
     memset(P->wu, 0, n_cases * n_dof * sizeof *P->wu);
     const sct_status status = need_du(P);
     if (status != SCT_OK) return status;
+    const sct_form_source source = source_of(P);
     for (int r = 0; r < n_rows; r++) {
         const int j = rows[r];
         if (mu[r] == 0.0 || P->g[j] <= INACTIVE) continue;
-        const double q = quantity(P, j, P->row);
+        const sct_form form = form_of(P, j);
+        const double q = form.value;
         const bool is_bar = j < P->n_bar_rows;
         const double s1 = is_bar ? P->need[j].s1 : 1.0, s2 = is_bar ? P->need[j].s2 : 0.0;
         const double outer = mu[r] * (s2 - s1) / (q * q), inner = mu[r] * s1 / q;
+        sct_form_gradient(&form, &source, P->row);
         for (size_t a = 0; a < n; a++) sct_axpy((int)a + 1, outer * P->row[a], P->row, H + a * n); /* lower triangle */
-        const double *factor = st->model->combinations[combination_of(P, j)].factor;
-        for (size_t k = 0; k < n_cases; k++) {
-            if (is_bar) {
-                P->wN[k * n_springs + (size_t)bar_of(P, j)] += inner * factor[k];
-                continue;
-            }
-            const int joint = P->duty->rows[j - P->n_bar_rows].joint;
-            const double *dir = st->model->deflections[P->duty->rows[j - P->n_bar_rows].limit].direction;
-            for (int d = 0; d < st->n_free[joint]; d++) {
-                const double *e = st->basis[joint][d];
-                P->wu[k * n_dof + (size_t)(st->first_dof[joint] + d)] +=
-                    inner * factor[k] * (e[0] * dir[0] + e[1] * dir[1] + e[2] * dir[2]);
-            }
-        }
+        sct_form_curvature(&form, &source, inner, P->cross, P->moving, P->wN, P->wu, H);
     }
     for (size_t a = 0; a < n; a++)
         for (size_t b = 0; b < a; b++) H[b * n + a] = H[a * n + b];
@@ -275,11 +377,7 @@ static sct_status free_bounds(sct_problem *P, int v, const bool compressed[], sc
         P->lower[v] = s;
         P->source[v] = (sct_bound_source){SCT_CHECK_SLENDERNESS, who.bar};
     }
-    for (int axis = 0; axis < 2; axis++) {
-        const sct_status status = sct_envelope_relation(P->arena, g->c[axis], &P->envelope[group][axis]);
-        if (status != SCT_OK) return status;
-    }
-    return SCT_OK;
+    return sct_curves_of_area(P->arena, g, &P->curves[group]);
 }
 
 /* Sections that are too slender are dropped before the envelope is drawn: slenderness never becomes a constraint. */
@@ -310,11 +408,7 @@ static sct_status ladder_bounds(sct_problem *P, int v, const bool compressed[], 
     P->lower[v] = log(family->sections[kept[0]].A);
     P->upper[v] = log(family->sections[kept[n - 1]].A);
     if (kept[0] != g->ladder[0]) P->source[v] = (sct_bound_source){SCT_CHECK_SLENDERNESS, who[lightest].bar};
-    for (int axis = 0; axis < 2; axis++) {
-        const sct_status status = sct_envelope_ladder(P->arena, family, n, kept, axis, &P->envelope[group][axis]);
-        if (status != SCT_OK) return status;
-    }
-    return SCT_OK;
+    return sct_curves_of_ladder(P->arena, family, n, kept, &P->curves[group]);
 }
 
 static sct_status set_bounds(sct_problem *P, const bool compressed[], sct_fault why)
@@ -350,11 +444,15 @@ static void set_fixed(sct_problem *P, const bool is_fixed[], const sct_design *f
             sct_design_area(model, g, group->A_held, &P->fixed);
         else if (is_fixed != NULL && is_fixed[g]) {
             P->fixed.A[g] = fixed->A[g];
+            P->fixed.J[g] = fixed->J[g];
             memcpy(P->fixed.i[g], fixed->i[g], sizeof P->fixed.i[g]);
+            memcpy(P->fixed.W[g], fixed->W[g], sizeof P->fixed.W[g]);
         } else
             continue;
         P->is_fixed[g] = true;
         P->A[g] = P->fixed.A[g];
+        P->shape[g] = sct_design_shape(&P->fixed, g);
+        P->sizes[g] = sct_design_properties(&P->fixed, g);
     }
 }
 
@@ -363,12 +461,14 @@ static sct_status allocate(sct_problem *P)
     const sct_structure *st = P->st;
     const size_t n = (size_t)P->n, n_groups = (size_t)st->n_groups, n_cases = (size_t)st->n_cases;
     const size_t n_dof = (size_t)st->n_dof, n_springs = (size_t)st->n_springs, m = (size_t)P->nlp.m;
+    const size_t n_places = (size_t)(P->first_bow - P->first_bent);
     sct_arena *a = P->arena;
 #define ARRAY(what, count) ((P->what = sct_arena_array(a, (count), sizeof *P->what)) != NULL)
-    const bool ok = ARRAY(is_fixed, n_groups) && ARRAY(envelope, n_groups) && ARRAY(lower, n) && ARRAY(upper, n) &&
+    const bool ok = ARRAY(is_fixed, n_groups) && ARRAY(curves, n_groups) && ARRAY(lower, n) && ARRAY(upper, n) &&
                     ARRAY(source, n) && ARRAY(x_lower, n) && ARRAY(x_upper, n) && ARRAY(ref, n) && ARRAY(cluster, m) &&
                     ARRAY(x, n) && ARRAY(A, n_groups) && ARRAY(need, (size_t)P->n_bar_rows) && ARRAY(g, m) &&
-                    ARRAY(du, n_cases * n_dof * n) && ARRAY(part, n) && ARRAY(row, n) &&
+                    ARRAY(du, n_cases * n_dof * n) && ARRAY(part, n) && ARRAY(row, n) && ARRAY(cross, n) &&
+                    ARRAY(moving, n) && ARRAY(place, n_places) && ARRAY(shape, n_groups) && ARRAY(sizes, n_groups) &&
                     ARRAY(wN, n_cases * n_springs) && ARRAY(wu, n_cases * n_dof) && ARRAY(work, n_cases * n_dof);
 #undef ARRAY
     if (!ok) return SCT_NO_MEMORY;
@@ -383,14 +483,16 @@ static sct_status build(sct_problem *P, const bool compressed[], const bool is_f
     if (P->arena == NULL) return SCT_NO_MEMORY;
     P->n = st->n_vars;
     P->n_bar_rows = P->duty->n_allowable * st->n_bars;
-    P->nlp =
-        (sct_nlp){.n = P->n, .m = P->n_bar_rows + P->duty->n_rows, .user = P, .value = value, .gradient = gradient};
+    P->first_bent = P->n_bar_rows + P->duty->n_rows;
+    P->first_bow = P->first_bent + P->duty->n_allowable * P->duty->n_bent * SCT_BENT_PLACES;
+    P->needs_shapes = P->duty->n_bent > 0 || st->n_springs > st->n_bars;
+    P->nlp = (sct_nlp){.n = P->n, .m = P->first_bow + P->duty->n_bows, .user = P, .value = value, .gradient = gradient};
     sct_status status = allocate(P);
     if (status != SCT_OK) return status;
     set_fixed(P, is_fixed, fixed);
     status = set_bounds(P, compressed, why);
     if (status != SCT_OK) return status;
-    for (int j = 0; j < P->nlp.m; j++) P->cluster[j] = j < P->n_bar_rows ? st->bars[bar_of(P, j)].group : -1;
+    for (int j = 0; j < P->nlp.m; j++) P->cluster[j] = bar_of(P, j) >= 0 ? st->bars[bar_of(P, j)].group : -1;
     P->nlp.lower = P->x_lower;
     P->nlp.upper = P->x_upper;
     P->nlp.cluster = P->cluster;
@@ -429,7 +531,8 @@ void sct_problem_free(sct_problem *P)
 double sct_problem_bytes(const sct_duty *duty)
 {
     const sct_structure *st = duty->st;
-    const double bar_rows = (double)duty->n_allowable * st->n_bars, m = bar_rows + duty->n_rows, n = st->n_vars;
+    const double bar_rows = (double)duty->n_allowable * (st->n_bars + SCT_BENT_PLACES * duty->n_bent);
+    const double m = bar_rows + duty->n_rows + duty->n_bows, n = st->n_vars;
     const double at_once = fmin(bar_rows, 2.0 * sct_descent_defaults().per_cluster * st->n_groups) + duty->n_rows;
     const double du = (double)st->n_cases * n * st->n_dof;
     return 2.0 * du * sizeof(double) + /* twice: the choice of sections has its own */
@@ -470,7 +573,7 @@ void sct_problem_point(const sct_problem *P, const double A[], double x[])
 
 double sct_problem_radius(const sct_problem *P, int group, int axis, double A)
 {
-    const sct_envelope *e = &P->envelope[group][axis];
+    const sct_envelope *e = &P->curves[group].i[axis];
     return P->is_fixed[group] ? P->fixed.i[group][axis] : e->n > 0 ? exp(sct_envelope_at(e, log(A)).h) : (double)NAN;
 }
 
@@ -492,6 +595,19 @@ int sct_problem_scale(sct_problem *P, double x[])
 
 sct_constraint sct_problem_constraint(const sct_problem *P, int j)
 {
-    if (j < P->n_bar_rows) return (sct_constraint){bar_of(P, j), -1, combination_of(P, j), P->need[j]};
-    return (sct_constraint){-1, j - P->n_bar_rows, combination_of(P, j), {.kind = SCT_CHECK_DEFLECTION}};
+    sct_constraint c = {.bar = bar_of(P, j), .row = -1, .bow = -1, .combination = combination_of(P, j)};
+    switch (kind_of(P, j)) {
+    case BAR_ROW: c.need = P->need[j]; break;
+    case DEFLECTION_ROW:
+        c.row = j - P->n_bar_rows;
+        c.need.kind = SCT_CHECK_DEFLECTION;
+        break;
+    case BENT_ROW: c.need.kind = sct_bent_check_kind(P->place[j - P->first_bent].kind); break;
+    case BOW_ROW:
+        c.bow = j - P->first_bow;
+        c.bar = -1;
+        c.need.kind = SCT_CHECK_BOW;
+        break;
+    }
+    return c;
 }

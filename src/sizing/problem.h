@@ -4,6 +4,8 @@
  *
  *     bar     g = ln(area needed for the force) - ln A        (for each strength combination)
  *     joint   g = ln(|u| / limit)
+ *     member with moments   g = ln(utilisation), at both ends and at the worst place between
+ *     bow     g = ln(|v| / limit), where v is largest
  *
  * In z = ln A mass has equal gradient and diagonal Hessian (w_g A_g), which is the metric; forces of a determinate
  * truss do not depend on z, so its constraints are nearly linear. Plain setting: areas and mass relative to the middle
@@ -58,14 +60,18 @@ double sct_problem_radius(const sct_problem *problem, int group, int axis, doubl
 /** ln A at the ends of each variable, whatever the form of x. */
 void sct_problem_bounds(const sct_problem *problem, double lower[], double upper[], sct_bound_source source[]);
 
+/** Analyses the sizes at x: what the duty gathers then is theirs. */
+sct_status sct_problem_analyse(sct_problem *problem, const double x[]);
+
 /** Scales the sizes of a start together until the worst limit is just kept (exact but for self-weight and bounds): one
  * analysis, returned. Not for the plain form. */
 int sct_problem_scale(sct_problem *problem, double x[]);
 
 /* What constraint j is about. */
 typedef struct sct_constraint {
-    int bar; /* a bar check; -1 for a deflection */
-    int row; /* duty row; -1 for a bar check */
+    int bar; /* a check of a member; -1 for a deflection or a bow */
+    int row; /* row of a deflection limit; else -1 */
+    int bow; /* row of a bow limit; else -1 */
     int combination;
     sct_need need; /* of a bar check at the latest value call */
 } sct_constraint;

@@ -9,22 +9,19 @@
 #include "base/number.h"
 #include "base/text.h"
 
-/* The public struct with the memory behind it. */
-typedef struct result_memory {
-    sct_result open;
-    sct_arena *arena;
-} result_memory;
-
 void *sct_result_array(sct_result *result, size_t n, size_t size)
 {
-    return sct_arena_array(((result_memory *)result)->arena, n, size);
+    return sct_arena_array(((sct_result_memory *)result)->arena, n, size);
 }
 
 void sct_result_free(sct_result *result)
 {
     if (result == NULL) return;
-    sct_arena_free(((result_memory *)result)->arena);
-    free(result);
+    sct_result_memory *memory = (sct_result_memory *)result;
+    sct_member_lines_free(memory->lines);
+    sct_structure_free(memory->st);
+    sct_arena_free(memory->arena);
+    free(memory);
 }
 
 static sct_status allocate(sct_result *r, const sct_duty *duty)
@@ -116,12 +113,13 @@ static void fill_groups(sct_result *r, const sct_duty *duty, const sct_design *d
             out->I[0] = section->I[0];
             out->I[1] = section->I[1];
         }
+        out->J = design->J[g];
+        memcpy(out->W, design->W[g], sizeof out->W);
         out->depth = section != NULL && section->depth > 0.0 ? section->depth : i[0] > 0.0 ? TUBE * i[0] : 0.0;
     }
 }
 
-/* What is above 1 by rounding alone is 1, here and so in every report. */
-static double settled(double utilisation)
+double sct_settled(double utilisation)
 {
     return utilisation > 1.0 && sct_keeps(utilisation) ? 1.0 : utilisation;
 }
@@ -167,6 +165,7 @@ static void fill_member(sct_result *r, const sct_duty *duty, const sct_design *d
         .N_max = -INFINITY,
         .N_min = INFINITY,
         .compressed = sct_duty_is_compressed(duty, bar),
+        .is_bent = b->is_bent,
     };
     for (int c = 0; c < r->n_combinations; c++) {
         const double N = r->N[(size_t)c * (size_t)r->n_members + (size_t)bar];
@@ -179,7 +178,8 @@ static void fill_member(sct_result *r, const sct_duty *duty, const sct_design *d
             m->N_min_in = c;
         }
     }
-    for (int k = 0; k < duty->n_allowable; k++) {
+    if (b->is_bent) sct_result_fill_bent(r, duty, design, bar);
+    for (int k = 0; k < duty->n_allowable && !b->is_bent; k++) {
         const int c = duty->allowable[k];
         const double N = r->N[(size_t)c * (size_t)r->n_members + (size_t)bar];
         sct_bar_check checks[SCT_MOST_BAR_CHECKS];
@@ -191,7 +191,7 @@ static void fill_member(sct_result *r, const sct_duty *duty, const sct_design *d
     const sct_bar_check slender = sct_bar_slenderness(rule, i, m->compressed, NULL);
     consider(m, &slender, -1, m->compressed ? m->N_min : m->N_max); /* the force that the limit is about */
     r->utilisation_at_most = sct_worse(r->utilisation_at_most, slender.utilisation);
-    m->utilisation = settled(m->utilisation);
+    m->utilisation = sct_settled(m->utilisation);
     sct_group_result *g = &r->groups[b->group];
     g->n_members++;
     if (g->worst_member < 0 || m->utilisation > r->members[g->worst_member].utilisation) g->worst_member = bar;
@@ -200,7 +200,7 @@ static void fill_member(sct_result *r, const sct_duty *duty, const sct_design *d
 
 static void consider_row(sct_result *r, const sct_duty *duty, int row, sct_deflection_result *out)
 {
-    const double utilisation = settled(sct_duty_row_utilisation(duty, row));
+    const double utilisation = sct_settled(sct_duty_row_utilisation(duty, row));
     const sct_deflection_row *at = &duty->rows[row];
     const sct_deflection_limit *limit = &duty->st->model->deflections[at->limit];
     const double error =
@@ -222,8 +222,12 @@ static void fill_deflections(sct_result *r, const sct_duty *duty)
     for (int limit = 0; limit < model->n_deflections; limit++) {
         const sct_deflection_limit *d = &model->deflections[limit];
         for (int k = 0; k < d->n_joints; k++) {
-            out[k] = (sct_deflection_result){
-                .limit = limit, .joint = d->joints[k], .combination = -1, .at_most = d->at_most, .label = d->label};
+            out[k] = (sct_deflection_result){.limit = limit,
+                                             .joint = d->joints[k],
+                                             .combination = -1,
+                                             .at_most = d->at_most,
+                                             .label = d->label,
+                                             .from = d->from != NULL ? d->from[k] : -1};
             memcpy(out[k].direction, d->direction, sizeof out[k].direction);
         }
         for (int c = 0; c < model->n_combinations; c++)
@@ -235,7 +239,7 @@ static void fill_deflections(sct_result *r, const sct_duty *duty)
 sct_status sct_result_new(const sct_duty *duty, const sct_design *design, sct_accuracy accuracy, sct_result **result)
 {
     *result = NULL;
-    result_memory *memory = calloc(1, sizeof *memory);
+    sct_result_memory *memory = calloc(1, sizeof *memory);
     if (memory == NULL) return SCT_NO_MEMORY;
     sct_result *r = &memory->open;
     memory->arena = sct_arena_new();
@@ -254,6 +258,10 @@ sct_status sct_result_new(const sct_duty *duty, const sct_design *design, sct_ac
     fill_groups(r, duty, design);
     for (int bar = 0; bar < r->n_members; bar++) fill_member(r, duty, design, bar);
     fill_deflections(r, duty);
+    if (sct_result_fill_frame(r, duty, design) != SCT_OK) {
+        sct_result_free(r);
+        return SCT_NO_MEMORY;
+    }
     r->kept = sct_keeps(r->utilisation_at_most); /* kept only when the error does not matter */
     sct_result_judge(r, false);
     *result = r;

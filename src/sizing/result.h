@@ -12,6 +12,27 @@
  */
 sct_status sct_result_new(const sct_duty *duty, const sct_design *design, sct_accuracy accuracy, sct_result **result);
 
+/* The public struct with what is behind it. The structure and the rest are there where some member carries moments. */
+typedef struct sct_result_memory {
+    sct_result open;
+    sct_arena *arena;
+    sct_structure *st; /* its own */
+    sct_member_lines *lines;
+    double *S;      /* n_combinations x n_springs */
+    double *A;      /* n_groups */
+    double (*I)[2]; /* [m4] n_groups */
+} sct_result_memory;
+
+/** What is above 1 by rounding alone is 1, here and so in every report. */
+double sct_settled(double utilisation);
+
+/** result_frames.c: the checks of a member that carries moments, its extremes; what the rest of its fields tell must be
+ * there. */
+void sct_result_fill_bent(sct_result *result, const sct_duty *duty, const sct_design *design, int bar);
+/** result_frames.c: bow limits; internal forces at the ends of all members; what stations need. SCT_OK, SCT_NO_MEMORY.
+ */
+sct_status sct_result_fill_frame(sct_result *result, const sct_duty *duty, const sct_design *design);
+
 /** Zeroed memory that lives as long as the result. */
 void *sct_result_array(sct_result *result, size_t n, size_t size);
 

@@ -50,10 +50,10 @@ static int rung_of(const search *S, int g, const sct_design *d)
 static double group_utilisation(const search *S, int g, int k)
 {
     const sct_section *x = section_at(S, g, k);
-    const double i[2] = {sqrt(x->I[0] / x->A), sqrt(x->I[1] / x->A)};
+    const sct_shape shape = {.A = x->A, .i = {sqrt(x->I[0] / x->A), sqrt(x->I[1] / x->A)}, .W = {x->W[0], x->W[1]}};
     double most = 0.0;
     for (int bar = 0; bar < S->st->n_bars; bar++)
-        if (S->st->bars[bar].group == g) most = sct_worse(most, sct_duty_bar_utilisation(S->duty, bar, x->A, i));
+        if (S->st->bars[bar].group == g) most = sct_worse(most, sct_duty_bar_utilisation(S->duty, bar, &shape));
     return most;
 }
 
@@ -83,7 +83,7 @@ static int lightest_passing(const search *S, int g, int from)
 static sct_status judge(search *S, double *utilisation)
 {
     S->budget--;
-    const sct_status status = sct_duty_analyse(S->duty, S->trial.A);
+    const sct_status status = sct_duty_analyse(S->duty, &S->trial);
     *utilisation = INFINITY;
     if (status == SCT_MECHANISM || status == SCT_NOT_ACCURATE) return SCT_OK; /* no design to accept */
     if (status != SCT_OK) return status;
@@ -109,7 +109,7 @@ static bool may_go_on(const search *S)
 static sct_status frozen_rounds(search *S)
 {
     enum { MOST_ROUNDS = 10 };
-    sct_status status = sct_duty_analyse(S->duty, S->trial.A);
+    sct_status status = sct_duty_analyse(S->duty, &S->trial);
     S->budget--;
     for (int round = 0; status == SCT_OK && round < MOST_ROUNDS && (round == 0 || may_go_on(S)); round++) {
         bool changed = false;
@@ -130,7 +130,7 @@ static sct_status frozen_rounds(search *S)
 static sct_status round_up(search *S, const sct_design *continuous)
 {
     sct_design_copy(S->st->n_groups, continuous, &S->trial);
-    sct_status status = sct_duty_analyse(S->duty, S->trial.A);
+    sct_status status = sct_duty_analyse(S->duty, &S->trial);
     S->budget--;
     if (status != SCT_OK) return status;
     for (int g = 0; g < S->st->n_groups; g++) {
@@ -286,7 +286,7 @@ static sct_status descend(search *S)
     while (status == SCT_OK && improved && may_go_on(S)) {
         improved = false;
         sct_design_copy(n_groups, &S->at, &S->trial);
-        status = sct_duty_analyse(S->duty, S->trial.A);
+        status = sct_duty_analyse(S->duty, &S->trial);
         S->budget--;
         if (status != SCT_OK) break;
         status = find_slopes(S);
@@ -361,7 +361,7 @@ sct_status sct_sections_pick(sct_duty *duty, sct_design *design, int most_analys
     sct_status status = run(&S, design);
     if (status == SCT_OK && S.have_best) {
         sct_design_copy(duty->st->n_groups, &S.best, design);
-        status = sct_duty_analyse(duty, design->A);
+        status = sct_duty_analyse(duty, design);
         *pick = S.pick;
     }
     sct_arena_free(S.arena);

@@ -122,12 +122,12 @@ static sct_status open_job(job *J, const sct_model *model, const sct_settings *s
     return SCT_OK;
 }
 
-/* Looks for mechanisms, then analyses: where none is found the solver must succeed. */
-static sct_status analyse_sound(job *J, const double A[])
+/* Looks for mechanisms, then analyses the design, or areas alone: where none is found the solver must succeed. */
+static sct_status analyse_sound(job *J, const double A[], const sct_design *design)
 {
     sct_status status = sct_mechanism_find(J->duty->solver, A, J->issues);
     if (status != SCT_OK) return status;
-    status = sct_duty_analyse(J->duty, A);
+    status = design != NULL ? sct_duty_analyse(J->duty, design) : sct_duty_analyse_areas(J->duty, A);
     if (status != SCT_MECHANISM && status != SCT_NOT_ACCURATE) return status;
     sct_issue_add(J->issues, SCT_ERROR, (sct_where){.file = J->model->file},
                   "internal check failed: the stiffness matrix of a sound structure has no factor (%s)",
@@ -139,7 +139,7 @@ static sct_status analyse_sound(job *J, const double A[])
 static sct_status show(job *J, sct_result **result)
 {
     sct_accuracy accuracy;
-    sct_status status = analyse_sound(J, J->design.A);
+    sct_status status = analyse_sound(J, J->design.A, &J->design);
     if (status == SCT_OK) status = sct_accuracy_refine(J->duty->solver, &J->duty->response, &accuracy, J->issues);
     if (status != SCT_OK) return status;
     sct_duty_gather(J->duty);
@@ -370,7 +370,7 @@ static sct_status find_optimum(job *J, sct_fault why)
         if (status == SCT_OK) status = run_starts(J);
         if (status != SCT_OK) return status;
         sct_problem_areas(J->problem, J->x_best, J->A);
-        status = sct_duty_analyse(J->duty, J->A);
+        status = sct_problem_analyse(J->problem, J->x_best);
         if (status != SCT_OK || J->interrupted || !mark_too_slender(J, J->A)) return status;
     }
     return SCT_OK;
@@ -440,7 +440,7 @@ static sct_status grow_together(job *J, double margin, double *over)
 {
     enum { MOST_ROUNDS = 8 };
     for (int round = 0;; round++) {
-        const sct_status status = sct_duty_analyse(J->duty, J->design.A);
+        const sct_status status = sct_duty_analyse(J->duty, &J->design);
         if (status != SCT_OK) return status;
         *over = sct_duty_utilisation(J->duty, &J->design);
         if (is_strict(*over, margin) || *over > 1.01 || round == MOST_ROUNDS) return SCT_OK;
@@ -593,7 +593,7 @@ static sct_status search(job *J, sct_result **result)
     double *A = sct_arena_array(J->arena, (size_t)J->model->n_groups, sizeof *A);
     if (A == NULL) return SCT_NO_MEMORY;
     middle_areas(J, A);
-    sct_status status = analyse_sound(J, A);
+    sct_status status = analyse_sound(J, A, NULL);
     if (status != SCT_OK) return status;
     mark_compressed(J);
     status = find_optimum(J, why);
