@@ -194,12 +194,14 @@ static inline void mb_pin_end(sct_model *m, int member, int end)
     for (int r = 0; r < SCT_TURNS; r++) m->members[member].end[end].fixity[r] = SCT_PINNED;
 }
 
+/* A new load on a member, of nothing yet. */
 static inline sct_member_load *mb_member_load(sct_model *m, int k, int member)
 {
     sct_case *c = &m->cases[k];
     c->member_loads = mb_grow(m->arena, c->member_loads, c->n_member_loads, sizeof *c->member_loads);
-    sct_member_load *load = &c->member_loads[c->n_member_loads++];
-    *load = (sct_member_load){.member = member};
+    sct_member_load *load = &c->member_loads[c->n_member_loads];
+    *load = (sct_member_load){.member = member, .where = mb_where(m, 8000, "/member_loads/", c->n_member_loads)};
+    c->n_member_loads++;
     return load;
 }
 
@@ -211,12 +213,51 @@ static inline void mb_uniform(sct_model *m, int k, int member, double q, double 
     load->qa[1] = load->qb[1] = q;
 }
 
+/* An elastic support along (about: is_turn) a unit vector. */
 static inline void mb_spring(sct_model *m, int joint, bool is_turn, const double dir[3], double stiffness)
 {
     sct_joint *j = &m->joints[joint];
     j->springs = mb_grow(m->arena, j->springs, j->n_springs, sizeof *j->springs);
-    j->springs[j->n_springs++] =
-        (sct_joint_spring){.is_turn = is_turn, .dir = {dir[0], dir[1], dir[2]}, .stiffness = stiffness};
+    j->springs[j->n_springs++] = (sct_joint_spring){
+        .is_turn = is_turn, .dir = {dir[0], dir[1], dir[2]}, .stiffness = stiffness, .where = j->where};
+}
+
+/* States a group's second moments (in plane, out of plane) and its torsion constant [m4] at its area A_held. */
+static inline void mb_stiffen(sct_model *m, int group, double I_in, double I_out, double J)
+{
+    sct_group *g = &m->groups[group];
+    const double A2 = g->A_held * g->A_held;
+    g->c[0] = I_in / A2;
+    g->c[1] = I_out / A2;
+    g->J = (sct_power){J / A2, 2.0};
+}
+
+/* Holds one more rotation of a joint. */
+static inline void mb_hold_turn(sct_model *m, int joint, double x, double y, double z)
+{
+    sct_joint *j = &m->joints[joint];
+    const double length = sqrt(x * x + y * y + z * z);
+    memcpy(j->turns_held[j->n_turns_held++], (double[3]){x / length, y / length, z / length}, sizeof j->turns_held[0]);
+}
+
+static inline void mb_fixity(sct_model *m, int member, int end, sct_fixity fixity)
+{
+    for (int r = 0; r < SCT_TURNS; r++) m->members[member].end[end].fixity[r] = fixity;
+}
+
+static inline void mb_moment(sct_model *m, int k, int joint, double Mx, double My, double Mz)
+{
+    mb_load(m, k, joint, 0.0, 0.0, 0.0);
+    memcpy(m->cases[k].loads[m->cases[k].n_loads - 1].M, (double[3]){Mx, My, Mz}, sizeof(double[3]));
+}
+
+/* A force on a member at `a` from its start, in the model's axes. */
+static inline void mb_point(sct_model *m, int k, int member, double a, double Fx, double Fy, double Fz)
+{
+    sct_member_load *load = mb_member_load(m, k, member);
+    load->is_point = true;
+    load->a = load->b = a;
+    memcpy(load->F, (double[3]){Fx, Fy, Fz}, sizeof load->F);
 }
 
 /* States a group's second moments (in plane, out of plane) and its torsion constant [m4] at its area A_held. */
