@@ -118,6 +118,8 @@ static inline void rf_member_load(sct_random *r, sct_model *m, int k, int e, uns
             load->qb[i] = between(r, -5e3, 5e3);
         }
     }
+    const double turned = between(r, -1, 1); /* the projection is that of one direction */
+    for (int i = 0; i < dim && load->axes == SCT_AXES_PROJECTED; i++) load->qb[i] = turned * load->qa[i];
     if (!load->is_point || without & RF_NO_MOMENTS || below(r, 2) == 0) return;
     if (dim == 2)
         load->M[2] = between(r, -1e4, 1e4);
