@@ -406,6 +406,27 @@ START_TEST(unsound_settings_are_refused)
 }
 END_TEST
 
+START_TEST(settings_are_sound_up_to_their_bounds_and_not_beyond)
+{
+    static const struct {
+        int starts, iterations, engine;
+        const char *fault; /* begins with it; NULL: sound */
+    } CASES[] = {{0, 0, SCT_ENGINE_AUTO, NULL},          {1000, 100000, SCT_ENGINE_SPARSE, NULL},
+                 {-1, 0, SCT_ENGINE_AUTO, "starts"},     {1001, 0, SCT_ENGINE_AUTO, "starts"},
+                 {0, -1, SCT_ENGINE_AUTO, "iterations"}, {0, 100001, SCT_ENGINE_AUTO, "iterations"},
+                 {0, 0, -1, "no such engine"},           {0, 0, SCT_ENGINE_SPARSE + 1, "no such engine"}};
+    for (size_t i = 0; i < sizeof CASES / sizeof *CASES; i++) {
+        sct_settings settings = sct_settings_defaults();
+        settings.starts = CASES[i].starts;
+        settings.iterations = CASES[i].iterations;
+        settings.engine = (sct_engine)CASES[i].engine;
+        const char *fault = sct_settings_fault(&settings);
+        ck_assert((fault == NULL) == (CASES[i].fault == NULL));
+        if (fault != NULL) ck_assert_int_eq(strncmp(fault, CASES[i].fault, strlen(CASES[i].fault)), 0);
+    }
+}
+END_TEST
+
 static void check_arithmetic(const sct_model *model, sct_status expected, const char *words)
 {
     sct_result *result;
@@ -808,6 +829,7 @@ int main(void)
     tcase_add_test(c, without_iterations_the_start_is_checked_and_marked);
     tcase_add_test(c, an_observer_can_stop_the_search_and_gets_the_best_so_far);
     tcase_add_test(c, unsound_settings_are_refused);
+    tcase_add_test(c, settings_are_sound_up_to_their_bounds_and_not_beyond);
     tcase_add_test(c, another_arithmetic_than_the_usual_is_refused);
     tcase_add_test(c, check_refuses_a_group_without_a_size);
     tcase_add_test(c, the_same_run_gives_the_same_bits_with_either_engine_near);

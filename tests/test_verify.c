@@ -400,6 +400,38 @@ START_TEST(another_model_is_caught)
 }
 END_TEST
 
+START_TEST(a_model_that_differs_in_a_count_a_name_or_an_end_is_caught)
+{
+    sized s = size_file("models/demo_roof.json");
+    sct_model *m = s.back;
+    int *counts[] = {&m->n_joints, &m->n_members, &m->n_groups, &m->n_cases, &m->n_combinations, &m->n_deflections};
+    for (size_t k = 0; k < sizeof counts / sizeof *counts; k++) {
+        --*counts[k];
+        ck_assert_int_eq(verify(m, s.result, false), SCT_SELF_CHECK);
+        ++*counts[k];
+    }
+    m->dimensions = 3;
+    ck_assert_int_eq(verify(m, s.result, false), SCT_SELF_CHECK);
+    m->dimensions = 2;
+    sct_member *member = &m->members[3];
+    int *ends[] = {&member->group, &member->from, &member->to};
+    for (int k = 0; k < 3; k++) {
+        *ends[k] += *ends[k] == 0 ? 1 : -1;
+        ck_assert_int_eq(verify(m, s.result, false), SCT_SELF_CHECK);
+        *ends[k] = k == 0 ? s.result->members[3].group : k == 1 ? s.result->members[3].from : s.result->members[3].to;
+    }
+    const char **names[] = {&member->name, &m->groups[0].name};
+    for (int k = 0; k < 2; k++) {
+        const char *name = *names[k];
+        *names[k] = "another";
+        ck_assert_int_eq(verify(m, s.result, false), SCT_SELF_CHECK);
+        *names[k] = name;
+    }
+    ck_assert_int_eq(verify(m, s.result, true), SCT_OK);
+    sized_free(&s);
+}
+END_TEST
+
 /* A mechanism has no second analysis either. */
 START_TEST(a_matrix_without_a_factor_is_caught)
 {
@@ -427,6 +459,7 @@ int main(void)
     tcase_add_test(tests, numbers_that_are_none_are_caught);
     tcase_add_test(tests, both_numbers_stand_in_the_message);
     tcase_add_test(tests, another_model_is_caught);
+    tcase_add_test(tests, a_model_that_differs_in_a_count_a_name_or_an_end_is_caught);
     tcase_add_test(tests, a_matrix_without_a_factor_is_caught);
     suite_add_tcase(suite, tests);
     return run_suite(suite);
