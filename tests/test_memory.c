@@ -95,6 +95,7 @@ static sct_status show(const sct_result *r, sct_issues *issues, uint64_t *told)
     if (status == SCT_OK) status = sct_explain_json(r, r->members[0].name, &json, issues);
     add_text(text, told);
     add_text(json, told);
+    if (status == SCT_OK && sct_explain(r, "nobody", &text, issues) != SCT_BAD_INPUT) status = SCT_SELF_CHECK;
     char *sized = NULL;
     size_t size = 0;
     sct_model *model = NULL;
