@@ -260,44 +260,6 @@ static inline void mb_point(sct_model *m, int k, int member, double a, double Fx
     memcpy(load->F, (double[3]){Fx, Fy, Fz}, sizeof load->F);
 }
 
-/* States a group's second moments (in plane, out of plane) and its torsion constant [m4] at its area A_held. */
-static inline void mb_stiffen(sct_model *m, int group, double I_in, double I_out, double J)
-{
-    sct_group *g = &m->groups[group];
-    const double A2 = g->A_held * g->A_held;
-    g->c[0] = I_in / A2;
-    g->c[1] = I_out / A2;
-    g->J = (sct_power){J / A2, 2.0};
-}
-
-/* Holds one more rotation of a joint. */
-static inline void mb_hold_turn(sct_model *m, int joint, double x, double y, double z)
-{
-    sct_joint *j = &m->joints[joint];
-    const double length = sqrt(x * x + y * y + z * z);
-    memcpy(j->turns_held[j->n_turns_held++], (double[3]){x / length, y / length, z / length}, sizeof j->turns_held[0]);
-}
-
-static inline void mb_fixity(sct_model *m, int member, int end, sct_fixity fixity)
-{
-    for (int r = 0; r < SCT_TURNS; r++) m->members[member].end[end].fixity[r] = fixity;
-}
-
-static inline void mb_moment(sct_model *m, int k, int joint, double Mx, double My, double Mz)
-{
-    mb_load(m, k, joint, 0.0, 0.0, 0.0);
-    memcpy(m->cases[k].loads[m->cases[k].n_loads - 1].M, (double[3]){Mx, My, Mz}, sizeof(double[3]));
-}
-
-/* A force along y of the model on a member at `a` from its start. */
-static inline void mb_point(sct_model *m, int k, int member, double F, double a)
-{
-    sct_member_load *load = mb_member_load(m, k, member);
-    load->is_point = true;
-    load->a = load->b = a;
-    load->F[1] = F;
-}
-
 /* A combination with the factors of the cases (at most 64; one for each case that the model will have). */
 static inline int mb_combination(sct_model *m, int n_factors, const double factor[])
 {
