@@ -1,10 +1,43 @@
 /* The second analysis of frames against the first: other elements, another matrix, loads worked out another way. */
 #include "support.h"
 
+#include "analysis/accuracy.h"
 #include "analysis/member_line.h"
-#include "frame_shapes.h"
-#include "solved.h"
+#include "random_frames.h"
+#include "truss_shapes.h"
 #include "verify/cut.h"
+
+/* ---- frames -------------------------------------------------------------------------------------------------------
+ */
+
+/* A joint that only bars hold: its rotations concern nobody. */
+static void hang_by_bars(sct_random *r, sct_model *m)
+{
+    const int n = m->n_joints, j = rf_joint(r, m), dim = m->dimensions;
+    double dir[3][3] = {{0}};
+    int other[3];
+    for (int tries = 0; tries < 100; tries++) {
+        for (int i = 0; i < dim; i++) {
+            other[i] = below(r, n);
+            for (int k = 0; k < 3; k++)
+                dir[i][k] = (m->joints[j].at[k] - m->joints[other[i]].at[k]) / rf_distance(m, j, other[i]);
+        }
+        if (ts_spread(dim, (const double(*)[3])dir) < 0.2) continue;
+        for (int i = 0; i < dim; i++) mb_bar(m, other[i], j, below(r, m->n_groups));
+        return;
+    }
+    m->n_joints--;
+}
+
+/* Frame number `seed` with every size held. */
+static sct_model *frame(uint64_t seed)
+{
+    sct_random r = {seed};
+    sct_model *m = rf_any(seed, 0);
+    for (int g = 0; g < m->n_groups; g++) m->groups[g].kind = SCT_HELD_AREA;
+    for (int i = 0; i < 2; i++) hang_by_bars(&r, m);
+    return m;
+}
 
 /* ---- both paths ---------------------------------------------------------------------------------------------------
  */
@@ -18,7 +51,9 @@ static both analyse(sct_model *m)
 {
     both b;
     sct_verify_section sections[16];
+    sct_accuracy accuracy;
     b.first = solve(m);
+    ck_assert_int_eq(sct_accuracy_refine(b.first.solver, &b.first.r, &accuracy, b.first.issues), SCT_OK);
     for (int g = 0; g < m->n_groups; g++) sections[g] = sct_verify_section_of(m, g);
     ck_assert_int_eq(sct_statics_solve(m, sections, &b.second), SCT_OK);
     return b;
@@ -30,7 +65,7 @@ static void both_free(both *b)
     solved_free(&b->first);
 }
 
-/* Largest difference of n numbers over the largest of the first, `stride` apart. */
+/* Largest difference of n numbers over the largest of the first. */
 static double apart(int n, const double a[], const double b[])
 {
     double largest = 0.0, most = 0.0;
@@ -45,25 +80,46 @@ static double apart(int n, const double a[], const double b[])
 /* ---- joints -------------------------------------------------------------------------------------------------------
  */
 
-static double joints_apart(const both *b, int k)
+/* The first path's numbers of all cases, as sct_statics has them. */
+typedef struct told {
+    double *u, *turn, *load, *moment_load, *N;
+} told;
+
+static void split(int n_joints, const double six[], double first[], double second[])
+{
+    for (int i = 0; i < 6 * n_joints; i++) (i % 6 < 3 ? first : second)[3 * (i / 6) + i % 3] = six[i];
+}
+
+static told first_joints(const both *b, sct_arena *arena)
 {
     const sct_structure *st = b->first.st;
-    const int n3 = 3 * st->n_joints;
-    double *u = calloc(4 * (size_t)n3, sizeof *u), *load = u + n3, most = 0.0;
-    sct_combine_displacements(st, &b->first.r, k, u);
-    most = fmax(most, apart(n3, u, b->second.u + k * n3));
-    sct_combine_rotations(st, &b->first.r, k, u);
-    if (b->second.has_turns) most = fmax(most, apart(n3, u, b->second.turn + k * n3));
-    double *six = calloc(2 * (size_t)n3, sizeof *six);
-    sct_combine_loads(st, b->first.A, k, six);
-    for (int kind = 0; kind < 2; kind++) {
-        for (int i = 0; i < n3; i++) load[i] = six[6 * (i / 3) + 3 * kind + i % 3];
-        const double *second = kind == 0 ? b->second.load : b->second.moment_load;
-        if (second != NULL) most = fmax(most, apart(n3, load, second + k * n3));
+    const size_t n3 = 3 * (size_t)st->n_joints, n = (size_t)st->n_cases, bars = (size_t)st->n_bars;
+    double *six = sct_arena_array(arena, 2 * n3, sizeof *six);
+    told t;
+    double **const list[] = {&t.u, &t.turn, &t.load, &t.moment_load};
+    for (int i = 0; i < 4; i++) *list[i] = sct_arena_array(arena, n * n3, sizeof *six);
+    t.N = sct_arena_array(arena, n * bars, sizeof *t.N);
+    for (int k = 0; k < st->n_cases; k++) {
+        const size_t at = (size_t)k * n3;
+        sct_combine_displacements(st, &b->first.r, k, t.u + at);
+        sct_combine_rotations(st, &b->first.r, k, t.turn + at);
+        sct_combine_loads(st, b->first.A, k, six);
+        split(st->n_joints, six, t.load + at, t.moment_load + at);
+        memcpy(t.N + (size_t)k * bars, b->first.r.N + k * st->n_springs, bars * sizeof *t.N);
     }
-    most = fmax(most, apart(st->n_bars, b->first.r.N + k * st->n_springs, b->second.N + k * st->n_bars));
-    free(six);
-    free(u);
+    return t;
+}
+
+static double joints_apart(const both *b, sct_arena *arena)
+{
+    const sct_structure *st = b->first.st;
+    const int n = 3 * st->n_joints * st->n_cases;
+    const sct_statics *s = &b->second;
+    const told t = first_joints(b, arena);
+    const double each[] = {apart(n, t.u, s->u), apart(n, t.turn, s->turn), apart(n, t.load, s->load),
+                           apart(n, t.moment_load, s->moment_load), apart(st->n_bars * st->n_cases, t.N, s->N)};
+    double most = 0.0;
+    for (int i = 0; i < 5; i++) most = fmax(most, each[i]);
     return most;
 }
 
@@ -72,66 +128,69 @@ static double joints_apart(const both *b, int k)
 
 enum { PLACES = 7, QUANTITIES = 8 };
 
-/* N, V, M, T and the bows at PLACES places of every element, by quantity. */
+/* Quantity q at place i of all n, place n of a case after the other. */
+static double *value_at(const both *b, double *value, int q, int k, int i)
+{
+    const int n = b->second.n_elements * PLACES;
+    return value + ((size_t)q * (size_t)b->first.st->n_cases + (size_t)k) * (size_t)n + i;
+}
+
+/* N, V, M, T and the bows at PLACES places of every element. */
 static void first_places(const both *b, int k, double *value)
 {
     const sct_structure *st = b->first.st;
-    const int n = b->second.n_elements * PLACES;
     sct_member_lines *lines = sct_member_lines_new(st);
     double *S = calloc((size_t)st->n_springs, sizeof *S);
     sct_combine_springs(st, &b->first.r, k, S);
-    for (int i = 0; i < n; i++) {
+    for (int i = 0; i < b->second.n_elements * PLACES; i++) {
         const int e = b->second.elements[i / PLACES].member;
         const sct_bar *bar = &st->bars[e];
+        const sct_properties size = sct_properties_at_area(st->model, bar->group, b->first.A[bar->group]);
         const sct_beam_line line = sct_member_line(lines, e, k, b->first.A[bar->group]);
         const sct_beam_state state = sct_member_state(st, S, e);
         const double x = bar->L * (i % PLACES) / (PLACES - 1);
         double all[SCT_BEAM_QUANTITIES];
         sct_beam_values(&line, &state, sct_beam_piece_at(&line, x, i % PLACES == 0 ? 1 : -1), x, all);
-        for (int q = 0; q < 6; q++) value[q * n + i] = all[q];
+        for (int q = 0; q < 6; q++) *value_at(b, value, q, k, i) = all[q];
         for (int plane = 0; plane < 2; plane++) {
-            const sct_properties size = sct_properties_at_area(st->model, bar->group, b->first.A[bar->group]);
             const sct_beam_bending bending = {.plane = plane,
                                               .EI = bar->E * size.P[plane == 0 ? SCT_INERTIA_IN : SCT_INERTIA_OUT],
                                               .kappa = sct_free_curvature(st, k, e, plane)};
-            value[(6 + plane) * n + i] = sct_beam_deflection(&line, &state, &bending, x);
+            *value_at(b, value, 6 + plane, k, i) = sct_beam_deflection(&line, &state, &bending, x);
         }
     }
     free(S);
     sct_member_lines_free(lines);
 }
 
-static void second_places(const both *b, int k, double *value)
+static void second_places(const both *b, int k, double *value, sct_arena *arena)
 {
     const sct_statics *s = &b->second;
-    const int n = s->n_elements * PLACES;
-    for (int i = 0; i < n; i++) {
+    for (int i = 0; i < s->n_elements * PLACES; i++) {
         const sct_element *x = &s->elements[i / PLACES];
-        sct_element_load *loads = calloc((size_t)sct_cut_loads_at_most(x), sizeof *loads);
-        long double *breaks = calloc((size_t)sct_cut_breaks_at_most(x), sizeof *breaks);
+        sct_element_load *loads = sct_arena_array(arena, (size_t)sct_cut_loads_at_most(x), sizeof *loads);
+        long double *breaks = sct_arena_array(arena, (size_t)sct_cut_breaks_at_most(x), sizeof *breaks);
         const sct_cut_line line = sct_cut_line_make(b->first.model, s, i / PLACES, k, loads, breaks);
         const long double at = x->L * (i % PLACES) / (PLACES - 1);
         const sct_cut cut = sct_cut_at(&line, at, i % PLACES == 0);
         const long double all[QUANTITIES] = {
             cut.N, cut.V[0], cut.V[1], cut.M[0], cut.M[1], cut.T, sct_cut_bow(&line, 0, at), sct_cut_bow(&line, 1, at)};
-        for (int q = 0; q < QUANTITIES; q++) value[q * n + i] = (double)all[q];
-        free(loads);
-        free(breaks);
+        for (int q = 0; q < QUANTITIES; q++) *value_at(b, value, q, k, i) = (double)all[q];
     }
 }
 
-static double members_apart(const both *b, int k)
+static double members_apart(const both *b, sct_arena *arena)
 {
-    static const int KIND[] = {0, 1, 3, 5, 6, QUANTITIES}; /* both planes of V, M and bow together */
-    const int n = b->second.n_elements * PLACES;
-    double *first = calloc((size_t)(QUANTITIES * n), sizeof *first), most = 0.0;
-    double *second = calloc((size_t)(QUANTITIES * n), sizeof *second);
-    first_places(b, k, first);
-    second_places(b, k, second);
-    for (int q = 0; q < 5; q++)
+    static const int KIND[] = {0, 3, 6, QUANTITIES}; /* forces, moments, bows */
+    const int n_cases = b->first.st->n_cases, n = b->second.n_elements * PLACES * n_cases;
+    double *first = sct_arena_array(arena, (size_t)(QUANTITIES * n), sizeof *first), most = 0.0;
+    double *second = sct_arena_array(arena, (size_t)(QUANTITIES * n), sizeof *second);
+    for (int k = 0; k < n_cases; k++) {
+        first_places(b, k, first);
+        second_places(b, k, second, arena);
+    }
+    for (int q = 0; q < 3; q++)
         most = fmax(most, apart((KIND[q + 1] - KIND[q]) * n, first + KIND[q] * n, second + KIND[q] * n));
-    free(first);
-    free(second);
     return most;
 }
 
@@ -140,15 +199,14 @@ START_TEST(both_analyses_agree_on_random_frames)
     const int n = getenv("SCT_TEST_FULL") != NULL ? 5000 : 300;
     double at_joints = 0.0, along = 0.0;
     for (int i = 1; i <= n; i++) {
-        both b = analyse(fs_random(2 + i % 2, 3 + i % 8, i % 7, (uint64_t)i));
-        for (int k = 0; k < 3; k++) {
-            const double joints = joints_apart(&b, k), members = members_apart(&b, k);
-            at_joints = fmax(at_joints, joints);
-            along = fmax(along, members);
-            ck_assert_msg(joints < 1e-9 && members < 1e-9, "seed %d, case %d: %g at joints, %g along members", i, k,
-                          joints, members);
-        }
+        sct_arena *arena = sct_arena_new();
+        both b = analyse(frame((uint64_t)i));
+        const double joints = joints_apart(&b, arena), members = members_apart(&b, arena);
+        at_joints = fmax(at_joints, joints);
+        along = fmax(along, members);
+        ck_assert_msg(joints < 1e-9 && members < 1e-9, "seed %d: %g at joints, %g along members", i, joints, members);
         both_free(&b);
+        sct_arena_free(arena);
     }
     printf("measured: second path: %d random frames agree to %.1e at joints, %.1e along members\n", n, at_joints,
            along);
