@@ -209,7 +209,7 @@ coverage: test-packages
 	@find $(BUILD)/coverage -name '*.gcda' -delete 2>/dev/null || true
 	@$(MAKE) --no-print-directory -s BUILD=$(BUILD)/coverage OPT="-O0 -g" SAN="--coverage -fprofile-update=atomic" covered
 	@BUILD=$(BUILD)/coverage LINES_FLOOR=$(LINES_FLOOR) BRANCHES_FLOOR=$(BRANCHES_FLOOR) sh .ci/coverage
-covered: all $(TESTS)
+covered: all $(TESTS) $(REPLAYS)
 	-@BUILD=$(BUILD) CK_DEFAULT_TIMEOUT=120 sh tests/run.sh $(TESTS) >$(BUILD)/tests.log 2>&1; tail -n 1 $(BUILD)/tests.log
 
 format:
