@@ -85,7 +85,8 @@ static bool tell_loose_joint(const sct_graph *g, int j)
     } else {
         sct_text_format(&text, "its %d members %s", n_bars, how_they_lie(g, j));
     }
-    sct_text_add(&text, "; add a member or a support");
+    sct_text_add(&text, sct_motion_is_frame(st->model) ? "; fix a pinned end, add a member or a support"
+                                                       : "; add a member or a support");
     return sct_motion_tell(&text, SCT_ERROR, st->model->joints[j].where, g->issues);
 }
 
@@ -117,8 +118,9 @@ static bool tell_loose_joints(const sct_graph *g, int first, bool told[])
     if (enough && !text.failed) {
         sct_text_format(&line, "%s %s can %smove in %s: ", n == 1 ? "joint" : "joints", text.data,
                         n == 1 ? "" : "each ", words.data);
-        sct_text_format(&line, "the members of %s do not hold it there; add members or supports",
-                        n == 1 ? "the joint" : "each such joint");
+        sct_text_format(&line, "the members of %s do not hold it there; %sadd members or supports",
+                        n == 1 ? "the joint" : "each such joint",
+                        sct_motion_is_frame(st->model) ? "fix pinned ends, " : "");
     }
     sct_text_free(&words);
     sct_text_free(&text);

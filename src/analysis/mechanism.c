@@ -289,9 +289,8 @@ static const char *remedy(const search *f)
 {
     const bool is_one = f->motion.n == 1, is_frame = sct_motion_is_frame(f->st->model);
     if (f->motion.is_turn)
-        return ": nothing holds this rotation; hold it by a support, fix another member to the joint or let the "
-               "turning "
-               "member's end turn freely";
+        return ": nothing holds this rotation; hold it by a support, fix another member there, or release the twist of "
+               "the members that turn";
     if (is_one && is_frame) return ": nothing holds it there; fix a pinned end, add a member or a support";
     if (is_one) return ": nothing holds it there; add a member or a support";
     return is_frame ? ": no member resists this; fix a pinned end, add a member (a diagonal) or a support"

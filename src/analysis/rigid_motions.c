@@ -169,9 +169,9 @@ static int holds_needed(const sct_graph *g, const sct_part *p, bool on_one_line,
     return on_one_line ? 5 : 6;
 }
 
-/* Rigid motions that the supports of a part leave free; returns their number, 0 to 6. Of a straight part, turning about
- * its own line moves no joint: that is left out. */
-static int free_motions(sct_graph *g, const sct_part *p, bool on_one_line, const double axis[3], sct_row R[SCT_ROW])
+/* Rigid motions that the supports of a part leave free; returns their number, 0 to 6. line: of a straight part that is
+ * not asked whether it turns about it, which moves no joint; else NULL. */
+static int free_motions(sct_graph *g, const sct_part *p, const double *line, sct_row R[SCT_ROW])
 {
     int m = 0;
     for (int i = 0; i < p->count; i++) {
@@ -184,7 +184,7 @@ static int free_motions(sct_graph *g, const sct_part *p, bool on_one_line, const
         m = add_held_turns(g, j, M, m);
         m = add_elastic(g, j, q, M, m);
     }
-    if (on_one_line) hold_row(g, axis, NULL, g->rows[m++]);
+    if (line != NULL) hold_row(g, line, NULL, g->rows[m++]);
     return sct_span_null(m, room(g), g->rows, SCT_NO_HOLD, R);
 }
 
@@ -394,7 +394,9 @@ sct_status sct_check_rigid_motions(sct_graph *g, sct_part *p, bool name_unsuppor
     measure_part(g, p);
     const bool on_one_line = is_straight(g, p, axis), is_held = p->n_held + p->n_turns > 0;
     const int needed = holds_needed(g, p, on_one_line, axis);
-    const int k = free_motions(g, p, on_one_line, axis, R);
+    /* where there are supports, what the joints then do is told instead */
+    const bool spin_counts = !on_one_line || (needed == 6 && !is_held);
+    const int k = free_motions(g, p, spin_counts ? NULL : axis, R);
     const int n_turns = simplify(g, p, k, R);
     int pivots[SCT_ROW], n_new = 0;
     bool enough = true;
