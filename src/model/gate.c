@@ -385,8 +385,9 @@ static bool doubled(scan *s, uint32_t first, const key *second)
  * Equal hashes are sorted by their text, so that keys made to collide cost no more than their sorting. */
 static bool check_keys(scan *s, const level *object)
 {
-    key *keys = s->keys + object->first_key;
     const size_t n = s->n_keys - object->first_key;
+    if (n == 0) return true; /* there may be no table yet */
+    key *keys = s->keys + object->first_key;
     bool suspect = n > 12;
     for (size_t i = 1; i < n && !suspect; i++)
         for (size_t j = 0; j < i; j++) suspect |= keys[i].hash == keys[j].hash;
