@@ -65,7 +65,7 @@ $(BUILD)/tests/test_faults: tests/test_faults.c $(CLI_OBJ) $(BUILD)/libscantling
 	  $(FAULTS:%=-Wl$(comma)--wrap=%) -lcheck -lsubunit -lrt -lpthread -lsuitesparseconfig $(LDLIBS)
 
 # Mistakes of the program's own are made there, between its parts.
-MISTAKES := main sct_duty_analyse sct_accuracy_refine sct_model_parse sct_skyline_factor sct_sparse_update
+MISTAKES := main sct_duty_analyse_areas sct_accuracy_refine sct_model_parse sct_skyline_factor sct_sparse_update
 $(BUILD)/tests/test_self_check: tests/test_self_check.c $(CLI_OBJ) $(BUILD)/libscantling.a
 	@mkdir -p $(@D)
 	$(CC) $(CPPFLAGS) $(CFLAGS) -MMD -MP -Itests -o $@ $< $(CLI_OBJ) $(BUILD)/libscantling.a $(LDFLAGS) \

@@ -31,11 +31,11 @@ static mistake made;
 /* ---- where calls are led ------------------------------------------------------------------------------------------
  */
 
-sct_status __real_sct_duty_analyse(sct_duty *duty, const sct_design *design);
-sct_status __wrap_sct_duty_analyse(sct_duty *duty, const sct_design *design);
-sct_status __wrap_sct_duty_analyse(sct_duty *duty, const sct_design *design)
+sct_status __real_sct_duty_analyse_areas(sct_duty *duty, const double A[]);
+sct_status __wrap_sct_duty_analyse_areas(sct_duty *duty, const double A[]);
+sct_status __wrap_sct_duty_analyse_areas(sct_duty *duty, const double A[])
 {
-    return made == NO_FACTOR ? SCT_MECHANISM : __real_sct_duty_analyse(duty, design);
+    return made == NO_FACTOR ? SCT_MECHANISM : __real_sct_duty_analyse_areas(duty, A);
 }
 
 /* Changes the largest of n numbers by a millionth. */

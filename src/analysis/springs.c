@@ -166,6 +166,14 @@ static void add_ends(sct_structure *st, int bar)
     }
 }
 
+/* An area that the group can have. */
+static double some_area(const sct_model *m, const sct_group *g)
+{
+    return g->kind == SCT_FREE_AREA ? g->A_min
+           : g->kind == SCT_LADDER  ? m->families[g->family].sections[g->ladder[0]].A
+                                    : g->A_held;
+}
+
 /* Says what a beam lacks. */
 static void check_properties(const sct_structure *st, int bar, sct_issues *issues)
 {
@@ -174,8 +182,7 @@ static void check_properties(const sct_structure *st, int bar, sct_issues *issue
     const sct_bar *b = &st->bars[bar];
     const sct_member *member = &st->model->members[bar];
     const sct_group *group = &st->model->groups[b->group];
-    const double A = group->kind == SCT_FREE_AREA ? group->A_min : group->kind == SCT_HELD_AREA ? group->A_held : 0.0;
-    const sct_properties size = sct_properties_at_area(st->model, b->group, A);
+    const sct_properties size = sct_properties_at_area(st->model, b->group, some_area(st->model, group));
     bool is_told[SCT_PROPERTIES] = {false};
     for (int i = b->first; i < b->first + b->n; i++) {
         const sct_spring *s = &st->springs[i];

@@ -369,48 +369,24 @@ sct_status sct_reader_parse(const char *name, const char *bytes, size_t size, sc
 /* What a model asks of the analysis that it does not carry yet: the first such thing and its place. NULL: nothing. */
 static const char *not_carried(const sct_model *m, sct_where *where)
 {
-    for (int i = 0; i < m->n_joints; i++) {
-        *where = m->joints[i].where;
-        if (m->joints[i].n_turns_held > 0) return "the rotation of a joint is held";
-        if (m->joints[i].n_springs > 0) return "the joint stands on springs";
-    }
     for (int i = 0; i < m->n_members; i++) {
         *where = m->members[i].where;
-        for (int k = 0; k < 2 * SCT_TURNS; k++)
-            if (m->members[i].end[k / SCT_TURNS].fixity[k % SCT_TURNS] != SCT_PINNED) return "the member bends";
-        if (m->members[i].run >= 0) return "the member runs through joints";
         if (m->members[i].tension_only) return "the member carries tension only";
     }
-    for (int i = 0; i < m->n_cases; i++) {
-        const sct_case *c = &m->cases[i];
-        *where = c->where;
-        if (c->n_member_loads > 0) return "loads act on members";
-        for (int k = 0; k < c->n_loads; k++)
-            if (fabs(c->loads[k].M[0]) > 0 || fabs(c->loads[k].M[1]) > 0 || fabs(c->loads[k].M[2]) > 0)
-                return "moments act on joints";
-        for (int k = 0; k < c->n_bar_actions; k++)
-            if (fabs(c->bar_actions[k].gradient[0]) > 0 || fabs(c->bar_actions[k].gradient[1]) > 0)
-                return "members are warmed on one side";
-    }
-    for (int i = 0; i < m->n_deflections; i++) {
-        *where = m->deflections[i].where;
-        if (m->deflections[i].from != NULL) return "the limit is on a movement between joints";
-    }
     *where = (sct_where){.file = m->file, .pointer = "/limits"};
-    if (m->n_bows > 0) return "the bow of members is limited";
     if (m->least_factor > 0 || m->amplifies) return "sway is limited or amplified";
     if (m->least_frequency > 0) return "the frequency is limited";
     return NULL;
 }
 
-/* A frame that was analysed as a truss would be silently wrong. */
+/* What is not carried would be silently wrong. */
 sct_status sct_model_parse(const char *name, const char *bytes, size_t size, sct_model **model, sct_issues *issues)
 {
     sct_where where;
     const sct_status status = sct_reader_parse(name, bytes, size, model, issues);
     const char *what = status == SCT_OK ? not_carried(*model, &where) : NULL;
     if (what == NULL) return status;
-    sct_issue_add(issues, SCT_ERROR, where, "%s; frames are not carried yet: this version sizes trusses only", what);
+    sct_issue_add(issues, SCT_ERROR, where, "%s; this version does not carry that yet", what);
     sct_model_free(*model);
     *model = NULL;
     return SCT_BAD_INPUT;

@@ -571,6 +571,16 @@ void sct_problem_point(const sct_problem *P, const double A[], double x[])
     }
 }
 
+void sct_problem_put(const sct_problem *P, int group, double A, sct_design *design)
+{
+    const sct_shape shape = sct_curves_shape(&P->curves[group], A);
+    design->section[group] = -1;
+    design->A[group] = A;
+    design->J[group] = sct_curves_properties(&P->curves[group], A).P[SCT_TORSION];
+    memcpy(design->i[group], shape.i, sizeof shape.i);
+    memcpy(design->W[group], shape.W, sizeof shape.W);
+}
+
 double sct_problem_radius(const sct_problem *P, int group, int axis, double A)
 {
     const sct_envelope *e = &P->curves[group].i[axis];

@@ -54,6 +54,9 @@ void sct_problem_tighten(sct_problem *problem, double margin);
 void sct_problem_areas(const sct_problem *problem, const double x[], double A[]);
 void sct_problem_point(const sct_problem *problem, const double A[], double x[]);
 
+/** Puts an area of a group into a design, with the properties that its curves give. */
+void sct_problem_put(const sct_problem *problem, int group, double A, sct_design *design);
+
 /** Radius of gyration of a group's envelope at area A [m2]; NAN where none is stated. */
 double sct_problem_radius(const sct_problem *problem, int group, int axis, double A);
 

@@ -390,8 +390,9 @@ static void take_areas(job *J, const double A[])
 {
     for (int v = 0; v < J->st->n_vars; v++) {
         const int g = J->st->group_of_var[v];
-        if (J->model->groups[g].kind == SCT_FREE_AREA || J->design.section[g] < 0)
-            sct_design_area(J->model, g, A[g], &J->design);
+        if (J->model->groups[g].kind == SCT_LADDER && J->design.section[g] < 0)
+            sct_problem_put(J->problem, g, A[g], &J->design);
+        if (J->model->groups[g].kind == SCT_FREE_AREA) sct_design_area(J->model, g, A[g], &J->design);
     }
 }
 
@@ -561,7 +562,7 @@ static sct_status price_optimum(job *J, sct_result **priced)
     sct_design_copy(J->model->n_groups, &J->design, &optimum);
     sct_problem_areas(J->problem, J->x_best, J->A);
     for (int v = 0; v < J->st->n_vars; v++)
-        sct_design_area(J->model, J->st->group_of_var[v], J->A[J->st->group_of_var[v]], &optimum);
+        sct_problem_put(J->problem, J->st->group_of_var[v], J->A[J->st->group_of_var[v]], &optimum);
     status = sct_result_new(J->duty, &optimum, (sct_accuracy){0}, priced);
     if (status != SCT_OK) return status;
     (*priced)->mass_continuous = (*priced)->mass;
