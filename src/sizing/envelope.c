@@ -35,7 +35,8 @@ static double secant(const sct_envelope *e, int k)
     return (e->h[k + 1] - e->h[k]) / (e->s[k + 1] - e->s[k]);
 }
 
-/* Keeps the points of the upper hull: each new point drops those before it that lie on or below the chord. */
+/* Keeps the points of the upper hull: each new point drops those before it that lie below the chord. Points on it stay:
+ * the curve then follows a relation that sections were made by. */
 static void push(sct_envelope *e, double s, double h)
 {
     static const double SAME = 1e-9; /* in ln A */
@@ -44,7 +45,8 @@ static void push(sct_envelope *e, double s, double h)
         e->n--;
     }
     if (e->n > 0 && h <= e->h[e->n - 1]) return; /* heavier and not stiffer: the flat end covers it */
-    while (e->n >= 2 && (h - e->h[e->n - 1]) / (s - e->s[e->n - 1]) >= secant(e, e->n - 2)) e->n--;
+    static const double ON = 1e-9; /* relative: secants of points on one line */
+    while (e->n >= 2 && (h - e->h[e->n - 1]) / (s - e->s[e->n - 1]) > secant(e, e->n - 2) * (1.0 + ON)) e->n--;
     e->s[e->n] = s;
     e->h[e->n++] = h;
 }
