@@ -326,7 +326,8 @@ static const mistake MISTAKES[] = {
     {"\"at\": [3, 0]", "\"at\": [3000000, 0]",
      "17:19: error: /joints/L1/at/0: found 3000000 m; expected a coordinate from -100000 to 100000 m"},
     {"\"support\": [\"y\"]", "\"support\": [\"z\"]",
-     "18:38: error: /joints/L2/support/0: found \"z\"; expected a direction: \"x\", \"y\", \"rotation\", or a vector such "
+     "18:38: error: /joints/L2/support/0: found \"z\"; expected a direction: \"x\", \"y\", \"rotation\", or a vector "
+     "such "
      "as [0.6, 0.8]"},
     {"\"support\": [\"y\"]", "\"support\": [\"y\", \"y\"]",
      "18:43: error: /joints/L2/support/1: the directions before this one hold it already; expected independent "
@@ -742,6 +743,39 @@ START_TEST(a_file_that_cannot_be_opened_is_told)
 }
 END_TEST
 
+START_TEST(a_name_of_any_blanks_is_none_and_of_a_neighbour_of_them_is_one)
+{
+    static const struct {
+        const char *name;
+        sct_status status;
+    } CASES[] = {{" ", SCT_BAD_INPUT},
+                 {"\\t\\r\\n", SCT_BAD_INPUT},
+                 {"\xC2\xA0", SCT_BAD_INPUT},      /* no-break space */
+                 {"\xE2\x80\x80", SCT_BAD_INPUT},  /* en quad, the first of a row of blanks */
+                 {"\xE2\x80\x8B ", SCT_BAD_INPUT}, /* zero width space, the last of it */
+                 {"\xE3\x80\x80", SCT_BAD_INPUT},  /* ideographic space */
+                 {"\xEF\xBB\xBF", SCT_BAD_INPUT},  /* byte order mark */
+                 {"\xC2\xA1", SCT_OK},
+                 {"\xE2\x80\x90", SCT_OK}, /* hyphen */
+                 {"\xE2\x82\x80", SCT_OK}, /* subscript zero */
+                 {"\xE3\x80\x81", SCT_OK},
+                 {"\xE3\x81\x82", SCT_OK},
+                 {"\xEF\xBB\xBC", SCT_OK},
+                 {"\xEF\xBC\xA1", SCT_OK},
+                 {" x", SCT_OK}};
+    for (size_t i = 0; i < sizeof CASES / sizeof *CASES; i++) {
+        char key[40];
+        snprintf(key, sizeof key, "\"%s\": {\"for\": \"service\"", CASES[i].name);
+        char *text = edited("\"S1\": {\"for\": \"service\"", key);
+        sct_issues *issues = sct_issues_new();
+        ck_assert_msg(parse(text, issues) == CASES[i].status, "case %zu", i);
+        if (CASES[i].status != SCT_OK) ck_assert_ptr_nonnull(strstr(sct_issues_get(issues, 0)->message, "blank name"));
+        sct_issues_free(issues);
+        free(text);
+    }
+}
+END_TEST
+
 int main(void)
 {
     Suite *suite = suite_create("reader");
@@ -769,6 +803,7 @@ int main(void)
     tcase_add_test(c, too_many_cases_are_too_large);
     tcase_add_test(c, space_models_have_three_components);
     tcase_add_test(c, a_file_that_cannot_be_opened_is_told);
+    tcase_add_test(c, a_name_of_any_blanks_is_none_and_of_a_neighbour_of_them_is_one);
     suite_add_tcase(suite, c);
     return run_suite(suite);
 }
