@@ -32,7 +32,7 @@ struct sct_qp {
     double *size;              /* of the variables: lengths are measured in x_i sqrt(G_ii) */
     double *norm;              /* of the rows */
     int *active;               /* row c: c; lower bound of x_i: m + i; upper bound: m + n + i */
-    signed char *sign, *state; /* of the active set: -1 for an equality turned round; of every constraint */
+    signed char *sign, *state; /* of the equalities, which never leave: -1 when turned round; of every constraint */
 };
 
 sct_qp *sct_qp_new(int n, int m)
@@ -207,7 +207,6 @@ static void drop(sct_qp *qp, int l)
     qp->state[qp->active[l]] = INACTIVE;
     for (int k = l; k < q; ++k) {
         qp->active[k] = qp->active[k + 1];
-        qp->sign[k] = qp->sign[k + 1];
         qp->u[k] = qp->u[k + 1];
         qp->image[k] = qp->image[k + 1];
         memcpy(qp->R + (size_t)k * N, qp->R + (size_t)(k + 1) * N, ((size_t)k + 2) * sizeof *qp->R);
