@@ -209,6 +209,75 @@ says R08-file-size-limit 6 'out/result.json: error: cannot be written: File too 
      limited -f 1 "$program" size -q -o out model.json
 [ ! -e out ] || ! ls -A out | grep -qv '\.csv$\|\.json$\|\.svg$'
 holds $? R08-no-half-file "left: $(ls -A out 2>&1)"
+
+# Numbers come back to the bit from the file that is written: the joint's place as the double nearest to what stood there.
+for digits in 17 30 60; do
+    fresh
+    cp "$tmp/made/N08-$digits-digits/model.json" model.json
+    "$program" size -q -o a model.json && "$program" check -q -o b a/model.json && python3 -c 'import json
+height = [json.load(open(name))["joints"]["C"]["at"][1] for name in ("model.json", "a/model.json")]
+shown = [joint["at_m"][1] for name in "ab" for joint in json.load(open(name + "/result.json"))["joints"]
+         if joint["name"] == "C"]
+assert len(set(height + shown)) == 1 and len(shown) == 2, (height, shown)' 2>"$err"
+    holds $? "N08-$digits-digits-written-and-read-again" "$(tail -n 1 "$err")"
+done
+
+# F04: a disk with room for more and more of the four outputs, until all go on it.
+fresh
+mkdir disk
+if [ "$(id -u)" = 0 ] && mount -t tmpfs -o size=4k none disk 2>/dev/null; then
+    umount disk
+    fits=false full=0
+    for kilobytes in 4 8 12 16 20 24 28 32 40 48 64; do
+        $fits && break
+        mount -t tmpfs -o size=${kilobytes}k none disk
+        "$program" size -q -o disk model.json 2>"$err"
+        code=$?
+        left=$(ls -A disk)
+        umount disk
+        if [ $code = 0 ]; then
+            fits=true
+        else
+            [ $code = 6 ] && [ -z "$left" ] && grep -q 'error: cannot be written: No space left on device$' "$err"
+            holds $? "F04-full-disk-of-$kilobytes-kB" "exit code $code, left: $left; $(cat "$err")"
+            full=$((full + 1))
+        fi
+    done
+    $fits && [ $full -ge 3 ]
+    holds $? F04-disks-of-every-size "$full of the disks were full"
+else
+    echo "skipped: F04 a disk that is truly full: only root can mount a small one"
+fi
+
+# R04: refused before the memory is taken, with the figures; and a million joints with three million members.
+fresh
+python3 -c 'n = 800
+print("{\"scantling\":1,\"dimensions\":2,\"units\":{\"length\":\"m\",\"force\":\"kN\",\"stress\":\"MPa\"},")
+print("\"materials\":{\"s\":{\"E\":210000,\"density\":\"7850 kg/m3\",\"yield\":235,\"allowable\":{\"tension\":140,\"compression\":140}}},")
+held = ",\"support\":[\"x\",\"y\"]"
+print("\"joints\":{" + ",".join("\"%d\":{\"at\":[%d,%d]%s}" % (i, i // 2, i % 2, held if i in (0, 2 * n) else "")
+      for i in range(2 * n + 2)) + "},")
+ends = [(2 * i + a, 2 * i + b) for i in range(n) for a, b in ((0, 1), (0, 2), (1, 3), (0, 3))] + [(2 * n, 2 * n + 1)]
+area = "{\"material\":\"s\",\"area\":{\"at_least\":\"1 mm2\",\"at_most\":\"1e5 mm2\"},\"second_moment\":{\"c\":1}}"
+print("\"groups\":{" + ",".join("\"%d\":%s" % (e, area) for e in range(len(ends))) + "},")
+print("\"members\":{" + ",".join("\"%d\":{\"from\":\"%d\",\"to\":\"%d\",\"group\":\"%d\"}" % (e, a, b, e)
+      for e, (a, b) in enumerate(ends)) + "},")
+print("\"cases\":{\"P\":{\"joints\":{\"%d\":[0,-1]}}}," % n)
+print("\"combinations\":{\"S\":{\"for\":\"allowable\",\"sum\":{\"P\":1}}},\"limits\":{\"buckling\":{\"by\":\"Euler\",\"safety\":2}}}")
+' >groups.json
+if ! grep -q __asan_init "$program"; then
+    says R04-more-memory-than-there-is 7 any limited -v 300000 "$program" size groups.json
+    grep -q '^groups.json: error: the model is too large: 3200 unknowns and 3201 sized groups need about [0-9]* MB of memory ([0-9]* MB for the factor of the stiffness matrix, [0-9]* MB for the search); at most 276 MB may be taken here$' "$err"
+    holds $? R04-the-estimate-is-told "$(cat "$err")"
+fi
+{
+    echo '{"scantling":1,"joints":{'
+    seq 1000000 | sed 's/.*/"&":{"at":[&,0]},/'
+    echo '"0":{"at":[0,0]}},"members":{'
+    seq 3000000 | sed 's/.*/"&":{"from":"&","to":"0","group":"all"},/'
+} 2>/dev/null | "$program" size - >"$out" 2>"$err"
+[ "$(cat "$err")" = '<stdin>: error: the file is larger than 67108864 bytes, the most that is read' ] && [ ! -s "$out" ]
+holds $? R04-a-million-joints "$(cat "$err")"
 cd "$root" || exit 1
 
 echo

@@ -15,6 +15,7 @@ frame.json, frame_edits.txt, frame_missing.txt, frame_types.txt
 space.json, space_edits.txt
              the same for a frame in space: edits alone
 """
+import math
 import os
 import re
 import sys
@@ -237,9 +238,33 @@ def make_large(folder, base):
          "scantling: 99979 more errors not shown\n")
 
 
+def all_tied(n):
+    """A model of n joints on a spiral, every one tied to every other: its stiffness matrix has no zero."""
+    joints = ",".join('"%d":{"at":[%.4f,%.4f]%s}' % (
+        i, i * math.cos(i), i * math.sin(i), ',"support":["x","y"]' if i in (0, n // 2) else "") for i in range(n))
+    members = ",".join('"%d-%d":{"from":"%d","to":"%d","group":"all"}' % (i, j, i, j)
+                       for j in range(n) for i in range(j))
+    return ('{"scantling":1,"dimensions":2,"units":{"length":"m","force":"kN","stress":"MPa"},\n"materials":{"steel":'
+            '{"E":210000,"density":"7850 kg/m3","allowable":{"tension":140,"compression":140}}},\n"joints":{%s},\n'
+            '"groups":{"all":{"material":"steel","area":{"at_least":"1 mm2","at_most":"5000 mm2"}}},\n"members":{%s},\n'
+            '"cases":{"push":{"joints":{"%d":[10,-20]}}},"combinations":{"S":{"for":"allowable","sum":{"push":1}}},\n'
+            '"limits":{"buckling":{"by":"none"}}}\n' % (joints, members, n - 1))
+
+
+def make_all_tied(folder):
+    make(folder, "R06-250-joints-all-tied", all_tied(250), "0",
+         "model.json:7:28: warning: /limits/buckling/by: buckling is not checked; compression is held by the allowable "
+         "stress alone\n")
+    if os.environ.get("SCT_TEST_FULL"):
+        make(folder, "R06-1500-joints-all-tied", all_tied(1500), "7",
+             "model.json:7:28: warning: /limits/buckling/by: buckling is not checked; compression is held by the "
+             "allowable stress alone\nmodel.json:5:11: error: /members: found 1124250 entries; at most 1000000 are read\n")
+
+
 def main():
     base = Base(read("base.json"))
     make_large(sys.argv[1], base)
+    make_all_tied(sys.argv[1])
     make_missing(sys.argv[1], base)
     make_types(sys.argv[1], base)
     make_edits(sys.argv[1], base)
