@@ -8,7 +8,8 @@
 #include <stdlib.h>
 
 /* Relative comparison with an absolute floor; fails on NAN. */
-#define ck_close(value, expected, tol) ck_assert_double_eq_tol((value), (expected), (tol) * (fabs(expected) + 1e-300))
+#define ck_close(value, expected, tol)                                                                                 \
+    ck_assert_double_eq_tol((value), (expected), (tol) * (fabs((double)(expected)) + 1e-300))
 
 /** Runs one suite; the exit code of main. Check prints its summary line. */
 static inline int run_suite(Suite *suite)
