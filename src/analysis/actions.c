@@ -209,12 +209,21 @@ static void to_model(const sct_bar *bar, const double local[2][6], double end[2]
         }
 }
 
+/* A member that is free to twist at one end hands all of it to the joint at the other. */
+static bool twist_is_taken(const sct_structure *st, const sct_bar *bar)
+{
+    const bool *is_free = bar->hinges.free_turn[SCT_TWIST];
+    if (is_free[0] && is_free[1]) return false;
+    return (!is_free[0] || is_taken(st, bar->to, bar->axes[0])) &&
+           (!is_free[1] || is_taken(st, bar->from, bar->axes[0]));
+}
+
 static void add_member_load(sct_structure *st, int k, const sct_member_load *load, sct_issues *issues)
 {
     sct_bar *bar = &st->bars[load->member];
     const sct_beam_load local = sct_local_load(bar, load);
     bar->is_bent = true;
-    if (local.M[0] != 0.0 && bar->hinges.free_turn[SCT_TWIST][0] && bar->hinges.free_turn[SCT_TWIST][1]) {
+    if (fabs(local.M[0]) > SCT_TOL_DIRECTION * sct_length3(local.M) && !twist_is_taken(st, bar)) {
         sct_issue_add(issues, SCT_ERROR, load->where,
                       "member \"%s\" is loaded by a twist that neither of its ends takes",
                       sct_show(st->model->members[load->member].name).text);
