@@ -196,16 +196,39 @@ START_TEST(a_model_without_cases_is_an_error)
 }
 END_TEST
 
-START_TEST(a_model_beyond_the_index_limits_is_too_large)
+/* Refused before anything of what is counted is looked at. */
+static void is_too_large(sct_model *m)
 {
-    sct_model *m = triangle();
-    m->n_members = 200 * 1000 * 1000; /* refused before any of them is looked at */
     sct_issues *issues = sct_issues_new();
     sct_structure *st;
     ck_assert_int_eq(sct_structure_build(m, &st, issues), SCT_TOO_LARGE);
     ck_assert_int_eq(sct_issues_errors(issues), 1);
     sct_issues_free(issues);
     mb_free(m);
+}
+
+START_TEST(a_model_beyond_the_index_limits_is_too_large)
+{
+    sct_model *m = triangle();
+    m->n_members = 200 * 1000 * 1000;
+    is_too_large(m);
+    m = triangle();
+    m->dimensions = 3; /* where a member has more entries than in the plane */
+    m->n_members = 6 * 1000 * 1000;
+    is_too_large(m);
+    m = triangle();
+    m->n_joints = 400 * 1000 * 1000;
+    is_too_large(m);
+    m = triangle();
+    m->n_joints = 1000 * 1000;
+    m->n_cases = 1000;
+    is_too_large(m);
+    m = triangle();
+    m->n_combinations = 3000;
+    m->n_deflections = 1;
+    m->deflections = sct_arena_array(m->arena, 1, sizeof *m->deflections);
+    m->deflections[0].n_joints = 1000 * 1000;
+    is_too_large(m);
 }
 END_TEST
 
