@@ -20,6 +20,7 @@ typedef struct search {
     bool have_best;
     sct_pick pick;          /* of `best` */
     double *du, *d, *slope; /* sensitivities at the design at hand; slope: n_rows x n_groups of u per ln A */
+    bool *bends;            /* n_groups: some member is a beam */
     double slack;           /* utilisation that frozen forces may overestimate: forces of redundant bars move */
 } search;
 
@@ -54,6 +55,9 @@ static double group_utilisation(const search *S, int g, int k)
     double most = 0.0;
     for (int bar = 0; bar < S->st->n_bars; bar++)
         if (S->st->bars[bar].group == g) most = sct_worse(most, sct_duty_bar_utilisation(S->duty, bar, &shape));
+    for (int r = 0; r < S->duty->n_bows; r++)
+        if (S->st->bars[S->duty->bows[r].bar].group == g)
+            most = sct_worse(most, sct_duty_bow_utilisation(S->duty, r, &shape));
     return most;
 }
 
@@ -165,7 +169,21 @@ static sct_status find_slopes(search *S)
     return SCT_OK;
 }
 
-/* Largest deflection utilisation after a move, linear in 1/A: exact for a determinate truss but for self-weight. */
+/* What the stiffness of a group goes with: E I where its members bend, else E A. */
+static double stiffness_before(const search *S, int g)
+{
+    const double A = S->trial.A[g], i = S->trial.i[g][SCT_IN_PLANE];
+    return S->bends[g] ? i * i * A : A;
+}
+
+static double stiffness_after(const search *S, int g, int k)
+{
+    return S->bends[g] ? section_at(S, g, k)->I[SCT_IN_PLANE] : section_at(S, g, k)->A;
+}
+
+/* Largest deflection utilisation after a move, linear in 1/stiffness: exact for a determinate truss but for
+ * self-weight.
+ */
 static double deflection_after(const search *S, const move *m)
 {
     double most = 0.0;
@@ -175,7 +193,7 @@ static double deflection_after(const search *S, const move *m)
             const int g = m->group[k];
             if (g < 0) continue;
             u += S->slope[(size_t)r * (size_t)S->st->n_groups + (size_t)g] *
-                 (1.0 - S->trial.A[g] / section_at(S, g, m->section[k])->A);
+                 (1.0 - stiffness_before(S, g) / stiffness_after(S, g, m->section[k]));
         }
         most = sct_worse(most, fabs(u) / S->model->deflections[S->duty->rows[r].limit].at_most);
     }
@@ -325,13 +343,16 @@ static sct_status run(search *S, const sct_design *continuous)
     S->du = sct_arena_array(S->arena, n_cases * n_vars * (size_t)S->st->n_dof, sizeof(double));
     S->d = sct_arena_array(S->arena, n_vars, sizeof(double));
     S->slope = sct_arena_array(S->arena, (size_t)S->duty->n_rows * n_groups, sizeof(double));
+    S->bends = sct_arena_array(S->arena, n_groups, sizeof *S->bends);
     sct_design start;
-    if (S->du == NULL || S->d == NULL || S->slope == NULL ||
+    if (S->du == NULL || S->d == NULL || S->slope == NULL || S->bends == NULL ||
         sct_design_new(S->arena, S->st->n_groups, &S->trial) != SCT_OK ||
         sct_design_new(S->arena, S->st->n_groups, &S->best) != SCT_OK ||
         sct_design_new(S->arena, S->st->n_groups, &S->at) != SCT_OK ||
         sct_design_new(S->arena, S->st->n_groups, &start) != SCT_OK)
         return SCT_NO_MEMORY;
+    for (int bar = 0; bar < S->st->n_bars; bar++)
+        if (S->st->bars[bar].n > 0) S->bends[S->st->bars[bar].group] = true;
     sct_design_copy(S->st->n_groups, continuous, &start);
     int ladders = 0;
     for (int g = 0; g < S->st->n_groups; g++)
@@ -354,8 +375,9 @@ sct_status sct_sections_pick(sct_duty *duty, sct_design *design, int most_analys
 {
     search S = {
         .duty = duty, .st = duty->st, .model = duty->st->model, .budget = most_analyses, .more = more, .user = user};
-    /* members = unknowns: forces follow from statics alone, frozen forces are off by self-weight only */
-    S.slack = duty->st->n_bars <= duty->st->n_dof ? 0.01 : 0.1;
+    /* members = unknowns: forces follow from statics alone, frozen forces are off by self-weight only; moments move
+     * more than forces */
+    S.slack = duty->st->n_springs > duty->st->n_bars ? 0.2 : duty->st->n_bars <= duty->st->n_dof ? 0.01 : 0.1;
     S.arena = sct_arena_new();
     if (S.arena == NULL) return SCT_NO_MEMORY;
     sct_status status = run(&S, design);
