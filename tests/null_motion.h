@@ -1,4 +1,5 @@
-/* What is said about mechanisms, beside an independent view: singular vectors of the bars' elongations, by LAPACK. */
+/* What is said about mechanisms, beside an independent view: singular vectors of the springs' elongations, by LAPACK.
+ */
 #ifndef TESTS_NULL_MOTION_H
 #define TESTS_NULL_MOTION_H
 
@@ -68,23 +69,49 @@ static inline void ck_stable(sct_model *m)
     drop(&f);
 }
 
-/* ---- an independent view: singular vectors of the bars' elongations -------------------------------------------------
+/* The model has exactly this one mechanism and is told in exactly these words, at the place of joint `at`. */
+static inline void ck_only(sct_model *m, int at, const char *words)
+{
+    finding f = find(m);
+    ck_assert_int_eq(f.status, SCT_MECHANISM);
+    ck_assert_int_eq(sct_issues_count(f.issues), 1);
+    ck_assert_str_eq(message(&f, 0), words);
+    ck_assert_int_eq(sct_issues_get(f.issues, 0)->line, 1000 + at);
+    ck_assert_str_eq(sct_issues_get(f.issues, 0)->file, "test.json");
+    drop(&f);
+}
+
+/* ---- an independent view: singular vectors of the springs' elongations
+ * -------------------------------------------------
  */
 
-/* v (n_dof): the one motion without elongation. Returns how many there are. */
-static inline int null_motion(const sct_structure *st, double v[])
+/* What makes unknown i comparable: displacements count as they are, rotations times the lever. */
+static inline double beside(const sct_structure *st, int i)
 {
-    const int m = st->n_bars, n = st->n_dof, lwork = 10 * (m + n) + 100, least = m < n ? m : n;
+    for (int j = 0; j < st->n_joints; j++) {
+        if (i >= st->first_dof[j] && i < st->first_dof[j] + st->n_free[j]) return 1.0;
+    }
+    return st->lever;
+}
+
+/* v (n_dof): the one motion without elongation of the springs of which k (n_springs) is at least `least`; k NULL: of all.
+ * Returns how many there are. */
+static inline int null_motion_without(const sct_structure *st, const double k[], double least, double v[])
+{
+    const int m = st->n_springs, n = st->n_dof, lwork = 10 * (m + n) + 100, fewer = m < n ? m : n;
     double *B = calloc((size_t)(m * n), sizeof *B), *s = calloc((size_t)(m + n), sizeof *s);
     double *vt = calloc((size_t)(n * n), sizeof *vt), *work = calloc((size_t)lwork, sizeof *work), none;
-    int info, nullity = n - least;
+    int info, nullity = n - fewer;
     for (int e = 0; e < m; e++) {
-        for (int i = 0; i < st->springs[e].n_dof; i++) B[st->springs[e].dof[i] * m + e] = st->springs[e].b[i];
+        const sct_spring *spring = &st->springs[e];
+        if (k != NULL && !(k[e] >= least)) continue;
+        for (int i = 0; i < spring->n_dof; i++)
+            B[spring->dof[i] * m + e] = spring->b[i] * spring->span / beside(st, spring->dof[i]);
     }
     dgesvd_("N", "A", &m, &n, B, &m, s, &none, &m, vt, &n, work, &lwork, &info);
     ck_assert_int_eq(info, 0);
-    for (int i = 0; i < least; i++) nullity += s[i] < 1e-10;
-    for (int i = 0; i < n; i++) v[i] = vt[i * n + n - 1];
+    for (int i = 0; i < fewer; i++) nullity += s[i] < 1e-10;
+    for (int i = 0; i < n; i++) v[i] = vt[i * n + n - 1] / beside(st, i);
     free(B);
     free(s);
     free(vt);
@@ -92,11 +119,51 @@ static inline int null_motion(const sct_structure *st, double v[])
     return nullity;
 }
 
-static inline double size_at(const sct_structure *st, const double v[], int joint)
+static inline int null_motion(const sct_structure *st, double v[])
+{
+    return null_motion_without(st, NULL, 0.0, v);
+}
+
+/* How a joint turns in v: by itself or, if that is more, as a sprung end there. */
+static inline void turn_at(const sct_structure *st, const double v[], int joint, double theta[3])
+{
+    sct_joint_rotation(st, v, NULL, joint, theta);
+    for (int e = 0; e < st->n_bars; e++) {
+        for (int end = 0; end < 2; end++) {
+            const sct_bar *bar = &st->bars[e];
+            if ((end == 0 ? bar->from : bar->to) != joint) continue;
+            for (int r = 0; r < SCT_TURNS; r++) {
+                const int dof = bar->end_dof[end][r];
+                const double *axis = bar->axes[r == SCT_TWIST ? 0 : r == SCT_IN_PLANE ? 2 : 1];
+                if (dof < 0 || fabs(v[dof]) <= hypot(hypot(theta[0], theta[1]), theta[2])) continue;
+                for (int i = 0; i < 3; i++) theta[i] = v[dof] * axis[i];
+            }
+        }
+    }
+}
+
+/* What is told of a joint: its displacement, or its rotation. */
+static inline void seen_at(const sct_structure *st, const double v[], int joint, bool as_turn, double d[3])
+{
+    if (as_turn)
+        turn_at(st, v, joint, d);
+    else
+        sct_joint_displacement(st, v, NULL, joint, d);
+}
+
+static inline double size_at(const sct_structure *st, const double v[], int joint, bool as_turn)
 {
     double d[3];
-    sct_joint_displacement(st, v, NULL, joint, d);
+    seen_at(st, v, joint, as_turn, d);
     return hypot(hypot(d[0], d[1]), d[2]);
+}
+
+/* Are there rotations only, to speak of? */
+static inline bool is_turning(const sct_structure *st, const double v[])
+{
+    double most[2] = {0.0, 0.0};
+    for (int i = 0; i < 2 * st->n_joints; i++) most[i % 2] = fmax(most[i % 2], size_at(st, v, i / 2, i % 2 == 1));
+    return most[0] < 0.05 * st->lever * most[1];
 }
 
 static inline int names_in(const char *text)
@@ -110,11 +177,13 @@ static inline int names_in(const char *text)
 /* The joints of one message are those that move in v: all when at most 10, else the count is right too. */
 static inline void ck_joints(const sct_structure *st, const double v[], const char *text)
 {
+    const bool as_turn = is_turning(st, v);
     double largest = 0.0;
+    ck_assert_msg((strstr(text, " can turn") != NULL) == as_turn, "%s", text);
     int n_least = 0, n_most = 0; /* joints right at the limit of 5 % may be named or not */
-    for (int j = 0; j < st->n_joints; j++) largest = fmax(largest, size_at(st, v, j));
+    for (int j = 0; j < st->n_joints; j++) largest = fmax(largest, size_at(st, v, j, as_turn));
     for (int j = 0; j < st->n_joints; j++) {
-        const double size = size_at(st, v, j) / largest;
+        const double size = size_at(st, v, j, as_turn) / largest;
         char name[32];
         snprintf(name, sizeof name, "\"%s\"", st->model->joints[j].name);
         const char *found = strstr(text, name);

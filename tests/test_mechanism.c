@@ -6,18 +6,6 @@
 #include "null_motion.h"
 #include "truss_shapes.h"
 
-/* The model has exactly this one mechanism and is told in exactly these words, at the place of joint `at`. */
-static void ck_only(sct_model *m, int at, const char *words)
-{
-    finding f = find(m);
-    ck_assert_int_eq(f.status, SCT_MECHANISM);
-    ck_assert_int_eq(sct_issues_count(f.issues), 1);
-    ck_assert_str_eq(message(&f, 0), words);
-    ck_assert_int_eq(sct_issues_get(f.issues, 0)->line, 1000 + at);
-    ck_assert_str_eq(sct_issues_get(f.issues, 0)->file, "test.json");
-    drop(&f);
-}
-
 /* ---- inside: panels, joints
  * ------------------------------------------------------------------------------------------ */
 
