@@ -26,12 +26,12 @@ static bool states_inertia(const sct_model *m, int group, int plane)
     return !is_area || g->c[plane] > 0.0; /* sections have both */
 }
 
-static int count_pieces(const sct_structure *st, int e)
+static int count_pieces(const sct_structure *st, int e, int pieces)
 {
     if (st->bars[e].n == 0) return 1;
     for (int plane = 0; plane < st->dim - 1; plane++)
         if (!states_inertia(st->model, st->bars[e].group, plane)) return 1;
-    return SCT_PIECES;
+    return pieces;
 }
 
 /* Inside, a member is continuous; it passes twist on unless an end lets it go. */
@@ -104,16 +104,16 @@ static sct_model *new_model(sct_arena *arena, const sct_model *m, size_t n_joint
     return fine;
 }
 
-static sct_status divide(sct_fine *f)
+static sct_status divide(sct_fine *f, int pieces)
 {
     const sct_structure *coarse = f->coarse;
     const size_t bars = (size_t)coarse->n_bars;
     f->first = sct_arena_array(f->arena, bars + 1, sizeof *f->first);
     f->inner = sct_arena_array(f->arena, bars, sizeof *f->inner);
     if (f->first == NULL || f->inner == NULL) return SCT_NO_MEMORY;
-    for (int e = 0; e < coarse->n_bars; e++) f->first[e + 1] = f->first[e] + count_pieces(coarse, e);
-    const size_t pieces = (size_t)f->first[bars], joints = (size_t)coarse->n_joints + pieces - bars;
-    f->model = new_model(f->arena, coarse->model, joints, pieces);
+    for (int e = 0; e < coarse->n_bars; e++) f->first[e + 1] = f->first[e] + count_pieces(coarse, e, pieces);
+    const size_t members = (size_t)f->first[bars], joints = (size_t)coarse->n_joints + members - bars;
+    f->model = new_model(f->arena, coarse->model, joints, members);
     if (f->model == NULL) return SCT_NO_MEMORY;
     for (int e = 0; e < coarse->n_bars; e++) add_joints(f, e);
     for (int e = 0; e < coarse->n_bars; e++) add_pieces(f, e);
@@ -130,14 +130,14 @@ static sct_status build(sct_fine *f)
     return status;
 }
 
-sct_fine *sct_fine_new(const sct_structure *coarse, sct_engine engine, sct_status *status)
+sct_fine *sct_fine_new(const sct_structure *coarse, int pieces, sct_engine engine, sct_status *status)
 {
     sct_fine *f = calloc(1, sizeof *f);
     *status = SCT_NO_MEMORY;
     if (f == NULL) return NULL;
     f->coarse = coarse;
     f->arena = sct_arena_new();
-    if (f->arena != NULL) *status = divide(f);
+    if (f->arena != NULL) *status = divide(f, pieces);
     if (*status == SCT_OK) *status = build(f);
     if (*status == SCT_OK) f->solver = sct_solver_new(f->st, engine, status);
     if (*status == SCT_OK) *status = sct_response_new(f->st, &f->response);

@@ -10,6 +10,7 @@ enum {
     PATIENCE = 40,      /* blocks before a shift is tried: an easy problem takes 3 to 10 */
     MOST_BLOCKS = 300,  /* after it */
     MOST_RETREATS = 12, /* of the shift */
+    MOST_CLIMBS = 10,   /* of the shift: an eigenvalue beyond 1e9 is none */
     MOST_PROOFS = 3
 };
 static const double BELOW = 0.9;        /* a shift lies so far under the first estimate, */
@@ -82,11 +83,12 @@ static void take_pairs(sct_mode_finder *f, const sct_eigenpairs *pairs, double s
 }
 
 /* With the factor at hand, that of K - sigma B. */
-static sct_status search(sct_mode_finder *f, double sigma, int most_blocks, sct_modes *modes)
+static sct_status search(sct_mode_finder *f, double sigma, int most_blocks, bool is_warm, sct_modes *modes)
 {
     sct_subspace_settings settings = sct_subspace_defaults();
     sct_eigenpairs pairs;
     settings.most_blocks = most_blocks;
+    settings.is_warm_start = is_warm;
     const sct_status status =
         sct_subspace_run(f->subspace, sct_fine_factor_now(f->fine), sct_squares_multiply, f->B, &settings, &pairs);
     modes->blocks += pairs.blocks;
@@ -104,7 +106,20 @@ static sct_status search_shifted(sct_mode_finder *f, double sigma, sct_modes *mo
         status = factor_shifted(f, sigma, modes);
     }
     if (status != SCT_OK) return status == SCT_NOT_CONVEX ? SCT_NOT_CONVERGED : status;
-    return search(f, sigma, MOST_BLOCKS, modes);
+    return search(f, sigma, MOST_BLOCKS, false, modes);
+}
+
+/* The same without an estimate: up by tens from 1 until an eigenvalue lies below. */
+static sct_status climb(sct_mode_finder *f, sct_modes *modes)
+{
+    double sigma = 1.0;
+    for (int i = 0; i < MOST_CLIMBS; i++, sigma *= 10.0) {
+        const sct_status status = factor_shifted(f, sigma, modes);
+        if (status == SCT_NOT_CONVEX) return search_shifted(f, sigma / 10.0, modes);
+        if (status != SCT_OK) return status;
+        modes->none_below = sigma;
+    }
+    return SCT_OK;
 }
 
 /* An eigenvalue below the first found was missed when the factor does not exist: then searches from lower down. */
@@ -124,19 +139,15 @@ static sct_status prove(sct_mode_finder *f, sct_modes *modes)
     return status == SCT_OK && modes->n > 0 ? SCT_NOT_CONVERGED : status;
 }
 
-sct_status sct_mode_finder_run(sct_mode_finder *f, bool proves, sct_modes *modes)
+sct_status sct_mode_finder_run(sct_mode_finder *f, sct_mode_search how, sct_modes *modes)
 {
     sct_status status;
     *modes = (sct_modes){.lambda = f->lambda, .error = f->error, .X = f->X};
     if (sct_fine_factor(f->fine, &status) == NULL) return status == SCT_NOT_CONVEX ? SCT_MECHANISM : status;
-    status = search(f, 0.0, PATIENCE, modes);
-    if (status == SCT_NOT_CONVERGED) {
-        if (modes->n > 0)
-            status = search_shifted(f, BELOW * f->lambda[0] / (1.0 + f->error[0]), modes);
-        else
-            status = search(f, 0.0, MOST_BLOCKS, modes);
-    }
-    return status == SCT_OK && proves ? prove(f, modes) : status;
+    status = search(f, 0.0, PATIENCE, how == SCT_MODES_WARM, modes);
+    if (status == SCT_NOT_CONVERGED)
+        status = modes->n > 0 ? search_shifted(f, BELOW * f->lambda[0] / (1.0 + f->error[0]), modes) : climb(f, modes);
+    return status == SCT_OK && how == SCT_MODES_PROVEN ? prove(f, modes) : status;
 }
 
 int sct_modes_cluster(const sct_modes *modes, int i, double apart)

@@ -14,9 +14,17 @@ typedef struct sct_modes {
     const double *error;  /* n: an exact eigenvalue lies in [lambda / (1 + error), lambda / (1 - error)]; of the divided
                            * structure, rounding apart. error as in numerics/subspace.h; lambda itself is better */
     const double *X;      /* n x n_dof of the divided structure, one after the other: X'K X = I, X'B X = 1/lambda */
-    double none_below;    /* proven (a Cholesky factor exists): no eigenvalue lies in (0, none_below]; 0: not asked */
+    double none_below;    /* proven (a Cholesky factor exists): no eigenvalue lies in (0, none_below]; 0: not shown */
     int factors, blocks;  /* work: factorizations, multiplications of a block */
 } sct_modes;
+
+/* How to look for them. */
+typedef enum sct_mode_search {
+    SCT_MODES_COLD,
+    SCT_MODES_WARM,  /* from the vectors of the finder's run before: for small steps of the sizes, a third of the work;
+                      * what is reported in the end should come from one of the others */
+    SCT_MODES_PROVEN /* cold, and shows that no eigenvalue lies below 0.999 of the first: two factorizations more */
+} sct_mode_search;
 
 typedef struct sct_mode_finder sct_mode_finder;
 
@@ -28,12 +36,10 @@ void sct_mode_finder_free(sct_mode_finder *finder);
  * Finds the lowest modes with the coefficients of B as they are and the latest sizes of the divided structure. *modes
  * points into the finder until its next run. Allocates nothing.
  *
- * proves   also show that no eigenvalue lies below 0.999 of the first; costs two factorizations
- *
- * SCT_OK; SCT_NOT_CONVERGED: estimates, their errors hold, or `proves` and the first could not be proven;
- * SCT_MECHANISM, SCT_NOT_ACCURATE, SCT_NO_MEMORY.
+ * SCT_OK; SCT_NOT_CONVERGED: estimates, their errors hold, or the first could not be proven; SCT_MECHANISM,
+ * SCT_NOT_ACCURATE, SCT_NO_MEMORY.
  */
-sct_status sct_mode_finder_run(sct_mode_finder *finder, bool proves, sct_modes *modes);
+sct_status sct_mode_finder_run(sct_mode_finder *finder, sct_mode_search how, sct_modes *modes);
 
 /** How many modes from mode i on are equal to it within the relative distance `apart` (a cluster; 1: a simple one). The
  * vectors of a cluster are any orthonormal ones of their space, and ln lambda has derivatives along directions only:

@@ -6,9 +6,11 @@
 
 #include "analysis/member_line.h"
 #include "analysis/recovery.h"
+#include "base/vector.h"
 
-/* Of the largest force: smaller ones are rounding, not compression. */
-static const double NO_FORCE = 1e-11;
+static const double NO_FORCE = 1e-11; /* of the largest force: smaller ones are rounding, not compression */
+static const double FAR = 1e-6;       /* least / alpha of a mode that was not found */
+static const double SWAYS = 0.05;     /* part of the loads' work: less is not called sway */
 
 /* A force along a piece: mean + slope t, t from -1 to 1. */
 typedef struct course {
@@ -21,7 +23,7 @@ struct sct_stability {
     sct_member_lines *lines;
     sct_squares geometry;
     sct_mode_finder *finder;
-    int combination;
+    int wanted, combination;
     double *S;    /* springs of the structure */
     course *N;    /* pieces: their force */
     course *held; /* pieces: dN/dA by own weight along the member with its ends held */
@@ -52,6 +54,7 @@ sct_stability *sct_stability_new(sct_fine *fine, int wanted, sct_status *status)
     if (s == NULL) return NULL;
     s->fine = fine;
     s->coarse = sct_fine_coarse(fine);
+    s->wanted = wanted;
     *status = set_up(s, wanted);
     if (*status == SCT_OK) return s;
     sct_stability_free(s);
@@ -138,14 +141,14 @@ static bool set_geometry(sct_stability *s)
     return most > NO_FORCE * largest;
 }
 
-sct_status sct_stability_find(sct_stability *s, const sct_response *response, int combination, bool proves,
+sct_status sct_stability_find(sct_stability *s, const sct_response *response, int combination, sct_mode_search how,
                               sct_modes *modes)
 {
     s->combination = combination;
     find_forces(s, response);
     *modes = (sct_modes){0};
     if (!set_geometry(s)) return SCT_OK;
-    return sct_mode_finder_run(s->finder, proves, modes);
+    return sct_mode_finder_run(s->finder, how, modes);
 }
 
 /* ---- derivatives ------------------------------------------------------------------------------------------------- */
@@ -201,6 +204,54 @@ sct_status sct_stability_derivative(sct_stability *s, sct_solver *solver, const 
     for (int v = 0; v < n_vars; v++) D[v] += work[v] + work[n_vars + v];
     free(work);
     return status;
+}
+
+sct_status sct_stability_limits(sct_stability *s, sct_solver *solver, const sct_response *response,
+                                const sct_modes *modes, double least, int count, double g[], double dg[])
+{
+    const size_t n_vars = (size_t)s->coarse->n_vars;
+    for (int i = 0; i < count; i++) {
+        double *row = dg + (size_t)i * n_vars;
+        memset(row, 0, n_vars * sizeof *row);
+        g[i] = log(FAR);
+        if (i >= modes->n) continue;
+        g[i] = log(least / modes->lambda[i]);
+        const sct_status status = sct_stability_derivative(s, solver, response, modes, i, i, row);
+        if (status != SCT_OK) return status;
+        for (size_t v = 0; v < n_vars; v++) row[v] = -row[v];
+    }
+    return SCT_OK;
+}
+
+/* ---- sway -------------------------------------------------------------------------------------------------------- */
+
+double sct_stability_sway(const sct_stability *s, const sct_modes *modes, int i)
+{
+    const sct_structure *fine = sct_fine_structure(s->fine);
+    const double *x = modes->X + (size_t)i * (size_t)fine->n_dof;
+    double sum = 0.0;
+    for (int e = 0; e < s->coarse->n_bars; e++) {
+        const sct_bar *bar = &s->coarse->bars[e];
+        double from[3], to[3], d[3];
+        sct_joint_displacement(fine, x, NULL, bar->from, from);
+        sct_joint_displacement(fine, x, NULL, bar->to, to);
+        sct_subtract3(to, from, d);
+        for (int plane = 0; plane < s->coarse->dim - 1; plane++) {
+            const double across = sct_dot3(d, bar->axes[1 + plane]);
+            sum -= s->S[e] * across * across / bar->L;
+        }
+    }
+    return modes->lambda[i] * sum;
+}
+
+double sct_sway_factor(const sct_stability *s, const sct_modes *modes, bool *is_bound)
+{
+    *is_bound = false;
+    for (int i = 0; i < modes->n; i++)
+        if (sct_stability_sway(s, modes, i) >= SWAYS) return modes->lambda[i];
+    if (modes->n < s->wanted) return (double)INFINITY;
+    *is_bound = true;
+    return modes->lambda[modes->n - 1];
 }
 
 /* ---- members ----------------------------------------------------------------------------------------------------- */

@@ -26,12 +26,12 @@ void sct_stability_free(sct_stability *stability);
  * buckles: SCT_OK with n = 0.
  *
  * response  of the structure's own solver with the sizes of the latest sct_fine_update
- * proves    see sct_mode_finder_run
+ * how       one object per combination where WARM is used
  *
  * Statuses of sct_mode_finder_run.
  */
-sct_status sct_stability_find(sct_stability *stability, const sct_response *response, int combination, bool proves,
-                              sct_modes *modes);
+sct_status sct_stability_find(sct_stability *stability, const sct_response *response, int combination,
+                              sct_mode_search how, sct_modes *modes);
 
 /** The lowest factor of what was found: INFINITY where n = 0. */
 static inline double sct_critical_factor(const sct_modes *modes)
@@ -53,6 +53,26 @@ static inline double sct_critical_factor(const sct_modes *modes)
  */
 sct_status sct_stability_derivative(sct_stability *stability, sct_solver *solver, const sct_response *response,
                                     const sct_modes *modes, int i, int j, double D[]);
+
+/**
+ * The lowest modes as constraints g_i = ln(least / alpha_i) <= 0, i = 0 .. count - 1, with gradients dg (count x
+ * n_vars). A mode that was not found is far away: g_i = ln 1e-6, its gradient 0.
+ * `count` times sct_stability_derivative.
+ */
+sct_status sct_stability_limits(sct_stability *stability, sct_solver *solver, const sct_response *response,
+                                const sct_modes *modes, double least, int count, double g[], double dg[]);
+
+/**
+ * How far mode i of the combination found last is one of sway: the part of the loads' work that the rotations of the
+ * members' chords do, alpha sum N L psi^2. 0 where members bow between joints that stay (their effective length and the
+ * check of the member cover that), 0.81 for a column that sways with a clamped or a hinged foot, 1 for pin-ended bars;
+ * beyond these limits where members in tension take part.
+ */
+double sct_stability_sway(const sct_stability *stability, const sct_modes *modes, int i);
+
+/** The lowest factor of a mode in which joints sway (a part of at least 0.05). *is_bound: no such mode was found among
+ * those wanted, it lies above the value given: the largest found. INFINITY where fewer modes exist than were wanted. */
+double sct_sway_factor(const sct_stability *stability, const sct_modes *modes, bool *is_bound);
 
 /* What a mode says about one member in one plane of bending. */
 typedef struct sct_member_mode {

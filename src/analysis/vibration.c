@@ -113,7 +113,7 @@ void sct_vibration_free(sct_vibration *v)
     free(v);
 }
 
-sct_status sct_vibration_find(sct_vibration *v, bool proves, sct_modes *modes)
+sct_status sct_vibration_find(sct_vibration *v, sct_mode_search how, sct_modes *modes)
 {
     const sct_structure *st = sct_fine_structure(v->fine);
     const double *A = sct_solver_areas(sct_fine_solver(v->fine));
@@ -121,7 +121,7 @@ sct_status sct_vibration_find(sct_vibration *v, bool proves, sct_modes *modes)
         sct_square *square = &v->mass.square[j];
         if (square->bar >= 0) square->c = square->g * A[st->bars[square->bar].group];
     }
-    return sct_mode_finder_run(v->finder, proves, modes);
+    return sct_mode_finder_run(v->finder, how, modes);
 }
 
 double sct_frequency(const sct_modes *modes, int i)

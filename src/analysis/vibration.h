@@ -18,7 +18,7 @@ sct_vibration *sct_vibration_new(sct_fine *fine, int wanted, sct_status *status)
 void sct_vibration_free(sct_vibration *vibration);
 
 /** The lowest modes, lambda = omega^2 [1/s2]; *modes lives until the next call. Statuses of sct_mode_finder_run. */
-sct_status sct_vibration_find(sct_vibration *vibration, bool proves, sct_modes *modes);
+sct_status sct_vibration_find(sct_vibration *vibration, sct_mode_search how, sct_modes *modes);
 
 /** [Hz] of mode i. */
 double sct_frequency(const sct_modes *modes, int i);
