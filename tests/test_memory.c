@@ -211,6 +211,8 @@ START_TEST(every_place_that_tells_of_a_fault_may_be_refused_memory)
 {
     long refused = 0;
     try_folder("tests/bad_inputs", "%s/%s/model.json", SCT_ENGINE_AUTO, &refused);
+    try_file("tests/bad_inputs/frame.json", SCT_ENGINE_AUTO, &refused);
+    try_file("tests/bad_inputs/space.json", SCT_ENGINE_AUTO, &refused);
     printf("measured: %ld refusals of memory for models with faults, at %d places\n", refused, places.n);
     ck_assert_int_gt(refused, 500);
 }
