@@ -441,6 +441,48 @@ START_TEST(frames_are_refused_where_they_are_said)
 }
 END_TEST
 
+/* A run of 1000 pieces, and an entry written n times in the place of the loads, the drift or the bows. */
+static sct_status read_many(const char *before, const char *entry, int n, const char *behind)
+{
+    enum { PIECES = 1000 };
+    sct_text text = {0};
+    sct_text_add(&text, "{'scantling': 1, 'dimensions': 2, 'units': {'length': 'm', 'force': 'kN', 'stress': 'MPa'},"
+                        "'materials': {'S': {'E': 210000, 'density': '7850 kg/m3', 'allowable': {'tension': 140, "
+                        "'compression': 140}}}, 'groups': {'g': {'material': 'S', 'family': 'IPE'}},"
+                        "'joints': {'0': {'at': [0, 0], 'support': 'fixed'}");
+    for (int i = 1; i <= PIECES; i++) sct_text_format(&text, ", '%d': {'at': [%d, 0]}", i, i);
+    sct_text_add(&text, "}, 'members': {'run': {'group': 'g', 'through': ['0'");
+    for (int i = 1; i <= PIECES; i++) sct_text_format(&text, ", '%d'", i);
+    sct_text_format(&text, "]}}, 'combinations': {'c': {'for': 'allowable', 'sum': {'G': 1}}}, %s%s", before, entry);
+    for (int i = 1; i < n; i++) sct_text_format(&text, ", %s", entry);
+    sct_text_add(&text, behind);
+    for (char *p = text.data; *p != '\0'; p++)
+        if (*p == '\'') *p = '"';
+    sct_model *m;
+    const sct_status status = sct_reader_parse("f", text.data, text.size, &m, NULL);
+    ck_assert((status == SCT_OK) == (m != NULL));
+    sct_model_free(m);
+    sct_text_free(&text);
+    return status;
+}
+
+START_TEST(what_a_few_words_multiply_has_an_end)
+{
+    static const char LIMITS[] = "'cases': {'G': {'joints': {'1': [0, -1]}}}, 'limits': {'buckling': {'by': 'Euler', "
+                                 "'safety': 2}, ",
+                      LOADS[] = "'limits': {'buckling': {'by': 'Euler', 'safety': 2}}, 'cases': {'G': {'loads': [";
+    char before[256];
+    ck_assert_int_eq(read_many(LOADS, "{'on': 'run', 'line': [0, -1]}", 100, "]}}}"), SCT_OK);
+    ck_assert_int_eq(read_many(LOADS, "{'on': 'run', 'line': [0, -1]}", 10001, "]}}}"), SCT_TOO_LARGE);
+    snprintf(before, sizeof before, "%s%s", LIMITS, "'bow': [");
+    ck_assert_int_eq(read_many(before, "{'members': ['run'], 'at_most': 1}", 2, "]}}"), SCT_OK);
+    ck_assert_int_eq(read_many(before, "{'members': ['run'], 'at_most': 1}", 10001, "]}}"), SCT_TOO_LARGE);
+    snprintf(before, sizeof before, "%s%s", LIMITS, "'deflection': [");
+    ck_assert_int_eq(read_many(before, "{'joints': ['1'], 'direction': 'y', 'at_most': 1}", 10001, "]}}"),
+                     SCT_TOO_LARGE);
+}
+END_TEST
+
 /* Every value of a frame, replaced in turn by one of every other kind: read or refused, never a fault. */
 START_TEST(every_value_of_another_kind_is_met)
 {
@@ -501,6 +543,7 @@ int main(void)
     tcase_add_test(c, the_sized_model_keeps_runs_as_they_are_written);
     tcase_add_loop_test(c, what_is_likely_a_slip_is_warned_of, 0, (int)(sizeof REMARKS / sizeof *REMARKS));
     tcase_add_test(c, frames_are_refused_where_they_are_said);
+    tcase_add_test(c, what_a_few_words_multiply_has_an_end);
     tcase_add_loop_test(c, every_value_of_another_kind_is_met, 0, 2);
     suite_add_tcase(suite, c);
     return run_suite(suite);

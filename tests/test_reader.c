@@ -355,7 +355,7 @@ static const mistake MISTAKES[] = {
      "22:92: error: /groups/tie/area/start: found 0.5 m2; expected an area within the bounds, 100 mm2 to 0.01 m2"},
     {"\"second_moment\": {\"c\": 0.5}, ", "",
      "22:12: error: /groups/tie: no \"second_moment\"; the buckling rule needs it: expected {\"c\": ...} for I = c "
-     "A^2"},
+     "A^2, or a \"shape\""},
     {"\"c\": 0.5", "\"c\": {\"in_plane\": 1}",
      "22:127: error: /groups/tie/second_moment/c: no \"out_of_plane\"; expected a value for bending out of the plane "
      "of the truss"},
