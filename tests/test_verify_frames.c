@@ -213,12 +213,104 @@ START_TEST(both_analyses_agree_on_random_frames)
 }
 END_TEST
 
+/* ---- whole results ------------------------------------------------------------------------------------------------
+ */
+
+static sct_status verify(const sct_model *m, const sct_result *result, bool print)
+{
+    sct_issues *issues = sct_issues_new();
+    const sct_status status = sct_verify(m, result, issues);
+    for (int i = 0; print && i < sct_issues_count(issues); i++) printf("%s\n", sct_issues_get(issues, i)->message);
+    sct_issues_free(issues);
+    return status;
+}
+
+static void set_rules(sct_random *r, sct_model *m)
+{
+    for (int k = 0; k < m->n_materials; k++) m->materials[k].yield = 355e6;
+    for (int g = 0; g < m->n_groups; g++) {
+        sct_group *group = &m->groups[g];
+        group->allowable[0] = 200e6;
+        group->allowable[1] = 160e6;
+        group->buckling = g % 3 == 0 ? SCT_BUCKLING_EULER : g % 3 == 1 ? SCT_BUCKLING_EULER_JOHNSON : SCT_BUCKLING_NONE;
+        group->safety = 1.67;
+        group->slenderness_any = 400.0;
+        group->slenderness_compression = g % 2 == 0 ? 250.0 : INFINITY;
+        for (int axis = 0; axis < 2; axis++) group->W[axis] = (sct_power){between(r, 0.5, 2.0), 1.5};
+    }
+    mb_combination(m, 3, (double[]){1.0, 0.0, 0.0});
+    mb_combination(m, 3, (double[]){1.35, -0.7, 0.4});
+    m->combinations[mb_combination(m, 3, (double[]){0.9, 1.0, 1.0})].basis = SCT_SERVICE;
+}
+
+/* A displacement relative to another joint, and the bow of two members in the service combination. */
+static void set_limits(sct_random *r, sct_model *m)
+{
+    sct_deflection_limit *d = sct_arena_array(m->arena, 1, sizeof *d);
+    *d = (sct_deflection_limit){.n_joints = 2, .direction = {0.6, 0.8, 0.0}, .at_most = 0.02, .label = "20 mm"};
+    d->joints = sct_arena_array(m->arena, 2, sizeof(int));
+    d->from = sct_arena_array(m->arena, 2, sizeof(int));
+    d->in = sct_arena_array(m->arena, 3, sizeof(bool));
+    for (int i = 0; i < 2; i++) d->joints[i] = 1 + below(r, m->n_joints - 1);
+    d->from[0] = -1;
+    d->in[1] = d->in[2] = true;
+    sct_bow_limit *b = sct_arena_array(m->arena, 2, sizeof *b);
+    for (int i = 0; i < 2; i++) {
+        b[i] = (sct_bow_limit){.n_members = 1, .axis = m->dimensions == 3 ? i : 0, .at_most = NAN, .part = 1.0 / 300.0};
+        b[i].label = "L/300";
+        b[i].members = sct_arena_array(m->arena, 1, sizeof(int));
+        b[i].members[0] = below(r, m->n_members);
+        b[i].in = sct_arena_array(m->arena, 3, sizeof(bool));
+        b[i].in[1] = b[i].in[2] = true;
+    }
+    m->deflections = d;
+    m->n_deflections = 1;
+    m->bows = b;
+    m->n_bows = 2;
+}
+
+static sct_model *limited_frame(uint64_t seed)
+{
+    sct_random r = {seed};
+    sct_model *m = frame(seed);
+    set_rules(&r, m);
+    set_limits(&r, m);
+    return m;
+}
+
+static sct_result *check(const sct_model *m)
+{
+    sct_result *result = NULL;
+    sct_issues *issues = sct_issues_new();
+    const sct_status status = sct_check(m, NULL, &result, issues);
+    for (int i = 0; status != SCT_OK && i < sct_issues_count(issues); i++)
+        printf("%s\n", sct_issues_get(issues, i)->message);
+    ck_assert_int_eq(status, SCT_OK);
+    sct_issues_free(issues);
+    return result;
+}
+
+START_TEST(both_paths_agree_on_results_of_random_frames)
+{
+    const int n = getenv("SCT_TEST_FULL") != NULL ? 5000 : 300;
+    for (int i = 1; i <= n; i++) {
+        sct_model *m = limited_frame((uint64_t)i);
+        sct_result *result = check(m);
+        ck_assert_msg(verify(m, result, true) == SCT_OK, "seed %d", i);
+        sct_result_free(result);
+        mb_free(m);
+    }
+    printf("measured: second path: both agree on the results of %d random frames\n", n);
+}
+END_TEST
+
 int main(void)
 {
     Suite *suite = suite_create("verify frames");
     TCase *tests = tcase_create("all");
     tcase_set_timeout(tests, 600);
     tcase_add_test(tests, both_analyses_agree_on_random_frames);
+    tcase_add_test(tests, both_paths_agree_on_results_of_random_frames);
     suite_add_tcase(suite, tests);
     return run_suite(suite);
 }

@@ -1,7 +1,7 @@
 #include "verify/cut.h"
 
+#include <math.h>
 #include <stdlib.h>
-#include <string.h>
 
 int sct_cut_loads_at_most(const sct_element *x)
 {
@@ -155,4 +155,54 @@ long double sct_cut_bow(const sct_cut_line *line, int plane, long double x)
         }
     }
     return v;
+}
+
+/* ---- extremes -----------------------------------------------------------------------------------------------------
+ */
+
+/* Golden section between a and b; the value there is seen from inside. */
+static long double climb(const sct_cut_line *line, sct_cut_value *value, const void *what, long double a, long double b)
+{
+    enum { STEPS = 32 }; /* to 2e-7 of the stretch: to 1e-13 of a smooth top */
+    static const long double PART = 0.61803398874989484820L;
+    long double p = b - PART * (b - a), q = a + PART * (b - a);
+    long double at_p = value(line, what, p, true), at_q = value(line, what, q, true);
+    for (int i = 0; i < STEPS; i++) {
+        if (at_p > at_q) {
+            b = q;
+            q = p;
+            at_q = at_p;
+            p = b - PART * (b - a);
+            at_p = value(line, what, p, true);
+        } else {
+            a = p;
+            p = q;
+            at_p = at_q;
+            q = a + PART * (b - a);
+            at_q = value(line, what, q, true);
+        }
+    }
+    return at_p > at_q ? at_p : at_q;
+}
+
+long double sct_cut_largest(const sct_cut_line *line, sct_cut_value *value, const void *what)
+{
+    enum { PARTS = 8 }; /* of a stretch without breaks: values are of the fifth degree at most */
+    long double most = -INFINITY;
+    for (int k = 0; k + 1 < line->n_breaks; k++) {
+        const long double a = line->breaks[k], h = (line->breaks[k + 1] - a) / PARTS;
+        long double v[PARTS + 1];
+        if (!(h > 0.0L)) continue;
+        for (int i = 0; i <= PARTS; i++) {
+            v[i] = value(line, what, i < PARTS ? a + i * h : line->breaks[k + 1], i < PARTS);
+            most = fmaxl(most, v[i]);
+        }
+        for (int i = 0; i <= PARTS; i++) {
+            const bool rises = i == 0 || v[i] > v[i - 1], falls = i == PARTS || v[i] >= v[i + 1];
+            if (!rises || !falls) continue;
+            const int from = i > 0 ? i - 1 : 0, to = i < PARTS ? i + 1 : PARTS;
+            most = fmaxl(most, climb(line, value, what, a + from * h, a + to * h));
+        }
+    }
+    return most;
 }

@@ -33,4 +33,10 @@ sct_cut sct_cut_at(const sct_cut_line *line, long double x, bool right);
 
 /** [m] from the chord at x along axis 1 (plane 0) or 2 (plane 1), by the unit load. */
 long double sct_cut_bow(const sct_cut_line *line, int plane, long double x);
+
+/** Some value at x, right of what acts there or left of it. */
+typedef long double sct_cut_value(const sct_cut_line *line, const void *what, long double x, bool right);
+
+/** The largest along the member: looked for between all breaks, to rounding for values that are smooth there. */
+long double sct_cut_largest(const sct_cut_line *line, sct_cut_value *value, const void *what);
 #endif

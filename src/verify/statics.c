@@ -362,6 +362,8 @@ static void begin_case(work *w, int k)
     stretch_members(w, c);
     for (int e = 0; e < w->m->n_members; e++) add_weight(w, c, e);
     memcpy(w->r, w->load, w->n * sizeof *w->r);
+    if (out->given != NULL) copy_joints(w, 0, w->load, out->given + (size_t)k * n3);
+    if (out->moment_given != NULL) copy_joints(w, 1, w->load, out->moment_given + (size_t)k * n3);
     for (int b = 0; b < out->n_elements; b++) {
         const sct_element *x = &out->elements[b];
         long double at[12], end[2][6];
@@ -532,10 +534,12 @@ static bool allocate_results(const work *w)
     out->shaky = calloc(cases + 1, sizeof *out->shaky);
     out->end = calloc(cases * (size_t)out->n_elements + 1, sizeof *out->end);
     if (!out->u || !out->N || !out->load || !out->shaky || !out->end) return false;
-    if (!out->has_turns) return true;
+    if (out->n_elements > 0) out->given = calloc(cases * n3 + 1, sizeof *out->given);
+    if (!out->has_turns) return out->n_elements == 0 || out->given != NULL;
     out->turn = calloc(cases * n3 + 1, sizeof *out->turn);
     out->moment_load = calloc(cases * n3 + 1, sizeof *out->moment_load);
-    return out->turn != NULL && out->moment_load != NULL;
+    out->moment_given = calloc(cases * n3 + 1, sizeof *out->moment_given);
+    return out->given && out->turn && out->moment_load && out->moment_given;
 }
 
 static sct_status run(work *w)
@@ -568,6 +572,8 @@ void sct_statics_free(sct_statics *s)
     free(s->N);
     free(s->load);
     free(s->moment_load);
+    free(s->given);
+    free(s->moment_given);
     free(s->shaky);
     free(s->element_of);
     free(s->elements);

@@ -16,13 +16,14 @@ typedef struct sct_shaky {
 } sct_shaky;
 
 typedef struct sct_statics {
-    bool has_turns;      /* some joint turns: a frame */
-    double *u, *turn;    /* [m], [rad] n_cases x n_joints x 3 */
-    double *N;           /* [N] n_cases x n_members: the mean along the member */
-    double *load;        /* [N] n_cases x n_joints x 3, self-weight and what loads on members give included */
-    double *moment_load; /* [N m] likewise; of a truss NULL, as turn */
-    sct_shaky *shaky;    /* n_cases */
-    double error;        /* size of the last refinement, relative to the largest of its case */
+    bool has_turns;               /* some joint turns: a frame */
+    double *u, *turn;             /* [m], [rad] n_cases x n_joints x 3 */
+    double *N;                    /* [N] n_cases x n_members: the mean along the member */
+    double *load;                 /* [N] n_cases x n_joints x 3, self-weight and what loads on members give included */
+    double *moment_load;          /* [N m] likewise; of a truss NULL, as turn */
+    double *given, *moment_given; /* the loads at joints themselves, with own weight of bars; NULL without elements */
+    sct_shaky *shaky;             /* n_cases */
+    double error;                 /* size of the last refinement, relative to the largest of its case */
     sct_supports supports;
     /* beams, and bars that are loaded between their joints */
     int n_elements, *element_of; /* n_members; -1: none */
