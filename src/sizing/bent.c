@@ -69,7 +69,7 @@ static void inside(const cut *c, sct_bent_kind kind, const sct_bent_coefficients
         sum[SCT_BEAM_M] = (signs & 1) != 0 ? -rule->c[1] : rule->c[1];
         sum[SCT_BEAM_M + 1] = (signs & 2) != 0 ? -rule->c[2] : rule->c[2];
         const sct_beam_extreme most = sct_beam_largest_inside(&c->line, &c->state, sum);
-        if (!(most.value > -INFINITY)) return;
+        if (!(most.value > -INFINITY)) continue;
         sct_beam_values(&c->line, &c->state, most.piece, most.x, value);
         for (int i = 0; i < 3; i++) q[i] = value[QUANTITY[i]];
         consider(c, kind, rule, q, most.x, most.piece, most.is_inside ? most.curvature : 0.0, place);
