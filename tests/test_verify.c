@@ -138,7 +138,8 @@ static void furnish(sct_model *m, sct_random *r)
     mb_settle(m, 1, 0, 2e-3 * h[0], 2e-3 * h[1], 2e-3 * h[2]);
     mb_combination(m, 2, (double[]){1.0, 0.0});
     mb_combination(m, 2, (double[]){1.35, -0.7});
-    m->combinations[mb_combination(m, 2, (double[]){0.9, 1.0})].basis = SCT_SERVICE;
+    const int service = mb_combination(m, 2, (double[]){0.9, 1.0});
+    m->combinations[service].basis = SCT_SERVICE;
     sct_deflection_limit *limit = sct_arena_array(m->arena, 1, sizeof *limit);
     *limit = (sct_deflection_limit){.n_joints = 2, .direction = {0.6, 0.8, 0.0}, .at_most = 0.02, .label = "20 mm"};
     limit->joints = sct_arena_array(m->arena, 2, sizeof(int));

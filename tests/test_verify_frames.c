@@ -240,7 +240,8 @@ static void set_rules(sct_random *r, sct_model *m)
     }
     mb_combination(m, 3, (double[]){1.0, 0.0, 0.0});
     mb_combination(m, 3, (double[]){1.35, -0.7, 0.4});
-    m->combinations[mb_combination(m, 3, (double[]){0.9, 1.0, 1.0})].basis = SCT_SERVICE;
+    const int service = mb_combination(m, 3, (double[]){0.9, 1.0, 1.0});
+    m->combinations[service].basis = SCT_SERVICE;
 }
 
 /* A displacement relative to another joint, and the bow of two members in the service combination. */
