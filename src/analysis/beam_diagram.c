@@ -206,6 +206,21 @@ double sct_beam_deflection(const sct_beam_line *line, const sct_beam_state *stat
     return sct_polynomial_value(5, p, (x - line->piece[k].x) / line->piece[k].h);
 }
 
+double sct_beam_slope(const sct_beam_line *line, const sct_beam_state *state, const sct_beam_bending *bending, double x)
+{
+    const int k = sct_beam_piece_at(line, x, -1);
+    double p[6], dp[5];
+    bow(line, state, bending, k, p);
+    sct_polynomial_derivative(5, p, dp);
+    return sct_polynomial_value(4, dp, (x - line->piece[k].x) / line->piece[k].h) / line->piece[k].h;
+}
+
+double sct_beam_N_slope(const sct_beam_line *line, int piece, double x)
+{
+    const sct_beam_piece *b = &line->piece[piece];
+    return -(b->q[0][0] + (b->q[1][0] - b->q[0][0]) * (x - b->x) / b->h);
+}
+
 double sct_beam_held_EAu(const sct_beam_line *line, double x)
 {
     const sct_beam_piece *b = &line->piece[sct_beam_piece_at(line, x, -1)];

@@ -62,6 +62,13 @@ typedef struct sct_beam_bending {
 double sct_beam_deflection(const sct_beam_line *line, const sct_beam_state *state, const sct_beam_bending *bending,
                            double x);
 
+/** dv/dx at x. */
+double sct_beam_slope(const sct_beam_line *line, const sct_beam_state *state, const sct_beam_bending *bending,
+                      double x);
+
+/** dN/dx at x of a piece: minus the load along the member. */
+double sct_beam_N_slope(const sct_beam_line *line, int piece, double x);
+
 /** E A times the displacement along the member at x beyond the straight line between its ends' displacements. */
 double sct_beam_held_EAu(const sct_beam_line *line, double x);
 

@@ -59,7 +59,7 @@ static void at_end(const cut *c, sct_bent_kind kind, const sct_bent_coefficients
     consider(c, kind, rule, q, x, piece, 0.0, place);
 }
 
-/* The worst of both signs of both moments. */
+/* The worst of both signs of both moments; a place counts with the signs that its moments have. */
 static void inside(const cut *c, sct_bent_kind kind, const sct_bent_coefficients *rule, sct_bent_place *place)
 {
     for (int signs = 0; signs < 4; signs++) {
@@ -72,6 +72,8 @@ static void inside(const cut *c, sct_bent_kind kind, const sct_bent_coefficients
         if (!(most.value > -INFINITY)) continue;
         sct_beam_values(&c->line, &c->state, most.piece, most.x, value);
         for (int i = 0; i < 3; i++) q[i] = value[QUANTITY[i]];
+        if ((q[1] < 0.0) != ((signs & 1) != 0) || (rule->c[2] != 0.0 && (q[2] < 0.0) != ((signs & 2) != 0)))
+            continue; /* another's place */
         consider(c, kind, rule, q, most.x, most.piece, most.is_inside ? most.curvature : 0.0, place);
     }
 }
@@ -153,7 +155,7 @@ static void values(const sct_beam_line *line, const sct_beam_state *state, const
     q[0] = at_N[SCT_BEAM_N];
     q[1] = at[SCT_BEAM_M];
     q[2] = at[SCT_BEAM_M + 1];
-    qx[0] = 0.0;
+    qx[0] = place->kind == SCT_BENT_BUCKLING ? 0.0 : sct_beam_N_slope(line, piece, place->x);
     qx[1] = at[SCT_BEAM_V];
     qx[2] = at[SCT_BEAM_V + 1];
 }

@@ -107,7 +107,8 @@ sct_bow_place sct_bow_farthest(const sct_bent_member *m, const sct_response *res
     sct_bow_place place = {.v = most.value, .x = most.x};
     const sct_beam_bending bent = {.plane = axis, .EI = EI};
     place.v_bend = sct_beam_deflection(&line, &state, &bent, most.x);
-    if (most.is_inside && row->run < 0) place.q_xx = most.curvature;
+    place.v_bend_x = sct_beam_slope(&line, &state, &bent, most.x);
+    if (most.is_inside) place.q_xx = most.curvature;
     return place;
 }
 
@@ -136,23 +137,32 @@ sct_form sct_bow_form(const sct_bent_member *m, const sct_bow_row *row, const sc
     for (int s = bar->first; s < bar->first + bar->n; s++) add_spring(m, s, axis, place->x, EI, I1, &form);
     if (row->run >= 0) {
         const chord c = chord_of(m->st, row);
-        double weight[4];
+        double weight[4], from[4], slope[4];
         chord_weights(&c, place->x / bar->L, weight);
+        chord_weights(&c, 0.0, from);
+        chord_weights(&c, 1.0, slope);
+        for (int j = 0; j < 4; j++) slope[j] -= from[j];
         form.n_joints = 4;
         for (int j = 0; j < 4; j++) {
             form.joint[j] = c.joint[j];
-            for (int i = 0; i < 3; i++) form.dir[j][i] = weight[j] * bar->axes[1 + axis][i];
+            for (int i = 0; i < 3; i++) {
+                form.dir[j][i] = weight[j] * bar->axes[1 + axis][i];
+                form.dirx[j][i] = slope[j] / bar->L * bar->axes[1 + axis][i];
+            }
         }
     }
     if (own < 0) return form;
     const sct_beam_state none = {0};
     const sct_beam_bending bent = {.plane = axis, .EI = EI};
-    double w = 0.0; /* what own weight alone adds */
+    double w = 0.0, wx = 0.0; /* what own weight alone adds */
     if (bar->n > 0) {
         const sct_beam_line unit = sct_member_weight_line(m->lines, m->bar);
-        w = m->A * sct_weight_factor(m->st, m->combination) * sct_beam_deflection(&unit, &none, &bent, place->x);
+        const double weight = m->A * sct_weight_factor(m->st, m->combination);
+        w = weight * sct_beam_deflection(&unit, &none, &bent, place->x);
+        wx = weight * sct_beam_slope(&unit, &none, &bent, place->x);
     }
     form.e1 = -I1 * place->v_bend + w;
+    form.ex = -I1 * place->v_bend_x + wx;
     form.e2 = (I1 * I1 - I2) * place->v_bend + (1.0 - 2.0 * I1) * w;
     return form;
 }

@@ -16,9 +16,10 @@ int sct_bow_rows(const sct_structure *st, sct_bow_row *rows);
 
 /* The place of a member that is farthest off. */
 typedef struct sct_bow_place {
-    double v, x;   /* [m] along local axis 1 or 2; place */
-    double v_bend; /* the part of v that goes with 1/(E I) */
-    double q_xx;   /* as in sct_form */
+    double v, x;     /* [m] along local axis 1 or 2; place */
+    double v_bend;   /* the part of v that goes with 1/(E I) */
+    double v_bend_x; /* its derivative by x */
+    double q_xx;     /* as in sct_form */
 } sct_bow_place;
 
 /** E I about the limit's axis, [N m2]. */

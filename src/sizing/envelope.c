@@ -45,7 +45,7 @@ static void push(sct_envelope *e, double s, double h)
         e->n--;
     }
     if (e->n > 0 && h <= e->h[e->n - 1]) return; /* heavier and not stiffer: the flat end covers it */
-    static const double ON = 1e-9; /* relative: secants of points on one line */
+    static const double ON = 1e-9;               /* relative: secants of points on one line */
     while (e->n >= 2 && (h - e->h[e->n - 1]) / (s - e->s[e->n - 1]) > secant(e, e->n - 2) * (1.0 + ON)) e->n--;
     e->s[e->n] = s;
     e->h[e->n++] = h;

@@ -29,19 +29,26 @@ static void clear(int n, double row[])
     memset(row, 0, (size_t)n * sizeof *row);
 }
 
-void sct_form_gradient(const sct_form *form, const sct_form_source *from, double row[])
+/* row += sum_j dir_j . du_j/dz in the form's combination. */
+static void add_joints(const sct_form *form, const double dir[][3], const sct_form_source *from, double row[])
 {
     const sct_structure *st = sct_solver_structure(from->solver);
     const double *factor = factors(form, st);
-    clear(st->n_vars, row);
-    add_springs(form, form->w, from, row);
     for (int j = 0; j < form->n_joints; j++) {
         for (int k = 0; k < st->n_cases; k++) {
             if (factor[k] == 0.0) continue;
-            sct_sensitivity_displacement(from->solver, from->du, form->joint[j], form->dir[j], k, from->part);
+            sct_sensitivity_displacement(from->solver, from->du, form->joint[j], dir[j], k, from->part);
             sct_axpy(st->n_vars, factor[k], from->part, row);
         }
     }
+}
+
+void sct_form_gradient(const sct_form *form, const sct_form_source *from, double row[])
+{
+    const sct_structure *st = sct_solver_structure(from->solver);
+    clear(st->n_vars, row);
+    add_springs(form, form->w, from, row);
+    add_joints(form, (const double(*)[3])form->dir, from, row);
     if (form->own >= 0) row[form->own] += form->e1;
 }
 
@@ -79,6 +86,7 @@ void sct_form_curvature(const sct_form *form, const sct_form_source *from, doubl
     if (form->q_xx != 0.0) {
         clear((int)n, r);
         add_springs(form, form->wx, from, r);
+        add_joints(form, (const double(*)[3])form->dirx, from, r);
         if (form->own >= 0) r[form->own] += form->ex;
         for (size_t a = 0; a < n; a++) sct_axpy((int)n, -weight * r[a] / form->q_xx, r, H + a * n);
     }

@@ -8,8 +8,8 @@
  * its derivatives follow from those of S and u (analysis/sensitivity.h). q' = sum w S' + sum dir . u' + [own] e1, and
  *
  *     q'' = sum w S'' + sum dir . u'' + own t' + t own' + [own, own] e2 - r r'/q_xx,    t = sum w1 S',
- *     r = sum wx S' + [own] ex: the place of an extreme along the member moves with the sizes, which counts in the
- *     second derivative only (the first one by x is zero there).
+ *     r = sum wx S' + sum dirx . u' + [own] ex: the place of an extreme along the member moves with the sizes, which
+ * counts in the second derivative only (the first one by x is zero there).
  */
 #ifndef SCT_SIZING_FORM_H
 #define SCT_SIZING_FORM_H
@@ -24,8 +24,8 @@ typedef struct sct_form {
     int n_springs, spring[SCT_FORM_SPRINGS];
     double w[SCT_FORM_SPRINGS], w1[SCT_FORM_SPRINGS], wx[SCT_FORM_SPRINGS]; /* weight; its derivatives by own z, by x */
     int n_joints, joint[SCT_FORM_JOINTS];
-    double dir[SCT_FORM_JOINTS][3];
-    int own;           /* variable that the weights depend on; -1: none */
+    double dir[SCT_FORM_JOINTS][3], dirx[SCT_FORM_JOINTS][3]; /* and its derivative by x */
+    int own;                                                  /* variable that the weights depend on; -1: none */
     double e1, e2, ex; /* of q at fixed response: by own z, twice by own z, by x and own z */
     double q_xx;       /* by x twice, where the place moves; 0: it stays */
 } sct_form;
