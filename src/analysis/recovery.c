@@ -124,10 +124,11 @@ void sct_reactions(const sct_structure *st, const double S[], const double load[
     }
 }
 
-/* What the sums of a combination may add by rounding: products and sums of n_cases terms. */
+/* What the sums of a combination may add by rounding: products and sums of n_cases terms; for a displacement also the
+ * way from the unknowns to the axes (4) and to a direction (3). */
 static double sum_rounding(const sct_structure *st, double terms)
 {
-    return (st->n_cases + 2) * DBL_EPSILON * terms;
+    return (st->n_cases + 8) * DBL_EPSILON * terms;
 }
 
 double sct_combined_force_error(const sct_structure *st, const sct_response *response, int combination, int spring)
@@ -149,7 +150,9 @@ double sct_combined_displacement_error(const sct_structure *st, const sct_respon
     double error = 0.0, terms = 0.0;
     for (int k = 0; k < st->n_cases; k++) {
         const double factor = fabs(factor_of(st, combination, k));
+        const double *settled = st->settled + 3 * ((size_t)k * (size_t)st->n_joints + (size_t)joint);
         if (factor == 0.0) continue;
+        for (int i = 0; i < 3; i++) terms += factor * fabs(settled[i]);
         for (int i = 0; i < st->n_free[joint]; i++) {
             const size_t at = (size_t)k * (size_t)st->n_dof + (size_t)(st->first_dof[joint] + i);
             const double *v = st->basis[joint][i];
