@@ -12,6 +12,7 @@
 
 #include "base/arena.h"
 #include "count_memory.h"
+#include "frame_texts.h"
 #include "scantling.h"
 
 void *__real_sct_arena_array(sct_arena *arena, size_t n, size_t size);
@@ -162,22 +163,25 @@ static char *read_whole(const char *path, size_t *size)
     return text;
 }
 
-/* Runs the job of a file, which may be missing; adds to *refused. */
-static void try_file(const char *path, sct_engine engine, long *refused)
+/* Runs the job of a text; adds to *refused. */
+static void try_text(const char *name, const char *text, size_t size, sct_engine engine, long *refused)
 {
-    job j = {.name = path, .settings = sct_settings_defaults()};
-    char *text = read_whole(path, &j.size);
-    if (text == NULL) return;
-    j.text = text;
+    job j = {.name = name, .text = text, .size = size, .settings = sct_settings_defaults()};
     j.settings.engine = engine;
     j.settings.starts = 2;
     j.settings.iterations = 8;
     const char *fault = refuse(&j, refused);
-    free(text);
-    ck_assert_msg(fault == NULL, "%s: %s", path, fault);
+    ck_assert_msg(fault == NULL, "%s: %s", name, fault);
 }
 
-/* ---- tests ------------------------------------------------------------------------------------------------------- */
+/* The same of a file, which may be missing. */
+static void try_file(const char *path, sct_engine engine, long *refused)
+{
+    size_t size;
+    char *text = read_whole(path, &size);
+    if (text != NULL) try_text(path, text, size, engine, refused);
+    free(text);
+}
 
 /* Every model of a folder, or the model of every folder in it. */
 static void try_folder(const char *folder, const char *format, sct_engine engine, long *refused)
@@ -207,6 +211,22 @@ START_TEST(every_place_that_asks_for_memory_may_be_refused)
 }
 END_TEST
 
+START_TEST(every_place_that_knows_of_frames_may_be_refused_memory)
+{
+    const char *const texts[] = {PLANE, SPACE};
+    long refused = 0;
+    for (int i = 0; i < 2; i++) {
+        const size_t size = strlen(texts[i]);
+        char *text = malloc(size);
+        for (size_t k = 0; k < size; k++) text[k] = (char)(texts[i][k] == '\'' ? '"' : texts[i][k]);
+        try_text(i == 0 ? "plane" : "space", text, size, SCT_ENGINE_AUTO, &refused);
+        free(text);
+    }
+    printf("measured: %ld refusals of memory for frames, at %d places\n", refused, places.n);
+    ck_assert_int_gt(refused, 500);
+}
+END_TEST
+
 START_TEST(every_place_that_tells_of_a_fault_may_be_refused_memory)
 {
     long refused = 0;
@@ -224,6 +244,7 @@ int main(void)
     TCase *tcase = tcase_create("memory");
     tcase_set_timeout(tcase, 600);
     tcase_add_test(tcase, every_place_that_asks_for_memory_may_be_refused);
+    tcase_add_test(tcase, every_place_that_knows_of_frames_may_be_refused_memory);
     tcase_add_test(tcase, every_place_that_tells_of_a_fault_may_be_refused_memory);
     suite_add_tcase(suite, tcase);
     return run_suite(suite);
