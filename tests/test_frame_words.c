@@ -369,8 +369,8 @@ START_TEST(what_is_likely_a_slip_is_warned_of)
 }
 END_TEST
 
-/* Until the analysis carries them; the error stands at the first thing that makes the model a frame. */
-START_TEST(frames_are_refused_where_they_are_said)
+/* What the analysis does not carry yet is refused, at the first such thing. */
+START_TEST(what_is_not_carried_is_refused_where_it_is_said)
 {
     sct_model *m;
     sct_issues *issues = sct_issues_new();
@@ -378,7 +378,7 @@ START_TEST(frames_are_refused_where_they_are_said)
     ck_assert_int_eq(sct_model_parse("f", text, strlen(text), &m, issues), SCT_BAD_INPUT);
     ck_assert_ptr_null(m);
     ck_assert_int_eq(sct_issues_errors(issues), 1);
-    ck_assert_str_eq(sct_issues_get(issues, 0)->pointer, "/joints/A");
+    ck_assert_str_eq(sct_issues_get(issues, 0)->pointer, "/members/tie");
     sct_issues_free(issues);
     free(text);
 }
@@ -485,7 +485,7 @@ int main(void)
     tcase_add_test(c, bare_numbers_of_derived_kinds_follow_length_force_and_temperature);
     tcase_add_test(c, the_sized_model_keeps_runs_as_they_are_written);
     tcase_add_loop_test(c, what_is_likely_a_slip_is_warned_of, 0, (int)(sizeof REMARKS / sizeof *REMARKS));
-    tcase_add_test(c, frames_are_refused_where_they_are_said);
+    tcase_add_test(c, what_is_not_carried_is_refused_where_it_is_said);
     tcase_add_test(c, what_a_few_words_multiply_has_an_end);
     tcase_add_loop_test(c, every_value_of_another_kind_is_met, 0, 2);
     suite_add_tcase(suite, c);
