@@ -194,7 +194,7 @@ deb: all
 
 # Ratios against CHOLMOD and NLopt in one run, as text and in $(BUILD)/bench.json; FULL=full: the largest models as well.
 BENCH_SRC := $(sort $(wildcard tests/bench*.c))
-$(BUILD)/bench: $(BENCH_SRC) tests/bench.h tests/grid.h tests/model_build.h $(BUILD)/libscantling.a
+$(BUILD)/bench: $(BENCH_SRC) tests/bench.h tests/bench_side.h tests/grid.h tests/model_build.h $(BUILD)/libscantling.a
 	$(CC) $(CPPFLAGS) $(CFLAGS) -Itests -o $@ $(BENCH_SRC) $(BUILD)/libscantling.a $(LDFLAGS) -lnlopt $(LDLIBS)
 bench: bench-packages
 	@$(MAKE) --no-print-directory -s all $(BUILD)/bench

@@ -96,6 +96,7 @@ int main(int argc, char **argv)
     }
     fprintf(json, "{");
     bench_descent(full); /* first: the large matrices leave a large heap behind */
+    bench_frames(full);
     bench_analysis(full);
     bench_section("whole_run", "This run");
     bench_figure("processor time", bench_seconds(), "s", NAN, false);

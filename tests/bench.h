@@ -23,5 +23,6 @@ void bench_section(const char *name, const char *what);
 void bench_figure(const char *name, double value, const char *unit, double target, bool at_least);
 
 void bench_analysis(bool full);
+void bench_frames(bool full);
 void bench_descent(bool full);
 #endif
