@@ -67,6 +67,7 @@ static double bracketed(int degree, const double p[], const double dp[], double 
 
 int sct_polynomial_roots(int degree, const double p[], double roots[])
 {
+    while (degree > 0 && p[degree] == 0) --degree; /* loads are uniform, or none, on most members */
     if (degree <= 0) return 0;
     if (degree == 1) return add_ratio(-p[0], p[1], 0, roots);
     if (degree == 2) return quadratic(p, roots);
