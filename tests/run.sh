@@ -3,6 +3,7 @@
 # CHOLMOD's OpenMP and the test runner's fork do not go together: one thread.
 export OMP_THREAD_LIMIT=1 OPENBLAS_NUM_THREADS=1 LC_ALL=C
 export UBSAN_OPTIONS=print_stacktrace=1
+export CK_DEFAULT_TIMEOUT="${CK_DEFAULT_TIMEOUT:-60}" # [s] the usual 4 are too few on a busy machine
 passed=0 failed=0
 log=$(mktemp) || exit 1
 trap 'rm -f "$log"' EXIT

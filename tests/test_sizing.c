@@ -257,6 +257,30 @@ START_TEST(an_observer_can_stop_the_search_and_gets_the_best_so_far)
 }
 END_TEST
 
+/* What was told as the best mass when the second start began. */
+static bool keep_best(const sct_progress *progress, void *user)
+{
+    double *best = user;
+    if (progress->start == 2 && isnan(*best)) *best = progress->best;
+    return true;
+}
+
+START_TEST(an_observer_is_told_the_best_of_the_starts_before)
+{
+    sct_model *model = read_file("models/benchmarks/10bar_case1.json");
+    double best = NAN;
+    sct_settings settings = sct_settings_defaults();
+    settings.starts = 2;
+    settings.observer = keep_best;
+    settings.user = &best;
+    sct_result *r = size_with(model, &settings);
+    ck_assert_int_eq(r->starts[0].outcome, SCT_OPTIMUM);
+    ck_assert(best == r->starts[0].mass);
+    sct_result_free(r);
+    sct_model_free(model);
+}
+END_TEST
+
 START_TEST(unsound_settings_are_refused)
 {
     sct_model *model = read_file("models/demo_roof.json");
@@ -696,6 +720,7 @@ int main(void)
     tcase_add_test(c, slenderness_of_compression_binds_compressed_members_only);
     tcase_add_test(c, without_iterations_the_start_is_checked_and_marked);
     tcase_add_test(c, an_observer_can_stop_the_search_and_gets_the_best_so_far);
+    tcase_add_test(c, an_observer_is_told_the_best_of_the_starts_before);
     tcase_add_test(c, unsound_settings_are_refused);
     tcase_add_test(c, settings_are_sound_up_to_their_bounds_and_not_beyond);
     tcase_add_test(c, another_arithmetic_than_the_usual_is_refused);

@@ -1228,6 +1228,29 @@ START_TEST(survey_coordinates_give_the_answer_of_the_shifted_model)
 }
 END_TEST
 
+START_TEST(the_error_of_a_combination_covers_the_rounding_of_its_sum)
+{
+    sct_random r = {.state = 79};
+    sct_model *m = random_truss(&r, 3, 20, 20);
+    mb_combination(m, 3, (double[]){1.35, -0.7, 0.9});
+    solved s = solve(m);
+    double *N = calloc((size_t)s.st->n_bars, sizeof *N);
+    sct_combine_forces(s.st, &s.r, 0, N);
+    memset(s.r.N_error, 0, (size_t)(3 * s.st->n_springs) * sizeof *s.r.N_error); /* as if each case were exact */
+    memset(s.r.u_error, 0, (size_t)(3 * s.st->n_dof) * sizeof *s.r.u_error);
+    for (int e = 0; e < s.st->n_bars; e++) {
+        long double exact = 0.0L;
+        for (int k = 0; k < 3; k++) exact += (long double)m->combinations[0].factor[k] * force(&s, k, e);
+        const double error = sct_combined_force_error(s.st, &s.r, 0, e);
+        ck_assert(error > 0.0 && fabsl(exact - N[e]) <= error && error <= 1e-13 * (fabs(N[e]) + 1e6));
+    }
+    for (int j = 3; j < m->n_joints; j++) /* those before are held */
+        ck_assert_double_gt(sct_combined_displacement_error(s.st, &s.r, 0, j, (double[]){0.6, 0.8, 0.0}), 0.0);
+    free(N);
+    solved_free(&s);
+}
+END_TEST
+
 START_TEST(the_requests_of_CHOLMOD_itself_are_counted_and_can_fail)
 {
     if (!COUNTS_MEMORY) return;
@@ -1370,6 +1393,7 @@ int main(void)
     tcase_add_test(facts, cases_superpose_reverse_and_scale);
     tcase_add_test(facts, stiffness_times_c_divides_displacements_by_c_and_keeps_forces);
     tcase_add_test(facts, survey_coordinates_give_the_answer_of_the_shifted_model);
+    tcase_add_test(facts, the_error_of_a_combination_covers_the_rounding_of_its_sum);
     tcase_add_test(facts, the_requests_of_CHOLMOD_itself_are_counted_and_can_fail);
     tcase_add_test(facts, an_analysis_allocates_nothing);
     tcase_add_test(facts, every_allocation_may_fail_once_or_for_good_without_a_leak);
