@@ -67,9 +67,9 @@ static const sct_unit UNITS[] = {
     {"N mm", SCT_MOMENT, 1, 1e3},
     {"kN cm", SCT_MOMENT, 10, 1},
     {"lbf in", SCT_MOMENT, 1129848290276167, 1e16},
-    {"lbf ft", SCT_MOMENT, 13558179483314004, 1e16},
+    {"lbf ft", SCT_MOMENT, 13558179483314004.0, 1e16},
     {"kip in", SCT_MOMENT, 1129848290276167, 1e13},
-    {"kip ft", SCT_MOMENT, 13558179483314004, 1e13},
+    {"kip ft", SCT_MOMENT, 13558179483314004.0, 1e13},
     {"N/m", SCT_FORCE_PER_LENGTH, 1, 1},
     {"kN/m", SCT_FORCE_PER_LENGTH, 1e3, 1},
     {"MN/m", SCT_FORCE_PER_LENGTH, 1e6, 1},
@@ -86,7 +86,7 @@ static const sct_unit UNITS[] = {
     {"kN m/deg", SCT_TURN_STIFFNESS, 180e3, PI},
     {"lbf in/rad", SCT_TURN_STIFFNESS, 1129848290276167, 1e16},
     {"kip in/rad", SCT_TURN_STIFFNESS, 1129848290276167, 1e13},
-    {"kip ft/rad", SCT_TURN_STIFFNESS, 13558179483314004, 1e13},
+    {"kip ft/rad", SCT_TURN_STIFFNESS, 13558179483314004.0, 1e13},
     {"m3", SCT_SECTION_MODULUS, 1, 1},
     {"cm3", SCT_SECTION_MODULUS, 1, 1e6},
     {"mm3", SCT_SECTION_MODULUS, 1, 1e9},
@@ -189,7 +189,7 @@ static const char *nearest_unit(const char *name, sct_quantity quantity)
         if (list[i] != NULL && same_but_for_case(list[i], name)) return list[i];
     for (size_t i = 0; i < sizeof SLIPS / sizeof *SLIPS; i++) {
         const sct_unit *meant = sct_unit_find(SLIPS[i][1]);
-        if (meant->quantity == quantity && same_but_for_case(SLIPS[i][0], name)) return meant->name;
+        if (meant != NULL && meant->quantity == quantity && same_but_for_case(SLIPS[i][0], name)) return meant->name;
     }
     return strlen(name) < 2 ? NULL : sct_nearest(list, N_UNITS, name); /* of one letter, every unit is one edit away */
 }
