@@ -432,11 +432,19 @@ typedef enum sct_format {
     SCT_DRAWING_SVG   /* the truss with marks and utilisations */
 } sct_format;
 
+/* Diagrams along the members in a drawing, below the figure of the utilisations. */
+typedef enum sct_diagram {
+    SCT_NO_DIAGRAM,
+    SCT_DIAGRAM_OF_COMBINATION, /* of the combination that the drawing shows */
+    SCT_DIAGRAM_ENVELOPE        /* largest and smallest over all combinations that strength is checked in */
+} sct_diagram;
+
 typedef struct sct_write_options {
     bool colour;         /* summary: terminal colours */
     int combination;     /* drawing: loads and deflected shape of this one; default -1: the worst for deflection */
     bool draw_loads;     /* drawing: the loads of the combination */
     bool draw_deflected; /* drawing: the deflected shape of the combination */
+    sct_diagram draw_moment, draw_shear, draw_axial; /* drawing: bending moments, shear forces, axial forces */
 } sct_write_options;
 SCT_API sct_write_options sct_write_defaults(void);
 

@@ -45,7 +45,7 @@ run 2 "an infinite tolerance" size --tolerance 1e999 "$DEMO"; says "expected a n
 run 2 "a comma is no point" size --tolerance 0,5 "$DEMO"; says "expected a number"
 run 2 "a word that is none" size --progress sometimes "$DEMO"; says "expected one of auto, always, never, json"
 run 2 "two combinations in one drawing" size "$DEMO" -o "$work/x" --draw-loads a --draw-deflected b; says "different combinations"
-run 2 "a drawing without a folder" size "$DEMO" --draw-loads "full snow"; says "need -o"
+run 2 "a drawing without a folder" size "$DEMO" --draw-loads "full snow"; says "needs -o"
 run 2 "a drawn combination that is none" size "$DEMO" -o "$work/y" --draw-loads "ful snow"; says 'did you mean "full snow"?'
 [ -z "$(ls "$work/y" 2>/dev/null)" ]; ok "nothing was written"
 run 3 "a file that is not there" size "$work/none.json"; says "cannot be opened: No such file"

@@ -64,7 +64,7 @@ run 2 "no shell of ours" completion tclsh8; says 'there is one for bash'
 run 2 "an option" check "$MODEL" --jsno; says 'did you mean --json?'
 run 2 "an option of another command" explain "$MODEL" --member T4 --starts 3; says 'no option --starts'
 run 2 "a letter" check -z "$MODEL"; says 'no option -z'
-run 2 "short for two options" size "$DEMO" --draw x; says 'option --draw is short for several: --draw-loads, --draw-deflected'
+run 2 "short for several options" size "$DEMO" --draw x; says 'option --draw is short for several: --draw-loads, --draw-deflected, --draw-moment, --draw-shear, --draw-axial'
 run 2 "a value for a switch" check "$MODEL" --json=5; says 'option --json takes no value; found "5"'
 run 2 "a word of an option" check "$MODEL" --color=nevre; says '--color: found "nevre"; did you mean "never"?'
 run 2 "no such word" size "$DEMO" --progress=sometimes; says 'expected one of auto, always, never, json'
@@ -189,7 +189,7 @@ SH
     }
     completes "check" scantling ch
     completes "--help --version" scantling -
-    completes "--draw-deflected --draw-loads" scantling size --dr
+    completes "--draw-axial --draw-deflected --draw-loads --draw-moment --draw-shear" scantling size --dr
     completes "always auto never" scantling check --color ""
     completes "json" scantling size --progress = j
     completes "size" scantling help s

@@ -60,7 +60,7 @@ END_TEST
 START_TEST(words_are_turned_only_by_an_angle_that_shows)
 {
     sct_sheet sheet = {0};
-    const sct_run run = {"a", ROLE_INK, true};
+    const sct_word_run run = {"a", ROLE_INK, true};
     sct_sheet_runs(&sheet, (sct_point){1, 2}, LABEL, ANCHOR_END, 0.004, &run, 1);
     ck_assert_ptr_null(strstr(sheet.body.data, "rotate"));
     sct_sheet_runs(&sheet, (sct_point){1, 2}, LABEL, ANCHOR_MIDDLE, -90, &run, 1);

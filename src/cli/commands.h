@@ -30,7 +30,10 @@ extern const char *const CLI_WHEN[]; /* auto, always, never */
     {'q', "quiet", NULL, "print errors only", NULL},                                                                   \
     CLI_COLOR_OPTION,                                                                                                  \
     {0, "draw-loads", "COMBINATION", "show the loads of a combination in drawing.svg", NULL},                          \
-    {0, "draw-deflected", "COMBINATION", "show the deflected shape under a combination in drawing.svg", NULL}
+    {0, "draw-deflected", "COMBINATION", "show the deflected shape under a combination in drawing.svg", NULL},         \
+    {0, "draw-moment", "COMBINATION", "show bending moments: a combination, or envelope", NULL},                       \
+    {0, "draw-shear", "COMBINATION", "show shear forces likewise", NULL},                                              \
+    {0, "draw-axial", "COMBINATION", "show axial forces likewise", NULL}
 /* clang-format on */
-enum { CLI_N_OUTPUT_OPTIONS = 7 };
+enum { CLI_N_OUTPUT_OPTIONS = 10 };
 #endif

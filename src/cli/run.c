@@ -87,10 +87,54 @@ static int prepare_folder(cli_run *run)
     return 0;
 }
 
+/* ---- what the drawing shows ----------------------------------------------------------------------------------------
+ */
+
+static const char *const DRAWN[] = {"draw-loads", "draw-deflected", "draw-moment", "draw-shear", "draw-axial"};
+enum { N_DRAWN = sizeof DRAWN / sizeof DRAWN[0], FIRST_DIAGRAM = 2 };
+static const char ENVELOPE[] = "envelope";
+
+/* The options that draw something are sound: *name is the combination that the drawing shows, NULL when none is named.
+ * Diagrams may show the envelope instead, whatever the others name. */
+static int read_drawn(const cli_run *run, const char **name)
+{
+    int first = -1;
+    *name = NULL;
+    for (int i = 0; i < N_DRAWN; i++) {
+        const char *given = cli_given(run->command, run->given, DRAWN[i]);
+        if (given == NULL) continue;
+        if (run->folder == NULL) {
+            cli_say("error", "--%s needs -o: the drawing goes into that folder", DRAWN[i]);
+            return EXIT_USAGE;
+        }
+        if (i >= FIRST_DIAGRAM && strcmp(given, ENVELOPE) == 0) continue;
+        if (*name != NULL && strcmp(*name, given) != 0) {
+            cli_say("error", "--%s and --%s name different combinations; a drawing shows one", DRAWN[first], DRAWN[i]);
+            return EXIT_USAGE;
+        }
+        if (*name == NULL) first = i;
+        *name = given;
+    }
+    return 0;
+}
+
+static sct_diagram diagram(const cli_run *run, const char *option)
+{
+    const char *given = cli_given(run->command, run->given, option);
+    if (given == NULL) return SCT_NO_DIAGRAM;
+    return strcmp(given, ENVELOPE) == 0 ? SCT_DIAGRAM_ENVELOPE : SCT_DIAGRAM_OF_COMBINATION;
+}
+
 /* Before the long work starts. */
 static int find_drawn(cli_run *run, const char *name)
 {
-    const char *near;
+    const char *near = NULL;
+    run->write.draw_loads = cli_given(run->command, run->given, "draw-loads") != NULL;
+    run->write.draw_deflected = cli_given(run->command, run->given, "draw-deflected") != NULL;
+    run->write.draw_moment = diagram(run, "draw-moment");
+    run->write.draw_shear = diagram(run, "draw-shear");
+    run->write.draw_axial = diagram(run, "draw-axial");
+    if (name == NULL) return 0;
     run->write.combination = sct_model_combination(run->model, name, &near);
     if (run->write.combination >= 0) return 0;
     if (near != NULL)
@@ -107,33 +151,23 @@ int cli_run_open(cli_run *run, const cli_command *command, const char *const giv
     run->json = cli_given(command, given, "json") != NULL;
     run->force = cli_given(command, given, "force") != NULL;
     run->folder = cli_given(command, given, "output");
-    const char *loads = cli_given(command, given, "draw-loads"), *moved = cli_given(command, given, "draw-deflected");
     if (!cli_word(command, given, "color", &run->colour)) return EXIT_USAGE;
     if (run->folder != NULL && run->folder[0] == '\0') {
         cli_say("error", "-o needs the name of a folder");
         return EXIT_USAGE;
     }
-    if (loads != NULL && moved != NULL && strcmp(loads, moved) != 0) {
-        cli_say("error", "--draw-loads and --draw-deflected name different combinations; a drawing shows one");
-        return EXIT_USAGE;
-    }
-    if ((loads != NULL || moved != NULL) && run->folder == NULL) {
-        cli_say("error", "--draw-loads and --draw-deflected need -o: the drawing goes into that folder");
-        return EXIT_USAGE;
-    }
+    const char *drawn;
+    if (read_drawn(run, &drawn) != 0) return EXIT_USAGE;
     if (strcmp(path, "-") == 0 && isatty(STDIN_FILENO)) {
         cli_say("error", "standard input is a terminal; pipe a model in, or name a file");
         return EXIT_USAGE;
     }
-    const char *drawn = loads != NULL ? loads : moved;
-    run->write.draw_loads = loads != NULL;
-    run->write.draw_deflected = moved != NULL;
     const int fault = run->folder != NULL ? prepare_folder(run) : 0;
     if (fault != 0) return fault;
     run->issues = sct_issues_new();
     if (run->issues == NULL) return EXIT_RESOURCES;
     const int code = cli_exit_of_status(sct_model_read(path, &run->model, run->issues));
-    return code == 0 && drawn != NULL ? find_drawn(run, drawn) : code;
+    return code == 0 ? find_drawn(run, drawn) : code;
 }
 
 /* The model with the sizes put in is read back from its text, and all that the reports say is checked against a second

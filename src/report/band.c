@@ -3,9 +3,10 @@
 
 #include <math.h>
 
+#include "ends.h"
 #include "quantity.h"
 
-static const double TRIM = 5, CASING = 1.6, CASING_TRIM = 6; /* [u] */
+static const double CASING = 1.6, CASING_TRIM = 6; /* [u] */
 static const double EDGE_GAP = 0.9, EDGE_GAP_OF_DEPTH = 0.14, CORE_LEAST = 1.6;
 static const double HATCH_PITCH = 5, OVER_GROW = 1;
 
@@ -50,18 +51,30 @@ static void tube(sct_sheet *sheet, const axes *a, double depth, sct_role role)
     body(sheet, a, fmin(fmax(core, CORE_LEAST), depth), role, ROLE_NONE, 0);
 }
 
+/* One edge as of a tube, the other solid: one is in tension, one in compression, and the place decides which. */
+static void half_tube(sct_sheet *sheet, const axes *a, double depth, sct_role role)
+{
+    const double h = 0.5 * depth, gap = fmin(THIN + fmax(EDGE_GAP, EDGE_GAP_OF_DEPTH * depth), 0.6 * depth);
+    const axes core = {place(a, 0, -0.5 * gap), a->c, a->s, a->length};
+    body(sheet, a, depth, ROLE_PAGE, ROLE_NONE, 0);
+    sct_sheet_line(sheet, place(a, 0, h - 0.5 * THIN), place(a, a->length, h - 0.5 * THIN), ROLE_INK, THIN);
+    body(sheet, &core, depth - gap, role, ROLE_NONE, 0);
+}
+
 void sct_band_draw(sct_sheet *sheet, sct_point p, sct_point q, double depth, sct_sense sense, double utilisation)
 {
     const double length = hypot(q.x - p.x, q.y - p.y);
     if (!(length > 1e-6)) return;
     const axes a = {p, (q.x - p.x) / length, (q.y - p.y) / length, length};
     const sct_role role = sct_ramp(utilisation);
-    const bool is_tension = sense == SENSE_TENSION;
+    const bool is_tension = sense == SENSE_TENSION || sense == SENSE_BENT;
     if (role == ROLE_OVER) { /* also without force: a slenderness that is not kept must be seen */
         body(sheet, &a, depth + OVER_GROW, is_tension ? ROLE_OVER : ROLE_PAGE, ROLE_OVER, MEDIUM);
         hatch(sheet, &a, depth + OVER_GROW, is_tension ? ROLE_PAGE : ROLE_OVER, is_tension ? MEDIUM : THIN);
     } else if (sense == SENSE_NONE) {
         sct_sheet_dots(sheet, p, q);
+    } else if (sense == SENSE_BENT) {
+        half_tube(sheet, &a, depth, role);
     } else if (is_tension) {
         body(sheet, &a, depth, role, ROLE_NONE, 0);
     } else {
@@ -97,7 +110,6 @@ void sct_band_member(sct_scene *scene, int member)
     const sct_result *r = scene->result;
     const sct_stick *s = &scene->sticks[member];
     if (!(s->length > 1e-6)) return;
-    const double trim = fmin(TRIM / s->length, 0.2);
     if (r->dimensions == 3) {
         const double bare = fmin(CASING_TRIM / s->length, 0.25);
         sct_sheet_line(&scene->sheet, between(s->from, s->to, bare), between(s->from, s->to, 1 - bare), ROLE_PAGE,
@@ -108,7 +120,9 @@ void sct_band_member(sct_scene *scene, int member)
     if (title.failed) scene->sheet.body.failed = true;
     sct_sheet_group_open(&scene->sheet, title.failed || title.data == NULL ? "" : title.data);
     sct_text_free(&title);
-    sct_band_draw(&scene->sheet, between(s->from, s->to, trim), between(s->from, s->to, 1 - trim), s->depth, s->sense,
-                  r->members[member].utilisation);
+    const double before = sct_end_reach(scene, member, 0) / s->length,
+                 behind = sct_end_reach(scene, member, 1) / s->length;
+    sct_band_draw(&scene->sheet, between(s->from, s->to, -before), between(s->from, s->to, 1 + behind), s->depth,
+                  s->sense, r->members[member].utilisation);
     sct_sheet_group_close(&scene->sheet);
 }

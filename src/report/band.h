@@ -1,4 +1,5 @@
-/* One member as a band: solid in tension, a lined tube in compression, dots without force, hatched above 1. */
+/* One member as a band: solid in tension, a lined tube in compression, half of each where it is mainly bent, dots
+ * without force, hatched above 1. */
 #ifndef SCT_REPORT_BAND_H
 #define SCT_REPORT_BAND_H
 

@@ -112,18 +112,25 @@ static int by_size(const void *left, const void *right)
     return p < q ? -1 : p > q;
 }
 
+/* Where a joint lies along an axis of the view: 0 to the right, 1 upwards. */
+static double place(const sct_scene *scene, int joint, int axis)
+{
+    return scene->result->joints[joint].at[scene->axis[axis]];
+}
+
 /* The places along `axis` of the joints that lie at `level` across it (NAN: of all joints), with both ends of the
  * truss. Too many: the ends only. */
-static chain chain_at(const sct_result *r, int axis, double level)
+static chain chain_at(const sct_scene *scene, int axis, double level)
 {
+    const sct_result *r = scene->result;
     chain c = {.n = 0};
     double low = INFINITY, high = -INFINITY;
     bool full = false;
     for (int j = 0; j < r->n_joints; j++) {
-        const double at = r->joints[j].at[axis];
+        const double at = place(scene, j, axis);
         low = fmin(low, at);
         high = fmax(high, at);
-        if (!isnan(level) && fabs(r->joints[j].at[1 - axis] - level) > SAME) continue;
+        if (!isnan(level) && fabs(place(scene, j, 1 - axis) - level) > SAME) continue;
         bool known = false;
         for (int i = 0; i < c.n; i++) known |= fabs(c.at[i] - at) <= SAME;
         if (known) continue;
@@ -145,17 +152,18 @@ static chain chain_at(const sct_result *r, int axis, double level)
 }
 
 /* The joints that tell the panels best: those of the bottom chord, of the top chord, or all. */
-static chain panels(const sct_result *r, int axis)
+static chain panels(const sct_scene *scene, int axis)
 {
+    const sct_result *r = scene->result;
     double low = INFINITY, high = -INFINITY;
     for (int j = 0; j < r->n_joints; j++) {
-        low = fmin(low, r->joints[j].at[1 - axis]);
-        high = fmax(high, r->joints[j].at[1 - axis]);
+        low = fmin(low, place(scene, j, 1 - axis));
+        high = fmax(high, place(scene, j, 1 - axis));
     }
-    chain c = chain_at(r, axis, low);
+    chain c = chain_at(scene, axis, low);
     if (c.n >= 4 || (c.n == 3 && r->n_joints <= 6)) return c;
-    c = chain_at(r, axis, high);
-    return c.n >= 4 ? c : chain_at(r, axis, NAN);
+    c = chain_at(scene, axis, high);
+    return c.n >= 4 ? c : chain_at(scene, axis, NAN);
 }
 
 typedef struct run {
@@ -237,7 +245,7 @@ static sct_point end_joint(const sct_scene *scene, const chain *c, int i, int ax
     sct_point best = {0, 0};
     double nearest = -INFINITY;
     for (int j = 0; j < r->n_joints; j++) {
-        if (fabs(r->joints[j].at[axis] - c->at[i]) > SAME) continue;
+        if (fabs(place(scene, j, axis) - c->at[i]) > SAME) continue;
         const double towards = axis == 0 ? scene->at[j].y : scene->at[j].x;
         if (towards > nearest) {
             nearest = towards;
@@ -260,7 +268,7 @@ static void extension(sct_scene *scene, const chain *c, int i, int axis, double 
 static void dimension_axis(sct_scene *scene, int axis, bool in_panels, double across)
 {
     const sct_result *r = scene->result;
-    chain ends = chain_at(r, axis, INFINITY), c = in_panels ? panels(r, axis) : ends;
+    chain ends = chain_at(scene, axis, INFINITY), c = in_panels ? panels(scene, axis) : ends;
     if (!((ends.at[ends.n - 1] - ends.at[0]) * scene->scale > 7)) return;
     run runs[RUNS_MOST], whole = {.from = 0, .to = ends.n - 1};
     int n = find_runs(scene, &c, runs);

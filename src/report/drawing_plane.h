@@ -1,4 +1,4 @@
-/* What a plane truss has of its own: order of members, dimensions, slope. */
+/* What a plane truss has of its own: order of members, slope; and the dimensions of any flat view. */
 #ifndef SCT_REPORT_DRAWING_PLANE_H
 #define SCT_REPORT_DRAWING_PLANE_H
 

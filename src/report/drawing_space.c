@@ -14,8 +14,7 @@ static const double TURN = 28, TURN_OF_LONG_Y = -62, TILT = 16, TURN_STEP = 7; /
 static const double HIDDEN = 4;                                                /* [u] joints nearer than this hide */
 enum { TURNS = 12, JOINTS_TO_COMPARE = 400, LEVELS_MOST = 16 };
 
-/* Overall size along x, y, z [m]. */
-static void extents(const sct_result *r, double size[3])
+void sct_space_extents(const sct_result *r, double size[3])
 {
     for (int axis = 0; axis < 3; axis++) {
         double low = INFINITY, high = -INFINITY;
@@ -46,7 +45,7 @@ static int count_hidden(const sct_scene *scene, double width, double height)
 void sct_space_view(sct_scene *scene, double width, double height)
 {
     double size[3];
-    extents(scene->result, size);
+    sct_space_extents(scene->result, size);
     const double first = size[1] > 2 * size[0] ? TURN_OF_LONG_Y : TURN; /* the long side goes to the right */
     double best = first;
     int fewest = -1;
@@ -146,7 +145,7 @@ void sct_space_levels(sct_scene *scene)
     const sct_result *r = scene->result;
     double size[3];
     int joint_at[LEVELS_MOST];
-    extents(r, size);
+    sct_space_extents(r, size);
     const int n = size[2] > fmax(size[0], size[1]) ? find_levels(scene, joint_at) : 0;
     sct_point corner, opposite;
     sct_labels_bounds(scene->labels, &corner, &opposite);
@@ -172,7 +171,7 @@ void sct_space_size(const sct_result *r, char *out, size_t room)
 {
     double size[3];
     sct_quantity words[3];
-    extents(r, size);
+    sct_space_extents(r, size);
     for (int axis = 0; axis < 3; axis++) sct_quantity_length(words[axis], size[axis], 2, r->us_customary);
     sct_number_format(out, room, "%s \xC3\x97 %s \xC3\x97 %s\xE2\x80\xAF%s", words[0], words[1], words[2],
                       sct_length_unit_name(r->us_customary));

@@ -13,6 +13,8 @@ sct_status sct_space_members(sct_scene *scene);
 void sct_space_axes(sct_scene *scene);
 /** The levels of a tower at the right of everything drawn so far; nothing for other shapes. */
 void sct_space_levels(sct_scene *scene);
+/** Overall size along x, y, z [m]. */
+void sct_space_extents(const sct_result *result, double size[3]);
 /** Overall size: "3.60 x 3.60 x 15.00 m". */
 void sct_space_size(const sct_result *result, char *out, size_t room);
 #endif

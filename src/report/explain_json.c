@@ -2,6 +2,7 @@
 #include <math.h>
 
 #include "base/text.h"
+#include "report/explain_json_bent.h"
 #include "report/find_member.h"
 #include "report/json_text.h"
 #include "rules/allowable.h"
@@ -29,6 +30,7 @@ static void given(sct_json *w, const subject *s)
     sct_json_string(w, "section", s->g->section);
     sct_json_number(w, "area_m2", s->g->A);
     sct_json_both_axes(w, "radius_of_gyration_m", s->i);
+    if (s->m->is_bent) sct_json_both_axes(w, "section_modulus_m3", s->g->W);
     sct_json_number(w, "length_m", s->m->L);
     sct_json_both_axes(w, "effective_length_m", s->m->Lcr);
     sct_json_key(w, "effective_length_from");
@@ -72,18 +74,11 @@ static void check(sct_json *w, const sct_bar_check *c, const char *value, const 
     sct_json_boolean(w, "passes", c->utilisation <= 1.0 + SCT_KEPT_TO);
 }
 
-static void combination(sct_json *w, const subject *s, int c)
+/* The checks of a bar without moments. */
+static void bar_checks(sct_json *w, const subject *s, double N, bool counts)
 {
-    const double N = s->r->N[(size_t)c * (size_t)s->r->n_members + (size_t)s->index];
-    const bool counts = s->model->combinations[c].basis == SCT_ALLOWABLE;
     sct_bar_check checks[SCT_MOST_BAR_CHECKS];
     const int n = counts ? sct_bar_checks(&s->rule, N, s->g->A, s->i, checks) : 0;
-    sct_json_entry(w);
-    sct_json_begin(w, "{");
-    sct_json_string(w, "name", s->r->combinations[c]);
-    sct_json_boolean(w, "checks_strength", counts);
-    sct_json_number(w, "force_N", N);
-    sct_json_number(w, "stress_Pa", N / s->g->A);
     sct_json_key(w, "checks");
     sct_json_begin(w, "[");
     for (int k = 0; k < n; k++) {
@@ -93,7 +88,25 @@ static void combination(sct_json *w, const subject *s, int c)
         sct_json_end(w, "}");
     }
     sct_json_end(w, "]");
+}
+
+static sct_status combination(sct_json *w, const subject *s, int c)
+{
+    const double N = s->r->N[(size_t)c * (size_t)s->r->n_members + (size_t)s->index];
+    const bool counts = s->model->combinations[c].basis == SCT_ALLOWABLE;
+    sct_status status = SCT_OK;
+    sct_json_entry(w);
+    sct_json_begin(w, "{");
+    sct_json_string(w, "name", s->r->combinations[c]);
+    sct_json_boolean(w, "checks_strength", counts);
+    sct_json_number(w, "force_N", N);
+    sct_json_number(w, "stress_Pa", N / s->g->A);
+    if (s->m->is_bent)
+        status = sct_explain_json_bent(w, s->r, c, s->index, counts);
+    else
+        bar_checks(w, s, N, counts);
     sct_json_end(w, "}");
+    return status;
 }
 
 static void slenderness(sct_json *w, const subject *s)
@@ -117,6 +130,11 @@ static void governing(sct_json *w, const subject *s)
     sct_json_begin(w, "{");
     sct_json_string(w, "check", sct_check_text(s->m->check));
     sct_json_string(w, "combination", s->m->combination >= 0 ? s->r->combinations[s->m->combination] : NULL);
+    if (s->m->is_bent) {
+        sct_json_number(w, "place_m", s->m->x);
+        sct_json_number(w, "force_N", s->m->N);
+        sct_json_both_axes(w, "moment_Nm", s->m->M);
+    }
     sct_json_number(w, "utilisation", s->m->utilisation);
     sct_json_boolean(w, "passes", s->m->utilisation <= 1.0 + SCT_KEPT_TO);
     sct_json_end(w, "}");
@@ -149,12 +167,18 @@ sct_status sct_explain_json(const sct_result *result, const char *member, char *
     column_strengths(&w, &s);
     sct_json_key(&w, "combinations");
     sct_json_begin(&w, "[");
-    for (int c = 0; c < result->n_combinations; c++) combination(&w, &s, c);
+    sct_status status = SCT_OK;
+    for (int c = 0; c < result->n_combinations && status == SCT_OK; c++) status = combination(&w, &s, c);
     sct_json_end(&w, "]");
     slenderness(&w, &s);
+    if (m->is_bent) sct_explain_json_bows(&w, result, index);
     governing(&w, &s);
     sct_json_end(&w, "}");
     sct_text_add(&out, "\n");
+    if (status != SCT_OK) {
+        sct_text_free(&out);
+        return status;
+    }
     *text = sct_text_take(&out, NULL);
     return *text != NULL ? SCT_OK : SCT_NO_MEMORY;
 }

@@ -90,6 +90,7 @@ static void tell_deflection(const sct_result *r, int d, sct_text *out)
     sct_quantity_movement(most, p->at_most, r->us_customary);
     sct_text_format(out, " Deflection at %s %s of %s\xE2\x80\xAF%s", r->joints[p->joint].name, u, most,
                     r->us_customary ? "in" : "mm");
+    if (p->from >= 0) sct_text_format(out, " relative to %s", r->joints[p->from].name);
     if (p->label != NULL && p->label[0] != '\0') sct_text_format(out, " (%s)", p->label);
     sct_text_add(out, p->utilisation > 1 ? ", not kept." : ".");
 }

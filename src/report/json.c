@@ -237,7 +237,7 @@ static void add_deflections(sct_json *w, const sct_result *r)
         sct_json_begin(w, "{");
         sct_json_whole(w, "limit", d->limit);
         sct_json_string(w, "joint", r->joints[d->joint].name);
-        if (r->has_bent && d->from >= 0) sct_json_string(w, "relative_to", r->joints[d->from].name);
+        if (d->from >= 0) sct_json_string(w, "relative_to", r->joints[d->from].name);
         sct_json_string(w, "combination", combination_name(r, d->combination));
         sct_json_key(w, "direction");
         sct_json_vector(w, d->direction, r->dimensions);

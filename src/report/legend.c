@@ -31,7 +31,7 @@ void sct_legend_ramp(sct_sheet *sheet, sct_point at, double field, const char *t
     sct_sheet_words(sheet, (sct_point){over + 0.5 * field + 8, y + 21}, LABEL, ANCHOR_MIDDLE, ROLE_SOFT, "above 1");
 }
 
-void sct_legend_senses(sct_sheet *sheet, sct_point at)
+double sct_legend_senses(sct_sheet *sheet, sct_point at, bool of_frame)
 {
     static const struct {
         sct_sense sense;
@@ -43,6 +43,11 @@ void sct_legend_senses(sct_sheet *sheet, sct_point at)
         sct_band_draw(sheet, (sct_point){x, y}, (sct_point){x + 26, y}, 8.5, KINDS[i].sense, 0.6);
         note(sheet, x + 31, at.y, KINDS[i].words);
     }
+    if (!of_frame) return 0;
+    const double y = at.y + 18;
+    sct_band_draw(sheet, (sct_point){at.x, y - 4}, (sct_point){at.x + 26, y - 4}, 8.5, SENSE_BENT, 0.6);
+    note(sheet, at.x + 31, y, "bending more than force");
+    return 18;
 }
 
 /* ---- groups --------------------------------------------------------------------------------------------------------
@@ -82,7 +87,7 @@ static void cell(sct_sheet *sheet, double x, double y, sct_anchor anchor, double
 {
     char cut[LINE_ROOM];
     sct_words_fit(words, width, LABEL, bold, cut, sizeof cut);
-    sct_sheet_runs(sheet, (sct_point){x, y}, LABEL, anchor, 0, &(sct_run){cut, role, bold}, 1);
+    sct_sheet_runs(sheet, (sct_point){x, y}, LABEL, anchor, 0, &(sct_word_run){cut, role, bold}, 1);
 }
 
 static void rule(sct_sheet *sheet, double x, double y, double width, sct_role role, double weight)
@@ -217,7 +222,7 @@ static void caution(sct_sheet *sheet, double x, double y, double width)
     memcpy(first, CAUTION, n);
     first[n] = '\0';
     take_line(&rest, width - sct_words_width(first, LABEL, true) - 4, line);
-    const sct_run runs[2] = {{first, ROLE_INK, true}, {line, ROLE_SOFT, false}};
+    const sct_word_run runs[2] = {{first, ROLE_INK, true}, {line, ROLE_SOFT, false}};
     sct_sheet_runs(sheet, (sct_point){x, y}, LABEL, ANCHOR_START, 0, runs, 2);
     for (int i = 1; *rest != '\0'; i++) {
         take_line(&rest, width, line);

@@ -6,8 +6,9 @@
 
 /** The ramp with its edges and "above 1"; `field` is the width of one step. 33 u high below its title's baseline. */
 void sct_legend_ramp(sct_sheet *sheet, sct_point at, double field, const char *title);
-/** The three kinds of member in a row of about 235 u, on the baseline `at`. */
-void sct_legend_senses(sct_sheet *sheet, sct_point at);
+/** The three kinds of member in a row of about 235 u, on the baseline `at`; of a frame a fourth in a row below. Returns
+ * the height of the rows after the first. */
+double sct_legend_senses(sct_sheet *sheet, sct_point at, bool of_frame);
 
 /** The table of groups, `width` wide, its head on the baseline `at`; returns its height. Above 12 groups the worst are
  * shown and the others counted. */

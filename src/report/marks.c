@@ -15,7 +15,7 @@ enum { MARK_ROOM = 96, NAME_WIDTH = 110, DIRECTIONS = 36, WAYS = 12, LEFT_NAMED 
 typedef struct mark {
     char name[MARK_ROOM];
     sct_quantity value;
-    sct_run runs[2];
+    sct_word_run runs[2];
     double half; /* half width [u] */
 } mark;
 
@@ -24,8 +24,8 @@ static void write_mark(const sct_scene *scene, int member, mark *out)
     const sct_member_result *m = &scene->result->members[member];
     sct_words_fit(m->name, NAME_WIDTH, LABEL, false, out->name, sizeof out->name);
     sct_quantity_utilisation(out->value, m->utilisation);
-    out->runs[0] = (sct_run){out->name, ROLE_SOFT, false};
-    out->runs[1] = (sct_run){out->value, m->utilisation > 1 ? ROLE_OVER : ROLE_INK, true};
+    out->runs[0] = (sct_word_run){out->name, ROLE_SOFT, false};
+    out->runs[1] = (sct_word_run){out->value, m->utilisation > 1 ? ROLE_OVER : ROLE_INK, true};
     out->half = 0.5 * sct_runs_width(out->runs, 2, LABEL);
 }
 
@@ -107,7 +107,7 @@ static int candidates_along(const sct_scene *scene, const sct_stick *s, double h
 }
 
 /* Words in the middle of a box. */
-static void ink(sct_scene *scene, const sct_box *box, const sct_run runs[], int n)
+static void ink(sct_scene *scene, const sct_box *box, const sct_word_run runs[], int n)
 {
     const double down = BASELINE * LABEL;
     sct_sheet_runs(&scene->sheet, (sct_point){box->x - down * box->s, box->y + down * box->c}, LABEL, ANCHOR_MIDDLE,
@@ -164,7 +164,7 @@ static int candidates_near(sct_point at, double distance, sct_point towards, dou
     return k;
 }
 
-bool sct_marks_near(sct_scene *scene, sct_point at, double distance, sct_point way, const sct_run runs[], int n)
+bool sct_marks_near(sct_scene *scene, sct_point at, double distance, sct_point way, const sct_word_run runs[], int n)
 {
     sct_choice choices[N_NEAR];
     const int n_choices = candidates_near(at, distance, way, 0.5 * sct_runs_width(runs, n, LABEL), choices);
@@ -180,8 +180,8 @@ static void name_joint(sct_scene *scene, int joint)
 {
     char name[MARK_ROOM];
     sct_words_fit(scene->result->joints[joint].name, NAME_WIDTH, LABEL, false, name, sizeof name);
-    sct_marks_near(scene, scene->at[joint], scene->ring + 2.5, (sct_point){0, 0}, &(sct_run){name, ROLE_SOFT, false},
-                   1);
+    sct_marks_near(scene, scene->at[joint], scene->ring + 2.5, (sct_point){0, 0},
+                   &(sct_word_run){name, ROLE_SOFT, false}, 1);
 }
 
 void sct_marks_joints(sct_scene *scene)

@@ -18,5 +18,5 @@ void sct_marks_left(const sct_scene *scene, sct_text *out);
 
 /** Places one upright line of words about a point, its edge from `distance` off, best towards `way` (a unit vector;
  * {0, 0}: above or below). Returns false when there is no room; otherwise draws it. */
-bool sct_marks_near(sct_scene *scene, sct_point at, double distance, sct_point way, const sct_run runs[], int n);
+bool sct_marks_near(sct_scene *scene, sct_point at, double distance, sct_point way, const sct_word_run runs[], int n);
 #endif

@@ -62,6 +62,26 @@ void sct_quantity_force(sct_quantity out, double newtons, bool us_customary)
     sct_quantity_number(out, size, size < 99.95 ? 1 : 0);
 }
 
+void sct_quantity_moment(sct_quantity out, double newton_metres, bool us_customary)
+{
+    sct_quantity_number(out, fabs(newton_metres) / (us_customary ? KIP * FOOT : 1e3), 1);
+}
+
+void sct_quantity_line_load(sct_quantity out, double newtons_per_metre, bool us_customary)
+{
+    const double size = fabs(newtons_per_metre) / (us_customary ? KIP / FOOT : 1e3);
+    sct_quantity_number(out, size, size < 0.95 ? 2 : 1);
+}
+
+void sct_quantity_stiffness(sct_quantity out, double stiffness, bool of_turning, bool us_customary)
+{
+    const double unit = !us_customary ? 1e3 : of_turning ? KIP * FOOT : KIP / FOOT;
+    const char *name = us_customary ? (of_turning ? "kip ft/rad" : "kip/ft") : (of_turning ? "kNm/rad" : "kN/m");
+    const double size = stiffness / unit;
+    sct_quantity_number(out, size, size < 99.5 ? 1 : 0);
+    with_unit(out, name);
+}
+
 void sct_quantity_movement(sct_quantity out, double metres, bool us_customary)
 {
     sct_quantity_number(out, fabs(metres) / (us_customary ? INCH : 1e-3), us_customary ? 2 : 1);

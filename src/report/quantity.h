@@ -13,6 +13,9 @@ void sct_quantity_number(sct_quantity out, double value, int digits);
 void sct_quantity_length(sct_quantity out, double metres, int digits, bool us_customary);
 /** Size of a force: kN or kip, no decimals from 100 on, one below; without unit. */
 void sct_quantity_force(sct_quantity out, double newtons, bool us_customary);
+/** Size of a moment: kNm or kip ft, of a load along a member: kN/m or kip/ft, 1 decimal; without unit. */
+void sct_quantity_moment(sct_quantity out, double newton_metres, bool us_customary);
+void sct_quantity_line_load(sct_quantity out, double newtons_per_metre, bool us_customary);
 /** Size of a movement: mm with 1 decimal, in with 2; without unit. */
 void sct_quantity_movement(sct_quantity out, double metres, bool us_customary);
 /** A mass with its unit: kg or lb, no decimals. */
@@ -21,6 +24,9 @@ void sct_quantity_mass(sct_quantity out, double kilograms, bool us_customary);
 void sct_quantity_area(sct_quantity out, double square_metres, bool us_customary);
 /** A utilisation, rounded up; "∞" and ">999" where the number would not fit. */
 void sct_quantity_utilisation(sct_quantity out, double utilisation);
+
+/** A stiffness with its unit: kN/m or kNm/rad, kip/ft or kip ft/rad. */
+void sct_quantity_stiffness(sct_quantity out, double stiffness, bool of_turning, bool us_customary);
 
 /** The length unit of the drawing in metres. */
 double sct_length_unit(bool us_customary);

@@ -38,9 +38,24 @@ void sct_project(const sct_result *result, double turn, double tilt, sct_point a
         at[j] = project(result->joints[j].at, turn, tilt, result->dimensions == 3, &away[j]);
 }
 
+void sct_project_flat(sct_scene *scene, int across, int up)
+{
+    const int along = 3 - across - up;
+    const double towards = along == 1 ? 1 : -1; /* seen from below y, from above x and z */
+    scene->is_flat = true;
+    scene->axis[0] = across;
+    scene->axis[1] = up;
+    for (int j = 0; j < scene->result->n_joints; j++) {
+        const double *r = scene->result->joints[j].at;
+        scene->at[j] = (sct_point){r[across], -r[up]};
+        scene->away[j] = towards * r[along];
+    }
+}
+
 sct_point sct_project_direction(const sct_scene *scene, const double direction[3])
 {
     double away;
+    if (scene->is_flat) return (sct_point){direction[scene->axis[0]], -direction[scene->axis[1]]};
     return project(direction, scene->turn, scene->tilt, scene->result->dimensions == 3, &away);
 }
 
@@ -74,14 +89,53 @@ static void find_largest_loads(const sct_result *r, double largest[])
     }
 }
 
+/* The moments at the place that governs stress the member more than the force does. */
+static bool is_mainly_bent(const sct_result *r, const sct_member_result *m)
+{
+    const sct_group_result *g = &r->groups[m->group];
+    double sigma = 0;
+    for (int axis = 0; axis < 2; axis++)
+        if (g->W[axis] > 0) sigma += fabs(m->M[axis]) / g->W[axis];
+    return m->is_bent && sigma > fabs(m->N) / g->A;
+}
+
 static sct_sense sense_of(const sct_result *r, const double largest_load[], int member)
 {
     const sct_member_result *m = &r->members[member];
     double N = m->N;
     if (m->combination < 0 && N == 0) N = fabs(m->N_max) >= fabs(m->N_min) ? m->N_max : m->N_min;
     const double largest = m->combination >= 0 ? largest_load[m->combination] : fmax(fabs(m->N_max), fabs(m->N_min));
+    if (is_mainly_bent(r, m)) return SENSE_BENT;
     if (fabs(N) <= NO_FORCE_MOST && fabs(N) <= NO_FORCE * largest) return SENSE_NONE;
     return N > 0 ? SENSE_TENSION : SENSE_COMPRESSION;
+}
+
+static bool turns_freely(const sct_result *r, const sct_member_result *m, int end)
+{
+    return !m->is_bent || (m->hinged[end][0] && (r->dimensions == 2 || m->hinged[end][1]));
+}
+
+static bool is_sprung(const sct_result *r, const sct_member_result *m, int end)
+{
+    return m->is_bent && (m->sprung[end][0] || (r->dimensions == 3 && m->sprung[end][1]));
+}
+
+/* Which joints are rigid, and how each end meets its joint. */
+static void find_ends(sct_scene *scene)
+{
+    const sct_result *r = scene->result;
+    for (int m = 0; m < r->n_members; m++)
+        for (int end = 0; end < 2; end++)
+            if (!turns_freely(r, &r->members[m], end))
+                scene->is_rigid[end == 0 ? r->members[m].from : r->members[m].to] = true;
+    for (int m = 0; m < r->n_members; m++)
+        for (int end = 0; end < 2; end++) {
+            const int joint = end == 0 ? r->members[m].from : r->members[m].to;
+            scene->sticks[m].end[end] = !scene->is_rigid[joint]                ? END_AT_RING
+                                        : is_sprung(r, &r->members[m], end)    ? END_SPRUNG
+                                        : turns_freely(r, &r->members[m], end) ? END_RELEASED
+                                                                               : END_RIGID;
+        }
 }
 
 static int worst_for_deflection(const sct_result *r)
@@ -108,7 +162,8 @@ static int worst_for_deflection(const sct_result *r)
 
 sct_status sct_scene_open(sct_scene *scene, const sct_result *result, const sct_write_options *options)
 {
-    *scene = (sct_scene){.result = result, .options = {.combination = -1}};
+    *scene = (sct_scene){
+        .result = result, .options = {.combination = -1}, .is_flat = result->dimensions == 2, .axis = {0, 1}};
     if (options != NULL) scene->options = *options;
     scene->arena = sct_arena_new();
     if (scene->arena == NULL) return SCT_NO_MEMORY;
@@ -116,19 +171,22 @@ sct_status sct_scene_open(sct_scene *scene, const sct_result *result, const sct_
     scene->at = sct_arena_array(scene->arena, n_joints, sizeof *scene->at);
     scene->away = sct_arena_array(scene->arena, n_joints, sizeof *scene->away);
     scene->is_named = sct_arena_array(scene->arena, n_joints, sizeof *scene->is_named);
+    scene->is_rigid = sct_arena_array(scene->arena, n_joints, sizeof *scene->is_rigid);
     scene->near_start = sct_arena_array(scene->arena, n_joints + 1, sizeof *scene->near_start);
     scene->near = sct_arena_array(scene->arena, 2 * n_members, sizeof *scene->near);
     scene->sticks = sct_arena_array(scene->arena, n_members, sizeof *scene->sticks);
     scene->lengths = sct_arena_array(scene->arena, n_members, sizeof *scene->lengths);
     double *largest_load = sct_arena_array(scene->arena, (size_t)result->n_combinations, sizeof *largest_load);
     if (largest_load == NULL || scene->lengths == NULL || scene->at == NULL || scene->away == NULL ||
-        scene->is_named == NULL || scene->near_start == NULL || scene->near == NULL || scene->sticks == NULL)
+        scene->is_named == NULL || scene->is_rigid == NULL || scene->near_start == NULL || scene->near == NULL ||
+        scene->sticks == NULL)
         return SCT_NO_MEMORY;
     if (scene->options.combination < 0 || scene->options.combination >= result->n_combinations)
         scene->options.combination = worst_for_deflection(result);
     list_members_at_joints(scene);
     find_largest_loads(result, largest_load);
     for (int m = 0; m < result->n_members; m++) scene->sticks[m].sense = sense_of(result, largest_load, m);
+    find_ends(scene);
     return SCT_OK;
 }
 
@@ -217,6 +275,7 @@ static double choose_depth_factor(const sct_scene *scene)
         const double depth = r->groups[r->members[m].group].depth * scene->scale;
         if (!(depth > 0)) return 0;
         deepest = fmax(deepest, depth);
+        if (scene->sticks[m].length < 1) continue; /* seen along its axis */
         slim = fmin(slim, fmax(DEPTH_MOST_OF_LENGTH * scene->sticks[m].length, TENSION_LEAST) / depth);
     }
     for (size_t i = 0; i < sizeof FACTORS / sizeof *FACTORS; i++)
@@ -301,14 +360,20 @@ static void choose_named(sct_scene *scene)
 
 void sct_scene_lay(sct_scene *scene, sct_point corner, double width, double height)
 {
-    const sct_result *r = scene->result;
     find_bounds(scene);
     const double across = scene->high.x - scene->low.x, down = scene->high.y - scene->low.y;
     /* A lone small frame is not blown up: 6 m fill the sheet, unless members would come out short. */
     const double reasonable = fmax(width / 6, 110 / fmax(median_length(scene), 1e-9));
-    scene->scale = fmin(fmin(width / fmax(across, 1e-9), height / fmax(down, 1e-9)), reasonable);
-    const sct_point shift = {corner.x + 0.5 * (width - scene->scale * across) - scene->scale * scene->low.x,
-                             corner.y - scene->scale * scene->low.y};
+    const double scale = fmin(fmin(width / fmax(across, 1e-9), height / fmax(down, 1e-9)), reasonable);
+    sct_scene_lay_to_scale(scene, (sct_point){corner.x + 0.5 * (width - scale * across), corner.y}, scale);
+}
+
+void sct_scene_lay_to_scale(sct_scene *scene, sct_point corner, double scale)
+{
+    const sct_result *r = scene->result;
+    scene->scale = scale;
+    find_bounds(scene);
+    const sct_point shift = {corner.x - scale * scene->low.x, corner.y - scale * scene->low.y};
     for (int j = 0; j < r->n_joints; j++)
         scene->at[j] = (sct_point){shift.x + scene->scale * scene->at[j].x, shift.y + scene->scale * scene->at[j].y};
     find_bounds(scene);

@@ -117,6 +117,16 @@ void sct_sheet_polygon(sct_sheet *sheet, const sct_point corners[], int n, sct_r
     sct_text_add(out, "/>\n");
 }
 
+void sct_sheet_polyline(sct_sheet *sheet, const sct_point at[], int n, sct_role role, double weight)
+{
+    sct_text *out = &sheet->body;
+    sct_text_add(out, "<path d=\"");
+    for (int i = 0; i < n; i++) point(out, i == 0 ? "M" : "L", at[i]);
+    sct_text_add(out, "\"");
+    paint(out, ROLE_NONE, role, weight);
+    sct_text_add(out, " stroke-linejoin=\"round\"/>\n");
+}
+
 void sct_sheet_path_open(sct_sheet *sheet)
 {
     sct_text_add(&sheet->body, "<path d=\"");
@@ -188,7 +198,7 @@ void sct_sheet_put(sct_sheet *sheet, const sct_sheet *part, sct_point by)
 }
 
 void sct_sheet_runs(sct_sheet *sheet, sct_point at, double size, sct_anchor anchor, double degrees,
-                    const sct_run runs[], int n)
+                    const sct_word_run runs[], int n)
 {
     static const char *const ANCHORS[] = {"", " text-anchor=\"middle\"", " text-anchor=\"end\""};
     sct_text *out = &sheet->body;
@@ -218,7 +228,7 @@ void sct_sheet_runs(sct_sheet *sheet, sct_point at, double size, sct_anchor anch
 
 void sct_sheet_words(sct_sheet *sheet, sct_point at, double size, sct_anchor anchor, sct_role role, const char *words)
 {
-    sct_sheet_runs(sheet, at, size, anchor, 0, &(sct_run){words, role, false}, 1);
+    sct_sheet_runs(sheet, at, size, anchor, 0, &(sct_word_run){words, role, false}, 1);
 }
 
 /* ---- width of words ------------------------------------------------------------------------------------------------
@@ -245,7 +255,7 @@ double sct_words_width(const char *words, double size, bool bold)
     return width * size * (bold ? 1.1 : 1.0);
 }
 
-double sct_runs_width(const sct_run *runs, int n, double size)
+double sct_runs_width(const sct_word_run *runs, int n, double size)
 {
     double width = n > 1 ? 0.33 * size * (n - 1) : 0;
     for (int i = 0; i < n; i++) width += sct_words_width(runs[i].text, size, runs[i].bold);

@@ -22,7 +22,7 @@ typedef enum sct_role {
 } sct_role;
 
 /* Line weights [u]. */
-static const double HAIR = 0.8, THIN = 1.1, MEDIUM = 1.6;
+static const double HAIR = 0.8, THIN = 1.1, MEDIUM = 1.6, THICK = 2.2;
 /* Sizes of type [u]. */
 static const double LABEL = 11, TEXT = 12, HEADING = 16;
 /* The baseline stands this much of the size below the middle of the capitals. */
@@ -40,11 +40,11 @@ typedef struct sct_sheet {
 typedef enum sct_anchor { ANCHOR_START, ANCHOR_MIDDLE, ANCHOR_END } sct_anchor;
 
 /* A run of words in one role; runs of a line are set a third of the size apart. */
-typedef struct sct_run {
+typedef struct sct_word_run {
     const char *text; /* UTF-8, not escaped */
     sct_role role;
     bool bold;
-} sct_run;
+} sct_word_run;
 
 void sct_sheet_line(sct_sheet *sheet, sct_point a, sct_point b, sct_role role, double weight);
 /** Round dots: no force. */
@@ -54,6 +54,9 @@ void sct_sheet_rect(sct_sheet *sheet, sct_point corner, double width, double hei
                     double weight);
 void sct_sheet_polygon(sct_sheet *sheet, const sct_point corners[], int n, sct_role fill, sct_role stroke,
                        double weight);
+
+/** An open line through n points. */
+void sct_sheet_polyline(sct_sheet *sheet, const sct_point at[], int n, sct_role role, double weight);
 
 /** Many strokes as one path: open, strokes, close. */
 void sct_sheet_path_open(sct_sheet *sheet);
@@ -69,12 +72,12 @@ void sct_sheet_put(sct_sheet *sheet, const sct_sheet *part, sct_point by);
 
 /** Words on a baseline through `at`, turned by `degrees` clockwise about it. */
 void sct_sheet_runs(sct_sheet *sheet, sct_point at, double size, sct_anchor anchor, double degrees,
-                    const sct_run runs[], int n);
+                    const sct_word_run runs[], int n);
 void sct_sheet_words(sct_sheet *sheet, sct_point at, double size, sct_anchor anchor, sct_role role, const char *words);
 
 /** Upper bound of the width of one run, and of a line of runs, over the usual system faces. */
 double sct_words_width(const char *words, double size, bool bold);
-double sct_runs_width(const sct_run *runs, int n, double size);
+double sct_runs_width(const sct_word_run *runs, int n, double size);
 
 /** Copies `words` to out, cut with an ellipsis at a character boundary to be at most `width` wide and to fit. */
 void sct_words_fit(const char *words, double width, double size, bool bold, char *out, size_t room);

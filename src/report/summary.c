@@ -128,7 +128,7 @@ static void direction_cell(const sct_page *p, sct_table *t, const double d[3])
 static void deflection_joint_cell(const sct_page *p, sct_table *t, const sct_deflection_result *d)
 {
     sct_text_plain(&t->cells, p->r->joints[d->joint].name, SCT_NAME_COLUMNS);
-    if (p->r->has_bent && d->from >= 0) {
+    if (d->from >= 0) {
         sct_text_add(&t->cells, " relative to ");
         sct_text_plain(&t->cells, p->r->joints[d->from].name, SCT_NAME_COLUMNS);
     }

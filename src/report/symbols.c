@@ -4,7 +4,9 @@
 #include <math.h>
 
 #include "base/number.h"
+#include "held.h"
 #include "quantity.h"
+#include "supports.h"
 
 static const double SIZE = 12;                    /* [u] of a support */
 static const double HEAD = 6.5, HEAD_WIDTH = 4.2; /* [u] of an arrow */
@@ -101,6 +103,17 @@ static sct_point plane_way(const sct_scene *scene, int joint)
     return L > 1e-9 ? (sct_point){way[0] / L, -way[1] / L} : (sct_point){0, 1};
 }
 
+/* Straight across the one member of a column's foot; else as any support. */
+static sct_point fixed_way(const sct_scene *scene, int joint)
+{
+    const int i = scene->near_start[joint];
+    if (scene->near_start[joint + 1] != i + 1) return plane_way(scene, joint);
+    const sct_member_result *m = &scene->result->members[scene->near[i]];
+    const sct_point p = scene->at[joint], q = scene->at[m->from == joint ? m->to : m->from];
+    const double L = fmax(hypot(q.x - p.x, q.y - p.y), 1e-9);
+    return (sct_point){(p.x - q.x) / L, (p.y - q.y) / L};
+}
+
 static void plane_support(sct_scene *scene, int joint)
 {
     sct_sheet *sheet = &scene->sheet;
@@ -179,6 +192,19 @@ static sct_point space_foot(const sct_scene *scene, int joint, double way[3])
     return ahead(scene->at[joint], sct_project_direction(scene, way), SIZE + 2.8);
 }
 
+/* A foot that holds everything: a plate under the joint. */
+static void space_plate(sct_scene *scene, int joint)
+{
+    double way[3], e[2][3];
+    sct_point base[4];
+    support_way(scene, joint, way);
+    base_axes(way, e);
+    const sct_point a = sct_project_direction(scene, e[0]), b = sct_project_direction(scene, e[1]);
+    for (int i = 0; i < 4; i++)
+        base[i] = ahead(ahead(scene->at[joint], a, i == 0 || i == 3 ? -10 : 10), b, i < 2 ? -10 : 10);
+    sct_sheet_polygon(&scene->sheet, base, 4, ROLE_PAGE, ROLE_INK, THICK);
+}
+
 static void space_support(sct_scene *scene, int joint)
 {
     sct_sheet *sheet = &scene->sheet;
@@ -202,15 +228,24 @@ static void space_support(sct_scene *scene, int joint)
 
 void sct_support_draw(sct_scene *scene, int joint)
 {
-    if (scene->result->joints[joint].n_held == 0) return;
-    if (scene->result->dimensions == 3)
-        space_support(scene, joint);
-    else
+    const int turns = sct_support_turns_held(scene->result, joint), n_held = scene->result->joints[joint].n_held;
+    const bool in_space = scene->result->dimensions == 3;
+    if (in_space && turns == 3 && n_held == 3) {
+        space_plate(scene, joint);
+    } else if (in_space) {
+        if (n_held > 0) space_support(scene, joint);
+        if (turns > 0) sct_turns_draw(scene, joint);
+    } else if (turns > 0) {
+        sct_fixed_draw(scene, joint, fixed_way(scene, joint));
+    } else if (n_held > 0) {
         plane_support(scene, joint);
+    }
+    sct_springs_draw(scene, joint);
 }
 
 void sct_support_block(sct_scene *scene, int joint)
 {
+    sct_held_block(scene, joint);
     if (scene->result->joints[joint].n_held == 0) return;
     const sct_point p = scene->at[joint];
     if (scene->result->dimensions == 3) {
@@ -251,7 +286,7 @@ void sct_dimension_words(sct_sheet *sheet, sct_point p, sct_point q, sct_point a
     static const double DEGREES = 57.29577951308232;
     const sct_point middle = {0.5 * (p.x + q.x), 0.5 * (p.y + q.y)};
     sct_sheet_runs(sheet, ahead(middle, left_of(along), 5), TEXT, ANCHOR_MIDDLE, atan2(along.y, along.x) * DEGREES,
-                   &(sct_run){words, ROLE_SOFT, false}, 1);
+                   &(sct_word_run){words, ROLE_SOFT, false}, 1);
 }
 
 void sct_line_round_labels(sct_sheet *sheet, const sct_labels *labels, sct_point p, sct_point q, sct_role role)

@@ -12,7 +12,7 @@
 
 sct_write_options sct_write_defaults(void)
 {
-    return (sct_write_options){.colour = false, .combination = -1, .draw_loads = false, .draw_deflected = false};
+    return (sct_write_options){.combination = -1};
 }
 
 static sct_status write_model(const sct_result *result, sct_text *out)
