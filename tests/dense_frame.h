@@ -43,9 +43,10 @@ static inline void dense_bending(dense_element K, int v, int r, double sign, dou
         }
 }
 
+/* Free to twist at an end, it resists no twist at the other; then it must have no moment about its axis. */
 static inline bool dense_spins(const sct_member *m)
 {
-    return m->end[0].fixity[SCT_TWIST] == SCT_PINNED && m->end[1].fixity[SCT_TWIST] == SCT_PINNED;
+    return m->end[0].fixity[SCT_TWIST] == SCT_PINNED || m->end[1].fixity[SCT_TWIST] == SCT_PINNED;
 }
 
 static inline void dense_stiffness(const dense_frame *d, int e, dense_element K)

@@ -6,11 +6,12 @@
 
 /* What a random frame goes without. */
 enum {
-    RF_WEIGHTLESS = 1,  /* no own weight */
-    RF_ROUND = 2,       /* second moments in plane and out of plane are the same */
-    RF_NO_MOMENTS = 4,  /* no moments on members */
-    RF_NO_ELASTIC = 8,  /* no elastic supports, no sprung ends */
-    RF_FORCES_ONLY = 16 /* no third case */
+    RF_WEIGHTLESS = 1,   /* no own weight */
+    RF_ROUND = 2,        /* second moments in plane and out of plane are the same */
+    RF_NO_MOMENTS = 4,   /* no moments on members */
+    RF_NO_ELASTIC = 8,   /* no elastic supports, no sprung ends */
+    RF_FORCES_ONLY = 16, /* no third case */
+    RF_NO_HUNG = 32      /* every joint turns about all axes */
 };
 
 static inline void rf_direction(sct_random *r, int dim, double v[3])
@@ -127,7 +128,8 @@ static inline void rf_member_load(sct_random *r, sct_model *m, int k, int e, uns
         for (int i = 0; i < 3; i++) load->M[i] = between(r, -1e4, 1e4);
 }
 
-static inline void rf_cases(sct_random *r, sct_model *m, unsigned without)
+/* The first n_rigid joints take any moment. */
+static inline void rf_cases(sct_random *r, sct_model *m, int n_rigid, unsigned without)
 {
     const int dim = m->dimensions;
     mb_case(m, without & RF_WEIGHTLESS ? 0.0 : 1.2);
@@ -135,7 +137,7 @@ static inline void rf_cases(sct_random *r, sct_model *m, unsigned without)
     for (int j = 1; j < m->n_joints; j++) {
         mb_load(m, 0, j, between(r, -1e4, 1e4), between(r, -1e4, 1e4), dim == 3 ? between(r, -1e4, 1e4) : 0.0);
         const double M = between(r, -1e4, 1e4);
-        if (below(r, 2) == 0) mb_moment(m, 0, j, dim == 3 ? M / 2 : 0.0, dim == 3 ? -M / 3 : 0.0, M);
+        if (j < n_rigid && below(r, 2) == 0) mb_moment(m, 0, j, dim == 3 ? M / 2 : 0.0, dim == 3 ? -M / 3 : 0.0, M);
     }
     for (int i = 0; i < m->n_members; i++) rf_member_load(r, m, 1, below(r, m->n_members), without);
     if (without & RF_FORCES_ONLY) return;
@@ -150,10 +152,29 @@ static inline void rf_cases(sct_random *r, sct_model *m, unsigned without)
     for (int i = dim == 2 ? 2 : 0; i < 3; i++) turn[i] = between(r, -1e-3, 1e-3);
 }
 
+/* One more joint, tied to some of the first n by `dim` members well apart in direction, whose ends may be pinned: it
+ * may turn about one axis or two, or none. */
+static inline void rf_hang(sct_random *r, sct_model *m, int n, unsigned without)
+{
+    const int dim = m->dimensions;
+    int j, others[3] = {0, 0, 0};
+    if (n < dim) return;
+    for (;;) {
+        j = rf_joint(r, m);
+        for (int i = 0; i < dim; i++) others[i] = below(r, n);
+        const bool differ = others[0] != others[1] && (dim == 2 || (others[0] != others[2] && others[1] != others[2]));
+        if (differ && spread(m, j, others) > 0.2) break;
+        m->n_joints--;
+    }
+    for (int i = 0; i < dim; i++) rf_member(r, m, others[i], j, 0.6, without);
+    if (below(r, 3) == 0) rf_support(r, m, j, without);
+}
+
 /**
  * A stable frame: joint 0 is fixed; every other joint hangs on an earlier one by a beam whose ends are fixed or sprung;
- * `extra` more members have any ends, or are bars. Three to five groups, the last one held. Three cases: own weight
- * with loads at joints; loads on members; temperature, lack of fit and a settlement.
+ * `extra` more members have any ends, or are bars; up to two joints more hang on members with any ends. Three to five
+ * groups, the last one held. Three cases: own weight with loads at joints; loads on members; temperature, lack of fit
+ * and a settlement.
  */
 static inline sct_model *rf_frame(sct_random *r, int dim, int n_joints, int extra, unsigned without)
 {
@@ -183,7 +204,9 @@ static inline sct_model *rf_frame(sct_random *r, int dim, int n_joints, int extr
         const int a = below(r, n_joints), b = below(r, n_joints);
         if (a != b && !rf_are_joined(m, a, b)) rf_member(r, m, a, b, below(r, 3) == 0 ? 1.0 : 0.4, without);
     }
-    rf_cases(r, m, without);
+    const int n_hung = below(r, 3);
+    for (int i = 0; i < n_hung && !(without & RF_NO_HUNG); i++) rf_hang(r, m, n_joints, without);
+    rf_cases(r, m, n_joints, without);
     return m;
 }
 

@@ -88,18 +88,19 @@ static int split_member(sct_model *m, int e, double t)
 }
 
 /* Own weight bends a bar's pieces, which it does not do to the bar: beams only. Everywhere but in the member that was
- * cut the comparison is the common one. */
+ * cut the comparison is the common one. (Where a joint does not turn about the member's axis, the new one would spin.)
+ */
 RELATION(a_joint_within_a_member_changes_nothing, 1e-11)
 {
     sct_random r = {seed};
-    frame a = frame_solve(rf_any(seed, 0));
+    frame a = frame_solve(rf_any(seed, RF_NO_HUNG));
     const int e = below(&r, a.s.st->n_bars);
     const double t = between(&r, 0.1, 0.9), L = a.s.st->bars[e].L;
     if (a.s.st->bars[e].n == 0) {
         frame_free(&a);
         return DOES_NOT_APPLY;
     }
-    sct_model *m = rf_any(seed, 0);
+    sct_model *m = rf_any(seed, RF_NO_HUNG);
     const int beyond = split_member(m, e, t);
     frame b = frame_solve(m);
     double most = 0.0;
@@ -172,7 +173,7 @@ RELATION(a_round_section_may_be_rolled, 1e-11)
 static sct_model *with_ends(uint64_t seed, double k, sct_fixity instead)
 {
     sct_random r = {seed};
-    sct_model *m = rf_any(seed, RF_WEIGHTLESS);
+    sct_model *m = rf_any(seed, RF_WEIGHTLESS | RF_NO_HUNG);
     for (int e = 0; e < m->n_members; e++) {
         const bool is_of_tree = e < m->n_joints - 1;
         for (int end = 0; end < 2; end++)
