@@ -302,6 +302,21 @@ typedef struct sct_bow_result {
     const char *run;   /* its name, or NULL */
 } sct_bow_result;
 
+/* Elastic critical load factors of one combination in which strength is checked: its loads times the factor would make
+ * the structure buckle. Beams divided into eight pieces; torsional and local buckling and that of pin-ended members
+ * between their joints are not in it. */
+typedef struct sct_critical_result {
+    int combination;
+    double factor;        /* the lowest; INFINITY: nothing buckles */
+    double error;         /* an exact one (of the divided structure) lies within factor / (1 -+ error) */
+    bool is_proven;       /* no lower one exists */
+    double sway;          /* of the lowest mode in which joints sway */
+    bool is_sway_bound;   /* it lies above that */
+    double amplification; /* of moments in the checks: 1/(1 - 1/sway) where the model asks for it, else 1 */
+    bool has_verdict;     /* false: first-order results say too little, or the structure buckles */
+    const char *words;    /* what the factor says about first-order results */
+} sct_critical_result;
+
 /* The price of a limit that holds the mass up, at the continuous optimum: what the next small relief would save. */
 typedef struct sct_price {
     sct_check_kind kind;
@@ -357,6 +372,11 @@ typedef struct sct_result {
                    * just inside both ends of a member */
     int n_bows;
     sct_bow_result *bows;
+    int n_criticals; /* 0: pin-ended members only, and no limit on it */
+    sct_critical_result *criticals;
+    double least_factor;               /* that the model asks for; NAN: none */
+    double frequency, least_frequency; /* [Hz] lowest natural one; NAN: no limit */
+    double vibrating_mass;             /* [kg] that it was found with */
 
     int n_deflections;
     sct_deflection_result *deflections;

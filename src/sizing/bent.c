@@ -86,6 +86,7 @@ void sct_bent_places(const sct_bent_member *member, const sct_bar_rule *rule, co
     for (sct_bent_kind kind = 0; kind < SCT_BENT_KINDS; kind++) {
         sct_bent_coefficients of;
         if (!sct_bent_coefficients_of(rule, kind, shape, &of)) continue;
+        for (int plane = 0; plane < 2; plane++) of.c[1 + plane] *= member->amplification;
         if (kind == SCT_BENT_BUCKLING && c.N == 0.0) continue;
         at_end(&c, kind, &of, false, &places[SCT_BENT_FROM]);
         at_end(&c, kind, &of, true, &places[SCT_BENT_TO]);

@@ -26,8 +26,9 @@ typedef struct sct_bent_member {
     sct_member_lines *lines;
     const sct_structure *st;
     int bar, combination;
-    const double *S; /* n_springs, of the combination */
-    double A;        /* [m2] for its own weight */
+    const double *S;      /* n_springs, of the combination */
+    double A;             /* [m2] for its own weight */
+    double amplification; /* of moments, in checks */
 } sct_bent_member;
 
 void sct_bent_places(const sct_bent_member *member, const sct_bar_rule *rule, const sct_shape *shape,

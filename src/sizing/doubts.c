@@ -88,3 +88,16 @@ sct_status sct_doubts_keep(sct_result *r, const sct_issues *issues)
     }
     return SCT_OK;
 }
+
+void sct_doubt_sway(const sct_result *r, sct_issues *issues)
+{
+    for (int k = 0; k < r->n_criticals; k++) {
+        const sct_critical_result *c = &r->criticals[k];
+        const sct_second_order order = sct_second_order_of(c->sway / (1.0 + c->error), r->model->amplifies);
+        if (order.kind != SCT_UNAMPLIFIED) continue;
+        sct_issue_add(issues, SCT_WARNING, r->model->combinations[c->combination].where,
+                      "combination \"%s\": the critical load factor of sway is %s%.1f; %s",
+                      sct_show(r->combinations[c->combination]).text, c->is_sway_bound ? "above " : "", c->sway,
+                      order.words);
+    }
+}

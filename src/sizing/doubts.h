@@ -16,4 +16,7 @@ void sct_doubt_movement(const sct_result *result, sct_issues *issues);
 
 /** Copies the warnings into the result. SCT_OK, SCT_NO_MEMORY. */
 sct_status sct_doubts_keep(sct_result *result, const sct_issues *issues);
+
+/** Warns of combinations in which sway adds to the moments and is left out. */
+void sct_doubt_sway(const sct_result *result, sct_issues *issues);
 #endif

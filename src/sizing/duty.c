@@ -78,7 +78,7 @@ static sct_status fill(sct_duty *duty, sct_engine engine)
     }
     for (int c = 0; c < st->n_combinations; c++)
         if (model->combinations[c].basis == SCT_ALLOWABLE) duty->allowable[duty->n_allowable++] = c;
-    return SCT_OK;
+    return sct_whole_new(st, engine, duty->n_allowable, duty->allowable, &duty->whole);
 }
 
 sct_duty *sct_duty_new(const sct_structure *st, sct_engine engine, sct_status *status)
@@ -96,6 +96,7 @@ sct_duty *sct_duty_new(const sct_structure *st, sct_engine engine, sct_status *s
 void sct_duty_free(sct_duty *duty)
 {
     if (duty == NULL) return;
+    sct_whole_free(duty->whole);
     sct_member_lines_free(duty->lines);
     sct_solver_free(duty->solver);
     sct_response_free(&duty->response);
@@ -218,20 +219,36 @@ void sct_duty_gather(sct_duty *duty)
     for (int c = 0; c < st->n_combinations; c++) gather_forces(duty, c);
     for (int r = 0; r < duty->n_rows; r++) duty->u[r] = row_displacement(duty, &duty->rows[r]);
     gather_compression(duty);
+    duty->has_whole = false;
+}
+
+sct_status sct_duty_find_whole(sct_duty *duty, sct_mode_search how)
+{
+    if (duty->whole == NULL || (duty->has_whole && how != SCT_MODES_PROVEN)) return SCT_OK;
+    const sct_status status = sct_whole_analyse(duty->whole, duty->solver, &duty->response, how);
+    duty->has_whole = status == SCT_OK;
+    return status;
+}
+
+/* What the search goes by: only where something depends on it. */
+static sct_status finish(sct_duty *duty)
+{
+    const sct_model *model = duty->st->model;
+    sct_duty_gather(duty);
+    if (!sct_whole_is_limited(model) && !sct_whole_amplifies(model)) return SCT_OK;
+    return sct_duty_find_whole(duty, SCT_MODES_COLD);
 }
 
 sct_status sct_duty_analyse_areas(sct_duty *duty, const double A[])
 {
     const sct_status status = sct_solver_analyse(duty->solver, A, &duty->response);
-    if (status == SCT_OK) sct_duty_gather(duty);
-    return status;
+    return status == SCT_OK ? finish(duty) : status;
 }
 
 sct_status sct_duty_analyse_sizes(sct_duty *duty, const sct_properties sizes[])
 {
     const sct_status status = sct_solver_analyse_sizes(duty->solver, sizes, &duty->response);
-    if (status == SCT_OK) sct_duty_gather(duty);
-    return status;
+    return status == SCT_OK ? finish(duty) : status;
 }
 
 sct_status sct_duty_analyse(sct_duty *duty, const sct_design *design)
@@ -253,7 +270,9 @@ sct_bent_member sct_duty_bent_member(const sct_duty *duty, int bar, int combinat
                              .bar = bar,
                              .combination = combination,
                              .S = duty->S + (size_t)combination * (size_t)duty->st->n_springs,
-                             .A = sct_solver_areas(duty->solver)[duty->st->bars[bar].group]};
+                             .A = sct_solver_areas(duty->solver)[duty->st->bars[bar].group],
+                             .amplification =
+                                 duty->has_whole ? sct_whole_amplification(duty->whole, combination) : 1.0};
 }
 
 static double bent_utilisation(const sct_duty *duty, int bar, int combination, const sct_shape *shape)
@@ -310,5 +329,6 @@ double sct_duty_utilisation(const sct_duty *duty, const sct_design *design)
         const sct_shape shape = sct_design_shape(design, duty->st->bars[duty->bows[r].bar].group);
         most = sct_worse(most, sct_duty_bow_utilisation(duty, r, &shape));
     }
+    if (duty->has_whole) most = sct_worse(most, sct_whole_utilisation(duty->whole));
     return most;
 }

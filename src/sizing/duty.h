@@ -9,6 +9,7 @@
 
 #include "analysis/solver.h"
 #include "sizing/bow.h"
+#include "sizing/whole.h"
 
 /* The sizes of all groups with their true properties. */
 typedef struct sct_design {
@@ -39,6 +40,8 @@ typedef struct sct_duty {
     int n_bows;
     sct_bow_row *bows;
     sct_member_lines *lines;
+    sct_whole *whole; /* NULL: nothing to look at */
+    bool has_whole;   /* it is that of the latest analysis */
     /* of the latest analysis */
     sct_response response;
     double *N;                 /* n_combinations x n_bars; forces below 1e-9 of the largest are given as 0 */
@@ -101,6 +104,10 @@ double sct_duty_bow_utilisation(const sct_duty *duty, int row, const sct_shape *
 /** Utilisation of one deflection row at the latest analysis. */
 double sct_duty_row_utilisation(const sct_duty *duty, int row);
 
-/** Largest utilisation of all bars and rows at the latest analysis. */
+/** Critical load factors and frequency of the latest analysis, looked for when they are asked for. how: COLD while
+ * searching, PROVEN for what is reported. */
+sct_status sct_duty_find_whole(sct_duty *duty, sct_mode_search how);
+
+/** Largest utilisation of all bars, rows, bows, and of limits on the whole at the latest analysis. */
 double sct_duty_utilisation(const sct_duty *duty, const sct_design *design);
 #endif

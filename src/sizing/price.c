@@ -101,6 +101,20 @@ static void price_bow(sct_result *r, const sct_duty *duty, int limit, const tall
     r->prices[r->n_prices++] = price;
 }
 
+static void price_whole(sct_result *r, bool is_frequency, const tally *t)
+{
+    sct_price price = {.kind = is_frequency ? SCT_CHECK_FREQUENCY : SCT_CHECK_CRITICAL,
+                       .group = -1,
+                       .limit = -1,
+                       .multiplier = t->sum,
+                       .per_unit = NAN,
+                       .saving = PERCENT * t->sum};
+    sct_number_format(price.words, sizeof price.words, "1 %% lower %s saves %s",
+                      is_frequency ? "least frequency" : "least critical load factor",
+                      shown_mass(r, price.saving).text);
+    r->prices[r->n_prices++] = price;
+}
+
 /* The end of a variable's range: a size, or what slenderness leaves of it. A free area has i^2 = c A, so that 1 % more
  * slenderness is 2 % less area; a ladder moves by rungs, so that only the area can be priced. */
 static void price_bound(sct_result *r, const sct_duty *duty, int group, bool upper, sct_bound_source source, double s,
@@ -153,9 +167,9 @@ sct_status sct_prices(const sct_problem *P, const sct_duty *duty, const double m
     const size_t n_pairs = (size_t)n_groups * (size_t)kinds;
     tally *group = calloc(n_pairs + 1, sizeof *group);
     tally *limit = calloc((size_t)model->n_deflections + (size_t)model->n_bows + 1, sizeof *limit);
-    tally *bow = limit + model->n_deflections;
+    tally *bow = limit + model->n_deflections, whole[2] = {{0}};
     /* of each group: tension, compression, two columns, three with bending, one bound */
-    const size_t most = (size_t)n_groups * 8 + (size_t)model->n_deflections + (size_t)model->n_bows;
+    const size_t most = (size_t)n_groups * 8 + (size_t)model->n_deflections + (size_t)model->n_bows + 2;
     r->prices = sct_result_array(r, most, sizeof *r->prices);
     sct_status status = group == NULL || limit == NULL || r->prices == NULL ? SCT_NO_MEMORY : SCT_OK;
     const int m = sct_problem_nlp(P)->m;
@@ -164,10 +178,11 @@ sct_status sct_prices(const sct_problem *P, const sct_duty *duty, const double m
         const sct_constraint c = sct_problem_constraint(P, j);
         tally *t = c.bar >= 0   ? &group[(size_t)duty->st->bars[c.bar].group * (size_t)kinds + (size_t)c.need.kind]
                    : c.row >= 0 ? &limit[duty->rows[c.row].limit]
-                                : &bow[duty->bows[c.bow].limit];
+                   : c.bow >= 0 ? &bow[duty->bows[c.bow].limit]
+                                : &whole[c.need.kind == SCT_CHECK_FREQUENCY];
         t->sum += mu[j];
         t->length += mu[j] * c.need.sL;
-        if (c.bar < 0 && mu[j] > t->most) {
+        if ((c.row >= 0 || c.bow >= 0) && mu[j] > t->most) {
             t->most = mu[j];
             t->joint = c.row >= 0 ? duty->rows[c.row].joint : duty->bows[c.bow].bar;
         }
@@ -176,6 +191,8 @@ sct_status sct_prices(const sct_problem *P, const sct_duty *duty, const double m
         if (limit[k].sum >= LEAST * r->mass_continuous) price_deflection(r, duty, k, &limit[k]);
     for (int k = 0; status == SCT_OK && k < model->n_bows; k++)
         if (bow[k].sum >= LEAST * r->mass_continuous) price_bow(r, duty, k, &bow[k]);
+    for (int k = 0; status == SCT_OK && k < 2; k++)
+        if (whole[k].sum >= LEAST * r->mass_continuous) price_whole(r, k == 1, &whole[k]);
     for (size_t k = 0; status == SCT_OK && k < n_pairs; k++)
         if (group[k].sum >= LEAST * r->mass_continuous)
             price_group(r, (int)(k / (size_t)kinds), (sct_check_kind)(k % (size_t)kinds), &group[k]);

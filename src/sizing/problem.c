@@ -17,10 +17,9 @@ struct sct_problem {
     const sct_structure *st;
     sct_arena *arena;
     bool plain;
-    /* variables; constraints: bars, deflections, members that carry moments (three places each), bows; where each
-     * begins
-     */
-    int n, n_bar_rows, first_bent, first_bow;
+    /* variables; constraints: bars, deflections, members that carry moments (three places each), bows, critical load
+     * factors (some modes of each combination for strength), frequency; where each begins */
+    int n, n_bar_rows, first_bent, first_bow, first_factor, first_frequency;
     bool *is_fixed; /* n_groups: true properties below, no envelope */
     sct_design fixed;
     sct_group_curves *curves; /* n_groups */
@@ -42,15 +41,23 @@ struct sct_problem {
     bool needs_shapes;     /* some member is a beam or carries moments */
     double *g;             /* all constraints, log form */
     bool have_du;
+    bool have_whole_slopes;
+    double *whole_slopes,
+        *sway_slopes; /* of the rows from first_factor on, x n; of the amplifications, n_allowable x n */
     double *du, *part, *row, *cross, *moving; /* n_cases x n_dof x n; n; n; n; n */
     double *wN, *wu, *work;                   /* weights for the curvature */
 };
 
-typedef enum row_kind { BAR_ROW, DEFLECTION_ROW, BENT_ROW, BOW_ROW } row_kind;
+typedef enum row_kind { BAR_ROW, DEFLECTION_ROW, BENT_ROW, BOW_ROW, FACTOR_ROW, FREQUENCY_ROW } row_kind;
 
 static row_kind kind_of(const sct_problem *P, int j)
 {
-    return j < P->n_bar_rows ? BAR_ROW : j < P->first_bent ? DEFLECTION_ROW : j < P->first_bow ? BENT_ROW : BOW_ROW;
+    return j < P->n_bar_rows        ? BAR_ROW
+           : j < P->first_bent      ? DEFLECTION_ROW
+           : j < P->first_bow       ? BENT_ROW
+           : j < P->first_factor    ? BOW_ROW
+           : j < P->first_frequency ? FACTOR_ROW
+                                    : FREQUENCY_ROW;
 }
 
 static const sct_deflection_row *deflection_of(const sct_problem *P, int j)
@@ -73,7 +80,7 @@ static int bar_of(const sct_problem *P, int j)
 {
     const row_kind kind = kind_of(P, j);
     if (kind == BENT_ROW) return P->duty->bent[bent_index(P, j) % P->duty->n_bent];
-    return kind == BAR_ROW ? j % P->st->n_bars : kind == BOW_ROW ? bow_of(P, j)->bar : -1;
+    return kind == BAR_ROW ? j % P->st->n_bars : kind == BOW_ROW ? bow_of(P, j)->bar : -1; /* -1: none */
 }
 
 static int combination_of(const sct_problem *P, int j)
@@ -82,7 +89,9 @@ static int combination_of(const sct_problem *P, int j)
     case BAR_ROW: return P->duty->allowable[j / P->st->n_bars];
     case DEFLECTION_ROW: return deflection_of(P, j)->combination;
     case BENT_ROW: return P->duty->allowable[bent_index(P, j) / P->duty->n_bent];
-    default: return bow_of(P, j)->combination;
+    case BOW_ROW: return bow_of(P, j)->combination;
+    case FACTOR_ROW: return P->duty->allowable[(j - P->first_factor) / SCT_WHOLE_MODES];
+    default: return -1;
     }
 }
 
@@ -145,12 +154,25 @@ static double bent_constraint(sct_problem *P, int j)
     return log(P->place[k].utilisation);
 }
 
+static double whole_constraint(sct_problem *P, int j)
+{
+    double g[SCT_WHOLE_MODES];
+    const int k = (j - P->first_factor) / SCT_WHOLE_MODES, mode = (j - P->first_factor) % SCT_WHOLE_MODES;
+    const bool is_factor = j < P->first_frequency;
+    const sct_status status =
+        is_factor ? sct_whole_factor_limits(P->duty->whole, P->duty->solver, &P->duty->response, k, g, NULL)
+                  : sct_whole_frequency_limit(P->duty->whole, g, NULL);
+    return status == SCT_OK ? g[is_factor ? mode : 0] : (double)NAN;
+}
+
 static double constraint(sct_problem *P, int j)
 {
     switch (kind_of(P, j)) {
     case BAR_ROW: return bar_constraint(P, j);
     case DEFLECTION_ROW: return log(sct_duty_row_utilisation(P->duty, j - P->n_bar_rows));
     case BENT_ROW: return bent_constraint(P, j);
+    case FACTOR_ROW:
+    case FREQUENCY_ROW: return whole_constraint(P, j);
     default:
         return log(sct_duty_bow_utilisation(P->duty, j - P->first_bow, &P->shape[P->st->bars[bar_of(P, j)].group]));
     }
@@ -177,7 +199,7 @@ sct_status sct_problem_analyse(sct_problem *P, const double x[])
 static sct_status judge(sct_problem *P, const double x[])
 {
     const sct_structure *st = P->st;
-    P->have_value = P->have_du = false;
+    P->have_value = P->have_du = P->have_whole_slopes = false;
     const sct_status status = sct_problem_analyse(P, x);
     if (status != SCT_OK) return status;
     P->f = 0.0;
@@ -259,6 +281,35 @@ static sct_status need_du(sct_problem *P)
     return status;
 }
 
+/* Derivatives of the limits on the whole, and of what moments are amplified by. */
+static sct_status need_whole_slopes(sct_problem *P)
+{
+    sct_duty *duty = P->duty;
+    double g[SCT_WHOLE_MODES], *slopes = P->whole_slopes;
+    const size_t n = (size_t)P->n;
+    sct_status status = SCT_OK;
+    if (P->have_whole_slopes) return SCT_OK;
+    for (int j = P->first_factor; j < P->first_frequency && status == SCT_OK; j += SCT_WHOLE_MODES) {
+        const int k = (j - P->first_factor) / SCT_WHOLE_MODES;
+        status = sct_whole_factor_limits(duty->whole, duty->solver, &duty->response, k, g, slopes);
+        slopes += SCT_WHOLE_MODES * n;
+    }
+    if (status == SCT_OK && P->first_frequency < P->nlp.m) status = sct_whole_frequency_limit(duty->whole, g, slopes);
+    for (int k = 0; k < duty->n_allowable && status == SCT_OK && sct_whole_amplifies(P->st->model); k++)
+        status = sct_whole_amplification_slope(duty->whole, duty->solver, &duty->response, k,
+                                               P->sway_slopes + (size_t)k * n);
+    P->have_whole_slopes = status == SCT_OK;
+    return status;
+}
+
+/* The part of a bent member's utilisation that moments make goes with their amplification. */
+static void add_amplification(const sct_problem *P, int j, double row[])
+{
+    const sct_bent_place *place = &P->place[j - P->first_bent];
+    const double part = (place->c[1] * place->q[1] + place->c[2] * place->q[2]) / place->utilisation;
+    sct_axpy(P->n, part, P->sway_slopes + (size_t)(bent_index(P, j) / P->duty->n_bent) * (size_t)P->n, row);
+}
+
 static sct_status gradient(void *user, const double x[], int n_rows, const int rows[], double df[], double *dg)
 {
     sct_problem *P = user;
@@ -267,7 +318,8 @@ static sct_status gradient(void *user, const double x[], int n_rows, const int r
         const double w = P->duty->unit_mass[st->group_of_var[v]];
         df[v] = P->plain ? w * P->ref[v] / P->mass_unit : w * P->A[st->group_of_var[v]];
     }
-    const sct_status status = n_rows > 0 ? need_du(P) : SCT_OK;
+    sct_status status = n_rows > 0 ? need_du(P) : SCT_OK;
+    if (status == SCT_OK && n_rows > 0) status = need_whole_slopes(P);
     if (status != SCT_OK) return status;
     const sct_form_source source = source_of(P);
     for (int r = 0; r < n_rows; r++) {
@@ -277,10 +329,15 @@ static sct_status gradient(void *user, const double x[], int n_rows, const int r
             memset(row, 0, (size_t)P->n * sizeof *row);
             continue;
         }
-        const sct_form form = form_of(P, j);
-        const double slope = (j < P->n_bar_rows ? P->need[j].s1 : 1.0) / form.value;
-        sct_form_gradient(&form, &source, row);
-        for (int v = 0; v < P->n; v++) row[v] *= slope;
+        if (j >= P->first_factor) {
+            memcpy(row, P->whole_slopes + (size_t)(j - P->first_factor) * (size_t)P->n, (size_t)P->n * sizeof *row);
+        } else {
+            const sct_form form = form_of(P, j);
+            const double slope = (j < P->n_bar_rows ? P->need[j].s1 : 1.0) / form.value;
+            sct_form_gradient(&form, &source, row);
+            for (int v = 0; v < P->n; v++) row[v] *= slope;
+        }
+        if (kind_of(P, j) == BENT_ROW && sct_whole_amplifies(st->model)) add_amplification(P, j, row);
         if (j < P->n_bar_rows) {
             const int own = st->var_of_group[st->bars[bar_of(P, j)].group];
             if (own >= 0) row[own] -= 1.0;
@@ -307,7 +364,7 @@ static sct_status curvature(void *user, const double x[], int n_rows, const int 
     const sct_form_source source = source_of(P);
     for (int r = 0; r < n_rows; r++) {
         const int j = rows[r];
-        if (mu[r] == 0.0 || P->g[j] <= INACTIVE) continue;
+        if (mu[r] == 0.0 || P->g[j] <= INACTIVE || j >= P->first_factor) continue; /* ln alpha is nearly linear in z */
         const sct_form form = form_of(P, j);
         const double q = form.value;
         const bool is_bar = j < P->n_bar_rows;
@@ -461,14 +518,16 @@ static sct_status allocate(sct_problem *P)
     const sct_structure *st = P->st;
     const size_t n = (size_t)P->n, n_groups = (size_t)st->n_groups, n_cases = (size_t)st->n_cases;
     const size_t n_dof = (size_t)st->n_dof, n_springs = (size_t)st->n_springs, m = (size_t)P->nlp.m;
-    const size_t n_places = (size_t)(P->first_bow - P->first_bent);
+    const size_t n_places = (size_t)(P->first_bow - P->first_bent), n_whole = (size_t)(P->nlp.m - P->first_factor);
+    const size_t n_sway = sct_whole_amplifies(st->model) ? (size_t)P->duty->n_allowable : 0;
     sct_arena *a = P->arena;
 #define ARRAY(what, count) ((P->what = sct_arena_array(a, (count), sizeof *P->what)) != NULL)
     const bool ok = ARRAY(is_fixed, n_groups) && ARRAY(curves, n_groups) && ARRAY(lower, n) && ARRAY(upper, n) &&
                     ARRAY(source, n) && ARRAY(x_lower, n) && ARRAY(x_upper, n) && ARRAY(ref, n) && ARRAY(cluster, m) &&
                     ARRAY(x, n) && ARRAY(A, n_groups) && ARRAY(need, (size_t)P->n_bar_rows) && ARRAY(g, m) &&
                     ARRAY(du, n_cases * n_dof * n) && ARRAY(part, n) && ARRAY(row, n) && ARRAY(cross, n) &&
-                    ARRAY(moving, n) && ARRAY(place, n_places) && ARRAY(shape, n_groups) && ARRAY(sizes, n_groups) &&
+                    ARRAY(whole_slopes, n_whole * n) && ARRAY(sway_slopes, n_sway * n) && ARRAY(moving, n) &&
+                    ARRAY(place, n_places) && ARRAY(shape, n_groups) && ARRAY(sizes, n_groups) &&
                     ARRAY(wN, n_cases * n_springs) && ARRAY(wu, n_cases * n_dof) && ARRAY(work, n_cases * n_dof);
 #undef ARRAY
     if (!ok) return SCT_NO_MEMORY;
@@ -485,8 +544,12 @@ static sct_status build(sct_problem *P, const bool compressed[], const bool is_f
     P->n_bar_rows = P->duty->n_allowable * st->n_bars;
     P->first_bent = P->n_bar_rows + P->duty->n_rows;
     P->first_bow = P->first_bent + P->duty->n_allowable * P->duty->n_bent * SCT_BENT_PLACES;
-    P->needs_shapes = P->duty->n_bent > 0 || st->n_springs > st->n_bars;
-    P->nlp = (sct_nlp){.n = P->n, .m = P->first_bow + P->duty->n_bows, .user = P, .value = value, .gradient = gradient};
+    P->first_factor = P->first_bow + P->duty->n_bows;
+    P->first_frequency = P->first_factor + (st->model->least_factor > 0.0 ? P->duty->n_allowable * SCT_WHOLE_MODES : 0);
+    const int has_frequency = st->model->least_frequency > 0.0;
+    P->needs_shapes = P->duty->n_bent > 0 || P->duty->whole != NULL || st->n_springs > st->n_bars;
+    P->nlp =
+        (sct_nlp){.n = P->n, .m = P->first_frequency + has_frequency, .user = P, .value = value, .gradient = gradient};
     sct_status status = allocate(P);
     if (status != SCT_OK) return status;
     set_fixed(P, is_fixed, fixed);
@@ -618,6 +681,8 @@ sct_constraint sct_problem_constraint(const sct_problem *P, int j)
         c.bar = -1;
         c.need.kind = SCT_CHECK_BOW;
         break;
+    case FACTOR_ROW: c.need.kind = SCT_CHECK_CRITICAL; break;
+    case FREQUENCY_ROW: c.need.kind = SCT_CHECK_FREQUENCY; break;
     }
     return c;
 }

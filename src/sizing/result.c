@@ -263,72 +263,8 @@ sct_status sct_result_new(const sct_duty *duty, const sct_design *design, sct_ac
         return SCT_NO_MEMORY;
     }
     r->kept = sct_keeps(r->utilisation_at_most); /* kept only when the error does not matter */
+    for (int k = 0; k < r->n_criticals; k++) r->kept = r->kept && r->criticals[k].has_verdict;
     sct_result_judge(r, false);
     *result = r;
     return SCT_OK;
-}
-
-/* Utilisation for a sentence: two decimals upwards, and never a pass when it is none. */
-static double shown(double utilisation)
-{
-    const double up = ceil(100.0 * utilisation * (1.0 - 1e-9)) / 100.0;
-    return utilisation > 1.0 && up < 1.01 ? 1.01 : up;
-}
-
-void sct_result_judge(sct_result *r, bool at_smallest)
-{
-    int bar = -1, row = -1;
-    double most = 0.0;
-    for (int k = 0; k < r->n_members; k++)
-        if (!(r->members[k].utilisation <= most)) {
-            most = r->members[k].utilisation;
-            bar = k;
-        }
-    for (int k = 0; k < r->n_deflections; k++)
-        if (!(r->deflections[k].utilisation <= most)) {
-            most = r->deflections[k].utilisation;
-            row = k;
-        }
-    char what[800] = "";
-    if (row >= 0) {
-        const sct_deflection_result *d = &r->deflections[row];
-        sct_number_format(what, sizeof what, "deflection (%.40s) of joint \"%s\" in \"%s\"", d->label,
-                          sct_show(r->joints[d->joint].name).text, sct_show(r->combinations[d->combination]).text);
-    } else if (bar >= 0) {
-        const sct_member_result *m = &r->members[bar];
-        if (m->combination < 0)
-            sct_number_format(what, sizeof what, "%s of member \"%s\"", sct_check_text(m->check),
-                              sct_show(m->name).text);
-        else
-            sct_number_format(what, sizeof what, "%s of member \"%s\" in \"%s\"", sct_check_text(m->check),
-                              sct_show(m->name).text, sct_show(r->combinations[m->combination]).text);
-    }
-    if (r->outcome == SCT_NOT_OPTIMISED)
-        sct_number_format(r->verdict, sizeof r->verdict,
-                          "Not optimised: the start design %s every limit; %s is at %.2f.",
-                          r->kept ? "keeps" : "does not keep", what, shown(most));
-    else if (r->kept && at_smallest && most < 0.995) /* shows as less than 1 */
-        sct_number_format(r->verdict, sizeof r->verdict,
-                          "Every limit is kept; the smallest sizes allowed govern: %s is at %.2f only.", what,
-                          shown(most));
-    else if (r->kept && bar < 0 && row < 0)
-        sct_number_format(r->verdict, sizeof r->verdict, "Every limit is kept; no member carries a force.");
-    else if (r->kept)
-        sct_number_format(r->verdict, sizeof r->verdict, "Every limit is kept; %s governs at %.2f.", what, shown(most));
-    else if (sct_keeps(r->utilisation) && !sct_keeps(r->utilisation_at_most))
-        sct_number_format(r->verdict, sizeof r->verdict,
-                          "Not decided: %s is at its limit, within the error of the analysis (%.0e of it).", what,
-                          sct_number_rounded_up(r->utilisation_at_most - r->utilisation));
-    else if (r->outcome == SCT_NO_FEASIBLE_DESIGN)
-        sct_number_format(r->verdict, sizeof r->verdict,
-                          "No design found that keeps every limit; the least violation found leaves %s at %.2f.", what,
-                          shown(most));
-    else
-        sct_number_format(r->verdict, sizeof r->verdict, "Not every limit is kept: %s is at %.2f.", what, shown(most));
-    if (r->outcome == SCT_STALLED && r->n_starts > 0) {
-        const size_t used = strlen(r->verdict);
-        sct_number_format(r->verdict + used, sizeof r->verdict - used,
-                          " The search ended short of an optimum (KKT residual %.0e after %d iterations).", r->kkt,
-                          r->starts[r->best_start].iterations);
-    }
 }

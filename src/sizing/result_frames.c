@@ -211,11 +211,50 @@ static sct_status keep_structure(sct_result_memory *memory, const sct_duty *duty
     return SCT_OK;
 }
 
+/* ---- the whole
+ * ---------------------------------------------------------------------------------------------------------- */
+
+static sct_status fill_whole(sct_result *r, const sct_duty *duty)
+{
+    const sct_model *model = duty->st->model;
+    r->least_factor = model->least_factor > 0.0 ? model->least_factor : (double)NAN;
+    r->least_frequency = model->least_frequency > 0.0 ? model->least_frequency : (double)NAN;
+    r->frequency = r->vibrating_mass = NAN;
+    if (!duty->has_whole) return SCT_OK;
+    const sct_whole *w = duty->whole;
+    r->criticals = sct_result_array(r, (size_t)w->n, sizeof *r->criticals);
+    if (r->criticals == NULL) return SCT_NO_MEMORY;
+    r->n_criticals = w->n;
+    for (int k = 0; k < w->n; k++) {
+        const sct_whole_buckling *b = &w->buckling[k];
+        r->criticals[k] = (sct_critical_result){
+            .combination = b->combination,
+            .factor = b->alpha[0],
+            .error = b->error,
+            .is_proven = b->is_proven,
+            .sway = b->sway,
+            .is_sway_bound = b->is_sway_bound,
+            .amplification = b->order.factor,
+            .has_verdict = b->order.kind != SCT_NO_VERDICT && b->order.kind != SCT_BUCKLED,
+            .words = b->order.words,
+        };
+    }
+    if (w->vibration != NULL) {
+        r->frequency = w->frequency;
+        r->vibrating_mass = w->mass;
+    }
+    const double utilisation = sct_settled(sct_whole_utilisation(w));
+    r->utilisation = sct_worse(r->utilisation, utilisation);
+    r->utilisation_at_most = sct_worse(r->utilisation_at_most, utilisation);
+    return SCT_OK;
+}
+
 sct_status sct_result_fill_frame(sct_result *r, const sct_duty *duty, const sct_design *design)
 {
     r->has_bent = duty->n_bent > 0;
     fill_axes(r, duty);
-    sct_status status = fill_bows(r, duty, design);
+    sct_status status = fill_whole(r, duty);
+    if (status == SCT_OK) status = fill_bows(r, duty, design);
     if (status != SCT_OK || !r->has_bent) return status;
     const size_t block = (size_t)r->n_members * 12;
     r->ends = sct_result_array(r, (size_t)r->n_combinations * block, sizeof *r->ends);

@@ -143,10 +143,17 @@ static sct_status show(job *J, sct_result **result)
     if (status == SCT_OK) status = sct_accuracy_refine(J->duty->solver, &J->duty->response, &accuracy, J->issues);
     if (status != SCT_OK) return status;
     sct_duty_gather(J->duty);
-    status = sct_result_new(J->duty, &J->design, accuracy, result);
+    status = sct_duty_find_whole(J->duty, SCT_MODES_PROVEN);
+    if (status == SCT_MECHANISM || status == SCT_NOT_ACCURATE) {
+        sct_issue_add(J->issues, SCT_ERROR, (sct_where){.file = J->model->file},
+                      "the critical load factors cannot be found (%s)", sct_status_text(status));
+        return SCT_NOT_ACCURATE;
+    }
+    if (status == SCT_OK) status = sct_result_new(J->duty, &J->design, accuracy, result);
     if (status != SCT_OK) return status;
     (*result)->settings = J->settings;
     sct_doubt_movement(*result, J->issues);
+    sct_doubt_sway(*result, J->issues);
     return sct_doubts_keep(*result, J->issues);
 }
 

@@ -1,0 +1,175 @@
+#include "sizing/whole.h"
+
+#include <stdlib.h>
+#include <string.h>
+
+static const double FAR = 1e-6; /* limit / value of what does not exist: ln is left alone by the search */
+
+bool sct_whole_is_limited(const sct_model *model)
+{
+    return model->least_factor > 0.0 || model->least_frequency > 0.0;
+}
+
+bool sct_whole_amplifies(const sct_model *model)
+{
+    return model->amplifies;
+}
+
+static bool is_needed(const sct_structure *st)
+{
+    bool has_beams = false;
+    for (int e = 0; e < st->n_bars; e++) has_beams = has_beams || st->bars[e].n > 0;
+    return has_beams || sct_whole_is_limited(st->model) || sct_whole_amplifies(st->model);
+}
+
+static sct_status fill(sct_whole *w, sct_engine engine, int n, const int combinations[])
+{
+    sct_status status;
+    w->buckling = calloc((size_t)n + 1, sizeof *w->buckling);
+    if (w->buckling == NULL) return SCT_NO_MEMORY;
+    w->n = n;
+    for (int k = 0; k < n; k++) w->buckling[k].combination = combinations[k];
+    w->fine = sct_fine_new(w->st, SCT_PIECES, engine, &status);
+    if (w->fine == NULL) return status;
+    w->stability = sct_stability_new(w->fine, SCT_WHOLE_MODES, &status);
+    if (w->stability == NULL) return status;
+    if (!(w->st->model->least_frequency > 0.0)) return SCT_OK;
+    w->vibration = sct_vibration_new(w->fine, 1, &status);
+    return w->vibration == NULL ? status : SCT_OK;
+}
+
+sct_status sct_whole_new(const sct_structure *st, sct_engine engine, int n, const int combinations[], sct_whole **whole)
+{
+    *whole = NULL;
+    if (!is_needed(st)) return SCT_OK;
+    sct_whole *w = calloc(1, sizeof *w);
+    if (w == NULL) return SCT_NO_MEMORY;
+    w->st = st;
+    const sct_status status = fill(w, engine, n, combinations);
+    if (status == SCT_OK)
+        *whole = w;
+    else
+        sct_whole_free(w);
+    return status;
+}
+
+void sct_whole_free(sct_whole *w)
+{
+    if (w == NULL) return;
+    sct_vibration_free(w->vibration);
+    sct_stability_free(w->stability);
+    sct_fine_free(w->fine);
+    free(w->buckling);
+    free(w);
+}
+
+/* ---- analysis -------------------------------------------------------------------------------------------------------
+ */
+
+static void note(sct_whole *w, sct_whole_buckling *b, const sct_modes *modes)
+{
+    for (int i = 0; i < SCT_WHOLE_MODES; i++) b->alpha[i] = i < modes->n ? modes->lambda[i] : (double)INFINITY;
+    b->error = modes->n > 0 ? modes->error[0] : 0.0;
+    b->is_proven = modes->n == 0 ? modes->none_below > 0.0 : modes->none_below >= 0.99 * modes->lambda[0];
+    b->sway = sct_sway_factor(w->stability, modes, &b->is_sway_bound);
+    b->order = sct_second_order_of(b->sway / (1.0 + b->error), w->st->model->amplifies);
+    if (b->alpha[0] <= 1.0) b->order = sct_second_order_of(b->alpha[0], false);
+}
+
+/* An estimate that has not settled is taken with its error: what is too uncertain fails later, by its bound. */
+static bool is_usable(sct_status status)
+{
+    return status == SCT_OK || status == SCT_NOT_CONVERGED;
+}
+
+sct_status sct_whole_analyse(sct_whole *w, const sct_solver *solver, const sct_response *response, sct_mode_search how)
+{
+    sct_modes modes;
+    sct_status status = sct_fine_update(w->fine, sct_solver_sizes(solver));
+    for (int k = 0; k < w->n && status == SCT_OK; k++) {
+        status = sct_stability_find(w->stability, response, w->buckling[k].combination, how, &modes);
+        if (!is_usable(status)) return status;
+        status = SCT_OK;
+        note(w, &w->buckling[k], &modes);
+    }
+    w->frequency = INFINITY;
+    if (status != SCT_OK || w->vibration == NULL) return status;
+    status = sct_vibration_find(w->vibration, how, &modes);
+    if (!is_usable(status)) return status;
+    if (modes.n > 0) w->frequency = sct_frequency(&modes, 0);
+    w->mass = sct_vibration_mass(w->vibration);
+    return SCT_OK;
+}
+
+double sct_whole_utilisation(const sct_whole *w)
+{
+    const sct_model *m = w->st->model;
+    double most = 0.0;
+    for (int k = 0; k < w->n && m->least_factor > 0.0; k++)
+        most = fmax(most, m->least_factor * (1.0 + w->buckling[k].error) / w->buckling[k].alpha[0]);
+    if (w->vibration != NULL) most = fmax(most, m->least_frequency / w->frequency);
+    return most;
+}
+
+double sct_whole_amplification(const sct_whole *w, int combination)
+{
+    for (int k = 0; w != NULL && k < w->n; k++)
+        if (w->buckling[k].combination == combination) return w->buckling[k].order.factor;
+    return 1.0;
+}
+
+/* ---- derivatives
+ * ------------------------------------------------------------------------------------------------------ */
+
+/* The modes of buckling[k] once more: derivatives are those of what was found last. */
+static sct_status find_again(sct_whole *w, const sct_response *response, int k, sct_modes *modes)
+{
+    const sct_status status =
+        sct_stability_find(w->stability, response, w->buckling[k].combination, SCT_MODES_COLD, modes);
+    return status == SCT_NOT_CONVERGED ? SCT_OK : status;
+}
+
+sct_status sct_whole_factor_limits(sct_whole *w, sct_solver *solver, const sct_response *response, int k, double g[],
+                                   double *dg)
+{
+    const double least = w->st->model->least_factor;
+    for (int i = 0; i < SCT_WHOLE_MODES; i++) g[i] = log(fmax(least / w->buckling[k].alpha[i], FAR));
+    if (dg == NULL) return SCT_OK;
+    sct_modes modes;
+    double found[SCT_WHOLE_MODES];
+    const sct_status status = find_again(w, response, k, &modes);
+    if (status != SCT_OK) return status;
+    return sct_stability_limits(w->stability, solver, response, &modes, least, SCT_WHOLE_MODES, found, dg);
+}
+
+sct_status sct_whole_frequency_limit(sct_whole *w, double *g, double *dg)
+{
+    *g = log(fmax(w->st->model->least_frequency / w->frequency, FAR));
+    if (dg == NULL) return SCT_OK;
+    memset(dg, 0, (size_t)w->st->n_vars * sizeof *dg);
+    sct_modes modes;
+    const sct_status status = sct_vibration_find(w->vibration, SCT_MODES_COLD, &modes);
+    if (status != SCT_OK && status != SCT_NOT_CONVERGED) return status;
+    if (modes.n == 0) return SCT_OK;
+    sct_vibration_derivative(w->vibration, &modes, 0, 0, dg);
+    for (int v = 0; v < w->st->n_vars; v++) dg[v] *= -0.5; /* ln f = ln(omega^2)/2 - ln 2 pi */
+    return SCT_OK;
+}
+
+sct_status sct_whole_amplification_slope(sct_whole *w, sct_solver *solver, const sct_response *response, int k,
+                                         double D[])
+{
+    memset(D, 0, (size_t)w->st->n_vars * sizeof *D);
+    if (w->buckling[k].order.slope == 0.0) return SCT_OK;
+    sct_modes modes;
+    sct_status status = find_again(w, response, k, &modes);
+    if (status != SCT_OK) return status;
+    bool is_bound;
+    const double sway = sct_sway_factor(w->stability, &modes, &is_bound);
+    int i = 0;
+    while (i < modes.n && modes.lambda[i] != sway) i++;
+    if (i == modes.n) return SCT_OK; /* a bound moves with no mode */
+    status = sct_stability_derivative(w->stability, solver, response, &modes, i, i, D);
+    for (int v = 0; v < w->st->n_vars; v++) D[v] *= w->buckling[k].order.slope;
+    return status;
+}
