@@ -59,7 +59,7 @@ static void draw(void *arg)
     for (int e = 0; e < st->n_bars; e++) {
         const sct_bar *bar = &st->bars[e];
         const sct_properties *size = &sizes[bar->group];
-        const sct_beam_line line = sct_member_line(d->lines, e, 0, size->P[SCT_AREA]);
+        const sct_beam_line line = sct_member_line(d->lines, e, 0, size->P[SCT_OF_AREA]);
         const sct_beam_state state = sct_member_state(st, d->s->r.N, e);
         for (int p = 0; p < st->dim - 1; p++) {
             double c[SCT_BEAM_QUANTITIES] = {0};
@@ -67,7 +67,7 @@ static void draw(void *arg)
             d->sum += sct_beam_largest(&line, &state, c).value;
             c[SCT_BEAM_M + p] = -1.0;
             d->sum += sct_beam_largest(&line, &state, c).value;
-            const sct_beam_bending bending = {.plane = p, .EI = bar->E * size->P[SCT_INERTIA_IN + p]};
+            const sct_beam_bending bending = {.plane = p, .EI = bar->E * size->P[SCT_OF_INERTIA_IN + p]};
             d->sum += sct_beam_largest_bow(&line, &state, &bending).value;
         }
     }

@@ -87,7 +87,7 @@ static inline sct_beam_bending frame_bending(const frame *f, int k, int e, int p
 {
     const sct_structure *st = f->s.st;
     const sct_bar *bar = &st->bars[e];
-    const double I = sct_properties_at_area(st->model, bar->group, f->s.A[bar->group]).P[SCT_INERTIA_IN + plane];
+    const double I = sct_properties_at_area(st->model, bar->group, f->s.A[bar->group]).P[SCT_OF_INERTIA_IN + plane];
     return (sct_beam_bending){.plane = plane, .EI = bar->E * I, .kappa = sct_free_curvature(st, k, e, plane)};
 }
 

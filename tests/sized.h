@@ -82,6 +82,46 @@ static inline void close_probe(probe *p)
     sct_structure_free(p->st);
 }
 
+/* Gradients alone of every constraint that acts. */
+static inline void check_gradients(const sct_model *model, unsigned seed)
+{
+    probe p = open_probe(model, false);
+    const size_t n = (size_t)p.nlp->n, m = (size_t)p.nlp->m;
+    sct_random random = {seed};
+    double *x = calloc(n, sizeof *x), *y = calloc(n, sizeof *y), *df = calloc(n, sizeof *df), f;
+    double *g = calloc(m, sizeof *g), *up = calloc(m, sizeof *up), *down = calloc(m, sizeof *down);
+    double *dg = calloc(m * n, sizeof *dg);
+    int *rows = calloc(m, sizeof *rows);
+    for (size_t v = 0; v < n; v++)
+        x[v] = p.nlp->lower[v] + (0.3 + 0.4 * sct_random_unit(&random)) * (p.nlp->upper[v] - p.nlp->lower[v]);
+    for (size_t j = 0; j < m; j++) rows[j] = (int)j;
+    ck_assert_int_eq(p.nlp->value(p.nlp->user, x, &f, g), SCT_OK);
+    ck_assert_int_eq(p.nlp->gradient(p.nlp->user, x, (int)m, rows, df, dg), SCT_OK);
+    for (size_t v = 0; v < n; v++) {
+        const double h = 1e-5;
+        memcpy(y, x, n * sizeof *y);
+        y[v] = x[v] + h;
+        ck_assert_int_eq(p.nlp->value(p.nlp->user, y, &f, up), SCT_OK);
+        y[v] = x[v] - h;
+        ck_assert_int_eq(p.nlp->value(p.nlp->user, y, &f, down), SCT_OK);
+        for (size_t j = 0; j < m; j++) {
+            if (g[j] < -6.0) continue;
+            const double slope = (up[j] - down[j]) / (2 * h);
+            if (!(fabs(dg[j * n + v] - slope) <= 1e-6 * (1 + fabs(slope))))
+                ck_abort_msg("row %zu of %zu (%g): %.9g, by differences %.9g", j, m, g[j], dg[j * n + v], slope);
+        }
+    }
+    free(x);
+    free(y);
+    free(df);
+    free(g);
+    free(up);
+    free(down);
+    free(dg);
+    free(rows);
+    close_probe(&p);
+}
+
 /* Gradients of f and of every active constraint against central differences, and the curvature of a random mixture
  * against differences of gradients. */
 static inline void check_derivatives(const sct_model *model, bool plain, unsigned seed, double tol)

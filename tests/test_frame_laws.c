@@ -280,8 +280,8 @@ static double strain_energy_density(const frame *f, int e, double x)
     const double G = st->model->materials[st->model->groups[bar->group].material].G;
     double v[SCT_BEAM_QUANTITIES];
     frame_forces(f, 0, e, x, -1, v);
-    return v[0] * v[0] / (bar->E * size.P[SCT_AREA]) + v[3] * v[3] / (bar->E * size.P[SCT_INERTIA_IN]) +
-           v[4] * v[4] / (bar->E * size.P[SCT_INERTIA_OUT]) + v[5] * v[5] / (G * size.P[SCT_TORSION]);
+    return v[0] * v[0] / (bar->E * size.P[SCT_OF_AREA]) + v[3] * v[3] / (bar->E * size.P[SCT_OF_INERTIA_IN]) +
+           v[4] * v[4] / (bar->E * size.P[SCT_OF_INERTIA_OUT]) + v[5] * v[5] / (G * size.P[SCT_OF_TORSION]);
 }
 
 /* q . displacement */

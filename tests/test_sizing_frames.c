@@ -48,6 +48,32 @@ static const char FRAME[] =
     " \"bow\": [ { \"members\": [\"top 1\", \"a\"], \"at_most\": \"L/300\" }, { \"members\": [\"top\"], \"at_most\": "
     "\"L/400\" } ] } }";
 
+/* The same with more limits; free for free(). */
+static char *frame_with(const char *limits)
+{
+    static const char BEFORE[] = "\"buckling\": { \"by\"";
+    const char *at = strstr(FRAME, BEFORE);
+    sct_text t = {0};
+    sct_text_format(&t, "%.*s%s, %s", (int)(at - FRAME), FRAME, limits, at);
+    return sct_text_take(&t, NULL);
+}
+
+/* Load factors, their amplification of moments, and the frequency; no curvature is claimed for these. */
+START_TEST(derivatives_of_limits_on_the_whole_agree_with_differences)
+{
+    static const char *const LIMITS[] = {
+        "\"critical_factor\": { \"at_least\": 10 }",
+        "\"frequency\": { \"at_least\": \"4 Hz\", \"mass\": { \"G\": 1 } }",
+        "\"amplify_sway\": true",
+    };
+    char *text = frame_with(LIMITS[_i]);
+    sct_model *model = parse(text);
+    for (unsigned seed = 1; seed <= 3; seed++) check_gradients(model, seed);
+    sct_model_free(model);
+    free(text);
+}
+END_TEST
+
 START_TEST(derivatives_of_frames_agree_with_differences)
 {
     sct_model *model = parse(FRAME);
@@ -192,14 +218,42 @@ START_TEST(stations_tell_the_whole_member)
 }
 END_TEST
 
+/* A slender two-storey frame sways: a limit on the load factor makes it heavier and holds to the end. */
+START_TEST(a_limit_on_the_load_factor_is_kept)
+{
+    static const char *const LIMITS[] = {
+        "\"slenderness\": { \"any\": 300 }",
+        "\"slenderness\": { \"any\": 300 }, \"critical_factor\": { \"at_least\": 25 }"};
+    double mass[2];
+    for (int k = 0; k < 2; k++) {
+        char *text = frame_with(LIMITS[k]);
+        sct_model *model = parse(text);
+        sct_result *r = size_with(model, NULL);
+        mass[k] = r->mass;
+        ck_assert(r->kept);
+        ck_assert_int_eq(r->n_criticals, 3);
+        for (int c = 0; c < 3; c++) {
+            ck_assert(r->criticals[c].is_proven);
+            if (k == 1) ck_assert_double_ge(r->criticals[c].factor, 25.0);
+        }
+        sct_result_free(r);
+        sct_model_free(model);
+        free(text);
+    }
+    ck_assert_double_gt(mass[1], 1.01 * mass[0]);
+}
+END_TEST
+
 int main(void)
 {
     Suite *s = suite_create("sizing of frames");
     TCase *c = tcase_create("frames");
     tcase_add_test(c, derivatives_of_frames_agree_with_differences);
+    tcase_add_loop_test(c, derivatives_of_limits_on_the_whole_agree_with_differences, 0, 3);
     tcase_add_loop_test(c, derivatives_of_frames_on_ladders_agree_with_differences, 0, 2);
     tcase_add_loop_test(c, a_portal_with_section_relations_reaches_the_published_mass, 0, 3);
     tcase_add_loop_test(c, demo_frames_are_sized_from_every_start, 0, 2);
+    tcase_add_test(c, a_limit_on_the_load_factor_is_kept);
     tcase_add_test(c, stations_tell_the_whole_member);
     suite_add_tcase(s, c);
     return run_suite(s);

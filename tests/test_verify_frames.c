@@ -154,7 +154,7 @@ static void first_places(const both *b, int k, double *value)
         for (int q = 0; q < 6; q++) *value_at(b, value, q, k, i) = all[q];
         for (int plane = 0; plane < 2; plane++) {
             const sct_beam_bending bending = {.plane = plane,
-                                              .EI = bar->E * size.P[plane == 0 ? SCT_INERTIA_IN : SCT_INERTIA_OUT],
+                                              .EI = bar->E * size.P[plane == 0 ? SCT_OF_INERTIA_IN : SCT_OF_INERTIA_OUT],
                                               .kappa = sct_free_curvature(st, k, e, plane)};
             *value_at(b, value, 6 + plane, k, i) = sct_beam_deflection(&line, &state, &bending, x);
         }

@@ -85,7 +85,7 @@ static bool search_allocate(search *f)
     f->sizes = malloc(((size_t)f->st->n_groups + 1) * sizeof *f->sizes);
     for (int g = 0; g < f->st->n_groups && f->sizes != NULL; g++) {
         f->sizes[g] = sct_properties_at_area(f->st->model, g, f->A[g]);
-        if (f->st->n_springs == f->st->n_bars) f->sizes[g].P[SCT_AREA] = f->A[g];
+        if (f->st->n_springs == f->st->n_bars) f->sizes[g].P[SCT_OF_AREA] = f->A[g];
     }
     return f->sizes != NULL && f->ground != NULL && f->values != NULL && f->s != NULL && f->X != NULL &&
            f->is_rotation != NULL && f->is_absent != NULL && sct_joint_motion_allocate(&f->motion, f->st);

@@ -29,10 +29,10 @@ static sct_properties on_ladder(const sct_group *g, const sct_section sections[]
     while (k + 2 < g->n_ladder && sections[g->ladder[k + 1]].A < A) k++;
     const sct_section *a = &sections[g->ladder[k]], *b = &sections[g->ladder[k + 1 < g->n_ladder ? k + 1 : k]];
     sct_properties size;
-    set_power(&size, SCT_AREA, 1.0, 1.0, A);
-    set_between(&size, SCT_INERTIA_IN, A, a->A, a->I[0], b->A, b->I[0]);
-    set_between(&size, SCT_INERTIA_OUT, A, a->A, a->I[1], b->A, b->I[1]);
-    set_between(&size, SCT_TORSION, A, a->A, a->J, b->A, b->J);
+    set_power(&size, SCT_OF_AREA, 1.0, 1.0, A);
+    set_between(&size, SCT_OF_INERTIA_IN, A, a->A, a->I[0], b->A, b->I[0]);
+    set_between(&size, SCT_OF_INERTIA_OUT, A, a->A, a->I[1], b->A, b->I[1]);
+    set_between(&size, SCT_OF_TORSION, A, a->A, a->J, b->A, b->J);
     return size;
 }
 
@@ -43,9 +43,9 @@ sct_properties sct_properties_at_area(const sct_model *model, int group, double 
     if (g->kind == SCT_HELD_SECTION) return constant(&sections[g->held]);
     if (g->kind == SCT_LADDER) return on_ladder(g, sections, A);
     sct_properties size;
-    set_power(&size, SCT_AREA, 1.0, 1.0, A);
-    set_power(&size, SCT_INERTIA_IN, g->c[0], 2.0, A);
-    set_power(&size, SCT_INERTIA_OUT, g->c[1], 2.0, A);
-    set_power(&size, SCT_TORSION, g->J.c, g->J.p, A);
+    set_power(&size, SCT_OF_AREA, 1.0, 1.0, A);
+    set_power(&size, SCT_OF_INERTIA_IN, g->c[0], 2.0, A);
+    set_power(&size, SCT_OF_INERTIA_OUT, g->c[1], 2.0, A);
+    set_power(&size, SCT_OF_TORSION, g->J.c, g->J.p, A);
     return size;
 }

@@ -307,7 +307,7 @@ sct_status sct_solver_analyse_sizes(sct_solver *s, const sct_properties sizes[],
 {
     const sct_structure *st = s->st;
     memmove(s->sizes, sizes, (size_t)st->n_groups * sizeof *s->sizes);
-    for (int g = 0; g < st->n_groups; g++) s->A[g] = sizes[g].P[SCT_AREA];
+    for (int g = 0; g < st->n_groups; g++) s->A[g] = sizes[g].P[SCT_OF_AREA];
     s->analyses++;
     if (!fill(s)) return SCT_NOT_ACCURATE;
     const sct_status factored = sct_factor_update(s->factor, s->K, NULL);

@@ -143,7 +143,7 @@ static void add_bending(sct_structure *st, int bar, int plane)
 {
     const sct_bar *b = &st->bars[bar];
     const bool from = b->hinges.free_turn[plane][0], to = b->hinges.free_turn[plane][1];
-    const sct_property I = plane == SCT_IN_PLANE ? SCT_INERTIA_IN : SCT_INERTIA_OUT;
+    const sct_property I = plane == SCT_IN_PLANE ? SCT_OF_INERTIA_IN : SCT_OF_INERTIA_OUT;
     if (from && to) return;
     if (!from && !to) new_spring(st, bar, SCT_MODE_SYMMETRIC, I)->plane = plane;
     sct_spring *s = new_spring(st, bar, from ? SCT_MODE_TO : to ? SCT_MODE_FROM : SCT_MODE_ANTISYMMETRIC, I);
@@ -209,7 +209,7 @@ static void add_beam(sct_structure *st, int bar, sct_issues *issues)
     if (st->dim == 3) add_bending(st, bar, SCT_OUT_OF_PLANE);
     add_ends(st, bar);
     if (st->dim == 3 && !b->hinges.free_turn[SCT_TWIST][0] && !b->hinges.free_turn[SCT_TWIST][1])
-        new_spring(st, bar, SCT_MODE_TWIST, SCT_TORSION)->E =
+        new_spring(st, bar, SCT_MODE_TWIST, SCT_OF_TORSION)->E =
             st->model->materials[st->model->groups[b->group].material].G;
     b->n = st->n_springs - b->first;
     check_properties(st, bar, issues);
@@ -328,7 +328,7 @@ sct_status sct_list_springs(sct_structure *st, sct_issues *issues)
 {
     if (!allocate(st)) return SCT_NO_MEMORY;
     builder to = {.st = st, .dof = st->dof_pool, .b = st->b_pool};
-    for (int e = 0; e < st->n_bars; e++) add_terms(&to, new_spring(st, e, SCT_MODE_AXIAL, SCT_AREA));
+    for (int e = 0; e < st->n_bars; e++) add_terms(&to, new_spring(st, e, SCT_MODE_AXIAL, SCT_OF_AREA));
     for (int e = 0; e < st->n_bars; e++) {
         if (is_beam(st, e)) add_beam(st, e, issues);
         st->bars[e].is_bent = st->bars[e].n > 0;

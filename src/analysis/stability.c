@@ -181,7 +181,7 @@ static void weigh(sct_stability *s, double alpha, double D[])
             sum += s->gain[p].mean;
             own += s->gain[p].mean * s->held[p].mean + s->gain[p].slope * s->held[p].slope;
         }
-        if (var >= 0) D[var] += alpha * own * sizes[st->bars[e].group].d1[SCT_AREA];
+        if (var >= 0) D[var] += alpha * own * sizes[st->bars[e].group].d1[SCT_OF_AREA];
         for (int k = 0; k < st->n_cases; k++) s->wN[(size_t)k * springs + (size_t)e] = alpha * factor[k] * sum;
     }
 }
@@ -280,7 +280,7 @@ sct_member_mode sct_stability_member(const sct_stability *s, const sct_modes *mo
     const sct_structure *st = sct_fine_structure(s->fine);
     const sct_bar *bar = &s->coarse->bars[member];
     const double *x = modes->X + (size_t)mode * (size_t)st->n_dof;
-    const double I = sct_solver_sizes(sct_fine_solver(s->fine))[bar->group].P[SCT_INERTIA_IN + plane];
+    const double I = sct_solver_sizes(sct_fine_solver(s->fine))[bar->group].P[SCT_OF_INERTIA_IN + plane];
     int first;
     const int n = sct_fine_pieces(s->fine, member, &first);
     const double all = bending_energy(s->fine, x, 0, st->n_bars, -1);

@@ -9,9 +9,9 @@
 #include "analysis/structure_parts.h"
 #include "base/text.h"
 #include "base/vector.h"
+#include "model/axes.h"
 
 static const double TOL_PLACE = 1e-9; /* of the model's size: nearer joints are at one place */
-static const double ALONG = 1e-6;     /* sine of an angle: nearer directions are taken for one */
 
 static const double LEAST_SIZE =
     1e-6; /* [m] of a whole model: below, lengths squared leave the range of good numbers */
@@ -117,47 +117,18 @@ static void measure_bars(sct_structure *st, double size, sct_issues *issues)
                           "member \"%s\" has no length: joints \"%s\" and \"%s\" are at one place",
                           sct_show(member->name).text, sct_show(from->name).text, sct_show(to->name).text);
         }
-        for (int i = 0; i < 3 && bar->L > 0.0; i++) bar->axes[0][i] = d[i] / bar->L;
         for (int s = 0; s < 2; s++)
             for (int r = 0; r < SCT_TURNS; r++) bar->hinges.free_turn[r][s] = member->end[s].fixity[r] == SCT_PINNED;
     }
 }
 
-/* The vector that local axis 1 leans towards: said by the member; else z, or x for a member along z. */
-static void up_of(const sct_bar *bar, const sct_member *member, double up[3])
-{
-    const double z[3] = {0.0, 0.0, 1.0}, x[3] = {1.0, 0.0, 0.0};
-    const bool is_vertical = hypot(bar->axes[0][0], bar->axes[0][1]) <= ALONG;
-    memcpy(up, !sct_is_zero3(member->up) ? member->up : is_vertical ? x : z, sizeof z);
-}
-
-/* Local axes 1 and 2. */
 static void find_axes(sct_structure *st, int e, sct_issues *issues)
 {
-    sct_bar *bar = &st->bars[e];
     const sct_member *member = &st->model->members[e];
-    double(*axes)[3] = bar->axes, up[3];
-    if (st->dim == 2) {
-        memcpy(axes[1], (double[3]){-axes[0][1], axes[0][0], 0.0}, sizeof axes[1]);
-        memcpy(axes[2], (double[3]){0.0, 0.0, 1.0}, sizeof axes[2]);
-        return;
-    }
-    up_of(bar, member, up);
-    const double size = sct_length3(up);
-    sct_project_off3(up, 1, (const double(*)[3])axes);
-    const double length = sct_length3(up);
-    if (!(length > ALONG * size)) {
-        sct_issue_add(issues, SCT_ERROR, member->where,
-                      "\"up\" of member \"%s\" points along the member; it must point across it",
-                      sct_show(member->name).text);
-        return;
-    }
-    for (int i = 0; i < 3; i++) axes[1][i] = up[i] / length;
-    sct_cross3(axes[0], axes[1], axes[2]);
-    if (member->roll == 0.0) return;
-    const double c = cos(member->roll), s = sin(member->roll);
-    for (int i = 0; i < 3; i++) axes[1][i] = c * axes[1][i] + s * axes[2][i];
-    sct_cross3(axes[0], axes[1], axes[2]);
+    if (sct_member_axes(st->model, member, st->bars[e].axes)) return;
+    sct_issue_add(issues, SCT_ERROR, member->where,
+                  "\"up\" of member \"%s\" points along the member; it must point across it",
+                  sct_show(member->name).text);
 }
 
 static void find_lever(sct_structure *st)

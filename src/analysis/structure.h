@@ -30,10 +30,10 @@ static const double SCT_GRAVITY =
 
 /* What a stiffness is proportional to. */
 typedef enum sct_property {
-    SCT_AREA,
-    SCT_INERTIA_IN,
-    SCT_INERTIA_OUT,
-    SCT_TORSION,
+    SCT_OF_AREA,
+    SCT_OF_INERTIA_IN,
+    SCT_OF_INERTIA_OUT,
+    SCT_OF_TORSION,
     SCT_PROPERTIES,
     SCT_CONSTANT = SCT_PROPERTIES
 } sct_property;

@@ -150,7 +150,7 @@ void sct_vibration_derivative(const sct_vibration *v, const sct_modes *modes, in
         if (square->bar < 0) continue;
         const int group = st->bars[square->bar].group, var = st->var_of_group[group];
         if (var < 0) continue;
-        D[var] -= lambda * square->g * sizes[group].d1[SCT_AREA] * sct_square_value(&v->mass, square, x) *
+        D[var] -= lambda * square->g * sizes[group].d1[SCT_OF_AREA] * sct_square_value(&v->mass, square, x) *
                   sct_square_value(&v->mass, square, y);
     }
 }

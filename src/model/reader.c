@@ -373,9 +373,6 @@ static const char *not_carried(const sct_model *m, sct_where *where)
         *where = m->members[i].where;
         if (m->members[i].tension_only) return "the member carries tension only";
     }
-    *where = (sct_where){.file = m->file, .pointer = "/limits"};
-    if (m->least_factor > 0 || m->amplifies) return "sway is limited or amplified";
-    if (m->least_frequency > 0) return "the frequency is limited";
     return NULL;
 }
 

@@ -639,7 +639,7 @@ void sct_problem_put(const sct_problem *P, int group, double A, sct_design *desi
     const sct_shape shape = sct_curves_shape(&P->curves[group], A);
     design->section[group] = -1;
     design->A[group] = A;
-    design->J[group] = sct_curves_properties(&P->curves[group], A).P[SCT_TORSION];
+    design->J[group] = sct_curves_properties(&P->curves[group], A).P[SCT_OF_TORSION];
     memcpy(design->i[group], shape.i, sizeof shape.i);
     memcpy(design->W[group], shape.W, sizeof shape.W);
 }

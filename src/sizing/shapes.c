@@ -67,8 +67,8 @@ sct_properties sct_curves_properties(const sct_group_curves *curves, double A)
 {
     const double z = log(A);
     sct_properties p = {.P = {A}, .d1 = {A}, .d2 = {A}};
-    put(&p, SCT_INERTIA_IN, sct_curve_of_I(at(&curves->i[0], z), A));
-    put(&p, SCT_INERTIA_OUT, sct_curve_of_I(at(&curves->i[1], z), A));
-    put(&p, SCT_TORSION, at(&curves->J, z));
+    put(&p, SCT_OF_INERTIA_IN, sct_curve_of_I(at(&curves->i[0], z), A));
+    put(&p, SCT_OF_INERTIA_OUT, sct_curve_of_I(at(&curves->i[1], z), A));
+    put(&p, SCT_OF_TORSION, at(&curves->J, z));
     return p;
 }
