@@ -10,24 +10,25 @@ enum {
     PATIENCE = 40,      /* blocks before a shift is tried: an easy problem takes 3 to 10 */
     MOST_BLOCKS = 300,  /* after it */
     MOST_RETREATS = 12, /* of the shift */
-    MOST_CLIMBS = 10,   /* of the shift: an eigenvalue beyond 1e9 is none */
     MOST_PROOFS = 3
 };
 static const double BELOW = 0.9;        /* a shift lies so far under the first estimate, */
 static const double RETREAT = 0.5;      /* and so much lower each time that an eigenvalue lies below */
+static const double COARSE = 1e-6;      /* error of a result that a shift can better */
 static const double JUST_BELOW = 0.999; /* what is proven: nearer, rounding might not let a factor exist */
 
 struct sct_mode_finder {
     sct_fine *fine;
     sct_squares *B;
     sct_subspace *subspace;
-    int n, wanted;
+    int n;
+    double largest;         /* eigenvalues beyond are none */
     double *shifted;        /* values of K - sigma B */
     double *lambda, *error; /* wanted */
     double *X;              /* n x wanted */
 };
 
-sct_mode_finder *sct_mode_finder_new(sct_fine *fine, sct_squares *B, int wanted, sct_status *status)
+sct_mode_finder *sct_mode_finder_new(sct_fine *fine, sct_squares *B, int wanted, double largest, sct_status *status)
 {
     sct_mode_finder *f = calloc(1, sizeof *f);
     *status = SCT_NO_MEMORY;
@@ -35,7 +36,7 @@ sct_mode_finder *sct_mode_finder_new(sct_fine *fine, sct_squares *B, int wanted,
     const sct_pattern *pattern;
     sct_solver_stiffness(sct_fine_solver(fine), &pattern);
     const size_t n = (size_t)pattern->n, count = (size_t)wanted;
-    *f = (sct_mode_finder){.fine = fine, .B = B, .n = pattern->n, .wanted = wanted};
+    *f = (sct_mode_finder){.fine = fine, .B = B, .n = pattern->n, .largest = largest};
     f->subspace = sct_subspace_new(pattern->n, wanted, status);
     f->shifted = calloc((size_t)pattern->column[pattern->n] + 1, sizeof *f->shifted);
     f->lambda = calloc(count, sizeof *f->lambda);
@@ -89,6 +90,7 @@ static sct_status search(sct_mode_finder *f, double sigma, int most_blocks, bool
     sct_eigenpairs pairs;
     settings.most_blocks = most_blocks;
     settings.is_warm_start = is_warm;
+    settings.largest = f->largest - sigma;
     const sct_status status =
         sct_subspace_run(f->subspace, sct_fine_factor_now(f->fine), sct_squares_multiply, f->B, &settings, &pairs);
     modes->blocks += pairs.blocks;
@@ -112,12 +114,11 @@ static sct_status search_shifted(sct_mode_finder *f, double sigma, sct_modes *mo
 /* The same without an estimate: up by tens from 1 until an eigenvalue lies below. */
 static sct_status climb(sct_mode_finder *f, sct_modes *modes)
 {
-    double sigma = 1.0;
-    for (int i = 0; i < MOST_CLIMBS; i++, sigma *= 10.0) {
-        const sct_status status = factor_shifted(f, sigma, modes);
-        if (status == SCT_NOT_CONVEX) return search_shifted(f, sigma / 10.0, modes);
-        if (status != SCT_OK) return status;
-        modes->none_below = sigma;
+    for (double sigma = 1.0; modes->none_below < f->largest; sigma *= 10.0) {
+        const double next = fmin(sigma, f->largest);
+        const sct_status status = factor_shifted(f, next, modes);
+        if (status != SCT_OK) return status == SCT_NOT_CONVEX ? search_shifted(f, next / 10.0, modes) : status;
+        modes->none_below = next;
     }
     return SCT_OK;
 }
@@ -125,18 +126,21 @@ static sct_status climb(sct_mode_finder *f, sct_modes *modes)
 /* An eigenvalue below the first found was missed when the factor does not exist: then searches from lower down. */
 static sct_status prove(sct_mode_finder *f, sct_modes *modes)
 {
-    sct_status status = SCT_OK;
-    for (int i = 0; i < MOST_PROOFS && status == SCT_OK && modes->n > 0; i++) {
-        const double sigma = JUST_BELOW * f->lambda[0] / (1.0 + f->error[0]);
+    for (int i = 0; i < MOST_PROOFS; i++) {
+        const double sigma = modes->n > 0 ? JUST_BELOW * f->lambda[0] / (1.0 + f->error[0]) : f->largest;
         const sct_status factored = factor_shifted(f, sigma, modes);
-        if (factored == SCT_OK) {
-            modes->none_below = sigma;
-            return SCT_OK;
-        }
+        if (factored == SCT_OK) modes->none_below = sigma;
         if (factored != SCT_NOT_CONVEX) return factored;
-        status = search_shifted(f, RETREAT * sigma, modes);
+        const sct_status status = search_shifted(f, RETREAT * sigma, modes);
+        if (status != SCT_OK) return status;
     }
-    return status == SCT_OK && modes->n > 0 ? SCT_NOT_CONVERGED : status;
+    return SCT_NOT_CONVERGED;
+}
+
+/* Is what a search without a shift found good enough? Beside large negative eigenvalues rounding may spoil it. */
+static bool is_sound(const sct_modes *modes, sct_status status)
+{
+    return status != SCT_NOT_CONVERGED && (modes->n == 0 || modes->error[0] <= COARSE);
 }
 
 sct_status sct_mode_finder_run(sct_mode_finder *f, sct_mode_search how, sct_modes *modes)
@@ -145,7 +149,7 @@ sct_status sct_mode_finder_run(sct_mode_finder *f, sct_mode_search how, sct_mode
     *modes = (sct_modes){.lambda = f->lambda, .error = f->error, .X = f->X};
     if (sct_fine_factor(f->fine, &status) == NULL) return status == SCT_NOT_CONVEX ? SCT_MECHANISM : status;
     status = search(f, 0.0, PATIENCE, how == SCT_MODES_WARM, modes);
-    if (status == SCT_NOT_CONVERGED)
+    if (!is_sound(modes, status))
         status = modes->n > 0 ? search_shifted(f, BELOW * f->lambda[0] / (1.0 + f->error[0]), modes) : climb(f, modes);
     return status == SCT_OK && how == SCT_MODES_PROVEN ? prove(f, modes) : status;
 }

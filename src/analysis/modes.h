@@ -28,16 +28,17 @@ typedef enum sct_mode_search {
 
 typedef struct sct_mode_finder sct_mode_finder;
 
-/** Borrows both; `wanted` modes, >= 1. *status: SCT_OK, SCT_NO_MEMORY. */
-sct_mode_finder *sct_mode_finder_new(sct_fine *fine, sct_squares *B, int wanted, sct_status *status);
+/** Borrows both; `wanted` modes, >= 1; eigenvalues beyond `largest` > 0 are none. *status: SCT_OK, SCT_NO_MEMORY. */
+sct_mode_finder *sct_mode_finder_new(sct_fine *fine, sct_squares *B, int wanted, double largest, sct_status *status);
 void sct_mode_finder_free(sct_mode_finder *finder);
 
 /**
  * Finds the lowest modes with the coefficients of B as they are and the latest sizes of the divided structure. *modes
  * points into the finder until its next run. Allocates nothing.
  *
- * SCT_OK; SCT_NOT_CONVERGED: estimates, their errors hold, or the first could not be proven; SCT_MECHANISM,
- * SCT_NOT_ACCURATE, SCT_NO_MEMORY.
+ * SCT_OK: errors within 1e-8, or as small as rounding lets them become beside eigenvalues of the other sign (a shift is
+ * tried where the first has more than 1e-6); SCT_NOT_CONVERGED: estimates, their errors hold, or the first could not be
+ * proven; SCT_MECHANISM, SCT_NOT_ACCURATE, SCT_NO_MEMORY.
  */
 sct_status sct_mode_finder_run(sct_mode_finder *finder, sct_mode_search how, sct_modes *modes);
 

@@ -70,8 +70,9 @@ static void row_add_bow(const sct_structure *st, const sct_bar *bar, int plane, 
 static void *grown(void *array, int room, size_t size, bool *ok)
 {
     void *larger = realloc(array, (size_t)room * size);
-    *ok = *ok && larger != NULL;
-    return larger != NULL ? larger : array;
+    if (larger != NULL) return larger;
+    *ok = false;
+    return array;
 }
 
 static bool make_room(sct_squares *q)

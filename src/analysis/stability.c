@@ -8,9 +8,10 @@
 #include "analysis/recovery.h"
 #include "base/vector.h"
 
-static const double NO_FORCE = 1e-11; /* of the largest force: smaller ones are rounding, not compression */
-static const double FAR = 1e-6;       /* least / alpha of a mode that was not found */
-static const double SWAYS = 0.05;     /* part of the loads' work: less is not called sway */
+static const double NO_FORCE = 1e-11;  /* of the largest force: smaller ones are rounding, not compression */
+static const double NO_BUCKLING = 1e4; /* a load factor; far ones crowd and hide each other */
+static const double FAR = 1e-6;        /* least / alpha of a mode that was not found */
+static const double SWAYS = 0.05;      /* part of the loads' work: less is not called sway */
 
 /* A force along a piece: mean + slope t, t from -1 to 1. */
 typedef struct course {
@@ -43,7 +44,7 @@ static sct_status set_up(sct_stability *s, int wanted)
     s->wN = calloc((size_t)s->coarse->n_cases * springs + 1, sizeof *s->wN);
     if (!s->lines || !s->S || !s->N || !s->held || !s->gain || !s->wN) return SCT_NO_MEMORY;
     sct_status status = sct_squares_of_geometry(fine, &s->geometry);
-    if (status == SCT_OK) s->finder = sct_mode_finder_new(s->fine, &s->geometry, wanted, &status);
+    if (status == SCT_OK) s->finder = sct_mode_finder_new(s->fine, &s->geometry, wanted, NO_BUCKLING, &status);
     return status;
 }
 

@@ -23,7 +23,7 @@ void sct_stability_free(sct_stability *stability);
 
 /**
  * The lowest modes of a combination; *modes lives until the next call (modes.h). Nothing is compressed, or nothing
- * buckles: SCT_OK with n = 0.
+ * buckles below the factor 10 000: SCT_OK with n = 0.
  *
  * response  of the structure's own solver with the sizes of the latest sct_fine_update
  * how       one object per combination where WARM is used

@@ -99,7 +99,7 @@ sct_vibration *sct_vibration_new(sct_fine *fine, int wanted, sct_status *status)
     v->fine = fine;
     *status = sct_squares_of_mass(sct_fine_structure(fine), &v->mass);
     if (*status == SCT_OK) *status = add_masses(v);
-    if (*status == SCT_OK) v->finder = sct_mode_finder_new(fine, &v->mass, wanted, status);
+    if (*status == SCT_OK) v->finder = sct_mode_finder_new(fine, &v->mass, wanted, (double)INFINITY, status);
     if (*status == SCT_OK) return v;
     sct_vibration_free(v);
     return NULL;
