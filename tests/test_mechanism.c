@@ -612,6 +612,24 @@ START_TEST(a_joint_on_two_bars_almost_in_line_is_answered_or_refused)
 }
 END_TEST
 
+/* Turning about itself moves nothing: five motions of a straight part are all. */
+START_TEST(a_straight_part_in_space_is_held_by_five_directions)
+{
+    for (int bars = 1; bars <= 2; bars++) {
+        sct_model *m = ts_new(3, 1e-3);
+        for (int j = 0; j <= bars; j++) {
+            mb_joint(m, 2.0 * j, 3.0 * j, 6.0 * j);
+            if (j > 0) mb_bar(m, j - 1, j, 0);
+            mb_hold(m, j, 3.0, -2.0, 0.0); /* at right angles to the line */
+            mb_hold(m, j, 0.0, 2.0, -1.0);
+        }
+        mb_hold(m, 0, 2.0, 3.0, 6.0);
+        mb_load(m, mb_case(m, 0.0), bars, 20.0, 30.0, 60.0);
+        ck_stable(m);
+    }
+}
+END_TEST
+
 int main(void)
 {
     Suite *suite = suite_create("mechanism");
@@ -650,6 +668,7 @@ int main(void)
     tcase_add_test(tests, what_only_a_hardly_stiff_bar_holds_is_warned_about);
     tcase_add_test(tests, a_bar_whose_stiffness_vanishes_is_a_mechanism);
     tcase_add_test(tests, a_joint_on_two_bars_almost_in_line_is_answered_or_refused);
+    tcase_add_test(tests, a_straight_part_in_space_is_held_by_five_directions);
     suite_add_tcase(suite, tests);
     return run_suite(suite);
 }
