@@ -305,6 +305,103 @@ START_TEST(both_paths_agree_on_results_of_random_frames)
 }
 END_TEST
 
+/* ---- wrong numbers ------------------------------------------------------------------------------------------------
+ */
+
+static const double SMALL = 100.0; /* [N], [N m], beside 1e5 and more */
+
+/* Changes every number of n that is at least `least` by a millionth, one after the other. */
+static void change_from(const char *what, const sct_model *m, const sct_result *result, size_t n, double x[],
+                        double least, int *tried)
+{
+    for (size_t i = 0; i < n; i++) {
+        const double right = x[i];
+        if (!(fabs(right) > least)) continue;
+        x[i] = right * (1.0 + 1e-6);
+        ck_assert_msg(verify(m, result, false) == SCT_SELF_CHECK, "%s, number %zu: %g", what, i, right);
+        x[i] = right;
+        (*tried)++;
+    }
+}
+
+/* Those that are at least 1e-4 of the largest. */
+static void change_each(const char *what, const sct_model *m, const sct_result *result, size_t n, double x[],
+                        int *tried)
+{
+    double largest = 0.0;
+    for (size_t i = 0; i < n; i++) largest = fmax(largest, fabs(x[i]));
+    change_from(what, m, result, n, x, 1e-4 * largest, tried);
+}
+
+static void change_joints(const sct_model *m, sct_result *r, int *tried)
+{
+    const size_t n3 = 3 * (size_t)r->n_joints, members = (size_t)r->n_members;
+    for (size_t c = 0; c < (size_t)r->n_combinations; c++) {
+        change_each("displacement", m, r, n3, r->u + c * n3, tried);
+        change_each("rotation", m, r, n3, r->turn + c * n3, tried);
+        change_each("load", m, r, n3, r->load + c * n3, tried);
+        change_each("moment load", m, r, n3, r->moment_load + c * n3, tried);
+        change_each("reaction", m, r, n3, r->reaction + c * n3, tried);
+        change_each("moment of support", m, r, n3, r->moment + c * n3, tried);
+        change_each("force", m, r, members, r->N + c * members, tried);
+        change_from("force or moment at an end", m, r, 12 * members, r->ends + c * 12 * members, SMALL, tried);
+    }
+}
+
+static void change_members(const sct_model *m, sct_result *r, int *tried)
+{
+    for (int e = 0; e < r->n_members; e++) {
+        sct_member_result *member = &r->members[e];
+        change_each("utilisation", m, r, 1, &member->utilisation, tried);
+        change_from("largest force", m, r, 1, &member->N_max, SMALL, tried);
+        change_from("smallest force", m, r, 1, &member->N_min, SMALL, tried);
+        if (!member->is_bent) continue;
+        change_from("largest moments", m, r, 2, member->M_most, SMALL, tried);
+        change_each("bows", m, r, 2, member->bow, tried);
+        if (member->check != SCT_CHECK_SLENDERNESS) change_from("moments", m, r, 2, member->M, SMALL, tried);
+        member->is_bent = false;
+        ck_assert_int_eq(verify(m, r, false), SCT_SELF_CHECK);
+        member->is_bent = true;
+    }
+}
+
+static void change_limits(const sct_model *m, sct_result *r, int *tried)
+{
+    for (int g = 0; g < r->n_groups; g++) {
+        change_each("section modulus", m, r, 2, r->groups[g].W, tried);
+        change_each("torsion constant", m, r, 1, &r->groups[g].J, tried);
+    }
+    for (int k = 0; k < r->n_deflections; k++) {
+        change_each("deflection", m, r, 1, &r->deflections[k].u, tried);
+        change_each("deflection over its limit", m, r, 1, &r->deflections[k].utilisation, tried);
+    }
+    for (int k = 0; k < r->n_bows; k++) {
+        if (!r->members[r->bows[k].member].is_bent) continue;
+        change_each("bow", m, r, 1, &r->bows[k].v, tried);
+        change_each("allowed bow", m, r, 1, &r->bows[k].at_most, tried);
+        change_each("bow over its limit", m, r, 1, &r->bows[k].utilisation, tried);
+    }
+    change_each("utilisation", m, r, 1, &r->utilisation, tried);
+}
+
+START_TEST(every_number_of_a_frame_changed_by_a_millionth_is_caught)
+{
+    int tried = 0;
+    for (uint64_t seed = 1; seed <= 8; seed++) {
+        sct_model *m = limited_frame(seed);
+        sct_result *r = check(m);
+        ck_assert_int_eq(verify(m, r, true), SCT_OK);
+        change_joints(m, r, &tried);
+        change_members(m, r, &tried);
+        change_limits(m, r, &tried);
+        sct_result_free(r);
+        mb_free(m);
+    }
+    printf("measured: second path: all %d numbers of frames changed by a millionth are caught\n", tried);
+    ck_assert_int_ge(tried, 2000);
+}
+END_TEST
+
 int main(void)
 {
     Suite *suite = suite_create("verify frames");
@@ -312,6 +409,7 @@ int main(void)
     tcase_set_timeout(tests, 600);
     tcase_add_test(tests, both_analyses_agree_on_random_frames);
     tcase_add_test(tests, both_paths_agree_on_results_of_random_frames);
+    tcase_add_test(tests, every_number_of_a_frame_changed_by_a_millionth_is_caught);
     suite_add_tcase(suite, tests);
     return run_suite(suite);
 }

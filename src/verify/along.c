@@ -2,7 +2,6 @@
 #include <math.h>
 #include <string.h>
 
-#include "base/names.h"
 #include "verify/strength.h"
 #include "verify/verifier.h"
 
@@ -30,7 +29,7 @@ static void compare_cut(sct_verifier *v, int e, int c, const sct_cut *cut, const
     const sct_open *open = &v->open_of[c];
     const long double found[6] = {cut->N, cut->V[0], cut->V[1], cut->M[0], cut->M[1], cut->T};
     for (int i = 0; i < 6; i++) {
-        const double allowed = i == 0 ? open->N + 1.5 * open->N_none : open->end[i >= 3];
+        const double allowed = i == 0 ? sct_verify_N_open(v, e, c) : open->end[i >= 3];
         sct_compare(v, WHAT[i], v->r->members[e].name, v->r->combinations[c], said[i], (double)found[i], allowed);
     }
 }
@@ -138,10 +137,10 @@ static double worst_of(const sct_verifier *v, int e, const sct_cut_line *line, s
     return (double)sct_cut_largest(line, utilisation_at, k);
 }
 
-static double open_of(const sct_open *open, const check *k)
+static double open_of(const sct_verifier *v, int e, int c, const check *k)
 {
-    return (open->N + 1.5 * open->N_none) / fabs(k->capacity.force) + open->end[1] / k->capacity.moment[0] +
-           open->end[1] / k->capacity.moment[1];
+    const double M = v->open_of[c].end[1];
+    return sct_verify_N_open(v, e, c) / fabs(k->capacity.force) + M / k->capacity.moment[0] + M / k->capacity.moment[1];
 }
 
 static int kind_of(sct_check_kind kind)
@@ -172,17 +171,17 @@ static void compare_governing(sct_verifier *v, int e)
     check k;
     worst_of(v, e, &line, (sct_verify_kind)kind, &k);
     compare_at(v, "utilisation at the governing place of member", e, c, &line, utilisation_at, &k, said->x,
-               said->utilisation, open_of(open, &k));
+               said->utilisation, open_of(v, e, c, &k));
     compare_at(v, "moment in plane at the governing place of member", e, c, &line, some_force, M_IN, said->x,
                said->M[0], open->end[1]);
     compare_at(v, "moment out of plane at the governing place of member", e, c, &line, some_force, M_OUT, said->x,
                said->M[1], open->end[1]);
     if (kind == SCT_BENT_COLUMN)
         sct_compare(v, "governing force of member", said->name, v->r->combinations[c], said->N, (double)k.N,
-                    open->N + 1.5 * open->N_none);
+                    sct_verify_N_open(v, e, c));
     else
         compare_at(v, "governing force of member", e, c, &line, some_force, N, said->x, said->N,
-                   open->N + 1.5 * open->N_none);
+                   sct_verify_N_open(v, e, c));
 }
 
 /* ---- extremes -----------------------------------------------------------------------------------------------------
@@ -220,7 +219,7 @@ static void add_combination(const sct_verifier *v, int e, int c, const sct_cut_l
             of->bow_open[plane] = fmax(of->bow_open[plane], bow_open(v, line, c, plane));
         }
     }
-    of->N_open = fmax(of->N_open, v->open_of[c].N + 1.5 * v->open_of[c].N_none);
+    of->N_open = fmax(of->N_open, sct_verify_N_open(v, e, c));
     of->M_open = fmax(of->M_open, v->open_of[c].end[1]);
 }
 
@@ -267,7 +266,7 @@ double sct_verify_bent(sct_verifier *v, int e, double *open)
         for (int kind = 0; kind < SCT_VERIFY_KINDS && is_for_strength(v, c); kind++) {
             check k;
             worst = fmax(worst, worst_of(v, e, &line, (sct_verify_kind)kind, &k));
-            *open = fmax(*open, isfinite(k.capacity.force) ? open_of(&v->open_of[c], &k) : 0.0);
+            *open = fmax(*open, isfinite(k.capacity.force) ? open_of(v, e, c, &k) : 0.0);
         }
     }
     compare_axes(v, e);

@@ -23,6 +23,7 @@ typedef struct sct_verifier {
     sct_open *open_of;            /* n_combinations */
     double accuracy;              /* relative, of the first analysis and of this one */
     double open;                  /* of any utilisation */
+    double longest;               /* [m] element */
     int n_wrong;
     sct_element_load *loads; /* room for one line */
     long double *breaks;
@@ -36,6 +37,9 @@ void sct_compare(sct_verifier *v, const char *what, const char *name, const char
                  double found, double open);
 
 double sct_verify_length(const sct_model *model, int member);
+
+/** [N] what is open of the force along a member: more where it is so small that results may give it as 0. */
+double sct_verify_N_open(const sct_verifier *v, int member, int combination);
 
 /** The ends of all members in a combination. */
 void sct_verify_ends(sct_verifier *v, int combination);

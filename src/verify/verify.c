@@ -96,6 +96,12 @@ static void combine_all(sct_verifier *v)
     }
 }
 
+double sct_verify_N_open(const sct_verifier *v, int e, int c)
+{
+    const double N = v->N[(size_t)c * (size_t)v->m->n_members + (size_t)e], none = 1.5 * v->open_of[c].N_none;
+    return v->open_of[c].N + (fabs(N) <= none ? none : 0.0);
+}
+
 /* ---- comparing ----------------------------------------------------------------------------------------------------
  */
 
@@ -184,17 +190,21 @@ static const joint_words WORDS[2] = {
      {"moment load about x", "moment load about y", "moment load about z"}},
 };
 
-static void compare_loads(sct_verifier *v, int c, int kind, double load[])
+/* Rounding is relative to the largest load, or to `scale` where that is more; returns which. Leaves the loads in
+ * `load`.
+ */
+static double compare_loads(sct_verifier *v, int c, int kind, double load[], double scale)
 {
     const size_t n3 = 3 * (size_t)v->r->n_joints;
     const double *from = kind == 0 ? v->s.load : v->s.moment_load, *said = kind == 0 ? v->r->load : v->r->moment_load;
     memset(load, 0, n3 * sizeof *load);
     if (from != NULL) combine(v, c, n3, from, load);
-    const double open = ABSOLUTE * largest(n3, load) + (kind == 1 ? ABSOLUTE / SMALL_PART * v->open_of[c].end[1] : 0.0);
+    scale = fmax(scale, largest(n3, load));
     for (size_t i = 0; i < n3; i++) {
         sct_compare(v, WORDS[kind].loaded[i % 3], v->r->joints[i / 3].name, v->r->combinations[c],
-                    said[(size_t)c * n3 + i], load[i], open);
+                    said[(size_t)c * n3 + i], load[i], ABSOLUTE * scale);
     }
+    return scale;
 }
 
 /* Elastic supports give something along free directions, too. */
@@ -228,9 +238,8 @@ static void compare_combination(sct_verifier *v, int c, double *R[2])
     const size_t n3 = 3 * (size_t)v->r->n_joints;
     const sct_open *open = &v->open_of[c];
     compare_forces(v, c);
-    compare_loads(v, c, 0, R[0]);
-    const double load_scale = largest(n3, R[0]);
-    compare_loads(v, c, 1, R[1]);
+    const double load_scale = compare_loads(v, c, 0, R[0], 0.0);
+    compare_loads(v, c, 1, R[1], load_scale * v->longest);
     memset(R[1], 0, n3 * sizeof *R[1]);
     find_reactions(v, c, R);
     compare_joints(v, c, 0, R[0], (v->s.n_elements > 0 ? open->end[0] : open->N) + ABSOLUTE * load_scale);
@@ -258,14 +267,14 @@ static double compare_bar(sct_verifier *v, int e, double L, double *open)
     const sct_member_result *said = &r->members[e];
     double most = 0.0, N_max = -INFINITY, N_min = INFINITY, N_open = 0.0;
     for (int c = 0; c < r->n_combinations; c++) {
-        const double N = v->N[(size_t)c * (size_t)r->n_members + (size_t)e], none = 1.5 * v->open_of[c].N_none;
+        const double N = v->N[(size_t)c * (size_t)r->n_members + (size_t)e], here = sct_verify_N_open(v, e, c);
         N_max = fmax(N_max, N);
         N_min = fmin(N_min, N);
-        N_open = fmax(N_open, v->open_of[c].N + none);
+        N_open = fmax(N_open, here);
         if (v->m->combinations[c].basis != SCT_ALLOWABLE) continue;
         const double capacity = sct_verify_capacity(v->m, e, L, N > 0.0);
         most = fmax(most, fabs(N) / capacity);
-        *open = fmax(*open, (v->open_of[c].N + (fabs(N) <= none ? none : 0.0)) / capacity);
+        *open = fmax(*open, here / capacity);
     }
     sct_compare(v, "largest force of member", said->name, NULL, said->N_max, N_max, N_open);
     sct_compare(v, "smallest force of member", said->name, NULL, said->N_min, N_min, N_open);
@@ -399,6 +408,7 @@ static bool allocate_line(sct_verifier *v, sct_arena *arena)
     int loads = 1, breaks = 1;
     for (int b = 0; b < v->s.n_elements; b++) {
         const sct_element *x = &v->s.elements[b];
+        v->longest = fmax(v->longest, (double)x->L);
         if (sct_cut_loads_at_most(x) > loads) loads = sct_cut_loads_at_most(x);
         if (sct_cut_breaks_at_most(x) > breaks) breaks = sct_cut_breaks_at_most(x);
     }
