@@ -42,6 +42,9 @@ struct sct_problem {
     double *g;             /* all constraints, log form */
     bool have_du;
     bool have_whole_slopes;
+    /* curvature of the rows from first_factor on, learned from their slopes at one point after another */
+    double *learned, *slopes_before, *x_before; /* x n x n; as whole_slopes; n */
+    bool have_before;
     double *whole_slopes,
         *sway_slopes; /* of the rows from first_factor on, x n; of the amplifications, n_allowable x n */
     double *du, *part, *row, *cross, *moving; /* n_cases x n_dof x n; n; n; n; n */
@@ -161,8 +164,8 @@ static double whole_constraint(sct_problem *P, int j)
     const bool is_factor = j < P->first_frequency;
     const sct_status status =
         is_factor ? sct_whole_factor_limits(P->duty->whole, P->duty->solver, &P->duty->response, k, g, NULL)
-                  : sct_whole_frequency_limit(P->duty->whole, g, NULL);
-    return status == SCT_OK ? g[is_factor ? mode : 0] : (double)NAN;
+                  : sct_whole_frequency_limits(P->duty->whole, g, NULL);
+    return status == SCT_OK ? g[mode] : (double)NAN;
 }
 
 static double constraint(sct_problem *P, int j)
@@ -281,6 +284,37 @@ static sct_status need_du(sct_problem *P)
     return status;
 }
 
+/* B += r r'/(r's), r = y - B s: the symmetric rank-one update (Nocedal and Wright, Numerical Optimization,
+ * section 6.2), left out where it would be large for a small step. r: scratch. */
+static void update(int n, const double s[], const double y[], double r[], double *B)
+{
+    double along = 0.0, size_r = 0.0, size_s = 0.0;
+    for (int i = 0; i < n; i++) {
+        r[i] = y[i] - sct_dot(n, B + (size_t)i * (size_t)n, s);
+        along += r[i] * s[i];
+        size_r += r[i] * r[i];
+        size_s += s[i] * s[i];
+    }
+    if (!(fabs(along) > 1e-8 * sqrt(size_r * size_s))) return;
+    for (int i = 0; i < n; i++) sct_axpy(n, r[i] / along, r, B + (size_t)i * (size_t)n);
+}
+
+/* The second derivatives of eigenvalues would need those of their vectors; their change is learned instead. */
+static void learn(sct_problem *P)
+{
+    const size_t n = (size_t)P->n, rows = (size_t)(P->nlp.m - P->first_factor);
+    for (size_t j = 0; j < rows && P->have_before; j++) {
+        for (size_t v = 0; v < n; v++) {
+            P->cross[v] = P->x[v] - P->x_before[v];
+            P->row[v] = P->whole_slopes[j * n + v] - P->slopes_before[j * n + v];
+        }
+        update((int)n, P->cross, P->row, P->moving, P->learned + j * n * n);
+    }
+    memcpy(P->x_before, P->x, n * sizeof *P->x);
+    memcpy(P->slopes_before, P->whole_slopes, rows * n * sizeof *P->slopes_before);
+    P->have_before = true;
+}
+
 /* Derivatives of the limits on the whole, and of what moments are amplified by. */
 static sct_status need_whole_slopes(sct_problem *P)
 {
@@ -294,11 +328,12 @@ static sct_status need_whole_slopes(sct_problem *P)
         status = sct_whole_factor_limits(duty->whole, duty->solver, &duty->response, k, g, slopes);
         slopes += SCT_WHOLE_MODES * n;
     }
-    if (status == SCT_OK && P->first_frequency < P->nlp.m) status = sct_whole_frequency_limit(duty->whole, g, slopes);
+    if (status == SCT_OK && P->first_frequency < P->nlp.m) status = sct_whole_frequency_limits(duty->whole, g, slopes);
     for (int k = 0; k < duty->n_allowable && status == SCT_OK && sct_whole_amplifies(P->st->model); k++)
         status = sct_whole_amplification_slope(duty->whole, duty->solver, &duty->response, k,
                                                P->sway_slopes + (size_t)k * n);
     P->have_whole_slopes = status == SCT_OK;
+    if (status == SCT_OK && P->first_factor < P->nlp.m) learn(P);
     return status;
 }
 
@@ -364,7 +399,12 @@ static sct_status curvature(void *user, const double x[], int n_rows, const int 
     const sct_form_source source = source_of(P);
     for (int r = 0; r < n_rows; r++) {
         const int j = rows[r];
-        if (mu[r] == 0.0 || P->g[j] <= INACTIVE || j >= P->first_factor) continue; /* ln alpha is nearly linear in z */
+        if (mu[r] == 0.0 || P->g[j] <= INACTIVE) continue;
+        if (j >= P->first_factor) {
+            const double *B = P->learned + (size_t)(j - P->first_factor) * n * n;
+            for (size_t a = 0; a < n; a++) sct_axpy((int)a + 1, mu[r], B + a * n, H + a * n);
+            continue;
+        }
         const sct_form form = form_of(P, j);
         const double q = form.value;
         const bool is_bar = j < P->n_bar_rows;
@@ -526,8 +566,9 @@ static sct_status allocate(sct_problem *P)
                     ARRAY(source, n) && ARRAY(x_lower, n) && ARRAY(x_upper, n) && ARRAY(ref, n) && ARRAY(cluster, m) &&
                     ARRAY(x, n) && ARRAY(A, n_groups) && ARRAY(need, (size_t)P->n_bar_rows) && ARRAY(g, m) &&
                     ARRAY(du, n_cases * n_dof * n) && ARRAY(part, n) && ARRAY(row, n) && ARRAY(cross, n) &&
-                    ARRAY(whole_slopes, n_whole * n) && ARRAY(sway_slopes, n_sway * n) && ARRAY(moving, n) &&
-                    ARRAY(place, n_places) && ARRAY(shape, n_groups) && ARRAY(sizes, n_groups) &&
+                    ARRAY(whole_slopes, n_whole * n) && ARRAY(slopes_before, n_whole * n) &&
+                    ARRAY(learned, n_whole * n * n) && ARRAY(x_before, n) && ARRAY(sway_slopes, n_sway * n) &&
+                    ARRAY(moving, n) && ARRAY(place, n_places) && ARRAY(shape, n_groups) && ARRAY(sizes, n_groups) &&
                     ARRAY(wN, n_cases * n_springs) && ARRAY(wu, n_cases * n_dof) && ARRAY(work, n_cases * n_dof);
 #undef ARRAY
     if (!ok) return SCT_NO_MEMORY;
@@ -546,10 +587,10 @@ static sct_status build(sct_problem *P, const bool compressed[], const bool is_f
     P->first_bow = P->first_bent + P->duty->n_allowable * P->duty->n_bent * SCT_BENT_PLACES;
     P->first_factor = P->first_bow + P->duty->n_bows;
     P->first_frequency = P->first_factor + (st->model->least_factor > 0.0 ? P->duty->n_allowable * SCT_WHOLE_MODES : 0);
-    const int has_frequency = st->model->least_frequency > 0.0;
+    const int n_frequencies = st->model->least_frequency > 0.0 ? SCT_WHOLE_MODES : 0;
     P->needs_shapes = P->duty->n_bent > 0 || P->duty->whole != NULL || st->n_springs > st->n_bars;
     P->nlp =
-        (sct_nlp){.n = P->n, .m = P->first_frequency + has_frequency, .user = P, .value = value, .gradient = gradient};
+        (sct_nlp){.n = P->n, .m = P->first_frequency + n_frequencies, .user = P, .value = value, .gradient = gradient};
     sct_status status = allocate(P);
     if (status != SCT_OK) return status;
     set_fixed(P, is_fixed, fixed);

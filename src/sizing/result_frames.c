@@ -240,7 +240,7 @@ static sct_status fill_whole(sct_result *r, const sct_duty *duty)
         };
     }
     if (w->vibration != NULL) {
-        r->frequency = w->frequency;
+        r->frequency = w->frequency[0];
         r->vibrating_mass = w->mass;
     }
     const double utilisation = sct_settled(sct_whole_utilisation(w));

@@ -18,10 +18,11 @@ typedef struct search {
     sct_design trial, at, best; /* at: where the descent stands; best: kept design of least mass, or of least
                                  * utilisation while none is kept */
     bool have_best;
-    sct_pick pick;          /* of `best` */
-    double *du, *d, *slope; /* sensitivities at the design at hand; slope: n_rows x n_groups of u per ln A */
-    bool *bends;            /* n_groups: some member is a beam */
-    double slack;           /* utilisation that frozen forces may overestimate: forces of redundant bars move */
+    sct_pick pick;              /* of `best` */
+    double *du, *d, *slope;     /* sensitivities at the design at hand; slope: n_rows x n_groups of u per ln A */
+    double whole, *whole_slope; /* ln(limit / value) of the whole at the design at hand, its derivative by ln size */
+    bool *bends;                /* n_groups: some member is a beam */
+    double slack;               /* utilisation that frozen forces may overestimate: forces of redundant bars move */
 } search;
 
 /* A change of up to two groups. */
@@ -151,7 +152,10 @@ static sct_status round_up(search *S, const sct_design *continuous)
 static sct_status find_slopes(search *S)
 {
     const sct_structure *st = S->st;
-    const sct_status status = sct_sensitivity_direct(S->duty->solver, &S->duty->response, S->du);
+    sct_status status = sct_sensitivity_direct(S->duty->solver, &S->duty->response, S->du);
+    S->whole = -INFINITY;
+    if (status == SCT_OK && sct_whole_is_limited(S->model))
+        status = sct_whole_worst_limit(S->duty->whole, S->duty->solver, &S->duty->response, &S->whole, S->whole_slope);
     if (status != SCT_OK) return status;
     for (int r = 0; r < S->duty->n_rows; r++) {
         double *slope = S->slope + (size_t)r * (size_t)st->n_groups;
@@ -181,8 +185,8 @@ static double stiffness_after(const search *S, int g, int k)
     return S->bends[g] ? section_at(S, g, k)->I[SCT_IN_PLANE] : section_at(S, g, k)->A;
 }
 
-/* Largest deflection utilisation after a move, linear in 1/stiffness: exact for a determinate truss but for
- * self-weight.
+/* Largest utilisation of deflections and of limits on the whole after a move, the former linear in 1/stiffness: exact
+ * for a determinate truss but for self-weight.
  */
 static double deflection_after(const search *S, const move *m)
 {
@@ -197,7 +201,14 @@ static double deflection_after(const search *S, const move *m)
         }
         most = sct_worse(most, fabs(u) / S->model->deflections[S->duty->rows[r].limit].at_most);
     }
-    return most;
+    double whole = S->whole;
+    for (int k = 0; k < 2 && whole > -INFINITY; k++) {
+        const int g = m->group[k];
+        if (g < 0) continue;
+        whole +=
+            S->whole_slope[S->st->var_of_group[g]] * log(stiffness_after(S, g, m->section[k]) / stiffness_before(S, g));
+    }
+    return sct_worse(most, exp(whole));
 }
 
 /* Raises sections until every limit is kept: each time the single step that does most for the worst limit per kg. */
@@ -343,9 +354,10 @@ static sct_status run(search *S, const sct_design *continuous)
     S->du = sct_arena_array(S->arena, n_cases * n_vars * (size_t)S->st->n_dof, sizeof(double));
     S->d = sct_arena_array(S->arena, n_vars, sizeof(double));
     S->slope = sct_arena_array(S->arena, (size_t)S->duty->n_rows * n_groups, sizeof(double));
+    S->whole_slope = sct_arena_array(S->arena, n_vars, sizeof(double));
     S->bends = sct_arena_array(S->arena, n_groups, sizeof *S->bends);
     sct_design start;
-    if (S->du == NULL || S->d == NULL || S->slope == NULL || S->bends == NULL ||
+    if (S->du == NULL || S->d == NULL || S->slope == NULL || S->whole_slope == NULL || S->bends == NULL ||
         sct_design_new(S->arena, S->st->n_groups, &S->trial) != SCT_OK ||
         sct_design_new(S->arena, S->st->n_groups, &S->best) != SCT_OK ||
         sct_design_new(S->arena, S->st->n_groups, &S->at) != SCT_OK ||

@@ -34,7 +34,7 @@ static sct_status fill(sct_whole *w, sct_engine engine, int n, const int combina
     w->stability = sct_stability_new(w->fine, SCT_WHOLE_MODES, &status);
     if (w->stability == NULL) return status;
     if (!(w->st->model->least_frequency > 0.0)) return SCT_OK;
-    w->vibration = sct_vibration_new(w->fine, 1, &status);
+    w->vibration = sct_vibration_new(w->fine, SCT_WHOLE_MODES, &status);
     return w->vibration == NULL ? status : SCT_OK;
 }
 
@@ -92,11 +92,11 @@ sct_status sct_whole_analyse(sct_whole *w, const sct_solver *solver, const sct_r
         status = SCT_OK;
         note(w, &w->buckling[k], &modes);
     }
-    w->frequency = INFINITY;
+    for (int i = 0; i < SCT_WHOLE_MODES; i++) w->frequency[i] = INFINITY;
     if (status != SCT_OK || w->vibration == NULL) return status;
     status = sct_vibration_find(w->vibration, how, &modes);
     if (!is_usable(status)) return status;
-    if (modes.n > 0) w->frequency = sct_frequency(&modes, 0);
+    for (int i = 0; i < modes.n && i < SCT_WHOLE_MODES; i++) w->frequency[i] = sct_frequency(&modes, i);
     w->mass = sct_vibration_mass(w->vibration);
     return SCT_OK;
 }
@@ -107,7 +107,7 @@ double sct_whole_utilisation(const sct_whole *w)
     double most = 0.0;
     for (int k = 0; k < w->n && m->least_factor > 0.0; k++)
         most = fmax(most, m->least_factor * (1.0 + w->buckling[k].error) / w->buckling[k].alpha[0]);
-    if (w->vibration != NULL) most = fmax(most, m->least_frequency / w->frequency);
+    if (w->vibration != NULL) most = fmax(most, m->least_frequency / w->frequency[0]);
     return most;
 }
 
@@ -142,17 +142,18 @@ sct_status sct_whole_factor_limits(sct_whole *w, sct_solver *solver, const sct_r
     return sct_stability_limits(w->stability, solver, response, &modes, least, SCT_WHOLE_MODES, found, dg);
 }
 
-sct_status sct_whole_frequency_limit(sct_whole *w, double *g, double *dg)
+sct_status sct_whole_frequency_limits(sct_whole *w, double g[], double *dg)
 {
-    *g = log(fmax(w->st->model->least_frequency / w->frequency, FAR));
+    const size_t n = (size_t)w->st->n_vars;
+    for (int i = 0; i < SCT_WHOLE_MODES; i++) g[i] = log(fmax(w->st->model->least_frequency / w->frequency[i], FAR));
     if (dg == NULL) return SCT_OK;
-    memset(dg, 0, (size_t)w->st->n_vars * sizeof *dg);
+    memset(dg, 0, SCT_WHOLE_MODES * n * sizeof *dg);
     sct_modes modes;
     const sct_status status = sct_vibration_find(w->vibration, SCT_MODES_COLD, &modes);
-    if (status != SCT_OK && status != SCT_NOT_CONVERGED) return status;
-    if (modes.n == 0) return SCT_OK;
-    sct_vibration_derivative(w->vibration, &modes, 0, 0, dg);
-    for (int v = 0; v < w->st->n_vars; v++) dg[v] *= -0.5; /* ln f = ln(omega^2)/2 - ln 2 pi */
+    if (!is_usable(status)) return status;
+    for (int i = 0; i < modes.n && i < SCT_WHOLE_MODES; i++)
+        sct_vibration_derivative(w->vibration, &modes, i, i, dg + (size_t)i * n);
+    for (size_t k = 0; k < SCT_WHOLE_MODES * n; k++) dg[k] *= -0.5; /* ln f = ln(omega^2)/2 - ln 2 pi */
     return SCT_OK;
 }
 
@@ -171,5 +172,28 @@ sct_status sct_whole_amplification_slope(sct_whole *w, sct_solver *solver, const
     if (i == modes.n) return SCT_OK; /* a bound moves with no mode */
     status = sct_stability_derivative(w->stability, solver, response, &modes, i, i, D);
     for (int v = 0; v < w->st->n_vars; v++) D[v] *= w->buckling[k].order.slope;
+    return status;
+}
+
+sct_status sct_whole_worst_limit(sct_whole *w, sct_solver *solver, const sct_response *response, double *g, double *dg)
+{
+    const size_t n = (size_t)w->st->n_vars;
+    int worst = -1;
+    *g = -INFINITY;
+    for (int k = 0; k < w->n && w->st->model->least_factor > 0.0; k++) {
+        const double of_k = log(fmax(w->st->model->least_factor / w->buckling[k].alpha[0], FAR));
+        if (of_k <= *g) continue;
+        *g = of_k;
+        worst = k;
+    }
+    double all[SCT_WHOLE_MODES], *rows = calloc(SCT_WHOLE_MODES * n + 1, sizeof *rows);
+    if (rows == NULL) return SCT_NO_MEMORY;
+    const bool is_frequency =
+        w->vibration != NULL && log(fmax(w->st->model->least_frequency / w->frequency[0], FAR)) > *g;
+    const sct_status status = is_frequency ? sct_whole_frequency_limits(w, all, rows)
+                                           : sct_whole_factor_limits(w, solver, response, worst, all, rows);
+    *g = all[0];
+    memcpy(dg, rows, n * sizeof *dg);
+    free(rows);
     return status;
 }

@@ -30,8 +30,8 @@ typedef struct sct_whole {
     sct_vibration *vibration; /* NULL: no limit on it */
     int n;                    /* combinations */
     sct_whole_buckling *buckling;
-    double frequency; /* [Hz]; INFINITY where no limit is stated */
-    double mass;      /* [kg] that vibrates */
+    double frequency[SCT_WHOLE_MODES]; /* [Hz] ascending; INFINITY beyond those that exist */
+    double mass;                       /* [kg] that vibrates */
 } sct_whole;
 
 /** combinations (n): those looked at. *whole = NULL with SCT_OK: nothing to look at. SCT_NO_MEMORY, SCT_TOO_LARGE. */
@@ -59,8 +59,12 @@ double sct_whole_amplification(const sct_whole *whole, int combination);
 sct_status sct_whole_factor_limits(sct_whole *whole, sct_solver *solver, const sct_response *response, int k,
                                    double g[], double *dg);
 
-/** g = ln(least frequency / frequency), dg (n_vars or NULL). */
-sct_status sct_whole_frequency_limit(sct_whole *whole, double *g, double *dg);
+/** g (SCT_WHOLE_MODES) = ln(least frequency / frequency), dg (SCT_WHOLE_MODES x n_vars, or NULL). */
+sct_status sct_whole_frequency_limits(sct_whole *whole, double g[], double *dg);
+
+/** The limit on the whole that is nearest to being broken: its g, and dg (n_vars). */
+sct_status sct_whole_worst_limit(sct_whole *whole, sct_solver *solver, const sct_response *response, double *g,
+                                 double *dg);
 
 /** D (n_vars) = d ln(amplification)/dz of buckling[k]; 0 where it is 1. */
 sct_status sct_whole_amplification_slope(sct_whole *whole, sct_solver *solver, const sct_response *response, int k,
