@@ -55,9 +55,9 @@ static void tube(sct_sheet *sheet, const axes *a, double depth, sct_role role)
 static void half_tube(sct_sheet *sheet, const axes *a, double depth, sct_role role)
 {
     const double h = 0.5 * depth, gap = fmin(THIN + fmax(EDGE_GAP, EDGE_GAP_OF_DEPTH * depth), 0.6 * depth);
-    const axes core = {place(a, 0, -0.5 * gap), a->c, a->s, a->length};
+    const axes core = {place(a, 0, 0.5 * gap), a->c, a->s, a->length};
     body(sheet, a, depth, ROLE_PAGE, ROLE_NONE, 0);
-    sct_sheet_line(sheet, place(a, 0, h - 0.5 * THIN), place(a, a->length, h - 0.5 * THIN), ROLE_INK, THIN);
+    sct_sheet_line(sheet, place(a, 0, 0.5 * THIN - h), place(a, a->length, 0.5 * THIN - h), ROLE_INK, THIN);
     body(sheet, &core, depth - gap, role, ROLE_NONE, 0);
 }
 

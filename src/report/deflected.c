@@ -10,7 +10,7 @@
 #include "symbols.h"
 
 static const double LARGEST_OF_SPAN = 0.08;
-enum { ARROWS_MOST = 8, BETWEEN = 12 };
+enum { ARROWS_MOST = 8, BETWEEN = 24 };
 
 static const double *displacement(const sct_scene *scene, int joint)
 {

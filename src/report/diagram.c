@@ -109,6 +109,7 @@ static void signs(const figure *f, int member, const sct_curve *c)
         const double v = (side == 0 ? 0.5 : -0.5) * most;
         const sct_point p = ordinate(f, member, at, v);
         sct_sheet_circle(&f->scene->sheet, p, SIGN_RADIUS, ROLE_PAGE, ROLE_SOFT, HAIR);
+        sct_labels_block(f->scene->labels, sct_box_level(p, SIGN_RADIUS, SIGN_RADIUS), SCT_SOLID, -1);
         sct_sheet_words(&f->scene->sheet, (sct_point){p.x, p.y + BASELINE * LABEL}, LABEL, ANCHOR_MIDDLE, ROLE_SOFT,
                         WORDS_OF[side]);
     }
@@ -138,6 +139,16 @@ static void want(const figure *f, const value *wanted, value values[], int *n)
     values[*n] = *wanted;
     values[*n].order = *n;
     ++*n;
+}
+
+/* +1 or -1 at the first place of a peak or of a valley, which may be level or have two sides; else 0. */
+static int turn_at(const sct_curve *c, int i, double same)
+{
+    int next = i + 1;
+    while (next < c->n && fabs(c->v[next] - c->v[i]) <= same) next++;
+    if (i == 0 || next == c->n) return 0;
+    const double before = c->v[i] - c->v[i - 1], behind = c->v[i] - c->v[next];
+    return before > same && behind > same ? 1 : before < -same && behind < -same ? -1 : 0;
 }
 
 /* Ends, jumps and inner extremes; a level force once, in its middle. At most LABELS_PER_MEMBER. */
@@ -170,22 +181,34 @@ static void values_of_curve(const figure *f, int member, const sct_curve *c, val
     for (int i = 1; i < last && *n < most; i++) {
         const bool jumps = (c->x[i] == c->x[i - 1] && fabs(v[i] - v[i - 1]) > LEAST_OF_LARGEST * f->largest) ||
                            (c->x[i] == c->x[i + 1] && fabs(v[i] - v[i + 1]) > LEAST_OF_LARGEST * f->largest);
-        const bool turns =
-            (v[i] - v[i - 1] > same && v[i] - v[i + 1] > same) || (v[i - 1] - v[i] > same && v[i + 1] - v[i] > same);
         const bool is_inner = c->x[i] > 0 && c->x[i] < m->L;
         wanted.x = c->x[i];
         wanted.v = v[i];
-        if (is_inner && (jumps || turns)) want(f, &wanted, values, n);
+        if (is_inner && (jumps || turn_at(c, i, same) != 0)) want(f, &wanted, values, n);
     }
 }
 
+static bool is_level(const figure *f, int member, const sct_curve *c)
+{
+    const double L = f->scene->result->members[member].L;
+    for (int i = 0; i < c->n; i++)
+        if (fabs(c->v[i] - sct_curve_at(c, 0.5 * L)) > SAME * f->largest) return false;
+    return true;
+}
+
+/* Largest and smallest of a member, where they are a tension and a compression, or a moment of either sign. */
 static void values_of_envelope(const figure *f, int member, const sct_member_curves *c, value values[], int *n)
 {
+    const sct_member_result *m = &f->scene->result->members[member];
     for (int side = 0; side < 2; side++) {
         const sct_extreme *e = &c->extreme[side];
         if (e->combination < 0 || (side == 0 ? e->v <= 0 : e->v >= 0)) continue;
-        want(f, &(value){.member = member, .joint = -1, .x = e->x, .v = e->v, .combination = e->combination}, values,
-             n);
+        value wanted = {.member = member, .joint = -1, .x = e->x, .v = e->v, .combination = e->combination};
+        wanted.is_level = is_level(f, member, &c->curve[side]);
+        if (wanted.is_level) wanted.x = 0.5 * m->L;
+        if (wanted.x <= SAME * m->L) wanted.joint = m->from;
+        if (wanted.x >= (1 - SAME) * m->L) wanted.joint = m->to;
+        want(f, &wanted, values, n);
     }
 }
 
@@ -209,15 +232,12 @@ static void write_size(const figure *f, double v, sct_quantity out)
 static void write_place(const figure *f, const value *w, char out[2 * WORDS])
 {
     const sct_result *r = f->scene->result;
-    const double L = r->members[w->member].L;
     sct_quantity x;
     char name[WORDS] = "";
     out[0] = '\0';
-    if (w->joint >= 0 || w->is_level) return;
     sct_quantity_length(x, w->x, 2, r->us_customary);
-    if (w->combination >= 0) sct_words_fit(r->combinations[w->combination], 80, LABEL, false, name, sizeof name);
-    const bool is_inside = w->x > SAME * L && w->x < (1 - SAME) * L;
-    if (is_inside)
+    if (w->combination >= 0) sct_words_fit(r->combinations[w->combination], 110, LABEL, false, name, sizeof name);
+    if (w->joint < 0 && !w->is_level)
         sct_number_format(out, 2 * WORDS, "at %s\xE2\x80\xAF%s%s%s", x, sct_length_unit_name(r->us_customary),
                           name[0] != '\0' ? ", " : "", name);
     else
@@ -246,10 +266,12 @@ static void write_value(const figure *f, const value *w)
     const double length = fmax(hypot(tip.x - foot.x, tip.y - foot.y), 1e-9);
     write_size(f, w->v, size);
     write_place(f, w, place);
-    sct_sheet_circle(&f->scene->sheet, tip, DOT, ROLE_U2, ROLE_PAGE, HAIR);
     const sct_word_run runs[2] = {{size, ROLE_INK, true}, {place, ROLE_SOFT, false}};
-    sct_marks_near(f->scene, tip, 4, (sct_point){(tip.x - foot.x) / length, (tip.y - foot.y) / length}, runs,
-                   place[0] != '\0' ? 2 : 1);
+    bool done = false;
+    for (int n = place[0] != '\0' ? 2 : 1; n > 0 && !done; n--) /* without its place where that has no room */
+        done = sct_marks_near(f->scene, tip, 4, (sct_point){(tip.x - foot.x) / length, (tip.y - foot.y) / length}, runs,
+                              n);
+    if (done) sct_sheet_circle(&f->scene->sheet, tip, DOT, ROLE_U2, ROLE_PAGE, HAIR);
 }
 
 static sct_status write_values(const figure *f, const sct_member_curves *curves)
@@ -276,25 +298,48 @@ static sct_status write_values(const figure *f, const sct_member_curves *curves)
 /* ---- all -----------------------------------------------------------------------------------------------------------
  */
 
-/* A bar as long as a round value, at the right of the figure. */
-static void value_bar(const figure *f)
+/* A free place for a bar of this height with its words: at the right, at the left, below everything. */
+static sct_point place_of_bar(const figure *f, double width, double half)
+{
+    enum { ROWS = 9 };
+    sct_choice choices[2 * ROWS + 1];
+    sct_point corner, opposite;
+    int n = 0;
+    sct_labels_bounds(f->scene->labels, &corner, &opposite);
+    for (int side = 0; side < 2; side++)
+        for (int row = 0; row < ROWS; row++) {
+            const double x = side == 0 ? fmin(opposite.x + 40, width - 76) : corner.x + 32;
+            const double y = 0.5 * (corner.y + opposite.y) +
+                             (row % 2 == 0 ? 0.5 : -0.5) * (row + 1) / 2 * (opposite.y - corner.y) / (ROWS + 1);
+            choices[n] = (sct_choice){sct_box_level((sct_point){x, y}, 30, half + 2), n};
+            n++;
+        }
+    choices[n] = (sct_choice){sct_box_level((sct_point){width - 76, opposite.y + half + 8}, 30, half + 2), n};
+    const int label = sct_labels_ask(f->scene->labels, choices, n + 1);
+    sct_labels_settle(f->scene->labels);
+    const int choice = sct_labels_choice(f->scene->labels, label);
+    const sct_box *box = &choices[choice < 0 ? n : choice].box;
+    if (choice < 0) sct_labels_block(f->scene->labels, *box, SCT_SOLID, -1);
+    return (sct_point){box->x - 26, box->y};
+}
+
+/* A bar as long as a round value. */
+static void value_bar(const figure *f, double width)
 {
     const bool us = f->scene->result->us_customary;
     const sct_display shown = f->of->kind == DIAGRAM_MOMENT ? SCT_SHOWN_MOMENT : SCT_SHOWN_FORCE;
-    const double si = f->of->kind == DIAGRAM_MOMENT ? (us ? 1355.8179483314004 : 1e3) : us ? 4448.2216152605 : 1e3;
+    const double si = sct_shown_size(shown, us);
     const double most = 0.9 * f->largest / si, power = pow(10, floor(log10(most))), times = most / power;
     const double round = power * (times >= 5 ? 5 : times >= 2 ? 2 : 1), half = 0.5 * round * si * f->unit;
-    sct_point corner, opposite;
+    const sct_point p = place_of_bar(f, width, half);
     char words[48];
-    sct_labels_bounds(f->scene->labels, &corner, &opposite);
-    const double x = opposite.x + 14, y = 0.5 * (f->scene->low.y + f->scene->high.y);
-    sct_sheet_line(&f->scene->sheet, (sct_point){x, y - half}, (sct_point){x, y + half}, ROLE_U2, MEDIUM);
+    sct_sheet_line(&f->scene->sheet, (sct_point){p.x, p.y - half}, (sct_point){p.x, p.y + half}, ROLE_U2, MEDIUM);
     for (int end = -1; end <= 1; end += 2)
-        sct_sheet_line(&f->scene->sheet, (sct_point){x - 4, y + end * half}, (sct_point){x + 4, y + end * half},
+        sct_sheet_line(&f->scene->sheet, (sct_point){p.x - 4, p.y + end * half}, (sct_point){p.x + 4, p.y + end * half},
                        ROLE_U2, MEDIUM);
     sct_number_format(words, sizeof words, "%.10g\xE2\x80\xAF%s", round, sct_shown_unit(shown, us));
-    sct_sheet_words(&f->scene->sheet, (sct_point){x + 8, y + BASELINE * LABEL}, LABEL, ANCHOR_START, ROLE_SOFT, words);
-    sct_labels_block(f->scene->labels, sct_box_level((sct_point){x + 20, y}, 26, half + 1), SCT_SOLID, -1);
+    sct_sheet_words(&f->scene->sheet, (sct_point){p.x + 8, p.y + BASELINE * LABEL}, LABEL, ANCHOR_START, ROLE_SOFT,
+                    words);
 }
 
 sct_status sct_diagram_draw(sct_scene *scene, const sct_diagram_of *of, double width, bool *drawn)
@@ -320,23 +365,25 @@ sct_status sct_diagram_draw(sct_scene *scene, const sct_diagram_of *of, double w
     sct_ends_draw(scene);
     sct_ends_block(scene);
     status = write_values(&f, curves);
-    value_bar(&f);
+    value_bar(&f, width);
     return status;
 }
 
 void sct_diagram_words(const sct_scene *scene, const sct_diagram_of *of, char *out, size_t room)
 {
     static const char *const KINDS[] = {"Bending moment", "Shear force", "Axial force"};
-    static const char *const SIDES[] = {"on the side in tension", "positive to the left of the member's direction",
-                                        "tension to the left of the member's direction"};
+    static const char *const SIDES[2][3] = {
+        {"on the side in tension", "positive to the left of the member's direction",
+         "tension to the left of the member's direction"},
+        {"on the side in tension", "positive along the local axis of that plane", "tension along local axis 1"}};
     const sct_result *r = scene->result;
     const sct_display shown = of->kind == DIAGRAM_MOMENT ? SCT_SHOWN_MOMENT : SCT_SHOWN_FORCE;
     const char *plane = r->dimensions == 2 || of->kind == DIAGRAM_AXIAL ? ""
                         : of->plane == 0                                ? " in plane"
                                                                         : " out of plane";
-    char which[160] = "largest and smallest of the combinations for strength";
+    char which[160] = "envelope of the combinations for strength";
     if (!of->is_envelope && r->n_combinations > 0)
         sct_words_fit(r->combinations[scene->options.combination], 300, TEXT, false, which, sizeof which);
     sct_number_format(out, room, "%s%s (%s), %s, %s", KINDS[of->kind], plane, which,
-                      sct_shown_unit(shown, r->us_customary), SIDES[of->kind]);
+                      sct_shown_unit(shown, r->us_customary), SIDES[r->dimensions - 2][of->kind]);
 }

@@ -3,7 +3,7 @@
 #include <math.h>
 #include <stdlib.h>
 
-enum { BETWEEN = 20, ENVELOPE_POINTS = 41 };
+enum { BETWEEN = 20, ENVELOPE_POINTS = 61 };
 
 double sct_curve_at(const sct_curve *c, double x)
 {

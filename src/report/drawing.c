@@ -93,7 +93,7 @@ static void write_notes(const sct_scene *scene, words_of_sheet *w)
                         scene->detail == DETAIL_SELECTIVE ? "0.90" : "1 (20 worst)");
     sct_ends_key(scene, &w->left);
     sct_held_key(scene, &w->left);
-    if (r->dimensions == 3)
+    if (sct_figure_has_views(r))
         sct_text_add(&w->left, "In the flat views the most used of members that lie behind one another is in front. ");
     sct_marks_left(scene, &w->left);
 }
@@ -235,7 +235,7 @@ static sct_status put_page(sct_scene *scene, const sct_layout *l, sct_sheet *pag
         y = fmax(y, put_panel(scene, l, page, top, w));
     else if (r->dimensions == 3 || scene->detail == DETAIL_OVERVIEW)
         y = put_tables_below(scene, l, page, y + 36);
-    if (r->dimensions == 3) status = sct_figure_views(scene, l, page, &y);
+    if (sct_figure_has_views(r)) status = sct_figure_views(scene, l, page, &y);
     if (status != SCT_OK) return status;
     if (w->left.data != NULL && w->left.size > 0)
         y = put_lines(page, y + 26, l->width - 2 * SHEET_MARGIN, LABEL, w->left.data);

@@ -164,8 +164,11 @@ void sct_ends_words(sct_scene *scene)
             const sct_member_end *of = &r->model->members[m].end[end];
             sct_quantity words;
             sct_quantity_stiffness(words, of->stiffness[of->fixity[0] == SCT_SPRUNG ? 0 : 1], true, r->us_customary);
-            sct_marks_near(scene, mark_at(scene, m, end), 8, (sct_point){0, 0},
-                           &(sct_word_run){words, ROLE_SOFT, false}, 1);
+            const sct_point at = mark_at(scene, m, end), d = ray_of(scene, m, end).d;
+            bool done = false;
+            for (double along = 0; along < 90 && !done; along += 25) /* beside the spring, or further into the member */
+                done = sct_marks_near(scene, (sct_point){at.x + along * d.x, at.y + along * d.y}, 8, (sct_point){0, 0},
+                                      &(sct_word_run){words, ROLE_SOFT, false}, 1);
         }
 }
 

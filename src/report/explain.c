@@ -138,7 +138,8 @@ sct_status sct_explain(const sct_result *result, const char *member, char **text
                     g,
                     sct_hand_units_of(result->us_customary),
                     sct_bar_rule_of(result->model, index, m->L),
-                    {sqrt(g->I[0] / g->A), sqrt(g->I[1] / g->A)}};
+                    {sqrt(g->I[0] / g->A), sqrt(g->I[1] / g->A)},
+                    m->is_bent ? 28 : 26};
     head(&s);
     given(&s, index);
     strengths(&s);

@@ -86,9 +86,11 @@ sct_status sct_figure_utilisations(sct_scene *scene, const sct_layout *l, sct_sh
     return put(scene, page, y);
 }
 
-static void head(sct_sheet *page, double *y, const char *words)
+static void head(sct_sheet *page, const sct_layout *l, double *y, const char *words)
 {
-    sct_sheet_words(page, (sct_point){SHEET_MARGIN, *y + HEADING_DOWN}, TEXT, ANCHOR_START, ROLE_SOFT, words);
+    char cut[320];
+    sct_words_fit(words, l->width - 2 * SHEET_MARGIN, TEXT, false, cut, sizeof cut);
+    sct_sheet_words(page, (sct_point){SHEET_MARGIN, *y + HEADING_DOWN}, TEXT, ANCHOR_START, ROLE_SOFT, cut);
     *y += HEADING_HEIGHT;
 }
 
@@ -103,7 +105,7 @@ sct_status sct_figure_deflected(sct_scene *scene, const sct_layout *l, sct_sheet
     status = new_labels(scene, l);
     if (status == SCT_OK) status = sct_deflected_draw(scene, factor);
     if (status != SCT_OK) return status;
-    head(page, y, words);
+    head(page, l, y, words);
     return put(scene, page, y);
 }
 
@@ -116,7 +118,7 @@ static sct_status put_diagram(sct_scene *scene, const sct_layout *l, const sct_d
     if (status == SCT_OK) status = sct_diagram_draw(scene, of, l->width, &drawn);
     if (status != SCT_OK || !drawn) return status;
     sct_diagram_words(scene, of, words, sizeof words);
-    head(page, y, words);
+    head(page, l, y, words);
     return put(scene, page, y);
 }
 
@@ -142,12 +144,17 @@ sct_status sct_figure_diagrams(sct_scene *scene, const sct_layout *l, sct_sheet 
 /* ---- flat views ----------------------------------------------------------------------------------------------------
  */
 
-enum { VIEWS = 3 };
+enum { VIEWS = 3, VIEW_MEMBERS = 1000 };
 static const double VIEW_GAP = 76, VIEW_HIGHEST = 280, VIEW_LABELS = 60; /* [u] between views, for their dimensions */
 static const struct {
     int across, up;
     const char *words;
-} VIEW[VIEWS] = {{0, 2, "Seen along y"}, {1, 2, "Seen along x, from its far end"}, {0, 1, "From above"}};
+} VIEW[VIEWS] = {{0, 2, "Seen along y"}, {1, 2, "Seen along \xE2\x88\x92x"}, {0, 1, "From above"}};
+
+bool sct_figure_has_views(const sct_result *result)
+{
+    return result->dimensions == 3 && result->n_members <= VIEW_MEMBERS;
+}
 
 /* The least used first, so that where members lie behind one another the most used is seen. */
 static sct_status draw_view(sct_scene *scene)
@@ -164,6 +171,7 @@ static sct_status put_view(const sct_scene *whole, int view, sct_point corner, d
     sct_point low;
     sct_status status = sct_scene_open(&scene, whole->result, &whole->options);
     if (status == SCT_OK) {
+        scene.given_factor = whole->depth_factor;
         sct_project_flat(&scene, VIEW[view].across, VIEW[view].up);
         sct_scene_lay_to_scale(&scene, corner, scale);
         scene.labels = sct_labels_new((sct_point){scene.low.x - VIEW_LABELS, scene.low.y - VIEW_LABELS},
@@ -201,7 +209,9 @@ sct_status sct_figure_views(const sct_scene *scene, const sct_layout *l, sct_she
     for (int v = 0; v < VIEWS; v++) {
         const double fall = scale * (down - size[VIEW[v].up]); /* they stand on one line */
         sct_point opposite;
-        sct_sheet_words(page, (sct_point){x - 20, *y + HEADING_DOWN}, TEXT, ANCHOR_START, ROLE_SOFT, VIEW[v].words);
+        char cut[64];
+        sct_words_fit(VIEW[v].words, scale * size[VIEW[v].across] + spare + VIEW_GAP - 8, TEXT, false, cut, sizeof cut);
+        sct_sheet_words(page, (sct_point){x - 20, *y + HEADING_DOWN}, TEXT, ANCHOR_START, ROLE_SOFT, cut);
         const sct_status status = put_view(scene, v, (sct_point){x, top + fall}, scale, page, &opposite);
         if (status != SCT_OK) return status;
         bottom = fmax(bottom, opposite.y);

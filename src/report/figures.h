@@ -24,7 +24,9 @@ sct_status sct_figure_utilisations(sct_scene *scene, const sct_layout *l, sct_sh
 sct_status sct_figure_deflected(sct_scene *scene, const sct_layout *l, sct_sheet *page, double *y);
 /** The diagrams asked for, each under its heading. */
 sct_status sct_figure_diagrams(sct_scene *scene, const sct_layout *l, sct_sheet *page, double *y);
-/** A space structure seen along y, along x and from above, to one scale, with dimensions. */
+/** Whether a structure gets flat views: in space, with few enough members to be told apart. */
+bool sct_figure_has_views(const sct_result *result);
+/** A space structure seen along y, against x and from above, to one scale, with dimensions. */
 sct_status sct_figure_views(const sct_scene *scene, const sct_layout *l, sct_sheet *page, double *y);
 
 /** The name of the combination that is shown, cut to a line. */

@@ -85,7 +85,9 @@ static void draw_moment(sct_scene *scene, sct_point p, double radius, const doub
     char words[SCT_QUANTITY_ROOM + 16];
     sct_quantity_moment(size, sct_length3(M), scene->result->us_customary);
     sct_number_format(words, sizeof words, "%s\xE2\x80\xAF%s", size, scene->result->us_customary ? "kip ft" : "kNm");
-    sct_marks_near(scene, p, radius + 2, (sct_point){0, 0}, &(sct_word_run){words, ROLE_INK, false}, 1);
+    bool done = false;
+    for (double off = radius + 2; off < radius + 50 && !done; off += 15)
+        done = sct_marks_near(scene, p, off, (sct_point){0, 0}, &(sct_word_run){words, ROLE_INK, false}, 1);
 }
 
 /* ---- line loads ----------------------------------------------------------------------------------------------------
@@ -142,9 +144,12 @@ static void line_words(sct_scene *scene, const sct_line_load *l, const stretch *
         sct_number_format(words, sizeof words, "%s\xE2\x80\xAF%s", from, unit);
     else
         sct_number_format(words, sizeof words, "%s to %s\xE2\x80\xAF%s", from, to, unit);
-    const sct_point middle = far_end(s, 0.5);
+    static const double PLACES[] = {0.5, 0.35, 0.65, 0.2, 0.8};
     const double x = s->reach[0].x + s->reach[1].x, y = s->reach[0].y + s->reach[1].y, length = fmax(hypot(x, y), 1e-9);
-    sct_marks_near(scene, middle, 3, (sct_point){x / length, y / length}, &(sct_word_run){words, ROLE_INK, false}, 1);
+    bool done = false;
+    for (int i = 0; i < 5 && !done; i++)
+        done = sct_marks_near(scene, far_end(s, PLACES[i]), 3, (sct_point){x / length, y / length},
+                              &(sct_word_run){words, ROLE_INK, false}, 1);
 }
 
 /* The far line, and arrows between it and the member. */

@@ -289,7 +289,7 @@ static double choose_depth_factor(const sct_scene *scene)
 static void set_depths(sct_scene *scene)
 {
     const sct_result *r = scene->result;
-    scene->depth_factor = choose_depth_factor(scene);
+    scene->depth_factor = scene->given_factor > 0 ? scene->given_factor : choose_depth_factor(scene);
     for (int m = 0; m < r->n_members; m++) {
         sct_stick *s = &scene->sticks[m];
         const double least =

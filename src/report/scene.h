@@ -43,6 +43,7 @@ typedef struct sct_scene {
     sct_detail detail;
     double ring;         /* [u] radius of a joint */
     double depth_factor; /* depths drawn x this; 0: not to scale */
+    double given_factor; /* of another figure on the sheet; 0: choose one */
     bool is_widened;     /* some thin members are drawn at the smallest width */
     double turn, tilt;   /* [rad] of the axonometric view; 0 in a plane */
     bool is_flat;        /* seen straight along an axis of the model: a plane model always */

@@ -33,6 +33,11 @@ const char *sct_shown_unit(sct_display quantity, bool us_customary)
     return unit_of(quantity, us_customary).name;
 }
 
+double sct_shown_size(sct_display quantity, bool us_customary)
+{
+    return unit_of(quantity, us_customary).size;
+}
+
 /* True when the value is no finite number; what stands for it is written. */
 static bool add_special(sct_text *text, double value)
 {

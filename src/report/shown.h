@@ -25,6 +25,9 @@ typedef enum sct_display { SCT_SHOWN_LIST(SCT_SHOWN_NAME) SCT_SHOWN_COUNT } sct_
 /** "kN" or "kip", ... */
 const char *sct_shown_unit(sct_display quantity, bool us_customary);
 
+/** That unit in SI. */
+double sct_shown_size(sct_display quantity, bool us_customary);
+
 /** A value in SI, in the unit shown, with its digits and without the unit. Nothing is written for NAN; infinities are
  * "inf". A rounded zero has no sign. */
 void sct_text_shown(sct_text *text, double value, sct_display quantity, bool us_customary);

@@ -8,7 +8,7 @@ enum { MOST_BENT = 40, MOST_BOWS = 6, MOST_MOMENTS = 12 };
 static const sct_member_result *worst_bent(const sct_result *r, int g)
 {
     const int m = r->groups[g].worst_member;
-    return m >= 0 && r->members[m].is_bent && r->members[m].check != SCT_CHECK_NONE ? &r->members[m] : NULL;
+    return m >= 0 && r->members[m].is_bent && r->members[m].combination >= 0 ? &r->members[m] : NULL;
 }
 
 static void bending_row(const sct_page *p, sct_table *t, const sct_member_result *m)

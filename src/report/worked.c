@@ -6,7 +6,7 @@
 #include "base/number.h"
 #include "report/shown.h"
 
-enum { WIDTH = 26, DIGITS = 5 }; /* of the first column; significant */
+enum { DIGITS = 5 }; /* significant */
 
 sct_hand_units sct_hand_units_of(bool us_customary)
 {
@@ -51,7 +51,7 @@ void sct_worked_first_column(sct_worked *s, const char *words)
     const size_t start = s->out->size;
     sct_text_add(s->out, "  ");
     sct_text_add(s->out, words);
-    sct_text_pad(s->out, start, WIDTH, false);
+    sct_text_pad(s->out, start, s->first_column, false);
 }
 
 void sct_worked_verdict(sct_worked *s, double utilisation)

@@ -25,6 +25,7 @@ typedef struct sct_worked {
     sct_hand_units in;
     sct_bar_rule rule;
     double i[2];
+    int first_column; /* its width */
 } sct_worked;
 
 /** Words with numbers put in: # takes the next number, $ is the unit of stress, @ of length, ! of force. */
