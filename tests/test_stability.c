@@ -513,6 +513,49 @@ START_TEST(sway_is_told_from_bowing_between_joints)
 }
 END_TEST
 
+/* The ends of members count in either order, and the shares of all members make one. */
+START_TEST(members_share_the_mode)
+{
+    double sway[2];
+    for (int turned = 0; turned < 2; turned++) {
+        sct_model *m = portal(true, true, 1.0);
+        if (turned) {
+            m->members[1].from = 2;
+            m->members[1].to = 3;
+        }
+        divided d = divide(m);
+        buckle(&d, 0);
+        sway[turned] = sct_stability_sway(d.stability, &d.modes, 0);
+        double sum = 0.0;
+        for (int e = 0; e < 3; e++) sum += sct_stability_member(d.stability, &d.modes, 0, e, SCT_IN_PLANE).share;
+        ck_close(sum, 1.0, 1e-12);
+        const sct_member_mode leg = sct_stability_member(d.stability, &d.modes, 0, 1, SCT_IN_PLANE);
+        ck_close(leg.Lcr, 1.1565, 1e-4); /* K = pi/phi, table of portals */
+        ck_assert_double_gt(leg.share, 0.3);
+        ck_assert_double_gt(sct_stability_member(d.stability, &d.modes, 0, 2, SCT_IN_PLANE).Lcr, 1e3);
+        divided_free(&d);
+    }
+    ck_close(sway[1], sway[0], 1e-6);
+    ck_assert_double_gt(sway[0], 0.8);
+}
+END_TEST
+
+/* A proof leaves the factor of another matrix behind. */
+START_TEST(finding_again_finds_the_same)
+{
+    divided d = divide(portal(false, true, 2.0));
+    buckle(&d, 0);
+    const double first = d.modes.lambda[0];
+    ck_assert_int_eq(sct_vibration_find(d.vibration, SCT_MODES_PROVEN, &d.modes), SCT_OK);
+    const double omega2 = d.modes.lambda[0];
+    buckle(&d, 0);
+    ck_close(d.modes.lambda[0], first, 1e-9);
+    ck_assert_int_eq(sct_vibration_find(d.vibration, SCT_MODES_COLD, &d.modes), SCT_OK);
+    ck_close(d.modes.lambda[0], omega2, 1e-9);
+    divided_free(&d);
+}
+END_TEST
+
 START_TEST(limits_are_logarithms_with_their_slopes)
 {
     sct_model *m = plane();
@@ -971,6 +1014,8 @@ int main(void)
     tcase_add_test(c, one_strut_among_hanging_rods);
     tcase_add_test(c, a_beam_that_states_one_plane_keeps_one_piece);
     tcase_add_test(c, sway_is_told_from_bowing_between_joints);
+    tcase_add_test(c, members_share_the_mode);
+    tcase_add_test(c, finding_again_finds_the_same);
     tcase_add_test(c, limits_are_logarithms_with_their_slopes);
     tcase_add_test(c, a_warm_start_finds_the_same);
     tcase_add_test(c, what_a_factor_says_about_first_order_results);

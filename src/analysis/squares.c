@@ -8,6 +8,7 @@
 /* ---- linear functions of the unknowns of a member -----------------------------------------------------------------
  */
 
+/* Zero before the first term. */
 typedef struct row {
     int n, dof[SCT_MOST_SPRING_DOF];
     double b[SCT_MOST_SPRING_DOF];
@@ -17,10 +18,7 @@ static void row_add(row *r, int dof, double b)
 {
     int i = 0;
     while (i < r->n && r->dof[i] != dof) i++;
-    if (i == r->n) {
-        r->dof[r->n++] = dof;
-        r->b[i] = 0.0;
-    }
+    if (i == r->n) r->dof[r->n++] = dof;
     r->b[i] += b;
 }
 

@@ -29,7 +29,7 @@ struct sct_stability {
     course *N;    /* pieces: their force */
     course *held; /* pieces: dN/dA by own weight along the member with its ends held */
     course *gain; /* pieces: what the eigenvalue gains by the force, sum of g (b'x)(b'y) */
-    double *wN;   /* n_cases x springs of the structure */
+    double *wN;   /* n_cases x springs of the structure; 0 beyond the axial ones */
 };
 
 static sct_status set_up(sct_stability *s, int wanted)
@@ -173,7 +173,6 @@ static void weigh(sct_stability *s, double alpha, double D[])
     const double *factor = st->model->combinations[s->combination].factor;
     const sct_properties *sizes = sct_solver_sizes(sct_fine_solver(s->fine));
     const size_t springs = (size_t)st->n_springs;
-    memset(s->wN, 0, (size_t)st->n_cases * springs * sizeof *s->wN);
     for (int e = 0; e < st->n_bars; e++) {
         int first;
         const int n = sct_fine_pieces(s->fine, e, &first), var = st->var_of_group[st->bars[e].group];
