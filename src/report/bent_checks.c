@@ -3,6 +3,8 @@
 #include <math.h>
 #include <stdlib.h>
 
+#include "report/whole.h"
+
 enum { BETWEEN = 40 }; /* stations between neighbouring loads and extremes: N and M there are quadratics and cubics */
 
 static double sum(const sct_bent_check *c)
@@ -57,6 +59,8 @@ sct_status sct_bent_checks_of(const sct_result *r, int combination, int member, 
         sct_bent_check *c = &out->check[out->n];
         if (!sct_bent_coefficients_of(&rule, (sct_bent_kind)kind, &shape, &c->by)) continue;
         if (kind == SCT_BENT_BUCKLING && !(out->N[0] < 0)) continue;
+        c->amplification = sct_amplification_in(r, combination);
+        for (int axis = 0; axis < 2; axis++) c->by.c[1 + axis] *= c->amplification;
         c->kind = sct_bent_check_kind((sct_bent_kind)kind);
         c->f = kind == SCT_BENT_TENSION ? rule.f_t : rule.f_c;
         find_worst(out, stations, n, (sct_bent_kind)kind, c);

@@ -7,7 +7,8 @@
 
 typedef struct sct_bent_check {
     sct_check_kind kind;
-    sct_bent_coefficients by;
+    sct_bent_coefficients by; /* of moments amplified as the combination asks for */
+    double amplification;
     double f;           /* [Pa] allowable stress of the extreme fibre */
     double x;           /* [m] from the start of the member */
     double N, M[2];     /* [N], [N m] there; of buckling N is the largest compression along the member */

@@ -15,13 +15,14 @@ static bool counts(const sct_worked *s, int axis)
 
 static void formula(sct_worked *s, const sct_bent_check *c)
 {
-    static const char *const TERM[2] = {" + |M_in|/(W_in f)", " + |M_out|/(W_out f)"};
+    static const char *const TERM[2] = {"|M_in|/(W_in f)", "|M_out|/(W_out f)"};
     sct_worked_line(s, "at x = # @: ", (double[]){c->x / s->in.length});
     sct_text_add(s->out, c->kind == SCT_CHECK_BENT_TENSION       ? "N/(A f)"
                          : c->kind == SCT_CHECK_BENT_COMPRESSION ? "-N/(A f)"
                                                                  : "|N|/(A sigma_cr/n)");
     for (int axis = 0; axis < 2; axis++)
-        if (counts(s, axis)) sct_text_add(s->out, TERM[axis]);
+        if (counts(s, axis)) sct_text_format(s->out, " + %s%s", c->amplification != 1 ? "a " : "", TERM[axis]);
+    if (c->amplification != 1) sct_worked_line(s, ", a = #", (double[]){c->amplification});
     sct_worked_line(s, ", f = # $\n", (double[]){c->f / s->in.stress});
 }
 
@@ -35,9 +36,12 @@ static void numbers(sct_worked *s, const sct_bent_check *c)
     else
         sct_worked_line(s, "= #/(# x #)", (double[]){N, A, f});
     for (int axis = 0; axis < 2; axis++)
-        if (counts(s, axis))
-            sct_worked_line(s, " + #/(# x #)",
+        if (counts(s, axis)) {
+            sct_text_add(s->out, " + ");
+            if (c->amplification != 1) sct_worked_line(s, "# x ", (double[]){c->amplification});
+            sct_worked_line(s, "#/(# x #)",
                             (double[]){fabs(c->M[axis]) / moment, s->g->W[axis] / pow(u->length, 3), f});
+        }
     sct_text_add(s->out, "\n");
 }
 

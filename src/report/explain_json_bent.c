@@ -21,6 +21,7 @@ static void check(sct_json *w, const sct_bent_check *c)
         sct_json_string(w, "axis", c->by.axis == 0 ? "in_plane" : "out_of_plane");
         sct_json_number(w, "critical_stress_Pa", c->by.column.sigma);
     }
+    sct_json_number(w, "moments_times", c->amplification);
     sct_json_key(w, "per_N_and_Nm");
     sct_json_vector(w, c->by.c, 3);
     sct_json_number(w, "utilisation", c->utilisation);

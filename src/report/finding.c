@@ -1,7 +1,10 @@
 /* The finding of a result in words. */
 #include "finding.h"
 
+#include <math.h>
+
 #include "quantity.h"
+#include "whole.h"
 
 static const char *const NUMBERS[] = {"None", "One",   "Two",   "Three", "Four", "Five",
                                       "Six",  "Seven", "Eight", "Nine",  "Ten"};
@@ -30,12 +33,60 @@ static const char *combination_name(const sct_result *r, int combination)
     return combination >= 0 && combination < r->n_combinations ? r->combinations[combination] : NULL;
 }
 
+/* What is worked hardest of all that is neither a member nor a joint: its utilisation and its name; 0 for none. */
+static double worst_other(const sct_result *r, sct_text *what)
+{
+    double most = 0;
+    const char *kind = "", *name = "";
+    for (int i = 0; i < r->n_bows; i++)
+        if (r->bows[i].utilisation > most) {
+            most = r->bows[i].utilisation;
+            kind = "bow of ";
+            name = r->members[r->bows[i].member].name;
+        }
+    for (int i = 0; i < r->n_criticals; i++)
+        if (sct_critical_utilisation(r, &r->criticals[i]) > most) {
+            most = sct_critical_utilisation(r, &r->criticals[i]);
+            kind = "critical load factor under ";
+            name = r->combinations[r->criticals[i].combination];
+        }
+    if (sct_frequency_utilisation(r) > most) {
+        most = sct_frequency_utilisation(r);
+        kind = "lowest frequency";
+        name = "";
+    }
+    sct_text_format(what, "%s%s", kind, name);
+    return most;
+}
+
+/* What governs a design that keeps every limit: another limit, a deflection, or a member. */
+static void tell_governing(const sct_result *r, int worst, int d, double of_other, const char *other, sct_text *out)
+{
+    const double of_member = worst >= 0 ? r->members[worst].utilisation : -1;
+    const double of_deflection = d >= 0 ? r->deflections[d].utilisation : -1;
+    sct_quantity words;
+    if (of_other > fmax(of_member, of_deflection)) {
+        sct_quantity_utilisation(words, of_other);
+        sct_text_format(out, "Every limit is kept; the %s governs at %s", other, words);
+    } else if (d >= 0 && of_deflection > of_member) {
+        sct_quantity_utilisation(words, of_deflection);
+        sct_text_format(out, "Every limit is kept; deflection governs at %s", words);
+    } else if (worst >= 0) {
+        sct_quantity_utilisation(words, of_member);
+        sct_text_format(out, "Every limit is kept; %s governs at %s", r->members[worst].name, words);
+    }
+}
+
 void sct_finding_heading(const sct_result *r, sct_text *out)
 {
     sct_quantity words;
     int worst;
     const int n = count_above(r, &worst), d = worst_deflection(r);
-    if (n > 0) {
+    sct_text other = {0};
+    const double of_other = worst_other(r, &other);
+    if (other.failed) {
+        out->failed = true;
+    } else if (n > 0) {
         if (n <= 10)
             sct_text_add(out, NUMBERS[n]);
         else
@@ -44,15 +95,15 @@ void sct_finding_heading(const sct_result *r, sct_text *out)
     } else if (d >= 0 && r->deflections[d].utilisation > 1) {
         sct_quantity_utilisation(words, r->deflections[d].utilisation);
         sct_text_format(out, "The deflection at %s is %s of its limit", r->joints[r->deflections[d].joint].name, words);
+    } else if (of_other > 1) {
+        sct_quantity_utilisation(words, of_other);
+        sct_text_format(out, "The %s is at %s of its limit", other.data, words);
     } else if (!r->kept) {
         sct_text_add(out, "Not every limit is kept");
-    } else if (d >= 0 && (worst < 0 || r->deflections[d].utilisation > r->members[worst].utilisation)) {
-        sct_quantity_utilisation(words, r->deflections[d].utilisation);
-        sct_text_format(out, "Every limit is kept; deflection governs at %s", words);
-    } else if (worst >= 0) {
-        sct_quantity_utilisation(words, r->members[worst].utilisation);
-        sct_text_format(out, "Every limit is kept; %s governs at %s", r->members[worst].name, words);
+    } else {
+        tell_governing(r, worst, d, of_other, other.data, out);
     }
+    sct_text_free(&other);
 }
 
 static void tell_worst_member(const sct_result *r, int worst, sct_text *out)

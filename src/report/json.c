@@ -4,6 +4,7 @@
 #include "report/json_bent.h"
 #include "report/json_text.h"
 #include "report/supports.h"
+#include "report/whole.h"
 
 static const char *combination_name(const sct_result *r, int combination)
 {
@@ -297,6 +298,7 @@ sct_status sct_result_json(const sct_result *result, sct_text *out)
     add_members(&w, result);
     add_deflections(&w, result);
     if (result->has_bent) sct_json_bows(&w, result);
+    sct_json_whole_structure(&w, result);
     add_reactions(&w, result);
     add_joints(&w, result);
     sct_json_end(&w, "}");

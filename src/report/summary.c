@@ -8,6 +8,7 @@
 #include "report/page.h"
 #include "report/summary_bent.h"
 #include "report/supports.h"
+#include "report/whole.h"
 
 enum {
     MOST_GROUPS = 40,
@@ -318,6 +319,7 @@ sct_status sct_summary(const sct_result *result, bool colour, sct_text *out)
     sct_summary_bending(&p);
     add_deflections(&p);
     sct_summary_bows(&p);
+    sct_summary_whole(&p);
     add_prices(&p);
     add_search(&p);
     add_reactions(&p);
