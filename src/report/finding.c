@@ -65,7 +65,7 @@ static void tell_governing(const sct_result *r, int worst, int d, double of_othe
     const double of_member = worst >= 0 ? r->members[worst].utilisation : -1;
     const double of_deflection = d >= 0 ? r->deflections[d].utilisation : -1;
     sct_quantity words;
-    if (of_other > fmax(of_member, of_deflection)) {
+    if (of_other > fmax(0, fmax(of_member, of_deflection))) {
         sct_quantity_utilisation(words, of_other);
         sct_text_format(out, "Every limit is kept; the %s governs at %s", other, words);
     } else if (d >= 0 && of_deflection > of_member) {
