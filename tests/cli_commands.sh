@@ -45,6 +45,8 @@ run 2 "an infinite tolerance" size --tolerance 1e999 "$DEMO"; says "expected a n
 run 2 "a comma is no point" size --tolerance 0,5 "$DEMO"; says "expected a number"
 run 2 "a word that is none" size --progress sometimes "$DEMO"; says "expected one of auto, always, never, json"
 run 2 "two combinations in one drawing" size "$DEMO" -o "$work/x" --draw-loads a --draw-deflected b; says "different combinations"
+run 2 "two diagrams of two combinations" size "$DEMO" -o "$work/x" --draw-moment a --draw-shear b; says "--draw-moment and --draw-shear name different combinations"
+run 2 "a diagram without a folder" size "$DEMO" --draw-axial envelope; says "--draw-axial needs -o"
 run 2 "a drawing without a folder" size "$DEMO" --draw-loads "full snow"; says "needs -o"
 run 2 "a drawn combination that is none" size "$DEMO" -o "$work/y" --draw-loads "ful snow"; says 'did you mean "full snow"?'
 [ -z "$(ls "$work/y" 2>/dev/null)" ]; ok "nothing was written"
@@ -71,6 +73,13 @@ run 0 "check writes its outputs" check "$work/demo/model.json" -o "$work/checked
 run 0 "size of a sized model only checks" size "$work/demo/model.json"; says "every group is held: nothing to size"
 run 3 "check of an unsized model" check "$DEMO"; says '/groups/top chord: the group has no size to check; expected "section"'; silent_out
 run 0 "explain" explain "$work/demo/model.json" --member T4; prints "Johnson: sigma_cr = fy (1 - fy lambda^2/(4 pi^2 E))"; prints "passes"; prints "$CAUTION"
+FRAME=models/demo_frame.json
+run 0 "a frame with diagrams" size "$FRAME" -o "$work/frame" --draw-loads "floors full" --draw-moment "floors full" --draw-shear envelope
+prints "Bending, at the place that governs"; prints "Moments of supports"; prints "Elastic critical load factors"
+grep -q "Bending moment (floors full), kNm, on the side in tension" "$work/frame/drawing.svg"; ok "moments are drawn"
+grep -q "Shear force (envelope of the combinations for strength)" "$work/frame/drawing.svg"; ok "an envelope is drawn beside a combination"
+grep -q "^end,roof 1,roof beams," "$work/frame/schedule.csv"; ok "the schedule has the ends"
+run 0 "explain a beam" explain "$work/frame/model.json" --member "roof 1"; prints "|N|/(A sigma_cr/n) + |M_in|/(W_in f)"; prints "Bow, |v|/limit"
 run 2 "explain without a member" explain "$work/demo/model.json"; says "--member is missing"
 run 2 "explain of no member" explain "$work/demo/model.json" --member T44; says 'no member "T44"; did you mean "T4"?'
 

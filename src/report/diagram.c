@@ -13,6 +13,7 @@
 #include "shown.h"
 #include "symbols.h"
 
+static const double LARGEST_OF_MEMBER = 0.6; /* of the mean length: storeys stay apart */
 static const double LARGEST_OF_WIDTH = 0.07, LEAST_OF_LARGEST = 0.02, SAME = 1e-6; /* of the sheet; of the largest */
 static const double HATCH_PITCH = 6, HATCH_LEAST = 1, DOT = 2.2, SIGN_RADIUS = 6, SIGN_FIELD = 16; /* [u] */
 enum { LABELS_PER_MEMBER = 8, LABELS_IN_OVERVIEW = 20, LABELS_SELECTED = 60, WORDS = 96 };
@@ -342,6 +343,13 @@ static void value_bar(const figure *f, double width)
                     words);
 }
 
+static double mean_length(const sct_scene *scene)
+{
+    double sum = 0;
+    for (int m = 0; m < scene->result->n_members; m++) sum += scene->sticks[m].length;
+    return scene->result->n_members > 0 ? sum / scene->result->n_members : 0;
+}
+
 sct_status sct_diagram_draw(sct_scene *scene, const sct_diagram_of *of, double width, bool *drawn)
 {
     const sct_result *r = scene->result;
@@ -351,7 +359,7 @@ sct_status sct_diagram_draw(sct_scene *scene, const sct_diagram_of *of, double w
     *drawn = false;
     if (status != SCT_OK || !(f.largest > 0) || !isfinite(f.largest)) return status;
     *drawn = true;
-    f.unit = LARGEST_OF_WIDTH * width / f.largest;
+    f.unit = fmin(LARGEST_OF_WIDTH * width, LARGEST_OF_MEMBER * mean_length(scene)) / f.largest;
     for (int m = 0; m < r->n_members; m++) {
         const sct_stick *s = &scene->sticks[m];
         sct_labels_block(scene->labels, sct_box_about(s->from, s->to, 2), SCT_BAND, m);
