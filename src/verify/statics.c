@@ -2,38 +2,17 @@
  *
  * With P the projection of a joint onto what its support leaves free, the displacements (and rotations) are u =
  * settlement + P x, and x solves (P K P + c (I - P)) x = P (load - forces of the settlement). */
-#include "verify/statics.h"
-
 #include <math.h>
 #include <stdlib.h>
 #include <string.h>
 
 #include "base/random.h"
-#include "verify/matrix.h"
+#include "verify/work.h"
 
 static const long double GRAVITY = 9.80665L; /* [m/s2] standard value, ISO 80000-3 */
 static const double COSINE = 4e-16;          /* rounding of a direction cosine: four units */
 
-typedef struct work {
-    const sct_model *m;
-    const sct_verify_section *sections;
-    sct_statics *out;
-    int d;                         /* dimensions */
-    int stride;                    /* 3 displacements per joint and, in frames, 3 rotations */
-    int size, at[6];               /* unknowns per joint, and which of the six they are */
-    size_t n;                      /* stride * n_joints */
-    double lever;                  /* [m] mean length of a member: a rotation times this is beside a displacement */
-    long double (*dir)[3], *L, *k; /* n_members */
-    double *c[2];                  /* n_joints: stiffness that stands for a support, of displacements and rotations */
-    sct_matrix *matrix;
-    double *b;                           /* size * n_joints */
-    double *step;                        /* n */
-    long double *u, *settled, *load, *r; /* n each */
-    long double *free_part;              /* n_members: prescribed free elongation */
-    long double (*held)[12];             /* n_elements: what loads put on the joints */
-} work;
-
-static void work_free(work *w)
+static void work_free(sct_work *w)
 {
     free(w->dir);
     free(w->L);
@@ -54,7 +33,7 @@ static void work_free(work *w)
 /* ---- geometry -----------------------------------------------------------------------------------------------------
  */
 
-static bool allocate_members(work *w)
+static bool allocate_members(sct_work *w)
 {
     const size_t members = (size_t)w->m->n_members + 1;
     w->dir = calloc(members, sizeof *w->dir);
@@ -65,7 +44,7 @@ static bool allocate_members(work *w)
     return w->dir && w->L && w->k && w->free_part && w->out->element_of;
 }
 
-static void measure_members(work *w)
+static void measure_members(sct_work *w)
 {
     for (int e = 0; e < w->m->n_members; e++) {
         const sct_member *member = &w->m->members[e];
@@ -84,7 +63,7 @@ static void measure_members(work *w)
 }
 
 /* Which members are elements, and how many loads they carry; true: some joint turns. */
-static bool count_elements(work *w, size_t *n_loads)
+static bool count_elements(sct_work *w, size_t *n_loads)
 {
     sct_statics *out = w->out;
     bool has_turns = false;
@@ -103,7 +82,7 @@ static bool count_elements(work *w, size_t *n_loads)
 }
 
 /* The loads of each element, one behind the other: first counted, then put in. */
-static void list_loads(work *w)
+static void list_loads(sct_work *w)
 {
     sct_element *elements = w->out->elements;
     sct_element_load *next = w->out->element_loads;
@@ -124,7 +103,7 @@ static void list_loads(work *w)
     }
 }
 
-static bool make_elements(work *w)
+static bool make_elements(sct_work *w)
 {
     sct_statics *out = w->out;
     size_t n_loads = 0;
@@ -141,7 +120,7 @@ static bool make_elements(work *w)
     return true;
 }
 
-static void choose_unknowns(work *w)
+static void choose_unknowns(sct_work *w)
 {
     w->stride = w->out->has_turns ? 6 : 3;
     w->n = (size_t)w->stride * (size_t)w->m->n_joints;
@@ -149,129 +128,10 @@ static void choose_unknowns(work *w)
     for (int i = w->d == 2 ? 5 : 3; i < w->stride; i++) w->at[w->size++] = i;
 }
 
-/* ---- the matrix ---------------------------------------------------------------------------------------------------
- */
-
-/* v (stride) = P v of one joint */
-static void leave_free(const work *w, int joint, double v[])
-{
-    for (int kind = 0; 3 * kind < w->stride; kind++) {
-        const double(*P)[3] = (const double(*)[3])w->out->supports.free[kind][joint];
-        const double x[3] = {v[3 * kind], v[3 * kind + 1], v[3 * kind + 2]};
-        for (int i = 0; i < 3; i++) v[3 * kind + i] = P[i][0] * x[0] + P[i][1] * x[1] + P[i][2] * x[2];
-    }
-}
-
-/* Adds the block value * g h' of two joints' projected rows to the lower triangle. */
-static void add_block(work *w, const int joint[2], const double g[], const double h[], double value)
-{
-    for (int p = 0; p < w->size; p++) {
-        for (int q = 0; q < w->size; q++) {
-            const int i = joint[0] * w->size + p, j = joint[1] * w->size + q;
-            if (i >= j) sct_matrix_add(w->matrix, i, j, value * g[w->at[p]] * h[w->at[q]]);
-        }
-    }
-}
-
-/* Adds sum_ij K_ij row_i row_j' of a member; rows: [unknown][end][six], projected here. */
-static void add_member(work *w, int e, int n, double row[][2][6], const long double K[4][4])
-{
-    const int end[2] = {w->m->members[e].from, w->m->members[e].to};
-    for (int i = 0; i < n; i++) {
-        for (int s = 0; s < 2; s++) leave_free(w, end[s], row[i][s]);
-    }
-    for (int s = 0; s < 2; s++) {
-        for (int t = 0; t < 2; t++) {
-            for (int i = 0; i < n; i++) {
-                for (int j = 0; j < n; j++)
-                    add_block(w, (int[2]){end[s], end[t]}, row[i][s], row[j][t], (double)K[i][j]);
-            }
-        }
-    }
-}
-
-static void add_axial(work *w, int e)
-{
-    const long double K[4][4] = {{w->k[e]}};
-    double row[1][2][6] = {{{0}}};
-    for (int i = 0; i < w->d; i++) {
-        row[0][0][i] = -(double)w->dir[e][i];
-        row[0][1][i] = (double)w->dir[e][i];
-    }
-    w->c[0][w->m->members[e].from] += (double)w->k[e];
-    w->c[0][w->m->members[e].to] += (double)w->k[e];
-    add_member(w, e, 1, row, K);
-}
-
-static void add_element(work *w, const sct_element *x)
-{
-    const sct_member *member = &w->m->members[x->member];
-    for (int part = 0; part < SCT_TURNS; part++) {
-        double row[4][2][6];
-        const int n = sct_element_rows(x, part, row), turn = part == SCT_TWIST ? 0 : 1;
-        w->c[1][member->from] += (double)x->part[part].K[turn][turn];
-        w->c[1][member->to] += (double)x->part[part].K[n - 1][n - 1];
-        if (part == SCT_IN_PLANE || w->d == 3) add_member(w, x->member, n, row, x->part[part].K);
-    }
-}
-
-/* Elastic supports, and c (I - P). */
-static void add_supports(work *w, int joint)
-{
-    const sct_joint *j = &w->m->joints[joint];
-    for (int k = 0; k < j->n_springs; k++) {
-        const int kind = j->springs[k].is_turn;
-        double row[6] = {0};
-        if (3 * kind >= w->stride) continue;
-        memcpy(row + 3 * kind, j->springs[k].dir, sizeof j->springs[k].dir);
-        leave_free(w, joint, row);
-        add_block(w, (int[2]){joint, joint}, row, row, j->springs[k].stiffness);
-        w->c[kind][joint] += j->springs[k].stiffness;
-    }
-    for (int p = 0; p < w->size; p++) {
-        for (int q = 0; q <= p; q++) {
-            const int kind = w->at[p] / 3, i = w->at[p] % 3, k = w->at[q] % 3;
-            if (w->at[q] / 3 != kind) continue;
-            const double c = w->c[kind][joint] > 0.0 ? w->c[kind][joint] : 1.0;
-            const double away = (i == k) - w->out->supports.free[kind][joint][i][k];
-            sct_matrix_add(w->matrix, joint * w->size + p, joint * w->size + q, c * away);
-        }
-    }
-}
-
-static sct_status factor(work *w)
-{
-    sct_status status;
-    w->matrix = sct_matrix_new(w->m, w->size, &status);
-    if (status != SCT_OK) return status;
-    for (int e = 0; e < w->m->n_members; e++) add_axial(w, e);
-    for (int b = 0; b < w->out->n_elements && w->stride == 6; b++) add_element(w, &w->out->elements[b]);
-    for (int j = 0; j < w->m->n_joints; j++) add_supports(w, j);
-    return sct_matrix_factor(w->matrix);
-}
-
-/* step = P M^-1 P r */
-static void solve(work *w, const long double r[])
-{
-    for (int j = 0; j < w->m->n_joints; j++) {
-        double v[6];
-        for (int i = 0; i < w->stride; i++) v[i] = (double)r[w->stride * j + i];
-        leave_free(w, j, v);
-        for (int p = 0; p < w->size; p++) w->b[j * w->size + p] = v[w->at[p]];
-    }
-    sct_matrix_solve(w->matrix, w->b);
-    for (int j = 0; j < w->m->n_joints; j++) {
-        double *v = w->step + w->stride * j;
-        for (int i = 0; i < w->stride; i++) v[i] = 0.0;
-        for (int p = 0; p < w->size; p++) v[w->at[p]] = w->b[j * w->size + p];
-        leave_free(w, j, v);
-    }
-}
-
 /* ---- one case -----------------------------------------------------------------------------------------------------
  */
 
-static long double along(const work *w, int e, const long double u[])
+static long double along(const sct_work *w, int e, const long double u[])
 {
     const sct_member *member = &w->m->members[e];
     long double sum = 0.0L;
@@ -280,7 +140,7 @@ static long double along(const work *w, int e, const long double u[])
 }
 
 /* Adds sign * v (3 forces, 3 moments at each end of a member) to r. */
-static void push(const work *w, int e, long double sign, const long double v[2][6], long double r[])
+static void push(const sct_work *w, int e, long double sign, const long double v[2][6], long double r[])
 {
     const int end[2] = {w->m->members[e].from, w->m->members[e].to};
     for (int s = 0; s < 2; s++) {
@@ -289,7 +149,7 @@ static void push(const work *w, int e, long double sign, const long double v[2][
 }
 
 /* The force along the member and, of elements, the twelve forces at its ends, when the joints are at u. */
-static void pull(const work *w, int e, const long double u[], long double v[2][6])
+static void pull(const sct_work *w, int e, const long double u[], long double v[2][6])
 {
     const int b = w->out->element_of[e], end[2] = {w->m->members[e].from, w->m->members[e].to};
     memset(v, 0, sizeof(long double[2][6]));
@@ -307,7 +167,7 @@ static void pull(const work *w, int e, const long double u[], long double v[2][6
 }
 
 /* A bar's own weight goes to its joints; a beam's acts along it. */
-static void add_weight(work *w, const sct_case *c, int e)
+static void add_weight(sct_work *w, const sct_case *c, int e)
 {
     const sct_member *member = &w->m->members[e];
     if (sct_element_is_beam(w->m, e)) return;
@@ -318,7 +178,7 @@ static void add_weight(work *w, const sct_case *c, int e)
 }
 
 /* Settlements, loads at joints. */
-static void load_joints(work *w, const sct_case *c)
+static void load_joints(sct_work *w, const sct_case *c)
 {
     memset(w->settled, 0, w->n * sizeof *w->settled);
     memset(w->load, 0, w->n * sizeof *w->load);
@@ -333,7 +193,7 @@ static void load_joints(work *w, const sct_case *c)
     memcpy(w->u, w->settled, w->n * sizeof *w->u);
 }
 
-static void stretch_members(work *w, const sct_case *c)
+static void stretch_members(sct_work *w, const sct_case *c)
 {
     memset(w->free_part, 0, (size_t)w->m->n_members * sizeof *w->free_part);
     for (int i = 0; i < c->n_bar_actions; i++) {
@@ -346,14 +206,14 @@ static void stretch_members(work *w, const sct_case *c)
 }
 
 /* Copies a joint's first or last three numbers of each stride. */
-static void copy_joints(const work *w, int kind, const long double from[], double to[])
+static void copy_joints(const sct_work *w, int kind, const long double from[], double to[])
 {
     for (size_t i = 0; i < 3 * (size_t)w->m->n_joints; i++)
         to[i] = (double)from[i / 3 * (size_t)w->stride + 3 * (size_t)kind + i % 3];
 }
 
 /* Everything that acts; reports see what acts on sprung ends apart from the loads at the joints. */
-static void begin_case(work *w, int k)
+static void begin_case(sct_work *w, int k)
 {
     const sct_case *c = &w->m->cases[k];
     const size_t n3 = 3 * (size_t)w->m->n_joints;
@@ -378,7 +238,7 @@ static void begin_case(work *w, int k)
 }
 
 /* r = load - what members and springs take at u */
-static void find_residual(work *w)
+static void find_residual(sct_work *w)
 {
     memcpy(w->r, w->load, w->n * sizeof *w->r);
     for (int e = 0; e < w->m->n_members; e++) {
@@ -400,7 +260,7 @@ static void find_residual(work *w)
 }
 
 /* The ends of an element hold what joints pull less what loads put on them. */
-static void find_end(const work *w, int b, const long double N, double end[12])
+static void find_end(const sct_work *w, int b, const long double N, double end[12])
 {
     const sct_element *x = &w->out->elements[b];
     const int joint[2] = {w->m->members[x->member].from, w->m->members[x->member].to};
@@ -420,7 +280,7 @@ static void find_end(const work *w, int b, const long double N, double end[12])
 
 /* Forces from the displacements and the step that is about to be added to them: before the sum is rounded, as a stiff
  * member hardly stretches. */
-static void find_forces(work *w, int k)
+static void find_forces(sct_work *w, int k)
 {
     sct_statics *out = w->out;
     double *N = out->N + (size_t)k * (size_t)w->m->n_members;
@@ -434,7 +294,7 @@ static void find_forces(work *w, int k)
 }
 
 /* The largest displacement, or rotation times the lever. */
-static double largest(const work *w, const long double v[])
+static double largest(const sct_work *w, const long double v[])
 {
     double most = 0.0;
     for (size_t i = 0; i < w->n; i++)
@@ -451,7 +311,7 @@ static double largest_of(size_t n, const double a[])
 
 /* What errors of COSINE in the directions do: forces push joints sideways a little, one way or the other, and turn
  * them. */
-static sct_shaky shake(work *w, int k)
+static sct_shaky shake(sct_work *w, int k)
 {
     sct_random random = {1};
     sct_shaky shaky = {0};
@@ -468,7 +328,7 @@ static sct_shaky shake(work *w, int k)
                 COSINE * size * (sct_random_unit(&random) < 0.5 ? -1.0 : 1.0);
         }
     }
-    solve(w, w->r);
+    sct_work_solve(w, w->r);
     for (size_t i = 0; i < w->n; i++) {
         double *most = i % (size_t)w->stride < 3 ? &shaky.u : &shaky.turn;
         w->r[i] = w->step[i];
@@ -485,7 +345,7 @@ static sct_shaky shake(work *w, int k)
     return shaky;
 }
 
-static void solve_case(work *w, int k)
+static void solve_case(sct_work *w, int k)
 {
     enum { MOST_STEPS = 12 };
     static const double SMALL = 1e-14;
@@ -494,7 +354,7 @@ static void solve_case(work *w, int k)
     begin_case(w, k);
     for (int s = 0; s < MOST_STEPS && size > SMALL; s++) {
         find_residual(w);
-        solve(w, w->r);
+        sct_work_solve(w, w->r);
         find_forces(w, k); /* leaves the step in r */
         const double moved = largest(w, w->r), before = size;
         for (size_t i = 0; i < w->n; i++) w->u[i] += w->r[i];
@@ -510,7 +370,7 @@ static void solve_case(work *w, int k)
 /* ---- all ----------------------------------------------------------------------------------------------------------
  */
 
-static bool allocate_joints(work *w)
+static bool allocate_joints(sct_work *w)
 {
     const size_t joints = (size_t)w->m->n_joints + 1;
     w->c[0] = calloc(joints, sizeof *w->c[0]);
@@ -524,7 +384,7 @@ static bool allocate_joints(work *w)
     return w->c[0] && w->c[1] && w->b && w->step && w->u && w->settled && w->load && w->r;
 }
 
-static bool allocate_results(const work *w)
+static bool allocate_results(const sct_work *w)
 {
     sct_statics *out = w->out;
     const size_t cases = (size_t)w->m->n_cases, members = (size_t)w->m->n_members, n3 = 3 * (size_t)w->m->n_joints;
@@ -542,7 +402,7 @@ static bool allocate_results(const work *w)
     return out->given && out->turn && out->moment_load && out->moment_given;
 }
 
-static sct_status run(work *w)
+static sct_status run(sct_work *w)
 {
     sct_statics *out = w->out;
     if (!allocate_members(w)) return SCT_NO_MEMORY;
@@ -551,14 +411,14 @@ static sct_status run(work *w)
     choose_unknowns(w);
     if (!allocate_joints(w) || !allocate_results(w)) return SCT_NO_MEMORY;
     sct_status status = sct_supports_find(w->m, out->n_elements, out->elements, out->has_turns, &out->supports);
-    if (status == SCT_OK) status = factor(w);
+    if (status == SCT_OK) status = sct_work_factor(w);
     for (int k = 0; k < w->m->n_cases && status == SCT_OK; k++) solve_case(w, k);
     return status;
 }
 
 sct_status sct_statics_solve(const sct_model *model, const sct_verify_section sections[], sct_statics *statics)
 {
-    work w = {.m = model, .sections = sections, .out = statics, .d = model->dimensions};
+    sct_work w = {.m = model, .sections = sections, .out = statics, .d = model->dimensions};
     *statics = (sct_statics){0};
     const sct_status status = run(&w);
     work_free(&w);
