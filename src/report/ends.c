@@ -37,17 +37,17 @@ static int end_at(const sct_scene *scene, int member, int joint)
 }
 
 /* The deepest other member at the joint that crosses the line of this one, measured along this one. */
-static double depth_met(const sct_scene *scene, int member, int end, bool rigid_only)
+static double depth_met(const sct_scene *scene, int member, int end)
 {
     const int joint = joint_of(scene, member, end);
     const ray own = ray_of(scene, member, end);
     double most = 0;
     for (int i = scene->near_start[joint]; i < scene->near_start[joint + 1]; i++) {
-        const int other = scene->near[i], its_end = end_at(scene, other, joint);
-        if (other == member || (rigid_only && scene->sticks[other].end[its_end] != END_RIGID)) continue;
-        const ray its = ray_of(scene, other, its_end);
+        const int other = scene->near[i];
+        if (other == member) continue;
+        const ray its = ray_of(scene, other, end_at(scene, other, joint));
         const double sine = fabs(own.d.x * its.d.y - own.d.y * its.d.x);
-        if (sine > 0.25) most = fmax(most, its.depth / sine);
+        if (sine > 0.12) most = fmax(most, its.depth / sine);
     }
     return most;
 }
@@ -69,28 +69,36 @@ static bool is_passed(const sct_scene *scene, int joint)
     return false;
 }
 
+/* How far the outer edge of a member goes until it meets the outer edge of another. */
+static double mitre(const ray *own, const ray *its)
+{
+    const double sine = fabs(own->d.x * its->d.y - own->d.y * its->d.x),
+                 cosine = own->d.x * its->d.x + own->d.y * its->d.y;
+    return sine > 0.05 ? 0.5 * fmax(its->depth + own->depth * cosine, 0) / sine : 0;
+}
+
 /* A corner is filled by its deeper member, the first of equals; where a line of members passes there is none. */
-static bool fills_corner(const sct_scene *scene, int member, int end)
+static double corner(const sct_scene *scene, int member, int end)
 {
     const int joint = joint_of(scene, member, end);
     const ray own = ray_of(scene, member, end);
-    if (is_passed(scene, joint)) return false;
+    double most = 0;
+    if (is_passed(scene, joint)) return 0;
     for (int i = scene->near_start[joint]; i < scene->near_start[joint + 1]; i++) {
-        const int other = scene->near[i];
-        const ray its = ray_of(scene, other, end_at(scene, other, joint));
-        if (other == member) continue;
-        if (scene->sticks[other].end[end_at(scene, other, joint)] != END_RIGID) continue;
-        if (its.depth > own.depth || (its.depth == own.depth && other < member)) return false;
+        const int other = scene->near[i], its_end = end_at(scene, other, joint);
+        const ray its = ray_of(scene, other, its_end);
+        if (other == member || scene->sticks[other].end[its_end] != END_RIGID) continue;
+        if (its.depth > own.depth || (its.depth == own.depth && other < member)) return 0;
+        most = fmax(most, mitre(&own, &its));
     }
-    return true;
+    return fmin(most, own.depth);
 }
 
 double sct_end_reach(const sct_scene *scene, int member, int end)
 {
     const sct_stick *s = &scene->sticks[member];
     if (s->end[end] == END_AT_RING) return -fmin(TRIM, 0.2 * s->length);
-    if (s->end[end] != END_RIGID || !fills_corner(scene, member, end)) return 0;
-    return 0.5 * depth_met(scene, member, end, true);
+    return s->end[end] == END_RIGID ? corner(scene, member, end) : 0;
 }
 
 /* ---- marks on members ----------------------------------------------------------------------------------------------
@@ -101,8 +109,8 @@ static sct_point mark_at(const sct_scene *scene, int member, int end)
 {
     const ray r = ray_of(scene, member, end);
     const bool is_spring = scene->sticks[member].end[end] == END_SPRUNG;
-    const double off = fmax(RELEASE_OFF, 0.5 * depth_met(scene, member, end, false) + RELEASE + 1) +
-                       (is_spring ? 0.5 * SPRING - RELEASE : 0);
+    const double off =
+        fmax(RELEASE_OFF, 0.5 * depth_met(scene, member, end) + RELEASE + 1) + (is_spring ? 0.5 * SPRING - RELEASE : 0);
     const double at = fmin(off, 0.35 * r.length);
     return (sct_point){r.p.x + at * r.d.x, r.p.y + at * r.d.y};
 }
