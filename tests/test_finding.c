@@ -45,6 +45,33 @@ START_TEST(the_heading_names_what_governs)
 }
 END_TEST
 
+START_TEST(the_heading_names_limits_on_bows_and_on_the_whole)
+{
+    sct_result *r = synthetic_result(&made);
+    sct_bow_result bow = {.member = 1, .utilisation = 0.97};
+    sct_critical_result critical = {.combination = 1, .factor = 5};
+    r->bows = &bow;
+    r->n_bows = 1;
+    ck_assert_str_eq(heading(r), "Every limit is kept; the bow of R2 governs at 0.97");
+    r->criticals = &critical;
+    r->n_criticals = 1;
+    r->least_factor = 4.95;
+    ck_assert_str_eq(heading(r), "Every limit is kept; the critical load factor under W governs at 0.99");
+    r->least_frequency = 3;
+    r->frequency = 2.5;
+    r->kept = false;
+    ck_assert_str_eq(heading(r), "The lowest frequency is at 1.20 of its limit");
+}
+END_TEST
+
+START_TEST(a_deflection_names_the_joint_that_it_counts_against)
+{
+    sct_result *r = synthetic_result(&made);
+    made.deflections[0].from = 1;
+    ck_assert_ptr_nonnull(strstr(details(r), "Deflection at C 18.3 of 20.0\xE2\x80\xAFmm relative to B (L/300)."));
+}
+END_TEST
+
 START_TEST(the_heading_names_what_is_not_kept)
 {
     sct_result *r = synthetic_result(&made);
@@ -278,6 +305,8 @@ int main(void)
     TCase *c = tcase_create("finding");
     tcase_add_test(c, the_heading_names_what_governs);
     tcase_add_test(c, the_heading_names_what_is_not_kept);
+    tcase_add_test(c, the_heading_names_limits_on_bows_and_on_the_whole);
+    tcase_add_test(c, a_deflection_names_the_joint_that_it_counts_against);
     tcase_add_test(c, details_tell_the_worst_member_the_others_and_the_deflection);
     tcase_add_test(c, at_most_four_more_members_are_named);
     tcase_add_test(c, every_outcome_has_a_task_and_no_other_value);

@@ -406,6 +406,56 @@ START_TEST(summary_is_the_kept_copy)
 }
 END_TEST
 
+/* A structure that sways, with a limit on its factor and on its frequency. */
+static sct_result *with_limits_on_the_whole(sct_critical_result criticals[2])
+{
+    sct_result *r = synthetic_result(&made);
+    criticals[0] = (sct_critical_result){.combination = 0,
+                                         .factor = 4.2,
+                                         .sway = 4.2,
+                                         .is_proven = true,
+                                         .amplification = 1.3125,
+                                         .has_verdict = true,
+                                         .words = "sway is amplified"};
+    criticals[1] = (sct_critical_result){.combination = 1,
+                                         .factor = INFINITY,
+                                         .sway = 25,
+                                         .is_sway_bound = true,
+                                         .amplification = 1,
+                                         .has_verdict = true};
+    criticals[1].words = "it holds";
+    r->n_criticals = 2;
+    r->criticals = criticals;
+    r->least_factor = 4;
+    r->least_frequency = 3;
+    r->frequency = 2.5;
+    r->vibrating_mass = 1200;
+    return r;
+}
+
+START_TEST(summary_tells_critical_load_factors_and_frequency)
+{
+    sct_critical_result criticals[2];
+    char *text = summary(with_limits_on_the_whole(criticals), false);
+    ck_assert_ptr_nonnull(strstr(text, "4.20         4.20     1.3125  0.96  sway is amplified\n"));
+    ck_assert_ptr_nonnull(strstr(text, "none  above 25.00             0.00  it holds\n"));
+    ck_assert_ptr_nonnull(strstr(text, "Lowest frequency 2.50 Hz, at least 3 Hz, with 1200 kg: 1.20 FAILS.\n"));
+    free(text);
+}
+END_TEST
+
+START_TEST(the_result_file_has_critical_load_factors_and_frequency)
+{
+    sct_critical_result criticals[2];
+    char *json = result_file(with_limits_on_the_whole(criticals));
+    ck_assert_ptr_nonnull(strstr(json, "\"critical_load_factor_at_least\": 4"));
+    ck_assert_ptr_nonnull(strstr(json, "{\"combination\": \"S1\", \"factor\": 4.2"));
+    ck_assert_ptr_nonnull(strstr(json, "\"combination\": \"W\", \"factor\": null")); /* nothing buckles */
+    ck_assert_ptr_nonnull(strstr(json, "\"frequency_Hz\": 2.5"));
+    free(json);
+}
+END_TEST
+
 START_TEST(summary_says_fails_without_colour)
 {
     sct_result *r = synthetic_result(&made);
@@ -538,6 +588,8 @@ int main(void)
     tcase_add_test(t, a_verdict_cut_in_a_character_leaves_the_result_file_well_formed);
     tcase_add_test(t, an_empty_result_is_written_too);
     tcase_add_test(t, summary_is_the_kept_copy);
+    tcase_add_test(t, summary_tells_critical_load_factors_and_frequency);
+    tcase_add_test(t, the_result_file_has_critical_load_factors_and_frequency);
     tcase_add_test(t, summary_says_fails_without_colour);
     tcase_add_test(t, colour_changes_nothing_but_colour);
     tcase_add_loop_test(t, biting_names_reach_the_terminal_escaped, 0, N_BITING);

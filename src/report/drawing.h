@@ -1,4 +1,4 @@
-/* drawing.svg: a truss with the mark and utilisation of its members, self-contained, light and dark. */
+/* drawing.svg: a truss or frame with the mark and utilisation of its members, self-contained, light and dark. */
 #ifndef SCT_REPORT_DRAWING_H
 #define SCT_REPORT_DRAWING_H
 
@@ -8,7 +8,7 @@
 /**
  * Appends the drawing of a finished result.
  *
- * options  may be NULL (defaults); draw_loads and draw_deflected show `combination`, or the worst for deflection when
+ * options  may be NULL (defaults); loads, deflected shape and diagrams show `combination`, or the worst for deflection when
  *          it is -1 or unknown
  * out      gains one SVG document; the same result gives the same bytes
  *
