@@ -12,6 +12,9 @@
 
 void dgesv_(const int *n, const int *nrhs, double *a, const int *lda, int *pivots, double *b, const int *ldb,
             int *info);
+double dlange_(const char *norm, const int *m, const int *n, const double *a, const int *lda, double *work);
+void dgecon_(const char *norm, const int *n, const double *a, const int *lda, const double *anorm, double *rcond,
+             double *work, int *iwork, int *info);
 void dsyev_(const char *job, const char *uplo, const int *n, double *a, const int *lda, double *w, double *work,
             const int *lwork, int *info);
 
@@ -22,6 +25,7 @@ typedef struct dense_frame {
     int n, size;     /* unknowns; with multipliers */
     int *own;        /* n_bars x 12: an end rotation's own unknown, or -1 */
     double *K, *f;   /* size x size, size: overwritten by the solution */
+    double rcond;    /* of K: what its own rounding may do is 1e-16 / rcond */
 } dense_frame;
 
 /* Order within an element: u v w, rotations about local axes 0 1 2; at its start, then at its end. */
@@ -240,17 +244,19 @@ static inline double dense_dot(const double a[3], const double b[3])
     return a[0] * b[0] + a[1] * b[1] + a[2] * b[2];
 }
 
-/* Rotations that nothing resists (their joint's members are pinned to it) get a stiffness of their own. */
-static inline void dense_calm(dense_frame *d, int at, double scale)
+/* Rotations that nothing resists, neither members (pinned to the joint) nor supports, get a stiffness of their own. */
+static inline void dense_calm(dense_frame *d, int j, double scale)
 {
+    const sct_joint *joint = &d->st->model->joints[j];
+    const int at = 6 * j + 3, three = 3, room = 16;
     double V[9], w[3], work[16], calm[9] = {0};
-    const int three = 3, room = 16;
     int info;
     for (int i = 0; i < 9; i++) V[i] = d->K[(at + i / 3) * d->size + at + i % 3];
+    for (int h = 0; h < joint->n_turns_held; h++) /* stiff enough to be told from nothing */
+        for (int i = 0; i < 9; i++) V[i] += scale * joint->turns_held[h][i / 3] * joint->turns_held[h][i % 3];
     dsyev_("V", "U", &three, V, &three, w, work, &room, &info);
     for (int k = 0; k < 3; k++)
-        for (int i = 0; i < 9 && w[k] <= 1e-12 * fmax(w[2], 1e-6 * scale); i++)
-            calm[i] += scale * V[3 * k + i / 3] * V[3 * k + i % 3];
+        for (int i = 0; i < 9 && w[k] <= 1e-14 * scale; i++) calm[i] += scale * V[3 * k + i / 3] * V[3 * k + i % 3];
     for (int i = 0; i < 9; i++) d->K[(at + i / 3) * d->size + at + i % 3] += calm[i];
 }
 
@@ -309,10 +315,14 @@ static inline dense_frame dense_solve(const sct_structure *st, const double A[],
         if (d.K[i * d.size + i] == 0.0) d.K[i * d.size + i] = scale;
     int next = d.n;
     for (int j = 0; j < st->n_joints; j++) dense_add_joint(&d, j, k, &next, scale);
-    for (int j = 0; j < st->n_joints; j++) dense_calm(&d, 6 * j + 3, scale);
+    for (int j = 0; j < st->n_joints; j++) dense_calm(&d, j, scale);
+    double *work = calloc((size_t)(4 * d.size), sizeof *work);
+    const double norm = dlange_("1", &d.size, &d.size, d.K, &d.size, work);
     dgesv_(&d.size, &one, d.K, &d.size, pivots, d.f, &d.size, &info);
     if (info != 0) abort();
+    dgecon_("1", &d.size, d.K, &d.size, &norm, &d.rcond, work, pivots, &info);
     free(pivots);
+    free(work);
     return d;
 }
 

@@ -9,7 +9,7 @@
 
 #define DOES_NOT_APPLY (-1.0)
 
-enum { FRAME_MODELS = 200 };
+enum { FRAME_MODELS = 200, FRAME_MODELS_FULL = 2000 };
 
 /* What was seen, in memory that forked tests share. */
 typedef struct frames_seen {
@@ -22,10 +22,11 @@ static frames_seen *seen_by_all;
 
 static inline void try_frames(const char *fact, double tolerance, double (*miss)(uint64_t seed))
 {
+    const int count = getenv("SCT_TEST_FULL") != NULL ? FRAME_MODELS_FULL : FRAME_MODELS;
     double farthest = 0.0;
     int tried = 0;
-    for (uint64_t seed = 1; tried < FRAME_MODELS; seed++) {
-        ck_assert_msg(seed < 20 * FRAME_MODELS, "applies to too few models");
+    for (uint64_t seed = 1; tried < count; seed++) {
+        ck_assert_msg(seed < 20 * (uint64_t)count, "applies to too few models");
         const double off = miss(seed);
         if (off == DOES_NOT_APPLY) continue;
         ck_assert_msg(off <= tolerance, "seed %d: missed by %.3g, at most %g", (int)seed, off, tolerance);

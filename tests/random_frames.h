@@ -157,15 +157,17 @@ static inline void rf_cases(sct_random *r, sct_model *m, int n_rigid, unsigned w
 static inline void rf_hang(sct_random *r, sct_model *m, int n, unsigned without)
 {
     const int dim = m->dimensions;
-    int j, others[3] = {0, 0, 0};
-    if (n < dim) return;
-    for (;;) {
-        j = rf_joint(r, m);
+    int others[3] = {0, 0, 0};
+    bool is_found = false;
+    for (int tries = 0; tries < 200 && n >= dim && !is_found; tries++) {
+        const int last = rf_joint(r, m);
         for (int i = 0; i < dim; i++) others[i] = below(r, n);
         const bool differ = others[0] != others[1] && (dim == 2 || (others[0] != others[2] && others[1] != others[2]));
-        if (differ && spread(m, j, others) > 0.2) break;
-        m->n_joints--;
+        is_found = differ && spread(m, last, others) > 0.2;
+        if (!is_found) m->n_joints--;
     }
+    if (!is_found) return; /* the others lie almost in a line */
+    const int j = m->n_joints - 1;
     for (int i = 0; i < dim; i++) rf_member(r, m, others[i], j, 0.6, without);
     if (below(r, 3) == 0) rf_support(r, m, j, without);
 }

@@ -36,18 +36,20 @@ static double joints_missed(const frame *f, const dense_frame *d, int k, int j)
     return most;
 }
 
+/* Element matrices lose more digits the softer a frame is: those that would lose too many are left out. */
 RELATION(displacements_and_end_forces_are_those_of_element_matrices, 1e-9)
 {
     frame f = frame_solve(rf_any(seed, 0));
-    double most = 0.0;
+    double most = 0.0, rcond = 1.0;
     for (int k = 0; k < 3; k++) {
         dense_frame d = dense_solve(f.s.st, f.s.A, k);
+        rcond = fmin(rcond, d.rcond);
         for (int j = 0; j < f.s.st->n_joints; j++) most = fmax(most, joints_missed(&f, &d, k, j));
         for (int e = 0; e < f.s.st->n_bars; e++) most = fmax(most, ends_missed(&f, &d, k, e));
         dense_free(&d);
     }
     frame_free(&f);
-    return most;
+    return rcond > 1e-9 ? most : DOES_NOT_APPLY;
 }
 
 /* ---- equilibrium ------------------------------------------------------------------------------------------------- */

@@ -195,7 +195,7 @@ RELATION(a_very_stiff_sprung_end_is_fixed, 1e-3)
     return frames_missed(&a, &b, &(frame_change){0});
 }
 
-RELATION(a_very_soft_sprung_end_is_pinned, 1e-5)
+RELATION(a_very_soft_sprung_end_is_pinned, 1e-3)
 {
     frame a = frame_solve(with_ends(seed, 0.0, SCT_PINNED)), b = frame_solve(with_ends(seed, 1e-2, SCT_PINNED));
     return frames_missed(&a, &b, &(frame_change){0});
@@ -220,13 +220,13 @@ static sct_model *with_support(uint64_t seed, double k, bool is_held)
     return m;
 }
 
-RELATION(a_very_stiff_elastic_support_holds, 1e-5)
+RELATION(a_very_stiff_elastic_support_holds, 1e-3)
 {
     frame a = frame_solve(with_support(seed, 0.0, true)), b = frame_solve(with_support(seed, 1e15, false));
     return frames_missed(&a, &b, &(frame_change){0});
 }
 
-RELATION(a_very_soft_elastic_support_does_nothing, 1e-5)
+RELATION(a_very_soft_elastic_support_does_nothing, 1e-3)
 {
     frame a = frame_solve(with_support(seed, 0.0, false)), b = frame_solve(with_support(seed, 1e-2, false));
     return frames_missed(&a, &b, &(frame_change){0});
