@@ -127,11 +127,12 @@ static bool is_place(const sct_cut_line *line, double x)
  */
 
 /* The worst of one kind of check in a combination; 0: it does not apply. */
-static double worst_of(const sct_verifier *v, int e, const sct_cut_line *line, sct_verify_kind kind, check *k)
+static double worst_of(const sct_verifier *v, int e, int c, const sct_cut_line *line, sct_verify_kind kind, check *k)
 {
     static const int COMPRESSION[3] = {-1, 0, 0};
     *k = (check){.is_column = kind == SCT_BENT_COLUMN};
     if (!sct_verify_bending(v->m, e, (double)line->element->L, kind, &k->capacity)) return 0.0;
+    for (int axis = 0; axis < 2; axis++) k->capacity.moment[axis] /= sct_verify_amplification(v, c);
     if (k->is_column) k->N = -sct_cut_largest(line, some_force, COMPRESSION);
     if (k->is_column && !(k->N < 0.0L)) return 0.0;
     return (double)sct_cut_largest(line, utilisation_at, k);
@@ -169,7 +170,7 @@ static void compare_governing(sct_verifier *v, int e)
         return;
     }
     check k;
-    worst_of(v, e, &line, (sct_verify_kind)kind, &k);
+    worst_of(v, e, c, &line, (sct_verify_kind)kind, &k);
     compare_at(v, "utilisation at the governing place of member", e, c, &line, utilisation_at, &k, said->x,
                said->utilisation, open_of(v, e, c, &k));
     compare_at(v, "moment in plane at the governing place of member", e, c, &line, some_force, M_IN, said->x,
@@ -265,7 +266,7 @@ double sct_verify_bent(sct_verifier *v, int e, double *open)
         add_combination(v, e, c, &line, &of);
         for (int kind = 0; kind < SCT_VERIFY_KINDS && is_for_strength(v, c); kind++) {
             check k;
-            worst = fmax(worst, worst_of(v, e, &line, (sct_verify_kind)kind, &k));
+            worst = fmax(worst, worst_of(v, e, c, &line, (sct_verify_kind)kind, &k));
             *open = fmax(*open, isfinite(k.capacity.force) ? open_of(v, e, c, &k) : 0.0);
         }
     }

@@ -48,6 +48,13 @@ void sct_verify_ends(sct_verifier *v, int combination);
  * and adds to *open what is open of that. */
 double sct_verify_bent(sct_verifier *v, int member, double *open);
 
+/** What moments in a combination are multiplied by, from the result's factor of sway. */
+double sct_verify_amplification(const sct_verifier *v, int combination);
+
+/** Limits on the whole, with the result's critical load factors and frequency. Returns the largest utilisation;
+ * has_verdict: first-order results hold, or were amplified, in every combination for strength. */
+double sct_verify_whole(sct_verifier *v, bool *has_verdict);
+
 /** All bow limits. Returns the largest utilisation. */
 double sct_verify_bows(sct_verifier *v);
 #endif

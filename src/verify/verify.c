@@ -341,13 +341,13 @@ static double compare_deflection(sct_verifier *v, int k)
     return most;
 }
 
-static void compare_verdict(sct_verifier *v, double most)
+static void compare_verdict(sct_verifier *v, double most, bool has_verdict)
 {
     const sct_result *r = v->r;
     const double open = v->open + (RELATIVE + v->accuracy) * most;
     sct_compare(v, "largest utilisation", NULL, NULL, r->utilisation, most, v->open);
-    if (r->kept ? most > 1.0 + open : most < 1.0 - open)
-        sct_differ(v, "\"every limit is kept\"", NULL, NULL, r->kept, most <= 1.0);
+    if (r->kept ? most > 1.0 + open || !has_verdict : most < 1.0 - open && has_verdict)
+        sct_differ(v, "\"every limit is kept\"", NULL, NULL, r->kept, most <= 1.0 && has_verdict);
 }
 
 static void compare_all(sct_verifier *v, double *R[2])
@@ -358,7 +358,9 @@ static void compare_all(sct_verifier *v, double *R[2])
     for (int e = 0; e < v->r->n_members; e++) most = fmax(most, compare_member(v, e));
     for (int k = 0; k < v->r->n_deflections; k++) most = fmax(most, compare_deflection(v, k));
     most = fmax(most, sct_verify_bows(v));
-    compare_verdict(v, most);
+    bool has_verdict;
+    most = fmax(most, sct_verify_whole(v, &has_verdict));
+    compare_verdict(v, most, has_verdict);
 }
 
 /* ---- the call -----------------------------------------------------------------------------------------------------
