@@ -258,6 +258,10 @@ typedef struct sct_member_result {
     double axes[3][3];   /* local axes: along, bending in plane, out of plane */
     bool hinged[2][3];   /* ends: bending in plane, out of plane, twist; true: pinned */
     bool sprung[2][3];   /* ends held by springs */
+    /* What the lowest buckling mode of all combinations says of it, per plane of bending: its part of the energy of
+     * bending, and the effective length pi sqrt(E I / (alpha |N|)) that this implies. The length means something only
+     * for members that take part (a twentieth and more); NAN: not compressed there, or a bar. */
+    double mode_share[2], mode_Lcr[2];
 } sct_member_result;
 
 /* The inside of a member at one place, in its local axes. M > 0 in plane bends it towards +axis 1 (tension on the side
@@ -374,6 +378,7 @@ typedef struct sct_result {
     sct_bow_result *bows;
     int n_criticals; /* 0: pin-ended members only, and no limit on it */
     sct_critical_result *criticals;
+    int lowest_critical;               /* index of the lowest of them, which mode_share is of; -1: nothing buckles */
     double least_factor;               /* that the model asks for; NAN: none */
     double frequency, least_frequency; /* [Hz] lowest natural one; NAN: no limit */
     double vibrating_mass;             /* [kg] that it was found with */

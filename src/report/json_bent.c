@@ -73,6 +73,10 @@ void sct_json_bent_member(sct_json *w, const sct_result *r, int member)
     both_combinations(w, "largest_moment_in", r, m->M_most_in);
     sct_json_both_axes(w, "largest_bow_m", m->bow);
     both_combinations(w, "largest_bow_in", r, m->bow_in);
+    if (r->lowest_critical >= 0) {
+        sct_json_both_axes(w, "share_of_lowest_buckling_mode", m->mode_share);
+        sct_json_both_axes(w, "implied_effective_length_m", m->mode_Lcr);
+    }
     if (r->ends == NULL) return;
     end_forces(w, r, member, 0, "at_from");
     end_forces(w, r, member, 1, "at_to");

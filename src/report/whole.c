@@ -63,10 +63,61 @@ static void add_criticals(const sct_page *p)
     if (p->r->least_factor > 0) sct_text_format(p->out, "  At least %.4g is asked for.\n", p->r->least_factor);
 }
 
+static const double TAKES_PART = 0.05; /* of the mode's energy of bending: below, an implied length means nothing */
+enum { MOST_IMPLIED = 8 };
+
+static bool takes_part(const sct_member_result *m, int axis)
+{
+    return m->mode_share[axis] >= TAKES_PART && m->mode_Lcr[axis] > 0;
+}
+
+static void implied_row(const sct_page *p, sct_table *t, const sct_member_result *m, int axis)
+{
+    sct_table_row(t, SCT_ROW_PLAIN);
+    sct_page_name_cell(t, m->name);
+    sct_table_words(t, axis == 0 ? "in plane" : "out of plane");
+    sct_text_format(&t->cells, "%.0f %%", 100 * m->mode_share[axis]);
+    sct_table_cell(t);
+    sct_text_shown(&t->cells, m->mode_Lcr[axis], SCT_SHOWN_LENGTH, p->us);
+    sct_table_cell(t);
+    sct_text_shown(&t->cells, m->Lcr[axis], SCT_SHOWN_LENGTH, p->us);
+    sct_table_cell(t);
+}
+
+static void implied_head(const sct_page *p, sct_table *t)
+{
+    sct_table_row(t, SCT_ROW_HEAD);
+    sct_table_words(t, "member");
+    sct_table_words(t, "plane");
+    sct_table_words(t, "of the mode");
+    sct_page_unit_head(p, t, "implied", SCT_SHOWN_LENGTH);
+    sct_page_unit_head(p, t, "used", SCT_SHOWN_LENGTH);
+}
+
+/* The effective lengths that the lowest mode implies, beside those that were used. */
+static void add_implied(const sct_page *p)
+{
+    const sct_result *r = p->r;
+    sct_table t = {.align = "llrrr"};
+    int n = 0;
+    implied_head(p, &t);
+    for (int e = 0; e < r->n_members && r->lowest_critical >= 0; e++)
+        for (int axis = 0; axis < 2; axis++)
+            if (takes_part(&r->members[e], axis) && n++ < MOST_IMPLIED) implied_row(p, &t, &r->members[e], axis);
+    if (n == 0) {
+        sct_text_free(&t.cells);
+        return;
+    }
+    sct_page_heading(p, "Effective lengths that the lowest of these modes implies");
+    sct_page_finish_table(p, &t);
+    sct_page_say_left_out(p, n > MOST_IMPLIED ? n - MOST_IMPLIED : 0, "result.json");
+}
+
 void sct_summary_whole(const sct_page *p)
 {
     const sct_result *r = p->r;
     add_criticals(p);
+    add_implied(p);
     if (!(r->least_frequency > 0)) return;
     sct_page_heading(p, "Vibration");
     sct_text_format(p->out, "  Lowest frequency %.2f Hz, at least %.4g Hz, with ", r->frequency, r->least_frequency);

@@ -220,6 +220,9 @@ static sct_status fill_whole(sct_result *r, const sct_duty *duty)
     r->least_factor = model->least_factor > 0.0 ? model->least_factor : (double)NAN;
     r->least_frequency = model->least_frequency > 0.0 ? model->least_frequency : (double)NAN;
     r->frequency = r->vibrating_mass = NAN;
+    r->lowest_critical = -1;
+    for (int e = 0; e < r->n_members; e++)
+        for (int plane = 0; plane < 2; plane++) r->members[e].mode_Lcr[plane] = NAN;
     if (!duty->has_whole) return SCT_OK;
     const sct_whole *w = duty->whole;
     r->criticals = sct_result_array(r, (size_t)w->n, sizeof *r->criticals);
@@ -239,6 +242,13 @@ static sct_status fill_whole(sct_result *r, const sct_duty *duty)
             .words = b->order.words,
         };
     }
+    r->lowest_critical = w->lowest;
+    for (int e = 0; e < r->n_members && w->lowest >= 0; e++)
+        for (int plane = 0; plane < r->dimensions - 1; plane++) {
+            const sct_member_mode *mode = &w->of_mode[e][plane];
+            r->members[e].mode_share[plane] = mode->share;
+            if (isfinite(mode->Lcr)) r->members[e].mode_Lcr[plane] = mode->Lcr;
+        }
     if (w->vibration != NULL) {
         r->frequency = w->frequency[0];
         r->vibrating_mass = w->mass;

@@ -26,7 +26,9 @@ static sct_status fill(sct_whole *w, sct_engine engine, int n, const int combina
 {
     sct_status status;
     w->buckling = calloc((size_t)n + 1, sizeof *w->buckling);
-    if (w->buckling == NULL) return SCT_NO_MEMORY;
+    w->of_mode = calloc((size_t)w->st->n_bars + 1, sizeof *w->of_mode);
+    if (w->buckling == NULL || w->of_mode == NULL) return SCT_NO_MEMORY;
+    w->lowest = -1;
     w->n = n;
     for (int k = 0; k < n; k++) w->buckling[k].combination = combinations[k];
     w->fine = sct_fine_new(w->st, SCT_PIECES, engine, &status);
@@ -60,6 +62,7 @@ void sct_whole_free(sct_whole *w)
     sct_stability_free(w->stability);
     sct_fine_free(w->fine);
     free(w->buckling);
+    free(w->of_mode);
     free(w);
 }
 
@@ -82,15 +85,27 @@ static bool is_usable(sct_status status)
     return status == SCT_OK || status == SCT_NOT_CONVERGED;
 }
 
+/* Keeps what a mode says of the members, when its factor is the lowest so far. */
+static void note_members(sct_whole *w, int k, const sct_modes *modes)
+{
+    if (modes->n == 0 || (w->lowest >= 0 && modes->lambda[0] >= w->buckling[w->lowest].alpha[0])) return;
+    w->lowest = k;
+    for (int e = 0; e < w->st->n_bars; e++)
+        for (int plane = 0; plane < w->st->dim - 1; plane++)
+            w->of_mode[e][plane] = sct_stability_member(w->stability, modes, 0, e, plane);
+}
+
 sct_status sct_whole_analyse(sct_whole *w, const sct_solver *solver, const sct_response *response, sct_mode_search how)
 {
     sct_modes modes;
     sct_status status = sct_fine_update(w->fine, sct_solver_sizes(solver));
+    w->lowest = -1;
     for (int k = 0; k < w->n && status == SCT_OK; k++) {
         status = sct_stability_find(w->stability, response, w->buckling[k].combination, how, &modes);
         if (!is_usable(status)) return status;
         status = SCT_OK;
         note(w, &w->buckling[k], &modes);
+        if (how == SCT_MODES_PROVEN) note_members(w, k, &modes);
     }
     for (int i = 0; i < SCT_WHOLE_MODES; i++) w->frequency[i] = INFINITY;
     if (status != SCT_OK || w->vibration == NULL) return status;

@@ -32,6 +32,9 @@ typedef struct sct_whole {
     sct_whole_buckling *buckling;
     double frequency[SCT_WHOLE_MODES]; /* [Hz] ascending; INFINITY beyond those that exist */
     double mass;                       /* [kg] that vibrates */
+    /* what the lowest mode of the combination with the lowest factor says of every member; of a PROVEN analysis */
+    sct_member_mode (*of_mode)[2]; /* n_bars */
+    int lowest;                    /* that combination's index in `buckling`; -1: nothing buckles */
 } sct_whole;
 
 /** combinations (n): those looked at. *whole = NULL with SCT_OK: nothing to look at. SCT_NO_MEMORY, SCT_TOO_LARGE. */
