@@ -154,7 +154,8 @@ static void first_places(const both *b, int k, double *value)
         for (int q = 0; q < 6; q++) *value_at(b, value, q, k, i) = all[q];
         for (int plane = 0; plane < 2; plane++) {
             const sct_beam_bending bending = {.plane = plane,
-                                              .EI = bar->E * size.P[plane == 0 ? SCT_OF_INERTIA_IN : SCT_OF_INERTIA_OUT],
+                                              .EI =
+                                                  bar->E * size.P[plane == 0 ? SCT_OF_INERTIA_IN : SCT_OF_INERTIA_OUT],
                                               .kappa = sct_free_curvature(st, k, e, plane)};
             *value_at(b, value, 6 + plane, k, i) = sct_beam_deflection(&line, &state, &bending, x);
         }
@@ -348,6 +349,13 @@ static void change_joints(const sct_model *m, sct_result *r, int *tried)
     }
 }
 
+static double most_moved(const sct_result *r)
+{
+    double most = 0.0;
+    for (int i = 0; i < 3 * r->n_joints * r->n_combinations; i++) most = fmax(most, fabs(r->u[i]));
+    return most;
+}
+
 static void change_members(const sct_model *m, sct_result *r, int *tried)
 {
     for (int e = 0; e < r->n_members; e++) {
@@ -357,7 +365,7 @@ static void change_members(const sct_model *m, sct_result *r, int *tried)
         change_from("smallest force", m, r, 1, &member->N_min, SMALL, tried);
         if (!member->is_bent) continue;
         change_from("largest moments", m, r, 2, member->M_most, SMALL, tried);
-        change_each("bows", m, r, 2, member->bow, tried);
+        change_from("bows", m, r, 2, member->bow, 1e-4 * most_moved(r), tried);
         if (member->check != SCT_CHECK_SLENDERNESS) change_from("moments", m, r, 2, member->M, SMALL, tried);
         member->is_bent = false;
         ck_assert_int_eq(verify(m, r, false), SCT_SELF_CHECK);
@@ -377,7 +385,7 @@ static void change_limits(const sct_model *m, sct_result *r, int *tried)
     }
     for (int k = 0; k < r->n_bows; k++) {
         if (!r->members[r->bows[k].member].is_bent) continue;
-        change_each("bow", m, r, 1, &r->bows[k].v, tried);
+        change_from("bow", m, r, 1, &r->bows[k].v, 1e-4 * most_moved(r), tried);
         change_each("allowed bow", m, r, 1, &r->bows[k].at_most, tried);
         change_each("bow over its limit", m, r, 1, &r->bows[k].utilisation, tried);
     }

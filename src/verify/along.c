@@ -196,8 +196,10 @@ typedef struct most {
 
 static double bow_open(const sct_verifier *v, const sct_cut_line *line, int c, int plane)
 {
+    static const double ROUNDING =
+        1e-3; /* of what is open of moments, which a weak member among stiff ones magnifies */
     const double L = (double)line->element->L;
-    return v->open_of[c].end[1] * L * L / (double)line->element->EI[plane] + v->open_of[c].u;
+    return L * v->open_of[c].turn + ROUNDING * v->open_of[c].end[1] * L * L / (double)line->element->EI[plane];
 }
 
 static bool bends(const sct_verifier *v, int e, int plane)
@@ -325,7 +327,7 @@ static double compare_bow(sct_verifier *v, const sct_bow_limit *limit, int e, co
         find_offsets(v, e, c, run, &b);
         for (b.sign = -1; b.sign <= 1; b.sign += 2)
             farthest = fmax(farthest, (double)sct_cut_largest(&line, bow_at, &b));
-        open = fmax(open, bow_open(v, &line, c, b.plane));
+        open = fmax(open, bow_open(v, &line, c, b.plane) + (run != NULL ? v->open_of[c].u : 0.0));
         b.sign = 1;
         if (c == said->combination && is_place(&line, said->x))
             compare_at(v, "bow at the governing place of member", e, c, &line, bow_at, &b, said->x, said->v, open);
