@@ -62,8 +62,8 @@ static inline void dense_stiffness(const dense_frame *d, int e, dense_element K)
     memset(K, 0, sizeof(dense_element));
     K[0][0] = K[6][6] = E * A / L;
     dense_put(K, 0, 6, -E * A / L);
-    dense_bending(K, 1, 5, 1.0, E * g->c[0] * A * A, L);
-    dense_bending(K, 2, 4, -1.0, E * (st->dim == 3 ? g->c[1] : g->c[0]) * A * A, L);
+    dense_bending(K, 1, 5, 1.0, E * g->I[0].c * A * A, L);
+    dense_bending(K, 2, 4, -1.0, E * (st->dim == 3 ? g->I[1].c : g->I[0].c) * A * A, L);
     const double GJ = st->dim == 2 || dense_spins(&st->model->members[e]) ? 0.0 : G * g->J.c * pow(A, g->J.p);
     K[3][3] = K[9][9] = GJ / L;
     dense_put(K, 3, 9, -GJ / L);

@@ -76,7 +76,7 @@ static inline int mb_group(sct_model *m, int material, double A, bool is_sized)
                                          .A_max = is_sized ? A * 1e3 : NAN,
                                          .A_start = is_sized ? A : NAN,
                                          .A_held = A,
-                                         .c = {NAN, NAN},
+                                         .I = {{NAN, 2.0}, {NAN, 2.0}},
                                          .family = -1,
                                          .held = -1,
                                          .allowable = {NAN, NAN},
@@ -166,7 +166,7 @@ static inline void mb_act(sct_model *m, int k, int member, double dT, double lac
 static inline int mb_frame_group(sct_model *m, double A, double I, double J)
 {
     const int g = mb_group(m, 0, A, false);
-    m->groups[g].c[0] = m->groups[g].c[1] = I / (A * A);
+    m->groups[g].I[0].c = m->groups[g].I[1].c = I / (A * A);
     m->groups[g].J = (sct_power){J / (A * A), 2.0};
     return g;
 }
@@ -227,8 +227,8 @@ static inline void mb_stiffen(sct_model *m, int group, double I_in, double I_out
 {
     sct_group *g = &m->groups[group];
     const double A2 = g->A_held * g->A_held;
-    g->c[0] = I_in / A2;
-    g->c[1] = I_out / A2;
+    g->I[0].c = I_in / A2;
+    g->I[1].c = I_out / A2;
     g->J = (sct_power){J / A2, 2.0};
 }
 

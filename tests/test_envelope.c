@@ -108,7 +108,7 @@ START_TEST(derivatives_of_the_area_needed_agree_with_differences)
 {
     sct_arena *arena = sct_arena_new();
     sct_envelope e[2];
-    for (int axis = 0; axis < 2; axis++) ck_assert_int_eq(sct_envelope_relation(arena, 0.8, &e[axis]), SCT_OK);
+    for (int axis = 0; axis < 2; axis++) ck_assert_int_eq(sct_envelope_relation(arena, 0.8, 2.0, &e[axis]), SCT_OK);
     sct_bar_rule q = rule(SCT_BUCKLING_EULER_JOHNSON);
     for (double p = log(1e3); p < log(3e6); p += 0.11) {
         const double h = 1e-4;
@@ -135,7 +135,7 @@ START_TEST(euler_on_a_free_area_has_the_closed_form)
 {
     sct_arena *arena = sct_arena_new();
     sct_envelope e[2];
-    for (int axis = 0; axis < 2; axis++) ck_assert_int_eq(sct_envelope_relation(arena, 0.8, &e[axis]), SCT_OK);
+    for (int axis = 0; axis < 2; axis++) ck_assert_int_eq(sct_envelope_relation(arena, 0.8, 2.0, &e[axis]), SCT_OK);
     sct_bar_rule q = rule(SCT_BUCKLING_EULER);
     q.f_c = 1e12;
     const double NN = 40e3, PI = 3.14159265358979323846;

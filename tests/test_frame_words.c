@@ -172,8 +172,8 @@ START_TEST(sections_bring_moduli_and_torsion_constants)
     const sct_section *H = &m->families[m->groups[2].family].sections[0];
     ck_assert(H->W[0] == 6e4 / 1e9 && H->W[1] == 5e-5 && H->J == 4e4 / 1e12);
     const sct_group *post = &m->groups[0], *said = &m->groups[3];
-    ck_assert(post->W[0].p == 1.5 && post->J.p == 2 && post->c[0] > 0 && post->c[0] == post->c[1]);
-    ck_assert(said->W[0].c == 0.1 && said->W[1].c == 0.2 && said->W[1].p == 1.5 && said->c[1] == 2);
+    ck_assert(post->W[0].p == 1.5 && post->J.p == 2 && post->I[0].c > 0 && post->I[0].c == post->I[1].c);
+    ck_assert(said->W[0].c == 0.1 && said->W[1].c == 0.2 && said->W[1].p == 1.5 && said->I[1].c == 2);
     ck_assert(said->J.p == 1.8);
     ck_close(said->J.c * pow(5000e-6, 1.8), 7.1e-6, 1e-14);
     sct_model_free(m);

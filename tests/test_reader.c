@@ -130,7 +130,7 @@ START_TEST(groups_are_free_ladders_or_held)
     const sct_group *tie = &m->groups[0], *rafter = &m->groups[1], *web = &m->groups[2];
     ck_assert_int_eq(tie->kind, SCT_FREE_AREA);
     ck_assert(tie->A_min == 1e-4 && tie->A_max == 0.01 && tie->A_start == 5e-4);
-    ck_assert(tie->c[0] == 0.5 && tie->c[1] == 0.5);
+    ck_assert(tie->I[0].c == 0.5 && tie->I[1].c == 0.5);
     ck_assert(tie->buckling == SCT_BUCKLING_EULER_JOHNSON && tie->safety == 1.92);
     ck_assert(tie->slenderness_any == 300 && isinf(tie->slenderness_compression));
     ck_assert(tie->allowable[0] == 213e6 && tie->allowable[1] == 200e6);
@@ -724,7 +724,7 @@ START_TEST(space_models_have_three_components)
     ck_close(m->joints[1].held[0][0], sqrt(0.5), 1e-15);
     ck_close(m->groups[0].A_held, 2 * 0.0254 * 0.0254, 1e-15);
     ck_assert_int_eq(m->groups[0].kind, SCT_HELD_AREA);
-    ck_assert(isnan(m->groups[0].c[0]));
+    ck_assert(isnan(m->groups[0].I[0].c));
     ck_close(m->cases[0].loads[0].F[2], 3 * 4448.2216152605, 1e-15);
     ck_assert(m->deflections[0].direction[2] == 1);
     ck_assert_str_eq(m->deflections[0].label, "0.35 in");

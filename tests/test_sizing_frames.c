@@ -23,7 +23,7 @@ static const char FRAME[] =
     "},"
     " \"shape\": { \"kind\": \"square tube\", \"width_to_wall\": 25 } },"
     " \"beams\": { \"material\": \"S\", \"area\": { \"at_least\": \"20 cm2\", \"at_most\": \"300 cm2\" },"
-    " \"second_moment\": { \"c\": 2.1 }, \"section_modulus\": { \"at\": \"84.5 cm2\", \"value\": \"1160 cm3\", "
+    " \"second_moment\": { \"at\": \"84.5 cm2\", \"value\": \"23130 cm4\", \"power\": 2.3 }, \"section_modulus\": { \"at\": \"84.5 cm2\", \"value\": \"1160 cm3\", "
     "\"power\": 1.3 } },"
     " \"brace\": { \"material\": \"S\", \"area\": { \"at_least\": \"2 cm2\", \"at_most\": \"60 cm2\" }, "
     "\"second_moment\": { \"c\": 3 } } },"

@@ -478,7 +478,7 @@ END_TEST
 START_TEST(a_beam_that_states_one_plane_keeps_one_piece)
 {
     sct_model *m = space_column(1.0);
-    m->groups[0].c[1] = NAN;
+    m->groups[0].I[1].c = NAN;
     m->joints[0].n_turns_held = 0;
     for (int end = 0; end < 2; end++)
         for (int r = SCT_OUT_OF_PLANE; r <= SCT_TWIST; r++) m->members[0].end[end].fixity[r] = SCT_PINNED;

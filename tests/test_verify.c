@@ -118,8 +118,8 @@ static void furnish(sct_model *m, sct_random *r)
         group->allowable[1] = 160e6;
         group->buckling = g % 3 == 0 ? SCT_BUCKLING_EULER : g % 3 == 1 ? SCT_BUCKLING_EULER_JOHNSON : SCT_BUCKLING_NONE;
         group->safety = 1.67;
-        group->c[0] = ts_between(r, 0.3, 4.0);
-        group->c[1] = ts_between(r, 0.3, 4.0);
+        group->I[0].c = ts_between(r, 0.3, 4.0);
+        group->I[1].c = ts_between(r, 0.3, 4.0);
         group->slenderness_any = 300.0;
         group->slenderness_compression = g % 2 == 0 ? 200.0 : INFINITY;
     }

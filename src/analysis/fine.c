@@ -23,7 +23,7 @@ static bool states_inertia(const sct_model *m, int group, int plane)
 {
     const sct_group *g = &m->groups[group];
     const bool is_area = g->kind == SCT_FREE_AREA || g->kind == SCT_HELD_AREA;
-    return !is_area || g->c[plane] > 0.0; /* sections have both */
+    return !is_area || g->I[plane].c > 0.0; /* sections have both */
 }
 
 static int count_pieces(const sct_structure *st, int e, int pieces)

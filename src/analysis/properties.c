@@ -44,8 +44,8 @@ sct_properties sct_properties_at_area(const sct_model *model, int group, double 
     if (g->kind == SCT_LADDER) return on_ladder(g, sections, A);
     sct_properties size;
     set_power(&size, SCT_OF_AREA, 1.0, 1.0, A);
-    set_power(&size, SCT_OF_INERTIA_IN, g->c[0], 2.0, A);
-    set_power(&size, SCT_OF_INERTIA_OUT, g->c[1], 2.0, A);
+    set_power(&size, SCT_OF_INERTIA_IN, g->I[0].c, g->I[0].p, A);
+    set_power(&size, SCT_OF_INERTIA_OUT, g->I[1].c, g->I[1].p, A);
     set_power(&size, SCT_OF_TORSION, g->J.c, g->J.p, A);
     return size;
 }

@@ -82,12 +82,12 @@ typedef struct sct_group {
     sct_where where;
     int material;
     sct_sizing_kind kind;
-    double A_min, A_max; /* [m2] free area: 0 < A_min <= A_max */
-    double A_start;      /* [m2] free area: first start; NAN: none given */
-    double A_held;       /* [m2] held area */
-    double c[2];         /* held or free area: I = c A^2 about each axis; NAN: not stated */
-    sct_power W[2], J;   /* held or free area: section modulus [m3] and torsion constant [m4]; NAN: not stated */
-    int family;          /* ladder, held section; else -1 */
+    double A_min, A_max;     /* [m2] free area: 0 < A_min <= A_max */
+    double A_start;          /* [m2] free area: first start; NAN: none given */
+    double A_held;           /* [m2] held area */
+    sct_power I[2], W[2], J; /* held or free area: second moment [m4], section modulus [m3], torsion constant [m4]; NAN:
+                              * not stated */
+    int family;              /* ladder, held section; else -1 */
     int n_ladder;
     int *ladder;         /* ladder: indices into the family's sections, lightest first */
     int held;            /* held section: index into the family's sections; else -1 */

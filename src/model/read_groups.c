@@ -274,8 +274,8 @@ static void read_group(sct_reader *r, const sct_node *node, sct_group *g, sct_le
     const sct_node *found[N_KEYS];
     const int errors_before = r->f.n_errors;
     *g = (sct_group){.material = -1, .family = -1, .held = -1, .where = sct_fields_where(&r->f, node)};
-    g->A_min = g->A_max = g->A_start = g->A_held = g->c[0] = g->c[1] = g->allowable[0] = g->allowable[1] = (double)NAN;
-    g->W[0] = g->W[1] = g->J = (sct_power){(double)NAN, (double)NAN};
+    g->A_min = g->A_max = g->A_start = g->A_held = g->allowable[0] = g->allowable[1] = (double)NAN;
+    g->I[0] = g->I[1] = g->W[0] = g->W[1] = g->J = (sct_power){(double)NAN, (double)NAN};
     sct_fields_name(&r->f, node, &g->name);
     if (!sct_fields_keys(&r->f, node, "a group", GROUP_KEYS, N_KEYS, found)) return;
     sct_fields_reference(&r->f, found[K_MATERIAL], "material", r->materials, &g->material);

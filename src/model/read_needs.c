@@ -41,7 +41,7 @@ static void collect_deeds(const sct_model *m, deeds of_group[])
 static void check_area(sct_reader *r, const sct_group *g, deeds d)
 {
     const sct_model *m = r->model;
-    if (d.bends >= 0 && isnan(g->c[0]))
+    if (d.bends >= 0 && isnan(g->I[0].c))
         sct_fields_error_at(
             &r->f, g->where,
             "no \"second_moment\"; member \"%s\" bends: expected {\"c\": ...} for I = c A^2, or a \"shape\"",

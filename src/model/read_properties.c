@@ -9,17 +9,26 @@
 typedef struct relation {
     const char *what, *example; /* "a section modulus", of a value */
     double p;                   /* the power for which c has no dimension */
+    double least_p;             /* above 1 for I: radii of gyration grow with the area */
     sct_range c, value;
 } relation;
 
 static const relation MODULUS = {"a section modulus",
                                  "{\"c\": 0.12}, or {\"at\": \"5000 mm2\", \"value\": \"2.5e5 mm3\"}",
                                  1.5,
+                                 0.5,
                                  {"a factor c of W = c A^1.5", -1, 1e-6, 1e6, 0, 0, NULL},
                                  {"a section modulus", SCT_SECTION_MODULUS, 1e-15, 10, 1e-8, 1e-2, NULL}};
+static const relation INERTIA = {"a second moment of area",
+                                 "{\"c\": 2}, or {\"at\": \"5000 mm2\", \"value\": \"5e7 mm4\", \"power\": 2.2}",
+                                 2.0,
+                                 1.1,
+                                 {"a factor c of I = c A^2", -1, 1e-6, 1e6, 0, 0, NULL},
+                                 {"a second moment of area", SCT_SECOND_MOMENT, 1e-18, 1e2, 1e-10, 1e-3, NULL}};
 static const relation TORSION = {"a torsion constant",
                                  "{\"c\": 0.14}, or {\"at\": \"5000 mm2\", \"value\": \"1.2e6 mm4\"}",
                                  2.0,
+                                 0.5,
                                  {"a factor c of J = c A^2", -1, 1e-9, 1e6, 0, 0, NULL},
                                  {"a torsion constant", SCT_SECOND_MOMENT, 1e-18, 1e2, 1e-11, 1e-3, NULL}};
 
@@ -32,12 +41,16 @@ static bool read_values(sct_reader *r, const sct_node *node, const sct_range *ra
 /* {"c": ...}, or {"at": ..., "value": ..., "power": ...}, as n powers of the area. */
 static void read_relation(sct_reader *r, const sct_node *node, const relation *of, int n, sct_power power[])
 {
-    static const sct_range POWER = {"a power of the area", -1, 0.5, 4, 0, 0, NULL};
+    const sct_range POWER = {"a power of the area", -1, of->least_p, 4, 0, 0, NULL};
     enum { K_C, K_AT, K_VALUE, K_POWER, N };
     static const sct_key KEYS[N] = {{"c", NULL}, {"at", NULL}, {"value", NULL}, {"power", NULL}};
     const sct_node *found[N];
     double p = of->p, A, v[2];
     if (!sct_fields_keys(&r->f, node, of->what, KEYS, N, found)) return;
+    if (of == &INERTIA && found[K_C] == NULL && found[K_AT] == NULL && found[K_VALUE] == NULL) {
+        sct_fields_error(&r->f, node, "no \"c\"; expected the factor c of I = c A^2, or one for each axis");
+        return;
+    }
     if (found[K_C] == NULL && (found[K_AT] == NULL || found[K_VALUE] == NULL)) {
         sct_fields_error(&r->f, node, "found no \"%s\"; expected %s",
                          found[K_AT] != NULL      ? "value"
@@ -66,14 +79,6 @@ static void read_relation(sct_reader *r, const sct_node *node, const relation *o
     const bool has_value = read_values(r, found[K_VALUE], &of->value, n, v);
     if (!sct_fields_value(&r->f, found[K_AT], &SCT_AREAS, &A) || !has_value) return;
     for (int i = 0; i < n; i++) power[i] = (sct_power){v[i] / pow(A, p), p};
-}
-
-static void read_second_moment(sct_reader *r, const sct_node *node, sct_group *g)
-{
-    static const sct_range C = {"a factor c of I = c A^2", -1, 1e-6, 1e6, 0, 0, NULL};
-    static const sct_key FACTOR[] = {{"c", "the factor c of I = c A^2, or one for each axis"}};
-    const sct_node *c;
-    if (sct_fields_keys(&r->f, node, "a second moment of area", FACTOR, 1, &c)) sct_read_both_axes(r, c, &C, g->c);
 }
 
 static void read_shape(sct_reader *r, const sct_node *node, sct_group *g)
@@ -109,7 +114,7 @@ static void read_shape(sct_reader *r, const sct_node *node, sct_group *g)
     if (key != 0 && !sct_fields_value(&r->f, found[key], &RATIO[kind].range, &ratio)) return;
     const sct_shape shape = sct_shape_of((sct_shape_kind)kind, ratio);
     for (int i = 0; i < 2; i++) {
-        g->c[i] = shape.c_I[i];
+        g->I[i] = (sct_power){shape.c_I[i], 2.0};
         g->W[i] = (sct_power){shape.c_W[i], 1.5};
     }
     g->J = (sct_power){shape.c_J, 2.0};
@@ -125,7 +130,7 @@ void sct_read_properties(sct_reader *r, const sct_node *const said[SCT_SAYINGS],
         is_contradicted = true;
     }
     if (is_contradicted) return;
-    if (said[SCT_SAYS_SECOND_MOMENT] != NULL) read_second_moment(r, said[SCT_SAYS_SECOND_MOMENT], group);
+    if (said[SCT_SAYS_SECOND_MOMENT] != NULL) read_relation(r, said[SCT_SAYS_SECOND_MOMENT], &INERTIA, 2, group->I);
     if (said[SCT_SAYS_SECTION_MODULUS] != NULL) read_relation(r, said[SCT_SAYS_SECTION_MODULUS], &MODULUS, 2, group->W);
     if (said[SCT_SAYS_TORSION] != NULL) read_relation(r, said[SCT_SAYS_TORSION], &TORSION, 1, &group->J);
     if (said[SCT_SAYS_SHAPE] != NULL) read_shape(r, said[SCT_SAYS_SHAPE], group);

@@ -160,7 +160,7 @@ void sct_design_area(const sct_model *model, int group, double A, sct_design *de
     const sct_group *g = &model->groups[group];
     design->J[group] = g->J.c * pow(A, g->J.p);
     for (int axis = 0; axis < 2; axis++) {
-        design->i[group][axis] = sqrt(g->c[axis] * A);
+        design->i[group][axis] = sqrt(g->I[axis].c * pow(A, g->I[axis].p - 1.0));
         design->W[group][axis] = g->W[axis].c * pow(A, g->W[axis].p);
     }
 }

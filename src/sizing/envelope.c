@@ -23,10 +23,10 @@ sct_status sct_envelope_power(sct_arena *arena, double c, double p, sct_envelope
     return SCT_OK;
 }
 
-sct_status sct_envelope_relation(sct_arena *arena, double c, sct_envelope *e)
+sct_status sct_envelope_relation(sct_arena *arena, double c, double p, sct_envelope *e)
 {
-    const sct_status status = sct_envelope_power(arena, c, 0.5, e); /* i = sqrt(c A) */
-    if (status == SCT_OK && e->n > 0) e->h[0] *= 0.5;
+    const sct_status status = sct_envelope_power(arena, c, 0.5 * (p - 1.0), e); /* i = sqrt(c A^(p - 1)) */
+    if (e->n > 0) e->h[0] *= 0.5;
     return status;
 }
 

@@ -18,8 +18,8 @@ typedef struct sct_curve {
     double h, h1, h2;
 } sct_curve; /* value, first and second derivative */
 
-/** I = c A^2 (c NAN: nothing stated). */
-sct_status sct_envelope_relation(sct_arena *arena, double c, sct_envelope *envelope);
+/** I = c A^p (c NAN: nothing stated). */
+sct_status sct_envelope_relation(sct_arena *arena, double c, double p, sct_envelope *envelope);
 
 /** Any other property y = c A^p (c NAN: nothing stated), as h = ln y. */
 sct_status sct_envelope_power(sct_arena *arena, double c, double p, sct_envelope *envelope);

@@ -115,8 +115,8 @@ static void price_whole(sct_result *r, bool is_frequency, const tally *t)
     r->prices[r->n_prices++] = price;
 }
 
-/* The end of a variable's range: a size, or what slenderness leaves of it. A free area has i^2 = c A, so that 1 % more
- * slenderness is 2 % less area; a ladder moves by rungs, so that only the area can be priced. */
+/* The end of a variable's range: a size, or what slenderness leaves of it. A free area has i^2 = c A^(p - 1), so that 1
+ * % more slenderness is 2/(p - 1) % less area; a ladder moves by rungs, so that only the area can be priced. */
 static void price_bound(sct_result *r, const sct_duty *duty, int group, bool upper, sct_bound_source source, double s,
                         double multiplier)
 {
@@ -127,7 +127,7 @@ static void price_bound(sct_result *r, const sct_duty *duty, int group, bool upp
                        .limit = -1,
                        .multiplier = multiplier,
                        .per_unit = multiplier / exp(s),
-                       .saving = PERCENT * (slender && !ladder ? 2.0 : 1.0) * multiplier};
+                       .saving = PERCENT * (slender && !ladder ? 2.0 / (g->I[0].p - 1.0) : 1.0) * multiplier};
     const mass_words mass = shown_mass(r, price.saving);
     if (slender && ladder)
         sct_number_format(price.words, sizeof price.words,

@@ -467,9 +467,10 @@ static sct_status free_bounds(sct_problem *P, int v, const bool compressed[], sc
     for (int axis = 0; axis < 2; axis++) {
         const asker who = radius_asked(P, group, axis, compressed);
         if (!(who.i > 0.0)) continue;
-        const double s = log(who.i * who.i / g->c[axis]); /* i^2 = c A */
+        const sct_power *I = &g->I[axis];
+        const double s = log(who.i * who.i / I->c) / (I->p - 1.0); /* i^2 = c A^(p - 1) */
         if (s > P->upper[v])
-            return refuse_slenderness(P, group, who, who.limit * who.i / sqrt(g->c[axis] * g->A_max), why);
+            return refuse_slenderness(P, group, who, who.limit * who.i / sqrt(I->c * pow(g->A_max, I->p - 1.0)), why);
         if (s <= P->lower[v]) continue;
         P->lower[v] = s;
         P->source[v] = (sct_bound_source){SCT_CHECK_SLENDERNESS, who.bar};

@@ -6,7 +6,7 @@ sct_status sct_curves_of_area(sct_arena *arena, const sct_group *g, sct_group_cu
 {
     sct_status status = sct_envelope_power(arena, g->J.c, g->J.p, &curves->J);
     for (int axis = 0; axis < 2 && status == SCT_OK; axis++) {
-        status = sct_envelope_relation(arena, g->c[axis], &curves->i[axis]);
+        status = sct_envelope_relation(arena, g->I[axis].c, g->I[axis].p, &curves->i[axis]);
         if (status == SCT_OK) status = sct_envelope_power(arena, g->W[axis].c, g->W[axis].p, &curves->W[axis]);
     }
     return status;

@@ -11,7 +11,7 @@ sct_verify_section sct_verify_section_of(const sct_model *model, int group)
     }
     const double A = g->kind == SCT_HELD_AREA ? g->A_held : NAN;
     return (sct_verify_section){.A = A,
-                                .I = {g->c[0] * A * A, g->c[1] * A * A},
+                                .I = {g->I[0].c * pow(A, g->I[0].p), g->I[1].c * pow(A, g->I[1].p)},
                                 .W = {g->W[0].c * pow(A, g->W[0].p), g->W[1].c * pow(A, g->W[1].p)},
                                 .J = g->J.c * pow(A, g->J.p)};
 }
