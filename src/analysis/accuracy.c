@@ -126,7 +126,7 @@ typedef enum part { MOVES, TURNS, PARTS } part;
 
 static size_t first_of(const sct_structure *st, size_t joint, part which)
 {
-    return (size_t)(st->first_dof[joint] + (which == TURNS ? st->n_free[joint] : 0));
+    return (size_t)st->first_dof[joint] + (which == TURNS ? (size_t)st->n_free[joint] : 0);
 }
 
 static int count_of(const sct_structure *st, size_t joint, part which)

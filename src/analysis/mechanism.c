@@ -525,8 +525,10 @@ sct_status sct_mechanism_find(sct_solver *solver, const double A[], sct_issues *
     f.q = f.n < BLOCK ? f.n : BLOCK;
     sct_solver_stiffness(solver, &f.pattern);
     sct_status status = search_allocate(&f) ? SCT_OK : SCT_NO_MEMORY;
-    if (status == SCT_OK) mark_rotations(&f);
-    if (status == SCT_OK) status = sct_connectivity_check(f.st, f.ground, &n_found, &f.n_told, issues);
+    if (status == SCT_OK) {
+        mark_rotations(&f);
+        status = sct_connectivity_check(f.st, f.ground, &n_found, &f.n_told, issues);
+    }
     if (status == SCT_OK && f.n > 0) status = search_stiffness(&f);
     if (status == SCT_OK && f.n > 0 && n_found == 0) status = search_hardly_held(&f);
     search_free(&f);

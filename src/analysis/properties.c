@@ -36,12 +36,16 @@ static sct_properties on_ladder(const sct_group *g, const sct_section sections[]
     return size;
 }
 
+static const sct_section *sections_of(const sct_model *model, const sct_group *g)
+{
+    return model->families[g->family].sections;
+}
+
 sct_properties sct_properties_at_area(const sct_model *model, int group, double A)
 {
     const sct_group *g = &model->groups[group];
-    const sct_section *sections = g->family >= 0 ? model->families[g->family].sections : NULL;
-    if (g->kind == SCT_HELD_SECTION) return constant(&sections[g->held]);
-    if (g->kind == SCT_LADDER) return on_ladder(g, sections, A);
+    if (g->kind == SCT_HELD_SECTION) return constant(&sections_of(model, g)[g->held]);
+    if (g->kind == SCT_LADDER) return on_ladder(g, sections_of(model, g), A);
     sct_properties size;
     set_power(&size, SCT_OF_AREA, 1.0, 1.0, A);
     set_power(&size, SCT_OF_INERTIA_IN, g->I[0].c, g->I[0].p, A);

@@ -94,9 +94,10 @@ static void hold_row(const sct_graph *g, const double h[3], const double *q, sct
 /* a loses a' B M: what is left of a share a in an elongation when the joint turns as its unknowns allow. */
 static void take_unknowns(const sct_graph *g, int j, double M[3][3], double a[3])
 {
+    const int n = g->st->n_turns[j];
     double share[3];
-    for (int i = 0; i < g->st->n_turns[j]; i++) share[i] = sct_dot(3, g->st->turn_basis[j][i], a);
-    for (int i = 0; i < g->st->n_turns[j]; i++) {
+    for (int i = 0; i < n; i++) share[i] = sct_dot(3, g->st->turn_basis[j][i], a);
+    for (int i = 0; i < n; i++) {
         for (int x = 0; x < 3; x++) a[x] -= share[i] * M[i][x];
     }
 }

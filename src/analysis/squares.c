@@ -64,28 +64,26 @@ static void row_add_bow(const sct_structure *st, const sct_bar *bar, int plane, 
 
 /* ---- lists of squares -------------------------------------------------------------------------------------------- */
 
-/* The array with room for more; itself, and *ok false, when memory ran out. */
-static void *grown(void *array, int room, size_t size, bool *ok)
-{
-    void *larger = realloc(array, (size_t)room * size);
-    if (larger != NULL) return larger;
-    *ok = false;
-    return array;
-}
-
 static bool make_room(sct_squares *q)
 {
-    bool ok = true;
     if (q->count == q->room) {
-        q->room = q->room == 0 ? 64 : 2 * q->room;
-        q->square = grown(q->square, q->room, sizeof *q->square, &ok);
+        const int room = q->room == 0 ? 64 : 2 * q->room;
+        sct_square *square = realloc(q->square, (size_t)room * sizeof *square);
+        if (square == NULL) return false;
+        q->square = square;
+        q->room = room;
     }
     if (q->n_pool + SCT_MOST_SPRING_DOF > q->pool_room) {
-        q->pool_room = q->pool_room == 0 ? 512 : 2 * q->pool_room;
-        q->dof = grown(q->dof, q->pool_room, sizeof *q->dof, &ok);
-        q->b = grown(q->b, q->pool_room, sizeof *q->b, &ok);
+        const int room = q->pool_room == 0 ? 512 : 2 * q->pool_room;
+        int *dof = realloc(q->dof, (size_t)room * sizeof *dof);
+        if (dof == NULL) return false;
+        q->dof = dof;
+        double *b = realloc(q->b, (size_t)room * sizeof *b);
+        if (b == NULL) return false;
+        q->b = b;
+        q->pool_room = room;
     }
-    return ok;
+    return true;
 }
 
 /* Held joints leave nothing to square. */

@@ -138,7 +138,8 @@ sct_properties sct_properties_at_area(const sct_model *model, int group, double 
 /** Stiffness of a spring. */
 static inline double sct_spring_stiffness(const sct_spring *s, const sct_properties sizes[])
 {
-    return s->group < 0 ? s->E / s->L : s->E * sizes[s->group].P[s->property] / s->L;
+    if (s->group < 0) return s->E / s->L;
+    return s->E * sizes[s->group].P[s->property] / s->L;
 }
 
 /** A member's load in its local axes. */

@@ -19,7 +19,7 @@ static int run_explain(const cli_command *command, const char *const given[], ch
     if (code == 0) code = cli_exit_of_status(sct_check(run.model, NULL, &run.result, run.issues));
     if (code == 0)
         code = cli_exit_of_status((run.json ? sct_explain_json : sct_explain)(run.result, member, &text, run.issues));
-    if (code == 0) cli_put(text);
+    if (code == 0 && text != NULL) cli_put(text);
     if (code == EXIT_INPUT && run.result != NULL) code = EXIT_USAGE; /* no such member: a slip on the command line */
     if (code == 0) code = cli_exit_of_result(run.result);
     free(text);

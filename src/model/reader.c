@@ -19,15 +19,14 @@ sct_names *sct_reader_names(sct_reader *r, const sct_node *object)
 {
     const bool is_object = object != NULL && sct_node_kind_of(object) == SCT_OBJECT;
     sct_names *names = sct_names_new(is_object ? sct_node_count(object) : 0);
+    bool has_memory = names != NULL;
     int i = 0;
-    for (const sct_node *c = is_object ? sct_node_first(object) : NULL; names != NULL && c != NULL;
-         c = sct_node_next(c)) {
-        if (sct_names_put(names, sct_node_key(c), i++)) continue;
-        sct_names_free(names);
-        names = NULL;
-    }
-    if (names == NULL) r->f.failure = SCT_NO_MEMORY;
-    return names;
+    for (const sct_node *c = is_object ? sct_node_first(object) : NULL; has_memory && c != NULL; c = sct_node_next(c))
+        has_memory = sct_names_put(names, sct_node_key(c), i++);
+    if (has_memory) return names;
+    sct_names_free(names);
+    r->f.failure = SCT_NO_MEMORY;
+    return NULL;
 }
 
 int sct_reader_count(sct_reader *r, const sct_node *node, const char *what, int most)

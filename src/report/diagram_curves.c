@@ -98,14 +98,13 @@ static sct_status envelope_of(const sct_scene *scene, const sct_diagram_of *of, 
 sct_status sct_curves_of(const sct_scene *scene, const sct_diagram_of *of, sct_member_curves **curves, double *largest)
 {
     const sct_result *r = scene->result;
-    sct_status status = SCT_OK;
     *largest = 0;
     *curves = sct_arena_array(scene->arena, (size_t)r->n_members, sizeof **curves);
     if (*curves == NULL) return SCT_NO_MEMORY;
     for (int m = 0; m < r->n_members && r->n_combinations > 0; m++) {
         sct_member_curves *out = &(*curves)[m];
-        status = of->is_envelope ? envelope_of(scene, of, m, out)
-                                 : curve_of(scene, of, scene->options.combination, m, &out->curve[0]);
+        const sct_status status = of->is_envelope ? envelope_of(scene, of, m, out)
+                                                  : curve_of(scene, of, scene->options.combination, m, &out->curve[0]);
         if (status != SCT_OK) return status;
         for (int side = 0; side < 2; side++) {
             for (int i = 0; i < out->curve[side].n; i++) *largest = fmax(*largest, fabs(out->curve[side].v[i]));

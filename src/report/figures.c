@@ -112,7 +112,7 @@ sct_status sct_figure_deflected(sct_scene *scene, const sct_layout *l, sct_sheet
 static sct_status put_diagram(sct_scene *scene, const sct_layout *l, const sct_diagram_of *of, sct_sheet *page,
                               double *y)
 {
-    bool drawn;
+    bool drawn = false;
     char words[320];
     sct_status status = new_labels(scene, l);
     if (status == SCT_OK) status = sct_diagram_draw(scene, of, l->width, &drawn);

@@ -226,7 +226,7 @@ static void draw_points(sct_scene *scene, const sct_drawn_loads *loads, sct_load
 
 static sct_status draw_of_frame(sct_scene *scene, sct_loads_drawn *drawn)
 {
-    sct_drawn_loads loads;
+    sct_drawn_loads loads = {0};
     const sct_status status = sct_drawn_loads_of(scene->result, scene->options.combination, scene->arena, &loads);
     if (status != SCT_OK) return status;
     drawn->without_weight = loads.has_weight;

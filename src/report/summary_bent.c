@@ -41,8 +41,10 @@ void sct_summary_bending(const sct_page *p)
     sct_page_unit_head(p, &t, "N", SCT_SHOWN_FORCE);
     sct_page_unit_head(p, &t, in_space ? "M in plane" : "M", SCT_SHOWN_MOMENT);
     sct_page_unit_head(p, &t, "W", SCT_SHOWN_SECTION_MODULUS);
-    if (in_space) sct_page_unit_head(p, &t, "M out of plane", SCT_SHOWN_MOMENT);
-    if (in_space) sct_page_unit_head(p, &t, "W", SCT_SHOWN_SECTION_MODULUS);
+    if (in_space) {
+        sct_page_unit_head(p, &t, "M out of plane", SCT_SHOWN_MOMENT);
+        sct_page_unit_head(p, &t, "W", SCT_SHOWN_SECTION_MODULUS);
+    }
     sct_table_words(&t, "used");
     int shown = 0;
     for (int g = 0; g < p->r->n_groups && shown < MOST_BENT; g++) {

@@ -7,7 +7,6 @@ static const int QUANTITY[3] = {SCT_BEAM_N, SCT_BEAM_M, SCT_BEAM_M + 1};
 
 /* A member with what every place of it needs. */
 typedef struct cut {
-    const sct_bent_member *member;
     sct_beam_line line;
     sct_beam_state state;
     double N; /* most compressive along it, 0 at most, at x_N */
@@ -18,7 +17,7 @@ typedef struct cut {
 static cut cut_of(const sct_bent_member *m)
 {
     static const double MOST_COMPRESSED[SCT_BEAM_QUANTITIES] = {-1.0};
-    cut c = {.member = m};
+    cut c = {0};
     c.line = sct_member_line(m->lines, m->bar, m->combination, m->A);
     c.state = sct_member_state(m->st, m->S, m->bar);
     const sct_beam_extreme least = sct_beam_largest(&c.line, &c.state, MOST_COMPRESSED);

@@ -22,7 +22,7 @@ static int by_place(const void *a, const void *b)
 typedef struct member {
     const sct_result *r;
     const sct_bar *bar;
-    int combination, index;
+    int combination;
     sct_beam_line line;
     sct_beam_state state;
     sct_beam_bending bending[2];
@@ -32,7 +32,7 @@ typedef struct member {
 static member member_of(const sct_result_memory *memory, int combination, int index)
 {
     const sct_structure *st = memory->st;
-    member m = {.r = &memory->open, .bar = &st->bars[index], .combination = combination, .index = index};
+    member m = {.r = &memory->open, .bar = &st->bars[index], .combination = combination};
     const double *S = memory->S + (size_t)combination * (size_t)st->n_springs;
     m.line = sct_member_line(memory->lines, index, combination, memory->A[m.bar->group]);
     m.state = sct_member_state(st, S, index);

@@ -110,10 +110,12 @@ sct_cut sct_cut_at(const sct_cut_line *line, long double x, bool right)
         for (int axis = 0; axis < 3; axis++) {
             long double force, moment;
             left_of(load, axis, x, &force, &moment);
-            if (axis == 0) cut.N -= force;
-            if (axis == 0) continue;
-            cut.V[axis - 1] += force;
-            cut.M[axis - 1] += moment;
+            if (axis == 0) {
+                cut.N -= force;
+            } else {
+                cut.V[axis - 1] += force;
+                cut.M[axis - 1] += moment;
+            }
         }
     }
     return cut;

@@ -9,10 +9,9 @@ static const double SAME_AXIS = 1e-6; /* sine: an axis nearer to others adds no 
 /* ---- projections --------------------------------------------------------------------------------------------------
  */
 
-/* H = sum of h h' / h'h for one held direction; in space the normal of two held ones is what is left free. */
-static void project(int n_held, double held[3][3], int d, double H[3][3])
+/* H = h h' / h'h for one held direction h = p; in space the normal of two held ones, p and q, is what is left free. */
+static void project(int n_held, const double p[3], const double q[3], int d, double H[3][3])
 {
-    const double *p = held[0], *q = held[1];
     double v[3] = {p[0], p[1], p[2]};
     if (n_held == 0) return;
     if (n_held == 2 && d == 3) {
@@ -61,7 +60,7 @@ static void find_displacements(const sct_model *m, sct_supports *s)
     for (int j = 0; j < m->n_joints; j++) {
         double(*H)[3] = s->held[0][j], (*F)[3] = s->free[0][j];
         const bool has_member = F[0][0] > 0.0;
-        project(m->joints[j].n_held, m->joints[j].held, d, H);
+        project(m->joints[j].n_held, m->joints[j].held[0], m->joints[j].held[1], d, H);
         for (int i = 0; i < d && has_member; i++) {
             for (int k = 0; k < d; k++) F[i][k] -= H[i][k];
         }
@@ -79,7 +78,7 @@ static void add_springs(const sct_joint *joint, const double H[3][3], double P[3
 static void find_turns(const sct_model *m, int n_elements, const sct_element elements[], sct_supports *s)
 {
     for (int j = 0; j < m->n_joints; j++) {
-        project(m->joints[j].n_turns_held, m->joints[j].turns_held, 3, s->held[1][j]);
+        project(m->joints[j].n_turns_held, m->joints[j].turns_held[0], m->joints[j].turns_held[1], 3, s->held[1][j]);
         memcpy(s->free[1][j], s->held[1][j], sizeof s->free[1][j]);
     }
     for (int b = 0; b < n_elements; b++) {
