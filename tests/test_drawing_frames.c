@@ -131,7 +131,7 @@ static const sct_write_options EVERYTHING = {.combination = 0,
 START_TEST(every_frame_is_well_formed_with_labels_apart)
 {
     static const char *const MODELS[] = {BUILT_IN, STOREY, SPACE};
-    static const sct_write_options OPTIONS[] = {
+    const sct_write_options OPTIONS[] = {
         {.combination = -1},
         {.combination = 0, .draw_loads = true},
         {.combination = 0, .draw_moment = SCT_DIAGRAM_ENVELOPE, .draw_axial = SCT_DIAGRAM_ENVELOPE},

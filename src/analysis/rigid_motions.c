@@ -122,14 +122,14 @@ static int add_elastic(sct_graph *g, int j, const double q[3], double M[3][3], i
 {
     for (int i = g->support[j]; i < g->support[j + 1]; i++) {
         const sct_joint_spring *support = &g->st->model->joints[j].springs[i - g->support[j]];
-        double rest[3], turned[3];
-        memcpy(rest, support->dir, sizeof rest);
+        const double *dir = support->dir;
+        double rest[3] = {dir[0], dir[1], dir[2]};
         take_unknowns(g, j, M, rest);
-        for (int x = 0; x < 3; x++) turned[x] = support->dir[x] - rest[x];
+        const double turned[3] = {dir[0] - rest[0], dir[1] - rest[1], dir[2] - rest[2]};
         if (support->is_turn)
             hold_row(g, turned, NULL, g->rows[m++]);
         else
-            hold_row(g, support->dir, q, g->rows[m++]);
+            hold_row(g, dir, q, g->rows[m++]);
     }
     return m;
 }
