@@ -366,6 +366,8 @@ typedef struct sct_result {
     double *u;                 /* [m]  n_combinations x n_joints x 3 displacements */
     double *reaction;          /* [N]  n_combinations x n_joints x 3; 0 where nothing is held */
     double *N;    /* [N]  n_combinations x n_members; what is below 1e-9 of the largest force is given as 0 */
+    bool *slack;  /* n_combinations x n_members: carries tension only and is slack; NULL where no member carries
+                   * tension only */
     double *load; /* [N]  n_combinations x n_joints x 3, self-weight included; loads on members count at their ends */
     /* frames, each n_combinations x n_joints x 3, about x, y, z */
     double *turn;        /* [rad] rotations; 0 where no member's end takes part */

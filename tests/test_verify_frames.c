@@ -55,7 +55,7 @@ static both analyse(sct_model *m)
     b.first = solve(m);
     ck_assert_int_eq(sct_accuracy_refine(b.first.solver, &b.first.r, &accuracy, b.first.issues), SCT_OK);
     for (int g = 0; g < m->n_groups; g++) sections[g] = sct_verify_section_of(m, g);
-    ck_assert_int_eq(sct_statics_solve(m, sections, &b.second), SCT_OK);
+    ck_assert_int_eq(sct_statics_solve(m, sections, NULL, &b.second), SCT_OK);
     return b;
 }
 

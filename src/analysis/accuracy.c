@@ -91,7 +91,7 @@ static void weigh(refinement *w)
 /* r = load of case k, to be reduced by spring forces. */
 static void start_with_load(refinement *w, size_t k)
 {
-    const long double factor = w->st->model->cases[k].self_weight;
+    const long double factor = w->st->self_weight[k];
     for (size_t i = 0; i < w->n; i++) w->r[i] = w->st->f[k * w->n + i] + factor * w->weight[i];
 }
 

@@ -221,6 +221,12 @@ static bool twist_is_taken(const sct_structure *st, const sct_bar *bar)
 static void add_member_load(sct_structure *st, int k, const sct_member_load *load, sct_issues *issues)
 {
     sct_bar *bar = &st->bars[load->member];
+    if (st->model->members[load->member].tension_only) {
+        sct_issue_add(issues, SCT_ERROR, load->where,
+                      "member \"%s\" carries tension only: it takes no load between its joints",
+                      sct_show(st->model->members[load->member].name).text);
+        return;
+    }
     const sct_beam_load local = sct_local_load(bar, load);
     bar->is_bent = true;
     if (fabs(local.M[0]) > SCT_TOL_DIRECTION * sct_length3(local.M) && !twist_is_taken(st, bar)) {
@@ -286,7 +292,7 @@ sct_status sct_add_actions(sct_structure *st, const bool has_member[], bool warn
     st->stretch = calloc(n_cases * (size_t)st->n_springs + 1, sizeof *st->stretch);
     if (st->f == NULL || st->joint_load == NULL || st->stretch == NULL) return SCT_NO_MEMORY;
     find_empty_cases(m, issues);
-    for (int k = 0; k < st->n_cases; k++) {
+    for (int k = 0; k < m->n_cases; k++) {
         const sct_case *c = &m->cases[k];
         for (int i = 0; i < c->n_loads; i++) add_joint_load(st, k, &c->loads[i], has_member, warned, issues);
         for (int i = 0; i < c->n_settlements; i++) add_settlement(st, k, &c->settlements[i], issues);
@@ -294,5 +300,7 @@ sct_status sct_add_actions(sct_structure *st, const bool has_member[], bool warn
         for (int i = 0; i < c->n_member_loads; i++) add_member_load(st, k, &c->member_loads[i], issues);
         if (c->n_settlements > 0) stretch_by_settlement(st, k);
     }
+    for (int i = 0; i < st->n_ties; i++)
+        st->stretch[(size_t)(m->n_cases + i) * (size_t)st->n_springs + (size_t)st->ties[i]] = 1.0;
     return SCT_OK;
 }

@@ -65,7 +65,7 @@ static void weigh(proof *p)
 
 static void start_with_load(proof *p, size_t k)
 {
-    const long double factor = p->st->model->cases[k].self_weight;
+    const long double factor = p->st->self_weight[k];
     for (size_t i = 0; i < p->n; i++) {
         const long double own = factor * p->weight[i];
         p->r[i] = p->st->f[k * p->n + i] + own;

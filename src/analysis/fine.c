@@ -15,6 +15,9 @@ struct sct_fine {
     sct_solver *solver;
     sct_response response; /* not used, but analysing is the way to fill and factor */
     bool is_factored;      /* the factor is that of the stiffness */
+    bool has_left_out;
+    bool *left_out; /* pieces */
+    double *K;      /* values on the pattern, where some are left out */
 };
 
 /* ---- dividing --------------------------------------------------------------------------------------------------- */
@@ -76,6 +79,7 @@ static void add_pieces(sct_fine *f, int e)
         piece->to = sct_fine_joint(f, e, k + 1);
         memcpy(piece->up, f->coarse->bars[e].axes[1], sizeof piece->up);
         piece->roll = 0.0;
+        piece->tension_only = false; /* no combinations here */
         if (n == 1) continue;
         piece->end[0] = k == 0 ? outer_end(member, 0) : inner_end(member);
         piece->end[1] = k == n - 1 ? outer_end(member, 1) : inner_end(member);
@@ -130,6 +134,17 @@ static sct_status build(sct_fine *f)
     return status;
 }
 
+/* For what is left out: nothing where no bar can be. */
+static sct_status make_room(sct_fine *f)
+{
+    const sct_pattern *pattern;
+    if (f->coarse->n_ties == 0) return SCT_OK;
+    sct_solver_stiffness(f->solver, &pattern);
+    f->left_out = sct_arena_array(f->arena, (size_t)f->st->n_bars, sizeof *f->left_out);
+    f->K = sct_arena_array(f->arena, (size_t)pattern->column[pattern->n], sizeof *f->K);
+    return f->left_out != NULL && f->K != NULL ? SCT_OK : SCT_NO_MEMORY;
+}
+
 sct_fine *sct_fine_new(const sct_structure *coarse, int pieces, sct_engine engine, sct_status *status)
 {
     sct_fine *f = calloc(1, sizeof *f);
@@ -141,6 +156,7 @@ sct_fine *sct_fine_new(const sct_structure *coarse, int pieces, sct_engine engin
     if (*status == SCT_OK) *status = build(f);
     if (*status == SCT_OK) f->solver = sct_solver_new(f->st, engine, status);
     if (*status == SCT_OK) *status = sct_response_new(f->st, &f->response);
+    if (*status == SCT_OK) *status = make_room(f);
     if (*status == SCT_OK) return f;
     sct_fine_free(f);
     return NULL;
@@ -162,13 +178,47 @@ sct_status sct_fine_update(sct_fine *f, const sct_properties sizes[])
 {
     const sct_status status = sct_solver_analyse_sizes(f->solver, sizes, &f->response);
     f->is_factored = status == SCT_OK;
+    f->has_left_out = false;
     return status;
+}
+
+/* K once more, without what is left out. */
+static void assemble(sct_fine *f)
+{
+    const sct_pattern *pattern;
+    const double *stiffness = sct_solver_stiffnesses(f->solver);
+    sct_solver_stiffness(f->solver, &pattern);
+    memset(f->K, 0, (size_t)pattern->column[pattern->n] * sizeof *f->K);
+    for (int s = 0; s < f->st->n_springs; s++) {
+        const sct_spring *spring = &f->st->springs[s];
+        const int *place = sct_solver_places(f->solver, s);
+        if (s < f->st->n_bars && f->left_out[s]) continue;
+        for (int j = 0; j < spring->n_dof; j++)
+            for (int i = 0; i <= j; i++) f->K[*place++] += stiffness[s] * spring->b[i] * spring->b[j];
+    }
+}
+
+void sct_fine_leave_out(sct_fine *f, const bool left_out[])
+{
+    bool any = false;
+    for (int e = 0; left_out != NULL && e < f->coarse->n_bars; e++) any = any || left_out[e];
+    if (!any && !f->has_left_out) return;
+    f->has_left_out = any;
+    f->is_factored = false;
+    for (int e = 0; e < f->coarse->n_bars; e++) f->left_out[f->first[e]] = any && left_out[e];
+    if (any) assemble(f);
+}
+
+const double *sct_fine_stiffness(const sct_fine *f, const sct_pattern **pattern)
+{
+    const double *K = sct_solver_stiffness(f->solver, pattern);
+    return f->has_left_out ? f->K : K;
 }
 
 sct_factor *sct_fine_factor(sct_fine *f, sct_status *status)
 {
     const sct_pattern *pattern;
-    const double *K = sct_solver_stiffness(f->solver, &pattern);
+    const double *K = sct_fine_stiffness(f, &pattern);
     *status = f->is_factored ? SCT_OK : sct_factor_update(sct_fine_factor_now(f), K, NULL);
     f->is_factored = *status == SCT_OK;
     return f->is_factored ? sct_fine_factor_now(f) : NULL;
@@ -193,7 +243,7 @@ void sct_fine_stiffness_derivative(const sct_fine *f, const double x[], const do
     for (int e = 0; e < f->st->n_springs; e++) {
         const sct_spring *s = &f->st->springs[e];
         const int var = s->group < 0 ? -1 : f->st->var_of_group[s->group];
-        if (var < 0) continue;
+        if (var < 0 || (f->has_left_out && e < f->st->n_bars && f->left_out[e])) continue;
         double bx = 0.0, by = 0.0;
         for (int i = 0; i < s->n_dof; i++) {
             bx += s->b[i] * x[s->dof[i]];

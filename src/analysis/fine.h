@@ -25,8 +25,15 @@ typedef struct sct_fine sct_fine;
 sct_fine *sct_fine_new(const sct_structure *coarse, int pieces, sct_engine engine, sct_status *status);
 void sct_fine_free(sct_fine *fine);
 
-/** Takes sizes (n_groups) over and factors the stiffness. As sct_solver_analyse_sizes. */
+/** Takes sizes (n_groups) over and factors the stiffness, nothing left out. As sct_solver_analyse_sizes. */
 sct_status sct_fine_update(sct_fine *fine, const sct_properties sizes[]);
+
+/** Leaves bars that carry tension only (flags, n_bars of the structure; NULL: none) out of the stiffness until the next
+ * call or update: slack ones. */
+void sct_fine_leave_out(sct_fine *fine, const bool left_out[]);
+
+/** The stiffness with the latest sizes, without what is left out: upper triangle in *pattern. */
+const double *sct_fine_stiffness(const sct_fine *fine, const sct_pattern **pattern);
 
 /** The factor of the stiffness with the latest sizes. *status as that of sct_factor_update. NULL unless SCT_OK. */
 sct_factor *sct_fine_factor(sct_fine *fine, sct_status *status);

@@ -97,8 +97,7 @@ void sct_member_lines_free(sct_member_lines *l)
 double sct_weight_factor(const sct_structure *st, int combination)
 {
     double sum = 0.0;
-    for (int k = 0; k < st->n_cases; k++)
-        sum += st->model->combinations[combination].factor[k] * st->model->cases[k].self_weight;
+    for (int k = 0; k < st->n_cases; k++) sum += sct_factors(st, combination)[k] * st->self_weight[k];
     return sum;
 }
 

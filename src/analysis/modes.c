@@ -63,7 +63,7 @@ void sct_mode_finder_free(sct_mode_finder *f)
 static sct_status factor_shifted(sct_mode_finder *f, double sigma, sct_modes *modes)
 {
     const sct_pattern *pattern;
-    const double *K = sct_solver_stiffness(sct_fine_solver(f->fine), &pattern);
+    const double *K = sct_fine_stiffness(f->fine, &pattern);
     memcpy(f->shifted, K, (size_t)pattern->column[pattern->n] * sizeof *K);
     sct_squares_assemble(f->B, -sigma, pattern, f->shifted);
     modes->factors++;

@@ -9,7 +9,7 @@
 
 static double factor_of(const sct_structure *st, int combination, int k)
 {
-    return st->model->combinations[combination].factor[k];
+    return sct_factors(st, combination)[k];
 }
 
 /* The first n of the spring forces. */
@@ -75,7 +75,7 @@ void sct_combine_loads(const sct_structure *st, const double A[], int combinatio
     for (int i = 0; i < n; i++) load[i] = 0.0;
     for (int k = 0; k < st->n_cases; k++) {
         const double factor = factor_of(st, combination, k), *of_case = st->joint_load + (size_t)k * (size_t)n;
-        weight_factor += factor * st->model->cases[k].self_weight;
+        weight_factor += factor * st->self_weight[k];
         for (int i = 0; i < n && factor != 0.0; i++) load[i] += factor * of_case[i];
     }
     if (weight_factor == 0.0) return;

@@ -69,7 +69,7 @@ static void fill_batch(const sct_solver *solver, const sct_response *response, s
     const double *A = sct_solver_areas(solver);
     memset(rhs, 0, count * (size_t)st->n_dof * sizeof *rhs);
     for (size_t k = first / (size_t)st->n_vars; k * (size_t)st->n_vars < first + count; k++) {
-        const double s = st->model->cases[k].self_weight;
+        const double s = st->self_weight[k];
         const double *S = response->N + k * (size_t)st->n_springs;
         for (int e = 0; e < st->n_bars && s != 0.0; e++) {
             const sct_bar *bar = &st->bars[e];
@@ -167,7 +167,7 @@ static void add_gradient(const sct_solver *solver, const sct_response *response,
                          const double lambda[], double dq[])
 {
     const sct_structure *st = sct_solver_structure(solver);
-    const double *A = sct_solver_areas(solver), s = st->model->cases[k].self_weight;
+    const double *A = sct_solver_areas(solver), s = st->self_weight[k];
     const double *S = response->N + (size_t)k * (size_t)st->n_springs;
     const double *wN = q.wN != NULL ? q.wN + (size_t)k * (size_t)st->n_springs : NULL;
     for (int e = 0; e < st->n_springs; e++) {
@@ -223,7 +223,7 @@ static void add_curvature(const sct_solver *solver, const sct_response *response
 {
     const sct_structure *st = sct_solver_structure(solver);
     const size_t n = (size_t)st->n_dof, vars = (size_t)st->n_vars;
-    const double *A = sct_solver_areas(solver), s = st->model->cases[k].self_weight;
+    const double *A = sct_solver_areas(solver), s = st->self_weight[k];
     const double *S = response->N + (size_t)k * (size_t)st->n_springs;
     const double *wN = q.wN != NULL ? q.wN + (size_t)k * (size_t)st->n_springs : NULL;
     const double *du_k = du + (size_t)k * n * vars;

@@ -143,7 +143,7 @@ static void copy_springs(sct_solver *s)
             s->b[e * s->width + i] = spring->b[i];
         }
     }
-    for (int k = 0; k < st->n_cases; k++) s->has_weight = s->has_weight || st->model->cases[k].self_weight != 0.0;
+    for (int k = 0; k < st->n_cases; k++) s->has_weight = s->has_weight || st->self_weight[k] != 0.0;
 }
 
 static sct_status list_stretched(sct_solver *s)
@@ -264,7 +264,7 @@ static void load(sct_solver *s, double u[])
     if (s->has_weight) {
         sct_structure_weight(st, s->A, s->weight);
         for (int k = 0; k < st->n_cases; k++) {
-            const double factor = st->model->cases[k].self_weight;
+            const double factor = st->self_weight[k];
             for (size_t i = 0; i < n && factor != 0.0; i++) u[(size_t)k * n + i] += factor * s->weight[i];
         }
     }

@@ -29,7 +29,11 @@ struct sct_stability {
     course *N;    /* pieces: their force */
     course *held; /* pieces: dN/dA by own weight along the member with its ends held */
     course *gain; /* pieces: what the eigenvalue gains by the force, sum of g (b'x)(b'y) */
+    double *w;    /* bars of the structure: d lambda / d force, relative */
     double *wN;   /* n_cases x springs of the structure; 0 beyond the axial ones */
+    sct_slack *slack;
+    bool *left_out;     /* bars of the structure */
+    double *q, *lambda; /* n_ties */
 };
 
 static sct_status set_up(sct_stability *s, int wanted)
@@ -42,6 +46,11 @@ static sct_status set_up(sct_stability *s, int wanted)
     s->held = calloc(pieces + 1, sizeof *s->held);
     s->gain = calloc(pieces + 1, sizeof *s->gain);
     s->wN = calloc((size_t)s->coarse->n_cases * springs + 1, sizeof *s->wN);
+    s->w = calloc((size_t)s->coarse->n_bars + 1, sizeof *s->w);
+    s->left_out = calloc((size_t)s->coarse->n_bars + 1, sizeof *s->left_out);
+    s->q = calloc((size_t)s->coarse->n_ties + 1, sizeof *s->q);
+    s->lambda = calloc((size_t)s->coarse->n_ties + 1, sizeof *s->lambda);
+    if (!s->w || !s->left_out || !s->q || !s->lambda) return SCT_NO_MEMORY;
     if (!s->lines || !s->S || !s->N || !s->held || !s->gain || !s->wN) return SCT_NO_MEMORY;
     sct_status status = sct_squares_of_geometry(fine, &s->geometry);
     if (status == SCT_OK) s->finder = sct_mode_finder_new(s->fine, &s->geometry, wanted, NO_BUCKLING, &status);
@@ -73,7 +82,16 @@ void sct_stability_free(sct_stability *s)
     free(s->held);
     free(s->gain);
     free(s->wN);
+    free(s->w);
+    free(s->left_out);
+    free(s->q);
+    free(s->lambda);
     free(s);
+}
+
+void sct_stability_set_slack(sct_stability *s, sct_slack *slack)
+{
+    s->slack = slack;
 }
 
 /* ---- forces of the pieces ---------------------------------------------------------------------------------------- */
@@ -98,6 +116,8 @@ static void find_forces(sct_stability *s, const sct_response *response)
     const double *A = sct_solver_areas(sct_fine_solver(s->fine));
     const double factor = sct_weight_factor(s->coarse, s->combination);
     sct_combine_springs(s->coarse, response, s->combination, s->S);
+    for (int e = 0; e < s->coarse->n_bars; e++)
+        if (s->left_out[e]) s->S[e] = 0.0;
     for (int e = 0; e < s->coarse->n_bars; e++) {
         int first;
         const int n = sct_fine_pieces(s->fine, e, &first);
@@ -146,6 +166,9 @@ sct_status sct_stability_find(sct_stability *s, const sct_response *response, in
                               sct_modes *modes)
 {
     s->combination = combination;
+    for (int i = 0; s->slack != NULL && i < s->coarse->n_ties; i++)
+        s->left_out[s->coarse->ties[i]] = sct_slack_is(s->slack, combination, i);
+    sct_fine_leave_out(s->fine, s->left_out);
     find_forces(s, response);
     *modes = (sct_modes){0};
     if (!set_geometry(s)) return SCT_OK;
@@ -170,7 +193,7 @@ static void find_gains(sct_stability *s, const double x[], const double y[])
 static void weigh(sct_stability *s, double alpha, double D[])
 {
     const sct_structure *st = s->coarse;
-    const double *factor = st->model->combinations[s->combination].factor;
+    const double *factor = sct_factors(st, s->combination);
     const sct_properties *sizes = sct_solver_sizes(sct_fine_solver(s->fine));
     const size_t springs = (size_t)st->n_springs;
     for (int e = 0; e < st->n_bars; e++) {
@@ -182,8 +205,27 @@ static void weigh(sct_stability *s, double alpha, double D[])
             own += s->gain[p].mean * s->held[p].mean + s->gain[p].slope * s->held[p].slope;
         }
         if (var >= 0) D[var] += alpha * own * sizes[st->bars[e].group].d1[SCT_OF_AREA];
-        for (int k = 0; k < st->n_cases; k++) s->wN[(size_t)k * springs + (size_t)e] = alpha * factor[k] * sum;
+        s->w[e] = alpha * sum;
+        for (int k = 0; k < st->n_cases; k++) s->wN[(size_t)k * springs + (size_t)e] = factor[k] * s->w[e];
     }
+}
+
+/* What slack bars lack changes with the sizes, and the other forces with that: sct_slack_weights. */
+static void weigh_slack(sct_stability *s, const sct_response *response)
+{
+    const sct_structure *st = s->coarse;
+    const double *factor = sct_factors(st, s->combination);
+    const size_t springs = (size_t)st->n_springs;
+    if (s->slack == NULL || st->n_ties == 0) return;
+    for (int i = 0; i < st->n_ties; i++) {
+        const double *S = response->N + (size_t)(st->n_cases - st->n_ties + i) * springs;
+        s->q[i] = 0.0;
+        for (int e = 0; e < st->n_bars; e++) s->q[i] += s->w[e] * S[e];
+    }
+    sct_slack_weights(s->slack, s->combination, s->q, s->lambda);
+    for (int k = 0; k < st->n_cases; k++)
+        for (int i = 0; i < st->n_ties; i++)
+            s->wN[(size_t)k * springs + (size_t)st->ties[i]] += factor[k] * s->lambda[i];
 }
 
 sct_status sct_stability_derivative(sct_stability *s, sct_solver *solver, const sct_response *response,
@@ -199,6 +241,7 @@ sct_status sct_stability_derivative(sct_stability *s, sct_solver *solver, const 
     double *work = calloc(2 * (size_t)n_vars + 1, sizeof *work);
     if (work == NULL) return SCT_NO_MEMORY;
     weigh(s, alpha, D);
+    weigh_slack(s, response);
     sct_fine_stiffness_derivative(s->fine, x, y, work);
     status = sct_sensitivity_adjoint(solver, response, 1, &q, work + n_vars);
     for (int v = 0; v < n_vars; v++) D[v] += work[v] + work[n_vars + v];

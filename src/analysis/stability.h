@@ -14,12 +14,17 @@
 
 #include "analysis/modes.h"
 #include "analysis/sensitivity.h"
+#include "analysis/slack.h"
 
 typedef struct sct_stability sct_stability;
 
 /** Borrows the divided structure. `wanted` modes, >= 1. *status: SCT_OK, SCT_NO_MEMORY. */
 sct_stability *sct_stability_new(sct_fine *fine, int wanted, sct_status *status);
 void sct_stability_free(sct_stability *stability);
+
+/** The slack bars of combinations, as found for the response that sct_stability_find is given: they have neither force
+ * nor stiffness, until a small motion would make one taut. Structures with bars that carry tension only need it. */
+void sct_stability_set_slack(sct_stability *stability, sct_slack *slack);
 
 /**
  * The lowest modes of a combination; *modes lives until the next call (modes.h). Nothing is compressed, or nothing

@@ -37,6 +37,9 @@ void sct_structure_free(sct_structure *st)
     free(st->turn_basis);
     free(st->dof_pool);
     free(st->b_pool);
+    free(st->ties);
+    free(st->factor);
+    free(st->self_weight);
     free(st->f);
     free(st->joint_load);
     free(st->stretch);
@@ -45,18 +48,30 @@ void sct_structure_free(sct_structure *st)
     free(st);
 }
 
+static int count_ties(const sct_model *m)
+{
+    int n = 0;
+    for (int e = 0; e < m->n_members; e++) n += m->members[e].tension_only;
+    return n;
+}
+
 static sct_structure *structure_new(const sct_model *m)
 {
     sct_structure *st = calloc(1, sizeof *st);
     if (st == NULL) return NULL;
     const size_t joints = (size_t)m->n_joints, bars = (size_t)m->n_members, groups = (size_t)m->n_groups;
+    st->n_ties = count_ties(m);
     st->model = m;
     st->dim = m->dimensions;
     st->n_joints = m->n_joints;
     st->n_bars = m->n_members;
     st->n_groups = m->n_groups;
-    st->n_cases = m->n_cases;
+    st->n_cases = m->n_cases + st->n_ties;
     st->n_combinations = m->n_combinations;
+    const size_t cases = (size_t)st->n_cases;
+    st->ties = array((size_t)st->n_ties, sizeof *st->ties);
+    st->factor = array((size_t)m->n_combinations * cases, sizeof *st->factor);
+    st->self_weight = array(cases, sizeof *st->self_weight);
     st->var_of_group = array(groups, sizeof *st->var_of_group);
     st->group_of_var = array(groups, sizeof *st->group_of_var);
     st->bars = array(bars, sizeof *st->bars);
@@ -65,10 +80,10 @@ static sct_structure *structure_new(const sct_model *m)
     st->basis = array(joints, sizeof *st->basis);
     st->n_turns = array(joints, sizeof *st->n_turns);
     st->turn_basis = array(joints, sizeof *st->turn_basis);
-    st->settled = array((size_t)m->n_cases * joints * 3, sizeof *st->settled);
-    st->turned = array((size_t)m->n_cases * joints * 3, sizeof *st->turned);
+    st->settled = array(cases * joints * 3, sizeof *st->settled);
+    st->turned = array(cases * joints * 3, sizeof *st->turned);
     if (st->var_of_group && st->group_of_var && st->bars && st->first_dof && st->n_free && st->basis && st->n_turns &&
-        st->turn_basis && st->settled && st->turned) {
+        st->turn_basis && st->settled && st->turned && st->ties && st->factor && st->self_weight) {
         return st;
     }
     sct_structure_free(st);
@@ -148,6 +163,17 @@ static void number_groups(sct_structure *st)
     }
 }
 
+static void number_cases(sct_structure *st)
+{
+    const sct_model *m = st->model;
+    for (int k = 0; k < m->n_cases; k++) st->self_weight[k] = m->cases[k].self_weight;
+    for (int c = 0; c < m->n_combinations; c++)
+        memcpy(st->factor + (size_t)c * (size_t)st->n_cases, m->combinations[c].factor,
+               (size_t)m->n_cases * sizeof *st->factor);
+    for (int e = 0, n = 0; e < m->n_members; e++)
+        if (m->members[e].tension_only) st->ties[n++] = e;
+}
+
 /* ---- building -------------------------------------------------------------------------------------------------- */
 
 /* Joints without members are left out of the equations; said once for each. */
@@ -178,6 +204,7 @@ static sct_status build(sct_structure *st, bool flags[], sct_issues *issues)
     find_lonely_joints(m, has_member, issues);
     sct_number_freedoms(st, has_member);
     number_groups(st);
+    number_cases(st);
     find_lever(st);
     sct_status status = sct_list_springs(st, issues);
     if (status == SCT_OK) status = sct_add_actions(st, has_member, warned, issues);
@@ -189,10 +216,11 @@ static sct_status build(sct_structure *st, bool flags[], sct_issues *issues)
 static sct_status check_size(const sct_model *m, sct_issues *issues)
 {
     const double entries = (m->dimensions == 2 ? 52.0 : 411.0) * m->n_members + 6.0 * m->n_joints;
-    const double results = ((double)m->n_cases + m->n_combinations) * (3.0 * m->n_joints + m->n_members);
+    const double row = 3.0 * m->n_joints + m->n_members, results = ((double)m->n_cases + m->n_combinations) * row;
     double checks = (double)m->n_combinations * m->n_members;
     for (int i = 0; i < m->n_deflections; i++) checks += (double)m->n_combinations * m->deflections[i].n_joints;
-    if (entries < INT_MAX && results < INT_MAX && checks < INT_MAX) return SCT_OK;
+    if (entries < INT_MAX && results < INT_MAX && checks < INT_MAX && results + count_ties(m) * row < INT_MAX)
+        return SCT_OK;
     sct_issue_add(issues, SCT_ERROR, (sct_where){.file = m->file},
                   "the model is too large: %d members and %d joints with %d cases and %d combinations", m->n_members,
                   m->n_joints, m->n_cases, m->n_combinations);

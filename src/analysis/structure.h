@@ -83,7 +83,7 @@ typedef struct sct_bar {
     double E, density, expansion;
     sct_beam_hinges hinges;    /* where nothing passes between member and joint */
     int end_dof[2][SCT_TURNS]; /* the unknown of a sprung end; -1: the joint's own rotation counts */
-    bool is_bent; /* carries moments: a beam, or a bar loaded between its joints */
+    bool is_bent;              /* carries moments: a beam, or a bar loaded between its joints */
     int first, n;              /* its springs beyond the axial one: first .. first + n - 1; n = 0: a bar */
     double half_weight;        /* [N/m2] weight per unit area that goes to each of its joints: density g L / 2 */
     /* own weight per unit area on unknowns: w[i] on dof[i], downwards (unit factor), [N/m2] or [N m/m2] */
@@ -95,7 +95,8 @@ typedef struct sct_bar {
 typedef struct sct_structure {
     const sct_model *model; /* borrowed */
     int dim;                /* 2 or 3 */
-    int n_joints, n_bars, n_springs, n_groups, n_cases, n_combinations;
+    int n_joints, n_bars, n_springs, n_groups, n_combinations;
+    int n_cases;       /* those of the model, then one hidden case for each bar that carries tension only */
     int n_dof;         /* unknowns */
     int most_dof;      /* of a spring */
     int n_vars;        /* groups that are sized */
@@ -109,8 +110,13 @@ typedef struct sct_structure {
     double (*basis)[3][3];      /* n_joints: basis[j][i] is the direction of unknown first_dof[j] + i; orthonormal */
     int *n_turns;               /* n_joints: rotations, 0 .. 1 or 0 .. 3 */
     double (*turn_basis)[3][3]; /* n_joints: axis of unknown first_dof[j] + n_free[j] + i; orthonormal */
+    /* Bars that carry tension only. Hidden case n_cases - n_ties + i makes bar ties[i] one metre shorter, nothing
+     * else; what a slack bar lacks to be taut is the factor of its case (slack.h). */
+    int n_ties, *ties;
+    double *factor; /* n_combinations x n_cases: the model's; hidden ones are 0 until slack.h finds them */
     /* loads, per case */
-    double *f;          /* [N, N m] n_cases x n_dof: loads on the unknowns, without own weight */
+    double *self_weight; /* n_cases: times the members' own weight */
+    double *f;           /* [N, N m] n_cases x n_dof: loads on the unknowns, without own weight */
     double *joint_load; /* [N, N m] n_cases x n_joints x 6: forces and moments in the model's axes, from loads at joints
                          * and on members, without own weight */
     double *stretch; /* n_cases x n_springs: prescribed part of the elongation (settlements) minus the free elongation
@@ -131,6 +137,12 @@ typedef struct sct_structure {
 sct_status sct_structure_build(const sct_model *model, sct_structure **structure, sct_issues *issues);
 void sct_structure_free(sct_structure *structure);
 
+/** The factors of all cases in a combination, n_cases. */
+static inline const double *sct_factors(const sct_structure *st, int combination)
+{
+    return st->factor + (size_t)combination * (size_t)st->n_cases;
+}
+
 /** The properties of a group at an area: by its relation; those of the held section; on a ladder between the sections
  * beside it, straight in logarithms. */
 sct_properties sct_properties_at_area(const sct_model *model, int group, double A);
@@ -146,7 +158,7 @@ static inline double sct_spring_stiffness(const sct_spring *s, const sct_propert
 sct_beam_load sct_local_load(const sct_bar *bar, const sct_member_load *load);
 
 /** weight (n_dof): own weight of all bars with the areas A (n_groups) on the unknowns, unit factor. The load of case k
- * on the unknowns is f[k] + model->cases[k].self_weight * weight. */
+ * on the unknowns is f[k] + self_weight[k] * weight. */
 void sct_structure_weight(const sct_structure *st, const double A[], double weight[]);
 
 /** Own weight of one member of unit area on its two joints, unit factor: 3 forces and 3 moments each, in the model's

@@ -65,7 +65,7 @@ static void add_member_load(const sct_fine *fine, const sct_member_load *load, d
 static void find_masses(const sct_fine *fine, double mass[])
 {
     const sct_structure *st = sct_fine_coarse(fine);
-    for (int k = 0; k < st->n_cases; k++) {
+    for (int k = 0; k < st->model->n_cases; k++) {
         const sct_case *c = &st->model->cases[k];
         const double part = part_of(st->model, k);
         if (part == 0.0) continue;
@@ -117,6 +117,7 @@ sct_status sct_vibration_find(sct_vibration *v, sct_mode_search how, sct_modes *
 {
     const sct_structure *st = sct_fine_structure(v->fine);
     const double *A = sct_solver_areas(sct_fine_solver(v->fine));
+    sct_fine_leave_out(v->fine, NULL);
     for (int j = 0; j < v->mass.count; j++) {
         sct_square *square = &v->mass.square[j];
         if (square->bar >= 0) square->c = square->g * A[st->bars[square->bar].group];

@@ -239,7 +239,4 @@ typedef struct sct_model {
     double *mass_factor;    /* n_cases: part of each case's downward loads that vibrates as mass; NULL: none stated */
     sct_family *families;   /* the shipped ones that the model names, and its own */
 } sct_model;
-
-/** Reads any model, also one that the analysis does not carry yet: else as sct_model_parse. */
-sct_status sct_reader_parse(const char *name, const char *bytes, size_t size, sct_model **model, sct_issues *issues);
 #endif

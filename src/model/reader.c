@@ -347,7 +347,7 @@ static sct_status read_model(sct_model *model, sct_issues *issues)
     return r.f.n_errors > 0 ? SCT_BAD_INPUT : SCT_OK;
 }
 
-sct_status sct_reader_parse(const char *name, const char *bytes, size_t size, sct_model **model, sct_issues *issues)
+sct_status sct_model_parse(const char *name, const char *bytes, size_t size, sct_model **model, sct_issues *issues)
 {
     *model = NULL;
     if (size > SCT_MOST_BYTES) { /* before a copy of it is made */
@@ -363,29 +363,6 @@ sct_status sct_reader_parse(const char *name, const char *bytes, size_t size, sc
     else
         sct_model_free(m);
     return status;
-}
-
-/* What a model asks of the analysis that it does not carry yet: the first such thing and its place. NULL: nothing. */
-static const char *not_carried(const sct_model *m, sct_where *where)
-{
-    for (int i = 0; i < m->n_members; i++) {
-        *where = m->members[i].where;
-        if (m->members[i].tension_only) return "the member carries tension only";
-    }
-    return NULL;
-}
-
-/* What is not carried would be silently wrong. */
-sct_status sct_model_parse(const char *name, const char *bytes, size_t size, sct_model **model, sct_issues *issues)
-{
-    sct_where where;
-    const sct_status status = sct_reader_parse(name, bytes, size, model, issues);
-    const char *what = status == SCT_OK ? not_carried(*model, &where) : NULL;
-    if (what == NULL) return status;
-    sct_issue_add(issues, SCT_ERROR, where, "%s; this version does not carry that yet", what);
-    sct_model_free(*model);
-    *model = NULL;
-    return SCT_BAD_INPUT;
 }
 
 sct_status sct_model_read(const char *path, sct_model **model, sct_issues *issues)

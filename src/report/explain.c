@@ -91,10 +91,11 @@ static void combination(sct_worked *s, int c, int index)
     const sct_hand_units *u = &s->in;
     const double N = s->r->N[(size_t)c * (size_t)s->r->n_members + (size_t)index], A = u->length * u->length;
     const bool counts = s->model->combinations[c].basis == SCT_ALLOWABLE;
+    const bool is_slack = s->r->slack != NULL && s->r->slack[(size_t)c * (size_t)s->r->n_members + (size_t)index];
     sct_text_add(s->out, "\n");
     sct_text_plain(s->out, s->r->combinations[c], 64);
     sct_worked_line(s, ": N = # !", (double[]){N / u->force});
-    sct_text_add(s->out, N > 0.0 ? ", tension" : N < 0.0 ? ", compression" : "");
+    sct_text_add(s->out, N > 0.0 ? ", tension" : N < 0.0 ? ", compression" : is_slack ? ", slack" : "");
     sct_text_add(s->out, counts ? "\n" : "; for deflections only, no strength check\n");
     sct_bar_check checks[SCT_MOST_BAR_CHECKS];
     const int n = counts ? sct_bar_checks(&s->rule, N, s->g->A, s->i, checks) : 0;

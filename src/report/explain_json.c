@@ -101,6 +101,8 @@ static sct_status combination(sct_json *w, const subject *s, int c)
     sct_json_boolean(w, "checks_strength", counts);
     sct_json_number(w, "force_N", N);
     sct_json_number(w, "stress_Pa", N / s->g->A);
+    if (s->r->slack != NULL)
+        sct_json_boolean(w, "is_slack", s->r->slack[(size_t)c * (size_t)s->r->n_members + (size_t)s->index]);
     if (s->m->is_bent)
         status = sct_explain_json_bent(w, s->r, c, s->index, counts);
     else

@@ -90,6 +90,24 @@ static void add_combinations(sct_json *w, const sct_result *r)
     sct_json_end(w, "]");
 }
 
+/* For each combination the names of its slack members. */
+static void add_slack(sct_json *w, const sct_result *r)
+{
+    sct_json_key(w, "slack");
+    sct_json_begin(w, "[");
+    for (int c = 0; c < r->n_combinations; c++) {
+        sct_json_entry(w);
+        sct_json_begin(w, "[");
+        for (int m = 0; m < r->n_members; m++) {
+            if (!r->slack[(size_t)c * (size_t)r->n_members + (size_t)m]) continue;
+            sct_json_entry(w);
+            sct_text_json(w->out, r->members[m].name);
+        }
+        sct_json_end(w, "]");
+    }
+    sct_json_end(w, "]");
+}
+
 static void add_warnings(sct_json *w, const sct_result *r)
 {
     sct_json_key(w, "warnings");
@@ -294,6 +312,7 @@ sct_status sct_result_json(const sct_result *result, sct_text *out)
     add_starts(&w, result);
     add_prices(&w, result);
     add_combinations(&w, result);
+    if (result->slack != NULL) add_slack(&w, result);
     add_groups(&w, result);
     add_members(&w, result);
     add_deflections(&w, result);

@@ -7,6 +7,7 @@
 #include "base/number.h"
 #include "report/page.h"
 #include "report/summary_bent.h"
+#include "report/summary_slack.h"
 #include "report/supports.h"
 #include "report/whole.h"
 
@@ -320,6 +321,7 @@ sct_status sct_summary(const sct_result *result, bool colour, sct_text *out)
     add_deflections(&p);
     sct_summary_bows(&p);
     sct_summary_whole(&p);
+    sct_summary_slack(&p);
     add_prices(&p);
     add_search(&p);
     add_reactions(&p);

@@ -101,3 +101,24 @@ void sct_doubt_sway(const sct_result *r, sct_issues *issues)
                       order.words);
     }
 }
+
+void sct_doubt_slack(const sct_result *r, sct_issues *issues)
+{
+    for (int k = 0; k < r->n_criticals && r->slack != NULL; k++) {
+        const sct_critical_result *c = &r->criticals[k];
+        const bool *slack = r->slack + (size_t)c->combination * (size_t)r->n_members;
+        int n = 0, first = -1;
+        for (int m = r->n_members - 1; m >= 0; m--) {
+            if (!slack[m]) continue;
+            n++;
+            first = m;
+        }
+        if (n == 0 || c->factor >= SCT_FIRST_ORDER_HOLDS) continue;
+        sct_issue_add(
+            issues, SCT_WARNING, r->model->combinations[c->combination].where,
+            "combination \"%s\": the critical load factor is %.2f while %d members that carry tension only are "
+            "slack (\"%s\" first) and hold nothing until they are taut; tightened ones (a negative "
+            "\"lack_of_fit\") would hold",
+            sct_show(r->combinations[c->combination]).text, c->factor, n, sct_show(r->members[first].name).text);
+    }
+}

@@ -19,4 +19,6 @@ sct_status sct_doubts_keep(sct_result *result, const sct_issues *issues);
 
 /** Warns of combinations in which sway adds to the moments and is left out. */
 void sct_doubt_sway(const sct_result *result, sct_issues *issues);
+/** Slack members that leave a combination with a low critical load factor. */
+void sct_doubt_slack(const sct_result *result, sct_issues *issues);
 #endif

@@ -43,6 +43,8 @@ static sct_status fill(sct_duty *duty, sct_engine engine)
     if (duty->solver == NULL) return status;
     status = sct_response_new(st, &duty->response);
     if (status != SCT_OK) return status;
+    duty->slack = sct_slack_new(st);
+    if (duty->slack == NULL) return SCT_NO_MEMORY;
     duty->arena = sct_arena_new();
     if (duty->arena == NULL) return SCT_NO_MEMORY;
     list_rows(model, NULL, &duty->n_rows);
@@ -78,7 +80,7 @@ static sct_status fill(sct_duty *duty, sct_engine engine)
     }
     for (int c = 0; c < st->n_combinations; c++)
         if (model->combinations[c].basis == SCT_ALLOWABLE) duty->allowable[duty->n_allowable++] = c;
-    return sct_whole_new(st, engine, duty->n_allowable, duty->allowable, &duty->whole);
+    return sct_whole_new(st, engine, duty->slack, duty->n_allowable, duty->allowable, &duty->whole);
 }
 
 sct_duty *sct_duty_new(const sct_structure *st, sct_engine engine, sct_status *status)
@@ -98,6 +100,7 @@ void sct_duty_free(sct_duty *duty)
     if (duty == NULL) return;
     sct_whole_free(duty->whole);
     sct_member_lines_free(duty->lines);
+    sct_slack_free(duty->slack);
     sct_solver_free(duty->solver);
     sct_response_free(&duty->response);
     sct_arena_free(duty->arena);
@@ -181,6 +184,10 @@ static void gather_forces(sct_duty *duty, int c)
     for (size_t bar = 0; bar < n_bars; bar++) largest = fmax(largest, fabs(S[bar]));
     for (size_t bar = 0; bar < n_bars; bar++)
         if (fabs(S[bar]) <= NO_FORCE * largest) S[bar] = 0.0;
+    for (int i = 0; i < duty->st->n_ties; i++) {
+        double *N = &S[duty->st->ties[i]];
+        if (*N < 0.0 || sct_slack_is(duty->slack, c, i)) *N = 0.0;
+    }
     memcpy(duty->N + (size_t)c * n_bars, S, n_bars * sizeof *S);
 }
 
@@ -198,28 +205,31 @@ static void gather_compression(sct_duty *duty)
 static double row_displacement(const sct_duty *duty, const sct_deflection_row *row)
 {
     const sct_structure *st = duty->st;
-    const sct_combination *c = &st->model->combinations[row->combination];
+    const double *factor = sct_factors(st, row->combination);
     const double *dir = st->model->deflections[row->limit].direction;
     double u = 0.0;
     for (int k = 0; k < st->n_cases; k++) {
         const double *u_k = duty->response.u + (size_t)k * (size_t)st->n_dof;
         const double *settled = st->settled + (size_t)k * (size_t)st->n_joints * 3;
         double d[3], from[3] = {0.0};
-        if (c->factor[k] == 0.0) continue;
+        if (factor[k] == 0.0) continue;
         sct_joint_displacement(st, u_k, settled, row->joint, d);
         if (row->from >= 0) sct_joint_displacement(st, u_k, settled, row->from, from);
-        u += c->factor[k] * ((d[0] - from[0]) * dir[0] + (d[1] - from[1]) * dir[1] + (d[2] - from[2]) * dir[2]);
+        u += factor[k] * ((d[0] - from[0]) * dir[0] + (d[1] - from[1]) * dir[1] + (d[2] - from[2]) * dir[2]);
     }
     return u;
 }
 
-void sct_duty_gather(sct_duty *duty)
+sct_status sct_duty_gather(sct_duty *duty)
 {
     const sct_structure *st = duty->st;
+    const sct_status status = sct_slack_find(duty->slack, duty->solver, &duty->response);
+    if (status != SCT_OK) return status;
     for (int c = 0; c < st->n_combinations; c++) gather_forces(duty, c);
     for (int r = 0; r < duty->n_rows; r++) duty->u[r] = row_displacement(duty, &duty->rows[r]);
     gather_compression(duty);
     duty->has_whole = false;
+    return SCT_OK;
 }
 
 sct_status sct_duty_find_whole(sct_duty *duty, sct_mode_search how)
@@ -234,8 +244,8 @@ sct_status sct_duty_find_whole(sct_duty *duty, sct_mode_search how)
 static sct_status finish(sct_duty *duty)
 {
     const sct_model *model = duty->st->model;
-    sct_duty_gather(duty);
-    if (!sct_whole_is_limited(model) && !sct_whole_amplifies(model)) return SCT_OK;
+    const sct_status status = sct_duty_gather(duty);
+    if (status != SCT_OK || (!sct_whole_is_limited(model) && !sct_whole_amplifies(model))) return status;
     return sct_duty_find_whole(duty, SCT_MODES_COLD);
 }
 
@@ -309,6 +319,20 @@ double sct_duty_bow_utilisation(const sct_duty *duty, int row, const sct_shape *
     const double i = shape->i[duty->st->model->bows[r->limit].axis];
     const double EI = duty->rules[r->bar].E * i * i * shape->A;
     return fabs(sct_bow_farthest(&member, &duty->response, r, EI).v) / r->at_most;
+}
+
+sct_form sct_duty_deflection_form(const sct_duty *duty, int index)
+{
+    const sct_deflection_row *row = &duty->rows[index];
+    const double *dir = duty->st->model->deflections[row->limit].direction;
+    sct_form form = {.combination = row->combination, .value = duty->u[index], .n_joints = 1, .own = -1};
+    form.joint[0] = row->joint;
+    memcpy(form.dir[0], dir, sizeof form.dir[0]);
+    if (row->from < 0) return form;
+    form.n_joints = 2;
+    form.joint[1] = row->from;
+    for (int i = 0; i < 3; i++) form.dir[1][i] = -dir[i];
+    return form;
 }
 
 double sct_duty_row_utilisation(const sct_duty *duty, int row)

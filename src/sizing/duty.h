@@ -7,6 +7,7 @@
 
 #include <math.h>
 
+#include "analysis/slack.h"
 #include "analysis/solver.h"
 #include "sizing/bow.h"
 #include "sizing/whole.h"
@@ -29,6 +30,7 @@ typedef struct sct_deflection_row {
 typedef struct sct_duty {
     const sct_structure *st; /* borrowed */
     sct_solver *solver;
+    sct_slack *slack; /* of the latest analysis */
     sct_arena *arena;
     sct_bar_rule *rules;         /* n_bars */
     double *length;              /* [m] n_groups: of all members */
@@ -80,14 +82,15 @@ void sct_design_area(const sct_model *model, int group, double A, sct_design *de
 
 double sct_duty_mass(const sct_duty *duty, const sct_design *design);
 
-/** Analyses and fills N, S, u, worst_compression. Status of sct_solver_analyse. Derivatives taken from this analysis
- * are those with respect to the ln of all of a size's properties together. */
+/** Analyses and fills N, S, u, worst_compression. Status of sct_solver_analyse and sct_slack_find. Derivatives taken
+ * from this analysis are those with respect to the ln of all of a size's properties together. */
 sct_status sct_duty_analyse(sct_duty *duty, const sct_design *design);
 /** The same with areas alone (sct_properties_at_area), and with properties that have derivatives of their own. */
 sct_status sct_duty_analyse_areas(sct_duty *duty, const double A[]);
 sct_status sct_duty_analyse_sizes(sct_duty *duty, const sct_properties sizes[]);
-/** The same sums from duty->response as it stands (after refinement). */
-void sct_duty_gather(sct_duty *duty);
+/** The same sums from duty->response as it stands (after refinement); slack bars are found first. Status of
+ * sct_slack_find. */
+sct_status sct_duty_gather(sct_duty *duty);
 
 /** Is the bar in compression in some strength combination of the latest analysis? */
 bool sct_duty_is_compressed(const sct_duty *duty, int bar);
@@ -100,6 +103,9 @@ sct_bent_member sct_duty_bent_member(const sct_duty *duty, int bar, int combinat
 
 /** Utilisation of one row of a bow limit with the given size. */
 double sct_duty_bow_utilisation(const sct_duty *duty, int row, const sct_shape *shape);
+
+/** The displacement of one deflection row. */
+sct_form sct_duty_deflection_form(const sct_duty *duty, int row);
 
 /** Utilisation of one deflection row at the latest analysis. */
 double sct_duty_row_utilisation(const sct_duty *duty, int row);

@@ -15,6 +15,7 @@
 #define SCT_SIZING_FORM_H
 
 #include "analysis/sensitivity.h"
+#include "analysis/slack.h"
 
 enum { SCT_FORM_SPRINGS = 8, SCT_FORM_JOINTS = 4 };
 
@@ -35,14 +36,15 @@ typedef struct sct_form_source {
     sct_solver *solver;
     const sct_response *response;
     const double *du;
+    sct_slack *slack; /* after sct_slack_derive with this du */
     double *part;
 } sct_form_source;
 
-/** row (n_vars) = dq/dz. */
+/** row (n_vars) = dq/dz, with the bars slack that are. */
 void sct_form_gradient(const sct_form *form, const sct_form_source *source, double row[]);
 
 /** Adds weight * q'' to H (n_vars x n_vars), its part by S'' and u'' to the weights wN, wu of
- * sct_sensitivity_curvature. t, r: scratch, n_vars each. */
+ * sct_sensitivity_curvature. t, r: scratch, n_vars each; lambda: scratch, 2 n_ties. */
 void sct_form_curvature(const sct_form *form, const sct_form_source *source, double weight, double *t, double *r,
-                        double *wN, double *wu, double *H);
+                        double *lambda, double *wN, double *wu, double *H);
 #endif

@@ -48,6 +48,7 @@ struct sct_problem {
     double *whole_slopes,
         *sway_slopes; /* of the rows from first_factor on, x n; of the amplifications, n_allowable x n */
     double *du, *part, *row, *cross, *moving; /* n_cases x n_dof x n; n; n; n; n */
+    double *lambda;                           /* 2 n_ties */
     double *wN, *wu, *work;                   /* weights for the curvature */
 };
 
@@ -238,26 +239,12 @@ static sct_form force_form(const sct_problem *P, int j)
                       .own = -1};
 }
 
-static sct_form deflection_form(const sct_problem *P, int j)
-{
-    const sct_deflection_row *row = deflection_of(P, j);
-    const double *dir = P->st->model->deflections[row->limit].direction;
-    sct_form form = {.combination = row->combination, .value = P->duty->u[j - P->n_bar_rows], .n_joints = 1, .own = -1};
-    form.joint[0] = row->joint;
-    memcpy(form.dir[0], dir, sizeof form.dir[0]);
-    if (row->from < 0) return form;
-    form.n_joints = 2;
-    form.joint[1] = row->from;
-    for (int i = 0; i < 3; i++) form.dir[1][i] = -dir[i];
-    return form;
-}
-
 /* The quantity behind constraint j: force, displacement, utilisation, bow. */
 static sct_form form_of(sct_problem *P, int j)
 {
     const row_kind kind = kind_of(P, j);
     if (kind == BAR_ROW) return force_form(P, j);
-    if (kind == DEFLECTION_ROW) return deflection_form(P, j);
+    if (kind == DEFLECTION_ROW) return sct_duty_deflection_form(P->duty, j - P->n_bar_rows);
     const int bar = bar_of(P, j), group = P->st->bars[bar].group,
               own = P->is_fixed[group] ? -1 : P->st->var_of_group[group];
     const sct_bent_member member = sct_duty_bent_member(P->duty, bar, combination_of(P, j));
@@ -273,15 +260,17 @@ static sct_form form_of(sct_problem *P, int j)
 
 static sct_form_source source_of(sct_problem *P)
 {
-    return (sct_form_source){P->duty->solver, &P->duty->response, P->du, P->part};
+    return (sct_form_source){P->duty->solver, &P->duty->response, P->du, P->duty->slack, P->part};
 }
 
 static sct_status need_du(sct_problem *P)
 {
     if (P->have_du) return SCT_OK;
     const sct_status status = sct_sensitivity_direct(P->duty->solver, &P->duty->response, P->du);
-    P->have_du = status == SCT_OK;
-    return status;
+    if (status != SCT_OK) return status;
+    sct_slack_derive(P->duty->slack, P->duty->solver, &P->duty->response, P->du);
+    P->have_du = true;
+    return SCT_OK;
 }
 
 /* B += r r'/(r's), r = y - B s: the symmetric rank-one update (Nocedal and Wright, Numerical Optimization,
@@ -412,7 +401,7 @@ static sct_status curvature(void *user, const double x[], int n_rows, const int 
         const double outer = mu[r] * (s2 - s1) / (q * q), inner = mu[r] * s1 / q;
         sct_form_gradient(&form, &source, P->row);
         for (size_t a = 0; a < n; a++) sct_axpy((int)a + 1, outer * P->row[a], P->row, H + a * n); /* lower triangle */
-        sct_form_curvature(&form, &source, inner, P->cross, P->moving, P->wN, P->wu, H);
+        sct_form_curvature(&form, &source, inner, P->cross, P->moving, P->lambda, P->wN, P->wu, H);
     }
     for (size_t a = 0; a < n; a++)
         for (size_t b = 0; b < a; b++) H[b * n + a] = H[a * n + b];
@@ -566,11 +555,12 @@ static sct_status allocate(sct_problem *P)
     const bool ok = ARRAY(is_fixed, n_groups) && ARRAY(curves, n_groups) && ARRAY(lower, n) && ARRAY(upper, n) &&
                     ARRAY(source, n) && ARRAY(x_lower, n) && ARRAY(x_upper, n) && ARRAY(ref, n) && ARRAY(cluster, m) &&
                     ARRAY(x, n) && ARRAY(A, n_groups) && ARRAY(need, (size_t)P->n_bar_rows) && ARRAY(g, m) &&
-                    ARRAY(du, n_cases * n_dof * n) && ARRAY(part, n) && ARRAY(row, n) && ARRAY(cross, n) &&
-                    ARRAY(whole_slopes, n_whole * n) && ARRAY(slopes_before, n_whole * n) &&
-                    ARRAY(learned, n_whole * n * n) && ARRAY(x_before, n) && ARRAY(sway_slopes, n_sway * n) &&
-                    ARRAY(moving, n) && ARRAY(place, n_places) && ARRAY(shape, n_groups) && ARRAY(sizes, n_groups) &&
-                    ARRAY(wN, n_cases * n_springs) && ARRAY(wu, n_cases * n_dof) && ARRAY(work, n_cases * n_dof);
+                    ARRAY(lambda, 2 * (size_t)st->n_ties) && ARRAY(du, n_cases * n_dof * n) && ARRAY(part, n) &&
+                    ARRAY(row, n) && ARRAY(cross, n) && ARRAY(whole_slopes, n_whole * n) &&
+                    ARRAY(slopes_before, n_whole * n) && ARRAY(learned, n_whole * n * n) && ARRAY(x_before, n) &&
+                    ARRAY(sway_slopes, n_sway * n) && ARRAY(moving, n) && ARRAY(place, n_places) &&
+                    ARRAY(shape, n_groups) && ARRAY(sizes, n_groups) && ARRAY(wN, n_cases * n_springs) &&
+                    ARRAY(wu, n_cases * n_dof) && ARRAY(work, n_cases * n_dof);
 #undef ARRAY
     if (!ok) return SCT_NO_MEMORY;
     return sct_design_new(a, st->n_groups, &P->fixed);
@@ -639,7 +629,7 @@ double sct_problem_bytes(const sct_duty *duty)
     const double bar_rows = (double)duty->n_allowable * (st->n_bars + SCT_BENT_PLACES * duty->n_bent);
     const double m = bar_rows + duty->n_rows + duty->n_bows, n = st->n_vars;
     const double at_once = fmin(bar_rows, 2.0 * sct_descent_defaults().per_cluster * st->n_groups) + duty->n_rows;
-    const double du = (double)st->n_cases * n * st->n_dof;
+    const double du = (double)st->n_cases * n * st->n_dof + (double)st->n_combinations * st->n_ties * n;
     return 2.0 * du * sizeof(double) + /* twice: the choice of sections has its own */
            bar_rows * sizeof(sct_need) + sct_descent_bytes(n, m, at_once);
 }

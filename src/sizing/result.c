@@ -76,6 +76,19 @@ static void fill_responses(sct_result *r, const sct_duty *duty, const sct_design
     }
 }
 
+/* Which of the members that carry tension only are slack. */
+static sct_status fill_slack(sct_result *r, const sct_duty *duty)
+{
+    const sct_structure *st = duty->st;
+    if (st->n_ties == 0) return SCT_OK;
+    r->slack = sct_result_array(r, (size_t)r->n_combinations * (size_t)r->n_members, sizeof *r->slack);
+    if (r->slack == NULL) return SCT_NO_MEMORY;
+    for (int c = 0; c < r->n_combinations; c++)
+        for (int i = 0; i < st->n_ties; i++)
+            r->slack[(size_t)c * (size_t)r->n_members + (size_t)st->ties[i]] = sct_slack_is(duty->slack, c, i);
+    return SCT_OK;
+}
+
 static void fill_joints(sct_result *r, const sct_model *model)
 {
     for (int j = 0; j < r->n_joints; j++) {
@@ -258,7 +271,7 @@ sct_status sct_result_new(const sct_duty *duty, const sct_design *design, sct_ac
     fill_groups(r, duty, design);
     for (int bar = 0; bar < r->n_members; bar++) fill_member(r, duty, design, bar);
     fill_deflections(r, duty);
-    if (sct_result_fill_frame(r, duty, design) != SCT_OK) {
+    if (fill_slack(r, duty) != SCT_OK || sct_result_fill_frame(r, duty, design) != SCT_OK) {
         sct_result_free(r);
         return SCT_NO_MEMORY;
     }

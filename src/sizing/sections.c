@@ -19,7 +19,8 @@ typedef struct search {
                                  * utilisation while none is kept */
     bool have_best;
     sct_pick pick;              /* of `best` */
-    double *du, *d, *slope;     /* sensitivities at the design at hand; slope: n_rows x n_groups of u per ln A */
+    double *du, *d, *part;      /* sensitivities at the design at hand */
+    double *slope;              /* n_rows x n_groups of u per ln A */
     double whole, *whole_slope; /* ln(limit / value) of the whole at the design at hand, its derivative by ln size */
     bool *bends;                /* n_groups: some member is a beam */
     double slack;               /* utilisation that frozen forces may overestimate: forces of redundant bars move */
@@ -157,18 +158,16 @@ static sct_status find_slopes(search *S)
     if (status == SCT_OK && sct_whole_is_limited(S->model))
         status = sct_whole_worst_limit(S->duty->whole, S->duty->solver, &S->duty->response, &S->whole, S->whole_slope);
     if (status != SCT_OK) return status;
+    sct_slack_derive(S->duty->slack, S->duty->solver, &S->duty->response, S->du);
+    const sct_form_source source = {S->duty->solver, &S->duty->response, S->du, S->duty->slack, S->part};
     for (int r = 0; r < S->duty->n_rows; r++) {
         double *slope = S->slope + (size_t)r * (size_t)st->n_groups;
-        const sct_deflection_row *row = &S->duty->rows[r];
         memset(slope, 0, (size_t)st->n_groups * sizeof *slope);
         if (sct_duty_row_utilisation(S->duty, r) < 0.7) continue; /* no single or paired change undoes 0.7 */
-        const double *factor = S->model->combinations[row->combination].factor;
-        for (int k = 0; k < st->n_cases; k++) {
-            if (factor[k] == 0.0) continue;
-            sct_sensitivity_displacement(S->duty->solver, S->du, row->joint,
-                                         S->model->deflections[row->limit].direction, k, S->d);
-            for (int v = 0; v < st->n_vars; v++) slope[st->group_of_var[v]] += factor[k] * S->d[v];
-        }
+        sct_form form = sct_duty_deflection_form(S->duty, r);
+        form.n_joints = 1; /* of a relative limit the base is taken to stay: this only screens */
+        sct_form_gradient(&form, &source, S->d);
+        for (int v = 0; v < st->n_vars; v++) slope[st->group_of_var[v]] = S->d[v];
     }
     return SCT_OK;
 }
@@ -353,12 +352,13 @@ static sct_status run(search *S, const sct_design *continuous)
     const size_t n_groups = (size_t)S->st->n_groups, n_vars = (size_t)S->st->n_vars, n_cases = (size_t)S->st->n_cases;
     S->du = sct_arena_array(S->arena, n_cases * n_vars * (size_t)S->st->n_dof, sizeof(double));
     S->d = sct_arena_array(S->arena, n_vars, sizeof(double));
+    S->part = sct_arena_array(S->arena, n_vars, sizeof(double));
     S->slope = sct_arena_array(S->arena, (size_t)S->duty->n_rows * n_groups, sizeof(double));
     S->whole_slope = sct_arena_array(S->arena, n_vars, sizeof(double));
     S->bends = sct_arena_array(S->arena, n_groups, sizeof *S->bends);
     sct_design start;
-    if (S->du == NULL || S->d == NULL || S->slope == NULL || S->whole_slope == NULL || S->bends == NULL ||
-        sct_design_new(S->arena, S->st->n_groups, &S->trial) != SCT_OK ||
+    if (S->du == NULL || S->d == NULL || S->part == NULL || S->slope == NULL || S->whole_slope == NULL ||
+        S->bends == NULL || sct_design_new(S->arena, S->st->n_groups, &S->trial) != SCT_OK ||
         sct_design_new(S->arena, S->st->n_groups, &S->best) != SCT_OK ||
         sct_design_new(S->arena, S->st->n_groups, &S->at) != SCT_OK ||
         sct_design_new(S->arena, S->st->n_groups, &start) != SCT_OK)

@@ -128,11 +128,19 @@ static sct_status analyse_sound(job *J, const double A[], const sct_design *desi
     sct_status status = sct_mechanism_find(J->duty->solver, A, J->issues);
     if (status != SCT_OK) return status;
     status = design != NULL ? sct_duty_analyse(J->duty, design) : sct_duty_analyse_areas(J->duty, A);
+    if (sct_slack_failed(J->duty->slack)) return status;
     if (status != SCT_MECHANISM && status != SCT_NOT_ACCURATE) return status;
     sct_issue_add(J->issues, SCT_ERROR, (sct_where){.file = J->model->file},
                   "internal check failed: the stiffness matrix of a sound structure has no factor (%s)",
                   sct_status_text(status));
     return SCT_SELF_CHECK;
+}
+
+/* Why the latest analysis found no slack bars that fit, where that ended the job. */
+static void tell_slack(const job *J, sct_status status)
+{
+    if (J->duty != NULL && (status == SCT_MECHANISM || status == SCT_NOT_ACCURATE))
+        sct_slack_tell(J->duty->slack, J->issues);
 }
 
 /* Analyses the design afresh, vouches for the numbers, and makes the result. */
@@ -141,8 +149,8 @@ static sct_status show(job *J, sct_result **result)
     sct_accuracy accuracy;
     sct_status status = analyse_sound(J, J->design.A, &J->design);
     if (status == SCT_OK) status = sct_accuracy_refine(J->duty->solver, &J->duty->response, &accuracy, J->issues);
+    if (status == SCT_OK) status = sct_duty_gather(J->duty);
     if (status != SCT_OK) return status;
-    sct_duty_gather(J->duty);
     status = sct_duty_find_whole(J->duty, SCT_MODES_PROVEN);
     if (status == SCT_MECHANISM || status == SCT_NOT_ACCURATE) {
         sct_issue_add(J->issues, SCT_ERROR, (sct_where){.file = J->model->file},
@@ -154,6 +162,7 @@ static sct_status show(job *J, sct_result **result)
     (*result)->settings = J->settings;
     sct_doubt_movement(*result, J->issues);
     sct_doubt_sway(*result, J->issues);
+    sct_doubt_slack(*result, J->issues);
     return sct_doubts_keep(*result, J->issues);
 }
 
@@ -176,6 +185,7 @@ sct_status sct_check(const sct_model *model, const sct_settings *settings, sct_r
     sct_status status = open_job(&J, model, settings, false, issues);
     if (status == SCT_OK) status = refuse_unsized(&J);
     if (status == SCT_OK) status = show(&J, result);
+    tell_slack(&J, status);
     close_job(&J);
     return status;
 }
@@ -643,6 +653,7 @@ sct_status sct_size(const sct_model *model, const sct_settings *settings, sct_re
         sct_result_free(*result);
         *result = NULL;
     }
+    tell_slack(&J, status);
     close_job(&J);
     return status;
 }

@@ -40,7 +40,8 @@ static sct_status fill(sct_whole *w, sct_engine engine, int n, const int combina
     return w->vibration == NULL ? status : SCT_OK;
 }
 
-sct_status sct_whole_new(const sct_structure *st, sct_engine engine, int n, const int combinations[], sct_whole **whole)
+sct_status sct_whole_new(const sct_structure *st, sct_engine engine, sct_slack *slack, int n, const int combinations[],
+                         sct_whole **whole)
 {
     *whole = NULL;
     if (!is_needed(st)) return SCT_OK;
@@ -48,9 +49,10 @@ sct_status sct_whole_new(const sct_structure *st, sct_engine engine, int n, cons
     if (w == NULL) return SCT_NO_MEMORY;
     w->st = st;
     const sct_status status = fill(w, engine, n, combinations);
-    if (status == SCT_OK)
+    if (status == SCT_OK) {
+        sct_stability_set_slack(w->stability, slack);
         *whole = w;
-    else
+    } else
         sct_whole_free(w);
     return status;
 }

@@ -38,7 +38,7 @@ typedef struct sct_whole {
 } sct_whole;
 
 /** combinations (n): those looked at. *whole = NULL with SCT_OK: nothing to look at. SCT_NO_MEMORY, SCT_TOO_LARGE. */
-sct_status sct_whole_new(const sct_structure *st, sct_engine engine, int n, const int combinations[],
+sct_status sct_whole_new(const sct_structure *st, sct_engine engine, sct_slack *slack, int n, const int combinations[],
                          sct_whole **whole);
 void sct_whole_free(sct_whole *whole);
 

@@ -10,7 +10,8 @@ static const double PLACE = 1e-9; /* of the length: nearer places are one */
 
 static sct_cut_line line_of(sct_verifier *v, int member, int combination)
 {
-    return sct_cut_line_make(v->m, &v->s, v->s.element_of[member], combination, v->loads, v->breaks);
+    const sct_statics *s = sct_statics_of(v, combination);
+    return sct_cut_line_make(v->m, s, s->element_of[member], combination, v->loads, v->breaks);
 }
 
 static bool is_for_strength(const sct_verifier *v, int c)
@@ -40,7 +41,7 @@ void sct_verify_ends(sct_verifier *v, int c)
     for (int e = 0; e < r->n_members && r->has_bent; e++) {
         const double *said = r->ends + ((size_t)c * (size_t)r->n_members + (size_t)e) * 12;
         sct_cut at[2] = {{.N = 0.0L}, {.N = 0.0L}};
-        if (v->s.element_of[e] < 0) {
+        if (v->statics->element_of[e] < 0) {
             at[0].N = at[1].N = v->N[(size_t)c * (size_t)r->n_members + (size_t)e];
         } else {
             const sct_cut_line line = line_of(v, e, c);
@@ -54,7 +55,7 @@ void sct_verify_ends(sct_verifier *v, int c)
 static void compare_axes(sct_verifier *v, int e)
 {
     const sct_member_result *said = &v->r->members[e];
-    const sct_element *x = &v->s.elements[v->s.element_of[e]];
+    const sct_element *x = &v->statics->elements[v->statics->element_of[e]];
     for (int i = 0; i < 9; i++)
         sct_compare(v, "local axis of member", said->name, NULL, said->axes[i / 3][i % 3],
                     (double)x->axes[i / 3][i % 3], AXES);
@@ -303,7 +304,7 @@ static double off_chord(const sct_verifier *v, int c, const sct_run *run, int jo
 
 static void find_offsets(const sct_verifier *v, int e, int c, const sct_run *run, bow *b)
 {
-    const long double *axis = v->s.elements[v->s.element_of[e]].axes[1 + b->plane];
+    const long double *axis = v->statics->elements[v->statics->element_of[e]].axes[1 + b->plane];
     double before = 0.0;
     b->offset[0] = b->offset[1] = 0.0;
     if (run == NULL) return;
@@ -358,7 +359,7 @@ static double one_bow(sct_verifier *v, int limit, int e, const sct_run *run)
     const sct_bow_result *said = told_of(v, limit, e, run);
     bool holds = false;
     for (int c = 0; c < v->m->n_combinations; c++) holds = holds || l->in[c];
-    if (!holds || v->s.element_of[e] < 0) return 0.0; /* a bar without loads stays straight */
+    if (!holds || v->statics->element_of[e] < 0) return 0.0; /* a bar without loads stays straight */
     if (said != NULL) return compare_bow(v, l, e, run, said);
     sct_differ(v, "bow limit on member", v->r->members[e].name, NULL, 0, 1);
     return 0.0;

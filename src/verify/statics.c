@@ -58,6 +58,7 @@ static void measure_members(sct_work *w)
         for (int i = 0; i < 3; i++) w->dir[e][i] /= w->L[e];
         const int g = member->group;
         w->k[e] = (long double)w->m->materials[w->m->groups[g].material].E * w->sections[g].A / w->L[e];
+        if (w->left_out != NULL && w->left_out[e]) w->k[e] = 0.0L;
         w->lever += (double)w->L[e] / w->m->n_members;
     }
 }
@@ -416,9 +417,10 @@ static sct_status run(sct_work *w)
     return status;
 }
 
-sct_status sct_statics_solve(const sct_model *model, const sct_verify_section sections[], sct_statics *statics)
+sct_status sct_statics_solve(const sct_model *model, const sct_verify_section sections[], const bool left_out[],
+                             sct_statics *statics)
 {
-    sct_work w = {.m = model, .sections = sections, .out = statics, .d = model->dimensions};
+    sct_work w = {.m = model, .sections = sections, .left_out = left_out, .out = statics, .d = model->dimensions};
     *statics = (sct_statics){0};
     const sct_status status = run(&w);
     work_free(&w);

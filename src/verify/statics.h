@@ -33,10 +33,12 @@ typedef struct sct_statics {
 } sct_statics;
 
 /**
- * Analyses every case with the sections (n_groups).
+ * Analyses every case with the sections (n_groups), without the stiffness of the members left out (n_members; NULL:
+ * none). Their own weight stays.
  *
  * SCT_OK; SCT_SELF_CHECK: the matrix has no factor; SCT_NO_MEMORY, SCT_TOO_LARGE. Free *statics in every case.
  */
-sct_status sct_statics_solve(const sct_model *model, const sct_verify_section sections[], sct_statics *statics);
+sct_status sct_statics_solve(const sct_model *model, const sct_verify_section sections[], const bool left_out[],
+                             sct_statics *statics);
 void sct_statics_free(sct_statics *statics);
 #endif

@@ -15,7 +15,8 @@ typedef struct sct_verifier {
     const sct_model *m;
     const sct_result *r;
     sct_issues *issues;
-    sct_statics s;
+    int n_statics;
+    sct_statics *statics;         /* one for all combinations, or one for each: slack.h */
     sct_verify_section *sections; /* n_groups */
     double *L;                    /* n_groups: of all its members, [m] */
     double *N;                    /* n_combinations x n_members */
@@ -28,6 +29,12 @@ typedef struct sct_verifier {
     sct_element_load *loads; /* room for one line */
     long double *breaks;
 } sct_verifier;
+
+/** The analysis that a combination is made of. */
+static inline const sct_statics *sct_statics_of(const sct_verifier *v, int combination)
+{
+    return &v->statics[v->n_statics > 1 ? combination : 0];
+}
 
 /** Adds an issue with both numbers. name, combination: NULL: none. */
 void sct_differ(sct_verifier *v, const char *what, const char *name, const char *combination, double said,

@@ -5,8 +5,8 @@
 #include "base/arena.h"
 #include "base/issues.h"
 #include "base/text.h"
+#include "verify/slack.h"
 #include "verify/strength.h"
-#include "verify/verifier.h"
 
 /* Numbers agree when they differ by at most RELATIVE of themselves and ABSOLUTE of the largest of their kind, and
  * what the accuracy of both analyses leaves open. Rounding alone leaves 1e-13. */
@@ -60,23 +60,23 @@ static void combine(const sct_verifier *v, int c, size_t n, const double from[],
 }
 
 /* Adds what is open of one case. */
-static void add_open(const sct_verifier *v, int k, double factor, sct_open *open)
+static void add_open(const sct_verifier *v, const sct_statics *s, int k, double factor, sct_open *open)
 {
-    const size_t members = (size_t)v->m->n_members, n3 = 3 * (size_t)v->m->n_joints, n = (size_t)v->s.n_elements;
+    const size_t members = (size_t)v->m->n_members, n3 = 3 * (size_t)v->m->n_joints, n = (size_t)s->n_elements;
     const double part = ABSOLUTE + SMALL_PART * v->accuracy;
-    const sct_shaky *shaky = &v->s.shaky[k];
-    const double N = largest(members, v->s.N + (size_t)k * members);
+    const sct_shaky *shaky = &s->shaky[k];
+    const double N = largest(members, s->N + (size_t)k * members);
     double end[2] = {N, 0.0};
     for (size_t b = 0; b < n; b++) {
-        const double *all = v->s.end[(size_t)k * n + b], L = (double)v->s.elements[b].L;
-        for (int s = 0; s < 12; s += 6) {
-            end[0] = fmax(end[0], largest(3, all + s));
-            end[1] = fmax(end[1], fmax(largest(3, all + s + 3), L * largest(3, all + s)));
+        const double *all = s->end[(size_t)k * n + b], L = (double)s->elements[b].L;
+        for (int at = 0; at < 12; at += 6) {
+            end[0] = fmax(end[0], largest(3, all + at));
+            end[1] = fmax(end[1], fmax(largest(3, all + at + 3), L * largest(3, all + at)));
         }
     }
     open->N += factor * (part * N + SHAKES * shaky->N);
-    open->u += factor * (part * largest(n3, v->s.u + (size_t)k * n3) + SHAKES * shaky->u);
-    if (v->s.has_turns) open->turn += factor * (part * largest(n3, v->s.turn + (size_t)k * n3) + SHAKES * shaky->turn);
+    open->u += factor * (part * largest(n3, s->u + (size_t)k * n3) + SHAKES * shaky->u);
+    if (s->has_turns) open->turn += factor * (part * largest(n3, s->turn + (size_t)k * n3) + SHAKES * shaky->turn);
     for (int i = 0; i < 2; i++) open->end[i] += factor * (part * end[i] + SHAKES * shaky->end[i]);
 }
 
@@ -84,14 +84,15 @@ static void combine_all(sct_verifier *v)
 {
     const size_t members = (size_t)v->m->n_members, n3 = 3 * (size_t)v->m->n_joints;
     for (int c = 0; c < v->m->n_combinations; c++) {
+        const sct_statics *s = sct_statics_of(v, c);
         double *N = v->N + (size_t)c * members;
-        combine(v, c, members, v->s.N, N);
-        combine(v, c, n3, v->s.u, v->u + (size_t)c * n3);
-        if (v->s.has_turns) combine(v, c, n3, v->s.turn, v->turn + (size_t)c * n3);
+        combine(v, c, members, s->N, N);
+        combine(v, c, n3, s->u, v->u + (size_t)c * n3);
+        if (s->has_turns) combine(v, c, n3, s->turn, v->turn + (size_t)c * n3);
         v->open_of[c].N_none = NO_FORCE * largest(members, N);
         for (int k = 0; k < v->m->n_cases; k++) { /* of the cases: what is relative to them stays when they cancel */
             const double factor = fabs(v->m->combinations[c].factor[k]);
-            if (factor != 0.0) add_open(v, k, factor, &v->open_of[c]);
+            if (factor != 0.0) add_open(v, s, k, factor, &v->open_of[c]);
         }
     }
 }
@@ -146,9 +147,10 @@ static void compare_forces(sct_verifier *v, int c)
 static void find_reactions(const sct_verifier *v, int c, double *R[2])
 {
     const size_t n3 = 3 * (size_t)v->m->n_joints, members = (size_t)v->m->n_members;
-    const bool has_elements = v->s.n_elements > 0;
-    combine(v, c, n3, has_elements ? v->s.given : v->s.load, R[0]);
-    if (v->s.has_turns) combine(v, c, n3, v->s.moment_given, R[1]);
+    const sct_statics *s = sct_statics_of(v, c);
+    const bool has_elements = s->n_elements > 0;
+    combine(v, c, n3, has_elements ? s->given : s->load, R[0]);
+    if (s->has_turns) combine(v, c, n3, s->moment_given, R[1]);
     for (size_t i = 0; i < n3; i++) {
         R[0][i] = -R[0][i];
         R[1][i] = -R[1][i];
@@ -156,20 +158,20 @@ static void find_reactions(const sct_verifier *v, int c, double *R[2])
     for (size_t e = 0; e < members; e++) {
         const sct_member *m = &v->m->members[e];
         const double *a = v->m->joints[m->from].at, *b = v->m->joints[m->to].at, L = sct_verify_length(v->m, (int)e);
-        const double own = v->s.element_of[e] >= 0 ? v->N[(size_t)c * members + e] : 0.0;
+        const double own = s->element_of[e] >= 0 ? v->N[(size_t)c * members + e] : 0.0;
         const double N = v->r->N[(size_t)c * members + e] - own;
         for (int i = 0; i < 3; i++) {
             R[0][3 * m->from + i] -= N * (b[i] - a[i]) / L;
             R[0][3 * m->to + i] += N * (b[i] - a[i]) / L;
         }
     }
-    for (int b = 0; b < v->s.n_elements; b++) {
-        const sct_element *x = &v->s.elements[b];
+    for (int b = 0; b < s->n_elements; b++) {
+        const sct_element *x = &s->elements[b];
         const int joint[2] = {v->m->members[x->member].from, v->m->members[x->member].to};
         long double local[12] = {0}, end[2][6];
         for (int k = 0; k < v->m->n_cases; k++) {
             const double factor = v->m->combinations[c].factor[k];
-            const double *of_case = v->s.end[(size_t)k * (size_t)v->s.n_elements + (size_t)b];
+            const double *of_case = s->end[(size_t)k * (size_t)s->n_elements + (size_t)b];
             for (int i = 0; i < 12 && factor != 0.0; i++) local[i] += factor * of_case[i];
         }
         sct_element_to_model(x, local, end);
@@ -196,7 +198,8 @@ static const joint_words WORDS[2] = {
 static double compare_loads(sct_verifier *v, int c, int kind, double load[], double scale)
 {
     const size_t n3 = 3 * (size_t)v->r->n_joints;
-    const double *from = kind == 0 ? v->s.load : v->s.moment_load, *said = kind == 0 ? v->r->load : v->r->moment_load;
+    const sct_statics *s = sct_statics_of(v, c);
+    const double *from = kind == 0 ? s->load : s->moment_load, *said = kind == 0 ? v->r->load : v->r->moment_load;
     memset(load, 0, n3 * sizeof *load);
     if (from != NULL) combine(v, c, n3, from, load);
     scale = fmax(scale, largest(n3, load));
@@ -211,8 +214,8 @@ static double compare_loads(sct_verifier *v, int c, int kind, double load[], dou
 static double given_by_support(const sct_verifier *v, int kind, int j, int i, const double R[3])
 {
     if (v->m->joints[j].n_springs > 0) return R[i];
-    if (v->s.supports.held[kind] == NULL) return 0.0;
-    const double *H = v->s.supports.held[kind][j][i];
+    if (v->statics->supports.held[kind] == NULL) return 0.0;
+    const double *H = v->statics->supports.held[kind][j][i];
     return H[0] * R[0] + H[1] * R[1] + H[2] * R[2];
 }
 
@@ -242,8 +245,9 @@ static void compare_combination(sct_verifier *v, int c, double *R[2])
     compare_loads(v, c, 1, R[1], load_scale * v->longest);
     memset(R[1], 0, n3 * sizeof *R[1]);
     find_reactions(v, c, R);
-    compare_joints(v, c, 0, R[0], (v->s.n_elements > 0 ? open->end[0] : open->N) + ABSOLUTE * load_scale);
+    compare_joints(v, c, 0, R[0], (v->statics->n_elements > 0 ? open->end[0] : open->N) + ABSOLUTE * load_scale);
     compare_joints(v, c, 1, R[1], open->end[1]);
+    sct_verify_slack(v, c);
     sct_verify_ends(v, c);
 }
 
@@ -285,7 +289,7 @@ static double compare_bar(sct_verifier *v, int e, double L, double *open)
 static double compare_member(sct_verifier *v, int e)
 {
     const sct_member_result *said = &v->r->members[e];
-    const bool is_bent = v->s.element_of[e] >= 0;
+    const bool is_bent = v->statics->element_of[e] >= 0;
     const double L = sct_verify_length(v->m, e);
     double open = 0.0, most = is_bent ? sct_verify_bent(v, e, &open) : compare_bar(v, e, L, &open);
     const int compressed = is_compressed(v, e);
@@ -401,15 +405,17 @@ static bool allocate(sct_verifier *v, sct_arena *arena)
     v->u = sct_arena_array(arena, n * n3, sizeof *v->u);
     v->turn = sct_arena_array(arena, n * n3, sizeof *v->turn);
     v->open_of = sct_arena_array(arena, n, sizeof *v->open_of);
-    return v->sections && v->L && v->N && v->u && v->turn && v->open_of;
+    v->n_statics = sct_verify_analyses(v->m);
+    v->statics = sct_arena_array(arena, (size_t)v->n_statics, sizeof *v->statics);
+    return v->statics && v->sections && v->L && v->N && v->u && v->turn && v->open_of;
 }
 
 /* Room for the line of any element. */
 static bool allocate_line(sct_verifier *v, sct_arena *arena)
 {
     int loads = 1, breaks = 1;
-    for (int b = 0; b < v->s.n_elements; b++) {
-        const sct_element *x = &v->s.elements[b];
+    for (int b = 0; b < v->statics->n_elements; b++) {
+        const sct_element *x = &v->statics->elements[b];
         v->longest = fmax(v->longest, (double)x->L);
         if (sct_cut_loads_at_most(x) > loads) loads = sct_cut_loads_at_most(x);
         if (sct_cut_breaks_at_most(x) > breaks) breaks = sct_cut_breaks_at_most(x);
@@ -419,13 +425,23 @@ static bool allocate_line(sct_verifier *v, sct_arena *arena)
     return v->loads != NULL && v->breaks != NULL;
 }
 
+static double largest_error(const sct_verifier *v)
+{
+    double most = 0.0;
+    for (int i = 0; i < v->n_statics; i++)
+        most = v->statics[i].error <= most ? most : v->statics[i].error; /* keeps a NAN */
+    return most;
+}
+
 static sct_status run(sct_verifier *v, sct_arena *arena)
 {
     const size_t n3 = 3 * (size_t)v->m->n_joints;
     double *R[2] = {sct_arena_array(arena, n3, sizeof **R), sct_arena_array(arena, n3, sizeof **R)};
     if (R[0] == NULL || R[1] == NULL || !allocate(v, arena)) return SCT_NO_MEMORY;
     for (int g = 0; g < v->m->n_groups; g++) v->sections[g] = sct_verify_section_of(v->m, g);
-    const sct_status status = sct_statics_solve(v->m, v->sections, &v->s);
+    sct_status status = SCT_OK;
+    for (int i = 0; i < v->n_statics && status == SCT_OK; i++)
+        status = sct_statics_solve(v->m, v->sections, sct_verify_left_out(v, i), &v->statics[i]);
     if (status != SCT_OK) {
         if (status == SCT_SELF_CHECK)
             sct_issue_add(
@@ -434,7 +450,7 @@ static sct_status run(sct_verifier *v, sct_arena *arena)
         return status;
     }
     if (!allocate_line(v, arena)) return SCT_NO_MEMORY;
-    v->accuracy = 10.0 * v->r->accuracy.bound + 10.0 * v->s.error;
+    v->accuracy = 10.0 * v->r->accuracy.bound + 10.0 * largest_error(v);
     combine_all(v);
     compare_all(v, R);
     return v->n_wrong > 0 ? SCT_SELF_CHECK : SCT_OK;
@@ -450,7 +466,7 @@ sct_status sct_verify(const sct_model *sized, const sct_result *result, sct_issu
     }
     sct_arena *arena = sct_arena_new();
     const sct_status status = arena != NULL ? run(&v, arena) : SCT_NO_MEMORY;
-    sct_statics_free(&v.s);
+    for (int i = 0; v.statics != NULL && i < v.n_statics; i++) sct_statics_free(&v.statics[i]);
     sct_arena_free(arena);
     return status;
 }

@@ -8,6 +8,7 @@
 typedef struct sct_work {
     const sct_model *m;
     const sct_verify_section *sections;
+    const bool *left_out; /* n_members, or NULL: none */
     sct_statics *out;
     int d;                         /* dimensions */
     int stride;                    /* 3 displacements per joint and, in frames, 3 rotations */

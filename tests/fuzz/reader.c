@@ -126,7 +126,7 @@ int LLVMFuzzerTestOneInput(const unsigned char *data, size_t size)
     sct_issues *issues = sct_issues_new();
     sct_model *model = NULL;
     MUST(issues != NULL);
-    sct_status status = sct_reader_parse("fuzz", text, size, &model, issues);
+    sct_status status = sct_model_parse("fuzz", text, size, &model, issues);
     MUST(status == SCT_OK || status == SCT_BAD_INPUT || status == SCT_TOO_LARGE);
     MUST((status == SCT_OK) == (model != NULL));
     check_issues(issues, status);
