@@ -151,7 +151,8 @@ sct_properties sct_properties_at_area(const sct_model *model, int group, double 
 static inline double sct_spring_stiffness(const sct_spring *s, const sct_properties sizes[])
 {
     if (s->group < 0) return s->E / s->L;
-    return s->E * sizes[s->group].P[s->property] / s->L;
+    const sct_properties *size = &sizes[s->group];
+    return s->E * size->P[s->property] / s->L;
 }
 
 /** A member's load in its local axes. */
