@@ -210,7 +210,7 @@ coverage: test-packages
 	@$(MAKE) --no-print-directory -s BUILD=$(BUILD)/coverage OPT="-O0 -g" SAN="--coverage -fprofile-update=atomic" covered
 	@BUILD=$(BUILD)/coverage LINES_FLOOR=$(LINES_FLOOR) BRANCHES_FLOOR=$(BRANCHES_FLOOR) sh .ci/coverage
 covered: all $(TESTS) $(REPLAYS)
-	-@BUILD=$(BUILD) CK_DEFAULT_TIMEOUT=120 sh tests/run.sh $(TESTS) >$(BUILD)/tests.log 2>&1; tail -n 1 $(BUILD)/tests.log
+	-@BUILD=$(BUILD) SCT_TEST_MEMORY=1 CK_DEFAULT_TIMEOUT=120 sh tests/run.sh $(TESTS) >$(BUILD)/tests.log 2>&1; tail -n 1 $(BUILD)/tests.log
 
 format:
 	clang-format -i $(wildcard src/*/*.[ch] tests/*.[ch] examples/*.c include/*.h)

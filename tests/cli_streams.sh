@@ -194,7 +194,7 @@ SH
     completes "json" scantling size --progress = j
     completes "size" scantling help s
     completes "bash" scantling completion ""
-    completes "models/demo_chords.json models/demo_frame.json models/demo_roof.json" scantling size models/demo
+    completes "models/demo_braced.json models/demo_chords.json models/demo_frame.json models/demo_roof.json" scantling size models/demo
     completes "models/benchmarks" scantling size -o models/be
     completes "" scantling explain x.json --member T
     for command in $commands; do

@@ -26,7 +26,7 @@ sct_status sct_envelope_power(sct_arena *arena, double c, double p, sct_envelope
 sct_status sct_envelope_relation(sct_arena *arena, double c, double p, sct_envelope *e)
 {
     const sct_status status = sct_envelope_power(arena, c, 0.5 * (p - 1.0), e); /* i = sqrt(c A^(p - 1)) */
-    if (e->n > 0) e->h[0] *= 0.5;
+    if (status == SCT_OK && e->n > 0) e->h[0] *= 0.5;
     return status;
 }
 
