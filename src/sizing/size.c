@@ -5,6 +5,7 @@
 
 #include "analysis/accuracy.h"
 #include "analysis/mechanism.h"
+#include "analysis/motion.h"
 #include "base/arithmetic.h"
 #include "base/memory.h"
 #include "base/random.h"
@@ -122,6 +123,29 @@ static sct_status open_job(job *J, const sct_model *model, const sct_settings *s
     return SCT_OK;
 }
 
+/* Are members so unlike that rounding alone may take the factor away? */
+static bool is_badly_mixed(const job *J)
+{
+    static const double BADLY = 1e-11; /* softest over stiffest: half of the digits of the rest are gone */
+    const double *k = sct_solver_stiffnesses(J->duty->solver);
+    double most = 0.0, least = INFINITY;
+    for (int e = 0; e < J->st->n_springs; e++) {
+        const double span = J->st->springs[e].span, compared = k[e] / (span * span);
+        most = fmax(most, compared);
+        least = fmin(least, compared);
+    }
+    return most > 0.0 && !(least > BADLY * most);
+}
+
+static sct_status refuse_mixture(const job *J)
+{
+    sct_text words = {0};
+    sct_text_add(&words, "the answer cannot be trusted: the stiffness matrix has no factor in numbers; ");
+    const int stiffest = sct_stiffness_words(J->st, sct_solver_areas(J->duty->solver), &words);
+    const bool told = sct_motion_tell(&words, SCT_ERROR, J->model->members[stiffest].where, J->issues);
+    return told ? SCT_NOT_ACCURATE : SCT_NO_MEMORY;
+}
+
 /* Looks for mechanisms, then analyses the design, or areas alone: where none is found the solver must succeed. */
 static sct_status analyse_sound(job *J, const double A[], const sct_design *design)
 {
@@ -130,6 +154,7 @@ static sct_status analyse_sound(job *J, const double A[], const sct_design *desi
     status = design != NULL ? sct_duty_analyse(J->duty, design) : sct_duty_analyse_areas(J->duty, A);
     if (sct_slack_failed(J->duty->slack)) return status;
     if (status != SCT_MECHANISM && status != SCT_NOT_ACCURATE) return status;
+    if (is_badly_mixed(J)) return refuse_mixture(J);
     sct_issue_add(J->issues, SCT_ERROR, (sct_where){.file = J->model->file},
                   "internal check failed: the stiffness matrix of a sound structure has no factor (%s)",
                   sct_status_text(status));
