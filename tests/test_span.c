@@ -3,6 +3,7 @@
 
 #include "base/random.h"
 #include "numerics/span.h"
+#include "base/vector.h"
 
 START_TEST(null_space_is_orthonormal_and_orthogonal_to_the_rows)
 {
@@ -51,7 +52,7 @@ END_TEST
 START_TEST(the_cross_product_is_right_handed)
 {
     double c[3];
-    sct_cross((double[]){1.0, 0.0, 0.0}, (double[]){0.0, 2.0, 0.0}, c);
+    sct_cross3((double[]){1.0, 0.0, 0.0}, (double[]){0.0, 2.0, 0.0}, c);
     ck_assert(c[0] == 0.0 && c[1] == 0.0 && c[2] == 2.0);
 }
 END_TEST

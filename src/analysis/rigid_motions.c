@@ -4,6 +4,7 @@
 
 #include "analysis/connectivity_parts.h"
 #include "analysis/motion.h"
+#include "base/vector.h"
 
 static void measure_part(const sct_graph *g, sct_part *p)
 {
@@ -42,7 +43,7 @@ static void place(const sct_graph *g, const sct_part *p, int joint, double q[3])
 
 static void displacement(const double t[3], const double w[3], const double q[3], double u[3])
 {
-    sct_cross(w, q, u);
+    sct_cross3(w, q, u);
     for (int k = 0; k < 3; k++) u[k] += t[k];
 }
 
@@ -82,7 +83,7 @@ static void hold_row(const sct_graph *g, const double h[3], const double *q, sct
     double arm[3] = {h[0], h[1], h[2]};
     memset(row, 0, sizeof(sct_row));
     if (q != NULL) {
-        sct_cross(q, h, arm); /* h . (t + w x q) = h . t + w . (q x h) */
+        sct_cross3(q, h, arm); /* h . (t + w x q) = h . t + w . (q x h) */
         memcpy(row, h, (size_t)g->st->dim * sizeof *row);
     }
     if (g->st->dim == 2)
@@ -150,7 +151,7 @@ static bool is_straight(const sct_graph *g, const sct_part *p, double axis[3])
     for (int i = 0; i < p->count; i++) {
         double q[3], off[3];
         place(g, p, g->joints[p->first + i], q);
-        sct_cross(q, axis, off);
+        sct_cross3(q, axis, off);
         if (sct_dot(3, off, off) > SCT_NO_HOLD * SCT_NO_HOLD) return false;
     }
     return true;
@@ -225,7 +226,7 @@ static int simplify(const sct_graph *g, const sct_part *p, int k, sct_row R[SCT_
             sct_span_remove(n_t, k - n_turns, T, u);
             through_support = sct_dot(n_t, u, u) <= SCT_NO_HOLD * SCT_NO_HOLD * sct_dot(3, w, w);
             if (!through_support) continue;
-            sct_cross(q, w, t);
+            sct_cross3(q, w, t);
             memcpy(R[i], t, (size_t)n_t * sizeof(double));
         }
         if (!through_support) sct_span_remove(n_t, k - n_turns, T, R[i]);
@@ -303,7 +304,7 @@ static void add_turn(const sct_graph *g, const sct_part *p, const double t[3], c
 {
     const double w2 = sct_dot(3, w, w), pitch = sct_dot(3, t, w) / w2;
     double at[3];
-    sct_cross(w, t, at); /* the point of the axis nearest to the centre */
+    sct_cross3(w, t, at); /* the point of the axis nearest to the centre */
     for (int k = 0; k < 3; k++) at[k] = p->centre[k] + p->size * at[k] / w2;
     const int *joints = g->joints + p->first;
     for (int i = 0; i < p->count; i++) { /* better: a held joint on the axis */

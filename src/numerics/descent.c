@@ -322,8 +322,8 @@ static sct_status exact_curvature(sct_descent *w, const double x[])
     return SCT_OK;
 }
 
-/* Damped update (Powell, in: Lecture Notes in Mathematics 630, 1978) of B, the Hessian of the Lagrangian, over the last
- * step. y overwrites dL. */
+/* Damped update (Powell, A fast algorithm for nonlinearly constrained optimization calculations, 1978) of B, the
+ * Hessian of the Lagrangian, over the last step. y overwrites dL. */
 static void update(sct_descent *w)
 {
     const int n = w->n;

@@ -6,7 +6,6 @@ enum { SCT_ROW = 6 };
 typedef double sct_row[SCT_ROW];
 
 double sct_dot(int n, const double a[], const double b[]);
-void sct_cross(const double a[3], const double b[3], double c[3]);
 void sct_span_normalise(int n, double v[]);
 
 /** v -= its parts along the r orthonormal rows of E; twice, so that what is left is orthogonal to rounding. */

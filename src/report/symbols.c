@@ -7,6 +7,7 @@
 #include "held.h"
 #include "quantity.h"
 #include "supports.h"
+#include "base/vector.h"
 
 static const double SIZE = 12;                    /* [u] of a support */
 static const double HEAD = 6.5, HEAD_WIDTH = 4.2; /* [u] of an arrow */
@@ -33,11 +34,6 @@ void sct_arrow(sct_sheet *sheet, sct_point tail, sct_point tip, sct_role role, d
 /* ---- which way a support opens -------------------------------------------------------------------------------------
  */
 
-static double dot(const double a[3], const double b[3])
-{
-    return a[0] * b[0] + a[1] * b[1] + a[2] * b[2];
-}
-
 /* The largest reaction of a joint over all combinations, as a unit vector; straight up when there is none. */
 static void main_reaction(const sct_result *r, int joint, double unit[3])
 {
@@ -45,7 +41,7 @@ static void main_reaction(const sct_result *r, int joint, double unit[3])
     double size = 0;
     for (int c = 0; c < r->n_combinations; c++) {
         const double *R = r->reaction + ((size_t)c * (size_t)r->n_joints + (size_t)joint) * 3;
-        const double length = sqrt(dot(R, R));
+        const double length = sqrt(sct_dot3(R, R));
         if (length > size * (1 + 1e-9)) {
             size = length;
             most = R;
@@ -64,9 +60,9 @@ static double badness(const sct_scene *scene, int joint, const double reaction[3
         const sct_member_result *m = &r->members[scene->near[i]];
         const double *p = r->joints[joint].at, *q = r->joints[m->from == joint ? m->to : m->from].at;
         const double d[3] = {q[0] - p[0], q[1] - p[1], q[2] - p[2]};
-        worst = fmax(worst, dot(d, way) / sqrt(dot(d, d)));
+        worst = fmax(worst, sct_dot3(d, way) / sqrt(sct_dot3(d, d)));
     }
-    const double push = -dot(reaction, way), members = (worst > COLLIDES ? 10 : 0) + 1.2 * worst;
+    const double push = -sct_dot3(reaction, way), members = (worst > COLLIDES ? 10 : 0) + 1.2 * worst;
     return members + (r->dimensions == 3 ? 1 + way[2] : 1.5 * (1 - fabs(push)) + 0.5 * (1 - push));
 }
 
@@ -137,27 +133,20 @@ static void plane_support(sct_scene *scene, int joint)
 /* ---- supports in space ---------------------------------------------------------------------------------------------
  */
 
-static void cross(const double a[3], const double b[3], double c[3])
-{
-    c[0] = a[1] * b[2] - a[2] * b[1];
-    c[1] = a[2] * b[0] - a[0] * b[2];
-    c[2] = a[0] * b[1] - a[1] * b[0];
-}
-
 /* The directions in which a joint is free to slide: 3 - n_held of them. */
 static int free_directions(const sct_joint_result *j, double out[2][3])
 {
     if (j->n_held == 2) {
-        cross(j->held[0], j->held[1], out[0]);
-        return dot(out[0], out[0]) > 1e-12;
+        sct_cross3(j->held[0], j->held[1], out[0]);
+        return sct_dot3(out[0], out[0]) > 1e-12;
     }
     if (j->n_held != 1) return 0;
     int least = 0;
     for (int k = 1; k < 3; k++)
         if (fabs(j->held[0][k]) < fabs(j->held[0][least]) - 1e-9) least = k;
     const double axis[3] = {least == 0, least == 1, least == 2};
-    cross(j->held[0], axis, out[1]);
-    cross(out[1], j->held[0], out[0]);
+    sct_cross3(j->held[0], axis, out[1]);
+    sct_cross3(out[1], j->held[0], out[0]);
     return 2;
 }
 
@@ -165,11 +154,11 @@ static int free_directions(const sct_joint_result *j, double out[2][3])
 static void base_axes(const double way[3], double e[2][3])
 {
     const double along[3] = {fabs(way[0]) < 0.9, fabs(way[0]) >= 0.9, 0};
-    cross(way, along, e[1]);
-    double L = sqrt(dot(e[1], e[1]));
+    sct_cross3(way, along, e[1]);
+    double L = sqrt(sct_dot3(e[1], e[1]));
     for (int k = 0; k < 3; k++) e[1][k] /= L;
-    cross(e[1], way, e[0]);
-    L = sqrt(dot(e[0], e[0]));
+    sct_cross3(e[1], way, e[0]);
+    L = sqrt(sct_dot3(e[0], e[0]));
     for (int k = 0; k < 3; k++) e[0][k] /= L;
 }
 

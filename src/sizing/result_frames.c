@@ -8,7 +8,7 @@
 /* ---- members --------------------------------------------------------------------------------------------------------
  */
 
-static double moment_error(const sct_duty *duty, const sct_form *form)
+static double form_error(const sct_duty *duty, const sct_form *form)
 {
     double error = 0.0;
     for (int s = 0; s < form->n_springs; s++)
@@ -24,7 +24,7 @@ static void consider_place(sct_result *r, sct_member_result *m, const sct_duty *
                            const sct_bent_place *place)
 {
     const sct_form form = sct_bent_form(member, place, -1, NULL);
-    r->utilisation_at_most = sct_worse(r->utilisation_at_most, place->utilisation + moment_error(duty, &form));
+    r->utilisation_at_most = sct_worse(r->utilisation_at_most, place->utilisation + form_error(duty, &form));
     if (isnan(m->utilisation) || place->utilisation <= m->utilisation) return;
     m->utilisation = place->utilisation;
     m->check = sct_bent_check_kind(place->kind);
@@ -118,7 +118,7 @@ static void consider_bow(sct_result *r, const sct_duty *duty, const sct_design *
     const sct_form form = sct_bow_form(&member, row, &place, EI, -1, NULL);
     const double utilisation = sct_settled(fabs(place.v) / row->at_most);
     r->utilisation_at_most =
-        sct_worse(r->utilisation_at_most, (fabs(place.v) + moment_error(duty, &form)) / row->at_most);
+        sct_worse(r->utilisation_at_most, (fabs(place.v) + form_error(duty, &form)) / row->at_most);
     if (out->combination >= 0 && (isnan(out->utilisation) || utilisation <= out->utilisation)) return;
     out->combination = row->combination;
     out->x = place.x;

@@ -30,7 +30,11 @@ static sct_status fill(sct_whole *w, sct_engine engine, int n, const int combina
     if (w->buckling == NULL || w->of_mode == NULL) return SCT_NO_MEMORY;
     w->lowest = -1;
     w->n = n;
-    for (int k = 0; k < n; k++) w->buckling[k].combination = combinations[k];
+    for (int k = 0; k < n; k++) {
+        w->buckling[k] = (sct_whole_buckling){.combination = combinations[k], .sway = INFINITY};
+        for (int i = 0; i < SCT_WHOLE_MODES; i++) w->buckling[k].alpha[i] = INFINITY;
+        w->buckling[k].order = sct_second_order_of(INFINITY, false);
+    }
     w->fine = sct_fine_new(w->st, SCT_PIECES, engine, &status);
     if (w->fine == NULL) return status;
     w->stability = sct_stability_new(w->fine, SCT_WHOLE_MODES, &status);
@@ -102,7 +106,9 @@ sct_status sct_whole_analyse(sct_whole *w, const sct_solver *solver, const sct_r
     sct_modes modes;
     sct_status status = sct_fine_update(w->fine, sct_solver_sizes(solver));
     w->lowest = -1;
-    for (int k = 0; k < w->n && status == SCT_OK; k++) {
+    const sct_model *m = w->st->model; /* the search looks for what it is limited by */
+    const bool wants_factors = how == SCT_MODES_PROVEN || m->least_factor > 0.0 || m->amplifies;
+    for (int k = 0; k < w->n && status == SCT_OK && wants_factors; k++) {
         status = sct_stability_find(w->stability, response, w->buckling[k].combination, how, &modes);
         if (!is_usable(status)) return status;
         status = SCT_OK;
