@@ -627,10 +627,12 @@ double sct_problem_bytes(const sct_duty *duty)
 {
     const sct_structure *st = duty->st;
     const double bar_rows = (double)duty->n_allowable * (st->n_bars + SCT_BENT_PLACES * duty->n_bent);
-    const double m = bar_rows + duty->n_rows + duty->n_bows, n = st->n_vars;
+    const double factors = st->model->least_factor > 0.0 ? duty->n_allowable : 0.0;
+    const double whole = SCT_WHOLE_MODES * (factors + (st->model->least_frequency > 0.0));
+    const double m = bar_rows + duty->n_rows + duty->n_bows + whole, n = st->n_vars;
     const double at_once = fmin(bar_rows, 2.0 * sct_descent_defaults().per_cluster * st->n_groups) + duty->n_rows;
     const double du = (double)st->n_cases * n * st->n_dof + (double)st->n_combinations * st->n_ties * n;
-    return 2.0 * du * sizeof(double) + /* twice: the choice of sections has its own */
+    return (2.0 * du + whole * n * n) * sizeof(double) + /* twice: the choice of sections has its own */
            bar_rows * sizeof(sct_need) + sct_descent_bytes(n, m, at_once);
 }
 
@@ -689,8 +691,17 @@ void sct_problem_bounds(const sct_problem *P, double lower[], double upper[], sc
     memcpy(source, P->source, (size_t)P->n * sizeof *source);
 }
 
+/* What one start has learned is not the next one's. */
+static void forget(sct_problem *P)
+{
+    const size_t n = (size_t)P->n, rows = (size_t)(P->nlp.m - P->first_factor);
+    memset(P->learned, 0, rows * n * n * sizeof *P->learned);
+    P->have_before = false;
+}
+
 int sct_problem_scale(sct_problem *P, double x[])
 {
+    forget(P);
     if (judge(P, x) != SCT_OK) return 1;
     double most = -INFINITY;
     for (int j = 0; j < P->nlp.m; j++) most = fmax(most, P->g[j]);
